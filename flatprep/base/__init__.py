@@ -1,0 +1,1 @@
+"""Errors, units, tolerances and the progress protocol: what every other package may use."""

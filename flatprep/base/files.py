@@ -1,0 +1,57 @@
+"""Files are written whole or not at all."""
+
+import os
+import tempfile
+from pathlib import Path
+
+from flatprep.base.errors import OutputError
+
+
+def write_whole(path: Path, data: str | bytes) -> None:
+    """Write `data` beside `path`, flush it to the disk, then rename it over `path`.
+
+    Raises
+    ------
+    OutputError
+        When the folder or the file cannot be written; an older file then stays as it was.
+    """
+    raw = data.encode() if isinstance(data, str) else data
+    aside = None
+    try:
+        handle, aside = tempfile.mkstemp(prefix=".", suffix=".part", dir=path.parent)
+        with os.fdopen(handle, "wb") as out:
+            out.write(raw)
+            out.flush()
+            os.fsync(out.fileno())
+        os.chmod(aside, 0o666 & ~_umask())
+        os.replace(aside, path)
+    except OSError as err:
+        if aside is not None and os.path.exists(aside):
+            os.unlink(aside)
+        raise OutputError(
+            f"{path}: cannot be written ({err.strerror or err})", "choose another folder, or make room"
+        ) from err
+
+
+def make_folder(path: Path) -> None:
+    """Make `path` and its parents.
+
+    Raises
+    ------
+    OutputError
+        When it cannot be made or cannot be written into.
+    """
+    try:
+        path.mkdir(parents=True, exist_ok=True)
+        with tempfile.NamedTemporaryFile(prefix=".", suffix=".part", dir=path):
+            pass
+    except OSError as err:
+        raise OutputError(
+            f"{path}: cannot be written into ({err.strerror or err})", "choose another folder with --out"
+        ) from err
+
+
+def _umask() -> int:
+    mask = os.umask(0)
+    os.umask(mask)
+    return mask

@@ -1,0 +1,1 @@
+"""The bench work of a part: steps and their order."""

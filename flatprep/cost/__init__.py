@@ -1,0 +1,1 @@
+"""Mass, cut length and material cost."""

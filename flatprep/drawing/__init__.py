@@ -1,0 +1,1 @@
+"""DXF in (curves, contours, parts) and DXF out."""

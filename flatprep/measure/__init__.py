@@ -1,0 +1,1 @@
+"""What is measured on a part, each quantity once: webs, slots, corners, holes."""

@@ -1,0 +1,1 @@
+"""Lay parts on stock."""

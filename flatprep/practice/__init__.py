@@ -1,0 +1,1 @@
+"""What rules and bench work share: pilots, engagement, fits, countersinks, bends."""

@@ -1,0 +1,1 @@
+"""Process, material and hardware profiles: load and look up."""

@@ -1,0 +1,1 @@
+"""Documents out of values: text, JSON, CSV, SVG, HTML."""
