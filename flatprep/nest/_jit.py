@@ -1,0 +1,41 @@
+"""The one door to numba.
+
+Kernels take C-contiguous float64 and int64 arrays (grouped in named tuples), raise nothing, hold no lock and use
+neither fast math nor threads. FLATPREP_NO_JIT=1 runs them as plain Python. Compiled code is kept in the package's
+own folder, or the user's cache folder; where neither can be written, in a folder that lasts as long as the process.
+"""
+
+import atexit
+import os
+import shutil
+import tempfile
+from collections.abc import Callable
+from typing import Any, TypeVar, cast
+
+F = TypeVar("F", bound=Callable[..., Any])
+
+JIT = os.environ.get("FLATPREP_NO_JIT") != "1"
+
+
+def _temporary_cache() -> None:
+    """Give this process and its children a cache folder that goes away with it."""
+    import numba  # noqa: PLC0415
+
+    folder = tempfile.mkdtemp(prefix="flatprep-numba-")
+    atexit.register(shutil.rmtree, folder, ignore_errors=True)
+    os.environ["NUMBA_CACHE_DIR"] = folder
+    numba.config.CACHE_DIR = folder
+
+
+def kernel(func: F) -> F:
+    """Compile on first call and keep the result on disk, or leave the function plain."""
+    if not JIT:
+        func.py_func = func  # type: ignore[attr-defined]
+        return func
+    import numba  # noqa: PLC0415
+
+    try:
+        return cast(F, numba.njit(cache=True, nogil=True)(func))
+    except RuntimeError:  # numba found no folder to write to
+        _temporary_cache()
+        return cast(F, numba.njit(cache=True, nogil=True)(func))
