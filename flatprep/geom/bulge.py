@@ -94,7 +94,7 @@ def split_arcs(xyb: Floats, *, closed: bool) -> Floats:
 
 
 def circle(x: float, y: float, radius: float) -> Floats:
-    """Closed polyline of a full circle, anticlockwise, from its rightmost point: two half circles."""
+    """Full circle as a closed polyline, anticlockwise from its rightmost point: two half circles."""
     return np.array([[x + radius, y, 1.0], [x - radius, y, 1.0]])
 
 

@@ -1,0 +1,94 @@
+"""Contours that cross themselves or each other, or share an edge."""
+
+import re
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+import shapely
+from shapely import STRtree
+
+from flatprep.drawing.chain import Chain
+from flatprep.geom.bulge import points_along
+from flatprep.model.drawing import Fault
+
+_CHORD_MM = 0.01
+_TOUCH_AREA_MM2 = 1e-3
+_PLACE = re.compile(r"\[(-?[\d.]+(?:[eE][+-]?\d+)?) (-?[\d.]+(?:[eE][+-]?\d+)?)\]")
+
+
+@dataclass(frozen=True, slots=True)
+class Crossings:
+    """What is unsound among contours.
+
+    Attributes
+    ----------
+    selfish : frozenset of int
+        Contours that cross themselves.
+    clusters : tuple of tuple of int
+        Contours that share edges with each other and do not cross.
+    faults : tuple of Fault
+    """
+
+    selfish: frozenset[int]
+    clusters: tuple[tuple[int, ...], ...]
+    faults: tuple[Fault, ...]
+
+    @property
+    def touching(self) -> frozenset[int]:
+        """Every contour that stands in a cluster."""
+        return frozenset(i for cluster in self.clusters for i in cluster)
+
+
+def crossings(rings: Sequence[Chain]) -> Crossings:
+    """Find crossings among closed contours."""
+    lines = [points_along(r.xyb, closed=True, chord_mm=_CHORD_MM) for r in rings]
+    shapes = np.array([shapely.Polygon(p) if len(p) > 2 else shapely.Polygon() for p in lines], dtype=object)
+    if len(shapes) == 0:
+        return Crossings(frozenset(), (), ())
+    faults: list[Fault] = []
+    selfish = frozenset(np.flatnonzero(~shapely.is_valid(shapes)).tolist())
+    for i in sorted(selfish):
+        faults.append(Fault("self-crossing", _where(shapes[i]), None, _handles(rings[i]), "the outline crosses itself"))
+    sound = [i for i in range(len(rings)) if i not in selfish]
+    shared: list[tuple[int, int]] = []
+    borders = shapely.boundary(shapes[sound])
+    a, b = STRtree(borders).query(borders, predicate="intersects")
+    for i, j in sorted((sound[p], sound[q]) for p, q in zip(a.tolist(), b.tolist(), strict=True) if p < q):
+        edge = shapely.intersection(shapely.boundary(shapes[i]), shapely.boundary(shapes[j]))
+        if _overlap(shapes[i], shapes[j]):
+            at = edge.representative_point() if edge.length == 0 else edge.centroid
+            both = _handles(rings[i]) + _handles(rings[j])
+            faults.append(Fault("self-crossing", (at.x, at.y), None, both, "two outlines cross each other"))
+        elif edge.length > 10 * _CHORD_MM:
+            shared.append((i, j))
+            at = edge.interpolate(0.5, normalized=True) if edge.geom_type == "LineString" else edge.centroid
+            both = _handles(rings[i]) + _handles(rings[j])
+            faults.append(Fault("duplicate-line", (at.x, at.y), None, both, "two outlines share an edge: taken as one"))
+    return Crossings(selfish, _clusters(shared), tuple(faults))
+
+
+def _overlap(a: shapely.Polygon, b: shapely.Polygon) -> bool:
+    """Tell whether both have area of their own and area in common."""
+    common = shapely.intersection(a, b).area
+    return bool(
+        common > _TOUCH_AREA_MM2 and min(a.area, b.area) - common > max(_TOUCH_AREA_MM2, 1e-4 * min(a.area, b.area))
+    )
+
+
+def _clusters(pairs: Sequence[tuple[int, int]]) -> tuple[tuple[int, ...], ...]:
+    groups: list[set[int]] = []
+    for i, j in pairs:
+        hit = [g for g in groups if i in g or j in g]
+        merged = {i, j}.union(*hit)
+        groups = [g for g in groups if g not in hit] + [merged]
+    return tuple(tuple(sorted(g)) for g in groups)
+
+
+def _where(shape: shapely.Polygon) -> tuple[float, float] | None:
+    found = _PLACE.search(shapely.is_valid_reason(shape))
+    return (float(found[1]), float(found[2])) if found else None
+
+
+def _handles(ring: Chain) -> tuple[str, ...]:
+    return tuple(dict.fromkeys(h for h in ring.handles if h))

@@ -1,0 +1,78 @@
+"""Lines that lie on others: contours drawn twice, and loose lines that run along an edge."""
+
+from collections.abc import Sequence
+
+import numpy as np
+import shapely
+from shapely import STRtree
+
+from flatprep.drawing.chain import Chain
+from flatprep.drawing.tidy import told_doubles
+from flatprep.geom.bulge import Floats, points_along
+from flatprep.model.drawing import Fault
+
+_CHORD_MM = 0.002
+
+
+def without_double_rings(rings: Sequence[Chain], same_mm: float) -> tuple[list[Chain], list[Fault]]:
+    """Drop contours that lie on an earlier one all along, within `same_mm`."""
+    if len(rings) < 2:
+        return list(rings), []
+    xy = [points_along(r.xyb, closed=True, chord_mm=_CHORD_MM) for r in rings]
+    boxes = np.array([[*p.min(axis=0), *p.max(axis=0)] for p in xy])
+    near = _near_rows(boxes, 2 * same_mm)
+    dropped: set[int] = set()
+    for i, j in near:
+        first, second = min(i, j), max(i, j)
+        if first not in dropped and second not in dropped and _coincide(xy[first], xy[second], same_mm):
+            dropped.add(second)
+    places = [(_place(rings[k]), rings[k].handles[0] if rings[k].handles else "") for k in sorted(dropped)]
+    return [r for k, r in enumerate(rings) if k not in dropped], told_doubles(places)
+
+
+def without_overlapped(
+    loose: Sequence[Chain], rings: Sequence[Chain], same_mm: float
+) -> tuple[list[Chain], list[Fault]]:
+    """Drop loose chains that run along an edge of a contour all the way."""
+    if not loose or not rings:
+        return list(loose), []
+    edges = [_closed_line(points_along(r.xyb, closed=True, chord_mm=_CHORD_MM)) for r in rings]
+    tree = STRtree(edges)
+    kept, places = [], []
+    for c in loose:
+        xy = points_along(c.xyb, closed=False, chord_mm=_CHORD_MM)
+        line = shapely.linestrings(xy)
+        near = tree.query(line, predicate="dwithin", distance=same_mm)
+        if any(_lies_along(xy, edges[k], same_mm) for k in near):
+            places.append((_place(c), c.handles[0] if c.handles else ""))
+        else:
+            kept.append(c)
+    return kept, told_doubles(places)
+
+
+def _near_rows(boxes: Floats, reach: float) -> list[tuple[int, int]]:
+    """Pairs of boxes whose four sides agree within `reach`."""
+    corners = shapely.points(boxes[:, :2])
+    a, b = STRtree(corners).query(corners, predicate="dwithin", distance=2 * reach)
+    keep = (a < b) & (np.abs(boxes[a] - boxes[b]).max(axis=1) <= reach)
+    return list(zip(a[keep].tolist(), b[keep].tolist(), strict=True))
+
+
+def _coincide(a: Floats, b: Floats, same_mm: float) -> bool:
+    one, two = _closed_line(a), _closed_line(b)
+    return _lies_along(a, two, same_mm) and _lies_along(b, one, same_mm)
+
+
+def _lies_along(xy: Floats, edge: shapely.LineString, same_mm: float) -> bool:
+    middles = (xy[1:] + xy[:-1]) / 2.0
+    probe = shapely.points(np.vstack([xy, middles]))
+    return bool((shapely.distance(probe, edge) <= same_mm).all())
+
+
+def _closed_line(xy: Floats) -> shapely.LineString:
+    return shapely.linestrings(np.vstack([xy, xy[:1]]))
+
+
+def _place(c: Chain) -> tuple[float, float]:
+    x, y = c.xyb[0, :2]
+    return float(x), float(y)

@@ -1,0 +1,203 @@
+"""DXF entities as bulge polylines in world coordinates, still in drawing units."""
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from math import cos, hypot, isfinite, pi, radians, sin, tan
+from typing import Any
+
+import numpy as np
+from ezdxf.entities.dxfentity import DXFEntity
+
+from flatprep.geom.bulge import Floats, split_arcs
+from flatprep.geom.fit import fit_arcs
+from flatprep.geom.smooth import ellipse, nurbs
+
+# ezdxf types its DXF attributes only loosely
+Dxf = Any
+
+
+class UnusableEntityError(Exception):
+    """An entity whose numbers make no curve; the message says why."""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Shape:
+    """A curve in drawing units, and the heights it spans."""
+
+    xyb: Floats
+    closed: bool
+    z_low: float
+    z_high: float
+
+
+def shape_of(entity: DXFEntity, tol: float) -> Shape | None:
+    """Return the curve of an entity, None for one that is no curve.
+
+    Parameters
+    ----------
+    entity
+        LINE, ARC, CIRCLE, ELLIPSE, SPLINE, LWPOLYLINE or POLYLINE.
+    tol
+        Largest distance of the arcs that stand for a spline or ellipse, drawing units.
+
+    Raises
+    ------
+    UnusableEntityError
+        When its numbers make no curve.
+    """
+    make = _MAKERS.get(entity.dxftype())
+    if make is None:
+        return None
+    try:
+        shape = make(entity, tol)
+    except (ValueError, ZeroDivisionError, OverflowError, IndexError, TypeError, AttributeError) as err:
+        raise UnusableEntityError(str(err) or type(err).__name__) from err
+    if not np.isfinite(shape.xyb).all() or not isfinite(shape.z_low) or not isfinite(shape.z_high):
+        raise UnusableEntityError("a coordinate is not a finite number")
+    return shape
+
+
+def _line(e: Dxf, _tol: float) -> Shape:
+    a, b = e.dxf.start, e.dxf.end
+    return Shape(np.array([[a.x, a.y, 0.0], [b.x, b.y, 0.0]]), closed=False, z_low=min(a.z, b.z), z_high=max(a.z, b.z))
+
+
+def _flat(extrusion: Dxf) -> float:
+    """+1 or -1 for an extrusion along z; the mirrored plane is what many programs write after a flip.
+
+    Raises
+    ------
+    UnusableEntityError
+        When the plane is tilted.
+    """
+    x, y, z = extrusion
+    if hypot(x, y) > 1e-6 * abs(z):
+        raise UnusableEntityError("it lies in a tilted plane")
+    return 1.0 if z > 0 else -1.0
+
+
+def _circle(e: Dxf, _tol: float) -> Shape:
+    flip = _flat(e.dxf.extrusion)
+    c, r = e.dxf.center, e.dxf.radius
+    if r <= 0:
+        raise UnusableEntityError(f"its radius is {r:g}")
+    x = flip * c.x
+    # it starts at OCS angle 0 and runs anticlockwise whichever way the plane looks: a full circle has no direction
+    return Shape(np.array([[x + r, c.y, 1.0], [x - r, c.y, 1.0]]), closed=True, z_low=flip * c.z, z_high=flip * c.z)
+
+
+def _arc(e: Dxf, _tol: float) -> Shape:
+    flip = _flat(e.dxf.extrusion)
+    c, r = e.dxf.center, e.dxf.radius
+    if r <= 0:
+        raise UnusableEntityError(f"its radius is {r:g}")
+    start, end = radians(e.dxf.start_angle), radians(e.dxf.end_angle)
+    sweep = (end - start) % (2 * pi)
+    full = sweep < 1e-9 or sweep > 2 * pi - 1e-9
+    if full:
+        return Shape(
+            np.array([[flip * c.x + r, c.y, 1.0], [flip * c.x - r, c.y, 1.0]]),
+            closed=True,
+            z_low=flip * c.z,
+            z_high=flip * c.z,
+        )
+    pieces = 1 if sweep <= pi + 1e-9 else 2
+    bulge = tan(sweep / pieces / 4.0)
+    rows = []
+    for k in range(pieces + 1):
+        a = start + sweep * k / pieces
+        rows.append((flip * (c.x + r * cos(a)), c.y + r * sin(a), flip * bulge if k < pieces else 0.0))
+    return Shape(np.array(rows), closed=False, z_low=flip * c.z, z_high=flip * c.z)
+
+
+def _ellipse(e: Dxf, tol: float) -> Shape:
+    flip = _flat(e.dxf.extrusion)
+    c, m, ratio = e.dxf.center, e.dxf.major_axis, e.dxf.ratio
+    major = np.array([m.x, m.y])
+    if hypot(m.x, m.y) <= 0 or not 0 < abs(ratio) <= 1e3:
+        raise UnusableEntityError("an axis of the ellipse is zero")
+    minor = flip * ratio * np.array([-m.y, m.x])
+    start, end = e.dxf.start_param, e.dxf.end_param
+    sweep = (end - start) % (2 * pi)
+    full = sweep < 1e-6 or sweep > 2 * pi - 1e-6
+    start, sweep = (0.0, 2 * pi) if full else (start % (2 * pi), sweep)
+    xyb = fit_arcs(ellipse(np.array([c.x, c.y]), major, minor, start, start + sweep), tol)
+    return Shape(xyb[:-1] if full else xyb, full, c.z, c.z)
+
+
+def _spline(e: Dxf, tol: float) -> Shape:
+    control = np.asarray(e.control_points, dtype=np.float64)
+    if len(control):
+        knots, weights, degree = list(e.knots), list(e.weights), e.dxf.degree
+    else:
+        tool = e.construction_tool()
+        control = np.array([(p.x, p.y, p.z) for p in tool.control_points])
+        knots, weights, degree = list(tool.knots()), list(tool.weights()), tool.degree
+    if not np.isfinite(control).all() or np.abs(control).max(initial=0.0) > 1e12:
+        raise UnusableEntityError("a control point is out of all bounds")
+    if degree == 1:
+        xyb = np.column_stack([control[:, :2], np.zeros(len(control))])
+    else:
+        xyb = fit_arcs(nurbs(degree, knots, control[:, :2], weights), tol)
+    if len(xyb) < 2:
+        raise UnusableEntityError("the spline is a single point")
+    z = control[:, 2]
+    shut = len(xyb) > 2 and hypot(*(xyb[0, :2] - xyb[-1, :2])) <= 1e-9 * max(1.0, float(np.abs(xyb[:, :2]).max()))
+    return Shape(xyb[:-1] if shut else xyb, shut, float(z.min()), float(z.max()))
+
+
+def _lwpolyline(e: Dxf, _tol: float) -> Shape:
+    flip = _flat(e.dxf.extrusion)
+    rows = np.array(e.get_points("xyb"), dtype=np.float64).reshape(-1, 3)
+    z = flip * e.dxf.elevation
+    return _from_rows(rows * np.array([flip, 1.0, flip]), closed=bool(e.closed), z=(z, z))
+
+
+def _polyline(e: Dxf, _tol: float) -> Shape:
+    if e.is_poly_face_mesh or e.is_polygon_mesh:
+        raise UnusableEntityError("it is a mesh")
+    # flag 16: a control point of the spline frame, beside the vertices that draw the curve
+    vertices = [v for v in e.vertices if not v.dxf.flags & 16]
+    rows = np.array([(*v.dxf.location, v.dxf.get("bulge", 0.0)) for v in vertices], dtype=np.float64).reshape(-1, 4)
+    if len(rows) == 0:
+        raise UnusableEntityError("it has no vertices")
+    low, high = float(rows[:, 2].min()), float(rows[:, 2].max())
+    if e.is_3d_polyline:
+        flat = np.column_stack([rows[:, :2], np.zeros(len(rows))])
+        return _from_rows(flat, closed=bool(e.is_closed), z=(low, high))
+    flip = _flat(e.dxf.extrusion)
+    height = flip * (float(e.dxf.elevation.z) if e.dxf.hasattr("elevation") else low)
+    return _from_rows(rows[:, [0, 1, 3]] * np.array([flip, 1.0, flip]), closed=bool(e.is_closed), z=(height, height))
+
+
+def _from_rows(rows: Floats, *, closed: bool, z: tuple[float, float]) -> Shape:
+    if len(rows) < 2:
+        raise UnusableEntityError("it has fewer than two vertices")
+    if not np.isfinite(rows).all() or np.abs(rows[:, 2]).max() > 1e6:
+        raise UnusableEntityError("a coordinate or bulge is not a usable number")
+    count = len(rows) if closed else len(rows) - 1
+    step = np.hypot(*(np.roll(rows[:, :2], -1, axis=0) - rows[:, :2]).T)
+    # a closing point that repeats the first one, or a doubled vertex, makes a segment without length
+    keep = step > 1e-12 * max(1.0, float(np.abs(rows[:, :2]).max()))
+    if not closed:
+        keep[count] = True
+    if not keep[:count].any():
+        raise UnusableEntityError("it has no length")
+    rows = rows[keep]
+    if len(rows) < 2:
+        raise UnusableEntityError("it has no length")
+    if not closed:
+        rows = rows.copy()
+        rows[-1, 2] = 0.0
+    return Shape(split_arcs(rows, closed=closed), closed, *z)
+
+
+_MAKERS: dict[str, Callable[[Dxf, float], Shape]] = {
+    "LINE": _line,
+    "ARC": _arc,
+    "CIRCLE": _circle,
+    "ELLIPSE": _ellipse,
+    "SPLINE": _spline,
+    "LWPOLYLINE": _lwpolyline,
+    "POLYLINE": _polyline,
+}

@@ -1,0 +1,167 @@
+"""What a chain cannot do: branches, shared edges, crossings. Chords find the regions, exact arcs bound them.
+
+Curves are flattened, shapely finds the faces, and every edge of the result is mapped back to the line or arc it came
+from: between two points of the result runs the exact arc, not the chords.
+"""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+import numpy.typing as npt
+from shapely import STRtree, get_parts, linestrings, points, polygonize, unary_union
+from shapely.geometry import LineString, Polygon
+from shapely.geometry.base import BaseGeometry
+
+from flatprep.drawing.chain import Chain
+from flatprep.geom.bulge import Floats, Segments, points_along, segments, split_arcs
+from flatprep.model.drawing import Curve
+
+CHORD_MM = 0.002
+_GRID_MM = 1e-4
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Regions:
+    """What the planar graph says.
+
+    Attributes
+    ----------
+    rings : tuple of Chain
+        Boundaries of the regions, closed, exact arcs.
+    inner : tuple of Curve
+        Curves that lie inside a region and bound nothing: shared edges.
+    rest : tuple of Curve
+        Curves that neither bound nor lie inside a region.
+    """
+
+    rings: tuple[Chain, ...]
+    inner: tuple[Curve, ...]
+    rest: tuple[Curve, ...]
+
+
+def regions_of_net(curves: Sequence[Curve], join_mm: float) -> Regions:
+    """Take the outline of everything that a net of branching curves encloses.
+
+    Parameters
+    ----------
+    curves
+        Open ones that meet at branches.
+    join_mm
+        An end this near to another curve is taken to touch it.
+    """
+    lines = [LineString(points_along(c.xyb, closed=c.closed, chord_mm=CHORD_MM)) for c in curves]
+    lines = [_onto_neighbours(line, lines, join_mm) for line in lines]
+    faces = polygonize(get_parts(unary_union(lines, grid_size=_GRID_MM)).tolist())
+    whole = unary_union(get_parts(faces).tolist())
+    return _regions(whole, curves)
+
+
+def regions_of_rings(rings: Sequence[Chain]) -> tuple[Chain, ...]:
+    """Even-odd region of closed contours that touch or cross: neighbours join, what lies inside is cut out."""
+    curves = [Curve(r.xyb, closed=True, layer=r.layers[0], handle=h) for r in rings for h in r.handles[:1] or ("",)]
+    whole: BaseGeometry = Polygon()
+    for ring in rings:
+        shape = Polygon(points_along(ring.xyb, closed=True, chord_mm=CHORD_MM)).buffer(0)
+        whole = whole.symmetric_difference(shape, grid_size=_GRID_MM)
+    return _regions(whole, curves).rings
+
+
+def even_odd(ring: Chain) -> tuple[Chain, ...]:
+    """Contours of what a self-crossing contour encloses by the even-odd rule."""
+    line = LineString(np.vstack([p := points_along(ring.xyb, closed=True, chord_mm=CHORD_MM), p[:1]]))
+    faces = get_parts(polygonize(get_parts(unary_union(line)).tolist()))
+    curve = Curve(ring.xyb, closed=True, layer=ring.layers[0], handle=ring.handles[0] if ring.handles else "")
+    source = _Source([curve])
+    return tuple(source.ring(np.asarray(face.exterior.coords)[:-1], ring.layers) for face in faces if face.area > 1e-6)
+
+
+def _regions(whole: BaseGeometry, curves: Sequence[Curve]) -> Regions:
+    source = _Source(curves)
+    layers = tuple(sorted({c.layer for c in curves}))
+    areas = [p for p in get_parts(whole).tolist() if isinstance(p, Polygon) and p.area > 1e-6]
+    rings = tuple(
+        source.ring(np.asarray(edge.coords)[:-1], layers) for area in areas for edge in (area.exterior, *area.interiors)
+    )
+    inner: list[Curve] = []
+    rest: list[Curve] = []
+    boundary = unary_union([area.boundary for area in areas]) if areas else None
+    for curve in curves:
+        line = LineString(points_along(curve.xyb, closed=False, chord_mm=CHORD_MM))
+        middle = line.interpolate(0.5, normalized=True)
+        if boundary is not None and boundary.distance(middle) <= 5 * CHORD_MM:
+            continue
+        within = any(area.covers(middle) for area in areas)
+        (inner if within else rest).append(curve)
+    return Regions(rings, tuple(inner), tuple(rest))
+
+
+def _onto_neighbours(line: LineString, lines: Sequence[LineString], reach: float) -> LineString:
+    """Move dangling ends that stop just short of another line onto it."""
+    coords = np.asarray(line.coords).copy()
+    for k in (0, -1):
+        end = points(coords[k])
+        near = [other for other in lines if other is not line and 0.0 < other.distance(end) <= reach]
+        touched = any(other is not line and other.distance(end) == 0.0 for other in lines)
+        if near and not touched:
+            best = min(near, key=lambda other: float(other.distance(end)))
+            coords[k] = np.asarray(best.interpolate(best.project(end)).coords[0])
+    return LineString(coords)
+
+
+class _Source:
+    """Finds the line or arc that a chord of a result lies on, and cuts it exactly."""
+
+    def __init__(self, curves: Sequence[Curve]) -> None:
+        per_curve = [segments(c.xyb, closed=c.closed) for c in curves]
+        self._handles = [c.handle for c, s in zip(curves, per_curve, strict=True) for _ in range(len(s))]
+        names = Segments.__dataclass_fields__
+        self._seg = Segments(*(np.concatenate([getattr(s, k) for s in per_curve]) for k in names))
+        chords, owner = [], []
+        offset = 0
+        for seg in per_curve:
+            for k in range(len(seg)):
+                row = np.array([[*seg.start[k], seg.bulge[k]], [*seg.end[k], 0.0]])
+                p = points_along(row, closed=False, chord_mm=CHORD_MM)
+                chords.append(np.stack([p[:-1], p[1:]], axis=1))
+                owner += [offset + k] * (len(p) - 1)
+            offset += len(seg)
+        self._owner = np.array(owner)
+        self._tree = STRtree(linestrings(np.concatenate(chords)))
+
+    def ring(self, xy: Floats, layers: tuple[str, ...]) -> Chain:
+        """Exact contour through the points of a chord ring."""
+        nxt = np.roll(xy, -1, axis=0)
+        near = self._tree.query_nearest(points((xy + nxt) / 2.0), all_matches=False)[1]
+        own = self._owner[near]
+        breaks = np.flatnonzero(own != np.roll(own, 1))
+        if len(breaks) == 0:
+            breaks = np.array([0])
+        rows, handles = [], []
+        for k, first in enumerate(breaks):
+            last = breaks[(k + 1) % len(breaks)]
+            rows.append((*xy[first], self._bulge(int(own[first]), xy, int(first), int(last))))
+            handles.append(self._handles[int(own[first])])
+        return Chain(*_split(np.array(rows), tuple(handles)), layers=layers, closed=True)
+
+    def _bulge(self, segment: int, xy: Floats, first: int, last: int) -> float:
+        if not self._seg.is_arc[segment]:
+            return 0.0
+        n = len(xy)
+        run = xy[np.arange(first, first + ((last - first - 1) % n) + 2) % n]
+        centre = self._seg.centre[segment]
+        angles = np.unwrap(np.arctan2(*(run - centre).T[::-1]))
+        return float(np.tan((angles[-1] - angles[0]) / 4.0))
+
+
+def _split(rows: Floats, handles: tuple[str, ...]) -> tuple[Floats, tuple[str, ...]]:
+    """Halve arcs of more than a half circle, handles with them."""
+    if len(rows) == 1:
+        raise ValueError("a ring of one point")
+    out: list[npt.NDArray[np.float64]] = []
+    names: list[str] = []
+    for k in range(len(rows)):
+        piece = split_arcs(np.array([rows[k], [*rows[(k + 1) % len(rows), :2], 0.0]]), closed=False)
+        out.append(piece[:-1])
+        names += [handles[k]] * (len(piece) - 1)
+    return np.vstack(out), tuple(names)

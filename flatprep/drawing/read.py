@@ -1,0 +1,135 @@
+"""A drawing read: from a file to parts, with everything that was noticed on the way."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from pathlib import Path
+
+from flatprep.base.errors import DrawingError
+from flatprep.base.tolerances import DEFAULT, Tolerances
+from flatprep.base.units import MM_PER_UNIT
+from flatprep.drawing.assign import assign
+from flatprep.drawing.collect import Collected, CollectOptions, collect
+from flatprep.drawing.limits import LIMITS, ReadLimits
+from flatprep.drawing.load import UNIT_OF_CODE, Loaded, load
+from flatprep.drawing.outline import Outlines, outlines
+from flatprep.drawing.tree import nesting, parts_of, polygons_of
+from flatprep.model.drawing import Curve, Drawing, Fault, Role, UnitsFrom
+
+
+@dataclass(frozen=True, slots=True)
+class ReadOptions:
+    """What the user says about drawings.
+
+    Attributes
+    ----------
+    units
+        A key of `MM_PER_UNIT` that goes before every header, or None.
+    roles
+        Layer name -> role, before every guess.
+    """
+
+    units: str | None = None
+    roles: Mapping[str, Role] = field(default_factory=dict)
+    tol: Tolerances = DEFAULT
+    limits: ReadLimits = LIMITS
+
+
+def read(path: Path, options: ReadOptions | None = None, *, name: str | None = None) -> Drawing:
+    """Read a drawing.
+
+    Parameters
+    ----------
+    path
+        A DXF file.
+    options
+        See `ReadOptions`.
+    name
+        Name of its part; the file's stem by default.
+
+    Returns
+    -------
+    Drawing
+        Everything in mm.
+
+    Raises
+    ------
+    DrawingError
+        When the file cannot be read at all or passes a cap; the message begins with the path.
+    """
+    options = options or ReadOptions()
+    loaded = load(path, options.limits)
+    units, origin, faults = _units(loaded, options.units)
+    ask = CollectOptions(MM_PER_UNIT[units], options.roles, options.tol.curve_mm, options.limits)
+    try:
+        found = collect(loaded.document, ask)
+    except DrawingError as err:
+        raise DrawingError(f"{path}: {err.message}", err.remedy) from err
+    except (ArithmeticError, AttributeError, LookupError, RecursionError, TypeError, ValueError) as err:
+        # ezdxf meets damaged entities only when they are touched
+        raise DrawingError(
+            f"{path}: damaged ({str(err)[:120] or type(err).__name__})", "export the drawing again"
+        ) from err
+    if loaded.conflicts:
+        faults.append(Fault("unsupported-entity", detail="version-control conflict markers: the first side was read"))
+    cut, roles = _cut_curves(found)
+    shapes = outlines(cut, options.tol)
+    contours = [c.contour for c in shapes.rings]
+    polygons = polygons_of(contours, options.tol.chord_mm)
+    parts = parts_of(contours, nesting(polygons), name or path.stem)
+    given = assign(parts, _others(found, shapes))
+    return Drawing(
+        file=str(path),
+        units=units,
+        units_from=origin,
+        parts=given.parts,
+        faults=(*faults, *found.faults, *_guesses(found), *shapes.faults, *given.faults),
+        skipped=tuple(found.skipped),
+        texts=tuple(found.texts),
+        roles=roles,
+        recovered=loaded.recovered,
+        loose=shapes.loose,
+    )
+
+
+def _units(loaded: Loaded, said: str | None) -> tuple[str, UnitsFrom, list[Fault]]:
+    code = loaded.unit_code
+    if said is not None:
+        return said, UnitsFrom.OPTION, []
+    if code in UNIT_OF_CODE:
+        return UNIT_OF_CODE[code], UnitsFrom.HEADER, []
+    if code:
+        detail = f"its header names unit {code} of $INSUNITS, which no shop draws in; taken as mm"
+    else:
+        detail = "no header says which unit it is drawn in; taken as mm"
+    return "mm", UnitsFrom.ASSUMED, [Fault("unknown-units", detail=detail)]
+
+
+def _cut_curves(found: Collected) -> tuple[list[Curve], tuple[tuple[str, Role, str], ...]]:
+    """Curves to cut, and the role of every layer.
+
+    Where guesses leave nothing closed to cut, those guesses were wrong: everything on guessed layers is cut.
+    """
+    cut = [c for c, role in found.curves if role is Role.CUT]
+    if not cut and found.curves:
+        cut = [c for c, _ in found.curves if found.roles[c.layer].why != "as said"]
+        roles = {
+            n: g if g.why == "as said" else type(g)(Role.CUT, "no other layer is cut") for n, g in found.roles.items()
+        }
+        found.roles.update(roles)
+        found.curves[:] = [(c, found.roles[c.layer].role) for c, _ in found.curves]
+    return cut, tuple((n, g.role, g.why) for n, g in sorted(found.roles.items()))
+
+
+def _guesses(found: Collected) -> list[Fault]:
+    """Every layer that is not cut because of a guess, said once with the way to overrule it."""
+    return [
+        Fault("layer-role", detail=f"layer “{name}” is taken as {guess.role}: {guess.why}")
+        for name, guess in sorted(found.roles.items())
+        if guess.role is not Role.CUT and guess.why != "as said"
+    ]
+
+
+def _others(found: Collected, shapes: Outlines) -> list[tuple[Curve, Role]]:
+    """Curves that are not cut: those of other roles, and shared edges inside outlines."""
+    by_role: list[tuple[Curve, Role]] = [(c, role) for c, role in found.curves if role in (Role.MARK, Role.BEND)]
+    return by_role + [(c, Role.MARK) for c in shapes.inner]

@@ -1,0 +1,91 @@
+"""Entities without length and entities drawn twice: taken out before chaining, and told."""
+
+from collections.abc import Sequence
+
+import numpy as np
+
+from flatprep.base.tolerances import Tolerances
+from flatprep.geom import bulge
+from flatprep.geom.bulge import Floats
+from flatprep.model.drawing import Curve, Fault
+
+NO_LENGTH_MM = 1e-3
+"""What spans no more than this is a point: its ends are one (see `flatprep.drawing.ends`)."""
+_MANY = 20
+"""More doubles than this are told in one finding."""
+
+
+def tidy(curves: Sequence[Curve], tol: Tolerances) -> tuple[list[Curve], list[Fault]]:
+    """Take out zero lengths and exact doubles.
+
+    Returns
+    -------
+    curves, faults
+        The rest, in order, and what was taken out.
+    """
+    sized, faults = _without_zero_lengths(curves)
+    single, doubles = _without_doubles(sized, tol.same_mm / 2.0)
+    faults += told_doubles([(_middle(c.xyb, closed=c.closed), c.handle) for c in doubles])
+    return single, faults
+
+
+def told_doubles(doubles: Sequence[tuple[tuple[float, float], str]]) -> list[Fault]:
+    """Faults for doubles at these places, (place, handle) each; many are told in one."""
+    if len(doubles) > _MANY:
+        at, _ = doubles[0]
+        handles = tuple(h for _, h in doubles[:_MANY])
+        return [Fault("duplicate-line", at, None, handles, f"{len(doubles)} lines are drawn twice, the first one here")]
+    return [Fault("duplicate-line", at, None, (handle,), "a line is drawn twice") for at, handle in doubles]
+
+
+def _without_zero_lengths(curves: Sequence[Curve]) -> tuple[list[Curve], list[Fault]]:
+    kept: list[Curve] = []
+    empty: list[Curve] = []
+    for curve in curves:
+        spread = float(np.ptp(curve.xyb[:, :2], axis=0).max()) if len(curve.xyb) else 0.0
+        (kept if spread > NO_LENGTH_MM else empty).append(curve)
+    if not empty:
+        return kept, []
+    first = empty[0]
+    what = "an entity without length" if len(empty) == 1 else f"{len(empty)} entities without length, the first one"
+    at = (float(first.xyb[0, 0]), float(first.xyb[0, 1]))
+    return kept, [Fault("tiny-segment", at, 0.0, tuple(c.handle for c in empty[:_MANY]), what)]
+
+
+def _without_doubles(curves: Sequence[Curve], tol: float) -> tuple[list[Curve], list[Curve]]:
+    """Split off open curves whose ends and middle coincide with an earlier one's, whichever way they run."""
+    seen: dict[tuple[int, ...], list[Floats]] = {}
+    kept, doubles = [], []
+    for curve in curves:
+        if curve.closed:
+            kept.append(curve)
+            continue
+        sign = _signature(curve.xyb)
+        # two grids, half a cell apart: neighbours share a cell of the one or the other in every coordinate but few
+        keys = [(grid, *np.floor(sign / (64 * tol) + grid / 2.0).astype(np.int64).tolist()) for grid in (0, 1)]
+        if any(np.abs(other - sign).max() <= tol for key in keys for other in seen.get(key, ())):
+            doubles.append(curve)
+            continue
+        kept.append(curve)
+        for key in keys:
+            seen.setdefault(key, []).append(sign)
+    return kept, doubles
+
+
+def _signature(xyb: Floats) -> Floats:
+    a, z = xyb[0, :2], xyb[-1, :2]
+    if (a[0], a[1]) > (z[0], z[1]):
+        a, z = z, a
+    return np.concatenate([a, z, _middle(xyb, closed=False), [bulge.length(xyb, closed=False)]])
+
+
+def _middle(xyb: Floats, *, closed: bool) -> tuple[float, float]:
+    """Return the point halfway along the middle segment."""
+    seg = bulge.segments(xyb, closed=closed)
+    k = len(seg) // 2
+    if not seg.is_arc[k]:
+        x, y = (seg.start[k] + seg.end[k]) / 2.0
+    else:
+        a = seg.angle[k] + seg.sweep[k] / 2.0
+        x, y = seg.centre[k] + seg.radius[k] * np.array([np.cos(a), np.sin(a)])
+    return float(x), float(y)
