@@ -14,6 +14,9 @@ from flatprep.model.drawing import Fault
 
 _CHORD_MM = 0.01
 _TOUCH_AREA_MM2 = 1e-3
+_TOUCH_MM = 0.005
+_EDGE_MM = 0.5
+"""Borders that run within `_TOUCH_MM` of each other for this long share an edge; crossing ones do not."""
 _PLACE = re.compile(r"\[(-?[\d.]+(?:[eE][+-]?\d+)?) (-?[\d.]+(?:[eE][+-]?\d+)?)\]")
 
 
@@ -50,22 +53,38 @@ def crossings(rings: Sequence[Chain]) -> Crossings:
     selfish = frozenset(np.flatnonzero(~shapely.is_valid(shapes)).tolist())
     for i in sorted(selfish):
         faults.append(Fault("self-crossing", _where(shapes[i]), None, _handles(rings[i]), "the outline crosses itself"))
-    sound = [i for i in range(len(rings)) if i not in selfish]
+    sound = np.array([i for i in range(len(rings)) if i not in selfish], dtype=np.int64)
     shared: list[tuple[int, int]] = []
+    crossed: list[tuple[int, int]] = []
     borders = shapely.boundary(shapes[sound])
-    a, b = STRtree(borders).query(borders, predicate="intersects")
-    for i, j in sorted((sound[p], sound[q]) for p, q in zip(a.tolist(), b.tolist(), strict=True) if p < q):
-        edge = shapely.intersection(shapely.boundary(shapes[i]), shapely.boundary(shapes[j]))
-        if _overlap(shapes[i], shapes[j]):
-            at = edge.representative_point() if edge.length == 0 else edge.centroid
-            both = _handles(rings[i]) + _handles(rings[j])
-            faults.append(Fault("self-crossing", (at.x, at.y), None, both, "two outlines cross each other"))
-        elif edge.length > 10 * _CHORD_MM:
+    a, b = STRtree(borders).query(borders, predicate="dwithin", distance=_TOUCH_MM)
+    for i, j in sorted((int(sound[p]), int(sound[q])) for p, q in zip(a, b, strict=True) if p < q):
+        edge = _common_edge(shapes[i], shapes[j])
+        if edge is not None:
             shared.append((i, j))
-            at = edge.interpolate(0.5, normalized=True) if edge.geom_type == "LineString" else edge.centroid
-            both = _handles(rings[i]) + _handles(rings[j])
-            faults.append(Fault("duplicate-line", (at.x, at.y), None, both, "two outlines share an edge: taken as one"))
-    return Crossings(selfish, _clusters(shared), tuple(faults))
+        elif _overlap(shapes[i], shapes[j]):
+            crossed.append((i, j))
+    clusters = _clusters(shared)
+    for i, j in crossed:
+        place = shapely.intersection(shapely.boundary(shapes[i]), shapely.boundary(shapes[j])).representative_point()
+        both = _handles(rings[i]) + _handles(rings[j])
+        faults.append(Fault("self-crossing", (place.x, place.y), None, both, "two outlines cross each other"))
+    for i, j in shared:
+        place = _common_edge(shapes[i], shapes[j])
+        at = None if place is None else (place.x, place.y)
+        both = _handles(rings[i]) + _handles(rings[j])
+        faults.append(Fault("duplicate-line", at, None, both, "two outlines share an edge: taken as one"))
+    return Crossings(selfish, clusters, tuple(faults))
+
+
+def _common_edge(a: shapely.Polygon, b: shapely.Polygon) -> shapely.Point | None:
+    """Middle of the stretch along which two borders run together, None where they only meet at points or cross."""
+    near = shapely.intersection(shapely.boundary(a), shapely.buffer(shapely.boundary(b), _TOUCH_MM, quad_segs=1))
+    pieces = [g for g in shapely.get_parts(near).tolist() if g.length > _EDGE_MM]
+    if not pieces:
+        return None
+    longest = max(pieces, key=lambda g: float(g.length))
+    return longest.interpolate(0.5, normalized=True)
 
 
 def _overlap(a: shapely.Polygon, b: shapely.Polygon) -> bool:

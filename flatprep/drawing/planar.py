@@ -19,6 +19,7 @@ from flatprep.model.drawing import Curve
 
 CHORD_MM = 0.002
 _GRID_MM = 1e-4
+_SNAP_MM = 1e-3
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -58,12 +59,14 @@ def regions_of_net(curves: Sequence[Curve], join_mm: float) -> Regions:
 
 
 def regions_of_rings(rings: Sequence[Chain]) -> tuple[Chain, ...]:
-    """Even-odd region of closed contours that touch or cross: neighbours join, what lies inside is cut out."""
-    curves = [Curve(r.xyb, closed=True, layer=r.layers[0], handle=h) for r in rings for h in r.handles[:1] or ("",)]
+    """Join closed contours that share edges; one that lies in another, flush with its edge, is cut out of it."""
+    curves = [Curve(r.xyb, closed=True, layer=r.layers[0], handle=r.handles[0] if r.handles else "") for r in rings]
+    shapes = [Polygon(points_along(r.xyb, closed=True, chord_mm=CHORD_MM)).buffer(0) for r in rings]
+    shapes.sort(key=lambda s: -s.area)
     whole: BaseGeometry = Polygon()
-    for ring in rings:
-        shape = Polygon(points_along(ring.xyb, closed=True, chord_mm=CHORD_MM)).buffer(0)
-        whole = whole.symmetric_difference(shape, grid_size=_GRID_MM)
+    for shape in shapes:
+        inside = whole.intersection(shape).area > 0.5 * shape.area
+        whole = (whole.difference if inside else whole.union)(shape, grid_size=_SNAP_MM)
     return _regions(whole, curves).rings
 
 
@@ -128,6 +131,8 @@ class _Source:
             offset += len(seg)
         self._owner = np.array(owner)
         self._tree = STRtree(linestrings(np.concatenate(chords)))
+        self._vertices = np.vstack([self._seg.start, self._seg.end])
+        self._corners = STRtree(points(self._vertices))
 
     def ring(self, xy: Floats, layers: tuple[str, ...]) -> Chain:
         """Exact contour through the points of a chord ring."""
@@ -137,12 +142,20 @@ class _Source:
         breaks = np.flatnonzero(own != np.roll(own, 1))
         if len(breaks) == 0:
             breaks = np.array([0])
+        xy = self._snapped(xy)
         rows, handles = [], []
         for k, first in enumerate(breaks):
             last = breaks[(k + 1) % len(breaks)]
             rows.append((*xy[first], self._bulge(int(own[first]), xy, int(first), int(last))))
             handles.append(self._handles[int(own[first])])
         return Chain(*_split(np.array(rows), tuple(handles)), layers=layers, closed=True)
+
+    def _snapped(self, xy: Floats) -> Floats:
+        """Points put back on the vertices they were before shapely rounded them to its grid."""
+        point, corner = self._corners.query_nearest(points(xy), max_distance=2 * _SNAP_MM, all_matches=False)
+        out = xy.copy()
+        out[point] = self._vertices[corner]
+        return out
 
     def _bulge(self, segment: int, xy: Floats, first: int, last: int) -> float:
         if not self._seg.is_arc[segment]:

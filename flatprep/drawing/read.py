@@ -9,11 +9,12 @@ from flatprep.base.tolerances import DEFAULT, Tolerances
 from flatprep.base.units import MM_PER_UNIT
 from flatprep.drawing.assign import assign
 from flatprep.drawing.collect import Collected, CollectOptions, collect
+from flatprep.drawing.frame import frame_index
 from flatprep.drawing.limits import LIMITS, ReadLimits
 from flatprep.drawing.load import UNIT_OF_CODE, Loaded, load
 from flatprep.drawing.outline import Outlines, outlines
 from flatprep.drawing.tree import nesting, parts_of, polygons_of
-from flatprep.model.drawing import Curve, Drawing, Fault, Role, UnitsFrom
+from flatprep.model.drawing import Contour, Curve, Drawing, Fault, Role, UnitsFrom
 
 
 @dataclass(frozen=True, slots=True)
@@ -73,16 +74,16 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         faults.append(Fault("unsupported-entity", detail="version-control conflict markers: the first side was read"))
     cut, roles = _cut_curves(found)
     shapes = outlines(cut, options.tol)
-    contours = [c.contour for c in shapes.rings]
-    polygons = polygons_of(contours, options.tol.chord_mm)
-    parts = parts_of(contours, nesting(polygons), name or path.stem)
+    contours, sheet_faults = _without_frame([c.contour for c in shapes.rings], options.tol)
+    nest = nesting(polygons_of(contours, options.tol.chord_mm))
+    parts = parts_of(contours, nest, name or path.stem)
     given = assign(parts, _others(found, shapes))
     return Drawing(
         file=str(path),
         units=units,
         units_from=origin,
         parts=given.parts,
-        faults=(*faults, *found.faults, *_guesses(found), *shapes.faults, *given.faults),
+        faults=(*faults, *found.faults, *_guesses(found), *shapes.faults, *sheet_faults, *given.faults),
         skipped=tuple(found.skipped),
         texts=tuple(found.texts),
         roles=roles,
@@ -118,6 +119,16 @@ def _cut_curves(found: Collected) -> tuple[list[Curve], tuple[tuple[str, Role, s
         found.roles.update(roles)
         found.curves[:] = [(c, found.roles[c.layer].role) for c, _ in found.curves]
     return cut, tuple((n, g.role, g.why) for n, g in sorted(found.roles.items()))
+
+
+def _without_frame(contours: list[Contour], tol: Tolerances) -> tuple[list[Contour], list[Fault]]:
+    frame = frame_index(contours, nesting(polygons_of(contours, tol.chord_mm)))
+    if frame is None:
+        return contours, []
+    x0, y0, x1, y1 = contours[frame].bounds
+    detail = f"the rectangle {x1 - x0:g} x {y1 - y0:g} mm around everything is taken as the sheet's border, not cut"
+    told = Fault("layer-role", (x0, y0), None, contours[frame].distinct_handles, detail)
+    return contours[:frame] + contours[frame + 1 :], [told]
 
 
 def _guesses(found: Collected) -> list[Fault]:
