@@ -1,0 +1,130 @@
+"""Where every piece is during the search, and how heavily each pair's collision weighs."""
+
+from collections.abc import Sequence
+from typing import NamedTuple
+
+import numpy as np
+
+from flatprep.geom.bulge import Floats
+from flatprep.nest._jit import kernel
+from flatprep.nest.outlines import Ints, Outlines
+from flatprep.nest.tables import Tables, pair_loss
+
+
+class Board(NamedTuple):
+    """The pieces, n of them; fixed ones (the surroundings of a remnant) come last.
+
+    Attributes
+    ----------
+    variant, home : ndarray, shape (n,), int64
+        Variant each piece is laid in, and the field's rectangle it is in.
+    at : ndarray, shape (n, 2), float64
+        Origin of each piece, mm.
+    left, right, low, high : ndarray, shape (n,), float64
+        Box of each piece, mm.
+    loss, weight : ndarray, shape (n, n), float64
+        Loss of each pair (mm², 0: no overlap) and its weight (1 or more); symmetric.
+    rect : ndarray, shape (k, 4), float64
+        The field: rectangles x0, y0, x1, y1 that hold pieces, mm.
+    movable : ndarray, shape (1,), int64
+        Number of pieces that may move.
+    """
+
+    variant: Ints
+    home: Ints
+    at: Floats
+    left: Floats
+    right: Floats
+    low: Floats
+    high: Floats
+    loss: Floats
+    weight: Floats
+    rect: Floats
+    movable: Ints
+
+
+def new_board(variants: Sequence[int], rect: Floats, fixed: int = 0) -> Board:
+    """Board of pieces that lie nowhere yet."""
+    n = len(variants)
+    line = [np.zeros(n) for _ in range(4)]
+    return Board(
+        np.array(variants, dtype=np.int64),
+        np.zeros(n, dtype=np.int64),
+        np.zeros((n, 2)),
+        *line,
+        np.zeros((n, n)),
+        np.ones((n, n)),
+        np.array(rect, dtype=np.float64),
+        np.array([n - fixed], dtype=np.int64),
+    )
+
+
+@kernel
+def put(outlines: Outlines, board: Board, i: int, v: int, x: float, y: float) -> None:
+    """Lay piece i in variant v at (x, y); losses are left as they are."""
+    board.variant[i] = v
+    board.at[i, 0] = x
+    board.at[i, 1] = y
+    board.left[i] = x + outlines.box[v, 0]
+    board.low[i] = y + outlines.box[v, 1]
+    board.right[i] = x + outlines.box[v, 2]
+    board.high[i] = y + outlines.box[v, 3]
+
+
+@kernel
+def weighted_loss(
+    outlines: Outlines, tables: Tables, board: Board, i: int, v: int, x: float, y: float, limit: float
+) -> float:
+    """Weighted loss (mm²) of piece i in variant v at (x, y); may stop as soon as it is above `limit`."""
+    left, low = x + outlines.box[v, 0], y + outlines.box[v, 1]
+    right, high = x + outlines.box[v, 2], y + outlines.box[v, 3]
+    total = 0.0
+    for j in range(len(board.variant)):
+        if board.left[j] < right and board.right[j] > left and board.low[j] < high and board.high[j] > low and j != i:
+            loss = pair_loss(outlines, tables, v, board.variant[j], board.at[j, 0] - x, board.at[j, 1] - y)
+            if loss > 0.0:
+                total += loss * board.weight[i, j]
+                if total > limit:
+                    return total
+    return total
+
+
+@kernel
+def settle(outlines: Outlines, tables: Tables, board: Board, i: int) -> None:
+    """Compute the losses of piece i with all others anew."""
+    x, y, v = board.at[i, 0], board.at[i, 1], board.variant[i]
+    for j in range(len(board.variant)):
+        loss = 0.0
+        if (
+            board.left[j] < board.right[i]
+            and board.right[j] > board.left[i]
+            and board.low[j] < board.high[i]
+            and board.high[j] > board.low[i]
+            and j != i
+        ):
+            loss = pair_loss(outlines, tables, v, board.variant[j], board.at[j, 0] - x, board.at[j, 1] - y)
+        board.loss[i, j] = loss
+        board.loss[j, i] = loss
+
+
+@kernel
+def settle_all(outlines: Outlines, tables: Tables, board: Board) -> float:
+    """Compute every loss anew and return their sum, mm²."""
+    total = 0.0
+    for i in range(board.movable[0]):
+        settle(outlines, tables, board, i)
+    for i in range(board.movable[0]):
+        for j in range(i):
+            total += board.loss[i, j]
+        for j in range(board.movable[0], len(board.variant)):
+            total += board.loss[i, j]
+    return total
+
+
+@kernel
+def is_colliding(board: Board, i: int) -> bool:
+    """Tell whether piece i overlaps another."""
+    for j in range(len(board.variant)):
+        if board.loss[i, j] > 0.0:
+            return True
+    return False

@@ -1,0 +1,166 @@
+"""Two outlines against each other: do they overlap, how far are they apart, how badly do they collide."""
+
+import math
+
+from flatprep.nest._jit import kernel
+from flatprep.nest.outlines import Outlines
+
+# Floor of the loss of a collision: this share of the larger diameter, times the smaller piece's mean side.
+FLOOR_SHARE = 0.002
+# Circles this much apart (share of the larger diameter) still push each other, ever more weakly.
+REACH_SHARE = 0.01
+# ... and not at all from this many such distances on.
+FADE = 5.0
+
+
+@kernel
+def is_inside(outlines: Outlines, v: int, px: float, py: float) -> bool:
+    """Tell whether a point (mm, in the frame of variant v) lies in its material: the even-odd rule."""
+    odd = False
+    for e in range(outlines.edge_at[v], outlines.edge_at[v + 1]):
+        y0 = outlines.edge[e, 1]
+        y1 = outlines.edge[e, 3]
+        if (y0 > py) != (y1 > py):
+            x0 = outlines.edge[e, 0]
+            if px < x0 + (py - y0) * (outlines.edge[e, 2] - x0) / (y1 - y0):
+                odd = not odd
+    return odd
+
+
+@kernel
+def edges_cross(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> bool:
+    """Tell whether an edge of variant a crosses one of variant b moved by (dx, dy) mm."""
+    edge = outlines.edge
+    left, low = outlines.box[b, 0] + dx, outlines.box[b, 1] + dy
+    right, high = outlines.box[b, 2] + dx, outlines.box[b, 3] + dy
+    for i in range(outlines.edge_at[a], outlines.edge_at[a + 1]):
+        x0, y0, x1, y1 = edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]
+        i_left, i_right = min(x0, x1), max(x0, x1)
+        i_low, i_high = min(y0, y1), max(y0, y1)
+        if i_right < left or i_left > right or i_high < low or i_low > high:
+            continue
+        ux, uy = x1 - x0, y1 - y0
+        sx, sy = x0 - dx, y0 - dy
+        for j in range(outlines.edge_at[b], outlines.edge_at[b + 1]):
+            cx, cy, ex, ey = edge[j, 0], edge[j, 1], edge[j, 2], edge[j, 3]
+            c_left = ux * (cy - sy) - uy * (cx - sx) > 0.0
+            e_left = ux * (ey - sy) - uy * (ex - sx) > 0.0
+            if c_left != e_left:
+                vx, vy = ex - cx, ey - cy
+                a_left = vx * (sy - cy) - vy * (sx - cx) > 0.0
+                b_left = vx * (sy + uy - cy) - vy * (sx + ux - cx) > 0.0
+                if a_left != b_left:
+                    return True
+    return False
+
+
+@kernel
+def overlap(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> bool:
+    """Tell whether variant b, its origin (dx, dy) mm from that of variant a, shares material with it; exact."""
+    if (
+        outlines.box[a, 2] <= outlines.box[b, 0] + dx
+        or outlines.box[b, 2] + dx <= outlines.box[a, 0]
+        or outlines.box[a, 3] <= outlines.box[b, 1] + dy
+        or outlines.box[b, 3] + dy <= outlines.box[a, 1]
+    ):
+        return False
+    if edges_cross(outlines, a, b, dx, dy):
+        return True
+    at_a = outlines.edge_at[a]
+    at_b = outlines.edge_at[b]
+    if is_inside(outlines, a, outlines.edge[at_b, 0] + dx, outlines.edge[at_b, 1] + dy):
+        return True
+    return is_inside(outlines, b, outlines.edge[at_a, 0] - dx, outlines.edge[at_a, 1] - dy)
+
+
+@kernel
+def squared_distance(px: float, py: float, x0: float, y0: float, x1: float, y1: float) -> float:
+    """Square of the distance of a point from a segment, mm²."""
+    ux, uy = x1 - x0, y1 - y0
+    wx, wy = px - x0, py - y0
+    along = wx * ux + wy * uy
+    length = ux * ux + uy * uy
+    if along <= 0.0:
+        return wx * wx + wy * wy
+    if along >= length:
+        return (px - x1) * (px - x1) + (py - y1) * (py - y1)
+    cross = wx * uy - wy * ux
+    return cross * cross / length
+
+
+@kernel
+def _corners_from_edges(outlines: Outlines, a: int, b: int, dx: float, dy: float, cap: float) -> float:
+    """Least squared distance, at most cap², of the corners of b moved by (dx, dy) from the edges of a."""
+    edge = outlines.edge
+    best = cap * cap
+    for j in range(outlines.edge_at[b], outlines.edge_at[b + 1]):
+        px, py = edge[j, 0] + dx, edge[j, 1] + dy
+        if (
+            px < outlines.box[a, 0] - cap
+            or px > outlines.box[a, 2] + cap
+            or py < outlines.box[a, 1] - cap
+            or py > outlines.box[a, 3] + cap
+        ):
+            continue
+        for i in range(outlines.edge_at[a], outlines.edge_at[a + 1]):
+            best = min(best, squared_distance(px, py, edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]))
+    return best
+
+
+@kernel
+def gap(outlines: Outlines, a: int, b: int, dx: float, dy: float, cap: float) -> float:
+    """Distance of two outlines that do not cross, mm, or `cap` where they are farther apart than that."""
+    one = _corners_from_edges(outlines, a, b, dx, dy, cap)
+    two = _corners_from_edges(outlines, b, a, -dx, -dy, cap)
+    return math.sqrt(min(one, two))
+
+
+@kernel
+def depth(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> float:
+    """Lower bound of the move that frees b from a, mm: the deepest overlap of two inner circles, 0 if none."""
+    deepest = 0.0
+    for i in range(outlines.pole_at[a], outlines.pole_at[a + 1]):
+        for j in range(outlines.pole_at[b], outlines.pole_at[b + 1]):
+            ux = outlines.pole[j, 0] + dx - outlines.pole[i, 0]
+            uy = outlines.pole[j, 1] + dy - outlines.pole[i, 1]
+            reach = outlines.pole[i, 2] + outlines.pole[j, 2] - deepest
+            if reach > 0.0 and ux * ux + uy * uy < reach * reach:
+                deepest = outlines.pole[i, 2] + outlines.pole[j, 2] - math.sqrt(ux * ux + uy * uy)
+    return deepest
+
+
+@kernel
+def collision_loss(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> float:
+    """How bad a collision is: a smooth stand-in for the root of the overlap's area, weighed by the pieces' size.
+
+    Returns
+    -------
+    float
+        mm²; never 0, whatever the distance: whether the two collide at all is for `overlap` to tell.
+
+    Notes
+    -----
+    The area is the sum over pairs of inner circles of their depth times the smaller radius; depth falls off
+    smoothly as e²/(2e - depth) below e, so that a shallow collision, too, knows the way out (the measure of
+    overlap by circles: Imamichi and Nagamochi 2007). The root makes many slight collisions dearer than one
+    deep one, the fourth roots of the hulls' areas bring pieces of all sizes to one scale.
+    """
+    sa, sb = outlines.shape[a], outlines.shape[b]
+    larger = max(outlines.size[sa, 1], outlines.size[sb, 1])
+    reach = REACH_SHARE * larger
+    area = FLOOR_SHARE * larger * min(outlines.size[sa, 2], outlines.size[sb, 2])
+    for i in range(outlines.pole_at[a], outlines.pole_at[a + 1]):
+        px, py = outlines.pole[i, 0] - dx, outlines.pole[i, 1] - dy
+        radius = outlines.pole[i, 2]
+        for j in range(outlines.pole_at[b], outlines.pole_at[b + 1]):
+            ux = outlines.pole[j, 0] - px
+            uy = outlines.pole[j, 1] - py
+            both = radius + outlines.pole[j, 2]
+            far = ux * ux + uy * uy
+            if far > (both + FADE * reach) * (both + FADE * reach):
+                continue
+            deep = both - math.sqrt(far)
+            if deep < reach:
+                deep = reach * reach / (2.0 * reach - deep)
+            area += deep * min(radius, outlines.pole[j, 2])
+    return math.sqrt(area) * outlines.size[sa, 0] * outlines.size[sb, 0]

@@ -1,0 +1,164 @@
+"""Shapes at each allowed turn, packed into flat arrays that the kernels read."""
+
+from collections.abc import Iterable, Sequence
+from typing import NamedTuple
+
+import numpy as np
+import numpy.typing as npt
+
+from flatprep.geom.bulge import Floats
+from flatprep.nest.poles import inner_circles
+from flatprep.nest.shapes import Shape
+
+Ints = npt.NDArray[np.int64]
+
+# Outlines are drawn in by this much (mm), so that touching pieces are apart and every test is in general position.
+# Two pieces that the search takes for free may therefore overlap by twice this, far below the 1e-6 mm of the verifier.
+HAIR_MM = 2e-7
+# The tip of a sharp corner is drawn in by at most this many hairs.
+LONGEST_MITRE = 1000.0
+
+
+class Outlines(NamedTuple):
+    """Variants: a shape at one turn, mirrored or not, about its own origin. v counts variants, s shapes.
+
+    Attributes
+    ----------
+    edge : ndarray, shape (edges, 4), float64
+        x0, y0, x1, y1 in mm, material on the left; the edges of variant v are rows edge_at[v] to edge_at[v + 1].
+    pole : ndarray, shape (poles, 3), float64
+        Centre x, y and radius (mm) of circles inside the material, largest first; rows pole_at[v] to pole_at[v + 1].
+    box : ndarray, shape (v, 4), float64
+        Least x, least y, greatest x, greatest y of the true outline, mm.
+    turn : ndarray, shape (v, 3), float64
+        Cosine and sine of the turn, and the turn in degrees as it was given.
+    shape, mirrored : ndarray, shape (v,), int64
+    first : ndarray, shape (s + 1,), int64
+        Variants of shape s are first[s] to first[s + 1].
+    size : ndarray, shape (s, 4), float64
+        Fourth root of the hull's area (mm^0.5), diameter (mm), geometric mean and smaller one of the box's sides (mm).
+    """
+
+    edge: Floats
+    edge_at: Ints
+    pole: Floats
+    pole_at: Ints
+    box: Floats
+    turn: Floats
+    shape: Ints
+    mirrored: Ints
+    first: Ints
+    size: Floats
+
+
+def rings_of(shape: Shape) -> list[Floats]:
+    """Rings with the material on their left: the outline anticlockwise, windows clockwise."""
+    turned = [(shape.outer, 1.0), *((h, -1.0) for h in shape.holes)]
+    return [np.ascontiguousarray(r if signed_area(r) * side > 0.0 else r[::-1]) for r, side in turned]
+
+
+def signed_area(ring: Floats) -> float:
+    """Area of a ring in mm², positive when it runs anticlockwise (the shoelace formula about its first point)."""
+    x, y = (ring - ring[0]).T
+    return float(0.5 * np.sum(x * np.roll(y, -1) - np.roll(x, -1) * y))
+
+
+def drawn_in(ring: Floats, by_mm: float = HAIR_MM) -> Floats:
+    """Ring moved to its left by a hair, corners mitred."""
+    along = np.roll(ring, -1, axis=0) - ring
+    along /= np.linalg.norm(along, axis=1, keepdims=True)
+    left = np.column_stack([-along[:, 1], along[:, 0]])
+    both = left + np.roll(left, 1, axis=0)
+    stretch = 1.0 / np.maximum(0.5 * np.sum(both * both, axis=1), 1.0 / LONGEST_MITRE)
+    moved: Floats = ring + by_mm * both * stretch[:, None]
+    return moved
+
+
+def turned(points: Floats, turn_deg: float, *, mirrored: bool) -> Floats:
+    """Points mirrored (x -> -x) if asked, then turned anticlockwise about (0, 0); quarter turns are exact."""
+    c, s = cos_sin(turn_deg)
+    x = -points[:, 0] if mirrored else points[:, 0]
+    return np.column_stack([c * x - s * points[:, 1], s * x + c * points[:, 1]])
+
+
+def cos_sin(turn_deg: float) -> tuple[float, float]:
+    """Cosine and sine, exact at quarter turns."""
+    quarters, rest = divmod(turn_deg % 360.0, 90.0)
+    if rest == 0.0:
+        return ((1.0, 0.0), (0.0, 1.0), (-1.0, 0.0), (0.0, -1.0))[int(quarters) % 4]
+    return float(np.cos(np.radians(turn_deg))), float(np.sin(np.radians(turn_deg)))
+
+
+def edges_of(rings: Iterable[Floats]) -> Floats:
+    """Edges x0, y0, x1, y1 of closed rings, shape (n, 4)."""
+    return np.vstack([np.hstack([ring, np.roll(ring, -1, axis=0)]) for ring in rings])
+
+
+def hull_area(points: Floats) -> float:
+    """Area of the convex hull, mm² (Andrew's monotone chain)."""
+    order = points[np.lexsort((points[:, 1], points[:, 0]))]
+    chain: list[Floats] = []
+    for run in (order, order[::-1]):
+        start = len(chain)
+        for p in run:
+            while len(chain) >= start + 2 and _turns_right(chain[-2], chain[-1], p):
+                chain.pop()
+            chain.append(p)
+        chain.pop()
+    return abs(signed_area(np.array(chain))) if len(chain) >= 3 else 0.0
+
+
+def _turns_right(a: Floats, b: Floats, c: Floats) -> bool:
+    return bool((b[0] - a[0]) * (c[1] - a[1]) - (b[1] - a[1]) * (c[0] - a[0]) <= 0.0)
+
+
+def size_of(shape: Shape) -> tuple[float, float, float, float]:
+    """Return the row of `Outlines.size` for a shape."""
+    sides = np.ptp(shape.outer, axis=0)
+    across = np.linalg.norm(shape.outer[:, None] - shape.outer[None], axis=2).max() if len(shape.outer) < 400 else None
+    diameter = float(across if across is not None else np.hypot(*sides))
+    return hull_area(shape.outer) ** 0.25, diameter, float(np.sqrt(sides[0] * sides[1])), float(sides.min())
+
+
+def pack(shapes: Sequence[Shape], turns: Sequence[Sequence[float]]) -> Outlines:
+    """Pack each shape at each of its turns, once for every mirror state it may have.
+
+    Parameters
+    ----------
+    shapes
+        The shapes.
+    turns
+        For each of them, the turns to pack (degrees).
+    """
+    edges, poles, boxes, turn, kind, flipped, first = [], [], [], [], [], [], [0]
+    for s, (shape, angles) in enumerate(zip(shapes, turns, strict=True)):
+        rings = rings_of(shape)
+        inner = [drawn_in(r) for r in rings]
+        circles = inner_circles(edges_of(rings))
+        for mirrored in shape.mirror:
+            for angle in angles:
+                outline = turned(shape.outer, angle, mirrored=mirrored)
+                moved = [turned(r, angle, mirrored=mirrored) for r in inner]
+                edges.append(edges_of([r[::-1] for r in moved] if mirrored else moved))
+                poles.append(np.column_stack([turned(circles[:, :2], angle, mirrored=mirrored), circles[:, 2]]))
+                boxes.append(np.concatenate([outline.min(axis=0), outline.max(axis=0)]))
+                turn.append((*cos_sin(angle), angle))
+                kind.append(s)
+                flipped.append(int(mirrored))
+        first.append(len(kind))
+    return Outlines(
+        edge=np.ascontiguousarray(np.vstack(edges)),
+        edge_at=_starts(edges),
+        pole=np.ascontiguousarray(np.vstack(poles)),
+        pole_at=_starts(poles),
+        box=np.array(boxes),
+        turn=np.array(turn),
+        shape=np.array(kind, dtype=np.int64),
+        mirrored=np.array(flipped, dtype=np.int64),
+        first=np.array(first, dtype=np.int64),
+        size=np.array([size_of(s) for s in shapes]),
+    )
+
+
+def _starts(groups: Sequence[Floats]) -> Ints:
+    return np.cumsum([0, *(len(g) for g in groups)]).astype(np.int64)
