@@ -1,8 +1,80 @@
 """The root of the command line: commands are imported when they run; errors become two lines and a status."""
 
+import importlib
+import os
 import sys
+
+import click
+
+from flatprep import __version__
+from flatprep.base.errors import ExitStatus, FlatprepError
+
+_COMMANDS = {
+    "alternatives": "what else parts could be made of: thickness, mass, cost, and whether it can be cut",
+    "checklist": "the bench work per part: drill, ream, countersink, tap, bend, deburr, in order",
+    "compare": "what changed between two revisions of a drawing",
+    "draft": "write a job file from a folder of drawings",
+    "estimate": "mass, cut length, pierces and material cost",
+    "lint": "check drawings against material, thickness and process",
+    "lookup": "ask the hardware and material tables",
+    "nest": "lay a job's parts on its stock",
+    "prepare": "everything into one folder, with report.html",
+    "repair": "write a clean drawing out of an untidy one",
+    "rules": "list the rules, and the limits in force",
+}
+
+
+class Root(click.Group):
+    """Finds commands by module name, so that `--help` loads none of them."""
+
+    def list_commands(self, ctx: click.Context) -> list[str]:
+        """Names in alphabetical order."""
+        return sorted(_COMMANDS)
+
+    def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command | None:
+        """Import a command when it is run."""
+        if cmd_name not in _COMMANDS:
+            return None
+        module = importlib.import_module(f"flatprep.cli.{cmd_name}")
+        command: click.Command = module.command
+        return command
+
+    def format_commands(self, ctx: click.Context, formatter: click.HelpFormatter) -> None:
+        """List the commands without loading them."""
+        with formatter.section("Commands"):
+            formatter.write_dl(sorted(_COMMANDS.items()))
+
+    def invoke(self, ctx: click.Context) -> object:
+        """Run a command; an error of ours becomes its message, what to do, and its status."""
+        try:
+            return super().invoke(ctx)
+        except FlatprepError as err:
+            click.echo(f"error: {err.message}", err=True)
+            if err.remedy:
+                click.echo(f"  try: {err.remedy}", err=True)
+            ctx.exit(err.exit_status)
+        except KeyboardInterrupt:
+            click.echo("stopped", err=True)
+            ctx.exit(130)
+
+
+@click.group(cls=Root, context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 100})
+@click.version_option(__version__, prog_name="flatprep")
+def root() -> None:
+    """Check flat parts before they are cut, lay them on stock, and list the bench work, mass and cost.
+
+    Ends with 0 when all is well, 1 when there is something to look at, 2 when the input cannot be used.
+    """
 
 
 def main() -> None:
     """Run flatprep."""
-    sys.exit(2)
+    # the arithmetic is small: a thread pool in every process only costs time and memory
+    for name in ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS"):
+        os.environ.setdefault(name, "1")
+    try:
+        root.main(prog_name="flatprep")
+    except BrokenPipeError:
+        # the reader of a pipe went away: `flatprep lint ... | head`
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        sys.exit(ExitStatus.CLEAN)

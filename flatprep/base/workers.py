@@ -1,0 +1,146 @@
+"""Work on many files in processes that can be stopped: one that hangs, dies or eats memory costs itself, not the run."""
+
+import multiprocessing
+import signal
+import time
+from collections.abc import Callable, Iterator, Sequence
+from contextlib import suppress
+from dataclasses import dataclass
+from multiprocessing.connection import Connection, wait
+from typing import Any, Generic, TypeVar
+
+Item = TypeVar("Item")
+Result = TypeVar("Result")
+
+
+@dataclass(frozen=True, slots=True)
+class Lost:
+    """An item whose worker did not come back, and why."""
+
+    why: str
+
+
+@dataclass(frozen=True, slots=True)
+class Caps:
+    """What one item may cost.
+
+    Attributes
+    ----------
+    seconds : callable
+        Item -> wall time it may take.
+    megabytes : float
+        Memory a worker may take beyond what it had at its start; not enforced where the system knows no such limit.
+    """
+
+    seconds: Callable[[Any], float]
+    megabytes: float = 1000.0
+
+
+@dataclass(slots=True)
+class _Worker:
+    process: Any
+    pipe: Connection
+    index: int | None = None
+    deadline: float = 0.0
+
+
+class Pool(Generic[Item, Result]):
+    """Runs a function on items in `jobs` processes; results come in the order of the items."""
+
+    def __init__(self, work: Callable[[Item], Result], caps: Caps, jobs: int) -> None:
+        self._work, self._caps, self._jobs = work, caps, max(1, jobs)
+        methods = multiprocessing.get_all_start_methods()
+        self._context = multiprocessing.get_context("fork" if "fork" in methods else "spawn")
+
+    def run(self, items: Sequence[Item]) -> Iterator[Result | Lost]:
+        """Yield a result, or `Lost`, for each item."""
+        done: dict[int, Result | Lost] = {}
+        todo = iter(range(len(items)))
+        workers: list[_Worker] = []
+        nxt = 0
+        try:
+            for _ in range(min(self._jobs, len(items))):
+                workers.append(self._start())
+                self._give(workers[-1], todo, items)
+            while nxt < len(items):
+                while nxt in done:
+                    yield done.pop(nxt)
+                    nxt += 1
+                if nxt < len(items):
+                    self._turn(workers, done, todo, items)
+        finally:
+            for worker in workers:
+                self._stop(worker)
+
+    def _turn(
+        self, workers: list[_Worker], done: dict[int, Result | Lost], todo: Iterator[int], items: Sequence[Item]
+    ) -> None:
+        busy = [w for w in workers if w.index is not None]
+        pause = max(0.0, min(w.deadline for w in busy) - time.monotonic())
+        ready = set(wait([w.pipe for w in busy], timeout=pause))
+        for k, worker in enumerate(workers):
+            if worker.index is None:
+                continue
+            if worker.pipe in ready:
+                try:
+                    done[worker.index] = worker.pipe.recv()
+                except (EOFError, OSError):
+                    done[worker.index] = Lost("it brought its worker down")
+                    worker = workers[k] = self._restart(worker)
+            elif time.monotonic() >= worker.deadline:
+                done[worker.index] = Lost(f"it took more than {self._caps.seconds(items[worker.index]):.0f} s")
+                worker = workers[k] = self._restart(worker)
+            else:
+                continue
+            self._give(worker, todo, items)
+
+    def _give(self, worker: _Worker, todo: Iterator[int], items: Sequence[Item]) -> None:
+        worker.index = next(todo, None)
+        if worker.index is not None:
+            worker.deadline = time.monotonic() + self._caps.seconds(items[worker.index])
+            worker.pipe.send(items[worker.index])
+
+    def _start(self) -> _Worker:
+        mine, theirs = self._context.Pipe()
+        process = self._context.Process(target=_serve, args=(theirs, self._work, self._caps.megabytes), daemon=True)
+        process.start()
+        theirs.close()
+        return _Worker(process, mine)
+
+    def _restart(self, worker: _Worker) -> _Worker:
+        self._stop(worker)
+        return self._start()
+
+    @staticmethod
+    def _stop(worker: _Worker) -> None:
+        worker.pipe.close()
+        worker.process.kill()
+        worker.process.join()
+
+
+def _serve(pipe: Connection, work: Callable[[Any], Any], megabytes: float) -> None:
+    # the parent answers for interruptions
+    signal.signal(signal.SIGINT, signal.SIG_IGN)
+    _cap_memory(megabytes)
+    while True:
+        try:
+            item = pipe.recv()
+        except (EOFError, OSError):
+            return
+        try:
+            answer = work(item)
+        except MemoryError:
+            answer = Lost(f"it takes more than {megabytes:.0f} MB of memory")
+        with suppress(BrokenPipeError):
+            pipe.send(answer)
+
+
+def _cap_memory(megabytes: float) -> None:
+    try:
+        import resource
+    except ImportError:  # not a system that has it
+        return
+    with suppress(OSError, ValueError, IndexError):
+        with open("/proc/self/statm") as pages:
+            now = int(pages.read().split()[0]) * resource.getpagesize()
+        resource.setrlimit(resource.RLIMIT_AS, (int(now + megabytes * 1e6), resource.RLIM_INFINITY))

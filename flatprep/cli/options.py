@@ -1,0 +1,73 @@
+"""Options that several commands share, each written once."""
+
+from collections.abc import Callable
+from pathlib import Path
+from typing import Any, TypeVar
+
+import click
+
+from flatprep.base.errors import UsageError
+from flatprep.base.units import MM_PER_UNIT
+from flatprep.model.drawing import Role
+
+Command = TypeVar("Command", bound=Callable[..., Any])
+
+
+def output_format(command: Command) -> Command:
+    """Add ``--format``."""
+    return click.option(
+        "--format",
+        "form",
+        type=click.Choice(["text", "json"]),
+        default="text",
+        help="text for people, or one JSON document",
+    )(command)
+
+
+def said_about_parts(command: Command) -> Command:
+    """Add ``--process``, ``--material``, ``--thickness``, ``--units``, ``--layer`` and ``--profiles``."""
+    for option in (
+        click.option("--profiles", "folders", metavar="DIR", multiple=True, type=click.Path(path_type=Path),
+                     help="own profiles, looked up before the shipped ones"),
+        click.option("--layer", "layers", metavar="NAME=ROLE", multiple=True,
+                     help="what a layer is for: cut, mark, bend or ignore"),
+        click.option("--units", type=click.Choice(list(MM_PER_UNIT)),
+                     help="take every drawing as being in this unit, whatever its header says"),
+        click.option("--thickness", metavar="VALUE", help="3, 3mm, 0.125in, 1/8in or 16ga"),
+        click.option("--material", metavar="ID", help="material id or designation"),
+        click.option("--process", metavar="ID|FILE", help="process id or profile file"),
+    ):  # fmt: skip
+        command = option(command)
+    return command
+
+
+def search_budget(command: Command) -> Command:
+    """Add ``--seconds``, ``--steps``, ``--seed`` and ``--jobs``."""
+    for option in (
+        click.option("--jobs", type=click.IntRange(1, 64), default=1, show_default=True, help="processes"),
+        click.option("--seed", type=click.IntRange(0), default=1, show_default=True, help="start of the random search"),
+        click.option("--steps", type=click.IntRange(1), help="a budget that does not depend on the clock"),
+        click.option("--seconds", type=click.FloatRange(0, min_open=True), default=30.0, show_default=True,
+                     help="search budget, wall time"),
+    ):  # fmt: skip
+        command = option(command)
+    return command
+
+
+def parse_roles(layers: tuple[str, ...]) -> dict[str, Role]:
+    """Read ``NAME=ROLE`` words.
+
+    Raises
+    ------
+    UsageError
+        When a word has another form.
+    """
+    out = {}
+    for word in layers:
+        name, sign, role = word.rpartition("=")
+        if not sign or role not in set(Role):
+            raise UsageError(
+                f"--layer {word!r} is not understood", "write NAME=cut, NAME=mark, NAME=bend or NAME=ignore"
+            )
+        out[name] = Role(role)
+    return out
