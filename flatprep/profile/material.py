@@ -1,6 +1,77 @@
 """A material: family, density, what may cut it, how it bends and takes a thread."""
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from decimal import Decimal
+
+from flatprep.profile.points import Points, clamped
+from flatprep.profile.process import Limit, Process
+
+FAMILIES = (
+    "low-carbon-steel", "stainless", "aluminium", "wear-plate", "titanium", "magnesium", "copper-brass",
+    "acrylic", "plastic", "laminate", "wood", "leather", "cardboard", "rubber",
+)  # fmt: skip
+"""The keys that a process's limits may be given for."""
+
+TECHNOLOGIES = ("fibre-laser", "co2-laser", "router", "plasma", "waterjet")
+LEVELS = ("yes", "care", "unknown", "no", "never")
+"""From the best to the worst; ``no``: the process cannot, ``never``: it must not."""
+
+
+@dataclass(frozen=True, slots=True)
+class Verdict:
+    """Whether a process may cut a material.
+
+    Attributes
+    ----------
+    level : str
+        ``yes``, ``care`` (with the caution), ``no`` (it cannot), ``never`` (it must not: people or machine would be
+        harmed) or ``unknown`` (the material's profile says nothing).
+    why, caution, source : str
+    """
+
+    level: str
+    why: str = ""
+    caution: str = ""
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class BendRule:
+    """How tight a material may be bent cold by 90 degrees across the rolling direction.
+
+    Attributes
+    ----------
+    table, refuse, prefer : tuple of (thickness mm, radius / thickness)
+        The published least inside radius, below what a bend is an error, and below what it is a warning.
+    refuse_mm : float
+        Least inside radius in mm whatever the thickness.
+    along_grain : float
+        Factor on the radius for bend lines along the rolling direction; 1.0 where it makes no difference.
+    bendable : bool
+        False where the material does not bend plastically when cold.
+    """
+
+    bendable: bool = True
+    table: Points = ()
+    refuse: Points = ()
+    prefer: Points = ()
+    refuse_mm: float = 0.0
+    along_grain: float = 1.0
+    note: str = ""
+    source: str = ""
+
+    def table_ratio(self, thickness_mm: float) -> float | None:
+        """Return the published least radius over thickness, or None where none is known."""
+        return clamped(self.table, thickness_mm) if self.table else None
+
+    def limit(self, thickness_mm: float) -> Limit | None:
+        """Return the least inside radius, mm, across the rolling direction; None where nothing is known."""
+        if not self.refuse and not self.prefer:
+            return None
+        error = max(clamped(self.refuse, thickness_mm) * thickness_mm if self.refuse else 0.0, self.refuse_mm)
+        warn = clamped(self.prefer, thickness_mm) * thickness_mm if self.prefer else None
+        return Limit(error, None if warn is None else max(warn, error), self.source)
 
 
 @dataclass(frozen=True, slots=True)
@@ -17,8 +88,26 @@ class Material:
         The key of a process's limits: ``low-carbon-steel``, ``stainless``, ``aluminium``, ``wear-plate``,
         ``copper-brass``, ``plastic``, ``wood``, ...
     density_kg_m3 : float or None
+    density_range : (float, float) or None
+        What published tables print.
     face_grain : bool
         Plywood and the like: turns default to [0, 180].
+    e_gpa : float or None
+        Modulus of elasticity in bending.
+    strength_mpa : float or None
+        What bending strength is compared by; `strength_kind` says which: ``yield``, ``tensile`` or ``flexural``.
+    gauge_metal : str or None
+        The column of the gauge table: ``steel``, ``stainless``, ``aluminium``, ``galvanised``.
+    stock_mm : tuple of float
+        Thicknesses commonly sold.
+    tap, tap_note : str
+        How it takes a thread: ``good``, ``fair``, ``poor``, ``no`` or empty.
+    hazards : tuple of str
+        Keys of the cautions of bench work.
+    cuts : mapping of str to Verdict
+        By technology.
+    price_per_kg : Decimal or None
+        The user's own price; never shipped.
     """
 
     id: str
@@ -28,3 +117,34 @@ class Material:
     aliases: tuple[str, ...] = ()
     face_grain: bool = False
     source: str = ""
+    density_range: tuple[float, float] | None = None
+    e_gpa: float | None = None
+    strength_mpa: float | None = None
+    strength_kind: str = ""
+    mechanical_source: str = ""
+    hardness: str = ""
+    gauge_metal: str | None = None
+    stock_mm: tuple[float, ...] = ()
+    tap: str = ""
+    tap_note: str = ""
+    cautions: tuple[str, ...] = ()
+    hazards: tuple[str, ...] = ()
+    bend: BendRule | None = None
+    cuts: Mapping[str, Verdict] = field(default_factory=dict)
+    price_per_kg: Decimal | None = None
+
+    def verdict(self, process: Process) -> Verdict:
+        """Tell whether `process` may cut the material.
+
+        A laser whose profile does not say which beam it has gets the better of both, unless neither may be used.
+        """
+        if process.technology in self.cuts:
+            return self.cuts[process.technology]
+        if process.technology != "laser":
+            return Verdict("unknown")
+        found = [self.cuts[beam] for beam in ("fibre-laser", "co2-laser") if beam in self.cuts]
+        if not found:
+            return Verdict("unknown")
+        usable = [v for v in found if v.level in ("yes", "care")]
+        worst = max(found, key=lambda v: LEVELS.index(v.level))
+        return min(usable, key=lambda v: LEVELS.index(v.level)) if usable else worst
