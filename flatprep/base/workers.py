@@ -1,4 +1,4 @@
-"""Work on many files in processes that can be stopped: one that hangs, dies or eats memory costs itself, not the run."""
+"""Work on many files in processes that can be stopped: one that hangs or eats memory costs itself, not the run."""
 
 import multiprocessing
 import signal
@@ -50,7 +50,8 @@ class Pool(Generic[Item, Result]):
     def __init__(self, work: Callable[[Item], Result], caps: Caps, jobs: int) -> None:
         self._work, self._caps, self._jobs = work, caps, max(1, jobs)
         methods = multiprocessing.get_all_start_methods()
-        self._context = multiprocessing.get_context("fork" if "fork" in methods else "spawn")
+        # a forked worker starts at once; its type depends on the system, so that mypy knows too little of it
+        self._context: Any = multiprocessing.get_context("fork" if "fork" in methods else "spawn")
 
     def run(self, items: Sequence[Item]) -> Iterator[Result | Lost]:
         """Yield a result, or `Lost`, for each item."""
@@ -79,16 +80,17 @@ class Pool(Generic[Item, Result]):
         pause = max(0.0, min(w.deadline for w in busy) - time.monotonic())
         ready = set(wait([w.pipe for w in busy], timeout=pause))
         for k, worker in enumerate(workers):
-            if worker.index is None:
+            index = worker.index
+            if index is None:
                 continue
             if worker.pipe in ready:
                 try:
-                    done[worker.index] = worker.pipe.recv()
+                    done[index] = worker.pipe.recv()
                 except (EOFError, OSError):
-                    done[worker.index] = Lost("it brought its worker down")
+                    done[index] = Lost("it brought its worker down")
                     worker = workers[k] = self._restart(worker)
             elif time.monotonic() >= worker.deadline:
-                done[worker.index] = Lost(f"it took more than {self._caps.seconds(items[worker.index]):.0f} s")
+                done[index] = Lost(f"it took more than {self._caps.seconds(items[index]):.0f} s")
                 worker = workers[k] = self._restart(worker)
             else:
                 continue

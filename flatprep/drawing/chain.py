@@ -6,7 +6,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from flatprep.drawing.ends import Ints, dangling_pairs, node_ids
+from flatprep.drawing.ends import SAME_POINT_MM, Ints, dangling_pairs, node_ids
 from flatprep.geom import bulge
 from flatprep.geom.bulge import Floats
 from flatprep.model.drawing import Contour, Curve
@@ -44,11 +44,22 @@ class Chain:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Chained:
-    """What chaining makes: closed and open chains without a branch, and the curves that meet at branches."""
+    """What chaining makes.
+
+    Attributes
+    ----------
+    closed, open : tuple of Chain
+        Chains without a branch.
+    branched : tuple of Curve
+        Curves that hang together at points where more than two ends meet.
+    joined : tuple of ((x, y), mm)
+        Gaps that were closed in silence and are wider than rounding explains.
+    """
 
     closed: tuple[Chain, ...]
     open: tuple[Chain, ...]
     branched: tuple[Curve, ...]
+    joined: tuple[tuple[tuple[float, float], float], ...] = ()
 
 
 def chain(curves: Sequence[Curve], join_mm: float) -> Chained:
@@ -58,8 +69,7 @@ def chain(curves: Sequence[Curve], join_mm: float) -> Chained:
     if not open_curves:
         return Chained(tuple(rings), (), ())
     ends = np.array([p for c in open_curves for p in (c.xyb[0, :2], c.xyb[-1, :2])])
-    lengths = np.array([bulge.length(c.xyb, closed=False) for c in open_curves])
-    nodes = node_ids(ends, lengths, join_mm)
+    nodes = node_ids(ends, lambda i: bulge.length(open_curves[i].xyb, closed=False), join_mm)
     degree = np.bincount(nodes)
     loose: list[Chain] = []
     branched: list[Curve] = []
@@ -69,7 +79,7 @@ def chain(curves: Sequence[Curve], join_mm: float) -> Chained:
             continue
         walked = _walk(members, open_curves, nodes)
         (rings if walked.closed else loose).append(walked)
-    return Chained(tuple(rings), tuple(loose), tuple(branched))
+    return Chained(tuple(rings), tuple(loose), tuple(branched), _joined(ends, nodes))
 
 
 def bridge(chains: Sequence[Chain], reach_mm: float) -> tuple[list[Chain], list[Chain]]:
@@ -98,6 +108,18 @@ def bridge(chains: Sequence[Chain], reach_mm: float) -> tuple[list[Chain], list[
             closed.append(ring[0])
             used |= ring[1]
     return closed, rest + [c for i, c in enumerate(able) if i not in used]
+
+
+def _joined(ends: Floats, nodes: Ints) -> tuple[tuple[tuple[float, float], float], ...]:
+    """Nodes whose two ends lie apart."""
+    order = np.argsort(nodes, kind="stable")
+    firsts = np.flatnonzero(np.diff(nodes[order], prepend=-1))
+    pairs = firsts[np.bincount(nodes) == 2]
+    a, b = ends[order[pairs]], ends[order[pairs + 1]]
+    gaps = np.hypot(*(a - b).T)
+    return tuple(
+        (tuple(((p + q) / 2.0).tolist()), float(g)) for p, q, g in zip(a, b, gaps, strict=True) if g > SAME_POINT_MM
+    )
 
 
 def _follow(

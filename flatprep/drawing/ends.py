@@ -1,6 +1,6 @@
 """Which ends of open curves are one point."""
 
-from collections.abc import Iterable
+from collections.abc import Callable, Iterable
 
 import numpy as np
 import numpy.typing as npt
@@ -9,11 +9,11 @@ from shapely import STRtree, points
 from flatprep.geom.bulge import Floats
 
 Ints = npt.NDArray[np.int64]
-_SAME_POINT_MM = 1e-3
+SAME_POINT_MM = 1e-3
 """Ends this near are one point whatever hangs on them: below what any program writes on purpose."""
 
 
-def node_ids(ends: Floats, lengths: Floats, join_mm: float) -> Ints:
+def node_ids(ends: Floats, length_mm: Callable[[int], float], join_mm: float) -> Ints:
     """Give ends that are one point the same number.
 
     Points where two or more ends meet are taken as they are; only ends that dangle alone look further, up to
@@ -23,8 +23,8 @@ def node_ids(ends: Floats, lengths: Floats, join_mm: float) -> Ints:
     ----------
     ends : ndarray, shape (n, 2)
         Ends 2 i and 2 i + 1 belong to curve i.
-    lengths : ndarray, shape (n / 2,)
-        Of the curves, mm.
+    length_mm
+        Curve index -> its length.
     join_mm
         Largest gap that is closed.
 
@@ -34,9 +34,9 @@ def node_ids(ends: Floats, lengths: Floats, join_mm: float) -> Ints:
         Node of each end, numbered from 0.
     """
     groups = _Groups(len(ends))
-    for i, j, _ in _near_pairs(ends, min(_SAME_POINT_MM, join_mm)):
+    for i, j, _ in _near_pairs(ends, min(SAME_POINT_MM, join_mm)):
         groups.join(i, j)
-    _join_dangling(groups, ends, lengths, join_mm)
+    _join_dangling(groups, ends, length_mm, join_mm)
     return groups.numbered()
 
 
@@ -52,11 +52,11 @@ def dangling_pairs(ends: Floats, dangling: Ints, reach_mm: float) -> list[tuple[
     return pairs
 
 
-def _join_dangling(groups: "_Groups", ends: Floats, lengths: Floats, join_mm: float) -> None:
+def _join_dangling(groups: "_Groups", ends: Floats, length_mm: Callable[[int], float], join_mm: float) -> None:
     ids = groups.numbered()
     alone = np.flatnonzero(np.bincount(ids)[ids] == 1)
     for i, j, gap in dangling_pairs(ends, alone, join_mm):
-        stray_dash = i // 2 == j // 2 and lengths[i // 2] < 4.0 * gap
+        stray_dash = i // 2 == j // 2 and length_mm(i // 2) < 4.0 * gap
         if not stray_dash:
             groups.join(i, j)
 

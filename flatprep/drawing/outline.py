@@ -6,7 +6,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from flatprep.base.tolerances import Tolerances
-from flatprep.drawing.chain import Chain, bridge, chain
+from flatprep.drawing.chain import Chain, Chained, bridge, chain
 from flatprep.drawing.crossing import Crossings, crossings
 from flatprep.drawing.doubles import without_double_rings, without_overlapped
 from flatprep.drawing.planar import even_odd, regions_of_net, regions_of_rings
@@ -44,6 +44,7 @@ def outlines(curves: Sequence[Curve], tol: Tolerances) -> Outlines:
     """Make closed contours of the lines that are to be cut."""
     single, faults = tidy(curves, tol)
     chained = chain(single, tol.join_mm)
+    faults += _told_joins(chained)
     rings, loose = list(chained.closed), list(chained.open)
     inner: list[Curve] = []
     if chained.branched:
@@ -95,6 +96,15 @@ def _open(c: Chain) -> Fault:
         f"a single line that encloses nothing; {ends}" if stroke else f"a chain of lines that does not close; {ends}"
     )
     return Fault("open-contour", (float(x), float(y)), gap, handles, detail)
+
+
+def _told_joins(chained: Chained) -> list[Fault]:
+    if not chained.joined:
+        return []
+    at, gap = max(chained.joined, key=lambda place: place[1])
+    count = len(chained.joined)
+    what = "a small gap, closed" if count == 1 else f"{count} small gaps, closed; the widest one"
+    return [Fault("open-contour", at, gap, (), what)]
 
 
 def _told_inner(inner: Sequence[Curve]) -> list[Fault]:

@@ -54,15 +54,17 @@ def _without_zero_lengths(curves: Sequence[Curve]) -> tuple[list[Curve], list[Fa
 
 def _without_doubles(curves: Sequence[Curve], tol: float) -> tuple[list[Curve], list[Curve]]:
     """Split off open curves whose ends and middle coincide with an earlier one's, whichever way they run."""
-    seen: dict[tuple[int, ...], list[Floats]] = {}
-    kept, doubles = [], []
+    kept: list[Curve] = []
+    doubles: list[Curve] = []
+    signs = iter(_signatures([c.xyb for c in curves if not c.closed]))
+    seen: dict[bytes, list[Floats]] = {}
     for curve in curves:
         if curve.closed:
             kept.append(curve)
             continue
-        sign = _signature(curve.xyb)
+        sign = next(signs)
         # two grids, half a cell apart: neighbours share a cell of the one or the other in every coordinate but few
-        keys = [(grid, *np.floor(sign / (64 * tol) + grid / 2.0).astype(np.int64).tolist()) for grid in (0, 1)]
+        keys = [bytes([grid]) + np.floor(sign / (64 * tol) + grid / 2.0).tobytes() for grid in (0, 1)]
         if any(np.abs(other - sign).max() <= tol for key in keys for other in seen.get(key, ())):
             doubles.append(curve)
             continue
@@ -72,11 +74,23 @@ def _without_doubles(curves: Sequence[Curve], tol: float) -> tuple[list[Curve], 
     return kept, doubles
 
 
-def _signature(xyb: Floats) -> Floats:
-    a, z = xyb[0, :2], xyb[-1, :2]
-    if (a[0], a[1]) > (z[0], z[1]):
-        a, z = z, a
-    return np.concatenate([a, z, _middle(xyb, closed=False), [bulge.length(xyb, closed=False)]])
+def _signatures(polylines: Sequence[Floats]) -> Floats:
+    """Both ends, the smaller first, and the point halfway, of open polylines, shape (n, 6)."""
+    out = np.empty((len(polylines), 6))
+    if not polylines:
+        return out
+    single = np.array([len(p) == 2 for p in polylines])
+    pairs = np.array([p for p in polylines if len(p) == 2]).reshape(-1, 2, 3)
+    a, z = pairs[:, 0, :2], pairs[:, 1, :2]
+    # the top of an arc lies right of its chord by bulge x half the chord
+    right = np.column_stack([z[:, 1] - a[:, 1], a[:, 0] - z[:, 0]])
+    out[single] = np.hstack([a, z, (a + z + right * pairs[:, 0, 2:]) / 2.0])
+    for k in np.flatnonzero(~single):
+        p = polylines[k]
+        out[k] = (*p[0, :2], *p[-1, :2], *_middle(p, closed=False))
+    swap = (out[:, 0] > out[:, 2]) | ((out[:, 0] == out[:, 2]) & (out[:, 1] > out[:, 3]))
+    out[swap] = out[swap][:, [2, 3, 0, 1, 4, 5]]
+    return out
 
 
 def _middle(xyb: Floats, *, closed: bool) -> tuple[float, float]:

@@ -118,7 +118,7 @@ def signed_area(xyb: Floats) -> float:
     xy = xyb[:, :2] - xyb[0, :2]
     x, y = xy[:, 0], xy[:, 1]
     chords = np.sum(x * np.roll(y, -1) - np.roll(x, -1) * y) / 2.0
-    return float(chords + np.sum(_segment_area(xyb)))
+    return float(chords + np.sum(_segment_area(xyb))) if xyb[:, 2].any() else float(chords)
 
 
 def _segment_area(xyb: Floats) -> Floats:
@@ -133,6 +133,9 @@ def _segment_area(xyb: Floats) -> Floats:
 
 def length(xyb: Floats, *, closed: bool) -> float:
     """Length of the polyline along its arcs, mm."""
+    if not xyb[:, 2].any():
+        xy = np.vstack([xyb[:, :2], xyb[:1, :2]]) if closed else xyb[:, :2]
+        return float(np.sum(np.hypot(*np.diff(xy, axis=0).T)))
     seg = segments(xyb, closed=closed)
     chord = np.hypot(*(seg.end - seg.start).T)
     curved = np.where(seg.is_arc, np.where(seg.is_arc, seg.radius, 0.0) * np.abs(seg.sweep), chord)
@@ -225,9 +228,9 @@ def moments(xyb: Floats) -> Moments:
 def bounds(xyb: Floats, *, closed: bool) -> tuple[float, float, float, float]:
     """Least box (x0, y0, x1, y1) of the true curve, mm: arcs reach their quadrant points."""
     lo, hi = xyb[:, :2].min(axis=0), xyb[:, :2].max(axis=0)
-    seg = segments(xyb, closed=closed)
-    k = seg.is_arc
-    if k.any():
+    if xyb[:, 2].any():
+        seg = segments(xyb, closed=closed)
+        k = seg.is_arc
         for quarter, (ux, uy) in enumerate(((1, 0), (0, 1), (-1, 0), (0, -1))):
             turned = np.mod((quarter * np.pi / 2 - seg.angle[k]) * np.sign(seg.sweep[k]), 2 * np.pi)
             hit = turned <= np.abs(seg.sweep[k])
@@ -290,8 +293,10 @@ class Similarity:
 
 def as_circle(xyb: Floats, *, tol_mm: float = 1e-6) -> tuple[float, float, float] | None:
     """Centre x, y and radius of a closed polyline that is one full circle of arcs, else None."""
+    if not xyb[:, 2].all():
+        return None
     seg = segments(xyb, closed=True)
-    if not seg.is_arc.all() or abs(abs(float(np.sum(seg.sweep))) - 2 * np.pi) > 1e-6:
+    if abs(abs(float(np.sum(seg.sweep))) - 2 * np.pi) > 1e-6:
         return None
     widest = int(np.argmax(np.abs(seg.sweep)))
     centre, radius = seg.centre[widest], float(seg.radius[widest])
@@ -307,9 +312,9 @@ def points_along(xyb: Floats, *, closed: bool, chord_mm: float) -> Floats:
 
     The vertices are among them; a closed polyline does not repeat its first point.
     """
-    seg = segments(xyb, closed=closed)
-    if not seg.is_arc.any():
+    if not xyb[:, 2].any():
         return xyb[:, :2].copy()
+    seg = segments(xyb, closed=closed)
     ratio = np.clip(1.0 - chord_mm / np.where(seg.is_arc, seg.radius, 1.0), -1.0, 1.0)
     step = np.maximum(2.0 * np.arccos(ratio), 1e-4)
     counts = np.where(seg.is_arc, np.maximum(1, np.ceil(np.abs(seg.sweep) / step - 1e-9)), 1).astype(np.int64)

@@ -1,0 +1,181 @@
+"""Lint: every drawing answered, each in a worker that can be stopped."""
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, field, replace
+from pathlib import Path
+
+from flatprep.api.find import Found, Missing, find_drawings
+from flatprep.base.errors import DrawingError, FlatprepError
+from flatprep.base.progress import Progress, Silent
+from flatprep.base.tolerances import DEFAULT, Tolerances
+from flatprep.base.workers import Caps, Lost, Pool
+from flatprep.drawing.read import ReadOptions, read
+from flatprep.job.values import Job, JobPart
+from flatprep.model.drawing import Role
+from flatprep.model.linted import Linted, LintReport, Unreadable
+from flatprep.profile.gauges import parse_thickness_mm
+from flatprep.profile.material import Material
+from flatprep.profile.material_load import load_material
+from flatprep.profile.process import Process
+from flatprep.profile.process_load import load_process
+from flatprep.rules import run
+from flatprep.rules.base import Context
+
+_SECONDS = 6.0
+_SECONDS_A_MEGABYTE = 20.0
+"""A drawing may take `_SECONDS`, and more the larger its file: ten times what a usual one of its size needs."""
+
+
+@dataclass(frozen=True, slots=True)
+class Said:
+    """What the user says about drawings that no job describes.
+
+    Attributes
+    ----------
+    process, material, thickness : str or None
+        As written: ids, a profile file, a thickness with its unit or gauge.
+    units : str or None
+    roles : mapping
+        Layer name -> role.
+    folders : tuple of Path
+        Own profiles.
+    """
+
+    process: str | None = None
+    material: str | None = None
+    thickness: str | None = None
+    units: str | None = None
+    roles: Mapping[str, Role] = field(default_factory=dict)
+    folders: tuple[Path, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class LintTask:
+    """One drawing and what it is held against."""
+
+    path: Path
+    units: str | None = None
+    roles: Mapping[str, Role] = field(default_factory=dict)
+    process: Process | None = None
+    material: Material | None = None
+    thickness_mm: float | None = None
+    job_part: JobPart | None = None
+
+    @property
+    def tol(self) -> Tolerances:
+        """The tolerances, with the process's own join gap."""
+        return replace(DEFAULT, join_mm=self.process.join_gap_mm) if self.process else DEFAULT
+
+
+def lint_paths(
+    paths: Sequence[Path], said: Said | None = None, *, jobs: int = 1, progress: Progress | None = None
+) -> LintReport:
+    """Check drawings and folders of drawings.
+
+    Raises
+    ------
+    FlatprepError
+        When an option, a profile or a cut list is wrong. A drawing that cannot be read is no error: it is reported.
+    """
+    said = said or Said()
+    process = load_process(said.process, said.folders) if said.process else None
+    found, missing = find_drawings(paths)
+    tasks = [_task(one, said, process) for one in found]
+    report = lint_tasks(tasks, jobs=jobs, progress=progress)
+    lost = tuple(Unreadable(str(m.path), f"{m.path}: {m.why}", m.remedy) for m in missing)
+    return replace(report, unreadable=(*report.unreadable, *lost), notes=_unknown(tasks))
+
+
+def lint_job(job: Job, *, jobs: int = 1, progress: Progress | None = None) -> LintReport:
+    """Check every drawing of a job against its part's material, thickness and process."""
+    tasks = [
+        LintTask(
+            part.drawing,
+            part.drawing_units,
+            {**job.layers, **part.layers},
+            part.process,
+            part.material,
+            part.thickness_mm,
+            part,
+        )
+        for part in job.parts
+    ]
+    return replace(lint_tasks(tasks, jobs=jobs, progress=progress), notes=_unknown(tasks))
+
+
+def lint_tasks(tasks: Sequence[LintTask], *, jobs: int = 1, progress: Progress | None = None) -> LintReport:
+    """Check drawings in `jobs` processes; what hangs or dies is reported as unreadable."""
+    tell = progress or Silent()
+    linted: list[Linted] = []
+    unreadable: list[Unreadable] = []
+    pool: Pool[LintTask, Linted | Unreadable] = Pool(lint_one, Caps(_patience), jobs)
+    for number, (task, answer) in enumerate(zip(tasks, pool.run(tasks), strict=True), start=1):
+        if isinstance(answer, Linted):
+            linted.append(answer)
+        elif isinstance(answer, Unreadable):
+            unreadable.append(answer)
+        else:
+            unreadable.append(_lost(task, answer))
+        tell.update("drawings checked", done=number, total=len(tasks))
+    return LintReport(tuple(linted), tuple(unreadable))
+
+
+def lint_one(task: LintTask) -> Linted | Unreadable:
+    """Read and check one drawing in this process."""
+    file = str(task.path)
+    name = task.job_part.name if task.job_part else None
+    try:
+        drawing = read(task.path, ReadOptions(task.units, task.roles, task.tol), name=name)
+    except DrawingError as err:
+        return Unreadable(file, err.message, err.remedy)
+    context = Context(drawing, task.process, task.material, task.thickness_mm, task.job_part, task.tol)
+    return Linted(
+        file,
+        drawing,
+        run(context),
+        process=task.process.id if task.process else None,
+        material=task.material.id if task.material else None,
+        thickness_mm=task.thickness_mm,
+        density_kg_m3=task.material.density_kg_m3 if task.material else None,
+    )
+
+
+def _task(one: Found, said: Said, process: Process | None) -> LintTask:
+    row = one.row
+    try:
+        material_name = (row.material if row else "") or said.material
+        material = load_material(material_name, said.folders) if material_name else None
+        thickness = (row.thickness if row else "") or said.thickness
+        thickness_mm = parse_thickness_mm(thickness, "mm", material) if thickness else None
+    except FlatprepError as err:
+        if row is None:
+            raise
+        raise type(err)(f"cutlist.csv: line {row.line} ({row.file}): {err.message}", err.remedy) from err
+    return LintTask(one.path, said.units, said.roles, process, material, thickness_mm)
+
+
+def _unknown(tasks: Sequence[LintTask]) -> tuple[str, ...]:
+    """One line on what was not said, so that rules which need it did not run."""
+    open_ends = [
+        (what, sum(1 for t in tasks if getattr(t, field_name) is None))
+        for what, field_name in (("process", "process"), ("material", "material"), ("thickness", "thickness_mm"))
+    ]
+    missing = [f"{what} ({count} of {len(tasks)} drawings)" for what, count in open_ends if count]
+    if not missing:
+        return ()
+    return (f"not said: {', '.join(missing)}; rules that need it did not run",)
+
+
+def _patience(task: LintTask) -> float:
+    try:
+        size = task.path.stat().st_size
+    except OSError:
+        size = 0
+    return _SECONDS + _SECONDS_A_MEGABYTE * size / 1e6
+
+
+def _lost(task: LintTask, answer: Lost) -> Unreadable:
+    return Unreadable(str(task.path), f"{task.path}: given up, {answer.why}", "export a plainer drawing of the part")
+
+
+__all__ = ["LintTask", "Missing", "Said", "lint_job", "lint_one", "lint_paths", "lint_tasks"]
