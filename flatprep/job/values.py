@@ -6,6 +6,7 @@ from decimal import Decimal
 from enum import StrEnum
 from pathlib import Path
 
+from flatprep.job.terms import CostTerms
 from flatprep.model.drawing import Role
 from flatprep.profile.material import Material
 from flatprep.profile.process import Process
@@ -32,6 +33,8 @@ class Work:
         ``press`` ...
     size : str
         As written: ``M5``, ``6 H7``, ``M5 ISO 10642``.
+    depth_mm : float or None
+        None: right through.
     """
 
     kind: str
@@ -42,6 +45,8 @@ class Work:
     side: str | None = None
     where: str = ""
     """File and key, for messages: ``job.toml: part 2 (leaf), work 1``."""
+    depth_mm: float | None = None
+    note: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -52,6 +57,60 @@ class BendAsk:
     radius_mm: float | None
     line: tuple[Point, Point] | None = None
     layer: str | None = None
+    where: str = ""
+    direction: str | None = None
+    """``up`` or ``down``, seen on side A."""
+
+
+@dataclass(frozen=True, slots=True)
+class Accept:
+    """A finding that someone looked at and lets stand: by rule and, where given, place (drawing, mm)."""
+
+    rule: str
+    reason: str
+    at: Point | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class JointLayer:
+    """One thing that a joint's fastener passes through, or ends in.
+
+    Attributes
+    ----------
+    part : str or None
+        A part of the job; None for a spacer.
+    spacer : str
+        What it is where it is no part of the job: ``washer``, ``bushing`` ...
+    thickness_mm : float or None
+        None: the part's.
+    hole_mm, at
+        The hole by its diameter as drawn, or by its place in the part's drawing (mm).
+    threaded : bool
+        The fastener is screwed into this one.
+    """
+
+    part: str | None
+    spacer: str = ""
+    thickness_mm: float | None = None
+    hole_mm: float | None = None
+    at: Point | None = None
+    threaded: bool = False
+    where: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class JointAsk:
+    """A fastener and what it holds together, from its head on.
+
+    `fastener` and `nut` are as written: ``M6 ISO 4762``, ``shoulder 1/4``, ``6 dowel``.
+    """
+
+    name: str
+    fastener: str
+    through: tuple[JointLayer, ...]
+    length_mm: float | None = None
+    nut: str = ""
+    count: int = 1
     where: str = ""
 
 
@@ -79,6 +138,12 @@ class JobPart:
     layers: Mapping[str, Role] = field(default_factory=dict)
     revision: str = ""
     note: str = ""
+    filler: bool = False
+    finish: str = ""
+    good_face: str | None = None
+    accepts: tuple[Accept, ...] = ()
+    where: str = ""
+    """File and key, for messages: ``job.toml: part 2 (leaf)``."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -95,6 +160,9 @@ class Stock:
     price_per_sheet: Decimal | None = None
     price_per_metre: Decimal | None = None
     grain: str | None = None
+    measured_thickness_mm: float | None = None
+    where: str = ""
+    """File and key, for messages: ``job.toml: stock 1 (al3)``."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -114,3 +182,9 @@ class Job:
     pilots: Pilots = Pilots.AS_DRAWN
     currency: str | None = None
     units: str = "mm"
+    windows: bool | None = None
+    """Whether parts may lie in windows of others; None: as the process has it."""
+    layers: Mapping[str, Role] = field(default_factory=dict)
+    accepts: tuple[Accept, ...] = ()
+    cost: CostTerms = field(default_factory=CostTerms)
+    joints: tuple[JointAsk, ...] = ()

@@ -1,0 +1,191 @@
+"""The job file: TOML in, a checked Job out."""
+
+from collections import Counter
+from decimal import Decimal
+from pathlib import Path
+
+from flatprep.base.errors import JobError
+from flatprep.base.names import did_you_mean
+from flatprep.base.units import MM_PER_UNIT
+from flatprep.job.context import Context, JobOptions, accepts, money, roles
+from flatprep.job.cutlist import load_cutlist
+from flatprep.job.parts import cells, part_of_row, read_part
+from flatprep.job.reach import Reach
+from flatprep.job.stocks import read_stock
+from flatprep.job.terms import CostTerms, Discount, Share
+from flatprep.job.values import Job, JobPart, Pilots, Stock
+from flatprep.job.works import read_joint
+from flatprep.profile.material_load import all_materials
+from flatprep.profile.process import Process
+from flatprep.profile.process_load import load_process
+from flatprep.profile.toml_check import Table, read_toml
+
+KEYS = (
+    "name", "revision", "units", "process", "spacing", "margin", "sets", "mass_limit", "pilots", "parts", "currency",
+    "windows", "layers", "accept", "cost", "material", "stock", "part", "joint",
+)  # fmt: skip
+"""Every key at the top of a job file."""
+
+COST_KEYS = ("share", "machine_rate", "offcut_credit", "offcut_least", "scrap_per_kg", "discount", "breaks")
+
+
+def load_job(path: Path, options: JobOptions | None = None) -> Job:
+    """Read and check a job file.
+
+    Parameters
+    ----------
+    path
+        The TOML file; paths in it are seen from its folder.
+    options
+        What the command line says.
+
+    Raises
+    ------
+    JobError
+        For every mistake: file, key, value and what is allowed.
+    ProfileError
+        When a profile that the job names is missing or wrong.
+    """
+    options = options or JobOptions()
+    top = Table(read_toml(path, JobError), str(path), "", JobError).only(KEYS)
+    unit = top.choice("units", tuple(MM_PER_UNIT), "mm")
+    context = Context(unit, Reach(path.parent, options.anywhere), options, _overrides(top, options))
+    process = _process(top, context, options)
+    parts = _parts(top, context, process)
+    layers = {**roles(top, "layers"), **options.layers}
+    return Job(
+        path=path,
+        name=top.text("name") if top.has("name") else path.stem,
+        revision=_revision(top),
+        process=process,
+        spacing_mm=context.length_mm(top, "spacing", process.spacing_mm, least=0.0),
+        margin_mm=context.length_mm(top, "margin", process.margin_mm, least=0.0),
+        parts=parts,
+        stock=_stock(top, context),
+        sets=top.integer("sets", 1, least=1),
+        mass_limit_kg=top.optional_number("mass_limit", above=0.0),
+        pilots=Pilots(top.choice("pilots", tuple(Pilots), Pilots.AS_DRAWN)),
+        currency=_currency(top),
+        units=unit,
+        windows=top.optional_flag("windows"),
+        layers=layers,
+        accepts=accepts(top, context),
+        cost=_cost(top, context),
+        joints=tuple(read_joint(one, context, tuple(p.name for p in parts)) for one in top.tables("joint")),
+    )
+
+
+def _revision(top: Table) -> str:
+    value = top.get("revision")
+    return str(value) if isinstance(value, int) and not isinstance(value, bool) else top.text("revision", "")
+
+
+def _currency(top: Table) -> str | None:
+    if not top.has("currency"):
+        return None
+    code = top.text("currency")
+    if len(code) != 3 or not code.isascii() or not code.isalpha() or not code.isupper():
+        raise top.fail("currency", 'a code of three capital letters, such as "EUR"')
+    return code
+
+
+def _overrides(top: Table, options: JobOptions) -> dict[str, Table]:
+    """Return the tables ``[material.ID]``, whose ids must be known."""
+    given = top.named_tables("material")
+    known = [material.id for material in all_materials(options.profile_folders)] if given else []
+    for name, table in given.items():
+        if name not in known:
+            raise JobError(f'{top.place}: material."{name}": unknown material id', did_you_mean(name, known))
+        table.only(("density", "price_per_kg"))
+    return given
+
+
+def _process(top: Table, context: Context, options: JobOptions) -> Process:
+    if options.process:
+        return load_process(options.process, options.profile_folders)
+    return context.process(top, "process")
+
+
+def _parts(top: Table, context: Context, process: Process) -> tuple[JobPart, ...]:
+    parts = [read_part(one, context, process) for one in top.tables("part")]
+    if top.has("parts"):
+        parts += _listed(top, context, process)
+    if not parts:
+        raise JobError(f"{top.place}: has no part", 'add [[part]] with drawing = "...", or parts = "cutlist.csv"')
+    for name, times in Counter(part.name for part in parts).items():
+        if times > 1:
+            places = ", ".join(p.where.removeprefix(f"{top.file}: ") for p in parts if p.name == name)
+            raise JobError(
+                f'{top.place}: {times} parts are called "{name}": {places}', 'give each its own with name = "..."'
+            )
+    return tuple(parts)
+
+
+def _listed(top: Table, context: Context, process: Process) -> list[JobPart]:
+    path = context.reach.file(top, "parts", top.text("parts"))
+    near = Context(context.unit, Reach(path.parent, context.reach.anywhere), context.options, context.overrides)
+    out = []
+    for row in load_cutlist(path):
+        table = Table(cells(row), str(path), f"line {row.line}", JobError)
+        if row.quantity + row.quantity_opposite == 0:
+            raise JobError(f"{table.place}: quantity = 0", "take the line out, or begin it with #")
+        out.append(part_of_row(row, table, near, process))
+    return out
+
+
+def _stock(top: Table, context: Context) -> tuple[Stock, ...]:
+    stock = tuple(read_stock(one, context) for one in top.tables("stock"))
+    for name, times in Counter(s.name for s in stock).items():
+        if times > 1:
+            raise JobError(f'{top.place}: {times} stocks are called "{name}"', "give each its own name")
+    return stock
+
+
+def _cost(top: Table, context: Context) -> CostTerms:
+    table = top.table("cost")
+    if table is None:
+        return CostTerms()
+    table.only(COST_KEYS)
+    plain = CostTerms()
+    credit = money(table, "offcut_credit") or Decimal(0)
+    if credit > 1:
+        raise table.fail("offcut_credit", "a share of the sheet's price from 0 to 1")
+    return CostTerms(
+        share=Share(table.choice("share", tuple(Share), plain.share)),
+        machine_rate=money(table, "machine_rate"),
+        offcut_credit=credit,
+        offcut_least_mm=_sides(table, context) if table.has("offcut_least") else plain.offcut_least_mm,
+        scrap_per_kg=money(table, "scrap_per_kg") or Decimal(0),
+        discounts=_discounts(table),
+        breaks=_breaks(table) if table.has("breaks") else plain.breaks,
+    )
+
+
+def _sides(table: Table, context: Context) -> tuple[float, float]:
+    a, b = context.point_mm(table, "offcut_least")
+    if min(a, b) <= 0.0:
+        raise table.fail("offcut_least", "two lengths above 0, such as [300, 300]")
+    return a, b
+
+
+def _discounts(table: Table) -> tuple[Discount, ...]:
+    out = []
+    for one in table.tables("discount"):
+        one.only(("from", "percent"))
+        least, percent = money(one, "from"), money(one, "percent")
+        if least is None or percent is None:
+            raise one.need("from" if least is None else "percent", "a number")
+        if percent > 100:
+            raise one.fail("percent", "a number from 0 to 100")
+        out.append(Discount(least, percent))
+    return tuple(sorted(out, key=lambda d: d.least))
+
+
+def _breaks(table: Table) -> tuple[int, ...]:
+    numbers = table.numbers("breaks", least=1.0)
+    if not numbers or any(n != int(n) for n in numbers):
+        raise table.fail("breaks", "a list of whole numbers of sets, such as [1, 2, 5, 10, 25]")
+    return tuple(sorted({int(n) for n in numbers}))
+
+
+__all__ = ["COST_KEYS", "KEYS", "JobOptions", "load_job"]

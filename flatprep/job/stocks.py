@@ -1,0 +1,103 @@
+"""The ``[[stock]]`` tables of a job file."""
+
+from pathlib import Path
+
+import numpy as np
+
+from flatprep.geom.bulge import signed_area
+from flatprep.geom.polygons import is_simple
+from flatprep.job.context import Context, money
+from flatprep.job.values import Point, Stock
+from flatprep.profile.toml_check import Table
+
+KEYS = (
+    "name", "material", "thickness", "length", "width", "outline", "count", "price_per_sheet", "price_per_metre",
+    "grain", "measured_thickness",
+)  # fmt: skip
+"""Every key of a ``[[stock]]``."""
+
+
+def read_stock(table: Table, context: Context) -> Stock:
+    """Check one ``[[stock]]``."""
+    table = _titled(table.only(KEYS))
+    name = table.text("name")
+    material = context.material(table, "material")
+    if material is None:
+        raise table.need("material", '"mild-steel" or another id')
+    thickness = context.thickness_mm(table, "thickness", material)
+    if thickness is None:
+        raise table.need("thickness", '3 or "16ga"')
+    length, width, outline = _shape(table, context)
+    is_open = length is None and outline is None
+    _check_prices(table, is_open=is_open)
+    return Stock(
+        name=name,
+        material=material,
+        thickness_mm=thickness,
+        length_mm=length,
+        width_mm=width,
+        outline=outline,
+        count=_count(table),
+        price_per_sheet=money(table, "price_per_sheet"),
+        price_per_metre=money(table, "price_per_metre"),
+        grain=table.choice("grain", ("length", "width")) if table.has("grain") else None,
+        measured_thickness_mm=context.length_mm(table, "measured_thickness", above=0.0)
+        if table.has("measured_thickness")
+        else None,
+        where=table.place,
+    )
+
+
+def _titled(table: Table) -> Table:
+    called = table.data.get("name")
+    title = f"{table.where} ({called})" if isinstance(called, str) and called else table.where
+    return Table(table.data, table.file, title, table.error)
+
+
+Outline = Path | tuple[Point, ...] | None
+
+
+def _shape(table: Table, context: Context) -> tuple[float | None, float | None, Outline]:
+    """Return length (None where open), width and outline: either both sides or an outline is given."""
+    if table.has("outline"):
+        for side in ("length", "width"):
+            if table.has(side):
+                raise table.fail(side, "left out where an outline is given")
+        return None, None, _outline(table, context)
+    width = context.length_mm(table, "width", above=0.0)
+    if table.get("length") == "open":
+        return None, width, None
+    if isinstance(table.get("length"), str) and not any(c.isdigit() for c in table.text("length")):
+        raise table.fail("length", 'a length above 0, or "open": as long as needed')
+    return context.length_mm(table, "length", above=0.0), width, None
+
+
+def _outline(table: Table, context: Context) -> Outline:
+    value = table.get("outline")
+    if isinstance(value, str):
+        return context.reach.file(table, "outline", value)
+    if not isinstance(value, list):
+        raise table.fail("outline", "a drawing's file, or a list of points such as [[0, 0], [900, 0], [700, 400]]")
+    points = context.points_mm(table, "outline")
+    points = points[:-1] if len(points) > 1 and points[0] == points[-1] else points
+    ring = np.array([(x, y, 0.0) for x, y in points], dtype=np.float64)
+    if len(points) < 3 or abs(signed_area(ring)) < 1e-6:
+        raise table.fail("outline", "three points or more that enclose an area")
+    if not is_simple(ring, chord_mm=0.01):
+        raise table.fail("outline", "an outline that does not cross or touch itself")
+    return points
+
+
+def _count(table: Table) -> int | None:
+    if table.get("count") == "any":
+        return None
+    if isinstance(table.get("count"), str):
+        raise table.fail("count", 'a whole number of sheets, or "any"')
+    return table.integer("count", 1, least=1)
+
+
+def _check_prices(table: Table, *, is_open: bool) -> None:
+    wrong, right = ("price_per_sheet", "price_per_metre") if is_open else ("price_per_metre", "price_per_sheet")
+    if table.has(wrong):
+        kind = "open length" if is_open else "a sheet of given size"
+        raise table.fail(wrong, f"left out: stock of {kind} has a {right}")
