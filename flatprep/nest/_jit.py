@@ -29,13 +29,27 @@ def _temporary_cache() -> None:
 
 def kernel(func: F) -> F:
     """Compile on first call and keep the result on disk, or leave the function plain."""
+    return _compiled(func, {})
+
+
+def bare(func: F) -> F:
+    """Like `kernel`, for what allocates no array: no references are counted, which tells in the innermost loops."""
+    return _compiled(func, {"_nrt": False})
+
+
+def inner(func: F) -> F:
+    """Like `bare`, and copied into its callers."""
+    return _compiled(func, {"_nrt": False, "inline": "always"})
+
+
+def _compiled(func: F, options: dict[str, Any]) -> F:
     if not JIT:
         func.py_func = func  # type: ignore[attr-defined]
         return func
     import numba  # noqa: PLC0415
 
     try:
-        return cast(F, numba.njit(cache=True, nogil=True)(func))
+        return cast(F, numba.njit(cache=True, nogil=True, **options)(func))
     except RuntimeError:  # numba found no folder to write to
         _temporary_cache()
-        return cast(F, numba.njit(cache=True, nogil=True)(func))
+        return cast(F, numba.njit(cache=True, nogil=True, **options)(func))

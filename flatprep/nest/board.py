@@ -6,7 +6,7 @@ from typing import NamedTuple
 import numpy as np
 
 from flatprep.geom.bulge import Floats
-from flatprep.nest._jit import kernel
+from flatprep.nest._jit import bare
 from flatprep.nest.outlines import Ints, Outlines
 from flatprep.nest.tables import Tables, pair_loss
 
@@ -59,25 +59,25 @@ def new_board(variants: Sequence[int], rect: Floats, fixed: int = 0) -> Board:
     )
 
 
-@kernel
+@bare
 def put(outlines: Outlines, board: Board, i: int, v: int, x: float, y: float) -> None:
     """Lay piece i in variant v at (x, y); losses are left as they are."""
     board.variant[i] = v
     board.at[i, 0] = x
     board.at[i, 1] = y
-    board.left[i] = x + outlines.box[v, 0]
-    board.low[i] = y + outlines.box[v, 1]
-    board.right[i] = x + outlines.box[v, 2]
-    board.high[i] = y + outlines.box[v, 3]
+    board.left[i] = x + outlines.rings.box[v, 0]
+    board.low[i] = y + outlines.rings.box[v, 1]
+    board.right[i] = x + outlines.rings.box[v, 2]
+    board.high[i] = y + outlines.rings.box[v, 3]
 
 
-@kernel
+@bare
 def weighted_loss(
     outlines: Outlines, tables: Tables, board: Board, i: int, v: int, x: float, y: float, limit: float
 ) -> float:
     """Weighted loss (mm²) of piece i in variant v at (x, y); may stop as soon as it is above `limit`."""
-    left, low = x + outlines.box[v, 0], y + outlines.box[v, 1]
-    right, high = x + outlines.box[v, 2], y + outlines.box[v, 3]
+    left, low = x + outlines.rings.box[v, 0], y + outlines.rings.box[v, 1]
+    right, high = x + outlines.rings.box[v, 2], y + outlines.rings.box[v, 3]
     total = 0.0
     for j in range(len(board.variant)):
         if board.left[j] < right and board.right[j] > left and board.low[j] < high and board.high[j] > low and j != i:
@@ -89,7 +89,7 @@ def weighted_loss(
     return total
 
 
-@kernel
+@bare
 def settle(outlines: Outlines, tables: Tables, board: Board, i: int) -> None:
     """Compute the losses of piece i with all others anew."""
     x, y, v = board.at[i, 0], board.at[i, 1], board.variant[i]
@@ -107,7 +107,7 @@ def settle(outlines: Outlines, tables: Tables, board: Board, i: int) -> None:
         board.loss[j, i] = loss
 
 
-@kernel
+@bare
 def settle_all(outlines: Outlines, tables: Tables, board: Board) -> float:
     """Compute every loss anew and return their sum, mm²."""
     total = 0.0
@@ -121,7 +121,7 @@ def settle_all(outlines: Outlines, tables: Tables, board: Board) -> float:
     return total
 
 
-@kernel
+@bare
 def is_colliding(board: Board, i: int) -> bool:
     """Tell whether piece i overlaps another."""
     for j in range(len(board.variant)):

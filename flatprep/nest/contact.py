@@ -2,8 +2,8 @@
 
 import math
 
-from flatprep.nest._jit import kernel
-from flatprep.nest.outlines import Outlines
+from flatprep.nest._jit import bare
+from flatprep.nest.outlines import Outlines, Rings
 
 # Floor of the loss of a collision: this share of the larger diameter, times the smaller piece's mean side.
 FLOOR_SHARE = 0.002
@@ -13,27 +13,27 @@ REACH_SHARE = 0.01
 FADE = 5.0
 
 
-@kernel
-def is_inside(outlines: Outlines, v: int, px: float, py: float) -> bool:
+@bare
+def is_inside(rings: Rings, v: int, px: float, py: float) -> bool:
     """Tell whether a point (mm, in the frame of variant v) lies in its material: the even-odd rule."""
     odd = False
-    for e in range(outlines.edge_at[v], outlines.edge_at[v + 1]):
-        y0 = outlines.edge[e, 1]
-        y1 = outlines.edge[e, 3]
+    for e in range(rings.at[v], rings.at[v + 1]):
+        y0 = rings.edge[e, 1]
+        y1 = rings.edge[e, 3]
         if (y0 > py) != (y1 > py):
-            x0 = outlines.edge[e, 0]
-            if px < x0 + (py - y0) * (outlines.edge[e, 2] - x0) / (y1 - y0):
+            x0 = rings.edge[e, 0]
+            if px < x0 + (py - y0) * (rings.edge[e, 2] - x0) / (y1 - y0):
                 odd = not odd
     return odd
 
 
-@kernel
-def edges_cross(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> bool:
+@bare
+def edges_cross(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
     """Tell whether an edge of variant a crosses one of variant b moved by (dx, dy) mm."""
-    edge = outlines.edge
-    left, low = outlines.box[b, 0] + dx, outlines.box[b, 1] + dy
-    right, high = outlines.box[b, 2] + dx, outlines.box[b, 3] + dy
-    for i in range(outlines.edge_at[a], outlines.edge_at[a + 1]):
+    edge = rings.edge
+    left, low = rings.box[b, 0] + dx, rings.box[b, 1] + dy
+    right, high = rings.box[b, 2] + dx, rings.box[b, 3] + dy
+    for i in range(rings.at[a], rings.at[a + 1]):
         x0, y0, x1, y1 = edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]
         i_left, i_right = min(x0, x1), max(x0, x1)
         i_low, i_high = min(y0, y1), max(y0, y1)
@@ -41,7 +41,7 @@ def edges_cross(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> boo
             continue
         ux, uy = x1 - x0, y1 - y0
         sx, sy = x0 - dx, y0 - dy
-        for j in range(outlines.edge_at[b], outlines.edge_at[b + 1]):
+        for j in range(rings.at[b], rings.at[b + 1]):
             cx, cy, ex, ey = edge[j, 0], edge[j, 1], edge[j, 2], edge[j, 3]
             c_left = ux * (cy - sy) - uy * (cx - sx) > 0.0
             e_left = ux * (ey - sy) - uy * (ex - sx) > 0.0
@@ -54,26 +54,26 @@ def edges_cross(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> boo
     return False
 
 
-@kernel
-def overlap(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> bool:
+@bare
+def overlap(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
     """Tell whether variant b, its origin (dx, dy) mm from that of variant a, shares material with it; exact."""
     if (
-        outlines.box[a, 2] <= outlines.box[b, 0] + dx
-        or outlines.box[b, 2] + dx <= outlines.box[a, 0]
-        or outlines.box[a, 3] <= outlines.box[b, 1] + dy
-        or outlines.box[b, 3] + dy <= outlines.box[a, 1]
+        rings.box[a, 2] <= rings.box[b, 0] + dx
+        or rings.box[b, 2] + dx <= rings.box[a, 0]
+        or rings.box[a, 3] <= rings.box[b, 1] + dy
+        or rings.box[b, 3] + dy <= rings.box[a, 1]
     ):
         return False
-    if edges_cross(outlines, a, b, dx, dy):
+    if edges_cross(rings, a, b, dx, dy):
         return True
-    at_a = outlines.edge_at[a]
-    at_b = outlines.edge_at[b]
-    if is_inside(outlines, a, outlines.edge[at_b, 0] + dx, outlines.edge[at_b, 1] + dy):
+    at_a = rings.at[a]
+    at_b = rings.at[b]
+    if is_inside(rings, a, rings.edge[at_b, 0] + dx, rings.edge[at_b, 1] + dy):
         return True
-    return is_inside(outlines, b, outlines.edge[at_a, 0] - dx, outlines.edge[at_a, 1] - dy)
+    return is_inside(rings, b, rings.edge[at_a, 0] - dx, rings.edge[at_a, 1] - dy)
 
 
-@kernel
+@bare
 def squared_distance(px: float, py: float, x0: float, y0: float, x1: float, y1: float) -> float:
     """Square of the distance of a point from a segment, mm²."""
     ux, uy = x1 - x0, y1 - y0
@@ -88,34 +88,34 @@ def squared_distance(px: float, py: float, x0: float, y0: float, x1: float, y1: 
     return cross * cross / length
 
 
-@kernel
-def _corners_from_edges(outlines: Outlines, a: int, b: int, dx: float, dy: float, cap: float) -> float:
+@bare
+def _corners_from_edges(rings: Rings, a: int, b: int, dx: float, dy: float, cap: float) -> float:
     """Least squared distance, at most cap², of the corners of b moved by (dx, dy) from the edges of a."""
-    edge = outlines.edge
+    edge = rings.edge
     best = cap * cap
-    for j in range(outlines.edge_at[b], outlines.edge_at[b + 1]):
+    for j in range(rings.at[b], rings.at[b + 1]):
         px, py = edge[j, 0] + dx, edge[j, 1] + dy
         if (
-            px < outlines.box[a, 0] - cap
-            or px > outlines.box[a, 2] + cap
-            or py < outlines.box[a, 1] - cap
-            or py > outlines.box[a, 3] + cap
+            px < rings.box[a, 0] - cap
+            or px > rings.box[a, 2] + cap
+            or py < rings.box[a, 1] - cap
+            or py > rings.box[a, 3] + cap
         ):
             continue
-        for i in range(outlines.edge_at[a], outlines.edge_at[a + 1]):
+        for i in range(rings.at[a], rings.at[a + 1]):
             best = min(best, squared_distance(px, py, edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]))
     return best
 
 
-@kernel
-def gap(outlines: Outlines, a: int, b: int, dx: float, dy: float, cap: float) -> float:
+@bare
+def gap(rings: Rings, a: int, b: int, dx: float, dy: float, cap: float) -> float:
     """Distance of two outlines that do not cross, mm, or `cap` where they are farther apart than that."""
-    one = _corners_from_edges(outlines, a, b, dx, dy, cap)
-    two = _corners_from_edges(outlines, b, a, -dx, -dy, cap)
+    one = _corners_from_edges(rings, a, b, dx, dy, cap)
+    two = _corners_from_edges(rings, b, a, -dx, -dy, cap)
     return math.sqrt(min(one, two))
 
 
-@kernel
+@bare
 def depth(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> float:
     """Lower bound of the move that frees b from a, mm: the deepest overlap of two inner circles, 0 if none."""
     deepest = 0.0
@@ -129,7 +129,7 @@ def depth(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> float:
     return deepest
 
 
-@kernel
+@bare
 def collision_loss(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> float:
     """How bad a collision is: a smooth stand-in for the root of the overlap's area, weighed by the pieces' size.
 

@@ -3,7 +3,7 @@
 import numpy as np
 
 from flatprep.geom.bulge import Floats
-from flatprep.nest._jit import kernel
+from flatprep.nest._jit import bare
 from flatprep.nest.board import Board, put, settle, weighted_loss
 from flatprep.nest.outlines import Outlines
 from flatprep.nest.tables import Tables
@@ -18,33 +18,44 @@ LONGER, SHORTER = 1.1, 0.5
 HUGE = 1e300
 
 
-@kernel
-def clamp_to(outlines: Outlines, board: Board, k: int, v: int, spot: Floats) -> bool:
-    """Move `spot` (x, y) so that variant v there lies within rectangle k; False where it is too large for it."""
-    x0, x1 = board.rect[k, 0] - outlines.box[v, 0], board.rect[k, 2] - outlines.box[v, 2]
-    y0, y1 = board.rect[k, 1] - outlines.box[v, 1], board.rect[k, 3] - outlines.box[v, 3]
-    if x1 < x0 or y1 < y0:
-        return False
-    spot[0] = min(max(spot[0], x0), x1)
-    spot[1] = min(max(spot[1], y0), y1)
-    return True
+@bare
+def clamp(outlines: Outlines, board: Board, k: int, v: int, x: float, y: float) -> tuple[float, float]:
+    """Return the place nearest to (x, y) where variant v lies within rectangle k; for variants that fit."""
+    box, rect = outlines.rings.box, board.rect
+    x = min(max(x, rect[k, 0] - box[v, 0]), rect[k, 2] - box[v, 2])
+    y = min(max(y, rect[k, 1] - box[v, 1]), rect[k, 3] - box[v, 3])
+    return x, y
 
 
-@kernel
-def any_spot(outlines: Outlines, board: Board, k: int, v: int, spot: Floats, rng: np.random.Generator) -> bool:
-    """Set `spot` to a random place of variant v within rectangle k; False where it is too large for it."""
-    wide = board.rect[k, 2] - board.rect[k, 0] - (outlines.box[v, 2] - outlines.box[v, 0])
-    tall = board.rect[k, 3] - board.rect[k, 1] - (outlines.box[v, 3] - outlines.box[v, 1])
-    if wide < 0.0 or tall < 0.0:
-        return False
-    spot[0] = board.rect[k, 0] - outlines.box[v, 0] + wide * rng.random()
-    spot[1] = board.rect[k, 1] - outlines.box[v, 1] + tall * rng.random()
-    return True
+@bare
+def fits(outlines: Outlines, board: Board, k: int, v: int) -> bool:
+    """Tell whether variant v fits into rectangle k."""
+    box, rect = outlines.rings.box, board.rect
+    return rect[k, 2] - rect[k, 0] >= box[v, 2] - box[v, 0] and rect[k, 3] - rect[k, 1] >= box[v, 3] - box[v, 1]
 
 
-@kernel
-def corner_spot(outlines: Outlines, board: Board, i: int, v: int, spot: Floats, rng: np.random.Generator) -> None:
-    """Set `spot` so that a corner of variant v meets a corner of another piece near piece i."""
+@bare
+def any_spot(outlines: Outlines, board: Board, k: int, v: int, rng: np.random.Generator) -> tuple[float, float]:
+    """Return a random place of variant v within rectangle k; for variants that fit."""
+    box, rect = outlines.rings.box, board.rect
+    wide = rect[k, 2] - rect[k, 0] - (box[v, 2] - box[v, 0])
+    tall = rect[k, 3] - rect[k, 1] - (box[v, 3] - box[v, 1])
+    return rect[k, 0] - box[v, 0] + wide * rng.random(), rect[k, 1] - box[v, 1] + tall * rng.random()
+
+
+@bare
+def near_spot(outlines: Outlines, board: Board, i: int, v: int, rng: np.random.Generator) -> tuple[float, float]:
+    """Return a place of variant v whose middle is anywhere in the box of piece i."""
+    box = outlines.rings.box
+    x = board.left[i] + rng.random() * (board.right[i] - board.left[i]) - 0.5 * (box[v, 0] + box[v, 2])
+    y = board.low[i] + rng.random() * (board.high[i] - board.low[i]) - 0.5 * (box[v, 1] + box[v, 3])
+    return x, y
+
+
+@bare
+def corner_spot(outlines: Outlines, board: Board, i: int, v: int, rng: np.random.Generator) -> tuple[float, float]:
+    """Return a place where a corner of variant v meets a corner of another piece, mostly one near piece i."""
+    j = i
     for _ in range(8):
         j = int(rng.random() * len(board.variant))
         if (
@@ -55,117 +66,108 @@ def corner_spot(outlines: Outlines, board: Board, i: int, v: int, spot: Floats, 
             and board.high[j] >= board.low[i]
         ):
             break
-    w = board.variant[j]
-    mine = outlines.edge_at[v] + int(rng.random() * (outlines.edge_at[v + 1] - outlines.edge_at[v]))
-    other = outlines.edge_at[w] + int(rng.random() * (outlines.edge_at[w + 1] - outlines.edge_at[w]))
-    spot[0] = board.at[j, 0] + outlines.edge[other, 0] - outlines.edge[mine, 0]
-    spot[1] = board.at[j, 1] + outlines.edge[other, 1] - outlines.edge[mine, 1]
+    w, rings = board.variant[j], outlines.rings
+    mine = rings.at[v] + int(rng.random() * (rings.at[v + 1] - rings.at[v]))
+    other = rings.at[w] + int(rng.random() * (rings.at[w + 1] - rings.at[w]))
+    x = board.at[j, 0] + rings.edge[other, 0] - rings.edge[mine, 0]
+    return x, board.at[j, 1] + rings.edge[other, 1] - rings.edge[mine, 1]
 
 
-@kernel
-def keep_best(kept: Floats, v: int, k: int, spot: Floats, loss: float) -> None:
+@bare
+def keep_best(kept: Floats, v: int, k: int, x: float, y: float, loss: float) -> None:
     """Put a candidate into `kept` (rows: loss, variant, rectangle, x, y; best first) if it beats the last row."""
     if loss >= kept[KEPT - 1, 0]:
         return
     row = KEPT - 1
     while row > 0 and kept[row - 1, 0] > loss:
-        kept[row] = kept[row - 1]
+        for c in range(5):
+            kept[row, c] = kept[row - 1, c]
         row -= 1
-    kept[row, 0] = loss
-    kept[row, 1] = v
-    kept[row, 2] = k
-    kept[row, 3] = spot[0]
-    kept[row, 4] = spot[1]
+    kept[row, 0], kept[row, 1], kept[row, 2], kept[row, 3], kept[row, 4] = loss, v, k, x, y
 
 
-@kernel
+@bare
 def walk(
-    outlines: Outlines, tables: Tables, board: Board, i: int, kept: Floats, stop: float, rng: np.random.Generator
+    outlines: Outlines, tables: Tables, board: Board, i: int, kept: Floats, row: int, stop: float, rng: np.random.Generator
 ) -> int:
     """Walk downhill from a candidate (a row of `keep_best`), in place; return the number of places tried.
 
     The row's last number is its step (mm): it grows after a step that helps and is halved after one that does not.
     """
-    spot = np.empty(2)
-    v, k = int(kept[1]), int(kept[2])
+    v, k = int(kept[row, 1]), int(kept[row, 2])
+    best, best_x, best_y, step = kept[row, 0], kept[row, 3], kept[row, 4], kept[row, 5]
     tried = 0
-    while kept[5] > stop and kept[0] > 0.0:
+    while step > stop and best > 0.0:
         way = int(rng.random() * 4.0)
-        sign = 1.0 if rng.random() < 0.5 else -1.0
-        step = kept[5] * sign
-        best_x, best_y, best = kept[3], kept[4], kept[0]
-        for side in range(2):
-            ahead = step if side == 0 else -step
-            spot[0] = kept[3] + (0.0 if way == 1 else ahead)
-            spot[1] = kept[4] + (0.0 if way == 0 else (-ahead if way == 3 else ahead))
-            clamp_to(outlines, board, k, v, spot)
-            loss = weighted_loss(outlines, tables, board, i, v, spot[0], spot[1], best)
+        ahead = step if rng.random() < 0.5 else -step
+        gained = False
+        for _ in range(2):
+            x = best_x + (0.0 if way == 1 else ahead)
+            y = best_y + (0.0 if way == 0 else (-ahead if way == 3 else ahead))
+            x, y = clamp(outlines, board, k, v, x, y)
+            loss = weighted_loss(outlines, tables, board, i, v, x, y, best)
             tried += 1
             if loss < best:
-                best, best_x, best_y = loss, spot[0], spot[1]
+                best, best_x, best_y = loss, x, y
+                gained = True
                 break
-        if best < kept[0]:
-            kept[0], kept[3], kept[4] = best, best_x, best_y
-            kept[5] *= LONGER
-        else:
-            kept[5] *= SHORTER
+            ahead = -ahead
+        step *= LONGER if gained else SHORTER
+    kept[row, 0], kept[row, 3], kept[row, 4], kept[row, 5] = best, best_x, best_y, step
     return tried
 
 
-@kernel
-def sample(
-    outlines: Outlines, tables: Tables, board: Board, i: int, kept: Floats, rng: np.random.Generator
-) -> int:
-    """Fill `kept` with the best of random places for piece i and where it is; return the number of places tried."""
+@bare
+def sample(outlines: Outlines, tables: Tables, board: Board, i: int, kept: Floats, rng: np.random.Generator) -> int:
+    """Fill `kept` with the best of random places for piece i; return the number of places tried."""
     shape = outlines.shape[board.variant[i]]
     first = outlines.first[shape]
     variants = outlines.first[shape + 1] - first
-    spot = np.empty(2)
-    kept[:, 0] = HUGE
-    here = weighted_loss(outlines, tables, board, i, board.variant[i], board.at[i, 0], board.at[i, 1], HUGE)
-    spot[0], spot[1] = board.at[i, 0], board.at[i, 1]
-    keep_best(kept, board.variant[i], board.home[i], spot, here)
+    tried = 0
     for trial in range(WIDE_SAMPLES + NEAR_SAMPLES + CORNER_SAMPLES):
         v = first + int(rng.random() * variants)
         k = board.home[i]
         if trial < WIDE_SAMPLES:
             k = int(rng.random() * len(board.rect))
-            if not any_spot(outlines, board, k, v, spot, rng):
-                continue
+        elif rng.random() < 0.5:
+            v = board.variant[i]
+        if not fits(outlines, board, k, v):
+            continue
+        if trial < WIDE_SAMPLES:
+            x, y = any_spot(outlines, board, k, v, rng)
         elif trial < WIDE_SAMPLES + NEAR_SAMPLES:
-            if rng.random() < 0.5:
-                v = board.variant[i]
-            mid_x = board.left[i] + rng.random() * (board.right[i] - board.left[i])
-            mid_y = board.low[i] + rng.random() * (board.high[i] - board.low[i])
-            spot[0] = mid_x - 0.5 * (outlines.box[v, 0] + outlines.box[v, 2])
-            spot[1] = mid_y - 0.5 * (outlines.box[v, 1] + outlines.box[v, 3])
-            if not clamp_to(outlines, board, k, v, spot):
-                continue
+            x, y = near_spot(outlines, board, i, v, rng)
         else:
-            corner_spot(outlines, board, i, v, spot, rng)
-            if not clamp_to(outlines, board, k, v, spot):
-                continue
-        loss = weighted_loss(outlines, tables, board, i, v, spot[0], spot[1], kept[KEPT - 1, 0])
-        keep_best(kept, v, k, spot, loss)
-    return 1 + WIDE_SAMPLES + NEAR_SAMPLES + CORNER_SAMPLES
+            x, y = corner_spot(outlines, board, i, v, rng)
+        x, y = clamp(outlines, board, k, v, x, y)
+        tried += 1
+        keep_best(kept, v, k, x, y, weighted_loss(outlines, tables, board, i, v, x, y, kept[KEPT - 1, 0]))
+    return tried
 
 
-@kernel
-def move_piece(outlines: Outlines, tables: Tables, board: Board, i: int, rng: np.random.Generator) -> int:
-    """Look for a place of piece i with less weighted loss and move it there; return the number of places tried."""
-    kept = np.empty((KEPT, 6))
-    tried = sample(outlines, tables, board, i, kept, rng)
-    here = weighted_loss(outlines, tables, board, i, board.variant[i], board.at[i, 0], board.at[i, 1], HUGE)
-    side = outlines.size[outlines.shape[board.variant[i]], 3]
+@bare
+def move_piece(
+    outlines: Outlines, tables: Tables, board: Board, i: int, kept: Floats, rng: np.random.Generator
+) -> int:
+    """Look for a place of piece i with less weighted loss and move it there; return the number of places tried.
+
+    `kept` is room to work in, shape (KEPT, 6).
+    """
+    v, x, y = board.variant[i], board.at[i, 0], board.at[i, 1]
+    here = weighted_loss(outlines, tables, board, i, v, x, y, HUGE)
+    for row in range(KEPT):
+        kept[row, 0] = HUGE
+    keep_best(kept, v, board.home[i], x, y, here)
+    tried = sample(outlines, tables, board, i, kept, rng) + 1
+    side = outlines.size[outlines.shape[v], 3]
     best = 0
     for row in range(KEPT):
-        if kept[row, 0] >= HUGE:
-            continue
-        kept[row, 5] = FIRST_STEP * side
-        tried += walk(outlines, tables, board, i, kept[row], ROUGH_STEP * side, rng)
-        if kept[row, 0] < kept[best, 0]:
-            best = row
-    tried += walk(outlines, tables, board, i, kept[best], FINE_STEP * side, rng)
+        if kept[row, 0] < HUGE:
+            kept[row, 5] = FIRST_STEP * side
+            tried += walk(outlines, tables, board, i, kept, row, ROUGH_STEP * side, rng)
+            if kept[row, 0] < kept[best, 0]:
+                best = row
+    tried += walk(outlines, tables, board, i, kept, best, FINE_STEP * side, rng)
     if kept[best, 0] < here:
         board.home[i] = int(kept[best, 2])
         put(outlines, board, i, int(kept[best, 1]), kept[best, 3], kept[best, 4])

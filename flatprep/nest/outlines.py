@@ -19,17 +19,32 @@ HAIR_MM = 2e-7
 LONGEST_MITRE = 1000.0
 
 
+class Rings(NamedTuple):
+    """The edges of all variants: what the exact tests read.
+
+    Attributes
+    ----------
+    edge : ndarray, shape (edges, 4), float64
+        x0, y0, x1, y1 in mm, material on the left, drawn in by `HAIR_MM`; the edges of variant v are rows at[v] to
+        at[v + 1].
+    at : ndarray, shape (v + 1,), int64
+    box : ndarray, shape (v, 4), float64
+        Least x, least y, greatest x, greatest y of the true outline, mm.
+    """
+
+    edge: Floats
+    at: Ints
+    box: Floats
+
+
 class Outlines(NamedTuple):
     """Variants: a shape at one turn, mirrored or not, about its own origin. v counts variants, s shapes.
 
     Attributes
     ----------
-    edge : ndarray, shape (edges, 4), float64
-        x0, y0, x1, y1 in mm, material on the left; the edges of variant v are rows edge_at[v] to edge_at[v + 1].
+    rings : Rings
     pole : ndarray, shape (poles, 3), float64
         Centre x, y and radius (mm) of circles inside the material, largest first; rows pole_at[v] to pole_at[v + 1].
-    box : ndarray, shape (v, 4), float64
-        Least x, least y, greatest x, greatest y of the true outline, mm.
     turn : ndarray, shape (v, 3), float64
         Cosine and sine of the turn, and the turn in degrees as it was given.
     shape, mirrored : ndarray, shape (v,), int64
@@ -39,11 +54,9 @@ class Outlines(NamedTuple):
         Fourth root of the hull's area (mm^0.5), diameter (mm), geometric mean and smaller one of the box's sides (mm).
     """
 
-    edge: Floats
-    edge_at: Ints
+    rings: Rings
     pole: Floats
     pole_at: Ints
-    box: Floats
     turn: Floats
     shape: Ints
     mirrored: Ints
@@ -147,11 +160,9 @@ def pack(shapes: Sequence[Shape], turns: Sequence[Sequence[float]]) -> Outlines:
                 flipped.append(int(mirrored))
         first.append(len(kind))
     return Outlines(
-        edge=np.ascontiguousarray(np.vstack(edges)),
-        edge_at=_starts(edges),
+        rings=Rings(np.ascontiguousarray(np.vstack(edges)), _starts(edges), np.array(boxes)),
         pole=np.ascontiguousarray(np.vstack(poles)),
         pole_at=_starts(poles),
-        box=np.array(boxes),
         turn=np.array(turn),
         shape=np.array(kind, dtype=np.int64),
         mirrored=np.array(flipped, dtype=np.int64),

@@ -6,7 +6,7 @@ import numpy as np
 
 from flatprep.nest.board import put
 from flatprep.nest.engine import Engine, Spots
-from flatprep.nest.moves import clamp_to
+from flatprep.nest.moves import clamp, fits
 
 ROAM_SHARE = 0.8
 LONGEST_STEP, SHORTEST_STEP = 0.05, 0.001
@@ -34,11 +34,10 @@ def shorten(engine: Engine, length_mm: float) -> None:
     for i in range(board.movable[0]):
         if board.home[i] != last:
             continue
-        spot = board.at[i].copy()
+        x, y = board.at[i]
         if 0.5 * (board.left[i] + board.right[i]) > cut:
-            spot[0] -= by
-        clamp_to(engine.outlines, board, last, board.variant[i], spot)
-        put(engine.outlines, board, i, board.variant[i], spot[0], spot[1])
+            x -= by
+        put(engine.outlines, board, i, board.variant[i], *clamp(engine.outlines, board, last, board.variant[i], x, y))
 
 
 def swap_two(engine: Engine) -> None:
@@ -56,10 +55,10 @@ def swap_two(engine: Engine) -> None:
     homes = board.home[i], board.home[j]
     for k, (x, y), home in ((i, middle[1], homes[1]), (j, middle[0], homes[0])):
         v = int(rng.integers(o.first[shape[k]], o.first[shape[k] + 1]))
-        spot = np.array([x - 0.5 * (o.box[v, 0] + o.box[v, 2]), y - 0.5 * (o.box[v, 1] + o.box[v, 3])])
-        if clamp_to(o, board, home, v, spot):
+        if fits(o, board, home, v):
             board.home[k] = home
-            put(o, board, k, v, spot[0], spot[1])
+            box = o.rings.box[v]
+            put(o, board, k, v, *clamp(o, board, home, v, x - 0.5 * (box[0] + box[2]), y - 0.5 * (box[1] + box[3])))
 
 
 def roam(engine: Engine, best: Spots, found: Callable[[Spots], None]) -> Spots:

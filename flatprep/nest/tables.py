@@ -5,7 +5,7 @@ For every pair of shapes and relative turn a grid of nodes covers the box in whi
 - its separation: where the two are free, the distance of the outlines; where they collide, minus a lower bound of
   the move that frees them. Both change by at most the distance moved (they are 1-Lipschitz), so the nearest node
   alone mostly tells for sure whether an offset is free or collides; the rest is tested exactly;
-- the loss of the collision, read by bilinear interpolation.
+- the loss of the collision and how it changes along both axes: between nodes it is taken to be linear.
 
 So a look-up costs the same for any number of corners and windows, and nothing is computed before it is needed.
 """
@@ -17,7 +17,7 @@ import numpy as np
 import numpy.typing as npt
 
 from flatprep.geom.bulge import Floats
-from flatprep.nest._jit import kernel
+from flatprep.nest._jit import bare, inner
 from flatprep.nest.contact import collision_loss, depth, gap, overlap
 from flatprep.nest.outlines import Ints, Outlines, turned
 
@@ -27,6 +27,8 @@ LEAST_NODES = 12
 MOST_MB = 140.0
 # Separations are stored as float32: they are read short by this much of the grid's cell.
 ROUNDING = 1e-3
+LEAST_APART = 1e-30  # stands for 0, which means: not yet known
+LEAST_LOSS = 1e-12  # of a collision, mm²
 WHOLE_TURN = 360_000_000  # in millionths of a degree
 
 
@@ -41,8 +43,8 @@ class Tables(NamedTuple):
         First node and spacing of nodes, mm, as offsets of b from a with the turn of a undone.
     pair : ndarray, shape (t, 2), int64
         Variants a and b that stand for the grid.
-    node : ndarray, shape (t, n, n, 2), float32
-        Separation (mm; 0: not yet known) and loss (mm²) at node (x, y).
+    node : ndarray, shape (t, n, n, 4), float32
+        Of node (x, y): separation (mm; 0: not yet known), loss (mm²), change of the loss (mm²) over one cell in x, in y.
     """
 
     of: npt.NDArray[np.int32]
@@ -57,19 +59,19 @@ def no_tables(outlines: Outlines) -> Tables:
     v = len(outlines.shape)
     none = np.zeros((0, 2))
     return Tables(
-        np.zeros((v, v), dtype=np.int32), none, none, np.zeros((0, 2), dtype=np.int64), np.zeros((0, 1, 1, 2), np.float32)
+        np.zeros((v, v), dtype=np.int32), none, none, np.zeros((0, 2), dtype=np.int64), np.zeros((0, 1, 1, 4), np.float32)
     )
 
 
 def prepare_tables(outlines: Outlines) -> Tables:
     """Empty grids for every pair of variants; pairs that differ by a common turn share one."""
     of, pairs = _grids_of_pairs(outlines)
-    n = int(np.clip(np.sqrt(MOST_MB * 1e6 / (8.0 * len(pairs))), LEAST_NODES, MOST_NODES))
+    n = int(np.clip(np.sqrt(MOST_MB * 1e6 / (16.0 * len(pairs))), LEAST_NODES, MOST_NODES))
     a, b = pairs.T
     reach = _boxes_unturned(outlines, a, a), _boxes_unturned(outlines, a, b)
     low = reach[0][:, :2] - reach[1][:, 2:]
     high = reach[0][:, 2:] - reach[1][:, :2]
-    return Tables(of, low, (high - low) / (n - 1), pairs, np.zeros((len(pairs), n, n, 2), dtype=np.float32))
+    return Tables(of, low, (high - low) / (n - 1), pairs, np.zeros((len(pairs), n, n, 4), dtype=np.float32))
 
 
 def _grids_of_pairs(outlines: Outlines) -> tuple[npt.NDArray[np.int32], Ints]:
@@ -88,15 +90,15 @@ def _grids_of_pairs(outlines: Outlines) -> tuple[npt.NDArray[np.int32], Ints]:
 
 def _boxes_unturned(outlines: Outlines, a: Ints, b: Ints) -> Floats:
     """Boxes of variants b with the turns of variants a undone, shape (t, 4)."""
-    boxes = np.empty((len(a), 4))
+    rings, boxes = outlines.rings, np.empty((len(a), 4))
     for t, (va, vb) in enumerate(zip(a, b, strict=True)):
-        corners = outlines.edge[outlines.edge_at[vb] : outlines.edge_at[vb + 1], :2]
+        corners = rings.edge[rings.at[vb] : rings.at[vb + 1], :2]
         back = turned(corners, -outlines.turn[va, 2], mirrored=False)
         boxes[t] = *back.min(axis=0), *back.max(axis=0)
     return boxes
 
 
-@kernel
+@bare
 def fill_node(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> None:
     """Compute one node of a grid."""
     a, b = tables.pair[t, 0], tables.pair[t, 1]
@@ -104,63 +106,44 @@ def fill_node(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> Non
     y = tables.origin[t, 1] + j * tables.cell[t, 1]
     c, s = outlines.turn[a, 0], outlines.turn[a, 1]
     dx, dy = c * x - s * y, s * x + c * y
-    cap = math.hypot(tables.cell[t, 0], tables.cell[t, 1])
-    if overlap(outlines, a, b, dx, dy):
+    if overlap(outlines.rings, a, b, dx, dy):
         apart = -depth(outlines, a, b, dx, dy)
     else:
-        apart = gap(outlines, a, b, dx, dy, cap)
-    tables.node[t, i, j, 1] = collision_loss(outlines, a, b, dx, dy)
-    tables.node[t, i, j, 0] = apart if abs(apart) > 1e-30 else 1e-30
+        apart = gap(outlines.rings, a, b, dx, dy, math.hypot(tables.cell[t, 0], tables.cell[t, 1]))
+    ax, ay = 0.5 * c * tables.cell[t, 0], 0.5 * s * tables.cell[t, 0]
+    bx, by = -0.5 * s * tables.cell[t, 1], 0.5 * c * tables.cell[t, 1]
+    node = tables.node[t, i, j]
+    node[1] = collision_loss(outlines, a, b, dx, dy)
+    node[2] = collision_loss(outlines, a, b, dx + ax, dy + ay) - collision_loss(outlines, a, b, dx - ax, dy - ay)
+    node[3] = collision_loss(outlines, a, b, dx + bx, dy + by) - collision_loss(outlines, a, b, dx - bx, dy - by)
+    node[0] = apart if abs(apart) > LEAST_APART else LEAST_APART
 
 
-@kernel
-def _interpolated_loss(outlines: Outlines, tables: Tables, t: int, u: float, w: float) -> float:
-    """Loss (mm²) at (u, w), in nodes from the grid's origin."""
-    n = tables.node.shape[1]
-    i = min(max(int(u), 0), n - 2)
-    j = min(max(int(w), 0), n - 2)
-    for k in range(i, i + 2):
-        for m in range(j, j + 2):
-            if tables.node[t, k, m, 0] == 0.0:
-                fill_node(outlines, tables, t, k, m)
-    node = tables.node
-    fu, fw = u - i, w - j
-    near = node[t, i, j, 1] * (1.0 - fw) + node[t, i, j + 1, 1] * fw
-    far = node[t, i + 1, j, 1] * (1.0 - fw) + node[t, i + 1, j + 1, 1] * fw
-    return near * (1.0 - fu) + far * fu
-
-
-@kernel
-def _table_loss(outlines: Outlines, tables: Tables, t: int, a: int, b: int, dx: float, dy: float) -> float:
-    """Loss of variants a and b, whose grid is t and kept for (a, b)."""
+@inner
+def pair_loss(outlines: Outlines, tables: Tables, a: int, b: int, dx: float, dy: float) -> float:
+    """Loss (mm²) of variant b, its origin (dx, dy) mm from that of variant a: 0 just where they do not overlap."""
+    t = tables.of[a, b]
+    if t == 0:
+        return collision_loss(outlines, a, b, dx, dy) if overlap(outlines.rings, a, b, dx, dy) else 0.0
+    if t < 0:
+        a, b, dx, dy, t = b, a, -dx, -dy, -t
+    t -= 1
     c, s = outlines.turn[a, 0], outlines.turn[a, 1]
-    u = (c * dx + s * dy - tables.origin[t, 0]) / tables.cell[t, 0]
-    w = (c * dy - s * dx - tables.origin[t, 1]) / tables.cell[t, 1]
+    wide, tall = tables.cell[t, 0], tables.cell[t, 1]
+    u = (c * dx + s * dy - tables.origin[t, 0]) / wide
+    w = (c * dy - s * dx - tables.origin[t, 1]) / tall
     n = tables.node.shape[1]
     if u <= 0.0 or w <= 0.0 or u >= n - 1 or w >= n - 1:
         return 0.0
     i, j = int(u + 0.5), int(w + 0.5)
-    apart = float(tables.node[t, i, j, 0])
-    if apart == 0.0:
+    if tables.node[t, i, j, 0] == 0.0:
         fill_node(outlines, tables, t, i, j)
-        apart = float(tables.node[t, i, j, 0])
-    eu, ew = (u - i) * tables.cell[t, 0], (w - j) * tables.cell[t, 1]
-    off = math.sqrt(eu * eu + ew * ew) + ROUNDING * tables.cell[t, 0]
+    apart = float(tables.node[t, i, j, 0])
+    u, w = u - i, w - j
+    off = math.sqrt(u * u * wide * wide + w * w * tall * tall) + ROUNDING * wide
     if apart > off:
         return 0.0
-    if apart >= -off and not overlap(outlines, a, b, dx, dy):
+    if apart >= -off and not overlap(outlines.rings, a, b, dx, dy):
         return 0.0
-    return _interpolated_loss(outlines, tables, t, u, w)
-
-
-@kernel
-def pair_loss(outlines: Outlines, tables: Tables, a: int, b: int, dx: float, dy: float) -> float:
-    """Loss (mm²) of variant b, its origin (dx, dy) mm from that of variant a: 0 just where they do not overlap."""
-    t = tables.of[a, b]
-    if t > 0:
-        return _table_loss(outlines, tables, t - 1, a, b, dx, dy)
-    if t < 0:
-        return _table_loss(outlines, tables, -t - 1, b, a, -dx, -dy)
-    if overlap(outlines, a, b, dx, dy):
-        return collision_loss(outlines, a, b, dx, dy)
-    return 0.0
+    loss = tables.node[t, i, j, 1] + u * tables.node[t, i, j, 2] + w * tables.node[t, i, j, 3]
+    return max(float(loss), LEAST_LOSS)

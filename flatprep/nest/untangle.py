@@ -5,10 +5,10 @@ from collections.abc import Callable
 import numpy as np
 
 from flatprep.geom.bulge import Floats
-from flatprep.nest._jit import kernel
+from flatprep.nest._jit import bare, kernel
 from flatprep.nest.board import Board, is_colliding, put, settle_all
 from flatprep.nest.clock import Clock
-from flatprep.nest.moves import move_piece
+from flatprep.nest.moves import KEPT, move_piece
 from flatprep.nest.outlines import Ints, Outlines
 from flatprep.nest.tables import Tables
 
@@ -20,7 +20,7 @@ GAIN = 0.02
 CALL = 40_000
 
 
-@kernel
+@bare
 def reweigh(board: Board) -> float:
     """Update the weights after a sweep and return the sum of losses, mm²."""
     n, movable = len(board.variant), board.movable[0]
@@ -41,8 +41,10 @@ def reweigh(board: Board) -> float:
     return total
 
 
-@kernel
-def sweep(outlines: Outlines, tables: Tables, board: Board, order: Ints, rng: np.random.Generator) -> int:
+@bare
+def sweep(
+    outlines: Outlines, tables: Tables, board: Board, order: Ints, kept: Floats, rng: np.random.Generator
+) -> int:
     """Visit every colliding piece once, in random order; return the number of places tried."""
     many = 0
     for i in range(board.movable[0]):
@@ -55,7 +57,7 @@ def sweep(outlines: Outlines, tables: Tables, board: Board, order: Ints, rng: np
     tried = 0
     for i in range(many):
         if is_colliding(board, order[i]):
-            tried += move_piece(outlines, tables, board, order[i], rng)
+            tried += move_piece(outlines, tables, board, order[i], kept, rng)
     return tried
 
 
@@ -80,9 +82,10 @@ def sweeps(
         Places tried.
     """
     order = np.empty(len(board.variant), dtype=np.int64)
+    room = np.empty((KEPT, 6))
     tried = 0
     while tried < CALL and loss[0] > 0.0 and count[0] < count[1]:
-        tried += sweep(outlines, tables, board, order, rng)
+        tried += sweep(outlines, tables, board, order, room, rng)
         total = reweigh(board)
         count[0] += 1
         if total < loss[0]:
