@@ -143,9 +143,7 @@ def _add_text(out: Collected, loose: Loose, options: CollectOptions) -> None:
         insert = e.dxf.insert
         if e.dxftype() != "MTEXT" and e.dxf.hasattr("extrusion"):
             insert = e.ocs().to_wcs(insert)
-        height = float(
-            e.dxf.get("char_height", e.dxf.get("height", 0.0)) if e.dxftype() == "MTEXT" else e.dxf.get("height", 0.0)
-        )
+        height = float(e.dxf.get("char_height" if e.dxftype() == "MTEXT" else "height", 0.0))
     except Exception:  # a damaged text must not cost the outlines
         out.skipped.append(_skip(loose, "an unreadable text"))
         return

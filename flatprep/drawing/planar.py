@@ -14,7 +14,8 @@ from shapely.geometry import LineString, Polygon
 from shapely.geometry.base import BaseGeometry
 
 from flatprep.drawing.chain import Chain
-from flatprep.geom.bulge import Floats, Segments, points_along, segments, split_arcs
+from flatprep.drawing.ends import node_ids
+from flatprep.geom.bulge import Floats, Segments, length, points_along, segments, split_arcs
 from flatprep.model.drawing import Curve
 
 CHORD_MM = 0.002
@@ -51,7 +52,7 @@ def regions_of_net(curves: Sequence[Curve], join_mm: float) -> Regions:
     join_mm
         An end this near to another curve is taken to touch it.
     """
-    lines = [LineString(points_along(c.xyb, closed=c.closed, chord_mm=CHORD_MM)) for c in curves]
+    lines = _with_common_ends(curves, join_mm)
     lines = [_onto_neighbours(line, lines, join_mm) for line in lines]
     faces = polygonize(get_parts(unary_union(lines, grid_size=_GRID_MM)).tolist())
     whole = unary_union(get_parts(faces).tolist())
@@ -97,6 +98,17 @@ def _regions(whole: BaseGeometry, curves: Sequence[Curve]) -> Regions:
         within = any(area.covers(middle) for area in areas)
         (inner if within else rest).append(curve)
     return Regions(rings, tuple(inner), tuple(rest))
+
+
+def _with_common_ends(curves: Sequence[Curve], join_mm: float) -> list[LineString]:
+    """Chords of the curves, ends that are one point moved onto the first of them."""
+    chords = [points_along(c.xyb, closed=False, chord_mm=CHORD_MM) for c in curves]
+    ends = np.array([p for xy in chords for p in (xy[0], xy[-1])])
+    nodes = node_ids(ends, lambda i: length(curves[i].xyb, closed=False), join_mm)
+    first = np.unique(nodes, return_index=True)[1]
+    for k, xy in enumerate(chords):
+        xy[0], xy[-1] = ends[first[nodes[2 * k]]], ends[first[nodes[2 * k + 1]]]
+    return [LineString(xy) for xy in chords]
 
 
 def _onto_neighbours(line: LineString, lines: Sequence[LineString], reach: float) -> LineString:

@@ -85,7 +85,7 @@ def _signatures(polylines: Sequence[Floats]) -> Floats:
     # the top of an arc lies right of its chord by bulge x half the chord
     right = np.column_stack([z[:, 1] - a[:, 1], a[:, 0] - z[:, 0]])
     out[single] = np.hstack([a, z, (a + z + right * pairs[:, 0, 2:]) / 2.0])
-    for k in np.flatnonzero(~single):
+    for k in np.flatnonzero(~single).tolist():
         p = polylines[k]
         out[k] = (*p[0, :2], *p[-1, :2], *_middle(p, closed=False))
     swap = (out[:, 0] > out[:, 2]) | ((out[:, 0] == out[:, 2]) & (out[:, 1] > out[:, 3]))

@@ -1,0 +1,43 @@
+"""Workers that hang, die or eat memory cost one item."""
+
+import os
+import time
+
+import pytest
+
+from flatprep.base.workers import Caps, Lost, Pool
+
+
+def work(item: object) -> object:
+    if item == "hang":
+        time.sleep(60)
+    if item == "die":
+        os._exit(9)
+    if item == "eat":
+        return len(bytearray(3_000_000_000))
+    return ("done", item)
+
+
+@pytest.mark.parametrize("jobs", [1, 3])
+def test_results_come_in_order(jobs):
+    pool = Pool(work, Caps(lambda item: 20.0), jobs)
+    assert list(pool.run(range(12))) == [("done", k) for k in range(12)]
+
+
+def test_hanging_and_dying_items_cost_themselves():
+    pool = Pool(work, Caps(lambda item: 0.5 if item == "hang" else 20.0), 1)
+    first, hung, died, last = pool.run([1, "hang", "die", 2])
+    assert (first, last) == (("done", 1), ("done", 2))
+    assert isinstance(hung, Lost)
+    assert "more than" in hung.why
+    assert isinstance(died, Lost)
+    assert "worker" in died.why
+
+
+@pytest.mark.skipif(not os.path.exists("/proc/self/statm"), reason="this system caps no memory")
+def test_memory_is_capped():
+    assert isinstance(next(Pool(work, Caps(lambda item: 20.0, megabytes=500), 1).run(["eat"])), Lost)
+
+
+def test_nothing_to_do():
+    assert list(Pool(work, Caps(lambda item: 1.0), 2).run([])) == []

@@ -1,0 +1,19 @@
+"""What all tests share."""
+
+import os
+from pathlib import Path
+
+import pytest
+from hypothesis import settings
+
+settings.register_profile("house", deadline=None, max_examples=60, derandomize=True)
+settings.load_profile("house")
+
+
+@pytest.fixture(scope="session")
+def shared_data() -> Path:
+    """The shared corpus, where FLATPREP_DATA says it is."""
+    folder = os.environ.get("FLATPREP_DATA")
+    if not folder:
+        pytest.skip("FLATPREP_DATA is not set: the shared corpus is not here")
+    return Path(folder)

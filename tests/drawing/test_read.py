@@ -1,0 +1,538 @@
+"""Drawings read: the same part in every way of writing it, and everything that is not a part told."""
+
+from math import cos, pi, radians, sin
+
+import ezdxf
+import pytest
+from ezdxf.math import Matrix44
+
+from flatprep.base.errors import DrawingError
+from flatprep.drawing.limits import ReadLimits
+from flatprep.drawing.read import ReadOptions, read
+from flatprep.model.drawing import Role, UnitsFrom
+
+from .draw import CIRCLE_10, box, drawn, new, save
+
+PLATE = 80 * 50 - CIRCLE_10
+
+
+def kinds(drawing):
+    return [f.kind for f in drawing.faults]
+
+
+def plate(msp):
+    box(msp, 0, 0, 80, 50)
+    msp.add_circle((40, 25), 10)
+
+
+def circle_of_arcs(msp):
+    box(msp, 0, 0, 80, 50)
+    msp.add_arc((40, 25), 10, 10, 190)
+    msp.add_arc((40, 25), 10, 190, 370)
+
+
+def full_turn_arc(msp):
+    box(msp, 0, 0, 80, 50)
+    msp.add_arc((40, 25), 10, 0, 360)
+
+
+def bulges(msp):
+    msp.add_lwpolyline([(0, 0), (80, 0), (80, 50), (0, 50), (0, 0)], close=True)  # closed twice over
+    msp.add_lwpolyline([(30, 25, 1), (50, 25, 1)], format="xyb", close=True)
+
+
+def old_polyline(msp):
+    msp.add_polyline2d([(0, 0), (80, 0), (80, 50), (0, 50)], close=True)
+    msp.add_polyline2d([(30, 25, 1), (50, 25, 1)], format="xyb", close=True)
+
+
+def full_ellipse(msp):
+    box(msp, 0, 0, 80, 50)
+    msp.add_ellipse((40, 25), (0, 10), 1.0)
+
+
+def half_ellipses(msp):
+    box(msp, 0, 0, 80, 50)
+    msp.add_ellipse((40, 25), (10, 0), 1.0, 0, pi)
+    msp.add_ellipse((40, 25), (10, 0), 1.0, pi, 2 * pi)
+
+
+def rational_spline(msp):
+    box(msp, 0, 0, 80, 50)
+    s = msp.add_spline(degree=2)
+    ring = [(1, 0), (1, 1), (0, 1), (-1, 1), (-1, 0), (-1, -1), (0, -1), (1, -1), (1, 0)]
+    s.control_points = [(40 + 10 * x, 25 + 10 * y) for x, y in ring]
+    s.knots = [0, 0, 0, 1, 1, 2, 2, 3, 3, 4, 4, 4]
+    s.weights = [1, 0.5**0.5] * 4 + [1]
+
+
+def mirrored_plane(msp):
+    for a, b in (((0, 0), (-80, 0)), ((-80, 0), (-80, 50)), ((-80, 50), (0, 50)), ((0, 50), (0, 0))):
+        msp.add_lwpolyline([a, b], dxfattribs={"extrusion": (0, 0, -1)})
+    msp.add_arc((-40, 25), 10, 0, 90, dxfattribs={"extrusion": (0, 0, -1)})
+    msp.add_arc((-40, 25), 10, 90, 360, dxfattribs={"extrusion": (0, 0, -1)})
+
+
+@pytest.mark.parametrize(
+    "paint",
+    [
+        plate,
+        circle_of_arcs,
+        full_turn_arc,
+        bulges,
+        old_polyline,
+        full_ellipse,
+        half_ellipses,
+        rational_spline,
+        mirrored_plane,
+    ],
+)
+def test_same_part_however_written(tmp_path, paint):
+    drawing = read(drawn(tmp_path, paint))
+    assert kinds(drawing) == []
+    (part,) = drawing.parts
+    assert part.name == "leaf"
+    assert part.area_mm2 == pytest.approx(PLATE, rel=1e-6)
+    assert part.cut_length_mm == pytest.approx(260 + 20 * pi, rel=1e-6)
+    assert len(part.holes) == 1
+    assert part.holes[0].circle == pytest.approx((40, 25, 10), abs=1e-5)
+    assert part.moments.centroid == pytest.approx((40, 25), abs=1e-5)
+
+
+@pytest.mark.parametrize("version", ["R12", "R2000", "R2004", "R2007", "R2010", "R2013", "R2018"])
+def test_every_version(tmp_path, version):
+    (part,) = read(drawn(tmp_path, circle_of_arcs, version)).parts
+    assert part.area_mm2 == pytest.approx(PLATE)
+
+
+@pytest.mark.parametrize(("flip", "turn", "scale"), [(1, 0, 1), (1, 33, 1), (-1, 90, 1), (1, -60, 2), (-1, 12, 0.5)])
+def test_blocks_nested_turned_mirrored_scaled(tmp_path, flip, turn, scale):
+    doc = new()
+    plate(doc.blocks.new("INNER"))
+    doc.blocks.new("OUTER", base_point=(5, 5)).add_blockref("INNER", (10, 0), dxfattribs={"rotation": 20})
+    at = {"rotation": turn, "xscale": flip * scale, "yscale": scale, "zscale": scale}
+    doc.modelspace().add_blockref("OUTER", (300, -40), dxfattribs=at)
+    (part,) = read(save(doc, tmp_path)).parts
+    assert part.area_mm2 == pytest.approx(PLATE * scale**2, rel=1e-9)
+    # the hole's centre by hand: turn by 20, move, take off the base point, scale, turn, move
+    x = 40 * cos(radians(20)) - 25 * sin(radians(20)) + 10 - 5
+    y = 40 * sin(radians(20)) + 25 * cos(radians(20)) - 5
+    x, y = flip * scale * x, scale * y
+    t = radians(turn)
+    expected = (x * cos(t) - y * sin(t) + 300, x * sin(t) + y * cos(t) - 40, 10 * scale)
+    assert part.holes[0].circle == pytest.approx(expected, abs=1e-6)
+
+
+def test_array_of_blocks(tmp_path):
+    doc = new()
+    doc.blocks.new("HOLE").add_circle((0, 0), 2)
+    box(doc.modelspace(), 0, 0, 80, 50)
+    at = {"row_count": 3, "column_count": 4, "row_spacing": 15, "column_spacing": 20}
+    doc.modelspace().add_blockref("HOLE", (10, 10), dxfattribs=at)
+    (part,) = read(save(doc, tmp_path)).parts
+    assert sorted(h.circle[:2] for h in part.holes) == [(10 + 20 * i, 10 + 15 * j) for i in range(4) for j in range(3)]
+
+
+def test_block_stretched_one_way_makes_an_ellipse(tmp_path):
+    doc = new()
+    doc.blocks.new("ROUND").add_circle((0, 0), 10)
+    doc.modelspace().add_blockref("ROUND", (0, 0), dxfattribs={"xscale": 3, "yscale": 1})
+    (part,) = read(save(doc, tmp_path)).parts
+    assert part.area_mm2 == pytest.approx(pi * 30 * 10, rel=1e-4)
+
+
+def test_block_content_on_layer_0_takes_the_layer_of_the_insertion(tmp_path):
+    doc = new()
+    doc.blocks.new("LINE").add_line((10, 5), (70, 5))
+    box(doc.modelspace(), 0, 0, 80, 50)
+    doc.modelspace().add_blockref("LINE", (0, 0), dxfattribs={"layer": "Bend"})
+    (part,) = read(save(doc, tmp_path)).parts
+    assert [c.layer for c in part.bends] == ["Bend"]
+
+
+@pytest.mark.parametrize(("code", "mm"), [(1, 25.4), (2, 304.8), (4, 1.0), (5, 10.0), (6, 1000.0)])
+def test_units_of_the_header(tmp_path, code, mm):
+    """$INSUNITS codes: DXF reference, header section; 1 in = 25.4 mm exactly."""
+    drawing = read(drawn(tmp_path, lambda m: box(m, 0, 0, 2, 1), unit=code))
+    assert drawing.units_from is UnitsFrom.HEADER
+    assert drawing.parts[0].size_mm == pytest.approx((2 * mm, mm))
+
+
+@pytest.mark.parametrize("version", ["R2010", "R12"])
+def test_no_unit_is_assumed_and_told(tmp_path, version):
+    drawing = read(drawn(tmp_path, plate, version, unit=0))
+    assert (drawing.units, drawing.units_from) == ("mm", UnitsFrom.ASSUMED)
+    assert kinds(drawing) == ["unknown-units"]
+
+
+def test_the_reading_librarys_own_default_is_no_unit(tmp_path):
+    """A file without $INSUNITS is loaded as if it said metres (code 6)."""
+    path = drawn(tmp_path, plate)
+    text = path.read_text().replace("$INSUNITS", "$ANGBASE", 1)
+    path.write_text(text)
+    assert ezdxf.readfile(path).header.get("$INSUNITS", 6) == 6
+    assert read(path).units_from is UnitsFrom.ASSUMED
+
+
+def test_option_goes_before_the_header(tmp_path):
+    drawing = read(drawn(tmp_path, plate, unit=1), ReadOptions(units="mm"))
+    assert (drawing.units, drawing.units_from) == ("mm", UnitsFrom.OPTION)
+    assert drawing.parts[0].size_mm == pytest.approx((80, 50))
+
+
+def gappy(gap):
+    def paint(msp):
+        box(msp, 0, 0, 80, 50)
+        for p, q in (((20, 10), (60, 10)), ((60, 10), (60, 40)), ((60, 40), (20, 40)), ((20, 40), (20, 10 + gap))):
+            msp.add_line(p, q)
+
+    return paint
+
+
+def test_tiny_gap_closes_with_a_word(tmp_path):
+    drawing = read(drawn(tmp_path, gappy(0.02)))
+    assert len(drawing.parts[0].holes) == 1
+    (fault,) = drawing.faults
+    assert fault.kind == "open-contour"
+    assert fault.measured_mm == pytest.approx(0.02)
+    assert "closed" in fault.detail
+
+
+def test_gap_is_measured_placed_and_the_hole_is_not_lost(tmp_path):
+    drawing = read(drawn(tmp_path, gappy(0.7)))
+    (fault,) = drawing.faults
+    assert (fault.kind, fault.measured_mm) == ("open-contour", pytest.approx(0.7))
+    assert fault.at == pytest.approx((20, 10.35))
+    assert len(fault.handles) == 4
+    assert len(drawing.parts[0].holes) == 1
+
+
+def test_missing_edge_is_reported_with_both_ends(tmp_path):
+    def paint(msp):
+        box(msp, 0, 0, 80, 50)
+        msp.add_lwpolyline([(20, 10), (60, 10), (60, 40), (20, 40)])
+
+    drawing = read(drawn(tmp_path, paint))
+    (fault,) = drawing.faults
+    assert fault.measured_mm == pytest.approx(30)
+    assert "(20.00, 10.00) and (20.00, 40.00)" in fault.detail
+    assert len(drawing.loose) == 1
+    assert drawing.parts[0].holes == ()
+
+
+def test_small_true_fillet_is_not_swallowed(tmp_path):
+    def paint(msp):
+        msp.add_lwpolyline(
+            [(0, 0), (79.96, 0, 0.4142135623730951), (80, 0.04), (80, 50), (0, 50)], format="xyb", close=True
+        )
+        for piece in list(msp):
+            piece.explode()
+
+    (part,) = read(drawn(tmp_path, paint)).parts
+    assert len(part.outer.xyb) == 5
+
+
+def test_parallel_bend_lines_side_by_side_are_no_outline(tmp_path):
+    def paint(msp):
+        box(msp, 0, 0, 80, 50)
+        for x in (40, 41):
+            msp.add_line((x, 1), (x, 49))
+
+    drawing = read(drawn(tmp_path, paint))
+    assert drawing.parts[0].holes == ()
+    assert kinds(drawing) == ["open-contour", "open-contour"]
+    assert all("single line" in f.detail for f in drawing.faults)
+
+
+def test_doubles_are_taken_out_and_told(tmp_path):
+    def paint(msp):
+        plate(msp)
+        msp.add_line((80, 0), (0, 0))
+        msp.add_circle((40, 25), 10)
+
+    drawing = read(drawn(tmp_path, paint))
+    assert kinds(drawing) == ["duplicate-line", "duplicate-line"]
+    assert drawing.parts[0].area_mm2 == pytest.approx(PLATE)
+
+
+def test_line_along_part_of_an_edge_is_a_double(tmp_path):
+    def paint(msp):
+        plate(msp)
+        msp.add_line((70, 0), (20, 0))
+
+    drawing = read(drawn(tmp_path, paint))
+    assert kinds(drawing) == ["duplicate-line"]
+    assert drawing.loose == ()
+
+
+def test_bow_tie_crosses_itself(tmp_path):
+    def paint(msp):
+        box(msp, 0, 0, 80, 50)
+        msp.add_lwpolyline([(28, 17), (52, 33), (52, 17), (28, 33)], close=True)
+
+    drawing = read(drawn(tmp_path, paint))
+    (fault,) = drawing.faults
+    assert fault.kind == "self-crossing"
+    assert fault.at == pytest.approx((40, 25))
+    # two triangles of 12 x 16 / 2
+    assert drawing.parts[0].area_mm2 == pytest.approx(80 * 50 - 2 * 12 * 16 / 2)
+
+
+def test_two_outlines_that_cross(tmp_path):
+    def paint(msp):
+        box(msp, 0, 0, 80, 50)
+        msp.add_circle((80, 25), 10)
+
+    assert "self-crossing" in kinds(read(drawn(tmp_path, paint)))
+
+
+def test_strips_that_share_edges_are_one_part(tmp_path):
+    def paint(msp):
+        box(msp, 0, 0, 30, 50)
+        msp.add_lwpolyline([(30, 0), (33, 0), (33, 50), (30, 50)], close=True)
+        msp.add_lwpolyline([(33, 0), (80, 0), (80, 50), (33, 50)], close=True)
+        msp.add_circle((60, 25), 10)
+
+    drawing = read(drawn(tmp_path, paint))
+    (part,) = drawing.parts
+    assert part.area_mm2 == pytest.approx(PLATE, rel=1e-9)
+    assert set(kinds(drawing)) == {"duplicate-line"}
+
+
+def test_branching_lines_give_the_outline_and_an_inner_edge(tmp_path):
+    def paint(msp):
+        box(msp, 0, 0, 30, 50)
+        for p, q in (((30, 0), (80, 0)), ((80, 0), (80, 50)), ((80, 50), (30, 50))):
+            msp.add_line(p, q)
+
+    drawing = read(drawn(tmp_path, paint))
+    (part,) = drawing.parts
+    assert part.area_mm2 == pytest.approx(80 * 50)
+    assert len(part.marks) == 1
+    assert kinds(drawing) == ["open-contour"]
+
+
+def test_arcs_survive_the_planar_graph(tmp_path):
+    def paint(msp):
+        msp.add_arc((0, 0), 30, 0, 180)
+        msp.add_line((-30, 0), (30, 0))
+        msp.add_arc((0, 0), 30, 180, 360)
+
+    (part,) = read(drawn(tmp_path, paint)).parts
+    assert part.area_mm2 == pytest.approx(pi * 900, rel=1e-9)
+
+
+def test_depth_two_is_a_part_of_its_own(tmp_path):
+    def paint(msp):
+        box(msp, 0, 0, 200, 150)
+        box(msp, 20, 20, 160, 110)
+        msp.add_circle((60, 60), 30)
+        msp.add_circle((60, 60), 10)
+
+    drawing = read(drawn(tmp_path, paint))
+    assert [(p.name, p.depth, len(p.holes)) for p in drawing.parts] == [("leaf#1", 0, 1), ("leaf#2", 2, 1)]
+    assert drawing.parts[1].area_mm2 == pytest.approx(pi * (900 - 100))
+
+
+def test_outer_runs_left_and_holes_run_right(tmp_path):
+    from flatprep.geom.bulge import signed_area
+
+    (part,) = read(drawn(tmp_path, plate)).parts
+    assert signed_area(part.outer.xyb) > 0 > signed_area(part.holes[0].xyb)
+
+
+def test_sheet_border_around_parts_is_not_cut(tmp_path):
+    def paint(msp):
+        box(msp, -10, -10, 400, 200)
+        for x in (0, 100, 200):
+            box(msp, x, 0, 80, 50)
+            msp.add_circle((x + 40, 25), 10)
+
+    drawing = read(drawn(tmp_path, paint))
+    assert [p.area_mm2 for p in drawing.parts] == pytest.approx([PLATE] * 3)
+    assert "sheet's border" in drawing.faults[0].detail
+
+
+@pytest.mark.parametrize(
+    ("layer", "role"),
+    [
+        ("BEND", Role.BEND),
+        ("bend_lines", Role.BEND),
+        ("Biegelinien", Role.BEND),
+        ("Engraving", Role.MARK),
+        ("etch-front", Role.MARK),
+        ("DIM", Role.IGNORE),
+        ("centerlines", Role.IGNORE),
+        ("0", Role.CUT),
+        ("Cut", Role.CUT),
+        ("Bracket", Role.CUT),  # no word within another
+    ],
+)
+def test_roles_by_layer_name(tmp_path, layer, role):
+    def paint(msp):
+        plate(msp)
+        msp.add_line((10, 5), (70, 5), dxfattribs={"layer": layer})
+
+    drawing = read(drawn(tmp_path, paint))
+    assert {n: r for n, r, _ in drawing.roles}[layer] is role
+    told = [f.detail for f in drawing.faults if f.kind == "layer-role"]
+    assert len(told) == (role is not Role.CUT)
+
+
+def test_said_roles_go_before_guesses(tmp_path):
+    def paint(msp):
+        box(msp, 0, 0, 80, 50)
+        msp.add_circle((40, 25), 10, dxfattribs={"layer": "Engraving"})
+
+    assert read(drawn(tmp_path, paint)).parts[0].holes == ()
+    said = read(drawn(tmp_path, paint), ReadOptions(roles={"engraving": Role.CUT}))
+    assert len(said.parts[0].holes) == 1
+    assert kinds(said) == []
+
+
+def test_guesses_that_leave_nothing_to_cut_are_taken_back(tmp_path):
+    drawing = read(drawn(tmp_path, lambda m: box(m, 0, 0, 80, 50, layer="Notes")))
+    assert len(drawing.parts) == 1
+
+
+def test_layer_switched_off_is_not_cut(tmp_path):
+    doc = new()
+    doc.layers.add("hidden helper").off()
+    plate(doc.modelspace())
+    doc.modelspace().add_circle((10, 10), 3, dxfattribs={"layer": "hidden helper"})
+    assert len(read(save(doc, tmp_path)).parts[0].holes) == 1
+
+
+def test_texts_and_annotation_are_listed(tmp_path):
+    def paint(msp):
+        plate(msp)
+        msp.add_text("4x M5", height=3, dxfattribs={"insert": (5, 5)})
+        msp.add_mtext("note\\Ptwo lines", dxfattribs={"insert": (5, 15), "char_height": 2})
+        msp.add_point((1, 1))
+        msp.add_hatch()
+
+    drawing = read(drawn(tmp_path, paint))
+    assert [(t.text, t.at) for t in drawing.texts] == [("4x M5", (5, 5)), ("note\ntwo lines", (5, 15))]
+    assert sorted(s.kind for s in drawing.skipped) == ["HATCH", "POINT"]
+
+
+def test_paper_space_is_mentioned(tmp_path):
+    doc = new()
+    plate(doc.modelspace())
+    doc.layout("Layout1").add_line((0, 0), (1, 1))
+    assert "paper space" in read(save(doc, tmp_path)).skipped[-1].reason
+
+
+def test_body_drawn_as_wires_gives_its_outline_once(tmp_path):
+    def paint(msp):
+        for z in (0, -5):
+            for a, b in (((0, 0), (80, 0)), ((80, 0), (80, 50)), ((80, 50), (0, 50)), ((0, 50), (0, 0))):
+                msp.add_line((*a, z), (*b, z))
+        for x, y in ((0, 0), (80, 0), (80, 50), (0, 50)):
+            msp.add_line((x, y, 0), (x, y, -5))
+
+    drawing = read(drawn(tmp_path, paint))
+    assert drawing.parts[0].area_mm2 == pytest.approx(4000)
+    assert kinds(drawing)[0] == "off-plane"
+
+
+def test_tilted_circle_is_told(tmp_path):
+    def paint(msp):
+        plate(msp)
+        msp.add_circle((0, 0), 5, dxfattribs={"extrusion": (1, 0, 1)})
+
+    (skipped,) = read(drawn(tmp_path, paint)).skipped
+    assert "tilted" in skipped.reason
+
+
+@pytest.mark.parametrize("radius", [0, -5, float("nan")])
+def test_senseless_circles_are_told(tmp_path, radius):
+    def paint(msp):
+        plate(msp)
+        msp.add_circle((0, 0), radius)
+
+    drawing = read(drawn(tmp_path, paint))
+    assert len(drawing.parts) == 1
+    assert "unusable" in drawing.skipped[0].reason
+
+
+def test_entity_without_length_is_told(tmp_path):
+    def paint(msp):
+        plate(msp)
+        msp.add_line((3, 3), (3, 3))
+
+    (fault,) = read(drawn(tmp_path, paint)).faults
+    assert (fault.kind, fault.at) == ("tiny-segment", (3, 3))
+
+
+def test_far_from_the_origin(tmp_path):
+    doc = new()
+    plate(doc.modelspace())
+    for e in doc.modelspace():
+        e.transform(Matrix44.translate(-15000, 4.2e6, 0))
+    (part,) = read(save(doc, tmp_path)).parts
+    assert part.area_mm2 == pytest.approx(PLATE, rel=1e-6)
+
+
+def test_block_that_inserts_itself_is_refused(tmp_path):
+    doc = new()
+    doc.blocks.new("A").add_blockref("A", (1, 1))
+    doc.modelspace().add_blockref("A", (0, 0))
+    with pytest.raises(DrawingError, match="inserts itself"):
+        read(save(doc, tmp_path))
+
+
+def test_a_million_copies_are_refused_before_they_are_made(tmp_path):
+    doc = new()
+    doc.blocks.new("C").add_circle((0, 0), 1)
+    at = {"row_count": 1000, "column_count": 1000, "row_spacing": 3, "column_spacing": 3}
+    doc.modelspace().add_blockref("C", (0, 0), dxfattribs=at)
+    with pytest.raises(DrawingError, match="entities once its blocks"):
+        read(save(doc, tmp_path))
+
+
+def test_caps_are_values(tmp_path):
+    path = drawn(tmp_path, plate)
+    with pytest.raises(DrawingError, match="more than the 4"):
+        read(path, ReadOptions(limits=ReadLimits(entities=4)))
+    with pytest.raises(DrawingError, match="vertices"):
+        read(path, ReadOptions(limits=ReadLimits(vertices=6)))
+
+
+@pytest.mark.parametrize(
+    ("content", "words"),
+    [
+        (b"", "empty"),
+        (b"\0" * 1000, "empty"),
+        (b"%PDF-1.7\nrubbish", "not a DXF"),
+        (b"hello world\n" * 30, "not readable as DXF"),
+    ],
+)
+def test_no_drawing_at_all(tmp_path, content, words):
+    path = tmp_path / "x.dxf"
+    path.write_bytes(content)
+    with pytest.raises(DrawingError, match=words):
+        read(path)
+
+
+def test_missing_file(tmp_path):
+    with pytest.raises(DrawingError, match=r"none\.dxf"):
+        read(tmp_path / "none.dxf")
+
+
+@pytest.mark.parametrize("end", [b"\r", b"\r\n"])
+def test_line_ends(tmp_path, end):
+    path = drawn(tmp_path, plate)
+    path.write_bytes(path.read_bytes().replace(b"\r\n", b"\n").replace(b"\n", end))
+    drawing = read(path)
+    assert drawing.units_from is UnitsFrom.HEADER
+    assert drawing.parts[0].area_mm2 == pytest.approx(PLATE)
+
+
+def test_conflict_markers_are_read_past(tmp_path):
+    path = drawn(tmp_path, plate)
+    text = path.read_text()
+    path.write_text(text.replace("ENTITIES\n", "ENTITIES\n<<<<<<< ours\n=======\n  0\nCIRCLE\n>>>>>>> theirs\n", 1))
+    drawing = read(path)
+    assert drawing.parts[0].area_mm2 == pytest.approx(PLATE)
+    assert "conflict" in drawing.faults[0].detail
