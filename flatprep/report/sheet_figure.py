@@ -1,0 +1,113 @@
+"""Picture of a sheet for the page: parts are drawn once and placed by reference, so that long jobs stay small."""
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+from html import escape
+
+from shapely.geometry import LineString
+
+from flatprep.geom.bulge import Floats, Similarity
+from flatprep.geom.polygons import polygon, valid_polygon
+from flatprep.model.drawing import Part
+from flatprep.model.layout import Placement, SheetLayout
+from flatprep.report.bundle import Offcut
+from flatprep.report.figures import bare_length, number
+from flatprep.report.part_figure import Box, scale_bar
+from flatprep.report.svg_path import part_path, ring_data
+from flatprep.report.svg_tag import picture, tag, text
+
+
+@dataclass(frozen=True, slots=True)
+class Shape:
+    """A part that is drawn once: its id in the page, its number, itself."""
+
+    id: str
+    number: int
+    part: Part
+
+
+def shape_defs(shapes: Mapping[str, Shape]) -> str:
+    """Every part once, as ``<path id>``, to be placed by `sheet_figure`."""
+    paths = (tag("path", id=s.id, fill_rule="evenodd", d=part_path(s.part, decimals=2)) for s in shapes.values())
+    return tag("svg", tag("defs", "".join(paths)), class_="shapes", aria_hidden="true", width="0", height="0")
+
+
+def sheet_figure(
+    sheet: SheetLayout, shapes: Mapping[str, Shape], *, offcut: Offcut | None = None, units: str = "mm", label: str = ""
+) -> str:
+    """SVG element of a sheet with its parts; needs `shape_defs` in the same page.
+
+    Parameters
+    ----------
+    shapes
+        By part name; a placement of any other part is left out.
+    offcut
+        Drawn dashed, with its size.
+    units
+        Of the scale bar and the offcut's size.
+    label
+        What a screen reader says.
+    """
+    x0, y0, x1, y1 = sheet_box(sheet)
+    unit = max(x1 - x0, y1 - y0) / 96
+    border = ring_data(sheet.outline) + "".join(ring_data(hole) for hole in sheet.holes)
+    body = [
+        tag("path", class_="sheet", fill_rule="evenodd", d=border),
+        *([_offcut(offcut, unit, units)] if offcut else []),
+        *(_placed(p, shapes[p.part], unit) for p in sheet.placements if p.part in shapes),
+        scale_bar(x0, -y0 + 3 * unit, 0.7 * unit, units),
+    ]
+    view = (x0 - 2 * unit, -y1 - 2 * unit, x1 - x0 + 4 * unit, y1 - y0 + 8 * unit)
+    return picture("".join(body), view, css="sheet-figure", label=label)
+
+
+def sheet_box(sheet: SheetLayout) -> Box:
+    """Least box of a sheet's border, mm."""
+    (x0, y0), (x1, y1) = sheet.outline.min(axis=0), sheet.outline.max(axis=0)
+    return float(x0), float(y0), float(x1), float(y1)
+
+
+def svg_matrix(motion: Similarity) -> str:
+    """Return the motion for pictures whose y runs down: both its sides are turned over."""
+    (a, b), (c, d) = motion.matrix()
+    return f"matrix({' '.join(number(v, 6) for v in (a, -c, -b, d, motion.dx, -motion.dy))})"
+
+
+def _placed(placement: Placement, shape: Shape, unit: float) -> str:
+    words = f"{placement.part}, piece {placement.copy}" + (", turned over" if placement.mirrored else "")
+    pieces = (
+        tag("title", escape(words)),
+        tag("use", href=f"#{shape.id}", transform=svg_matrix(placement.motion)),
+        _label(placement, shape, unit),
+    )
+    return tag("g", "".join(pieces), class_="placed", data_part=placement.part)
+
+
+def _label(placement: Placement, shape: Shape, unit: float) -> str:
+    """Return the part's name in its widest place, or its number, or nothing: what fits in readable size."""
+    outer, *inner = (placement.motion.polyline(contour.xyb) for contour in shape.part.contours)
+    x, y, across = label_place(outer, inner)
+    for words in (placement.part, str(shape.number)):
+        size = min(1.5 * unit, across / (0.62 * len(words) + 0.6))
+        if size >= 0.6 * unit:
+            return text(words, x, size / 3 - y, size)
+    return ""
+
+
+def label_place(outer: Floats, holes: Sequence[Floats]) -> tuple[float, float, float]:
+    """Middle of a wide level run of material half way up the part, and the run's width, mm."""
+    shape = valid_polygon(polygon(outer, holes, chord_mm=0.5))
+    middle = shape.representative_point()  # which is the middle of the widest run at that height
+    x0, _, x1, _ = shape.bounds
+    run = shape.intersection(LineString([(x0 - 1, middle.y), (x1 + 1, middle.y)]))
+    runs = [piece for piece in getattr(run, "geoms", [run]) if piece.distance(middle) < 1e-6]
+    return float(middle.x), float(middle.y), float(max((piece.length for piece in runs), default=0.0))
+
+
+def _offcut(offcut: Offcut, unit: float, units: str) -> str:
+    w, h = offcut.x1 - offcut.x0, offcut.y1 - offcut.y0
+    words = f"{bare_length(w, units)} × {bare_length(h, units)} {units} left"
+    size = min(1.6 * unit, w / (0.6 * len(words)), h / 2)
+    rest = tag("rect", x=offcut.x0, y=-offcut.y1, width=w, height=h)
+    middle = ((offcut.x0 + offcut.x1) / 2, size / 3 - (offcut.y0 + offcut.y1) / 2)
+    return tag("g", rest + text(words, *middle, size), class_="offcut")
