@@ -1,0 +1,71 @@
+"""narrow-slot: slots, notches and long holes too narrow to cut."""
+
+from collections.abc import Iterator
+
+from flatprep.measure.facing import TooFineError
+from flatprep.measure.holes import HoleShape
+from flatprep.measure.part import MeasuredPart
+from flatprep.model.finding import Finding, Severity
+from flatprep.profile.process import Limit
+from flatprep.rules.base import Context, Rule, judge, reach_mm
+
+
+def check(ctx: Context) -> Iterator[Finding]:
+    """Compare long holes of a known shape, and gaps of all others, with the least slot."""
+    limit = ctx.limit("slot")
+    if limit is None:
+        return
+    for part in ctx.parts:
+        yield from _long_holes(ctx, part, limit)
+        yield from _gaps(ctx, part, limit)
+
+
+def _long_holes(ctx: Context, part: MeasuredPart, limit: Limit) -> Iterator[Finding]:
+    for hole in part.holes:
+        if not hole.is_long or hole.shape is HoleShape.OTHER:
+            continue
+        verdict = judge(hole.width_mm, limit, ctx.slack_mm(chords=hole.chords))
+        if verdict is not None:
+            yield Finding(
+                rule=RULE.id,
+                severity=verdict[0],
+                message=f"the {hole.shape} hole is narrow for its thickness",
+                part=part.name,
+                at=hole.at,
+                measured=hole.width_mm,
+                limit=verdict[1],
+                unit="mm",
+                handles=hole.handles,
+            )
+
+
+def _gaps(ctx: Context, part: MeasuredPart, limit: Limit) -> Iterator[Finding]:
+    try:
+        found = part.slots(reach_mm(limit))
+    except TooFineError:  # told by not-measured
+        return
+    for width in found:
+        verdict = judge(width.width_mm, limit, ctx.slack_mm())
+        if verdict is not None:
+            yield Finding(
+                rule=RULE.id,
+                severity=verdict[0],
+                message="the gap is narrow" if width.contours == (0, 0) else "the hole is narrow here",
+                part=part.name,
+                at=width.at,
+                measured=width.width_mm,
+                limit=verdict[1],
+                unit="mm",
+                handles=part.handles(width.rows),
+            )
+
+
+RULE = Rule(
+    id="narrow-slot",
+    severity=Severity.ERROR,
+    summary="A slot or gap is too narrow.",
+    why="The cut needs its kerf, and its slug room to drop; a router's tool does not enter.",
+    remedy="Widen the slot, or draw it as one open line that is cut once.",
+    check=check,
+    limits=("slot",),
+)
