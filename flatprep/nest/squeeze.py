@@ -1,4 +1,4 @@
-"""Shorten the last rectangle of the field: roam far and wide first, tighten what was found last."""
+"""Shorten the last rectangle of the field until it is gone: roam far and wide first, tighten what was found last."""
 
 from collections.abc import Callable
 
@@ -6,7 +6,7 @@ import numpy as np
 
 from flatprep.nest.board import put
 from flatprep.nest.engine import Engine, Spots
-from flatprep.nest.moves import clamp, fits
+from flatprep.nest.moves import any_spot, clamp, fits
 
 ROAM_SHARE = 0.8
 LONGEST_STEP, SHORTEST_STEP = 0.05, 0.001
@@ -15,35 +15,46 @@ TIGHT_LONGEST, TIGHT_SHORTEST = 0.0005, 0.00001
 TIGHT_PATIENCE = 100
 SHELF = 40
 
+# Told of each better layout; may hand back one that is better still (of another process).
+Found = Callable[[Spots], None]
 
-def reach_mm(engine: Engine) -> float:
-    """Length the pieces take up in the last rectangle, mm."""
+
+def shorten(engine: Engine, rects: int, length_mm: float) -> None:
+    """Cut the field: pieces right of a random cut in the last rectangle move left, what has no room goes elsewhere."""
+    board, rng = engine.board, engine.rng
+    by = engine.length_mm - length_mm if rects == len(board.rect) else 0.0
+    engine.use(rects, length_mm)
     board = engine.board
-    last = board.home == len(board.rect) - 1
-    last[board.movable[0] :] = False
-    return float(board.right[last].max() - board.rect[-1, 0]) if last.any() else 0.0
+    cut = board.rect[-1, 0] + rng.random() * length_mm
+    for i in range(int(board.movable[0])):
+        k, v = int(board.home[i]), int(board.variant[i])
+        if k >= rects or not fits(engine.outlines, board, k, v):
+            send_elsewhere(engine, i)
+        elif k == rects - 1:
+            x, y = board.at[i]
+            x -= by if 0.5 * (board.left[i] + board.right[i]) > cut else 0.0
+            put(engine.outlines, board, i, v, *clamp(engine.outlines, board, k, v, x, y))
 
 
-def shorten(engine: Engine, length_mm: float) -> None:
-    """Cut the last rectangle to a length: what lies right of a random cut moves left by the difference."""
-    board = engine.board
-    cut = board.rect[-1, 0] + engine.rng.random() * length_mm
-    by = engine.length_mm - length_mm
-    board.rect[-1, 2] = board.rect[-1, 0] + length_mm
-    last = len(board.rect) - 1
-    for i in range(board.movable[0]):
-        if board.home[i] != last:
-            continue
-        x, y = board.at[i]
-        if 0.5 * (board.left[i] + board.right[i]) > cut:
-            x -= by
-        put(engine.outlines, board, i, board.variant[i], *clamp(engine.outlines, board, last, board.variant[i], x, y))
+def send_elsewhere(engine: Engine, i: int) -> None:
+    """Lay a piece anywhere in any rectangle that can hold it."""
+    board, o = engine.board, engine.outlines
+    shape = o.shape[board.variant[i]]
+    choice = [
+        (k, v)
+        for k in range(len(board.rect))
+        for v in range(int(o.first[shape]), int(o.first[shape + 1]))
+        if fits(o, board, k, v)
+    ]
+    k, v = choice[int(engine.rng.integers(len(choice)))]
+    board.home[i] = k
+    put(o, board, i, v, *any_spot(o, board, k, v, engine.rng))
 
 
 def swap_two(engine: Engine) -> None:
     """Let two large pieces of different shapes change places, each in any of its variants."""
     board, o, rng = engine.board, engine.outlines, engine.rng
-    n = board.movable[0]
+    n = int(board.movable[0])
     shape = o.shape[board.variant[:n]]
     large = np.argsort(-o.size[shape, 0], kind="stable")[: max(2, (n + 1) // 2)]
     i = int(rng.choice(large))
@@ -52,7 +63,7 @@ def swap_two(engine: Engine) -> None:
         return
     j = int(rng.choice(others))
     middle = [(0.5 * (board.left[k] + board.right[k]), 0.5 * (board.low[k] + board.high[k])) for k in (i, j)]
-    homes = board.home[i], board.home[j]
+    homes = int(board.home[i]), int(board.home[j])
     for k, (x, y), home in ((i, middle[1], homes[1]), (j, middle[0], homes[0])):
         v = int(rng.integers(o.first[shape[k]], o.first[shape[k] + 1]))
         if fits(o, board, home, v):
@@ -61,50 +72,99 @@ def swap_two(engine: Engine) -> None:
             put(o, board, k, v, *clamp(o, board, home, v, x - 0.5 * (box[0] + box[2]), y - 0.5 * (box[1] + box[3])))
 
 
-def roam(engine: Engine, best: Spots, found: Callable[[Spots], None]) -> Spots:
-    """Shorten from a layout without overlap until the time for it is gone; return the shortest layout found."""
-    step = LONGEST_STEP
-    shelf: list[Spots] = []
-    length = best.length_mm
-    engine.lay(best)
-    while engine.clock.spent < engine.stop_at:
-        if not shelf:
-            engine.board.rect[-1, 2] = engine.board.rect[-1, 0] + best.length_mm
-            engine.lay(best)
-            length = best.length_mm * (1.0 - step)
-            shorten(engine, length)
-        else:
-            pick = int(min(abs(engine.rng.normal(0.0, 0.25)), 0.999) * len(shelf))
-            engine.lay(shelf[pick])
-            swap_two(engine)
-        engine.forget_weights()
-        loss = engine.untangle(ROAM_PATIENCE, ROAM_TRIES)
-        if loss <= 0.0:
-            engine.board.rect[-1, 2] = engine.board.rect[-1, 0] + reach_mm(engine)
-            best = engine.spots()
-            found(best)
-            shelf = []
-        elif step > SHORTEST_STEP:
-            step = max(0.5 * step, SHORTEST_STEP)
-        else:
-            shelf.append(engine.spots(loss))
-            shelf.sort(key=lambda s: s.loss)
-            del shelf[SHELF:]
-    return best
+class Squeeze:
+    """The search for the shortest layout on one engine.
 
+    Parameters
+    ----------
+    engine
+        Its state.
+    best
+        A layout without overlap.
+    found
+        Told of each better one.
+    exchange
+        Called now and then with the best; returns a better one of another process, or the same.
+    """
 
-def tighten(engine: Engine, best: Spots, found: Callable[[Spots], None]) -> Spots:
-    """Shorten a layout by ever smaller steps until the time is gone; return the shortest layout found."""
-    start = engine.clock.spent
-    while engine.clock.spent < engine.stop_at:
-        share = (engine.clock.spent - start) / max(engine.stop_at - start, 1e-9)
-        step = TIGHT_LONGEST * (TIGHT_SHORTEST / TIGHT_LONGEST) ** share
-        engine.board.rect[-1, 2] = engine.board.rect[-1, 0] + best.length_mm
-        engine.lay(best)
-        shorten(engine, best.length_mm * (1.0 - step))
-        engine.forget_weights()
-        if engine.untangle(TIGHT_PATIENCE, 1) <= 0.0:
-            engine.board.rect[-1, 2] = engine.board.rect[-1, 0] + reach_mm(engine)
-            best = engine.spots()
-            found(best)
-    return best
+    def __init__(
+        self, engine: Engine, best: Spots, found: Callable[[Spots], None], exchange: Callable[[Spots], Spots]
+    ) -> None:
+        self.engine, self.best = engine, best
+        self._found, self._exchange = found, exchange
+        o, board = engine.outlines, engine.board
+        n = int(board.movable[0])
+        wide = o.rings.box[:, 2] - o.rings.box[:, 0]
+        least = np.array([wide[a:b].min() for a, b in zip(o.first[:-1], o.first[1:], strict=True)])
+        self._widest = float(least[o.shape[board.variant[:n]]].max())
+        self._narrowest = float(least[o.shape[board.variant[:n]]].min())
+
+    def run(self) -> Spots:
+        """Roam, then tighten, until the time is gone; return the best layout."""
+        self.engine.stop_at = ROAM_SHARE
+        self.roam()
+        self.engine.stop_at = 1.0
+        self.tighten()
+        return self.best
+
+    def _take(self) -> bool:
+        """Note the layout on the board as the best if it is one; tell whether it was."""
+        spots = self.engine.spots()
+        if spots.cost >= self.best.cost or not self.engine.is_free():
+            return False
+        self.best = spots
+        self._found(spots)
+        return True
+
+    def _shorter(self, step: float) -> tuple[int, float]:
+        """Return the field that is a step (share of a whole length) shorter than the best one's."""
+        rects, length = self.best.rects, self.best.length_mm
+        if rects == 1:
+            return 1, max(length * (1.0 - step), self._widest)
+        whole = self.engine.field.rect[rects - 1]
+        length -= step * float(whole[2] - whole[0])
+        if length >= self._narrowest:
+            return rects, length
+        before = self.engine.field.rect[rects - 2]
+        return rects - 1, float(before[2] - before[0])
+
+    def _swap_from_shelf(self, shelf: list[Spots]) -> None:
+        """Lay a failed layout from near the top of the shelf, with two pieces changed over."""
+        pick = int(min(abs(self.engine.rng.normal(0.0, 0.25)), 0.999) * len(shelf))
+        self.engine.lay(shelf[pick])
+        swap_two(self.engine)
+
+    def roam(self) -> None:
+        """Shorten by steps that halve with each failure; at the least step, change failed layouts about."""
+        engine, step = self.engine, LONGEST_STEP
+        shelf: list[Spots] = []
+        while engine.time_left:
+            other = self._exchange(self.best)
+            if other is not self.best:
+                self.best, shelf = other, []
+            if shelf:
+                self._swap_from_shelf(shelf)
+            else:
+                engine.lay(self.best)
+                shorten(engine, *self._shorter(step))
+            loss = engine.untangle(ROAM_PATIENCE, ROAM_TRIES)
+            if loss <= 0.0:
+                self._take()
+                shelf = []
+            elif step > SHORTEST_STEP:
+                step = max(0.5 * step, SHORTEST_STEP)
+            else:
+                shelf.append(engine.spots(loss))
+                shelf.sort(key=lambda s: s.loss)
+                del shelf[SHELF:]
+
+    def tighten(self) -> None:
+        """Shorten the best layout by ever smaller steps."""
+        engine, start = self.engine, self.engine.clock.spent
+        while engine.time_left:
+            self.best = self._exchange(self.best)
+            share = (engine.clock.spent - start) / max(engine.stop_at - start, 1e-9)
+            engine.lay(self.best)
+            shorten(engine, *self._shorter(TIGHT_LONGEST * (TIGHT_SHORTEST / TIGHT_LONGEST) ** share))
+            if engine.untangle(TIGHT_PATIENCE, 1) <= 0.0:
+                self._take()

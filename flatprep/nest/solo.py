@@ -1,0 +1,41 @@
+"""One search in one process."""
+
+from collections.abc import Callable
+
+import numpy as np
+
+from flatprep.nest.clock import Clock
+from flatprep.nest.engine import Engine, Spots
+from flatprep.nest.squeeze import Squeeze
+from flatprep.nest.tables import prepare_tables
+from flatprep.nest.task import Task
+
+Exchange = Callable[[Spots], Spots]
+
+
+def alone(best: Spots) -> Spots:
+    """Exchange with nobody."""
+    return best
+
+
+def run(task: Task, clock: Clock, seed: int, found: Callable[[Spots], None], exchange: Exchange = alone) -> Spots:
+    """Search until the clock has passed; return the best layout.
+
+    Parameters
+    ----------
+    found
+        Told of each layout that is better than the one before.
+    exchange
+        Called between tries with the best layout; returns a better one of another process, or the same.
+
+    Raises
+    ------
+    ValueError
+        The layout to begin with overlaps.
+    """
+    rng = np.random.default_rng(seed)
+    engine = Engine(task.outlines, prepare_tables(task.outlines), task.field, task.start.variant, clock, rng)
+    engine.lay(task.start)
+    if not engine.is_free():
+        raise ValueError("the layout to begin with overlaps")
+    return Squeeze(engine, task.start, found, exchange).run()
