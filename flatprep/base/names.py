@@ -18,7 +18,7 @@ def nearest(word: str, known: Iterable[str], count: int = 3) -> tuple[str, ...]:
     for name in known:
         by_plain.setdefault(plain(name), name)
     asked = plain(word)
-    close = difflib.get_close_matches(asked, by_plain, n=count, cutoff=0.5)
+    close = difflib.get_close_matches(asked, by_plain, n=count, cutoff=0.6)
     holding = [p for p in sorted(by_plain) if asked and asked in p and p not in close]
     return tuple(by_plain[p] for p in [*close, *holding][:count])
 

@@ -166,4 +166,5 @@ def accepts(table: Table, context: Context) -> tuple[Accept, ...]:
 
 def _named(table: Table, key: str, value: object, err: FlatprepError) -> FlatprepError:
     shown = f'"{value}"' if isinstance(value, str) else value
-    return table.error(f"{table.place}: {key} = {shown}: {err.message}", err.remedy)
+    said = err.message.replace(f" {shown}", "")
+    return table.error(f"{table.place}: {key} = {shown}: {said}", err.remedy)

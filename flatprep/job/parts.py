@@ -20,7 +20,7 @@ KEYS = (
 
 def read_part(table: Table, context: Context, process: Process) -> JobPart:
     """Check one ``[[part]]``; `process` is the job's."""
-    table = _titled(table.only(KEYS))
+    table = _titled(table).only(KEYS)
     material = context.material(table, "material")
     drawing = context.reach.file(table, "drawing", table.text("drawing"))
     quantity, opposite = _quantities(table)

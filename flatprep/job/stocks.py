@@ -19,7 +19,7 @@ KEYS = (
 
 def read_stock(table: Table, context: Context) -> Stock:
     """Check one ``[[stock]]``."""
-    table = _titled(table.only(KEYS))
+    table = _titled(table).only(KEYS)
     name = table.text("name")
     material = context.material(table, "material")
     if material is None:

@@ -5,8 +5,45 @@ from decimal import Decimal
 
 
 @dataclass(frozen=True, slots=True)
+class MassProperties:
+    """How a part's area and mass lie about its centroid; axes are the drawing's.
+
+    Attributes
+    ----------
+    centroid_mm : (float, float)
+        Drawing coordinates.
+    ixx_mm4, iyy_mm4, ixy_mm4 : float
+        Second moments of area ∫y² dA, ∫x² dA and ∫xy dA.
+    polar_mm4 : float
+        ∫r² dA = ixx + iyy.
+    principal_mm4 : (float, float)
+        Largest and least second moment.
+    principal_deg : float
+        Angle from the x axis to the axis of the largest one, -90 < angle <= 90.
+    gyration_mm : float
+        Radius of gyration about the axis through the centroid across the sheet.
+    spin_kg_mm2 : float or None
+        Moment of inertia about that axis; None without a mass.
+    """
+
+    centroid_mm: tuple[float, float]
+    ixx_mm4: float
+    iyy_mm4: float
+    ixy_mm4: float
+    polar_mm4: float
+    principal_mm4: tuple[float, float]
+    principal_deg: float
+    gyration_mm: float
+    spin_kg_mm2: float | None
+
+
+@dataclass(frozen=True, slots=True)
 class PartEstimate:
-    """Figures of one piece; `line_cost` is that of all its pieces. None: not known."""
+    """Figures of one piece; `line_cost` is that of all its pieces. None: not known.
+
+    `mass_kg` is without what bench work takes off, where that is known; `mass_share` is the share of all its pieces
+    in the mass of the job.
+    """
 
     name: str
     quantity: int
@@ -17,16 +54,27 @@ class PartEstimate:
     material_cost: float | None
     line_cost: Decimal | None
     cut_time_s: float | None
+    material: str | None = None
+    thickness_mm: float | None = None
+    mass_share: float | None = None
+    placed: int | None = None
+    properties: MassProperties | None = None
 
 
 @dataclass(frozen=True, slots=True)
 class StockUse:
-    """Stock the job takes."""
+    """Stock the job takes: `price` is that of one sheet, or of one metre where `length_mm` is given.
+
+    `length_mm` is the length taken from open stock, all its sheets together; `cost` what all of it is charged with,
+    after discount and credits.
+    """
 
     name: str
     count: int
     price: Decimal | None
     length_mm: float | None = None
+    cost: Decimal | None = None
+    credit: Decimal = Decimal(0)
 
 
 @dataclass(frozen=True, slots=True)
@@ -41,3 +89,27 @@ class Estimate:
     material_cost: Decimal | None
     utilisation: float | None
     notes: tuple[str, ...] = ()
+    sets: int = 1
+    share: str = "net-area"
+    cut_time_s: float | None = None
+    machine_cost: Decimal | None = None
+    discount_percent: Decimal = Decimal(0)
+    credits: Decimal = Decimal(0)
+
+    @property
+    def mass_left_kg(self) -> float | None:
+        """What the mass limit leaves, negative where it is broken; None where either is not known."""
+        if self.mass_kg is None or self.mass_limit_kg is None:
+            return None
+        return self.mass_limit_kg - self.mass_kg
+
+
+@dataclass(frozen=True, slots=True)
+class QuantityBreak:
+    """What a number of sets costs, from a nest of its own."""
+
+    sets: int
+    sheets: int
+    material_cost: Decimal | None
+    cost_per_set: float | None
+    utilisation: float | None

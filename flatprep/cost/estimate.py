@@ -1,0 +1,169 @@
+"""Mass, cut length and material cost of a job: values in, an Estimate out; layouts are given, never made here."""
+
+from collections import Counter
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+from decimal import Decimal
+
+from flatprep.cost.lines import Lines, share_out
+from flatprep.cost.mass import mass_kg, mass_properties
+from flatprep.cost.notes import notes_of
+from flatprep.cost.share import to_cents
+from flatprep.cost.sheets import sheet_area_mm2
+from flatprep.job.terms import CostTerms
+from flatprep.job.values import Stock
+from flatprep.model.drawing import Part
+from flatprep.model.estimate import Estimate, PartEstimate, StockUse
+from flatprep.model.layout import Layout
+from flatprep.profile.material import Material
+from flatprep.profile.process import Process
+
+
+@dataclass(frozen=True, slots=True)
+class Costed:
+    """A part to be estimated; `quantity` counts all sets and both hands, `removed_mm3` is what bench work takes off."""
+
+    part: Part
+    quantity: int
+    material: Material | None
+    thickness_mm: float | None
+    process: Process
+    removed_mm3: float = 0.0
+
+    @property
+    def mass_kg(self) -> float | None:
+        """Mass of one piece; None without thickness or density."""
+        density = self.material.density_kg_m3 if self.material else None
+        if density is None or self.thickness_mm is None:
+            return None
+        return mass_kg(self.part.area_mm2, self.thickness_mm, density, self.removed_mm3)
+
+    @property
+    def cut_time_s(self) -> float | None:
+        """Time of cutting one piece; None where the process knows no feeds."""
+        family = self.material.family if self.material else None
+        return self.process.cut_seconds(family, self.thickness_mm, self.part.cut_length_mm, self.part.pierces)
+
+
+@dataclass(frozen=True, slots=True)
+class Ask:
+    """What holds for the whole job."""
+
+    sets: int = 1
+    mass_limit_kg: float | None = None
+    currency: str | None = None
+    terms: CostTerms = field(default_factory=CostTerms)
+
+
+def estimate(
+    items: Sequence[Costed], stock: Sequence[Stock] = (), layout: Layout | None = None, ask: Ask | None = None
+) -> Estimate:
+    """Estimate a job.
+
+    Parameters
+    ----------
+    items
+        Its parts, each name once.
+    stock
+        What the layout's sheets are called, with the user's prices.
+    layout
+        A nest of the parts; without one no cost is known.
+    ask
+        Sets, mass limit, currency, terms.
+
+    Returns
+    -------
+    Estimate
+        The line costs add up to the material cost to the cent; what is not known is None, with a note.
+    """
+    ask = ask or Ask()
+    lines = share_out([i.part for i in items], stock, layout, ask.terms) if layout else None
+    masses = [item.mass_kg for item in items]
+    whole = _sum([None if m is None else m * i.quantity for m, i in zip(masses, items, strict=True)])
+    placed = Counter(p.part for sheet in layout.sheets for p in sheet.placements) if layout else None
+    parts = tuple(_part(item, lines, whole, placed) for item in items)
+    seconds = _sum([None if p.cut_time_s is None else p.cut_time_s * p.quantity for p in parts])
+    result = Estimate(
+        currency=ask.currency,
+        parts=parts,
+        stock=_stock_use(stock, layout, lines) if layout and lines else (),
+        mass_kg=None if whole is None else whole / ask.sets,
+        mass_limit_kg=ask.mass_limit_kg,
+        material_cost=lines.total if lines else None,
+        utilisation=_utilisation(items, layout) if layout else None,
+        sets=ask.sets,
+        share=str(ask.terms.share),
+        cut_time_s=seconds,
+        machine_cost=_machine_cost(items, parts, ask.terms.machine_rate),
+        discount_percent=lines.percent if lines else Decimal(0),
+        credits=to_cents(sum((b.credit for b in lines.bills), Decimal(0))) if lines else Decimal(0),
+    )
+    return notes_of(result, nested=layout is not None)
+
+
+def _sum(values: Sequence[float | None]) -> float | None:
+    known = [v for v in values if v is not None]
+    return sum(known) if len(known) == len(values) else None
+
+
+def _part(item: Costed, lines: Lines | None, whole: float | None, placed: Counter[str] | None) -> PartEstimate:
+    part, mass = item.part, item.mass_kg
+    return PartEstimate(
+        name=part.name,
+        quantity=item.quantity,
+        area_mm2=part.area_mm2,
+        mass_kg=mass,
+        cut_length_mm=part.cut_length_mm,
+        pierces=part.pierces,
+        material_cost=lines.piece.get(part.name) if lines else None,
+        line_cost=lines.line.get(part.name) if lines else None,
+        cut_time_s=item.cut_time_s,
+        material=item.material.id if item.material else None,
+        thickness_mm=item.thickness_mm,
+        mass_share=mass * item.quantity / whole if mass is not None and whole else None,
+        placed=placed[part.name] if placed is not None else None,
+        properties=mass_properties(part, mass),
+    )
+
+
+def _stock_use(stock: Sequence[Stock], layout: Layout, lines: Lines) -> tuple[StockUse, ...]:
+    used = [sheet for sheet in layout.sheets if sheet.placements]
+    count = Counter(sheet.stock for sheet in used)
+    out = []
+    for one in stock:
+        if one.name not in count:
+            continue
+        is_open = one.length_mm is None and one.outline is None
+        taken = sum(sheet.used_length_mm for sheet in used if sheet.stock == one.name)
+        price = one.price_per_metre if is_open else one.price_per_sheet
+        credit = sum((bill.credit for bill in lines.bills if bill.stock == one.name), Decimal(0))
+        out.append(
+            StockUse(
+                one.name,
+                count[one.name],
+                price,
+                taken if is_open else None,
+                lines.stock.get(one.name),
+                to_cents(credit),
+            )
+        )
+    return tuple(out)
+
+
+def _utilisation(items: Sequence[Costed], layout: Layout) -> float | None:
+    areas = {item.part.name: item.part.area_mm2 for item in items}
+    used = [sheet for sheet in layout.sheets if sheet.placements]
+    whole = sum(sheet_area_mm2(sheet) for sheet in used)
+    return sum(areas[p.part] for sheet in used for p in sheet.placements) / whole if whole else None
+
+
+def _machine_cost(items: Sequence[Costed], parts: Sequence[PartEstimate], rate: Decimal | None) -> Decimal | None:
+    """Return what the cutting costs: seconds times the rate per hour; None where either is not known."""
+    total = Decimal(0)
+    for item, part in zip(items, parts, strict=True):
+        own = item.process.machine_rate
+        hourly = rate if rate is not None else (None if own is None else Decimal(repr(own)))
+        if hourly is None or part.cut_time_s is None:
+            return None
+        total += hourly * Decimal(repr(part.cut_time_s * part.quantity)) / 3600
+    return to_cents(total)
