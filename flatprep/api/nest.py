@@ -1,0 +1,204 @@
+"""Nest a job, and write its layout: sheets as DXF and SVG, changed drawings, layout.json."""
+
+import json
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, replace
+from pathlib import Path
+
+import numpy as np
+
+from flatprep.api.pieces import Piece, ReadJob, quantity
+from flatprep.base.errors import DrawingError, JobError, OutputError
+from flatprep.base.files import make_folder, write_whole
+from flatprep.base.progress import Progress, Silent
+from flatprep.base.safe_names import safe_stem
+from flatprep.drawing.read import ReadOptions, read
+from flatprep.drawing.remnant import outline_of
+from flatprep.drawing.write import part_drawing, sheet_drawing
+from flatprep.geom.bulge import Floats
+from flatprep.job.values import Job, Stock
+from flatprep.model.drawing import Part
+from flatprep.model.layout import Layout
+from flatprep.nest.problem import Budget, Item, NestAsk, StockSheet
+from flatprep.nest.solve import nest
+from flatprep.report.layout_json import PartSource, layout_document, sheet_name
+from flatprep.report.sheet_svg import sheet_svg
+
+OnBetter = Callable[[Layout], None]
+
+
+@dataclass(frozen=True, slots=True)
+class Nested:
+    """A layout and what it is made of."""
+
+    read: ReadJob
+    layout: Layout
+    ask: NestAsk
+    warnings: tuple[str, ...] = ()
+
+
+def nest_job(
+    read_job: ReadJob, budget: Budget, *, progress: Progress | None = None, on_better: OnBetter | None = None
+) -> Nested:
+    """Lay a job's parts on its stock.
+
+    Raises
+    ------
+    JobError
+        When the job names no stock, or a remnant's outline cannot be used.
+    """
+    ask = nest_ask(read_job)
+    layout = nest(ask, budget, progress or Silent(), on_better)
+    layout = replace(layout, unplaced=(*layout.unplaced, *read_job.lost))
+    return Nested(read_job, layout, ask, spacing_warnings(read_job.job))
+
+
+def nest_ask(read_job: ReadJob) -> NestAsk:
+    """Put a job into the words of the nest."""
+    job = read_job.job
+    if not job.stock:
+        raise JobError(f"{job.path}: no [[stock]]: nothing to lay the parts on", "add a [[stock]] table with its size")
+    windows = job.windows if job.windows is not None else job.process.windows
+    items = tuple(_item(job, piece) for piece in read_job.pieces)
+    stock = tuple(_sheet(job, one) for one in job.stock)
+    return NestAsk(items, stock, job.spacing_mm, job.margin_mm, windows)
+
+
+def spacing_warnings(job: Job) -> tuple[str, ...]:
+    """Say what the spacing cannot do; it is never raised in silence."""
+    out = []
+    for process in {p.process.id: p.process for p in job.parts}.values():
+        least, what = (process.tool_diameter_mm, "tool") if process.tool_diameter_mm else (process.kerf_mm, "kerf")
+        if job.spacing_mm < least:
+            out.append(
+                f"spacing {job.spacing_mm:g} mm is less than the {what} of {process.id} ({least:g} mm): "
+                "neighbouring parts will be cut into; the job's spacing is kept as it is"
+            )
+    return tuple(out)
+
+
+def write_layout(nested: Nested, folder: Path) -> tuple[Path, ...]:
+    """Write sheets, changed drawings and, last, layout.json.
+
+    Returns
+    -------
+    tuple of Path
+        What was written.
+
+    Raises
+    ------
+    OutputError
+        When the folder cannot be written into.
+    """
+    make_folder(folder)
+    job = nested.read.job
+    files = _copy_names(nested.read.pieces)
+    written = []
+    for piece in nested.read.pieces:
+        if piece.changed:
+            written.append(folder / files[piece.name])
+            make_folder(written[-1].parent)
+            write_whole(written[-1], part_drawing(piece.part))
+    parts = {piece.name: piece.part for piece in nested.read.pieces}
+    for number, sheet in enumerate(nested.layout.sheets, start=1):
+        stem = sheet_name(number)
+        title = (job.name, f"revision {job.revision}") if job.revision else (job.name,)
+        write_whole(folder / f"{stem}.dxf", sheet_drawing(sheet, parts, title=title))
+        write_whole(folder / f"{stem}.svg", sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=job.name))
+        written += [folder / f"{stem}.dxf", folder / f"{stem}.svg"]
+    sources = [_source(job, piece, folder / files[piece.name]) for piece in nested.read.pieces]
+    document = layout_document(nested.layout, sources, folder)
+    _remove_older_sheets(folder, len(nested.layout.sheets))
+    write_whole(folder / "layout.json", json.dumps(document, indent=1) + "\n")
+    return (*written, folder / "layout.json")
+
+
+def _remove_older_sheets(folder: Path, count: int) -> None:
+    """Sheets of an earlier run that this layout has no more would be cut by mistake."""
+    number = count + 1
+    while any((path := folder / f"{sheet_name(number)}{suffix}").exists() for suffix in (".dxf", ".svg")):
+        for suffix in (".dxf", ".svg"):
+            path = folder / f"{sheet_name(number)}{suffix}"
+            try:
+                path.unlink(missing_ok=True)
+            except OSError as err:
+                raise OutputError(f"{path}: an older sheet cannot be removed ({err.strerror})", "remove it") from err
+        number += 1
+
+
+def _copy_names(pieces: tuple[Piece, ...]) -> Mapping[str, str]:
+    """Where a changed copy of each part goes, relative to the folder; no two alike."""
+    names: dict[str, str] = {}
+    for piece in pieces:
+        stem = safe_stem(piece.name)
+        while f"parts/{stem}.dxf" in names.values():
+            stem += "_"
+        names[piece.name] = f"parts/{stem}.dxf"
+    return names
+
+
+def _source(job: Job, piece: Piece, copy: Path) -> PartSource:
+    count = quantity(job, piece.ask)
+    if piece.changed:
+        return PartSource(_as_copied(piece.part), copy, "mm", count)
+    return PartSource(piece.part, piece.ask.drawing, piece.drawing.units, count)
+
+
+def _as_copied(part: Part) -> Part:
+    """Return the part with the layers that its copy has."""
+    contours = [replace(c, layers=("CUT",)) for c in part.contours]
+    return replace(part, outer=contours[0], holes=tuple(contours[1:]))
+
+
+def _item(job: Job, piece: Piece) -> Item:
+    ask = piece.ask
+    if ask.material is None or ask.thickness_mm is None:
+        missing = "material" if ask.material is None else "thickness"
+        raise JobError(
+            f"{job.path}: part {ask.name!r}: no {missing}", f"add {missing} to the part, or give --{missing}"
+        )
+    return Item(
+        piece.part,
+        ask.material.id,
+        ask.thickness_mm,
+        ask.quantity * job.sets,
+        ask.quantity_opposite * job.sets,
+        ask.turns_deg,
+        ask.may_flip,
+        ask.grain,
+    )
+
+
+def _sheet(job: Job, stock: Stock) -> StockSheet:
+    outline: Floats | None = None
+    holes: tuple[Floats, ...] = ()
+    if stock.outline is not None:
+        outline, holes = _remnant(job, stock)
+    length, width = stock.length_mm, stock.width_mm
+    if outline is not None:
+        width = float(outline[:, 1].max() - outline[:, 1].min())
+    if width is None:
+        raise JobError(f"{job.path}: stock {stock.name!r}: no width", "give length and width, or an outline")
+    return StockSheet(
+        stock.name,
+        stock.material.id,
+        stock.thickness_mm,
+        length,
+        width,
+        outline,
+        holes,
+        stock.count,
+        None if stock.price_per_sheet is None else float(stock.price_per_sheet),
+        None if stock.price_per_metre is None else float(stock.price_per_metre),
+        stock.grain,
+    )
+
+
+def _remnant(job: Job, stock: Stock) -> tuple[Floats, tuple[Floats, ...]]:
+    if isinstance(stock.outline, Path):
+        drawing = read(stock.outline, ReadOptions())
+        try:
+            return outline_of(drawing)
+        except DrawingError as err:
+            raise JobError(f"{job.path}: stock {stock.name!r}: {err.message}", err.remedy) from err
+    return np.array(stock.outline, dtype=np.float64), ()

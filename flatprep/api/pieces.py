@@ -1,0 +1,120 @@
+"""A job with its drawings read: every part of it with its shape, as it will be cut."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from flatprep.api.lint import lint_job
+from flatprep.base.errors import DrawingError
+from flatprep.base.progress import Progress
+from flatprep.bench.part import BenchPart, bench_part
+from flatprep.bench.pilots import apply_pilots
+from flatprep.job.values import Job, JobPart
+from flatprep.model.drawing import Drawing, Part
+from flatprep.model.layout import Unplaced
+from flatprep.model.linted import Linted, LintReport
+
+_FAULTS_OF_A_COPY = {"self-crossing", "duplicate-line", "off-plane", "open-contour", "layer-role"}
+"""A drawing with one of these is not what is cut: a clean copy stands in for it."""
+
+
+@dataclass(frozen=True, slots=True)
+class Piece:
+    """One part of a job.
+
+    Attributes
+    ----------
+    part : Part
+        Its shape as it will be cut: holes that bench work opens up are changed as the job's `pilots` says.
+    drawn : Part
+        Its shape as drawn.
+    ask : JobPart
+    drawing : Drawing
+    changed : bool
+        Whether the shape, or the lines around it, differ from the drawing: a copy is written for the cutter.
+    changes : tuple of str
+        What was changed, in words.
+    """
+
+    part: Part
+    drawn: Part
+    ask: JobPart
+    drawing: Drawing
+    bench: BenchPart
+    changed: bool
+    changes: tuple[str, ...] = ()
+
+    @property
+    def name(self) -> str:
+        """The part's name."""
+        return self.part.name
+
+
+@dataclass(frozen=True, slots=True)
+class ReadJob:
+    """A job, what lint says of it, its pieces, and parts whose drawing gives none."""
+
+    job: Job
+    report: LintReport
+    pieces: tuple[Piece, ...]
+    lost: tuple[Unplaced, ...] = ()
+
+
+def read_job(job: Job, *, jobs: int = 1, progress: Progress | None = None) -> ReadJob:
+    """Read and check every drawing of a job.
+
+    Raises
+    ------
+    DrawingError
+        When no drawing of the job can be used.
+    JobError
+        When bench work names holes that are not there.
+    """
+    report = lint_job(job, jobs=jobs, progress=progress)
+    answers = {one.file: one for one in report.linted}
+    pieces: list[Piece] = []
+    lost: list[Unplaced] = []
+    for ask in job.parts:
+        answer = _of_part(report, ask, answers)
+        if answer is None or not answer.drawing.parts:
+            why = _why_lost(report, ask) if answer is None else "its drawing holds no closed outline"
+            lost.append(Unplaced(ask.name, (ask.quantity + ask.quantity_opposite) * job.sets, why))
+            continue
+        pieces += [_piece(job, ask, answer.drawing, part) for part in answer.drawing.parts]
+    if not pieces:
+        raise DrawingError(f"{job.path}: none of its drawings can be used: {lost[0].why if lost else 'it names none'}")
+    return ReadJob(job, report, tuple(pieces), tuple(lost))
+
+
+def _of_part(report: LintReport, ask: JobPart, answers: dict[str, Linted]) -> Linted | None:
+    """Find the answer for a part: two parts may share a drawing, with other materials and names."""
+    for one in report.linted:
+        named = {p.name.partition("#")[0] for p in one.drawing.parts}
+        if one.file == str(ask.drawing) and (ask.name in named or not named):
+            return one
+    found = answers.get(str(ask.drawing))
+    return found if found is not None and not found.drawing.parts else None
+
+
+def _why_lost(report: LintReport, ask: JobPart) -> str:
+    for one in report.unreadable:
+        if one.file == str(ask.drawing):
+            return one.message
+    return "its drawing could not be read"
+
+
+def _piece(job: Job, ask: JobPart, drawing: Drawing, part: Part) -> Piece:
+    bench = bench_part(ask, part, sets=job.sets, pilots=job.pilots, texts=drawing.texts)
+    done = apply_pilots(bench)
+    faulty = any(f.kind in _FAULTS_OF_A_COPY for f in drawing.faults)
+    changed = done.part is not part or faulty or bool(drawing.loose)
+    return Piece(done.part, part, ask, drawing, bench, changed, done.changes)
+
+
+def quantity(job: Job, ask: JobPart) -> int:
+    """Pieces of a part, all sets and both hands."""
+    return (ask.quantity + ask.quantity_opposite) * job.sets
+
+
+def bench_parts(read: ReadJob) -> Sequence[BenchPart]:
+    """Return the parts as the bench sees them: as drawn, for that is what they will be in the end."""
+    return [piece.bench for piece in read.pieces]

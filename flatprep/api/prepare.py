@@ -1,0 +1,188 @@
+"""Everything about a job in one folder: findings, layout, bench sheets, estimate, and the page that joins them."""
+
+import hashlib
+import json
+import time
+from collections.abc import Sequence
+from dataclasses import dataclass
+from pathlib import Path
+
+from flatprep import __version__
+from flatprep.api.nest import Nested, nest_job, write_layout
+from flatprep.api.pieces import Piece, ReadJob, quantity
+from flatprep.api.work import checklist_job, estimate_job
+from flatprep.base.files import make_folder, write_whole
+from flatprep.base.progress import Progress
+from flatprep.base.safe_names import safe_stem
+from flatprep.model.estimate import Estimate
+from flatprep.model.finding import Finding
+from flatprep.model.layout import Layout
+from flatprep.model.linted import Linted
+from flatprep.model.work import Checklist
+from flatprep.nest.problem import Budget
+from flatprep.report.bundle import Bundle, PartCard, SearchPoint
+from flatprep.report.checklist_csv import checklist_csv
+from flatprep.report.checklist_json import checklist_document
+from flatprep.report.estimate_csv import estimate_csv
+from flatprep.report.estimate_json import estimate_document
+from flatprep.report.html import bench_sheet_html, report_html
+from flatprep.report.layout_json import sheet_name
+from flatprep.report.lint_json import lint_document
+from flatprep.report.tables_csv import findings_csv, parts_csv, sheets_csv
+
+
+@dataclass(frozen=True, slots=True)
+class Prepared:
+    """All results of a job."""
+
+    read: ReadJob
+    checklist: Checklist
+    estimate: Estimate
+    nested: Nested | None
+    bundle: Bundle
+
+    @property
+    def loud(self) -> bool:
+        """Whether there is an error or warning, or a drawing that could not be read."""
+        return any(one.loud for one in self.read.report.linted) or bool(self.read.report.unreadable)
+
+    @property
+    def unplaced(self) -> int:
+        """Pieces without a place."""
+        return sum(u.count for u in self.nested.layout.unplaced) if self.nested else 0
+
+
+def prepare_job(read: ReadJob, budget: Budget, *, progress: Progress | None = None) -> Prepared:
+    """Check, nest, list the bench work and estimate a job.
+
+    Raises
+    ------
+    FlatprepError
+        When the job cannot be used; nothing is written here.
+    """
+    steps = checklist_job(read)
+    points: list[SearchPoint] = []
+    began = time.monotonic()
+
+    def better(layout: Layout) -> None:
+        points.append(_point(layout, time.monotonic() - began))
+
+    nested = nest_job(read, budget, progress=progress, on_better=better) if read.job.stock else None
+    money = estimate_job(read, nested.layout if nested else None)
+    return Prepared(read, steps, money, nested, _bundle(read, steps, money, nested, points))
+
+
+def write_prepared(done: Prepared, folder: Path) -> None:
+    """Write everything into `folder`; report.html comes last.
+
+    Raises
+    ------
+    OutputError
+        When the folder cannot be written into.
+    """
+    make_folder(folder)
+    if done.nested:
+        write_layout(done.nested, folder)
+    documents = {
+        "lint.json": lint_document(done.read.report),
+        "checklist.json": checklist_document(done.checklist),
+        "estimate.json": estimate_document(done.estimate),
+    }
+    for name, document in documents.items():
+        write_whole(folder / name, json.dumps(document, indent=1) + "\n")
+    tables = {
+        "parts.csv": parts_csv(done.bundle),
+        "findings.csv": findings_csv(done.bundle),
+        "sheets.csv": sheets_csv(done.bundle),
+        "steps.csv": checklist_csv(done.checklist),
+        "estimate.csv": estimate_csv(done.estimate),
+    }
+    for name, table in tables.items():
+        write_whole(folder / name, table)
+    make_folder(folder / "bench")
+    for card in done.bundle.cards:
+        write_whole(folder / "bench" / f"{safe_stem(card.name)}.html", bench_sheet_html(done.bundle, card))
+    write_whole(folder / "report.html", report_html(done.bundle))
+
+
+def _bundle(
+    read: ReadJob, steps: Checklist, money: Estimate, nested: Nested | None, points: Sequence[SearchPoint]
+) -> Bundle:
+    job = read.job
+    sheets = len(nested.layout.sheets) if nested else 0
+    files = [(f"{sheet_name(n)}.dxf", f"sheet {n}, for the cutter") for n in range(1, sheets + 1)]
+    files += [
+        ("parts.csv", "parts"),
+        ("findings.csv", "findings"),
+        ("steps.csv", "bench work"),
+        ("sheets.csv", "sheets"),
+    ]
+    return Bundle(
+        name=job.name,
+        revision=job.revision,
+        units=job.units,
+        sets=job.sets,
+        cards=tuple(_card(read, piece, steps, money) for piece in read.pieces),
+        layout=nested.layout if nested else None,
+        estimate=money,
+        checklist=steps,
+        unreadable=tuple((u.file, u.message) for u in read.report.unreadable),
+        files=tuple(files),
+        assumed=(*read.report.notes, *(nested.warnings if nested else ())),
+        cautions=steps.cautions,
+        search=tuple(points),
+        version=__version__,
+    )
+
+
+def _card(read: ReadJob, piece: Piece, steps: Checklist, money: Estimate) -> PartCard:
+    ask, job = piece.ask, read.job
+    findings, digest = _findings(read, piece), _digest(ask.drawing)
+    return PartCard(
+        name=piece.name,
+        part=piece.drawn,
+        drawing=str(ask.drawing),
+        digest=digest,
+        material=ask.material.id if ask.material else "",
+        material_name=ask.material.name if ask.material else "",
+        thickness_mm=ask.thickness_mm,
+        process=ask.process.id,
+        quantity=ask.quantity * job.sets,
+        quantity_opposite=quantity(job, ask) - ask.quantity * job.sets,
+        revision=ask.revision or job.revision,
+        note=ask.note,
+        findings=findings,
+        steps=next((p.steps for p in steps.parts if p.name == piece.name), ()),
+        estimate=next((p for p in money.parts if p.name == piece.name), None),
+        assumed=(*_assumed(piece), *piece.changes),
+    )
+
+
+def _findings(read: ReadJob, piece: Piece) -> tuple[Finding, ...]:
+    """Pick the findings of the piece itself, and those of its drawing that name no part (with its first piece)."""
+    for one in read.report.linted:
+        if one.drawing is piece.drawing:
+            return tuple(f for f in one.findings if f.part == piece.name or (f.part is None and _first(one, piece)))
+    return ()
+
+
+def _first(one: Linted, piece: Piece) -> bool:
+    return one.drawing.parts[0].name == piece.name
+
+
+def _assumed(piece: Piece) -> tuple[str, ...]:
+    drawing = piece.drawing
+    out = [] if drawing.units_from != "assumed" else [f"no unit in the drawing: taken as {drawing.units}"]
+    if drawing.recovered:
+        out.append("the file was damaged and has been recovered while reading")
+    return tuple(out)
+
+
+def _digest(path: Path) -> str:
+    return hashlib.sha256(path.read_bytes()).hexdigest()[:10]
+
+
+def _point(layout: Layout, seconds: float) -> SearchPoint:
+    last = layout.sheets[-1].used_length_mm if layout.sheets else 0.0
+    shares = [s.utilisation for s in layout.sheets]
+    return SearchPoint(seconds, len(layout.sheets), last, sum(shares) / len(shares) if shares else None)

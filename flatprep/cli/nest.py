@@ -1,0 +1,53 @@
+"""``flatprep nest``."""
+
+import json
+from pathlib import Path
+
+import click
+
+from flatprep.api.nest import Nested, nest_job, write_layout
+from flatprep.base.errors import ExitStatus
+from flatprep.cli.jobs import job_argument, open_job, read_drawings
+from flatprep.cli.options import output_format, said_about_parts, search_budget
+from flatprep.cli.progress import progress_line
+from flatprep.nest.problem import Budget
+from flatprep.report.layout_text import layout_text
+
+
+@click.command("nest")
+@job_argument
+@click.option("--out", "folder", required=True, type=click.Path(path_type=Path), help="folder for layout and sheets")
+@said_about_parts
+@search_budget
+@output_format
+@click.pass_context
+def command(
+    ctx: click.Context,
+    /,
+    job_file: Path,
+    folder: Path,
+    seconds: float,
+    steps: int | None,
+    seed: int,
+    jobs: int,
+    form: str,
+    **said: object,
+) -> None:
+    """Lay a job's parts on its stock; writes layout.json and a DXF and SVG for each sheet."""
+    job = open_job(job_file, **said)  # type: ignore[arg-type]
+    with progress_line() as progress:
+        read = read_drawings(job, jobs, progress)
+        nested = nest_job(read, Budget(seconds, steps, seed, jobs), progress=progress)
+    for warning in nested.warnings:
+        click.echo(f"warning: {warning}", err=True)
+    write_layout(nested, folder)
+    if form == "json":
+        click.echo(json.dumps(json.loads((folder / "layout.json").read_text()), indent=1))
+    else:
+        click.echo(layout_text(nested.layout, folder))
+    ctx.exit(status(nested))
+
+
+def status(nested: Nested) -> ExitStatus:
+    """Tell the exit status: 1 where a piece found no place."""
+    return ExitStatus.FINDINGS if nested.layout.unplaced else ExitStatus.CLEAN

@@ -1,0 +1,61 @@
+"""``flatprep prepare``."""
+
+from pathlib import Path
+
+import click
+
+from flatprep.api.prepare import Prepared, prepare_job, write_prepared
+from flatprep.base.errors import ExitStatus
+from flatprep.cli.jobs import job_argument, open_job, read_drawings
+from flatprep.cli.options import said_about_parts, search_budget
+from flatprep.cli.progress import progress_line
+from flatprep.model.finding import Severity
+from flatprep.nest.problem import Budget
+
+
+@click.command("prepare")
+@job_argument
+@click.option("--out", "folder", required=True, type=click.Path(path_type=Path), help="folder for everything")
+@said_about_parts
+@search_budget
+@click.pass_context
+def command(
+    ctx: click.Context,
+    /,
+    job_file: Path,
+    folder: Path,
+    seconds: float,
+    steps: int | None,
+    seed: int,
+    jobs: int,
+    **said: object,
+) -> None:
+    """Check, nest, list the bench work and estimate a job, all into one folder with report.html."""
+    job = open_job(job_file, **said)  # type: ignore[arg-type]
+    with progress_line() as progress:
+        read = read_drawings(job, jobs, progress)
+        done = prepare_job(read, Budget(seconds, steps, seed, jobs), progress=progress)
+        for warning in done.nested.warnings if done.nested else ():
+            click.echo(f"warning: {warning}", err=True)
+        write_prepared(done, folder)
+    click.echo(summary(done, folder))
+    ctx.exit(ExitStatus.FINDINGS if done.loud or done.unplaced else ExitStatus.CLEAN)
+
+
+def summary(done: Prepared, folder: Path) -> str:
+    """Say it in a few lines for people; the last one names what asks for a look."""
+    sheets = len(done.nested.layout.sheets) if done.nested else 0
+    money, mass = done.estimate.material_cost, done.estimate.mass_kg
+    lines = [
+        f"{len(done.bundle.cards)} parts on {sheets} sheets",
+        "mass of a set: not known" if mass is None else f"mass of a set: {mass:.3g} kg",
+        "material cost: not known"
+        if money is None
+        else f"material cost: {money:.2f} {done.estimate.currency or ''}".rstrip(),
+        f"report: {folder / 'report.html'}",
+    ]
+    errors, warnings = done.bundle.count(Severity.ERROR), done.bundle.count(Severity.WARNING)
+    said = [f"{errors} errors, {warnings} warnings"] if errors or warnings else []
+    said += [f"{len(done.read.report.unreadable)} drawings not readable"] if done.read.report.unreadable else []
+    said += [f"{done.unplaced} pieces not placed"] if done.unplaced else []
+    return "\n".join([*lines, "to look at: " + "; ".join(said) if said else "nothing to look at"])
