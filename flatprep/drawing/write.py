@@ -1,0 +1,182 @@
+"""The one DXF writer: sheets with their parts, and single parts that were changed.
+
+Layers: CUT the contours, each one closed LWPOLYLINE or CIRCLE, inner before outer; MARK what is only marked; SHEET
+the border; NOTE labels and bend lines, never cut. All in one neutral grey, told apart by line styles. The same
+layout gives the same bytes: no times and no random ids are written.
+"""
+
+import io
+from collections.abc import Iterable, Mapping, Sequence
+
+import numpy as np
+from ezdxf._options import options
+from ezdxf.document import Drawing as Document
+from ezdxf.enums import TextEntityAlignment
+from ezdxf.version import __version__ as ezdxf_version
+
+from flatprep.geom.bulge import Floats, Similarity
+from flatprep.geom.polygons import inner_point
+from flatprep.model.drawing import Contour, Curve, Part
+from flatprep.model.layout import SheetLayout
+
+CUT, MARK, SHEET, NOTE = "CUT", "MARK", "SHEET", "NOTE"
+GREY = 8
+"""AutoCAD colour index of a neutral grey."""
+STYLES: Mapping[str, tuple[float, ...]] = {
+    "FP_DASH": (9.0, 6.0, -3.0),
+    "FP_DASHDOT": (14.0, 9.0, -2.0, 1.0, -2.0),
+    "FP_DOT": (3.0, 0.5, -2.5),
+}
+"""Line styles as DXF patterns: total length, then dashes and gaps, mm."""
+STYLE_OF = {CUT: "CONTINUOUS", MARK: "FP_DASH", SHEET: "FP_DASHDOT", NOTE: "FP_DOT"}
+MM_CODE = 4
+"""$INSUNITS of millimetres."""
+LEAST_TEXT_MM, MOST_TEXT_MM, TEXT_SHARE = 1.5, 10.0, 0.12
+
+
+def sheet_drawing(sheet: SheetLayout, parts: Mapping[str, Part], *, title: Sequence[str] = ()) -> str:
+    """DXF text of a sheet: its border, every part in the order of cutting, labels.
+
+    Parameters
+    ----------
+    sheet
+    parts
+        True shapes by the names that the placements use.
+    title
+        Lines written under the sheet.
+    """
+    doc = _document((CUT, MARK, SHEET, NOTE))
+    for ring in (sheet.outline, *sheet.holes):
+        _polyline(doc, SHEET, np.column_stack([ring, np.zeros(len(ring))]), closed=True)
+    for index in cutting_order(sheet, parts):
+        placement = sheet.placements[index]
+        part, motion = parts[placement.part], placement.motion
+        _part(doc, part, motion)
+        _label(doc, part, motion, f"{placement.part} {placement.copy}")
+    height = min(MOST_TEXT_MM, max(LEAST_TEXT_MM, float(np.ptp(sheet.outline, axis=0).max()) / 80.0))
+    left, low = (float(v) for v in sheet.outline.min(axis=0))
+    for n, line in enumerate(title, start=1):
+        _text(doc, line, (left, low - 2.0 * n * height), height)
+    return _written(doc)
+
+
+def part_drawing(parts: Part | Sequence[Part], *, notes: Sequence[str] = ()) -> str:
+    """DXF text of parts at their own coordinates, mm, with `notes` written under them."""
+    every = [parts] if isinstance(parts, Part) else list(parts)
+    doc = _document((CUT, MARK, NOTE))
+    for part in every:
+        _part(doc, part, Similarity())
+    if notes and every:
+        left, low = (min(p.outer.bounds[k] for p in every) for k in (0, 1))
+        height = min(MOST_TEXT_MM, max(LEAST_TEXT_MM, TEXT_SHARE * min(min(p.size_mm) for p in every)))
+        for n, line in enumerate(notes, start=1):
+            _text(doc, line, (left, low - 2.0 * n * height), height)
+    return _written(doc)
+
+
+def border_drawing(outline: Floats, holes: Sequence[Floats] = (), *, notes: Sequence[str] = ()) -> str:
+    """DXF text of a remnant's border, to be given as `outline` of stock: contours on CUT, `notes` beside them.
+
+    Parameters
+    ----------
+    outline : ndarray, shape (n, 2) or (n, 3)
+        Points, or a bulge polyline, mm.
+    """
+    doc = _document((CUT, NOTE))
+    for ring in (*holes, outline):
+        points = ring if ring.shape[1] == 3 else np.column_stack([ring, np.zeros(len(ring))])
+        _polyline(doc, CUT, points, closed=True)
+    left, low = (float(v) for v in outline[:, :2].min(axis=0))
+    for n, line in enumerate(notes, start=1):
+        _text(doc, line, (left, low - 20.0 * n), MOST_TEXT_MM)
+    return _written(doc)
+
+
+def cutting_order(sheet: SheetLayout, parts: Mapping[str, Part]) -> list[int]:
+    """Order in which the pieces of a sheet are cut: those in windows of others first, then small ones first.
+
+    A piece that lies in a window falls with it once the window is cut; a small piece may shift when its larger
+    neighbour has come loose.
+    """
+    boxes = [_box(parts[p.part], p.motion) for p in sheet.placements]
+    areas = [parts[p.part].area_mm2 for p in sheet.placements]
+    hosts = [_window_boxes(parts[p.part], p.motion) for p in sheet.placements]
+    depth = [sum(_within(box, w) for n, ws in enumerate(hosts) if n != k for w in ws) for k, box in enumerate(boxes)]
+    return sorted(range(len(boxes)), key=lambda k: (-depth[k], areas[k], sheet.placements[k].dx))
+
+
+Box = tuple[float, float, float, float]
+
+
+def _box(part: Part, motion: Similarity) -> Box:
+    return Contour(motion.polyline(part.outer.xyb)).bounds
+
+
+def _window_boxes(part: Part, motion: Similarity) -> list[Box]:
+    return [Contour(motion.polyline(h.xyb)).bounds for h in part.holes]
+
+
+def _within(box: Box, window: Box) -> bool:
+    return box[0] >= window[0] and box[1] >= window[1] and box[2] <= window[2] and box[3] <= window[3]
+
+
+def _document(layers: Iterable[str]) -> Document:
+    doc = Document.new("R2010")
+    doc.header["$INSUNITS"] = MM_CODE
+    doc.header["$MEASUREMENT"] = 1
+    doc.ezdxf_metadata()["CREATED_BY_EZDXF"] = ezdxf_version  # without the time that stands there
+    for name, pattern in STYLES.items():
+        doc.linetypes.add(name, pattern=list(pattern), description=name)
+    for name in layers:
+        doc.layers.add(name, color=GREY, linetype=STYLE_OF[name])
+    return doc
+
+
+def _part(doc: Document, part: Part, motion: Similarity) -> None:
+    for contour in (*part.holes, part.outer):
+        _contour(doc, contour, motion)
+    for curve in part.marks:
+        _curve(doc, MARK, curve, motion)
+    for curve in part.bends:
+        _curve(doc, NOTE, curve, motion)
+
+
+def _contour(doc: Document, contour: Contour, motion: Similarity) -> None:
+    if contour.circle is None:
+        _polyline(doc, CUT, motion.polyline(contour.xyb), closed=True)
+        return
+    x, y, radius = contour.circle
+    centre = motion.points(np.array([[x, y]]))[0]
+    doc.modelspace().add_circle((float(centre[0]), float(centre[1])), radius, dxfattribs={"layer": CUT})
+
+
+def _curve(doc: Document, layer: str, curve: Curve, motion: Similarity) -> None:
+    _polyline(doc, layer, motion.polyline(curve.xyb), closed=curve.closed)
+
+
+def _polyline(doc: Document, layer: str, xyb: Floats, *, closed: bool) -> None:
+    points = [(float(x), float(y), float(b)) for x, y, b in xyb]
+    doc.modelspace().add_lwpolyline(points, format="xyb", close=closed, dxfattribs={"layer": layer})
+
+
+def _label(doc: Document, part: Part, motion: Similarity, words: str) -> None:
+    at = motion.points(np.array([inner_point(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1)]))[0]
+    height = min(MOST_TEXT_MM, max(LEAST_TEXT_MM, TEXT_SHARE * min(part.size_mm)))
+    _text(doc, words, (float(at[0]), float(at[1])), height, middle=True)
+
+
+def _text(doc: Document, words: str, at: tuple[float, float], height: float, *, middle: bool = False) -> None:
+    text = doc.modelspace().add_text(words, height=height, dxfattribs={"layer": NOTE})
+    text.set_placement(at, align=TextEntityAlignment.MIDDLE_CENTER if middle else TextEntityAlignment.LEFT)
+
+
+def _written(doc: Document) -> str:
+    """Text of the document with a fixed date and no random ids."""
+    stream = io.StringIO()
+    before = options.write_fixed_meta_data_for_testing
+    options.write_fixed_meta_data_for_testing = True
+    try:
+        doc.write(stream)
+    finally:
+        options.write_fixed_meta_data_for_testing = before
+    return stream.getvalue()

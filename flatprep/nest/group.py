@@ -1,0 +1,105 @@
+"""One material and thickness: its parts as shapes, its stock as bins, and the way back from places to true parts."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from shapely.geometry import Polygon
+
+from flatprep.geom.bulge import Similarity
+from flatprep.model.layout import Unplaced
+from flatprep.nest.allowed import hands, matches, turns_on, why_no_stock
+from flatprep.nest.assemble import FilledSheet, Spot, spot
+from flatprep.nest.construct import Bin
+from flatprep.nest.objective import is_open
+from flatprep.nest.prepare import Grown, container_of, grow
+from flatprep.nest.problem import Item, NestAsk, StockSheet
+from flatprep.nest.shapes import Place, Shape
+
+
+@dataclass(frozen=True, slots=True)
+class Group:
+    """Parts of one material and thickness, and the stock they may lie on.
+
+    Attributes
+    ----------
+    stock : tuple of StockSheet
+        The kinds that the margin leaves something of; `bins` go with them.
+    items : tuple of Item
+    shapes : tuple of Shape
+        One for each item and hand.
+    owner : tuple of (Item, Grown)
+        What each shape stands for.
+    """
+
+    stock: tuple[StockSheet, ...]
+    bins: tuple[Bin, ...]
+    shapes: tuple[Shape, ...]
+    owner: tuple[tuple[Item, Grown], ...]
+
+    @property
+    def pieces(self) -> int:
+        """Pieces to lay."""
+        return sum(s.count for s in self.shapes)
+
+    def filled(self, places: Sequence[Place], supply: Sequence[int]) -> tuple[FilledSheet, ...]:
+        """Sheets with true parts, those of `supply` that carry something, in its order."""
+        spots: dict[int, list[Spot]] = {}
+        for p in places:
+            item, grown = self.owner[p.shape]
+            motion = Similarity(turn_deg=p.turn_deg, dx=p.x, dy=p.y, mirrored=p.mirrored)
+            spots.setdefault(p.container, []).append(spot(item, grown.centre, motion))
+        return tuple(FilledSheet(self.stock[supply[n]], tuple(spots[n])) for n in sorted(spots))
+
+
+def split(ask: NestAsk) -> tuple[list[tuple[Item, ...]], list[Unplaced]]:
+    """Sort items by material and thickness; those that no stock may carry come back with the reason."""
+    groups: list[list[Item]] = []
+    unplaced = []
+    for item in ask.items:
+        count = item.quantity + item.quantity_opposite
+        why = why_no_stock(item, ask.stock) if count else None
+        if count == 0:
+            continue
+        if why is not None:
+            unplaced.append(Unplaced(item.name, count, why))
+            continue
+        for group in groups:
+            same = item.material == group[0].material
+            if same and abs(item.thickness_mm - group[0].thickness_mm) <= 1e-6:
+                group.append(item)
+                break
+        else:
+            groups.append([item])
+    return [tuple(group) for group in groups], unplaced
+
+
+def prepare_group(items: Sequence[Item], ask: NestAsk) -> Group:
+    """Grow the parts, shrink the stock, resolve turns against the grain."""
+    owner: list[tuple[Item, Grown]] = []
+    shapes: list[Shape] = []
+    for item in items:
+        grown = grow(item.part, ask.spacing_mm, windows=ask.windows)
+        for count, states in hands(item):
+            owner.append((item, grown))
+            shapes.append(Shape(grown.outer, grown.holes, item.turns_deg, states, count))
+    shapes = [_useful_windows(s, shapes) for s in shapes]
+    longest = sum(s.count * float(np.hypot(*np.ptp(s.outer, axis=0))) for s in shapes) + 2.0 * ask.margin_mm
+    kinds, bins = [], []
+    for stock in ask.stock:
+        if stock.count == 0 or not any(matches(item, stock) for item in items):
+            continue
+        try:
+            container = container_of(stock, ask.margin_mm, ask.spacing_mm, longest if is_open(stock) else None)
+        except ValueError:
+            continue
+        kinds.append(stock)
+        bins.append(Bin(container, tuple(turns_on(item, stock) for item, _ in owner)))
+    return Group(tuple(kinds), tuple(bins), tuple(shapes), tuple(owner))
+
+
+def _useful_windows(shape: Shape, others: Sequence[Shape]) -> Shape:
+    """Shape without the windows that no piece can lie in: too small by area."""
+    least = min(float(Polygon(s.outer, s.holes).area) for s in others)
+    kept = tuple(h for h in shape.holes if Polygon(h).area >= least)
+    return Shape(shape.outer, kept, shape.turns_deg, shape.mirror, shape.count)

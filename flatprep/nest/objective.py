@@ -1,0 +1,92 @@
+"""What a better nest is, stated in one place.
+
+First, no piece is left out that could be laid. Then the stock taken costs least: the price of each sheet; of open
+length, the length used. Then fewer sheets are begun. Then the last sheet is used up to the least length, so that the
+rest of it is one useful piece.
+
+Stock without a price is reckoned by its area at the mean price per area of the priced stock of the same group, or by
+its area alone where none has a price; an irregular remnant without a price at half of that, for it lies there anyway.
+The figures only rank nests: no made-up price leaves this module.
+"""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from shapely.geometry import Polygon
+
+from flatprep.nest.problem import StockSheet
+
+REMNANT_SHARE = 0.5
+"""What an unpriced remnant counts beside the same area of a full sheet."""
+SAME_COST = 1e-9
+
+
+@dataclass(frozen=True, slots=True, order=True)
+class Value:
+    """How good a nest of one material and thickness is: the smaller, the better, in the order of the fields.
+
+    Attributes
+    ----------
+    left_out : int
+        Pieces without a place.
+    cost : float
+        Of the stock taken; the job's currency, or m² where nothing has a price.
+    sheets : int
+    length_mm : float
+        Used length of the last sheet.
+    """
+
+    left_out: int
+    cost: float
+    sheets: int
+    length_mm: float
+
+
+@dataclass(frozen=True, slots=True)
+class SheetUse:
+    """A sheet that is used, and how far along x; `length_mm` counts both margins."""
+
+    stock: StockSheet
+    length_mm: float
+
+
+def value(uses: Sequence[SheetUse], left_out: int, kinds: Sequence[StockSheet]) -> Value:
+    """Value of a nest on these sheets, in the order in which they are taken; `kinds` is the stock of the group."""
+    rate = price_per_area(kinds)
+    cost = sum(cost_of(use, rate) for use in uses)
+    return Value(left_out, round(cost / SAME_COST) * SAME_COST, len(uses), uses[-1].length_mm if uses else 0.0)
+
+
+def cost_of(use: SheetUse, rate: float) -> float:
+    """Cost of one sheet as used; `rate` per mm² stands in for a missing price."""
+    stock = use.stock
+    if is_open(stock):
+        per_metre = stock.price_per_metre if stock.price_per_metre is not None else rate * stock.width_mm * 1000.0
+        return per_metre * use.length_mm / 1000.0
+    if stock.price is not None:
+        return stock.price
+    return rate * area_mm2(stock) * (REMNANT_SHARE if stock.outline is not None else 1.0)
+
+
+def price_per_area(kinds: Sequence[StockSheet]) -> float:
+    """Mean price per mm² of the stock that has one; 1e-6 (m²) where none has."""
+    known = [rate for rate in map(_own_rate, kinds) if rate is not None and rate > 0.0]
+    return sum(known) / len(known) if known else 1e-6
+
+
+def _own_rate(stock: StockSheet) -> float | None:
+    if is_open(stock):
+        return None if stock.price_per_metre is None else stock.price_per_metre / (1000.0 * stock.width_mm)
+    return None if stock.price is None else stock.price / area_mm2(stock)
+
+
+def is_open(stock: StockSheet) -> bool:
+    """Tell whether as much of the stock is taken as is needed."""
+    return stock.outline is None and stock.length_mm is None
+
+
+def area_mm2(stock: StockSheet) -> float:
+    """Area of one sheet, its holes taken off; 0 for open length."""
+    if stock.outline is not None:
+        return float(Polygon(stock.outline).area) - sum(float(Polygon(h).area) for h in stock.holes)
+    return (stock.length_mm or 0.0) * stock.width_mm

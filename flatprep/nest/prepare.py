@@ -1,0 +1,150 @@
+"""From true parts and sheets to what the search lays: outlines that may touch, in containers that may be touched."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from math import cos, pi
+
+import numpy as np
+import shapely
+from shapely.geometry import MultiPolygon, Polygon
+
+from flatprep.geom.bulge import Floats
+from flatprep.geom.outward import outside_points, simplify_outward
+from flatprep.geom.polygons import valid_polygon
+from flatprep.model.drawing import Part
+from flatprep.nest.problem import StockSheet
+from flatprep.nest.shapes import Container
+
+CHORD_MM = 0.01
+"""Largest distance of an outline from a true arc, where nothing is simplified."""
+MOST_TOLERANCE_MM = 0.1
+TOLERANCE_SHARE = 1.0 / 25.0
+"""Outlines are simplified within this share of the spacing."""
+QUARTER = 12
+"""Chords a quarter circle of a grown corner."""
+MANY = 400
+"""Rings of more points are simplified before they are grown: an offset of a long comb would take minutes."""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Grown:
+    """A part's outline grown by half the spacing, about `centre` of its drawing (mm)."""
+
+    outer: Floats
+    holes: tuple[Floats, ...]
+    centre: tuple[float, float]
+
+
+def tolerance_for(spacing_mm: float) -> float:
+    """How far an outline may be simplified, mm: nothing that matters where parts touch."""
+    return min(MOST_TOLERANCE_MM, TOLERANCE_SHARE * spacing_mm) if spacing_mm > 0.0 else 1e-7
+
+
+def grow(part: Part, spacing_mm: float, *, windows: bool) -> Grown:
+    """Outline that holds every point within half the spacing of the part's material.
+
+    Two parts whose grown outlines do not overlap are apart by the spacing. With spacing 0 straight contours are taken
+    as they are, arcs circumscribed within `CHORD_MM`. Windows are left out where they may not be used.
+    """
+    tolerance = tolerance_for(spacing_mm)
+    rings = [_light(outside_points(c.xyb, CHORD_MM), tolerance) for c in part.contours]
+    shape = _one_piece(valid_polygon(Polygon(rings[0], rings[1:] if windows else [])))
+    shape = Polygon(shape.exterior, [h for h in shape.interiors if windows])
+    half = spacing_mm / 2.0
+    if half > 0.0:
+        shape = _one_piece(shape.buffer(half / cos(pi / (4 * QUARTER)), quad_segs=QUARTER))
+    box = np.array(part.outer.bounds) + np.array([-half, -half, half, half])
+    outer = clipped(simple_ring(np.asarray(shape.exterior.coords)[:-1], tolerance, 1.0), box)
+    holes = [simple_ring(np.asarray(h.coords)[:-1], tolerance, -1.0) for h in shape.interiors if windows]
+    middle = (box[:2] + box[2:]) / 2.0
+    return Grown(
+        np.ascontiguousarray(outer - middle),
+        tuple(np.ascontiguousarray(h - middle) for h in holes if len(h) >= 3),
+        (float(middle[0]), float(middle[1])),
+    )
+
+
+def container_of(sheet: StockSheet, margin_mm: float, spacing_mm: float, length_mm: float | None = None) -> Container:
+    """Region that grown outlines may fill: the border moved in by the margin less half the spacing.
+
+    An irregular remnant is never moved out: a notch narrower than the spacing must stay a notch.
+
+    Raises
+    ------
+    ValueError
+        When nothing of the sheet is left.
+    """
+    inset = margin_mm - spacing_mm / 2.0
+    rectangle = rectangle_of(sheet, length_mm)
+    if rectangle is not None and not sheet.holes:
+        x0, y0, x1, y1 = rectangle
+        x0, y0, x1, y1 = x0 + inset, y0 + inset, x1 - inset, y1 - inset
+        if x1 - x0 <= 0.0 or y1 - y0 <= 0.0:
+            raise ValueError("the margin leaves nothing of the sheet")
+        return Container(np.array([[x0, y0], [x1, y0], [x1, y1], [x0, y1]]))
+    return _region_container(usable_region(sheet, max(inset, 0.0)))
+
+
+def rectangle_of(sheet: StockSheet, length_mm: float | None = None) -> tuple[float, float, float, float] | None:
+    """Box of a sheet whose border is an axis-parallel rectangle, else None."""
+    if sheet.outline is None:
+        length = sheet.length_mm if sheet.length_mm is not None else length_mm
+        return None if length is None else (0.0, 0.0, length, sheet.width_mm)
+    x0, y0, x1, y1 = Polygon(sheet.outline).bounds
+    full = (x1 - x0) * (y1 - y0)
+    return (x0, y0, x1, y1) if abs(Polygon(sheet.outline).area - full) <= 1e-9 * full else None
+
+
+def usable_region(sheet: StockSheet, inset_mm: float) -> Polygon | MultiPolygon:
+    """Return what of a remnant is `inset_mm` or more from its border and its holes; may be several pieces, or none."""
+    border = sheet.outline if sheet.outline is not None else _rectangle_points(sheet)
+    region = valid_polygon(Polygon(border, list(sheet.holes)))
+    if inset_mm > 0.0:
+        region = region.buffer(-inset_mm / cos(pi / (4 * QUARTER)), quad_segs=QUARTER)
+    return region
+
+
+def _rectangle_points(sheet: StockSheet) -> Floats:
+    length = sheet.length_mm or 0.0
+    return np.array([[0.0, 0.0], [length, 0.0], [length, sheet.width_mm], [0.0, sheet.width_mm]])
+
+
+def _region_container(region: Polygon | MultiPolygon) -> Container:
+    if region.is_empty:
+        raise ValueError("the margin leaves nothing of the sheet")
+    if isinstance(region, Polygon):
+        holes = tuple(np.asarray(h.coords)[:-1] for h in region.interiors)
+        return Container(np.ascontiguousarray(np.asarray(region.exterior.coords)[:-1][::-1]), holes)
+    box = shapely.box(*region.bounds)
+    rest = box.difference(region)
+    keep_out = [p for p in getattr(rest, "geoms", [rest]) if p.area > 0.0]
+    return Container(np.asarray(box.exterior.coords)[:-1], tuple(np.asarray(p.exterior.coords)[:-1] for p in keep_out))
+
+
+def _light(ring: Floats, tolerance_mm: float) -> Floats:
+    return simplify_outward(ring, tolerance_mm / 2.0) if len(ring) > MANY else ring
+
+
+def _one_piece(shape: Polygon | MultiPolygon) -> Polygon:
+    """Return the region itself, or the hull of what an outline that crosses itself has fallen into."""
+    return shape if isinstance(shape, Polygon) else shape.convex_hull
+
+
+def simple_ring(ring: Floats, tolerance_mm: float, side: float) -> Floats:
+    """Ring with fewer corners, material left; the ring itself where the shorter one would cross itself."""
+    signed = shapely.LinearRing(ring).is_ccw
+    straight = ring if signed == (side > 0.0) else ring[::-1]
+    fewer = simplify_outward(straight, tolerance_mm)
+    return fewer if len(fewer) >= 3 and Polygon(fewer).is_valid else straight
+
+
+def clipped(ring: Floats, box: Sequence[float] | Floats) -> Floats:
+    """Cut off what simplifying has added outside the true box: pieces still fit where they just fit."""
+    low, high = ring.min(axis=0), ring.max(axis=0)
+    if (low >= np.asarray(box)[:2]).all() and (high <= np.asarray(box)[2:]).all():
+        return ring
+    cut = Polygon(ring).intersection(shapely.box(*box))
+    if not isinstance(cut, Polygon) or cut.is_empty:
+        return ring
+    points = np.asarray(cut.exterior.coords)[:-1]
+    return points if shapely.LinearRing(points).is_ccw else points[::-1]

@@ -1,0 +1,144 @@
+"""Picture of a sheet, true to scale: ``sheet-NN.svg`` to print beside the machine."""
+
+from collections.abc import Mapping
+
+import numpy as np
+import svgwrite
+from shapely.geometry import Polygon
+
+from flatprep.geom.bulge import Floats
+from flatprep.geom.polygons import inner_point
+from flatprep.model.drawing import Curve, Part
+from flatprep.model.layout import Placement, SheetLayout
+from flatprep.report.figures import bare_length, length, percent, size
+from flatprep.report.svg_path import joined, part_path, ring_data
+
+OKABE_ITO = ("#E69F00", "#56B4E9", "#009E73", "#F0E442", "#0072B2", "#D55E00", "#CC79A7")
+"""Colours that colour-blind readers tell apart (Okabe and Ito 2008); every part is named as well."""
+INK, PALE = "#333333", "#FFFFFF"
+
+
+def sheet_svg(
+    sheet: SheetLayout, number: int, parts: Mapping[str, Part], *, margin_mm: float, job: str = "", units: str = "mm"
+) -> str:
+    """SVG document of a sheet with its parts, names, used length, sheet data and a scale bar.
+
+    Parameters
+    ----------
+    sheet
+    number
+        From 1.
+    parts
+        True shapes by the names that the placements use.
+    margin_mm
+        Drawn as a dashed line where the border is a rectangle.
+    job
+        Name of the job, for the heading.
+    units
+        Of the figures written.
+    """
+    x0, y0 = sheet.outline.min(axis=0)
+    x1, y1 = sheet.outline.max(axis=0)
+    em = float(max(x1 - x0, y1 - y0)) / 70.0
+    left, top, width, height = x0 - 3 * em, -y1 - 4 * em, x1 - x0 + 6 * em, y1 - y0 + 10 * em
+    page = svgwrite.Drawing(size=(f"{width:.3f}mm", f"{height:.3f}mm"), debug=False)
+    page.viewbox(round(float(left), 3), round(float(top), 3), round(float(width), 3), round(float(height), 3))
+    page.set_desc(title=f"{job} sheet {number}".strip())
+    _stock(page, sheet, margin_mm, em)
+    colour = {name: OKABE_ITO[k % len(OKABE_ITO)] for k, name in enumerate(sorted(_names(sheet)))}
+    for placement in sheet.placements:
+        _piece(page, parts[placement.part], placement, colour[placement.part], em)
+    _used_length(page, sheet, em, units)
+    _heading(page, sheet, number, job, em, units)
+    _scale_bar(page, (float(x0), float(-y0 + 5.2 * em)), float(x1 - x0), em, units)
+    return str(page.tostring())
+
+
+def _names(sheet: SheetLayout) -> set[str]:
+    return {p.part for p in sheet.placements}
+
+
+def _stock(page: svgwrite.Drawing, sheet: SheetLayout, margin_mm: float, em: float) -> None:
+    border = "".join(ring_data(r) for r in (sheet.outline, *sheet.holes))
+    page.add(page.path(d=border, fill="#EEEEEE", fill_rule="evenodd", stroke=INK, stroke_width=em / 8, class_="sheet"))
+    inner = Polygon(sheet.outline, list(sheet.holes)).buffer(-margin_mm, join_style="mitre") if margin_mm > 0 else None
+    for piece in getattr(inner, "geoms", [inner] if inner is not None else []):
+        if not piece.is_empty:
+            dash = f"{em / 2:.3f} {em / 2:.3f}"
+            line = ring_data(np.asarray(piece.exterior.coords)[:-1])
+            page.add(page.path(d=line, fill="none", stroke="#888888", stroke_width=em / 16, stroke_dasharray=dash))
+
+
+def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, colour: str, em: float) -> None:
+    """One part at its place: outline, marks, name. Coordinates are the drawing's own, moved by one matrix."""
+    (a, c), (b, d) = placement.motion.matrix()
+    group = page.g(class_="placed", transform=_matrix(a, -b, -c, d, placement.dx, -placement.dy))
+    group.set_desc(title=f"{placement.part} {placement.copy}")
+    thin = {"stroke": INK, "stroke_width": round(em / 14, 3)}
+    group.add(page.path(d=part_path(part), fill=colour, fill_opacity=0.55, fill_rule="evenodd", **thin))
+    if part.marks:
+        group.add(
+            page.path(d=joined([_shut(m) for m in part.marks]), fill="none", stroke_dasharray=f"{em / 4:.3f}", **thin)
+        )
+    page.add(group)
+    x, y = placement.motion.points(_middle(part))[0]
+    words = f"{placement.part} {placement.copy}"
+    height = min(em, 0.3 * min(part.size_mm), 1.6 * max(part.size_mm) / max(len(words), 1))
+    _text(page, words, (float(x), float(-y) + height / 3), height, anchor="middle")
+
+
+def _matrix(*figures: float) -> str:
+    return f"matrix({' '.join(f'{float(v):.9g}' for v in figures)})"
+
+
+def _shut(curve: Curve) -> Floats:
+    return np.vstack([curve.xyb, curve.xyb[:1]]) if curve.closed else curve.xyb
+
+
+def _used_length(page: svgwrite.Drawing, sheet: SheetLayout, em: float, units: str) -> None:
+    """Dimension under the sheet: how much of it the parts take."""
+    left, low = (float(v) for v in sheet.outline.min(axis=0))
+    y, right = -low + 1.2 * em, left + sheet.used_length_mm
+    line = f"M{left:.3f} {y:.3f}H{right:.3f}M{left:.3f} {y - em / 2:.3f}v{em:.3f}M{right:.3f} {y - em / 2:.3f}v{em:.3f}"
+    page.add(page.path(d=line, fill="none", stroke=INK, stroke_width=em / 12))
+    words = f"used length {length(sheet.used_length_mm, units)}"
+    _text(page, words, ((left + right) / 2, y + 1.5 * em), em, anchor="middle")
+
+
+def _heading(page: svgwrite.Drawing, sheet: SheetLayout, number: int, job: str, em: float, units: str) -> None:
+    extent = np.ptp(sheet.outline, axis=0)
+    thick = length(sheet.thickness_mm, units)
+    words = [
+        job,
+        f"sheet {number}",
+        sheet.stock,
+        sheet.material,
+        thick,
+        size(float(extent[0]), float(extent[1]), units),
+    ]
+    words += [f"{len(sheet.placements)} parts", f"{percent(sheet.utilisation)} used"]
+    at = (float(sheet.outline[:, 0].min()), float(-sheet.outline[:, 1].max() - 1.5 * em))
+    _text(page, " · ".join(w for w in words if w), at, 1.2 * em)
+
+
+def _scale_bar(page: svgwrite.Drawing, at: tuple[float, float], room: float, em: float, units: str) -> None:
+    """Bar of a round length, a tenth to a quarter of the sheet."""
+    unit = 25.4 if units in ("in", "ft") else 1.0
+    steps = [unit * m * 10**e for e in range(-1, 5) for m in (1, 2, 5)]
+    bar = max((s for s in steps if s <= room / 4), default=room / 4)
+    x, y = at
+    for k in range(2):
+        shade = INK if k == 0 else PALE
+        half = page.rect((x + k * bar / 2, y), (bar / 2, em / 2), fill=shade, stroke=INK, stroke_width=em / 16)
+        page.add(half)
+    _text(page, f"{bare_length(bar, units)} {units}", (x + bar + em / 2, y + em / 2), em)
+
+
+def _text(page: svgwrite.Drawing, words: str, at: tuple[float, float], height: float, *, anchor: str = "start") -> None:
+    place = (round(at[0], 3), round(at[1], 3))
+    font = {"font_size": round(height, 3), "font_family": "sans-serif", "text_anchor": anchor, "fill": INK}
+    page.add(page.text(words, insert=place, **font))
+
+
+def _middle(part: Part) -> Floats:
+    return np.array([inner_point(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1)])
