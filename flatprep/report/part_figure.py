@@ -110,7 +110,7 @@ def badge_shape(kind: str, words: str, x: float, y: float, r: float) -> str:
 
 def sign(kind: str, words: str) -> str:
     """Return a mark by itself, as it stands in the tables beside the picture."""
-    pieces = badge_shape(kind, words, 13, 13, 10) + text(words, 13, 17, 12)
+    pieces = badge_shape(kind, words, 13, 13, 14 if kind == "step" else 10) + text(words, 13, 17, 12)
     return picture(tag("g", pieces, class_=f"mark {kind}"), (0, 0, 26, 26), css="sign", label=f"{kind} {words}")
 
 

@@ -1,0 +1,115 @@
+"""Parts, findings, steps and sheets as CSV tables: one row a thing, plain figures, units in the heads.
+
+Decimal points and commas as RFC 4180 has them. A text that a spreadsheet would take for a formula gets an apostrophe in
+front: names come from strangers' drawings.
+"""
+
+import csv
+import io
+from collections import Counter
+from collections.abc import Iterable, Sequence
+
+from flatprep.report.bundle import Bundle
+from flatprep.report.sheet_figure import sheet_box
+
+Cell = str | float | int | None
+
+_FORMULA_STARTS = ("=", "+", "-", "@", "\t", "\r")
+
+
+def parts_csv(bundle: Bundle) -> str:
+    """Return one row a part: what it is, how many, how large, how heavy, what it costs."""
+    head = (
+        "part", "drawing", "drawing_hash", "revision", "material", "thickness_mm", "process", "quantity",
+        "quantity_opposite", "width_mm", "height_mm", "area_mm2", "cut_length_mm", "pierces", "mass_kg",
+        "material_cost", "line_cost", "errors", "warnings", "notes", "note",
+    )  # fmt: skip
+    return _table(head, (_part_row(bundle, i) for i in range(len(bundle.cards))))
+
+
+def _part_row(bundle: Bundle, index: int) -> tuple[Cell, ...]:
+    card = bundle.cards[index]
+    estimate, part = card.estimate, card.part
+    width, height = part.size_mm if part else (None, None)
+    loud = Counter(finding.severity.value for finding in card.findings)
+    return (
+        card.name, card.drawing, card.digest, card.revision, card.material, card.thickness_mm, card.process,
+        card.quantity, card.quantity_opposite, width, height,
+        part.area_mm2 if part else None, part.cut_length_mm if part else None, part.pierces if part else None,
+        estimate.mass_kg if estimate else None, estimate.material_cost if estimate else None,
+        str(estimate.line_cost) if estimate and estimate.line_cost is not None else None,
+        loud["error"], loud["warning"], loud["note"], card.note,
+    )  # fmt: skip
+
+
+def findings_csv(bundle: Bundle) -> str:
+    """Return one row a finding, in the order of the report; unreadable drawings come last."""
+    head = (
+        "part", "drawing", "number", "severity", "rule", "message", "x_mm", "y_mm", "measured", "limit", "unit",
+        "remedy", "entities",
+    )  # fmt: skip
+    rows: list[tuple[Cell, ...]] = [
+        (
+            card.name, card.drawing, number, f.severity.value, f.rule, f.message, *(f.at or (None, None)), f.measured,
+            f.limit, f.unit, f.remedy, " ".join(f.handles),
+        )
+        for card in bundle.cards
+        for number, f in enumerate(card.findings, start=1)
+    ]  # fmt: skip
+    rows += [
+        (None, file, None, "error", "unreadable", message, None, None, None, None, None, "", "")
+        for file, message in bundle.unreadable
+    ]
+    return _table(head, rows)
+
+
+def steps_csv(bundle: Bundle) -> str:
+    """Return one row a bench step and part; places as ``(x y)`` in mm."""
+    head = (
+        "part", "revision", "quantity", "step", "kind", "size", "tool_dia_mm", "cut_dia_mm", "depth_mm", "count",
+        "side", "places_mm", "note", "caution",
+    )  # fmt: skip
+    return _table(
+        head,
+        (
+            (
+                card.name, card.revision, card.quantity + card.quantity_opposite, s.order, s.kind.value, s.size,
+                s.tool_dia_mm, s.cut_dia_mm, s.depth_mm, s.count, s.side,
+                " ".join(f"({x:.3f} {y:.3f})" for x, y in s.at), s.note, s.caution,
+            )
+            for card in bundle.cards
+            for s in card.steps
+        ),
+    )  # fmt: skip
+
+
+def sheets_csv(bundle: Bundle) -> str:
+    """Return one row a sheet and kind of part on it, so that a sheet's rows add up to its pieces."""
+    head = (
+        "sheet", "stock", "material", "thickness_mm", "length_mm", "width_mm", "used_length_mm", "utilisation",
+        "part", "pieces",
+    )  # fmt: skip
+    rows: list[tuple[Cell, ...]] = []
+    for number, sheet in enumerate(bundle.layout.sheets if bundle.layout else (), start=1):
+        x0, y0, x1, y1 = sheet_box(sheet)
+        known = (
+            number, sheet.stock, sheet.material, sheet.thickness_mm, x1 - x0, y1 - y0, sheet.used_length_mm,
+            sheet.utilisation,
+        )  # fmt: skip
+        counts = Counter(placement.part for placement in sheet.placements)
+        rows += [(*known, name, count) for name, count in sorted(counts.items())]
+    return _table(head, rows)
+
+
+def _table(head: Sequence[str], rows: Iterable[Sequence[Cell]]) -> str:
+    out = io.StringIO()
+    writer = csv.writer(out, lineterminator="\r\n")
+    writer.writerow(head)
+    writer.writerows([_cell(value) for value in row] for row in rows)
+    return out.getvalue()
+
+
+def _cell(value: Cell) -> Cell:
+    if isinstance(value, str) and value.startswith(_FORMULA_STARTS):
+        return "'" + value
+    return "" if value is None else value

@@ -1,0 +1,95 @@
+"""The schemas are sound, and each refuses what its document must not hold."""
+
+import copy
+
+import pytest
+from jsonschema import Draft202012Validator
+
+from flatprep.report.schema import KINDS, schema
+
+# documents as the interface states them
+GOOD = {
+    "lint": {
+        "schema": "flatprep-lint/1",
+        "drawings": [
+            {
+                "file": "leaf.dxf", "units": "mm", "units_from": "header",
+                "parts": [{"name": "leaf", "area_mm2": 1.0, "cut_length_mm": 4.0, "holes": 0, "pierces": 1,
+                           "size_mm": [1.0, 1.0], "centroid_mm": [0.5, 0.5], "mass_kg": None}],
+                "findings": [{"rule": "thin-web", "severity": "error", "part": "leaf", "message": "thin",
+                              "at": [0.0, 0.0], "measured": 0.8, "limit": 1.0, "unit": "mm", "remedy": "",
+                              "handles": ["2F"]}],
+            }
+        ],
+        "unreadable": [{"file": "x.dxf", "message": "broken"}],
+    },
+    "layout": {
+        "schema": "flatprep-layout/1", "spacing_mm": 3.0, "margin_mm": 8.0,
+        "parts": [{"name": "leaf", "drawing": "leaf.dxf", "units": "mm", "quantity": 1, "layers": ["0"],
+                   "at": [3.0, 3.0]}],
+        "sheets": [{"file": "sheet-01.dxf", "stock": "al3", "material": "al", "thickness_mm": 3.0,
+                    "outline": [[0, 0], [1, 0], [1, 1]], "holes": [], "used_length_mm": 0.0, "utilisation": 0.0,
+                    "placements": [{"part": "leaf", "copy": 1, "turn_deg": 90.0, "mirrored": False,
+                                    "dx": 0.0, "dy": 0.0}]}],
+        "unplaced": [{"part": "leaf", "count": 1, "why": "too large"}],
+    },
+    "checklist": {
+        "schema": "flatprep-checklist/1",
+        "parts": [{"name": "leaf", "quantity": 12,
+                   "steps": [{"order": 1, "kind": "tap", "size": "M5", "tool_dia_mm": 4.2, "depth_mm": None, "count": 4,
+                              "at": [[10.0, 12.0]], "cut_dia_mm": 4.2, "side": None, "note": "", "caution": ""}]}],
+        "cautions": [],
+    },
+    "estimate": {
+        "schema": "flatprep-estimate/1", "currency": None,
+        "parts": [{"name": "leaf", "quantity": 12, "area_mm2": 1.0, "mass_kg": None, "cut_length_mm": 1.0, "pierces": 1,
+                   "material_cost": None, "line_cost": None, "cut_time_s": None}],
+        "stock": [{"name": "al3", "count": 1, "price": None}],
+        "mass_kg": None, "mass_limit_kg": None, "material_cost": None, "utilisation": None,
+    },
+    "lookup": {"kind": "nut", "name": "M8", "values": {"across_flats_mm": 13.0}, "source": "ISO 4032"},
+}  # fmt: skip
+BAD = [
+    ("lint", ("drawings", 0, "units_from"), "guessed"),
+    ("lint", ("drawings", 0, "findings", 0, "severity"), "loud"),
+    ("lint", ("drawings", 0, "findings", 0, "at"), [1.0]),
+    ("lint", ("drawings", 0, "parts", 0, "pierces"), 0),
+    ("layout", ("sheets", 0, "utilisation"), 1.2),
+    ("layout", ("sheets", 0, "placements", 0, "copy"), 0),
+    ("layout", ("unplaced", 0, "why"), ""),
+    ("checklist", ("parts", 0, "steps", 0, "kind"), "weld"),
+    ("checklist", ("parts", 0, "steps", 0, "tool_dia_mm"), 0),
+    ("checklist", ("parts", 0, "steps", 0, "side"), "C"),
+    ("estimate", ("material_cost",), -1.0),
+    ("estimate", ("parts", 0, "mass_kg"), "heavy"),
+    ("lookup", ("source",), ""),
+    ("lookup", ("values",), {}),
+]
+
+
+@pytest.mark.parametrize("kind", KINDS)
+def test_a_schema_is_sound_and_takes_the_document_of_the_interface(kind):
+    Draft202012Validator.check_schema(schema(kind))
+    Draft202012Validator(schema(kind)).validate(GOOD[kind])
+
+
+@pytest.mark.parametrize(("kind", "path", "value"), BAD)
+def test_a_schema_refuses_what_is_wrong(kind, path, value):
+    document = copy.deepcopy(GOOD[kind])
+    inner = document
+    for key in path[:-1]:
+        inner = inner[key]
+    inner[path[-1]] = value
+    assert not Draft202012Validator(schema(kind)).is_valid(document)
+
+
+@pytest.mark.parametrize("kind", KINDS)
+def test_every_key_of_the_interface_is_required(kind):
+    for key in GOOD[kind]:
+        document = {k: v for k, v in GOOD[kind].items() if k != key}
+        assert not Draft202012Validator(schema(kind)).is_valid(document), key
+
+
+def test_an_unknown_document_has_no_schema():
+    with pytest.raises(KeyError):
+        schema("../../secret")
