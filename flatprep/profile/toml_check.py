@@ -262,8 +262,21 @@ class Table:
 
 
 def shown(value: Value) -> str:
-    """Return a value as it stands in the file, cut short where it is long."""
+    """Return a value as it stands in the file, on one line, cut short where it is long."""
+    text = _written(value)
+    return text if len(text) <= 60 else text[:57] + "..."
+
+
+def _written(value: Value) -> str:
     if isinstance(value, bool):
         return str(value).lower()
-    shown = f'"{value}"' if isinstance(value, str) else repr(value)
-    return shown if len(shown) <= 60 else shown[:57] + "..."
+    if isinstance(value, str):
+        return '"' + value[:100].replace("\n", "\\n").replace("\r", "\\r") + '"'
+    if isinstance(value, list):
+        return "[" + ", ".join(map(_written, value[:20])) + "]"
+    if isinstance(value, dict):
+        return "{ " + ", ".join(f"{key} = {_written(item)}" for key, item in list(value.items())[:20]) + " }"
+    try:
+        return str(value)
+    except ValueError:  # a whole number of thousands of digits
+        return "a huge number"
