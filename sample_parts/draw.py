@@ -261,7 +261,7 @@ def framed(plate: Plate) -> Drawing:
     for corners in (((-60, -120), (460, 240)), ((260, -120), (460, -60))):
         (x0, y0), (x1, y1) = corners
         frame = [(x0, y0), (x1, y0), (x1, y1), (x0, y1)]
-        space.add_lwpolyline(frame, close=True, dxfattribs={"layer": "FRAME"})
+        space.add_lwpolyline(frame, close=True, dxfattribs={"layer": "TITLE_FRAME"})
     space.add_mtext(
         "TRAY SIDE\\PBIRCH 6 MM\\PGRAIN ALONG", dxfattribs={"layer": "TITLE", "char_height": 6}
     ).set_location((270, -68))

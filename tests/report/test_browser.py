@@ -9,6 +9,7 @@ import re
 import shutil
 import time
 from collections.abc import Iterator
+from pathlib import Path
 
 import pytest
 
@@ -224,3 +225,15 @@ def test_200_parts_answer_in_two_seconds(opened, many):
     page.fill("#search", "leaf-150")
     assert page.inner_text("#say") == "1 of 200 parts"
     assert time.perf_counter() - start < 2.0
+
+
+@pytest.mark.parametrize("scheme", ["light", "dark"])
+def test_an_accessibility_checker_finds_nothing(opened, bundle, scheme):
+    axe = os.environ.get("FLATPREP_AXE")
+    if not axe:
+        pytest.skip("FLATPREP_AXE does not name axe-core's axe.min.js (npm install axe-core)")
+    page = opened(report_html(bundle))
+    page.emulate_media(color_scheme=scheme)
+    page.evaluate(Path(axe).read_text(encoding="utf-8") + ";0")
+    faults = page.evaluate("axe.run().then(r => r.violations.map(v => v.impact + ' ' + v.id))")
+    assert faults == []
