@@ -1,0 +1,1 @@
+"""Hardware tables: threads, clearance holes, fits, heads, nuts, bearings, pins, tolerances, each read from its file."""
