@@ -1,12 +1,12 @@
 """What a better nest is, stated in one place.
 
 First, no piece is left out that could be laid. Then the stock taken costs least: the price of each sheet; of open
-length, the length used. Then fewer sheets are begun. Then the last sheet is used up to the least length, so that the
-rest of it is one useful piece.
+length, the length used. Then fewer full sheets are begun. Then the last one is used up to the least length, so that
+the rest of it is one useful piece. Then fewer remnants are taken.
 
-Stock without a price is reckoned by its area at the mean price per area of the priced stock of the same group, or by
-its area alone where none has a price; an irregular remnant without a price at half of that, for it lies there anyway.
-The figures only rank nests: no made-up price leaves this module.
+Full sheets without a price are reckoned by their area at the mean price per area of the priced stock of the same
+group, or by their area alone where none has a price. An irregular remnant without a price costs nothing: it lies
+there anyway, and is filled first. The figures only rank nests: no made-up price leaves this module.
 """
 
 from collections.abc import Sequence
@@ -16,8 +16,6 @@ from shapely.geometry import Polygon
 
 from flatprep.nest.problem import StockSheet
 
-REMNANT_SHARE = 0.5
-"""What an unpriced remnant counts beside the same area of a full sheet."""
 SAME_COST = 1e-9
 
 
@@ -32,14 +30,17 @@ class Value:
     cost : float
         Of the stock taken; the job's currency, or m² where nothing has a price.
     sheets : int
+        Full sheets.
     length_mm : float
-        Used length of the last sheet.
+        Used length of the last full sheet, else of the last remnant.
+    remnants : int
     """
 
     left_out: int
     cost: float
     sheets: int
     length_mm: float
+    remnants: int
 
 
 @dataclass(frozen=True, slots=True)
@@ -54,7 +55,9 @@ def value(uses: Sequence[SheetUse], left_out: int, kinds: Sequence[StockSheet]) 
     """Value of a nest on these sheets, in the order in which they are taken; `kinds` is the stock of the group."""
     rate = price_per_area(kinds)
     cost = sum(cost_of(use, rate) for use in uses)
-    return Value(left_out, round(cost / SAME_COST) * SAME_COST, len(uses), uses[-1].length_mm if uses else 0.0)
+    full = [use for use in uses if use.stock.outline is None]
+    last = (full or list(uses))[-1].length_mm if uses else 0.0
+    return Value(left_out, round(cost / SAME_COST) * SAME_COST, len(full), last, len(uses) - len(full))
 
 
 def cost_of(use: SheetUse, rate: float) -> float:
@@ -65,7 +68,7 @@ def cost_of(use: SheetUse, rate: float) -> float:
         return per_metre * use.length_mm / 1000.0
     if stock.price is not None:
         return stock.price
-    return rate * area_mm2(stock) * (REMNANT_SHARE if stock.outline is not None else 1.0)
+    return 0.0 if stock.outline is not None else rate * area_mm2(stock)
 
 
 def price_per_area(kinds: Sequence[StockSheet]) -> float:
