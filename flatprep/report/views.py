@@ -71,6 +71,17 @@ class PartView:
 
 
 @dataclass(frozen=True, slots=True)
+class SheetLine:
+    """A kind of part on a sheet: its number in the picture, and which state of its drawing it is."""
+
+    number: int
+    name: str
+    pieces: int
+    revision: str
+    digest: str
+
+
+@dataclass(frozen=True, slots=True)
 class SheetView:
     """A sheet as the page shows it."""
 
@@ -82,7 +93,7 @@ class SheetView:
     used_length_mm: float
     utilisation: float
     offcut: str
-    contents: str
+    contents: tuple[SheetLine, ...]
     picture: Markup
 
 
@@ -146,19 +157,18 @@ def sheet_views(bundle: Bundle, shapes: Mapping[str, Shape]) -> tuple[SheetView,
         return ()
     offcuts = {offcut.sheet: offcut for offcut in bundle.offcuts}
     return tuple(
-        sheet_view(sheet, number, shapes, offcuts.get(number), bundle.units)
+        sheet_view(bundle, sheet, number, shapes, offcuts.get(number))
         for number, sheet in enumerate(bundle.layout.sheets, start=1)
     )
 
 
 def sheet_view(
-    sheet: SheetLayout, number: int, shapes: Mapping[str, Shape], offcut: Offcut | None, units: str
+    bundle: Bundle, sheet: SheetLayout, number: int, shapes: Mapping[str, Shape], offcut: Offcut | None
 ) -> SheetView:
     """View of one sheet."""
+    units = bundle.units
     x0, y0, x1, y1 = sheet_box(sheet)
     label = f"Sheet {number}, {sheet.stock}, with {counted(len(sheet.placements), 'piece')}"
-    counts = Counter(placement.part for placement in sheet.placements)
-    numbers = {name: f" ({shape.number})" for name, shape in shapes.items()}
     return SheetView(
         number=number,
         stock=sheet.stock,
@@ -168,8 +178,17 @@ def sheet_view(
         used_length_mm=sheet.used_length_mm,
         utilisation=sheet.utilisation,
         offcut=size(offcut.x1 - offcut.x0, offcut.y1 - offcut.y0, units) if offcut else "",
-        contents=", ".join(f"{n} × {name}{numbers.get(name, '')}" for name, n in sorted(counts.items())),
+        contents=_contents(bundle, sheet),
         picture=Markup(sheet_figure(sheet, shapes, offcut=offcut, units=units, label=label)),
+    )
+
+
+def _contents(bundle: Bundle, sheet: SheetLayout) -> tuple[SheetLine, ...]:
+    counts = Counter(placement.part for placement in sheet.placements)
+    return tuple(
+        SheetLine(number, card.name, counts[card.name], card.revision, card.digest)
+        for number, card in enumerate(bundle.cards, start=1)
+        if card.name in counts
     )
 
 

@@ -38,7 +38,17 @@ def test_every_part_finding_step_and_sheet_is_there(bundle):
     assert keys == ["f1", "f2", "f3", "s1", "s2", "s3", "s4"]
     assert len(page.all("input", type="checkbox")) == 4
     text = " ".join(page.words)
-    for words in ("bad.dxf", "too large", "wheel hoe", "Clamp the part.", "Local rules come first.", "no feeds known"):
+    assert page.all("ul", class_="sheet-list")
+    for words in (
+        "2 × leaf",
+        "rev. B 0123456789",
+        "bad.dxf",
+        "too large",
+        "wheel hoe",
+        "Clamp the part.",
+        "Local rules come first.",
+        "no feeds known",
+    ):
         assert words in text
 
 
