@@ -14,11 +14,11 @@ from flatprep.drawing.entities import Shape, UnusableEntityError, shape_of
 from flatprep.drawing.explode import Loose, explode
 from flatprep.drawing.limits import ReadLimits
 from flatprep.drawing.roles import Guess, role_of
-from flatprep.model.drawing import Curve, Fault, Role, Skipped, Text
+from flatprep.model.drawing import Curve, Fault, Role, Simplified, Skipped, Text
 
 Dxf = Any
 _TEXTS = {"TEXT", "MTEXT", "ATTRIB", "ATTDEF"}
-_NOT_CUT = {
+NOT_CUT = {
     "DIMENSION": "a dimension",
     "LEADER": "a leader",
     "MULTILEADER": "a leader",
@@ -39,6 +39,7 @@ _NOT_CUT = {
     "DWFUNDERLAY": "an underlay: not opened",
     "DGNUNDERLAY": "an underlay: not opened",
 }
+"""Kinds that draw no outline, and what they are."""
 
 
 @dataclass(slots=True)
@@ -52,6 +53,7 @@ class Collected:
     roles: dict[str, Guess] = field(default_factory=dict)
     heights: Counter[float] = field(default_factory=Counter)
     vertical: int = 0
+    simplified: list[Simplified] = field(default_factory=list)
 
 
 @dataclass(frozen=True, slots=True)
@@ -74,25 +76,31 @@ def collect(document: DxfDocument, options: CollectOptions) -> Collected:
     """
     out = Collected()
     off = {layer.dxf.name.lower() for layer in document.layers if layer.is_off() or layer.is_frozen()}
+    guesses: dict[tuple[str, str], Guess] = {}
     vertices = 0
     for loose in explode(document, options.limits):
         kind = loose.entity.dxftype()
         if kind in _TEXTS:
             _add_text(out, loose, options)
-        elif kind in _NOT_CUT:
-            out.skipped.append(_skip(loose, _NOT_CUT[kind]))
+        elif kind in NOT_CUT:
+            out.skipped.append(_skip(loose, NOT_CUT[kind]))
         else:
-            vertices += _add_curve(out, loose, options, off)
+            key = (loose.layer, loose.linetype)
+            if key not in guesses:
+                guesses[key] = role_of(*key, options.roles, off=loose.layer.lower() in off)
+            vertices += _add_curve(out, loose, options, guesses[key])
             if vertices > options.limits.vertices:
                 raise DrawingError(
                     f"more than {options.limits.vertices} vertices", "export splines and curves as arcs, or coarser"
                 )
+    _drop_unbounded(out, options)
+    _add_blocks(out, document, options.mm_per_unit)
     _add_paper_space(out, document)
     _tell_heights(out)
     return out
 
 
-def _add_curve(out: Collected, loose: Loose, options: CollectOptions, off: set[str]) -> int:
+def _add_curve(out: Collected, loose: Loose, options: CollectOptions, guess: Guess) -> int:
     try:
         shape = shape_of(loose.entity, options.curve_mm / options.mm_per_unit)
     except UnusableEntityError as err:
@@ -103,24 +111,42 @@ def _add_curve(out: Collected, loose: Loose, options: CollectOptions, off: set[s
         return 0
     k = options.mm_per_unit
     xyb = shape.xyb if k == 1.0 else shape.xyb * np.array([k, k, 1.0])
-    if float(np.abs(xyb[:, :2]).max()) > options.limits.coordinate_mm:
-        out.skipped.append(_skip(loose, f"it lies more than {options.limits.coordinate_mm / 1e6:g} km from the origin"))
-        return 0
-    guess = role_of(loose.layer, loose.linetype, options.roles, off=loose.layer.lower() in off)
     out.roles.setdefault(loose.layer, guess)
-    curve = Curve(xyb, shape.closed, loose.layer, loose.handle, loose.entity.dxftype(), loose.linetype, loose.color)
     if _stands_up(shape):
         out.vertical += 1
     else:
         out.heights[round(shape.z_low * k, 3)] += 1
+        kind = loose.entity.dxftype()
+        curve = Curve(xyb, shape.closed, loose.layer, loose.handle, kind, loose.linetype, loose.color)
         out.curves.append((curve, guess.role))
+    if curve.kind in ("SPLINE", "ELLIPSE"):
+        out.simplified.append(Simplified(curve.kind, (float(xyb[0, 0]), float(xyb[0, 1])), loose.handle))
     return len(xyb)
+
+
+def _drop_unbounded(out: Collected, options: CollectOptions) -> None:
+    """Leave out curves with a coordinate that is no number or beyond all bounds; checked for all curves at once."""
+    if not out.curves:
+        return
+    most = options.limits.coordinate_mm
+    sizes = np.array([len(c.xyb) for c, _ in out.curves])
+    rows = np.vstack([c.xyb for c, _ in out.curves])
+    with np.errstate(invalid="ignore"):
+        bad = ~((np.abs(rows[:, :2]) <= most).all(axis=1) & np.isfinite(rows[:, 2]))
+    if not bad.any():
+        return
+    faulty = set(np.repeat(np.arange(len(sizes)), sizes)[bad].tolist())
+    for index in sorted(faulty):
+        curve = out.curves[index][0]
+        reason = f"unusable: a coordinate is no number, or more than {most / 1e6:g} km from the origin"
+        out.skipped.append(Skipped(curve.kind, curve.layer, curve.handle, reason))
+    out.curves[:] = [pair for index, pair in enumerate(out.curves) if index not in faulty]
 
 
 def _stands_up(shape: Shape) -> bool:
     """Tell whether a curve runs along z: an upright edge of a body drawn as wires."""
-    spread = float(np.ptp(shape.xyb[:, :2], axis=0).max())
-    return shape.z_high - shape.z_low > 1e-6 and spread < 0.01 * (shape.z_high - shape.z_low)
+    rise = shape.z_high - shape.z_low
+    return rise > 1e-6 and float(np.ptp(shape.xyb[:, :2], axis=0).max()) < 0.01 * rise
 
 
 def _tell_heights(out: Collected) -> None:
@@ -144,12 +170,21 @@ def _add_text(out: Collected, loose: Loose, options: CollectOptions) -> None:
         if e.dxftype() != "MTEXT" and e.dxf.hasattr("extrusion"):
             insert = e.ocs().to_wcs(insert)
         height = float(e.dxf.get("char_height" if e.dxftype() == "MTEXT" else "height", 0.0))
+        turn_deg = float(e.dxf.get("rotation", 0.0)) % 360.0
     except Exception:  # a damaged text must not cost the outlines
         out.skipped.append(_skip(loose, "an unreadable text"))
         return
     x, y = insert.x * options.mm_per_unit, insert.y * options.mm_per_unit
     if isfinite(x) and isfinite(y) and words.strip():
-        out.texts.append(Text(words.strip()[:500], (x, y), loose.layer, loose.handle, height * options.mm_per_unit))
+        size = height * options.mm_per_unit
+        out.texts.append(Text(words.strip()[:500], (x, y), loose.layer, loose.handle, size, turn_deg=turn_deg))
+
+
+def _add_blocks(out: Collected, document: DxfDocument, mm_per_unit: float) -> None:
+    for insert in document.modelspace().query("INSERT"):
+        at = insert.dxf.get("insert", (0.0, 0.0, 0.0))
+        place = (float(at[0]) * mm_per_unit, float(at[1]) * mm_per_unit)
+        out.simplified.append(Simplified("INSERT", place, insert.dxf.handle or "", insert.dxf.get("name", "")))
 
 
 def _add_paper_space(out: Collected, document: DxfDocument) -> None:

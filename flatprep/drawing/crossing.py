@@ -9,10 +9,9 @@ import shapely
 from shapely import STRtree
 
 from flatprep.drawing.chain import Chain
-from flatprep.geom.bulge import points_along
+from flatprep.drawing.tree import Polygons
 from flatprep.model.drawing import Fault
 
-_CHORD_MM = 0.01
 _TOUCH_AREA_MM2 = 1e-3
 _TOUCH_MM = 0.005
 _EDGE_MM = 0.5
@@ -43,10 +42,8 @@ class Crossings:
         return frozenset(i for cluster in self.clusters for i in cluster)
 
 
-def crossings(rings: Sequence[Chain]) -> Crossings:
-    """Find crossings among closed contours."""
-    lines = [points_along(r.xyb, closed=True, chord_mm=_CHORD_MM) for r in rings]
-    shapes = np.array([shapely.Polygon(p) if len(p) > 2 else shapely.Polygon() for p in lines], dtype=object)
+def crossings(rings: Sequence[Chain], shapes: Polygons) -> Crossings:
+    """Find crossings among closed contours; `shapes` are their polygons."""
     if len(shapes) == 0:
         return Crossings(frozenset(), (), ())
     faults: list[Fault] = []

@@ -8,26 +8,32 @@ from shapely import STRtree
 
 from flatprep.drawing.chain import Chain
 from flatprep.drawing.tidy import told_doubles
+from flatprep.drawing.tree import CHORD_MM, Polygons
 from flatprep.geom.bulge import Floats, points_along
 from flatprep.model.drawing import Fault
 
-_CHORD_MM = 0.002
+_FINE_MM = 0.002
 
 
-def without_double_rings(rings: Sequence[Chain], same_mm: float) -> tuple[list[Chain], list[Fault]]:
-    """Drop contours that lie on an earlier one all along, within `same_mm`."""
+def without_double_rings(rings: Sequence[Chain], shapes: Polygons, same_mm: float) -> tuple[list[int], list[Fault]]:
+    """Tell which contours (indices) do not lie on an earlier one all along, within `same_mm`.
+
+    `shapes` are their polygons, chords within `CHORD_MM`.
+    """
     if len(rings) < 2:
-        return list(rings), []
-    xy = [points_along(r.xyb, closed=True, chord_mm=_CHORD_MM) for r in rings]
-    boxes = np.array([[*p.min(axis=0), *p.max(axis=0)] for p in xy])
-    near = _near_rows(boxes, 2 * same_mm)
+        return list(range(len(rings))), []
+    near = _near_rows(shapely.bounds(shapes), 2 * same_mm + 2 * CHORD_MM)
     dropped: set[int] = set()
     for i, j in near:
         first, second = min(i, j), max(i, j)
-        if first not in dropped and second not in dropped and _coincide(xy[first], xy[second], same_mm):
+        if (
+            first not in dropped
+            and second not in dropped
+            and _coincide(_fine(rings[first]), _fine(rings[second]), same_mm)
+        ):
             dropped.add(second)
     places = [(_place(rings[k]), rings[k].handles[0] if rings[k].handles else "") for k in sorted(dropped)]
-    return [r for k, r in enumerate(rings) if k not in dropped], told_doubles(places)
+    return [k for k in range(len(rings)) if k not in dropped], told_doubles(places)
 
 
 def without_overlapped(
@@ -36,11 +42,11 @@ def without_overlapped(
     """Drop loose chains that run along an edge of a contour all the way."""
     if not loose or not rings:
         return list(loose), []
-    edges = [_closed_line(points_along(r.xyb, closed=True, chord_mm=_CHORD_MM)) for r in rings]
+    edges = [_closed_line(points_along(r.xyb, closed=True, chord_mm=_FINE_MM)) for r in rings]
     tree = STRtree(edges)
     kept, places = [], []
     for c in loose:
-        xy = points_along(c.xyb, closed=False, chord_mm=_CHORD_MM)
+        xy = points_along(c.xyb, closed=False, chord_mm=_FINE_MM)
         line = shapely.linestrings(xy)
         near = tree.query(line, predicate="dwithin", distance=same_mm)
         if any(_lies_along(xy, edges[k], same_mm) for k in near):
@@ -48,6 +54,10 @@ def without_overlapped(
         else:
             kept.append(c)
     return kept, told_doubles(places)
+
+
+def _fine(c: Chain) -> Floats:
+    return points_along(c.xyb, closed=True, chord_mm=_FINE_MM)
 
 
 def _near_rows(boxes: Floats, reach: float) -> list[tuple[int, int]]:

@@ -43,7 +43,8 @@ def shape_of(entity: DXFEntity, tol: float) -> Shape | None:
     Raises
     ------
     UnusableEntityError
-        When its numbers make no curve.
+        When its numbers make no curve. Coordinates that are no numbers are left to the caller, who checks them
+        for all curves at once.
     """
     make = _MAKERS.get(entity.dxftype())
     if make is None:
@@ -52,8 +53,8 @@ def shape_of(entity: DXFEntity, tol: float) -> Shape | None:
         shape = make(entity, tol)
     except (ValueError, ZeroDivisionError, OverflowError, IndexError, TypeError, AttributeError) as err:
         raise UnusableEntityError(str(err) or type(err).__name__) from err
-    if not np.isfinite(shape.xyb).all() or not isfinite(shape.z_low) or not isfinite(shape.z_high):
-        raise UnusableEntityError("a coordinate is not a finite number")
+    if not isfinite(shape.z_low) or not isfinite(shape.z_high):
+        raise UnusableEntityError("a height is not a finite number")
     return shape
 
 
@@ -79,7 +80,7 @@ def _flat(extrusion: Dxf) -> float:
 def _circle(e: Dxf, _tol: float) -> Shape:
     flip = _flat(e.dxf.extrusion)
     c, r = e.dxf.center, e.dxf.radius
-    if r <= 0:
+    if not r > 0:
         raise UnusableEntityError(f"its radius is {r:g}")
     x = flip * c.x
     # it starts at OCS angle 0 and runs anticlockwise whichever way the plane looks: a full circle has no direction
@@ -89,7 +90,7 @@ def _circle(e: Dxf, _tol: float) -> Shape:
 def _arc(e: Dxf, _tol: float) -> Shape:
     flip = _flat(e.dxf.extrusion)
     c, r = e.dxf.center, e.dxf.radius
-    if r <= 0:
+    if not r > 0:
         raise UnusableEntityError(f"its radius is {r:g}")
     start, end = radians(e.dxf.start_angle), radians(e.dxf.end_angle)
     sweep = (end - start) % (2 * pi)

@@ -11,6 +11,7 @@ from flatprep.drawing.crossing import Crossings, crossings
 from flatprep.drawing.doubles import without_double_rings, without_overlapped
 from flatprep.drawing.planar import even_odd, regions_of_net, regions_of_rings
 from flatprep.drawing.tidy import tidy
+from flatprep.drawing.tree import CHORD_MM, Polygons, polygons_of
 from flatprep.geom.bulge import length
 from flatprep.model.drawing import Curve, Fault
 
@@ -20,24 +21,30 @@ NOTED_GAP_MM = 0.1
 """A gap up to this is closed with a note (common practice); `join_gap` and less in silence."""
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True, slots=True, eq=False)
 class Outlines:
     """Closed contours and what is left.
 
     Attributes
     ----------
     rings : tuple of Chain
+    shapes : ndarray of Polygon
+        One a ring, chords within `CHORD_MM`.
     inner : tuple of Curve
         Shared edges that lie inside an outline.
     loose : tuple of Curve
         Cut lines that close nothing.
+    crossing : tuple of Chain
+        Contours that cross themselves, as drawn; `rings` hold what they enclose.
     faults : tuple of Fault
     """
 
     rings: tuple[Chain, ...]
+    shapes: Polygons
     inner: tuple[Curve, ...]
     loose: tuple[Curve, ...]
     faults: tuple[Fault, ...]
+    crossing: tuple[Chain, ...] = ()
 
 
 def outlines(curves: Sequence[Curve], tol: Tolerances) -> Outlines:
@@ -58,24 +65,28 @@ def outlines(curves: Sequence[Curve], tol: Tolerances) -> Outlines:
     bridged, loose = bridge(loose, BRIDGE_MM)
     rings += bridged
     faults += [_gap(at, gap, ring) for ring in bridged for at, gap in ring.gaps]
-    rings, doubles = without_double_rings(rings, tol.same_mm)
-    faults += doubles
-    rings, crossed = _sound(rings)
-    faults += crossed
+    shapes = polygons_of([r.xyb for r in rings], CHORD_MM)
+    single_rings, doubles = without_double_rings(rings, shapes, tol.same_mm)
+    rings, shapes = [rings[k] for k in single_rings], shapes[single_rings]
+    crossed = crossings(rings, shapes)
+    crossing = tuple(rings[i] for i in sorted(crossed.selfish))
+    rings, shapes = _sound(rings, shapes, crossed)
+    faults += [*doubles, *crossed.faults]
     faults += [_open(c) for c in loose]
     left = tuple(Curve(c.xyb, closed=False, layer=c.layers[0], handle=c.handles[0]) for c in loose)
-    return Outlines(tuple(rings), tuple(inner), left, tuple(faults))
+    return Outlines(tuple(rings), shapes, tuple(inner), left, tuple(faults), crossing)
 
 
-def _sound(rings: Sequence[Chain]) -> tuple[list[Chain], list[Fault]]:
-    """Contours that neither cross themselves nor share edges; what did is told."""
-    found: Crossings = crossings(rings)
+def _sound(rings: Sequence[Chain], shapes: Polygons, found: Crossings) -> tuple[list[Chain], Polygons]:
+    """Contours that neither cross themselves nor share edges."""
+    if not found.selfish and not found.clusters:
+        return list(rings), shapes
     out = [r for i, r in enumerate(rings) if i not in found.selfish and i not in found.touching]
     for i in sorted(found.selfish):
         out += even_odd(rings[i])
     for cluster in found.clusters:
         out += regions_of_rings([rings[i] for i in cluster])
-    return out, list(found.faults)
+    return out, polygons_of([r.xyb for r in out], CHORD_MM)
 
 
 def _gap(at: tuple[float, float], gap: float, ring: Chain) -> Fault:
@@ -104,7 +115,7 @@ def _told_joins(chained: Chained) -> list[Fault]:
     at, gap = max(chained.joined, key=lambda place: place[1])
     count = len(chained.joined)
     what = "a small gap, closed" if count == 1 else f"{count} small gaps, closed; the widest one"
-    return [Fault("open-contour", at, gap, (), what)]
+    return [Fault("open-contour", at, gap, (), what, tuple(place for place, _ in chained.joined))]
 
 
 def _told_inner(inner: Sequence[Curve]) -> list[Fault]:

@@ -4,6 +4,8 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
 
+import numpy as np
+
 from flatprep.base.errors import DrawingError
 from flatprep.base.tolerances import DEFAULT, Tolerances
 from flatprep.base.units import MM_PER_UNIT
@@ -13,7 +15,7 @@ from flatprep.drawing.frame import frame_index
 from flatprep.drawing.limits import LIMITS, ReadLimits
 from flatprep.drawing.load import UNIT_OF_CODE, Loaded, load
 from flatprep.drawing.outline import Outlines, outlines
-from flatprep.drawing.tree import nesting, parts_of, polygons_of
+from flatprep.drawing.tree import nesting, parts_of
 from flatprep.model.drawing import Contour, Curve, Drawing, Fault, Role, UnitsFrom
 
 
@@ -74,8 +76,13 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         faults.append(Fault("unsupported-entity", detail="version-control conflict markers: the first side was read"))
     cut, roles = _cut_curves(found)
     shapes = outlines(cut, options.tol)
-    contours, sheet_faults = _without_frame([c.contour for c in shapes.rings], options.tol)
-    nest = nesting(polygons_of(contours, options.tol.chord_mm))
+    contours = [c.contour for c in shapes.rings]
+    nest = nesting(shapes.shapes)
+    frame = frame_index(contours, nest)
+    sheet_faults = []
+    if frame is not None:
+        sheet_faults = [_told_frame(contours.pop(frame))]
+        nest = nesting(np.delete(shapes.shapes, frame))
     parts = parts_of(contours, nest, name or path.stem)
     given = assign(parts, _others(found, shapes))
     return Drawing(
@@ -89,6 +96,8 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         roles=roles,
         recovered=loaded.recovered,
         loose=shapes.loose,
+        crossing=tuple(c.contour for c in shapes.crossing),
+        simplified=tuple(found.simplified),
     )
 
 
@@ -121,14 +130,10 @@ def _cut_curves(found: Collected) -> tuple[list[Curve], tuple[tuple[str, Role, s
     return cut, tuple((n, g.role, g.why) for n, g in sorted(found.roles.items()))
 
 
-def _without_frame(contours: list[Contour], tol: Tolerances) -> tuple[list[Contour], list[Fault]]:
-    frame = frame_index(contours, nesting(polygons_of(contours, tol.chord_mm)))
-    if frame is None:
-        return contours, []
-    x0, y0, x1, y1 = contours[frame].bounds
+def _told_frame(frame: Contour) -> Fault:
+    x0, y0, x1, y1 = frame.bounds
     detail = f"the rectangle {x1 - x0:g} x {y1 - y0:g} mm around everything is taken as the sheet's border, not cut"
-    told = Fault("layer-role", (x0, y0), None, contours[frame].distinct_handles, detail)
-    return contours[:frame] + contours[frame + 1 :], [told]
+    return Fault("layer-role", (x0, y0), None, frame.distinct_handles, detail)
 
 
 def _guesses(found: Collected) -> list[Fault]:

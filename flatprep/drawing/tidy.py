@@ -34,7 +34,8 @@ def told_doubles(doubles: Sequence[tuple[tuple[float, float], str]]) -> list[Fau
     if len(doubles) > _MANY:
         at, _ = doubles[0]
         handles = tuple(h for _, h in doubles[:_MANY])
-        return [Fault("duplicate-line", at, None, handles, f"{len(doubles)} lines are drawn twice, the first one here")]
+        what = f"{len(doubles)} lines are drawn twice, the first one here"
+        return [Fault("duplicate-line", at, None, handles, what, tuple(place for place, _ in doubles))]
     return [Fault("duplicate-line", at, None, (handle,), "a line is drawn twice") for at, handle in doubles]
 
 
@@ -49,7 +50,8 @@ def _without_zero_lengths(curves: Sequence[Curve]) -> tuple[list[Curve], list[Fa
     first = empty[0]
     what = "an entity without length" if len(empty) == 1 else f"{len(empty)} entities without length, the first one"
     at = (float(first.xyb[0, 0]), float(first.xyb[0, 1]))
-    return kept, [Fault("tiny-segment", at, 0.0, tuple(c.handle for c in empty[:_MANY]), what)]
+    places = tuple((float(c.xyb[0, 0]), float(c.xyb[0, 1])) for c in empty)
+    return kept, [Fault("tiny-segment", at, 0.0, tuple(c.handle for c in empty[:_MANY]), what, places)]
 
 
 def _without_doubles(curves: Sequence[Curve], tol: float) -> tuple[list[Curve], list[Curve]]:

@@ -9,15 +9,18 @@ import shapely
 from shapely import STRtree
 
 from flatprep.geom import bulge
+from flatprep.geom.bulge import Floats
 from flatprep.geom.polygons import ring
 from flatprep.model.drawing import Contour, Part
 
 Polygons = npt.NDArray[np.object_]
+CHORD_MM = 0.01
+"""How near the chords of these polygons come to the arcs: enough to tell what lies in what."""
 
 
-def polygons_of(contours: Sequence[Contour], chord_mm: float) -> Polygons:
-    """Return one polygon a contour, without holes, shape (n,)."""
-    rings = [ring(c.xyb, chord_mm) for c in contours]
+def polygons_of(closed: Sequence[Floats], chord_mm: float) -> Polygons:
+    """Return one polygon a closed polyline, without holes, shape (n,)."""
+    rings = [ring(xyb, chord_mm) for xyb in closed]
     if not rings:
         return np.array([], dtype=object)
     padded = [r if len(r) >= 3 else np.vstack([r, r[:1]]) for r in rings]

@@ -7,7 +7,7 @@ Arcs are kept to a half circle at the most (`split_arcs`).
 """
 
 from dataclasses import dataclass
-from math import cos, sin
+from math import cos, hypot, pi, sin
 
 import numpy as np
 import numpy.typing as npt
@@ -117,6 +117,8 @@ def signed_area(xyb: Floats) -> float:
     Green's theorem on the chords (taken from the first vertex, so that a far origin costs no digits) plus the
     circular segment ``r² / 2 · (θ - sin θ)`` of each arc; no chord error.
     """
+    if len(xyb) == 2 and abs(xyb[0, 2]) == 1.0 and xyb[0, 2] == xyb[1, 2]:
+        return float(xyb[0, 2]) * pi * float(np.sum((xyb[1, :2] - xyb[0, :2]) ** 2)) / 4.0
     xy = xyb[:, :2] - xyb[0, :2]
     x, y = xy[:, 0], xy[:, 1]
     chords = np.sum(x * np.roll(y, -1) - np.roll(x, -1) * y) / 2.0
@@ -239,6 +241,8 @@ def _nodes_along(xyb: Floats) -> tuple[Floats, Floats, Floats]:
 
 def bounds(xyb: Floats, *, closed: bool) -> tuple[float, float, float, float]:
     """Least box (x0, y0, x1, y1) of the true curve, mm: arcs reach their quadrant points."""
+    if closed and len(xyb) == 2 and abs(xyb[0, 2]) == abs(xyb[1, 2]) == 1.0:
+        return _circle_bounds(xyb)
     lo, hi = xyb[:, :2].min(axis=0), xyb[:, :2].max(axis=0)
     if xyb[:, 2].any():
         seg = segments(xyb, closed=closed)
@@ -250,6 +254,12 @@ def bounds(xyb: Floats, *, closed: bool) -> tuple[float, float, float, float]:
                 p = seg.centre[k][hit] + seg.radius[k][hit, None] * np.array([ux, uy], dtype=np.float64)
                 lo, hi = np.minimum(lo, p.min(axis=0)), np.maximum(hi, p.max(axis=0))
     return float(lo[0]), float(lo[1]), float(hi[0]), float(hi[1])
+
+
+def _circle_bounds(xyb: Floats) -> tuple[float, float, float, float]:
+    (x0, y0, _), (x1, y1, _) = xyb.tolist()
+    x, y, r = (x0 + x1) / 2.0, (y0 + y1) / 2.0, hypot(x1 - x0, y1 - y0) / 2.0
+    return x - r, y - r, x + r, y + r
 
 
 def reverse(xyb: Floats, *, closed: bool) -> Floats:

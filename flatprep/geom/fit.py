@@ -51,8 +51,11 @@ def fit_arcs(curve: Smooth, tol_mm: float) -> Floats:
 def _biarcs(curve: Smooth, lo: Floats, hi: Floats) -> tuple[Floats, Floats, Floats]:
     """Start and joint (n, 4), the two bulges (n, 2), and the largest distance (n,) of each piece's biarc."""
     inward = (hi - lo) * 1e-9  # tangents are taken just inside: at a kink each side has its own
-    p0, p1 = curve.evaluate(lo)[0], curve.evaluate(hi)[0]
-    t0, t1 = _unit(curve.evaluate(lo + inward)[1]), _unit(curve.evaluate(hi - inward)[1])
+    n = len(lo)
+    inner = (lo[:, None] + (hi - lo)[:, None] * _INNER[None, :]).ravel()
+    xy, slope = curve.evaluate(np.concatenate([lo, hi, lo + inward, hi - inward, inner]))
+    p0, p1, sample = xy[:n], xy[n : 2 * n], xy[4 * n :].reshape(n, len(_INNER), 2)
+    t0, t1 = _unit(slope[2 * n : 3 * n]), _unit(slope[3 * n : 4 * n])
     chord = p1 - p0
     v = np.sum(chord * chord, axis=1)
     along = np.sum(chord * (t0 + t1), axis=1)
@@ -66,8 +69,6 @@ def _biarcs(curve: Smooth, lo: Floats, hi: Floats) -> tuple[Floats, Floats, Floa
     joint = (p0 + p1) / 2.0 + (t0 - t1) * (d / 2.0)[:, None]
     b0 = np.tan(_angle(t0, joint - p0) / 2.0)
     b1 = np.tan(_angle(p1 - joint, t1) / 2.0)
-    ts = lo[:, None] + (hi - lo)[:, None] * _INNER[None, :]
-    sample = curve.evaluate(ts.ravel())[0].reshape(len(lo), len(_INNER), 2)
     off = np.minimum(_off(sample, p0, joint, b0), _off(sample, joint, p1, b1))
     wide = (np.abs(b0) > 1.0) | (np.abs(b1) > 1.0) | ~np.isfinite(b0) | ~np.isfinite(b1)
     return np.hstack([p0, joint]), np.column_stack([b0, b1]), np.where(wide, np.inf, off.max(axis=1))

@@ -124,7 +124,8 @@ def test_measures_agree_with_fine_chords(parts):
     points = bulge.points_along(shape, closed=True, chord_mm=1e-4)
     poly = Polygon(points)
     m = bulge.moments(shape)
-    assert m.area == pytest.approx(poly.area, rel=1e-5)
+    # chords lie within 1e-4 mm of the arcs, all along
+    assert m.area == pytest.approx(poly.area, abs=1e-4 * poly.length)
     assert m.area == pytest.approx(abs(bulge.signed_area(shape)), rel=1e-9)
     assert m.centroid == pytest.approx((poly.centroid.x, poly.centroid.y), abs=1e-3)
     assert bulge.length(shape, closed=True) == pytest.approx(poly.length, rel=1e-5)
