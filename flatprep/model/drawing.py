@@ -189,6 +189,18 @@ class Fault:
     measured_mm: float | None = None
     handles: tuple[str, ...] = ()
     detail: str = ""
+    places: tuple[tuple[float, float], ...] = ()
+    """Every place, mm, where the fault stands for several."""
+
+
+@dataclass(frozen=True, slots=True)
+class Simplified:
+    """An insertion of a block, a spline or an ellipse, which is taken as lines and arcs; `name` is the block's."""
+
+    kind: str
+    at: tuple[float, float]
+    handle: str = ""
+    name: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -202,6 +214,7 @@ class Text:
     height_mm: float = 0.0
     points_to: tuple[tuple[float, float], ...] = ()
     """Where leaders that belong to the text point, mm."""
+    turn_deg: float = 0.0
 
 
 @dataclass(frozen=True, eq=False)
@@ -220,3 +233,6 @@ class Drawing:
     recovered: bool = False
     loose: tuple[Curve, ...] = field(default=())
     """Cut lines that close no contour."""
+    crossing: tuple[Contour, ...] = ()
+    """Contours that cross themselves, as they were drawn; the parts hold what they enclose by the even-odd rule."""
+    simplified: tuple[Simplified, ...] = ()
