@@ -31,7 +31,7 @@ def outside_points(xyb: Floats, chord_mm: float) -> Floats:
     convex = seg.sweep > 0.0
     outer = 2.0 * np.arccos(radius / (radius + chord_mm))
     inner = 2.0 * np.arccos(np.clip(1.0 - chord_mm / radius, -1.0, 1.0))
-    step = np.clip(np.where(convex, outer, inner), 1e-3, np.pi / 2)
+    step = np.clip(np.where(convex, outer, inner), 1e-4, np.pi / 2)
     pieces = np.where(seg.is_arc, np.maximum(np.ceil(np.abs(seg.sweep) / step - 1e-9), 1), 1).astype(np.int64)
     counts = pieces + convex
     which = np.repeat(np.arange(len(seg)), counts)

@@ -2,7 +2,7 @@
 
 Nothing here is shared with the search: every part is taken as drawn, its arcs circumscribed by polygons that hold
 it wholly, so a distance measured is never more than the true one. Where that is not enough to tell, the polygons of
-the pair are made finer, down to `FINEST_MM`.
+the pair are made finer, down to the last of `CHORDS_MM`.
 """
 
 from collections import Counter, defaultdict
@@ -26,7 +26,7 @@ from flatprep.nest.problem import Item, NestAsk, StockSheet
 
 SLACK_MM = 1e-6
 """What a gap may fall short, and an overlap be deep, for rounding."""
-CHORDS_MM = (0.01, 1e-4, 1e-7)
+CHORDS_MM = (0.01, 1e-4, 2e-7)
 """Chord errors tried one after the other."""
 SAME_SHARE = 1e-9
 
