@@ -119,8 +119,8 @@ def _add_curve(out: Collected, loose: Loose, options: CollectOptions, guess: Gue
         kind = loose.entity.dxftype()
         curve = Curve(xyb, shape.closed, loose.layer, loose.handle, kind, loose.linetype, loose.color)
         out.curves.append((curve, guess.role))
-    if curve.kind in ("SPLINE", "ELLIPSE"):
-        out.simplified.append(Simplified(curve.kind, (float(xyb[0, 0]), float(xyb[0, 1])), loose.handle))
+        if kind in ("SPLINE", "ELLIPSE"):
+            out.simplified.append(Simplified(kind, (float(xyb[0, 0]), float(xyb[0, 1])), loose.handle))
     return len(xyb)
 
 
