@@ -1,0 +1,43 @@
+"""The what-if table as the JSON document ``flatprep-alternatives/1`` and as CSV."""
+
+import csv
+import io
+from collections.abc import Sequence
+from dataclasses import asdict, fields
+from decimal import Decimal
+
+from flatprep.model.alternative import Alternative, PartAlternatives
+from flatprep.report.estimate_csv import safe
+
+SCHEMA = "flatprep-alternatives/1"
+
+
+def alternatives_document(tables: Sequence[PartAlternatives], *, currency: str | None = None) -> dict[str, object]:
+    """Return the document: one entry a part, figures unrounded, None where something is not known."""
+    return {"schema": SCHEMA, "currency": currency, "parts": [_plain(asdict(table)) for table in tables]}
+
+
+def _plain(value: object) -> object:
+    if isinstance(value, Decimal):
+        return float(value)
+    if isinstance(value, dict):
+        return {key: _plain(item) for key, item in value.items()}
+    if isinstance(value, list | tuple):
+        return [_plain(item) for item in value]
+    return value
+
+
+def alternatives_csv(tables: Sequence[PartAlternatives]) -> str:
+    """Return one line an option, under a head."""
+    names = [field.name for field in fields(Alternative)]
+    out = io.StringIO()
+    writer = csv.writer(out, lineterminator="\n")
+    writer.writerow(["part", *names])
+    for table in tables:
+        writer.writerows([safe(table.part), *_cells(option, names)] for option in table.options)
+    return out.getvalue()
+
+
+def _cells(option: Alternative, names: Sequence[str]) -> list[object]:
+    values = [getattr(option, name) for name in names]
+    return ["; ".join(value) if isinstance(value, tuple) else value for value in values]
