@@ -91,9 +91,8 @@ def _sound(rings: Sequence[Chain], shapes: Polygons, found: Crossings) -> tuple[
 
 def _gap(at: tuple[float, float], gap: float, ring: Chain) -> Fault:
     handles = tuple(dict.fromkeys(h for h in ring.handles if h))
-    if gap <= NOTED_GAP_MM:
-        return Fault("open-contour", at, gap, handles, "a small gap, closed")
-    return Fault("open-contour", at, gap, handles, "the outline does not close")
+    what = "a small gap, closed" if gap <= NOTED_GAP_MM else "the outline does not close"
+    return Fault("open-contour", at, gap, handles, what, closed=True)
 
 
 def _open(c: Chain) -> Fault:
@@ -115,7 +114,7 @@ def _told_joins(chained: Chained) -> list[Fault]:
     at, gap = max(chained.joined, key=lambda place: place[1])
     count = len(chained.joined)
     what = "a small gap, closed" if count == 1 else f"{count} small gaps, closed; the widest one"
-    return [Fault("open-contour", at, gap, (), what, tuple(place for place, _ in chained.joined))]
+    return [Fault("open-contour", at, gap, (), what, tuple(at for at, _ in chained.joined), closed=True)]
 
 
 def _told_inner(inner: Sequence[Curve]) -> list[Fault]:

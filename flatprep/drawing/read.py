@@ -15,6 +15,7 @@ from flatprep.drawing.frame import frame_index
 from flatprep.drawing.limits import LIMITS, ReadLimits
 from flatprep.drawing.load import UNIT_OF_CODE, Loaded, load
 from flatprep.drawing.outline import Outlines, outlines
+from flatprep.drawing.plausible import doubtful_units
 from flatprep.drawing.tree import nesting, parts_of
 from flatprep.model.drawing import Contour, Curve, Drawing, Fault, Role, UnitsFrom
 
@@ -85,6 +86,8 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         nest = nesting(np.delete(shapes.shapes, frame))
     parts = parts_of(contours, nest, name or path.stem)
     given = assign(parts, _others(found, shapes))
+    if origin is not UnitsFrom.OPTION:
+        faults += doubtful_units(parts, units)
     return Drawing(
         file=str(path),
         units=units,

@@ -72,6 +72,8 @@ def role_of(layer: str, linetype: str, said: Mapping[str, Role], *, off: bool) -
     for name, role in said.items():
         if name.lower() == layer.lower():
             return Guess(role, "as said")
+    if off and _ROLE_OF_WORD.get(layer.lower()) is Role.CUT:
+        return Guess(Role.CUT, f"its name is “{layer}”, though it is switched off or frozen")
     if off:
         return Guess(Role.IGNORE, "its layer is switched off or frozen")
     by_name = _by_name(layer)

@@ -16,10 +16,10 @@ from ezdxf.version import __version__ as ezdxf_version
 
 from flatprep.geom.bulge import Floats, Similarity
 from flatprep.geom.polygons import inner_point
-from flatprep.model.drawing import Contour, Curve, Part
+from flatprep.model.drawing import Contour, Curve, Part, Text
 from flatprep.model.layout import SheetLayout
 
-CUT, MARK, SHEET, NOTE = "CUT", "MARK", "SHEET", "NOTE"
+CUT, MARK, BEND, SHEET, NOTE = "CUT", "MARK", "BEND", "SHEET", "NOTE"
 GREY = 8
 """AutoCAD colour index of a neutral grey."""
 STYLES: Mapping[str, tuple[float, ...]] = {
@@ -28,7 +28,7 @@ STYLES: Mapping[str, tuple[float, ...]] = {
     "FP_DOT": (3.0, 0.5, -2.5),
 }
 """Line styles as DXF patterns: total length, then dashes and gaps, mm."""
-STYLE_OF = {CUT: "CONTINUOUS", MARK: "FP_DASH", SHEET: "FP_DASHDOT", NOTE: "FP_DOT"}
+STYLE_OF = {CUT: "CONTINUOUS", MARK: "FP_DASH", BEND: "FP_DASHDOT", SHEET: "FP_DASHDOT", NOTE: "FP_DOT"}
 MM_CODE = 4
 """$INSUNITS of millimetres."""
 LEAST_TEXT_MM, MOST_TEXT_MM, TEXT_SHARE = 1.5, 10.0, 0.12
@@ -71,6 +71,40 @@ def part_drawing(parts: Part | Sequence[Part], *, notes: Sequence[str] = ()) -> 
         height = min(MOST_TEXT_MM, max(LEAST_TEXT_MM, TEXT_SHARE * min(min(p.size_mm) for p in every)))
         for n, line in enumerate(notes, start=1):
             _text(doc, line, (left, low - 2.0 * n * height), height)
+    return _written(doc)
+
+
+def clean_drawing(
+    cut: Sequence[Contour],
+    loose: Sequence[Curve],
+    marks: Sequence[Curve],
+    bends: Sequence[Curve],
+    texts: Sequence[Text],
+) -> str:
+    """DXF text of an untidy drawing made clean, mm, everything at its own coordinates.
+
+    Parameters
+    ----------
+    cut, loose
+        Closed contours and open lines for layer CUT.
+    marks, bends
+        Lines for layers MARK and BEND.
+    texts
+        Each on the layer it names.
+    """
+    doc = _document(tuple(dict.fromkeys((CUT, MARK, BEND, NOTE, *(t.layer for t in texts)))))
+    for contour in cut:
+        _contour(doc, contour, Similarity())
+    for layer, curves in ((CUT, loose), (MARK, marks), (BEND, bends)):
+        for curve in curves:
+            _curve(doc, layer, curve, Similarity())
+    for text in texts:
+        at = {"layer": text.layer, "insert": text.at, "rotation": text.turn_deg}
+        if "\n" in text.text:
+            words = text.text.replace("\n", "\\P")
+            doc.modelspace().add_mtext(words, dxfattribs={**at, "char_height": text.height_mm})
+        else:
+            doc.modelspace().add_text(text.text, height=text.height_mm, dxfattribs=at)
     return _written(doc)
 
 

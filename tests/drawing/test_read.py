@@ -536,3 +536,39 @@ def test_conflict_markers_are_read_past(tmp_path):
     drawing = read(path)
     assert drawing.parts[0].area_mm2 == pytest.approx(PLATE)
     assert "conflict" in drawing.faults[0].detail
+
+
+@pytest.mark.parametrize(
+    ("unit", "size", "hole", "likely"),
+    [
+        pytest.param(1, 370, 3.4, "mm", id="inch header, mm values"),
+        pytest.param(6, 150, 3.0, "mm", id="metre header, mm values"),
+        pytest.param(1, 90, 5.0, "mm", id="inch header, only the holes give it away"),
+        pytest.param(4, 2.5, 0.2, "in", id="mm header, inch values"),
+        pytest.param(4, 370, 3.4, None, id="sound"),
+        pytest.param(1, 12, 0.25, None, id="sound inches"),
+    ],
+)
+def test_unit_held_against_sizes(tmp_path, unit, size, hole, likely):
+    def paint(msp):
+        box(msp, 0, 0, size, size / 2)
+        for k in (1, 2, 3):
+            msp.add_circle((k * size / 4, size / 4), hole / 2)
+
+    drawing = read(drawn(tmp_path, paint, unit=unit))
+    told = [f.detail for f in drawing.faults if f.kind == "doubtful-units"]
+    assert len(told) == (likely is not None)
+    assert all(f"drawn in {likely}" in words for words in told)
+    said = read(drawn(tmp_path, paint, unit=unit), ReadOptions(units="in"))
+    assert said.faults == ()
+
+
+def test_frozen_layer_that_is_called_outline_is_cut(tmp_path):
+    doc = new()
+    for name in ("outline", "outline-old"):
+        doc.layers.add(name).freeze()
+    box(doc.modelspace(), 0, 0, 80, 50, layer="outline")
+    box(doc.modelspace(), 0, 0, 90, 60, layer="outline-old")
+    doc.modelspace().add_circle((40, 25), 10)
+    (part,) = read(save(doc, tmp_path)).parts
+    assert part.area_mm2 == pytest.approx(PLATE)
