@@ -10,6 +10,9 @@ import shapely
 
 from flatprep.geom.bulge import Floats, segments
 
+NO_RISE_MM = 1e-7
+"""An arc that rises no higher over its chord is a line."""
+
 Ints = npt.NDArray[np.intp]
 Bools = npt.NDArray[np.bool_]
 
@@ -112,6 +115,20 @@ class Boundary:
             out[k] = np.where(inside, rim, ends)
         return out
 
+    @cached_property
+    def first(self) -> Ints:
+        """First row of each contour, shape (contours,)."""
+        return np.searchsorted(self.contour, np.arange(len(self.total)))
+
+    def locate(self, contour: Ints, place: Floats) -> Floats:
+        """Points at a distance along contours (mm, any number of rounds), shape (m, 2)."""
+        before = np.cumsum(self.total) - self.total
+        whole = np.mod(place, self.total[contour]) + before[contour]
+        row = np.searchsorted(self.run + before[self.contour], whole, side="right") - 1
+        row = np.maximum(row, self.first[contour])  # rounding at a contour's start must not fall into the one before
+        share = np.clip((whole - before[contour] - self.run[row]) / self.length[row], 0.0, 1.0)
+        return self.points(row, share)
+
     def points(self, rows: Ints, share: Floats) -> Floats:
         """Points of the edges `rows` at `share` (0 to 1) of their length, shape (m, 2)."""
         out = self.start[rows] + (self.end[rows] - self.start[rows]) * share[:, None]
@@ -132,6 +149,8 @@ def boundary(contours: Sequence[Floats]) -> Boundary:
     edge = np.arange(len(start)) - np.repeat(np.cumsum(counts) - counts, counts)
     keep = np.hypot(*(end - start).T) > 1e-9
     start, end, bulge, contour, edge = (v[keep] for v in (start, end, bulge, contour, edge))
+    chord = np.hypot(*(end - start).T)
+    bulge = np.where(np.abs(bulge) * chord < 2 * NO_RISE_MM, 0.0, bulge)
     pairs = np.zeros((2 * len(start), 3))
     pairs[0::2, :2], pairs[0::2, 2], pairs[1::2, :2] = start, bulge, end
     seg = segments(pairs, closed=False)
@@ -139,7 +158,6 @@ def boundary(contours: Sequence[Floats]) -> Boundary:
     first = np.cumsum(counts) - counts
     follows = np.arange(1, len(start) + 1)
     follows[(first + counts - 1)[counts > 0]] = first[counts > 0]
-    chord = np.hypot(*(end - start).T)
     curved = bulge != 0.0
     length = np.where(curved, np.where(curved, seg.radius[0::2], 0.0) * np.abs(seg.sweep[0::2]), chord)
     before = np.cumsum(length) - length

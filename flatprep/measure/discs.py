@@ -7,12 +7,10 @@ import shapely
 
 from flatprep.geom.bulge import Floats
 from flatprep.measure.boundary import Bools, Boundary, Ints
-from flatprep.measure.facing import Chords, Features, take, unit
+from flatprep.measure.facing import Chords, Features, take, together, unit
 
 WAY_ROUND = 3.0
 """A chord counts if the way round along the boundary is so many times longer than the chord."""
-TAPER_CAP = 2.2
-"""A taper ends where what closes it is at most so many times its least width; else it goes on narrowing."""
 DISC_SHARE, DISC_MM = 0.975, 0.002
 """The disc is tried a little smaller, for curves that are drawn as chords."""
 MOST_SAMPLES = 65
@@ -56,11 +54,10 @@ def sound(b: Boundary, f: Features, c: Chords) -> Pieces:
     row = which[begin]
     step = 1.0 / np.maximum(np.bincount(which, minlength=len(c.width))[row] - 1, 1)
     # what closes a stretch blocks the disc before its end; the end still belongs to it
-    lead = np.where(c.tapered, 1.0, 0.5) * c.width / np.maximum(length, 1e-9)
-    margin = lead[row] + step + 1e-9
+    margin = 0.5 * c.width[row] / np.maximum(length[row], 1e-9) + step + 1e-9
     t0 = np.where(share[begin] <= margin, 0.0, share[begin])
     t1 = np.where(1.0 - share[close] <= margin, 1.0, share[close])
-    return _worth(b, _pieces(b, f, take(c, row), t0, t1))
+    return _worth(b, pieces(b, f, take(c, row), t0, t1))
 
 
 def _samples(f: Features, c: Chords) -> tuple[Ints, Floats, Floats]:
@@ -103,7 +100,8 @@ def free(b: Boundary, p: Floats, q: Floats) -> Bools:
     return out
 
 
-def _pieces(b: Boundary, f: Features, c: Chords, t0: Floats, t1: Floats) -> Pieces:
+def pieces(b: Boundary, f: Features, c: Chords, t0: Floats, t1: Floats) -> Pieces:
+    """Pieces of chords from t0 to t1, with their places on the contours."""
     rows = np.arange(len(t0))
     ends = np.column_stack([c.first, c.second])
     row = f.row[ends]
@@ -131,15 +129,24 @@ def _along(b: Boundary, f: Features, feature: Ints, points: Floats) -> Floats:
 
 def _worth(b: Boundary, s: Pieces) -> Pieces:
     """Leave out chords of bumps and corners: the way round along the boundary is short."""
-    begin, close = (_way_round(b, s, k) for k in (0, 1))
-    width = s.chord.width
-    closed = (s.t0 == 0.0) & (begin <= TAPER_CAP * width)
-    straight = np.maximum(begin, close) >= WAY_ROUND * width * (1 - 1e-6) + 1e-6
-    good = np.where(s.chord.tapered, closed, straight)
-    return Pieces(take(s.chord, good), s.t0[good], s.t1[good], s.row[good], s.contour[good], s.place[good])
+    return pick(s, ~s.chord.tapered & (_longest_way(b, s) >= WAY_ROUND * s.chord.width * (1 - 1e-6) + 1e-6))
 
 
-def _way_round(b: Boundary, s: Pieces, k: int) -> Floats:
-    apart = np.abs(s.place[:, 0, k] - s.place[:, 1, k])
-    one = s.contour[:, 0] == s.contour[:, 1]
-    return np.where(one, np.minimum(apart, b.total[s.contour[:, 0]] - apart), np.inf)
+def pick(s: Pieces, keep: Bools) -> Pieces:
+    """Return the chosen rows."""
+    return Pieces(take(s.chord, keep), s.t0[keep], s.t1[keep], s.row[keep], s.contour[keep], s.place[keep])
+
+
+def both(s: Pieces, more: Pieces) -> Pieces:
+    """Put the rows of two sets of pieces after each other."""
+    rest = (np.concatenate([getattr(s, n), getattr(more, n)]) for n in ("t0", "t1", "row", "contour", "place"))
+    return Pieces(together(s.chord, more.chord), *rest)
+
+
+def _longest_way(b: Boundary, s: Pieces) -> Floats:
+    """Longest of the ways round that chords of the piece cut off (of both ways the shorter), mm."""
+    total = b.total[s.contour[:, 0]]
+    gap = np.mod(s.place[:, 0] - s.place[:, 1], total[:, None])
+    at_ends = np.minimum(gap, total[:, None] - gap).max(axis=1)
+    across = (gap[:, 0] - total / 2) * (gap[:, 1] - total / 2) <= 0
+    return np.where(s.contour[:, 0] != s.contour[:, 1], np.inf, np.where(across, total / 2, at_ends))

@@ -22,9 +22,7 @@ SMOOTH_JOINT_RAD = np.radians(12.0)
 PARALLEL_RAD = np.radians(0.2)
 """Lines within this angle are parallel."""
 TAPER_RAD = np.radians(8.0)
-"""Long lines within this angle face each other; beyond it they are the sides of a corner."""
-TAPER_LENGTH = 2.0
-"""So many times longer than wide must a taper be."""
+"""Sides within this angle face each other, if they are long; beyond it they are the sides of a corner."""
 ANGLE_RAD = 1e-6
 """Slack for rounding where a chord ends at the joint of two features."""
 CONCENTRIC_MM = 0.01
@@ -79,7 +77,7 @@ class Chords:
     curved : ndarray of bool
         The stretch runs round the centre of `first`.
     tapered : ndarray of bool
-        The sides are not parallel: p0, q0 is the narrow end.
+        The sides are not parallel: p0, q0 is the narrow end, and counts only where something closes it.
     """
 
     first: Ints
@@ -148,7 +146,7 @@ def facing_pairs(b: Boundary, f: Features, reach_mm: float, most: int) -> tuple[
         i += k
         i, j = i[i < j], j[i < j]
         angle = np.abs(wrap(f.nu[i] - f.nu[j] + np.pi))
-        good = angle <= f.half[i] + f.half[j] + np.where(f.kind[i] + f.kind[j] == 0, TAPER_RAD, ANGLE_RAD)
+        good = angle <= f.half[i] + f.half[j] + np.where((f.kind[i] < 2) & (f.kind[j] < 2), TAPER_RAD, ANGLE_RAD)
         found.append((i[good], j[good]))
     return np.concatenate([p[0] for p in found]), np.concatenate([p[1] for p in found])
 
@@ -164,9 +162,15 @@ def chords(b: Boundary, f: Features, i: Ints, j: Ints, most_mm: float) -> Chords
         _line_line(b, f, i[lines], j[lines]),
         _line_arc(b, f, i[mixed], j[mixed]),
         *_arc_arc(f, i[round_ones], j[round_ones]),
+        *_end_chords(b, f, i, j),
     ]
-    whole = Chords(*(np.concatenate([getattr(p, name) for p in parts]) for name in Chords.__slots__))
+    whole = together(*parts)
     return take(whole, (whole.width <= most_mm) & (whole.width >= 0.0))
+
+
+def together(*parts: Chords) -> Chords:
+    """Put the rows of several sets of chords after each other."""
+    return Chords(*(np.concatenate([getattr(p, name) for p in parts]) for name in Chords.__slots__))
 
 
 def take(c: Chords, keep: Bools | Ints) -> Chords:
@@ -197,7 +201,7 @@ def _line_line(b: Boundary, f: Features, i: Ints, j: Ints) -> Chords:
     turned = np.abs(wrap(f.nu[i] - f.nu[j] + np.pi))
     least = np.minimum(w0, w1)
     tapered = turned > PARALLEL_RAD
-    good = (hi - lo > 1e-6) & (least > 0) & (~tapered | (hi - lo >= TAPER_LENGTH * least))
+    good = (hi - lo > 1e-6) & (least > 0)
     narrow_first = w0 <= w1
     s0, s1 = np.where(narrow_first, lo, hi), np.where(narrow_first, hi, lo)
     v0, v1 = np.minimum(w0, w1), np.maximum(w0, w1)
@@ -216,6 +220,32 @@ def _line_arc(b: Boundary, f: Features, i: Ints, j: Ints) -> Chords:
     p = a + along[:, None] * t
     good = (along >= -1e-6) & (along <= length + 1e-6) & _within(f, j, f.nu[i] + np.pi)
     return take(_single(i, j, width, p, f.nu[i]), good)
+
+
+def _end_chords(b: Boundary, f: Features, i: Ints, j: Ints) -> list[Chords]:
+    """Chords from the end of one edge to the foot on another that is nearly parallel there; one of them an arc."""
+    edges = (
+        (f.kind[i] < 2) & (f.kind[j] < 2) & (f.kind[i] + f.kind[j] > 0) & (b.contour[f.row[i]] == b.contour[f.row[j]])
+    )
+    i, j = i[edges], j[edges]
+    return [_end_chord(b, f, x, y, at_end=at_end) for x, y in ((i, j), (j, i)) for at_end in (False, True)]
+
+
+def _end_chord(b: Boundary, f: Features, x: Ints, y: Ints, *, at_end: bool) -> Chords:
+    p = (b.end if at_end else b.start)[f.row[x]]
+    ray = p - f.at[y]
+    back = np.where(f.kind[y] == 0, f.nu[y], np.arctan2(ray[:, 1], ray[:, 0]) + np.where(f.rho[y] < 0, np.pi, 0.0))
+    width = np.where(f.kind[y] == 0, np.sum(ray * unit(f.nu[y]), axis=1), np.sum(ray * unit(back), axis=1) - f.rho[y])
+    nu = back + np.pi
+    polar = b.angle[f.row[x]] + (b.sweep[f.row[x]] if at_end else 0.0)
+    own = np.where(f.kind[x] == 0, f.nu[x], polar + np.where(f.rho[x] < 0, np.pi, 0.0))
+    q = p + width[:, None] * unit(nu)
+    along = np.sum((q - f.at[y]) * unit(f.nu[y] + np.pi / 2), axis=1)
+    reach = np.sum((b.end[f.row[y]] - b.start[f.row[y]]) * unit(f.nu[y] + np.pi / 2), axis=1)
+    on_line = (np.minimum(0.0, reach) <= along) & (along <= np.maximum(0.0, reach))
+    good = np.where(f.kind[y] == 0, on_line, _within(f, y, back)) & (np.abs(wrap(nu - own)) <= TAPER_RAD) & (width > 0)
+    no = np.zeros(len(x), dtype=bool)
+    return take(Chords(x, y, width, p, q, p, q, nu, nu, no, ~no), good)
 
 
 def _single(i: Ints, j: Ints, width: Floats, p: Floats, nu: Floats) -> Chords:

@@ -10,9 +10,11 @@ import numpy as np
 
 from flatprep.geom.bulge import Floats
 from flatprep.measure.boundary import Bools, Boundary
-from flatprep.measure.discs import Pieces, chord_at, sound
-from flatprep.measure.facing import Features, TooFineError, chords, facing_pairs, features
+from flatprep.measure.discs import Pieces, both, chord_at, sound
+from flatprep.measure.facing import Features, TooFineError, chords, facing_pairs, features, together
 from flatprep.measure.merge import groups
+from flatprep.measure.tapers import tapers
+from flatprep.measure.touches import touches
 
 MOST_PAIRS = 3_000_000
 """Above so many pairs of neighbouring edges widths are not measured."""
@@ -88,11 +90,13 @@ def widths(b: Boundary, *, side: int, rows: Bools, most_mm: float) -> tuple[Widt
         one = b.contour[f.row[i]] == b.contour[f.row[j]]
         i, j = i[one], j[one]
     found = chords(b, f, i, j, most_mm)
+    if side > 0:
+        found = together(found, touches(b, f))
     if len(found.width) > MOST_CHORDS:
         raise TooFineError
     if not len(found.width):
         return ()
-    pieces = sound(b, f, found)
+    pieces = both(sound(b, f, found), tapers(b, f, found))
     told = [_narrowest(b, f, pieces, group) for group in groups(b, pieces, most_mm)]
     return tuple(sorted(told, key=lambda w: (w.width_mm, w.at)))
 
