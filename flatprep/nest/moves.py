@@ -1,11 +1,14 @@
 """A better place for one piece: sample widely, keep the three best, walk downhill from them, snap to contacts."""
 
+import math
+
 import numpy as np
 
 from flatprep.geom.bulge import Floats
 from flatprep.nest._jit import bare
 from flatprep.nest.board import Board, put, settle, weighted_loss
 from flatprep.nest.outlines import Outlines
+from flatprep.nest.snap import snap
 from flatprep.nest.tables import Tables
 
 WIDE_SAMPLES = 20
@@ -14,6 +17,8 @@ CORNER_SAMPLES = 12
 KEPT = 3
 # Steps of the walk, as shares of the piece's smaller side: first, where the three stop, where the best one stops.
 FIRST_STEP, ROUGH_STEP, FINE_STEP = 0.25, 0.02, 0.0005
+# Contacts are looked for so far around a place, as a share of the same.
+SNAP_REACH = 0.06
 LONGER, SHORTER = 1.1, 0.5
 HUGE = 1e300
 
@@ -87,6 +92,23 @@ def keep_best(kept: Floats, v: int, k: int, x: float, y: float, loss: float) -> 
 
 
 @bare
+def any_way(outlines: Outlines, v: int, rng: np.random.Generator) -> tuple[float, float]:
+    """Return a direction to walk in: an axis, a diagonal, or along one of the piece's own edges, to slide on."""
+    way = int(rng.random() * 8.0)
+    if way == 0:
+        return 1.0, 0.0
+    if way == 1:
+        return 0.0, 1.0
+    if way < 4:
+        return 1.0, (1.0 if way == 2 else -1.0)
+    rings = outlines.rings
+    e = rings.at[v] + int(rng.random() * (rings.at[v + 1] - rings.at[v]))
+    ux, uy = rings.edge[e, 2] - rings.edge[e, 0], rings.edge[e, 3] - rings.edge[e, 1]
+    length = math.sqrt(ux * ux + uy * uy)
+    return ux / length, uy / length
+
+
+@bare
 def walk(
     outlines: Outlines, tables: Tables, board: Board, i: int, kept: Floats, row: int, stop: float, rng: np.random.Generator
 ) -> int:
@@ -98,13 +120,11 @@ def walk(
     best, best_x, best_y, step = kept[row, 0], kept[row, 3], kept[row, 4], kept[row, 5]
     tried = 0
     while step > stop and best > 0.0:
-        way = int(rng.random() * 4.0)
+        way_x, way_y = any_way(outlines, v, rng)
         ahead = step if rng.random() < 0.5 else -step
         gained = False
         for _ in range(2):
-            x = best_x + (0.0 if way == 1 else ahead)
-            y = best_y + (0.0 if way == 0 else (-ahead if way == 3 else ahead))
-            x, y = clamp(outlines, board, k, v, x, y)
+            x, y = clamp(outlines, board, k, v, best_x + ahead * way_x, best_y + ahead * way_y)
             loss = weighted_loss(outlines, tables, board, i, v, x, y, best)
             tried += 1
             if loss < best:
@@ -147,11 +167,11 @@ def sample(outlines: Outlines, tables: Tables, board: Board, i: int, kept: Float
 
 @bare
 def move_piece(
-    outlines: Outlines, tables: Tables, board: Board, i: int, kept: Floats, rng: np.random.Generator
+    outlines: Outlines, tables: Tables, board: Board, i: int, kept: Floats, lines: Floats, rng: np.random.Generator
 ) -> int:
     """Look for a place of piece i with less weighted loss and move it there; return the number of places tried.
 
-    `kept` is room to work in, shape (KEPT, 6).
+    `kept` and `lines` are room to work in, shapes (KEPT, 6) and (MOST_LINES, 3).
     """
     v, x, y = board.variant[i], board.at[i, 0], board.at[i, 1]
     here = weighted_loss(outlines, tables, board, i, v, x, y, HUGE)
@@ -167,6 +187,8 @@ def move_piece(
             tried += walk(outlines, tables, board, i, kept, row, ROUGH_STEP * side, rng)
             if kept[row, 0] < kept[best, 0]:
                 best = row
+    if kept[best, 0] > 0.0:
+        tried += snap(outlines, tables, board, i, kept, best, SNAP_REACH * side, lines)
     tried += walk(outlines, tables, board, i, kept, best, FINE_STEP * side, rng)
     if kept[best, 0] < here:
         board.home[i] = int(kept[best, 2])

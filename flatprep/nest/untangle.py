@@ -1,15 +1,13 @@
 """Remove all overlap from a board: move colliding pieces in turn, weigh what keeps colliding ever more."""
 
-from collections.abc import Callable
-
 import numpy as np
 
 from flatprep.geom.bulge import Floats
 from flatprep.nest._jit import bare, kernel
 from flatprep.nest.board import Board, is_colliding, put, settle_all
-from flatprep.nest.clock import Clock
 from flatprep.nest.moves import KEPT, move_piece
 from flatprep.nest.outlines import Ints, Outlines
+from flatprep.nest.snap import MOST_LINES
 from flatprep.nest.tables import Tables
 
 # Weights of colliding pairs grow by up to this much a sweep, the others shrink towards 1.
@@ -43,7 +41,7 @@ def reweigh(board: Board) -> float:
 
 @bare
 def sweep(
-    outlines: Outlines, tables: Tables, board: Board, order: Ints, kept: Floats, rng: np.random.Generator
+    outlines: Outlines, tables: Tables, board: Board, order: Ints, kept: Floats, lines: Floats, rng: np.random.Generator
 ) -> int:
     """Visit every colliding piece once, in random order; return the number of places tried."""
     many = 0
@@ -57,7 +55,7 @@ def sweep(
     tried = 0
     for i in range(many):
         if is_colliding(board, order[i]):
-            tried += move_piece(outlines, tables, board, order[i], kept, rng)
+            tried += move_piece(outlines, tables, board, order[i], kept, lines, rng)
     return tried
 
 
@@ -83,9 +81,10 @@ def sweeps(
     """
     order = np.empty(len(board.variant), dtype=np.int64)
     room = np.empty((KEPT, 6))
+    lines = np.empty((MOST_LINES, 3))
     tried = 0
     while tried < CALL and loss[0] > 0.0 and count[0] < count[1]:
-        tried += sweep(outlines, tables, board, order, room, rng)
+        tried += sweep(outlines, tables, board, order, room, lines, rng)
         total = reweigh(board)
         count[0] += 1
         if total < loss[0]:
