@@ -42,8 +42,10 @@ class BendRule:
 
     Attributes
     ----------
-    table, refuse, prefer : tuple of (thickness mm, radius / thickness)
-        The published least inside radius, below what a bend is an error, and below what it is a warning.
+    table, prefer : tuple of (thickness mm, radius / thickness)
+        The published least inside radius, and below what a bend is a warning; without the latter the table is.
+    refuse : float or None
+        Radius over thickness below which a bend is an error; where the table allows less, the table holds.
     refuse_mm : float
         Least inside radius in mm whatever the thickness.
     along_grain : float
@@ -54,7 +56,7 @@ class BendRule:
 
     bendable: bool = True
     table: Points = ()
-    refuse: Points = ()
+    refuse: float | None = None
     prefer: Points = ()
     refuse_mm: float = 0.0
     along_grain: float = 1.0
@@ -67,11 +69,13 @@ class BendRule:
 
     def limit(self, thickness_mm: float) -> Limit | None:
         """Return the least inside radius, mm, across the rolling direction; None where nothing is known."""
-        if not self.refuse and not self.prefer:
+        wanted = self.prefer or self.table
+        if self.refuse is None or not wanted:
             return None
-        error = max(clamped(self.refuse, thickness_mm) * thickness_mm if self.refuse else 0.0, self.refuse_mm)
-        warn = clamped(self.prefer, thickness_mm) * thickness_mm if self.prefer else None
-        return Limit(error, None if warn is None else max(warn, error), self.source)
+        published = self.table_ratio(thickness_mm)
+        least = self.refuse if published is None else min(self.refuse, published)
+        error = max(least * thickness_mm, self.refuse_mm)
+        return Limit(error, max(clamped(wanted, thickness_mm) * thickness_mm, error), self.source)
 
 
 @dataclass(frozen=True, slots=True)

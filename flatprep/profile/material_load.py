@@ -117,7 +117,7 @@ def _bend(table: Table) -> BendRule:
     return BendRule(
         bendable=table.flag("bendable", default=True),
         table=_ratios(table, "table"),
-        refuse=_ratios(table, "refuse"),
+        refuse=table.optional_number("refuse", least=0.0),
         prefer=_ratios(table, "prefer"),
         refuse_mm=table.number("refuse_mm", 0.0, least=0.0),
         along_grain=table.number("along_grain", 1.0, least=1.0),

@@ -1,6 +1,8 @@
 """Every figure that ships, against tables that were written apart from it; every profile names its sources."""
 
 import tomllib
+from dataclasses import replace
+from itertools import pairwise
 
 import pytest
 
@@ -30,11 +32,19 @@ def test_thickness_ranges(row):
 
 
 @pytest.mark.parametrize("row", LIMITS["process"], ids=lambda r: r["id"])
-def test_kerf_spacing_margin(row):
+def test_kerf_spacing_margin_bed(row):
     p = load_process(row["id"])
-    assert (p.kerf_mm, p.spacing_mm, p.margin_mm, p.join_gap_mm) == (
-        row["kerf"], row["spacing"], row["margin"], row["join_gap"],
-    )  # fmt: skip
+    given = (p.kerf_mm, p.spacing_mm, p.margin_mm, p.join_gap_mm, p.bed_mm, p.slat_pitch_mm or 0)
+    assert given == (*(row[k] for k in ("kerf", "spacing", "margin", "join_gap")), tuple(row["bed"]), row["slat_pitch"])
+
+
+@pytest.mark.parametrize("name", ["fibre-laser", "co2-laser"])
+def test_a_slot_is_never_under_two_kerfs(name):
+    assert replace(load_process(name), kerf_mm=1.0).limit("slot", None, 0.6).error == 2.0
+
+
+def test_a_wooden_web_is_never_under_half_the_cutter():
+    assert replace(load_process("router"), tool_diameter_mm=10.0).limit("web", "wood", 6.0).error == 5.0
 
 
 @pytest.mark.parametrize("row", table("kerf")["row"], ids=lambda r: f"{r['process']}-{r['family']}-{r['thickness']}")
@@ -55,6 +65,37 @@ def test_densities_and_verdicts(row):
 def test_modulus_and_strength(row):
     material = load_material(row["id"])
     assert (material.e_gpa, material.strength_mpa) == (row["e"], row["strength"])
+
+
+@pytest.mark.parametrize("row", table("stock_thickness")["row"], ids=lambda r: r["id"])
+def test_thicknesses_sold(row):
+    assert list(load_material(row["id"]).stock_mm) == row["thicknesses"]
+
+
+@pytest.mark.parametrize("row", table("bend_limits")["row"], ids=lambda r: f"{r['id']}-{r['thickness']}")
+def test_least_bend_radii(row):
+    rule = load_material(row["id"]).bend
+    limit = rule.limit(row["thickness"])
+    assert (limit.error, limit.warn) == pytest.approx((row["refuse"], row["prefer"]), abs=1e-6), row["rule"]
+    assert rule.along_grain == row["along_grain"]
+
+
+def between(rows, group, value):
+    """The middle of neighbouring rows of one table: straight between them."""
+    for one, two in pairwise(rows):
+        if all(one[key] == two[key] for key in group) and one["thickness"] < two["thickness"]:
+            middle = {**one, "thickness": (one["thickness"] + two["thickness"]) / 2}
+            yield {**middle, value: (one[value] + two[value]) / 2}
+
+
+@pytest.mark.parametrize("row", list(between(table("bend_radius")["row"], ("material",), "ratio")), ids=str)
+def test_bend_radii_between_the_rows(row):
+    assert load_material(row["material"]).bend.table_ratio(row["thickness"]) == pytest.approx(row["ratio"])
+
+
+@pytest.mark.parametrize("row", list(between(table("kerf")["row"], ("process", "family"), "kerf")), ids=str)
+def test_kerf_between_the_rows(row):
+    assert load_process(row["process"]).kerf_at(row["family"], row["thickness"]) == pytest.approx(row["kerf"])
 
 
 @pytest.mark.parametrize("row", table("bend_radius")["row"], ids=lambda r: f"{r['material']}-{r['thickness']}")
@@ -108,3 +149,22 @@ def test_profiles_name_no_maker():
     text = "".join(file.read_text() for file in SHIPPED.rglob("*.toml")).lower()
     for word in ("hardox", "plexiglas", "delrin", "perspex", "trespa", "teflon", "lexan", "corian", "strenx"):
         assert word not in text
+
+
+@pytest.mark.parametrize(("alloy", "taken_as"), [("al-5754-h22", "al-5052-h32"), ("al-6082-t6", "al-6061-t6")])
+def test_alloys_that_are_bent_as_their_neighbours(alloy, taken_as):
+    one, other = load_material(alloy).bend, load_material(taken_as).bend
+    assert replace(one, note="", source="") == replace(other, note="", source="")
+    assert "taken" in one.source
+
+
+def test_the_two_places_that_hold_bend_radii_agree():
+    data = tomllib.loads((SHIPPED / "hardware" / "bend_radius.toml").read_text())
+    checked = 0
+    for material in all_materials():
+        for row in data["row"]:
+            if row["kind"] == "least" and row["alloy"] in material.aliases and material.bend.table:
+                given = tuple(zip(row["thickness"], row["ratio"], strict=True))
+                assert material.bend.table == given, material.id
+                checked += 1
+    assert checked >= 6
