@@ -36,6 +36,14 @@ class Step:
         What should be cut beforehand; None where the process cannot cut it: mark the centre, drill solid.
     at : tuple of (float, float)
         Places in the drawing, mm.
+    tool : str
+        As it is taken from the drawer: ``drill 4.2 mm``, ``tap M5``; empty where none is needed.
+    why : str
+        Why it stands where it stands in the order.
+    limits_mm : (float, float) or None
+        What the finished size (a tap's minor diameter) must lie within.
+    problem : str
+        Why it cannot be done as drawn; empty where it can.
     """
 
     order: int
@@ -49,20 +57,55 @@ class Step:
     side: str | None = None
     note: str = ""
     caution: str = ""
+    tool: str = ""
+    why: str = ""
+    limits_mm: tuple[float, float] | None = None
+    problem: str = ""
 
 
 @dataclass(frozen=True, slots=True)
 class PartSteps:
-    """The bench work of one part."""
+    """The bench work of one part.
+
+    Attributes
+    ----------
+    quantity : int
+        Pieces of all sets as drawn.
+    quantity_opposite : int
+        Pieces turned over: their side A is the drawing's side B.
+    questions : tuple of str
+        What the drawing seems to mean and nobody said: asked, not taken as a fact.
+    flip : str
+        Why the part must not be turned over to save material; empty where it may.
+    """
 
     name: str
     quantity: int
     steps: tuple[Step, ...]
+    quantity_opposite: int = 0
+    questions: tuple[str, ...] = ()
+    flip: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Tool:
+    """A tool of the kit list: how often it is used in the whole job, and on which parts."""
+
+    name: str
+    uses: int
+    parts: tuple[str, ...]
 
 
 @dataclass(frozen=True, slots=True)
 class Checklist:
-    """The bench work of a job."""
+    """The bench work of a job.
+
+    Attributes
+    ----------
+    tools : tuple of Tool
+        The kit list.
+    """
 
     parts: tuple[PartSteps, ...]
     cautions: tuple[str, ...]
+    tools: tuple[Tool, ...] = ()

@@ -61,15 +61,25 @@ class FinishPlan:
         What is cut; None where the process cannot cut it.
     cut_range_mm : (float, float)
         Cut diameters that will do.
-    drill_mm : float
-        The drill before the reamer, one usual step under.
+    drill_mm, largest_drill_mm : float
+        The usual drill before the reamer, and the largest that leaves it enough.
+    thermal : bool
+        Whether the cut leaves a skin that is drilled away first.
     """
 
     limits: Limits
     cut_mm: float | None
     cut_range_mm: tuple[float, float]
     drill_mm: float
+    largest_drill_mm: float
+    thermal: bool
     source: str
+
+    def drill_from(self, as_cut_mm: float | None) -> float | None:
+        """Return the drill between a cut hole and the reamer; None where the reamer takes the rest at once."""
+        if as_cut_mm is None or as_cut_mm < self.drill_mm - 0.05:
+            return self.drill_mm
+        return self.largest_drill_mm if self.thermal and as_cut_mm < self.largest_drill_mm - 0.05 else None
 
 
 def finish_plan(
@@ -90,10 +100,14 @@ def finish_plan(
     limit = process.limit("hole", material.family if material else None, thickness_mm)
     pilot = size.least_mm - least
     can_cut = limit is None or pilot >= limit.error - 1e-3
-    drill = metric_drill_below(size.least_mm - drilled.middle_mm - section("finishing", own)["drill_over"])
+    over = section("finishing", own)["drill_over"]
     return FinishPlan(
-        size, round(pilot, 1) if can_cut else None, (size.least_mm - most, size.least_mm - least), drill, cut.source
-    )
+        limits=size, cut_mm=round(pilot, 1) if can_cut else None,
+        cut_range_mm=(size.least_mm - most, size.least_mm - least),
+        drill_mm=metric_drill_below(size.least_mm - drilled.middle_mm - over),
+        largest_drill_mm=metric_drill_below(size.least_mm - drilled.least_mm - over),
+        thermal=process.kind in _PILOT, source=cut.source,
+    )  # fmt: skip
 
 
 def cut_spread_mm(diameter_mm: float, process: Process, thickness_mm: float | None, own: Sequence[Path] = ()) -> float:

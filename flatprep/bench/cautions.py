@@ -1,0 +1,44 @@
+"""The usual cautions: at the step where someone can be hurt, and for the material and the process."""
+
+from collections.abc import Iterable, Sequence
+
+from flatprep.bench.ops import Op
+from flatprep.bench.part import BenchPart
+from flatprep.model.work import StepKind
+from flatprep.practice.threads import THERMAL
+from flatprep.profile.hardware.hazards import caution, first_caution
+
+_AT_STEP = {
+    StepKind.TAP: "tapping", StepKind.THREAD_INSERT: "tapping", StepKind.BEND: "press_brake",
+}  # fmt: skip
+THIN_MM = 2.0
+"""Sheet that climbs the drill at break-through."""
+
+
+def step_caution(op: Op, bench: BenchPart, *, first: bool) -> str:
+    """Return the caution of a step; `first` is the part's first step."""
+    if op.kind is StepKind.DEBURR and first and bench.process.kind in THERMAL:
+        return caution("deburr")
+    if op.kind is StepKind.DRILL and bench.thickness_mm is not None and bench.thickness_mm < THIN_MM:
+        return caution("drilling_thin_sheet")
+    if op.kind is StepKind.DRILL:
+        return caution("hot_slugs") if bench.process.kind in THERMAL else ""
+    return caution(_AT_STEP[op.kind]) if op.kind in _AT_STEP else ""
+
+
+def job_cautions(parts: Sequence[BenchPart]) -> tuple[str, ...]:
+    """Return the cautions of a whole job: what goes before this list, then those of its materials and processes."""
+    found: list[str] = [first_caution()]
+    for bench in parts:
+        found += _of_part(bench)
+    return tuple(dict.fromkeys(text for text in found if text))
+
+
+def _of_part(bench: BenchPart) -> Iterable[str]:
+    if bench.process.caution:
+        yield bench.process.caution
+    if bench.material is None:
+        return
+    for hazard in bench.material.hazards:
+        yield caution(hazard)
+    yield from bench.material.cautions

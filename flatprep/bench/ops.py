@@ -1,0 +1,143 @@
+"""One operation on some holes of a part, before it is numbered: what, with which tool, after what."""
+
+from dataclasses import dataclass, replace
+from enum import IntEnum
+
+from flatprep.bench.match import Target
+from flatprep.bench.part import BenchPart
+from flatprep.job.values import Pilots, Point, Work
+from flatprep.model.work import StepKind
+
+CLOSE_MM = 0.05
+"""A hole this near to what a drill would leave needs no drill."""
+
+
+class Rank(IntEnum):
+    """Where in the order of work an operation stands, with the reason for it."""
+
+    DEBURR = 100
+    CHECK_CUT = 150
+    FLATNESS = 200
+    CENTRE_MARK = 300
+    DRILL = 400
+    BORE = 500
+    REAM = 550
+    COUNTERSINK = 600
+    COUNTERBORE = 620
+    TAP = 700
+    INSERT = 750
+    HOLE_EDGES = 800
+    BEND = 900
+    PRESS = 1000
+    INSPECT = 1100
+
+
+WHY = {
+    Rank.DEBURR: "safe handling; a burr tilts the part in vice and brake, an edge nick starts a crack in a bend",
+    Rank.FLATNESS: "holes finished in a bowed plate are not square once it is flattened",
+    Rank.CENTRE_MARK: "the drill starts where the cut mark is, while the part is flat",
+    Rank.DRILL: "before bending, while the part lies flat; takes the cut skin away",
+    Rank.BORE: "while the part is flat and clamps square",
+    Rank.REAM: "straight after drilling, and before countersinking so that the reamer starts on a full edge",
+    Rank.COUNTERSINK: "needs the finished hole as pilot; before the tap, so that the tap raises no burr into the seat",
+    Rank.COUNTERBORE: "needs the finished hole as pilot",
+    Rank.TAP: "after the sink; before bending, while every hole can be reached",
+    Rank.INSERT: "into its finished thread",
+    Rank.HOLE_EDGES: "drills and taps raise a burr on the far side, which tilts the part at the brake",
+    Rank.BEND: "after all work that needs the part flat",
+    Rank.PRESS: "after bending, where nothing fouls the die",
+    Rank.CHECK_CUT: "a wrong hole costs least before anything is done to it",
+    Rank.INSPECT: "last, on the finished part",
+}
+
+
+@dataclass(frozen=True, slots=True)
+class Op:
+    """An operation at one or several places.
+
+    Attributes
+    ----------
+    rank : int
+        Order among the part's operations.
+    limits_mm : (float, float) or None
+        What the finished size must lie within.
+    problem : str
+        Why it cannot be done as drawn; empty where it can.
+    """
+
+    kind: StepKind
+    rank: int
+    at: tuple[Point, ...] = ()
+    size: str = ""
+    tool_dia_mm: float | None = None
+    tool: str = ""
+    depth_mm: float | None = None
+    cut_dia_mm: float | None = None
+    side: str | None = None
+    note: str = ""
+    why: str = ""
+    limits_mm: tuple[float, float] | None = None
+    problem: str = ""
+    count: int | None = None
+
+    def with_note(self, text: str) -> "Op":
+        """Return the operation with a further sentence in its note."""
+        return replace(self, note="; ".join(t for t in (self.note, text) if t))
+
+
+def spoilt(op: Op, why: str) -> Op:
+    """Return the operation marked as not possible as drawn: it stays in the list, so that nobody overlooks it."""
+    return replace(op, problem=why).with_note(f"NOT POSSIBLE AS DRAWN: {why}")
+
+
+def late(op: Op) -> Op:
+    """Return the operation moved behind the bends, in the same order among its like."""
+    return replace(op, rank=Rank.BEND + op.rank // 10, why="near a bend: it would be pulled out of shape")
+
+
+@dataclass(frozen=True, slots=True)
+class Ask:
+    """A piece of work on holes of one drawn diameter, with what will have been cut there.
+
+    Attributes
+    ----------
+    drawn_mm : float or None
+        None where nothing is drawn: the place alone is given.
+    """
+
+    bench: BenchPart
+    work: Work
+    targets: tuple[Target, ...]
+    drawn_mm: float | None
+
+    @property
+    def at(self) -> tuple[Point, ...]:
+        """The places."""
+        return tuple(t.at for t in self.targets)
+
+    def as_cut_mm(self, advised_mm: float | None) -> float | None:
+        """Return the hole that the cutter leaves: as drawn, as advised, or none at all."""
+        if self.bench.pilots is Pilots.CUT and self.drawn_mm is not None:
+            return advised_mm
+        if self.bench.pilots is Pilots.MARK or self.drawn_mm is None:
+            return None
+        return self.drawn_mm if self.drawn_mm >= self.bench.least_hole_mm - 1e-3 else None
+
+
+def open_up(ask: Ask, as_cut_mm: float | None, drill_mm: float, cut_dia_mm: float | None, drill: str = "") -> list[Op]:
+    """Return what brings a hole to a drill's size: centre mark and drill, drill, or nothing."""
+    if as_cut_mm is not None and as_cut_mm >= drill_mm - CLOSE_MM:
+        return []
+    size = drill or f"{drill_mm:g} mm"
+    out = []
+    if as_cut_mm is None:
+        out.append(
+            Op(StepKind.CENTRE_MARK, Rank.CENTRE_MARK, ask.at, size, cut_dia_mm=cut_dia_mm, side=ask.work.side,
+               note="no hole is cut here: centre mark, drill solid")
+        )  # fmt: skip
+    note = f"opens the cut hole of {as_cut_mm:.4g} mm" if as_cut_mm is not None else "in steps, smallest drill first"
+    out.append(
+        Op(StepKind.DRILL, Rank.DRILL, ask.at, size, drill_mm, f"drill {size}", ask.work.depth_mm, cut_dia_mm,
+           ask.work.side, note)
+    )  # fmt: skip
+    return out

@@ -1,0 +1,75 @@
+"""A part as the bench sees it: its shape, what it is made of and by, and what is asked of it."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from functools import cached_property
+
+from flatprep.job.values import BendAsk, JobPart, Pilots, Work
+from flatprep.measure.holes import Hole, recognise
+from flatprep.model.drawing import Part, Text
+from flatprep.profile.material import Material
+from flatprep.profile.process import Process
+
+
+@dataclass(frozen=True, eq=False)
+class BenchPart:
+    """A part and its bench work.
+
+    Attributes
+    ----------
+    name : str
+    part : Part
+        As drawn.
+    quantity, quantity_opposite : int
+        Pieces as drawn and turned over, all sets.
+    work, bends : tuple
+        What the job asks for.
+    texts : tuple of Text
+        Texts of the drawing, for its callouts.
+    pilots : Pilots
+        What is cut where bench work opens a hole up.
+    where : str
+        Place in the job file, for messages; parts of one drawing share it.
+    """
+
+    name: str
+    part: Part
+    process: Process
+    quantity: int = 1
+    material: Material | None = None
+    thickness_mm: float | None = None
+    work: tuple[Work, ...] = ()
+    bends: tuple[BendAsk, ...] = ()
+    texts: tuple[Text, ...] = ()
+    pilots: Pilots = Pilots.AS_DRAWN
+    quantity_opposite: int = 0
+    finish: str = ""
+    good_face: str | None = None
+    where: str = ""
+
+    @cached_property
+    def holes(self) -> tuple[Hole, ...]:
+        """The holes by their shapes."""
+        return tuple(recognise(contour) for contour in self.part.holes)
+
+    @property
+    def family(self) -> str | None:
+        """Family of the material, if it is known."""
+        return self.material.family if self.material else None
+
+    @property
+    def least_hole_mm(self) -> float:
+        """Smallest hole that the process cuts in this thickness; 0 where that is not known."""
+        limit = self.process.limit("hole", self.family, self.thickness_mm)
+        return limit.error if limit else 0.0
+
+
+def bench_part(
+    ask: JobPart, part: Part, *, sets: int = 1, pilots: Pilots = Pilots.AS_DRAWN, texts: Sequence[Text] = ()
+) -> BenchPart:
+    """Return the bench's view of a part of a job; quantities become those of all sets."""
+    return BenchPart(
+        name=part.name, part=part, process=ask.process, quantity=ask.quantity * sets, material=ask.material,
+        thickness_mm=ask.thickness_mm, work=ask.work, bends=ask.bends, texts=tuple(texts), pilots=pilots,
+        quantity_opposite=ask.quantity_opposite * sets, finish=ask.finish, good_face=ask.good_face, where=ask.where,
+    )  # fmt: skip

@@ -1,0 +1,100 @@
+"""Operations for threads: tap, and thread insert."""
+
+from flatprep.bench.ops import Ask, Op, Rank, open_up, spoilt
+from flatprep.model.work import StepKind
+from flatprep.practice.threads import (
+    PilotHole,
+    engagement,
+    forming_drill_mm,
+    hardens,
+    percent_of_thread,
+    tap_pilot,
+    taps_directly,
+)
+from flatprep.profile.hardware.names import UnknownHardwareError
+from flatprep.profile.hardware.rules import section
+from flatprep.profile.hardware.threads import Thread, find_thread
+
+
+def tap_cut_mm(ask: Ask, thread: Thread) -> float | None:
+    """Return the diameter to cut before the tap: the drawn one where it will do."""
+    bench, drawn = ask.bench, ask.drawn_mm
+    pilot = _pilot(ask, thread.drill_mm)
+    if pilot.diameter_mm is None or drawn is None:
+        return pilot.diameter_mm
+    if not pilot.drill_out:
+        return drawn if thread.admits(drawn) else pilot.diameter_mm
+    return drawn if bench.least_hole_mm - 1e-3 <= drawn <= pilot.diameter_mm + 1e-3 else pilot.diameter_mm
+
+
+def _pilot(ask: Ask, drill_mm: float) -> PilotHole:
+    return tap_pilot(drill_mm, ask.bench.process, ask.bench.material, ask.bench.thickness_mm)
+
+
+def tap_ops(ask: Ask) -> list[Op]:
+    """Return drill (where needed) and tap."""
+    thread = find_thread(ask.work.size)
+    cut = tap_cut_mm(ask, thread)
+    as_cut = ask.as_cut_mm(cut)
+    tap = Op(
+        StepKind.TAP, Rank.TAP, ask.at, thread.name, thread.drill_mm, f"tap {thread.name}", ask.work.depth_mm, cut,
+        ask.work.side, _tap_note(ask, thread), limits_mm=(thread.minor_min_mm, thread.minor_max_mm),
+    )  # fmt: skip
+    if as_cut is not None and as_cut > thread.minor_max_mm + 0.001:
+        return [
+            spoilt(tap, f"the hole of {as_cut:.4g} mm is above the greatest minor diameter {thread.minor_max_mm:.4g}")
+        ]
+    if as_cut is not None and thread.admits(as_cut):
+        return [tap if taps_directly(ask.bench.process, ask.bench.material, ask.bench.thickness_mm) else _skin(tap)]
+    return [*open_up(ask, as_cut, thread.drill_mm, cut, _drill_name(thread)), tap]
+
+
+def _drill_name(thread: Thread) -> str:
+    return f"{thread.drill} ({thread.metric_drill_mm:g} mm)" if thread.is_inch else thread.drill
+
+
+def _skin(tap: Op) -> Op:
+    return tap.with_note(
+        "the hole is cut to the tap drill: its skin is hard or rough, the tap wears; better cut it under size"
+    )
+
+
+def _tap_note(ask: Ask, thread: Thread) -> str:
+    bench = ask.bench
+    notes = [f"{percent_of_thread(thread, thread.drill_mm):.0f} % thread (of the {0.6495:g} P height)"]
+    depth = ask.work.depth_mm or bench.thickness_mm
+    if depth is not None:
+        held = engagement(thread, depth, bench.material)
+        notes.append(f"{held.threads:.1f} threads engaged")
+        if held.instead:
+            notes.append(f"{bench.family} takes no machine thread: {held.instead}")
+        elif held.fails:
+            notes.append("too thin for a thread: rivet nut, weld nut, clinch nut or thicker plate")
+        elif held.weak:
+            notes.append("light loads only, or a thread insert")
+    if bench.family == "wear-plate":
+        notes.append("cobalt or carbide drill, rigid machine, low speed; no thread without carbide tooling")
+    elif hardens(bench.material):
+        notes.append("the cut rim is hard: drill it away")
+    if bench.family in section("forming").words("families"):
+        notes.append(f"forming tap: drill {forming_drill_mm(thread):.2f} mm")
+    return "; ".join(notes)
+
+
+def insert_ops(ask: Ask) -> list[Op]:
+    """Return drill and thread insert."""
+    thread = find_thread(ask.work.size)
+    drill = section("insert").find(thread.name)
+    if drill is None:
+        known = ", ".join(k for k in section("insert").table.data if k != "from")
+        raise UnknownHardwareError(f'thread insert "{ask.work.size}" is not known', f"known: {known}")
+    cut = _pilot(ask, drill).diameter_mm
+    as_cut = ask.as_cut_mm(cut)
+    note = f"tap for the insert's outer thread, wind it in to half a turn below the face; {section('insert').source}"
+    insert = Op(
+        StepKind.THREAD_INSERT, Rank.INSERT, ask.at, thread.name, drill, f"insert tap {thread.name}",
+        ask.work.depth_mm, cut, ask.work.side, note,
+    )  # fmt: skip
+    if as_cut is not None and as_cut > drill + 0.2:
+        return [spoilt(insert, f"the hole of {as_cut:.4g} mm is wider than the insert's drill of {drill:g} mm")]
+    return [*open_up(ask, as_cut, drill, cut), insert]
