@@ -191,6 +191,8 @@ class Fault:
     detail: str = ""
     places: tuple[tuple[float, float], ...] = ()
     """Every place, mm, where the fault stands for several."""
+    closed: bool = False
+    """The reader bridged the gap that is measured; the outline counts as closed."""
 
 
 @dataclass(frozen=True, slots=True)

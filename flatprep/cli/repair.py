@@ -1,0 +1,85 @@
+"""``flatprep repair``."""
+
+import json
+from dataclasses import replace
+from pathlib import Path
+
+import click
+
+from flatprep.api.repair import repair_file
+from flatprep.base.errors import ExitStatus, UsageError
+from flatprep.base.tolerances import DEFAULT
+from flatprep.base.units import parse_length_mm
+from flatprep.cli.options import output_format, parse_roles, said_about_parts
+from flatprep.profile.process_load import load_process
+from flatprep.repair.values import RepairOptions, RoundLimits
+from flatprep.report.repair_json import repair_document
+from flatprep.report.repair_text import repair_text
+
+
+@click.command("repair")
+@click.argument("file", type=click.Path(path_type=Path))
+@click.option("--out", required=True, type=click.Path(path_type=Path), metavar="FILE", help="the clean drawing")
+@click.option(
+    "--gap",
+    metavar="LENGTH",
+    default="0.1mm",
+    show_default=True,
+    help="outlines open by no more than this are closed by a straight line",
+)
+@click.option(
+    "--deviation",
+    metavar="LENGTH",
+    default="0.1mm",
+    show_default=True,
+    help="chords become an arc where it stays this near to them; 0 keeps all chords",
+)
+@click.option("--every", is_flag=True, help="tell every change in a line of its own")
+@said_about_parts
+@output_format
+@click.pass_context
+def command(
+    ctx: click.Context,
+    file: Path,
+    out: Path,
+    gap: str,
+    deviation: str,
+    every: bool,
+    process: str | None,
+    material: str | None,
+    thickness: str | None,
+    units: str | None,
+    layers: tuple[str, ...],
+    folders: tuple[Path, ...],
+    form: str,
+) -> None:
+    """Write a clean drawing: joined, without doubles, arcs for chords, flat, in mm, on layers CUT, MARK and BEND.
+
+    Ends with 1 when something is left that repair will not guess.
+    """
+    tol = DEFAULT
+    if process:
+        tol = replace(tol, join_mm=load_process(process, folders).join_gap_mm)
+    options = RepairOptions(
+        _length("--gap", gap), _rounding(_length("--deviation", deviation)), units, parse_roles(layers), tol
+    )
+    done = repair_file(file, out, options)
+    if form == "json":
+        click.echo(json.dumps(repair_document(done, str(out)), indent=1))
+    else:
+        click.echo(repair_text(done, str(out), every=every))
+    ctx.exit(ExitStatus.FINDINGS if done.left else ExitStatus.CLEAN)
+
+
+def _length(option: str, text: str) -> float:
+    value = parse_length_mm(text)
+    if value < 0.0:
+        raise UsageError(f"{option} {text}: is below 0", "give a length such as 0.1mm")
+    return value
+
+
+def _rounding(deviation_mm: float) -> RoundLimits:
+    plain = RoundLimits()
+    if deviation_mm == 0.0:
+        return RoundLimits(deviation_mm=0.0, polygon_mm=0.0)
+    return RoundLimits(deviation_mm=deviation_mm, polygon_mm=max(plain.polygon_mm, deviation_mm))
