@@ -155,21 +155,24 @@ def chords(b: Boundary, f: Features, i: Ints, j: Ints, most_mm: float) -> Chords
     """Chords of the pairs (i, j) that are at most `most_mm` wide."""
     swap = (f.kind[i] > 0) & (f.kind[j] == 0)
     i, j = np.where(swap, j, i), np.where(swap, i, j)
-    lines = (f.kind[i] == 0) & (f.kind[j] == 0)
-    mixed = (f.kind[i] == 0) & (f.kind[j] > 0)
-    round_ones = (f.kind[i] > 0) & (f.kind[j] > 0)
-    parts = [
-        _line_line(b, f, i[lines], j[lines]),
-        _line_arc(b, f, i[mixed], j[mixed]),
-        *_arc_arc(f, i[round_ones], j[round_ones]),
-        *_end_chords(b, f, i, j),
-    ]
-    whole = together(*parts)
+    straight, other = f.kind[i] == 0, f.kind[j] == 0
+    edges = (f.kind[i] < 2) & (f.kind[j] < 2) & ~(straight & other) & (b.contour[f.row[i]] == b.contour[f.row[j]])
+    looks = (
+        (straight & other, _line_line),
+        (straight & ~other, _line_arc),
+        (~straight & ~other, _arc_arc),
+        (edges, _end_chords),
+    )
+    whole = together(*(look(b, f, i[rows], j[rows]) for rows, look in looks if rows.any()))
     return take(whole, (whole.width <= most_mm) & (whole.width >= 0.0))
 
 
 def together(*parts: Chords) -> Chords:
     """Put the rows of several sets of chords after each other."""
+    if not parts:
+        none, no, xy = np.zeros(0), np.zeros(0, dtype=bool), np.zeros((0, 2))
+        row = np.zeros(0, dtype=np.intp)
+        return Chords(row, row, none, xy, xy, xy, xy, none, none, no, no)
     return Chords(*(np.concatenate([getattr(p, name) for p in parts]) for name in Chords.__slots__))
 
 
@@ -222,22 +225,16 @@ def _line_arc(b: Boundary, f: Features, i: Ints, j: Ints) -> Chords:
     return take(_single(i, j, width, p, f.nu[i]), good)
 
 
-def _end_chords(b: Boundary, f: Features, i: Ints, j: Ints) -> list[Chords]:
+def _end_chords(b: Boundary, f: Features, i: Ints, j: Ints) -> Chords:
     """Chords from the end of one edge to the foot on another that is nearly parallel there; one of them an arc."""
-    edges = (
-        (f.kind[i] < 2) & (f.kind[j] < 2) & (f.kind[i] + f.kind[j] > 0) & (b.contour[f.row[i]] == b.contour[f.row[j]])
-    )
-    i, j = i[edges], j[edges]
-    return [_end_chord(b, f, x, y, at_end=at_end) for x, y in ((i, j), (j, i)) for at_end in (False, True)]
-
-
-def _end_chord(b: Boundary, f: Features, x: Ints, y: Ints, *, at_end: bool) -> Chords:
-    p = (b.end if at_end else b.start)[f.row[x]]
+    x, y = np.concatenate([i, i, j, j]), np.concatenate([j, j, i, i])
+    at_end = np.repeat([False, True, False, True], len(i))
+    p = np.where(at_end[:, None], b.end[f.row[x]], b.start[f.row[x]])
     ray = p - f.at[y]
     back = np.where(f.kind[y] == 0, f.nu[y], np.arctan2(ray[:, 1], ray[:, 0]) + np.where(f.rho[y] < 0, np.pi, 0.0))
     width = np.where(f.kind[y] == 0, np.sum(ray * unit(f.nu[y]), axis=1), np.sum(ray * unit(back), axis=1) - f.rho[y])
     nu = back + np.pi
-    polar = b.angle[f.row[x]] + (b.sweep[f.row[x]] if at_end else 0.0)
+    polar = b.angle[f.row[x]] + np.where(at_end, b.sweep[f.row[x]], 0.0)
     own = np.where(f.kind[x] == 0, f.nu[x], polar + np.where(f.rho[x] < 0, np.pi, 0.0))
     q = p + width[:, None] * unit(nu)
     along = np.sum((q - f.at[y]) * unit(f.nu[y] + np.pi / 2), axis=1)
@@ -254,7 +251,7 @@ def _single(i: Ints, j: Ints, width: Floats, p: Floats, nu: Floats) -> Chords:
     return Chords(i, j, width, p, q, p, q, nu, nu, no, no)
 
 
-def _arc_arc(f: Features, i: Ints, j: Ints) -> list[Chords]:
+def _arc_arc(b: Boundary, f: Features, i: Ints, j: Ints) -> Chords:  # noqa: ARG001 (one signature for all kinds)
     between = f.at[j] - f.at[i]
     apart = np.hypot(*between.T)
     along = np.arctan2(between[:, 1], between[:, 0])
@@ -267,7 +264,7 @@ def _arc_arc(f: Features, i: Ints, j: Ints) -> list[Chords]:
         p = f.at[i] + f.rho[i][:, None] * unit(nu)
         out.append(take(_single(i, j, width, p, nu), good))
     out.append(_concentric(f, i[concentric], j[concentric]))
-    return out
+    return together(*out)
 
 
 def _concentric(f: Features, i: Ints, j: Ints) -> Chords:

@@ -1,10 +1,11 @@
 """What a hole is, however it was drawn: circle, obround, rectangle, hexagon, or some other shape."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from enum import StrEnum
 from math import atan2, cos, hypot, pi, sin
 
 import numpy as np
+import numpy.typing as npt
 import shapely
 
 from flatprep.geom import bulge
@@ -15,6 +16,8 @@ NEAR_MM = 0.02
 """Chords this near to a circle, and corners this near to a shape, stand for it."""
 LEAST_CHORDS = 8
 """A polygon of fewer sides is no circle, however small."""
+RIGHT = 1e-3
+"""Cosine below which sides stand at a right angle."""
 LEAST_SIDES = 12
 """A regular polygon of so many sides or more stands for a circle, however coarse."""
 
@@ -39,7 +42,7 @@ class Hole:
         Centre, mm.
     width_mm, length_mm : float
         Circle: diameter; obround and rectangle: short and long side; hexagon: across flats and across corners;
-        other: sides of the least turned box.
+        other: sides of the smallest of three boxes (upright, along the longest edge, along the spread).
     angle_rad : float
         Direction of the length.
     chords : bool
@@ -89,27 +92,66 @@ class Hole:
         return out if forward else bulge.reverse(out, closed=True)
 
 
+@dataclass(frozen=True, slots=True, eq=False)
+class _Edges:
+    """A closed polyline without flat joints, with what every look at it needs."""
+
+    xyb: Floats
+    step: Floats
+    length: Floats
+    straight: npt.NDArray[np.bool_]
+
+
 def recognise(contour: Contour) -> Hole:
     """Name the shape of a closed contour and measure it."""
-    round_hole = _drawn_circle(contour)
-    if round_hole is not None:
-        return round_hole
-    xyb = _without_flat_joints(contour.xyb)
+    found = _two_halves(contour) or _four_edges(contour) or _drawn_circle(contour)
+    if found is not None:
+        return found
+    edges = _edges(contour.xyb)
     for look in (_chord_circle, _hexagon, _rectangle, _obround):
-        found = look(contour, xyb)
+        found = look(contour, edges)
         if found is not None:
             return found
-    return _other(contour)
+    return _other(contour, edges)
+
+
+def _two_halves(contour: Contour) -> Hole | None:
+    """Recognise a circle as most are drawn, without a call of numpy: drawings hold thousands."""
+    if len(contour.xyb) != 2:
+        return None
+    (x0, y0, b0), (x1, y1, b1) = contour.xyb.tolist()
+    if abs(abs(b0) - 1.0) > 1e-9 or abs(b0 - b1) > 1e-9:
+        return None
+    return _circle(contour, (x0 + x1) / 2, (y0 + y1) / 2, hypot(x1 - x0, y1 - y0) / 2)
+
+
+def _four_edges(contour: Contour) -> Hole | None:
+    """Recognise a plain rectangle, or an obround of two lines and two half circles."""
+    if len(contour.xyb) != 4:
+        return None
+    rows = contour.xyb.tolist()
+    sides = [(q[0] - p[0], q[1] - p[1]) for p, q in zip(rows, rows[1:] + rows[:1], strict=True)]
+    lengths = [hypot(*side) for side in sides]
+    square = max(abs(a[0] * b[0] + a[1] * b[1]) for a, b in zip(sides, sides[1:] + sides[:1], strict=True))
+    if min(lengths) < 1e-9 or square > RIGHT * min(lengths) * max(lengths):
+        return None
+    at = sum(p[0] for p in rows) / 4, sum(p[1] for p in rows) / 4
+    arcs = [k for k, p in enumerate(rows) if p[2] != 0.0]
+    if not arcs:
+        k = lengths.index(max(lengths))
+        angle = atan2(sides[k][1], sides[k][0])
+        return Hole(HoleShape.RECTANGLE, contour, at, lengths[k - 1], lengths[k], angle)
+    if len(arcs) == 2 and arcs[1] - arcs[0] == 2 and all(abs(abs(rows[k][2]) - 1.0) < 1e-3 for k in arcs):
+        if rows[arcs[0]][2] * rows[arcs[1]][2] < 0 or rows[arcs[0]][2] * bulge.signed_area(contour.xyb) < 0:
+            return None
+        k = arcs[0] - 1
+        angle = atan2(sides[k][1], sides[k][0])
+        return Hole(HoleShape.OBROUND, contour, at, lengths[arcs[0]], lengths[k] + lengths[arcs[0]], angle)
+    return None
 
 
 def _drawn_circle(contour: Contour) -> Hole | None:
-    xyb = contour.xyb
-    if len(xyb) == 2 and abs(abs(xyb[0, 2]) - 1.0) < 1e-9 and abs(xyb[0, 2] - xyb[1, 2]) < 1e-9:
-        (x0, y0, _), (x1, y1, _) = xyb.tolist()
-        return _circle(contour, (x0 + x1) / 2, (y0 + y1) / 2, hypot(x1 - x0, y1 - y0) / 2)
-    if not xyb[:, 2].all():
-        return None
-    found = contour.circle
+    found = contour.circle if contour.xyb[:, 2].all() else None
     return None if found is None else _circle(contour, *found)
 
 
@@ -117,48 +159,49 @@ def _circle(contour: Contour, x: float, y: float, r: float, *, chords: bool = Fa
     return Hole(HoleShape.CIRCLE, contour, (x, y), 2 * r, 2 * r, chords=chords)
 
 
-def _without_flat_joints(xyb: Floats) -> Floats:
-    """Return the closed polyline without empty edges and without vertices in the middle of a straight run."""
-    step = np.roll(xyb[:, :2], -1, axis=0) - xyb[:, :2]
-    xyb = xyb[np.hypot(*step.T) > 1e-9]
-    if len(xyb) < 3:
-        return xyb
-    step = np.roll(xyb[:, :2], -1, axis=0) - xyb[:, :2]
-    before = np.roll(step, 1, axis=0)
-    flat = np.abs(before[:, 0] * step[:, 1] - before[:, 1] * step[:, 0]) <= 1e-4 * np.hypot(*before.T) * np.hypot(
-        *step.T
-    )
-    flat &= (np.sum(before * step, axis=1) > 0) & (xyb[:, 2] == 0.0) & (np.roll(xyb[:, 2], 1) == 0.0)
-    return xyb[~flat] if flat.any() and (~flat).sum() >= 2 else xyb
+def _after(rows: Floats) -> Floats:
+    return np.concatenate((rows[1:], rows[:1]))
 
 
-def _on_edges(xyb: Floats) -> tuple[Floats, Floats]:
-    """Vertices, and the middle of each edge, each of shape (n, 2)."""
-    xy = xyb[:, :2]
-    step = np.roll(xy, -1, axis=0) - xy
-    sag = np.column_stack([step[:, 1], -step[:, 0]]) * (xyb[:, 2:] / 2.0)
-    return xy, xy + step / 2.0 + sag
+def _edges(xyb: Floats) -> _Edges:
+    """Leave out empty edges and vertices in the middle of a straight run."""
+    step = _after(xyb[:, :2]) - xyb[:, :2]
+    length = np.hypot(step[:, 0], step[:, 1])
+    if length.min() <= 1e-9:
+        return _edges(xyb[length > 1e-9])
+    straight = xyb[:, 2] == 0.0
+    before, size = np.concatenate((step[-1:], step[:-1])), np.concatenate((length[-1:], length[:-1]))
+    flat = np.abs(before[:, 0] * step[:, 1] - before[:, 1] * step[:, 0]) <= 1e-4 * size * length
+    flat &= ((before * step).sum(axis=1) > 0) & straight & np.concatenate((straight[-1:], straight[:-1]))
+    if flat.any() and len(flat) - flat.sum() > 2:
+        return _edges(xyb[~flat])
+    return _Edges(xyb, step, length, straight)
 
 
-def _chord_circle(contour: Contour, xyb: Floats) -> Hole | None:
+def _middles(e: _Edges) -> Floats:
+    """Middle of each edge, on its arc, shape (n, 2)."""
+    across = np.column_stack([e.step[:, 1], -e.step[:, 0]])
+    return np.asarray(e.xyb[:, :2] + e.step / 2.0 + across * (e.xyb[:, 2:] / 2.0))
+
+
+def _chord_circle(contour: Contour, e: _Edges) -> Hole | None:
     """Find a circle that all vertices lie on and the edges lie near, or a regular polygon of many sides."""
-    if len(xyb) < 3 or (len(xyb) < LEAST_CHORDS and not xyb[:, 2].any()):
+    if len(e.xyb) < 3 or (len(e.xyb) < LEAST_CHORDS and e.straight.all()):
         return None
-    x0, y0, x1, y1 = contour.bounds
-    if abs((x1 - x0) - (y1 - y0)) > 0.12 * (x1 - x0):  # a 12-gon's box differs by 1 - cos 15° at the most
-        return None
-    corners, middles = _on_edges(xyb)
-    fitted = _circle_through(corners if len(corners) > 4 else np.vstack([corners, middles]))
+    corners = e.xyb[:, :2]
+    width, height = np.ptp(corners, axis=0).tolist()
+    if len(e.xyb) >= LEAST_CHORDS and abs(width - height) > 0.12 * max(width, height):
+        return None  # the box of a 12-gon is square within 1 - cos 15°
+    fitted = _circle_through(corners if len(corners) > 4 else np.vstack([corners, _middles(e)]))
     if fitted is None:
         return None
     x, y, r = fitted
-    off = np.abs(np.hypot(corners[:, 0] - x, corners[:, 1] - y) - r)
-    sag = r - np.hypot(middles[:, 0] - x, middles[:, 1] - y)
-    if off.max() > NEAR_MM or abs(bulge.signed_area(xyb)) < 0.9 * pi * r * r:
+    if np.abs(np.hypot(corners[:, 0] - x, corners[:, 1] - y) - r).max() > NEAR_MM:
         return None
-    side = np.hypot(*(np.roll(corners, -1, axis=0) - corners).T)
-    regular = len(xyb) >= LEAST_SIDES and not xyb[:, 2].any() and float(np.ptp(side)) <= 2 * NEAR_MM
-    if np.abs(sag).max() > NEAR_MM and not regular:
+    middles = _middles(e)
+    sag = np.abs(r - np.hypot(middles[:, 0] - x, middles[:, 1] - y)).max()
+    regular = len(e.xyb) >= LEAST_SIDES and bool(e.straight.all()) and float(np.ptp(e.length)) <= 2 * NEAR_MM
+    if (sag > NEAR_MM and not regular) or abs(bulge.signed_area(e.xyb)) < 0.9 * pi * r * r:
         return None
     return _circle(contour, x, y, r, chords=True)
 
@@ -167,107 +210,109 @@ def _circle_through(xy: Floats) -> tuple[float, float, float] | None:
     """Circle of least algebraic distance (Kåsa 1976) through points (n, 2)."""
     middle = xy.mean(axis=0)
     p = xy - middle
-    squares = np.sum(p * p, axis=1)
-    (a, b), (c, d) = (p.T @ p).tolist()
+    squares = (p * p).sum(axis=1)
+    (a, b), (_, d) = (p.T @ p).tolist()
     e, f = (p.T @ squares / 2.0).tolist()
-    det = a * d - b * c
+    det = a * d - b * b
     if det <= 1e-12 * max(a, d, 1e-300) ** 2:
         return None
-    x, y = (e * d - b * f) / det, (a * f - e * c) / det
-    return float(middle[0] + x), float(middle[1] + y), float(np.sqrt(x * x + y * y + squares.mean()))
+    x, y = (e * d - b * f) / det, (a * f - e * b) / det
+    return float(middle[0]) + x, float(middle[1]) + y, float(np.sqrt(x * x + y * y + squares.mean()))
 
 
-def _hexagon(contour: Contour, xyb: Floats) -> Hole | None:
-    if len(xyb) != 6 or xyb[:, 2].any():
+def _hexagon(contour: Contour, e: _Edges) -> Hole | None:
+    if len(e.xyb) != 6 or not e.straight.all():
         return None
-    x, y = xyb[:, :2].mean(axis=0)
-    ray = xyb[:, :2] - (x, y)
+    x, y = e.xyb[:, :2].mean(axis=0).tolist()
+    ray = e.xyb[:, :2] - (x, y)
     reach = np.hypot(*ray.T)
-    side = np.hypot(*(np.roll(ray, -1, axis=0) - ray).T)
-    if max(np.ptp(reach), np.ptp(side), abs(float(side.mean() - reach.mean()))) > 2 * NEAR_MM:
+    if max(np.ptp(reach), np.ptp(e.length), abs(float(e.length.mean() - reach.mean()))) > 2 * NEAR_MM:
         return None
     across = 2.0 * float(reach.mean())
-    angle = atan2(ray[0, 1], ray[0, 0])
-    return Hole(HoleShape.HEXAGON, contour, (float(x), float(y)), across * cos(pi / 6), across, angle)
+    return Hole(HoleShape.HEXAGON, contour, (x, y), across * cos(pi / 6), across, atan2(ray[0, 1], ray[0, 0]))
 
 
-def _aligned(xyb: Floats) -> tuple[Floats, float, Floats]:
-    """Middle of the box along the longest straight edge, its direction (rad), and its sides, shape (2,)."""
-    step = np.roll(xyb[:, :2], -1, axis=0) - xyb[:, :2]
-    length = np.where(xyb[:, 2] == 0.0, np.hypot(*step.T), 0.0)
-    k = int(np.argmax(length))
-    angle = atan2(step[k, 1], step[k, 0])
+def _box(xyb: Floats, angle: float) -> tuple[Floats, Floats]:
+    """Middle and sides, each of shape (2,), of the box along a direction (rad)."""
     c, s = cos(angle), sin(angle)
     turn = np.array([[c, s], [-s, c]])
     local = np.column_stack([xyb[:, :2] @ turn.T, xyb[:, 2]])
     x0, y0, x1, y1 = bulge.bounds(local, closed=True)
-    return turn.T @ np.array([(x0 + x1) / 2, (y0 + y1) / 2]), angle, np.array([x1 - x0, y1 - y0])
+    return turn.T @ np.array([(x0 + x1) / 2, (y0 + y1) / 2]), np.array([x1 - x0, y1 - y0])
+
+
+def _along_longest(e: _Edges) -> float:
+    k = int(np.argmax(np.where(e.straight, e.length, 0.0)))
+    return atan2(e.step[k, 1], e.step[k, 0])
 
 
 def _box_hole(shape: HoleShape, contour: Contour, middle: Floats, angle: float, sides: Floats) -> Hole:
-    long_first = sides[0] >= sides[1]
-    turned = angle if long_first else angle + pi / 2
+    turned = angle if sides[0] >= sides[1] else angle + pi / 2
     at = float(middle[0]), float(middle[1])
     return Hole(shape, contour, at, float(sides.min()), float(sides.max()), turned)
 
 
-def _rectangle(contour: Contour, xyb: Floats) -> Hole | None:
+def _rectangle(contour: Contour, e: _Edges) -> Hole | None:
     """Four right-angled sides, corners sharp or rounded."""
-    lines = xyb[:, 2] == 0.0
-    if len(xyb) not in (4, 8) or lines.sum() != 4:
+    if len(e.xyb) not in (4, 8) or e.straight.sum() != 4:
         return None
-    step = (np.roll(xyb[:, :2], -1, axis=0) - xyb[:, :2])[lines]
-    unit = step / np.hypot(*step.T)[:, None]
-    if np.abs(np.sum(unit * np.roll(unit, -1, axis=0), axis=1)).max() > 1e-3:
+    unit = e.step[e.straight] / e.length[e.straight, None]
+    if np.abs((unit * _after(unit)).sum(axis=1)).max() > RIGHT:
         return None
-    middle, angle, sides = _aligned(xyb)
-    missing = float(sides[0] * sides[1]) - abs(bulge.signed_area(xyb))
-    fillet = float(np.hypot(*(np.roll(xyb[:, :2], -1, axis=0) - xyb[:, :2])[~lines].T).max()) if len(xyb) == 8 else 0.0
+    angle = _along_longest(e)
+    middle, sides = _box(e.xyb, angle)
+    missing = float(sides[0] * sides[1]) - abs(bulge.signed_area(e.xyb))
+    fillet = float(e.length[~e.straight].max(initial=0.0))
     if missing < -1e-6 or missing > 2 * fillet**2 + NEAR_MM * float(sides.max()):
         return None
     return _box_hole(HoleShape.RECTANGLE, contour, middle, angle, sides)
 
 
-def _obround(contour: Contour, xyb: Floats) -> Hole | None:
+def _obround(contour: Contour, e: _Edges) -> Hole | None:
     """Two straight sides and two half-round ends, the ends as arcs or chords."""
-    if len(xyb) < 4 or (xyb[:, 2] == 0.0).sum() < 2:
+    if len(e.xyb) < 4 or e.straight.sum() < 2:
         return None
-    middle, angle, sides = _aligned(xyb)
+    longest = np.sort(e.length[e.straight])[-2:]
+    if longest[1] - longest[0] > 2 * NEAR_MM:
+        return None
+    angle = _along_longest(e)
+    middle, sides = _box(e.xyb, angle)
     half, r = float(sides[0] - sides[1]) / 2.0, float(sides[1]) / 2.0
     if half <= NEAR_MM:
         return None
-    corners, middles = _on_edges(xyb)
     c, s = cos(angle), sin(angle)
 
     def off(points: Floats) -> Floats:
-        x, y = _turned(points - middle, c, s)
+        p = points - middle
+        x, y = p[:, 0] * c + p[:, 1] * s, p[:, 1] * c - p[:, 0] * s
         return np.asarray(np.hypot(np.maximum(np.abs(x) - half, 0.0), y) - r)
 
-    straight = xyb[:, 2] == 0.0
-    sag = off(middles)
-    if np.abs(off(corners)).max() > NEAR_MM or np.abs(sag[~straight]).max(initial=0.0) > NEAR_MM:
+    if np.abs(off(e.xyb[:, :2])).max() > NEAR_MM:
         return None
-    if (-sag[straight]).max() > max(NEAR_MM, r * (1.0 - cos(pi / LEAST_SIDES))):
+    sag = off(_middles(e))
+    if np.abs(sag[~e.straight]).max(initial=0.0) > NEAR_MM:
+        return None
+    if (-sag[e.straight]).max() > max(NEAR_MM, r * (1.0 - cos(pi / LEAST_SIDES))):
         return None
     hole = _box_hole(HoleShape.OBROUND, contour, middle, angle, sides)
-    chords = int(straight.sum()) > 2
-    return Hole(hole.shape, contour, hole.at, hole.width_mm, hole.length_mm, hole.angle_rad, chords=chords)
+    return replace(hole, chords=int(e.straight.sum()) > 2)
 
 
-def _turned(points: Floats, c: float, s: float) -> Floats:
-    """Points seen along the direction (c, s), shape (2, n)."""
-    return np.array([points[:, 0] * c + points[:, 1] * s, points[:, 1] * c - points[:, 0] * s])
-
-
-def _other(contour: Contour) -> Hole:
-    points = shapely.MultiPoint(bulge.points_along(contour.xyb, closed=True, chord_mm=0.01))
-    box = shapely.oriented_envelope(points)
-    if not isinstance(box, shapely.Polygon):
-        x0, y0, x1, y1 = contour.bounds
-        return Hole(HoleShape.OTHER, contour, ((x0 + x1) / 2, (y0 + y1) / 2), 0.0, hypot(x1 - x0, y1 - y0))
-    a, b, c = np.array(box.exterior.coords)[:3]
-    sides = np.array([np.hypot(*(b - a)), np.hypot(*(c - b))])
-    return _box_hole(HoleShape.OTHER, contour, (a + c) / 2.0, atan2(b[1] - a[1], b[0] - a[0]), sides)
+def _other(contour: Contour, e: _Edges) -> Hole:
+    """Measure any other shape by the smallest of three boxes: upright, along its longest edge, along its spread."""
+    p = e.xyb[:, :2] - e.xyb[:, :2].mean(axis=0)
+    spread = 0.5 * atan2(2.0 * float(p[:, 0] @ p[:, 1]), float(p[:, 0] @ p[:, 0] - p[:, 1] @ p[:, 1]))
+    points = e.xyb[:, :2] if e.straight.all() else np.vstack([e.xyb[:, :2], _middles(e)])
+    angles = np.array([0.0, _along_longest(e), spread])
+    c, s = np.cos(angles), np.sin(angles)
+    seen = np.stack(
+        [np.outer(c, points[:, 0]) + np.outer(s, points[:, 1]), np.outer(c, points[:, 1]) - np.outer(s, points[:, 0])]
+    )
+    lo, hi = seen.min(axis=2), seen.max(axis=2)
+    k = int(np.argmin(np.prod(hi - lo, axis=0)))
+    (x, y), sides, angle = (lo + hi)[:, k] / 2.0, (hi - lo)[:, k], float(angles[k])
+    middle = np.array([c[k] * x - s[k] * y, s[k] * x + c[k] * y])
+    return _box_hole(HoleShape.OTHER, contour, middle, angle, sides)
 
 
 def inscribed_diameter(contour: Contour) -> float:

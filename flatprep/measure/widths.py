@@ -4,12 +4,13 @@ A width is a chord that meets the boundary at right angles at both ends and whos
 other boundary: a maximal inscribed disc that touches at opposite points. Corners, teeth and fillets have none.
 """
 
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 import numpy as np
 
 from flatprep.geom.bulge import Floats
-from flatprep.measure.boundary import Bools, Boundary
+from flatprep.measure.boundary import Bools, Boundary, Ints
 from flatprep.measure.discs import Pieces, both, chord_at, sound
 from flatprep.measure.facing import Features, TooFineError, chords, facing_pairs, features, together
 from flatprep.measure.merge import groups
@@ -97,7 +98,7 @@ def widths(b: Boundary, *, side: int, rows: Bools, most_mm: float) -> tuple[Widt
     if not len(found.width):
         return ()
     pieces = both(sound(b, f, found), tapers(b, f, found))
-    told = [_narrowest(b, f, pieces, group) for group in groups(b, pieces, most_mm)]
+    told = _told(b, f, pieces, groups(b, pieces, most_mm)) if len(pieces) else ()
     return tuple(sorted(told, key=lambda w: (w.width_mm, w.at)))
 
 
@@ -113,67 +114,84 @@ class _Span:
     t_hi: float
 
 
-def _narrowest(b: Boundary, f: Features, s: Pieces, group: list[int]) -> Width:
-    """One web from its pieces: its narrowest stretch, told at the stretch's middle."""
-    best = min(group, key=lambda k: float(s.chord.width[k]))
-    least = float(s.chord.width[best])
-    spans = sorted((_span(b, f, s, k, best) for k in group), key=lambda span: (span.lo + span.hi, span.piece))
-    first = last = next(n for n, span in enumerate(spans) if span.piece == best)
-    while first > 0 and spans[first - 1].width <= least + SAME_WIDTH_MM:
-        first -= 1
-    while last < len(spans) - 1 and spans[last + 1].width <= least + SAME_WIDTH_MM:
-        last += 1
-    stretch = spans[first : last + 1]
-    lo, hi = min(span.lo for span in stretch), max(span.hi for span in stretch)
-    k, t = _at((lo + hi) / 2.0, stretch)
-    p, q = (v[0].tolist() for v in _chord(f, s, k, t))
-    contours, rows = s.contour[k].tolist(), s.row[k].tolist()
-    return Width(
-        width_mm=least,
-        at=((p[0] + q[0]) / 2, (p[1] + q[1]) / 2),
-        extent_mm=hi - lo,
-        ends=((p[0], p[1]), (q[0], q[1])),
-        contours=(min(contours), max(contours)),
-        rows=(rows[0], rows[1]),
-    )
+def _told(b: Boundary, f: Features, s: Pieces, groups_of: list[list[int]]) -> Iterator[Width]:
+    """One width for each group of pieces: its narrowest stretch, told at the stretch's middle."""
+    every = np.arange(len(s))
+    w0, w1 = (np.hypot(*(q - p).T) for p, q in (chord_at(f, s.chord, every, t) for t in (s.t0, s.t1)))
+    stretches = [_stretch(b, s, group, w0, w1) for group in groups_of]
+    chosen = [_middle(stretch) for stretch in stretches]
+    k, t = np.array([k for k, _ in chosen], dtype=np.intp), np.array([t for _, t in chosen])
+    ends = np.hstack(chord_at(f, s.chord, k, t)).tolist()
+    for (px, py, qx, qy), stretch, one in zip(ends, stretches, k.tolist(), strict=True):
+        contours, rows = s.contour[one].tolist(), s.row[one].tolist()
+        yield Width(
+            width_mm=min(span.width for span in stretch),
+            at=((px + qx) / 2, (py + qy) / 2),
+            extent_mm=max(span.hi for span in stretch) - min(span.lo for span in stretch),
+            ends=((px, py), (qx, qy)),
+            contours=(min(contours), max(contours)),
+            rows=(rows[0], rows[1]),
+        )
 
 
-def _span(b: Boundary, f: Features, s: Pieces, k: int, best: int) -> _Span:
-    """Part of a piece within `SAME_WIDTH_MM` of the least width, seen along the side that `best` begins on."""
-    side = _same_side(b, s, k, best)
-    total = float(b.total[s.contour[best, 0]])
-    here = float(s.place[best, 0].mean())
-    # counted from the best piece, the shorter way round
-    begin, close = (float((x - here + total / 2) % total - total / 2) for x in s.place[k, side])
-    t0, t1 = float(s.t0[k]), float(s.t1[k])
-    w0, w1 = (float(np.hypot(*(q - p).T)[0]) for p, q in (_chord(f, s, k, t) for t in (t0, t1)))
+def _stretch(b: Boundary, s: Pieces, group: list[int], w0: Floats, w1: Floats) -> list[_Span]:
+    """Find the pieces of a group that are within `SAME_WIDTH_MM` of its least width and follow each other."""
+    k = np.array(group)
+    best = int(k[np.argmin(s.chord.width[k])])
     room = float(s.chord.width[best]) + SAME_WIDTH_MM
-    share = 1.0 if max(w0, w1) <= room or w0 == w1 else min(1.0, max(0.0, (room - min(w0, w1)) / abs(w1 - w0)))
-    if w1 < w0:
-        t0, begin = t1 + (t0 - t1) * share, close + (begin - close) * share
-    else:
-        t1, close = t0 + (t1 - t0) * share, begin + (close - begin) * share
-    ends = sorted([(begin, t0), (close, t1)])
-    return _Span(k, float(s.chord.width[k]), ends[0][0], ends[1][0], ends[0][1], ends[1][1])
+    spans = _spans(b, s, k, best, room, (w0[k], w1[k]))
+    first = last = next(n for n, span in enumerate(spans) if span.piece == best)
+    while first > 0 and spans[first - 1].width <= room:
+        first -= 1
+    while last < len(spans) - 1 and spans[last + 1].width <= room:
+        last += 1
+    return spans[first : last + 1]
 
 
-def _same_side(b: Boundary, s: Pieces, k: int, best: int) -> int:
-    """Which end of piece k lies on the side of the web that end 0 of `best` lies on."""
-    if s.contour[best, 0] != s.contour[best, 1]:
-        return 0 if s.contour[k, 0] == s.contour[best, 0] else 1
+def _spans(
+    b: Boundary, s: Pieces, k: Ints, best: int, room: float, widths_at_ends: tuple[Floats, Floats]
+) -> list[_Span]:
+    """Parts of pieces that are at most `room` wide, in order along the side that `best` begins on."""
     total = float(b.total[s.contour[best, 0]])
-    away = np.abs((s.place[k].mean(axis=1)[:, None] - s.place[best].mean(axis=1) + total / 2) % total - total / 2)
-    return 0 if away[0, 0] + away[1, 1] <= away[0, 1] + away[1, 0] else 1
+    side = _same_side(b, s, k, best)
+    # counted from the best piece, the shorter way round
+    lo, hi = (_shortest(s.place[k, side] - s.place[best, 0].mean(), total)).T
+    t0, t1 = s.t0[k], s.t1[k]
+    w0, w1 = widths_at_ends
+    with np.errstate(divide="ignore", invalid="ignore"):
+        share = np.clip((room - np.minimum(w0, w1)) / np.abs(w1 - w0), 0.0, 1.0)
+    share = np.where((np.maximum(w0, w1) <= room) | ~np.isfinite(share), 1.0, share)
+    begins = w0 <= w1  # the narrow end is where the piece begins
+    t0, t1 = np.where(begins, t0, t1 + (t0 - t1) * share), np.where(begins, t0 + (t1 - t0) * share, t1)
+    lo, hi = np.where(begins, lo, hi + (lo - hi) * share), np.where(begins, lo + (hi - lo) * share, hi)
+    turned = lo > hi
+    lo, hi = np.where(turned, hi, lo), np.where(turned, lo, hi)
+    t0, t1 = np.where(turned, t1, t0), np.where(turned, t0, t1)
+    columns = (k, s.chord.width[k], lo, hi, t0, t1)
+    rows = zip(*(c.tolist() for c in columns), strict=True)
+    return sorted((_Span(*row) for row in rows), key=lambda span: (span.lo + span.hi, span.piece))
 
 
-def _at(place: float, stretch: list[_Span]) -> tuple[int, float]:
-    """Piece and share of its stretch at a place along the side, or at the nearest end of one."""
+def _same_side(b: Boundary, s: Pieces, k: Ints, best: int) -> Ints:
+    """Which ends of pieces k lie on the side of the web that end 0 of `best` lies on, 0 or 1 each."""
+    if s.contour[best, 0] != s.contour[best, 1]:
+        return np.where(s.contour[k, 0] == s.contour[best, 0], 0, 1)
+    total = float(b.total[s.contour[best, 0]])
+    ends = s.place[k].mean(axis=2)
+    away = np.abs(_shortest(ends[:, :, None] - s.place[best].mean(axis=1), total))
+    return np.where(away[:, 0, 0] + away[:, 1, 1] <= away[:, 0, 1] + away[:, 1, 0], 0, 1)
+
+
+def _shortest(way: Floats, total: float) -> Floats:
+    """Signed ways along a closed line of length `total`, the shorter way round."""
+    return np.asarray(np.mod(way + total / 2, total) - total / 2)
+
+
+def _middle(stretch: list[_Span]) -> tuple[int, float]:
+    """Piece, and share of its chord's stretch, at the middle of a stretch, or at the nearest place a piece has."""
+    place = (min(span.lo for span in stretch) + max(span.hi for span in stretch)) / 2
     nearest = min(stretch, key=lambda span: (max(span.lo - place, place - span.hi, 0.0), span.lo - span.hi))
     if nearest.hi <= nearest.lo:
         return nearest.piece, nearest.t_lo
     share = min(1.0, max(0.0, (place - nearest.lo) / (nearest.hi - nearest.lo)))
     return nearest.piece, nearest.t_lo + (nearest.t_hi - nearest.t_lo) * share
-
-
-def _chord(f: Features, s: Pieces, k: int, t: float) -> tuple[Floats, Floats]:
-    return chord_at(f, s.chord, np.array([k]), np.array([t]))
