@@ -2,29 +2,40 @@
 
 from flatprep.model.finding import Finding, Severity
 from flatprep.rules import (
+    bend_along_grain,
+    bore_size,
+    countersink_too_deep,
     duplicate_line,
     empty_drawing,
+    hole_near_bend,
     inside_corner,
     layer_role,
     loose_island,
+    lost_in_kerf,
     narrow_slot,
     not_measured,
     off_plane,
     open_contour,
     self_crossing,
     several_parts,
+    short_flange,
     small_hole,
     small_part,
+    tap_hole_size,
     text_not_outlined,
     thickness_out_of_range,
     thin_web,
+    thread_engagement,
+    tight_bend,
     tiny_segment,
     too_large,
+    unclear_hole,
     unknown_units,
     unsafe_material,
     unsupported_entity,
     wrong_process,
 )
+from flatprep.rules.accept import accepted
 from flatprep.rules.base import Context, Rule, findings
 
 ALL: tuple[Rule, ...] = (
@@ -49,7 +60,19 @@ ALL: tuple[Rule, ...] = (
     thin_web.RULE,
     narrow_slot.RULE,
     inside_corner.RULE,
+    lost_in_kerf.RULE,
     not_measured.RULE,
+    # bends
+    hole_near_bend.RULE,
+    short_flange.RULE,
+    tight_bend.RULE,
+    bend_along_grain.RULE,
+    # bench work
+    tap_hole_size.RULE,
+    thread_engagement.RULE,
+    bore_size.RULE,
+    countersink_too_deep.RULE,
+    unclear_hole.RULE,
     # material and process
     unsafe_material.RULE,
     wrong_process.RULE,
@@ -60,5 +83,7 @@ _LOUDNESS = {Severity.ERROR: 0, Severity.WARNING: 1, Severity.NOTE: 2}
 
 
 def run(context: Context) -> tuple[Finding, ...]:
-    """Ask every rule; the worst findings first, then in the order of `ALL`."""
-    return tuple(sorted(findings(ALL, context), key=lambda f: _LOUDNESS[f.severity]))
+    """Ask every rule; the worst findings first, then in the order of `ALL`; accepted ones are notes."""
+    accepts = context.job_part.accepts if context.job_part else ()
+    told = (accepted(finding, accepts) for finding in findings(ALL, context))
+    return tuple(sorted(told, key=lambda f: _LOUDNESS[f.severity]))

@@ -1,0 +1,151 @@
+"""Bend lines on a part, and what lies how near to them in the flat."""
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+from itertools import pairwise
+from math import atan2, cos, degrees, hypot, sin
+
+import numpy as np
+import shapely
+from shapely import affinity
+
+from flatprep.geom.polygons import polygon, valid_polygon
+from flatprep.job.values import BendAsk
+from flatprep.measure.holes import Hole, HoleShape
+from flatprep.model.drawing import Curve, Part
+
+CHORD_MM = 0.005
+"""Chord error of the polygon that legs are measured on."""
+HAIR_MM = 1e-6
+"""Half the width that a bend line is given to cut the part in two."""
+
+Point = tuple[float, float]
+
+
+@dataclass(frozen=True, slots=True)
+class BendLine:
+    """A straight bend line in the flat.
+
+    Attributes
+    ----------
+    start, end : tuple of float
+        mm.
+    angle_deg : float
+        By how much the leg is turned.
+    radius_mm : float or None
+        Inside radius, None where nobody said it.
+    said : bool
+        The job asks for it; else it is only drawn.
+    """
+
+    start: Point
+    end: Point
+    angle_deg: float = 90.0
+    radius_mm: float | None = None
+    said: bool = False
+    handle: str = ""
+
+    @property
+    def middle(self) -> Point:
+        """Middle of the line, mm."""
+        return (self.start[0] + self.end[0]) / 2, (self.start[1] + self.end[1]) / 2
+
+    @property
+    def length_mm(self) -> float:
+        """Length of the line."""
+        return hypot(self.end[0] - self.start[0], self.end[1] - self.start[1])
+
+    @property
+    def direction_rad(self) -> float:
+        """Direction from start to end."""
+        return atan2(self.end[1] - self.start[1], self.end[0] - self.start[0])
+
+    def degrees_from(self, grain: str) -> float:
+        """Angle between the line and the drawing's ``x`` or ``y``, 0 to 90 degrees."""
+        off = abs(degrees(self.direction_rad)) % 180.0
+        from_x = min(off, 180.0 - off)
+        return from_x if grain == "x" else 90.0 - from_x
+
+
+def bend_lines(part: Part, asks: Sequence[BendAsk] = ()) -> tuple[BendLine, ...]:
+    """Return the bends that a job asks for, then those that are drawn on the part and that no ask names."""
+    out: list[BendLine] = []
+    taken: set[int] = set()
+    for ask in asks:
+        if ask.line is not None:
+            out.append(BendLine(*ask.line, ask.angle_deg, ask.radius_mm, said=True))
+            continue
+        for curve in (*part.bends, *part.marks):
+            if ask.layer is not None and curve.layer.lower() == ask.layer.lower():
+                taken.add(id(curve))
+                out += _lines(curve, ask)
+    named = [(line.start, line.end) for line in out]
+    for curve in part.bends:
+        if id(curve) not in taken:
+            out += [line for line in _lines(curve, None) if not _among(line, named)]
+    return tuple(out)
+
+
+def _lines(curve: Curve, ask: BendAsk | None) -> Iterator[BendLine]:
+    rows = curve.xyb.tolist()
+    for (x0, y0, b), (x1, y1, _) in pairwise(rows):
+        if b == 0.0 and hypot(x1 - x0, y1 - y0) > 1e-6:
+            angle, radius = (ask.angle_deg, ask.radius_mm) if ask else (90.0, None)
+            yield BendLine((x0, y0), (x1, y1), angle, radius, said=ask is not None, handle=curve.handle)
+
+
+def _among(line: BendLine, named: Sequence[tuple[Point, Point]], tol_mm: float = 0.5) -> bool:
+    """Whether a drawn line is one that the job names by its ends, however it runs or where it stops."""
+    drawn = shapely.LineString([line.start, line.end])
+    return any(shapely.LineString(ends).buffer(tol_mm).contains(drawn) for ends in named)
+
+
+def rim_to_line_mm(hole: Hole, line: BendLine) -> float:
+    """Distance of a hole's rim from a bend line, mm; negative as far as the hole reaches over it."""
+    if hole.shape is HoleShape.CIRCLE:
+        return float(shapely.LineString([line.start, line.end]).distance(shapely.Point(hole.at))) - hole.width_mm / 2.0
+    rim = polygon(hole.contour.xyb, (), chord_mm=CHORD_MM)
+    axis = shapely.LineString([line.start, line.end])
+    apart = float(rim.distance(axis))
+    if apart > 0.0:
+        return apart
+    across = _along_line(rim, line)
+    return -min(abs(float(across.bounds[1])), abs(float(across.bounds[3])))
+
+
+def legs_mm(part: Part, line: BendLine, others: Sequence[BendLine]) -> tuple[float, ...]:
+    """How far the material runs from a bend line on each side where it has any, up to the next bend, mm."""
+    shape = valid_polygon(polygon(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=CHORD_MM))
+    for other in (line, *others):
+        cut = shapely.LineString([other.start, other.end])
+        shape = shape.difference(cut.buffer(HAIR_MM, cap_style="square", join_style="mitre"))
+    local = _along_line(shape, line)
+    out = []
+    for side in (1.0, -1.0):
+        touching = [g for g in getattr(local, "geoms", [local]) if _beside(g, line.length_mm, side)]
+        if touching:
+            out.append(max(abs(side * (g.bounds[3] if side > 0 else g.bounds[1])) for g in touching))
+    return tuple(out)
+
+
+def _beside(shape: shapely.Polygon, length: float, side: float) -> bool:
+    """Whether a region (x along the bend line) lies against the line on that side."""
+    strip = shapely.box(0.02 * length, min(0.0, side * 0.01), 0.98 * length, max(0.0, side * 0.01))
+    y0, y1 = shape.bounds[1], shape.bounds[3]
+    lies = y1 > 0.02 if side > 0 else y0 < -0.02
+    return bool(lies and (y0 + y1) * side > 0 and shape.intersects(strip))
+
+
+def _along_line(shape: shapely.Geometry, line: BendLine) -> shapely.Geometry:
+    """Return the shape as seen with the bend line along x from the origin."""
+    c, s = cos(line.direction_rad), sin(line.direction_rad)
+    x, y = line.start
+    return affinity.affine_transform(shape, [c, s, -s, c, -(c * x + s * y), s * x - c * y])
+
+
+def nearest_place(hole: Hole, line: BendLine) -> Point:
+    """Point of the bend line that is nearest to the hole's centre, mm."""
+    a, d = np.array(line.start), np.array(line.end) - np.array(line.start)
+    t = float(np.clip((np.array(hole.at) - a) @ d / (d @ d), 0.0, 1.0))
+    x, y = (a + t * d).tolist()
+    return (x, y)
