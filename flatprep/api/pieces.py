@@ -8,6 +8,7 @@ from flatprep.base.errors import DrawingError
 from flatprep.base.progress import Progress
 from flatprep.bench.part import BenchPart, bench_part
 from flatprep.bench.pilots import apply_pilots
+from flatprep.geom.polygons import polygon
 from flatprep.job.values import Job, JobPart
 from flatprep.model.drawing import Drawing, Part
 from flatprep.model.layout import Unplaced
@@ -15,6 +16,8 @@ from flatprep.model.linted import Linted, LintReport
 
 _FAULTS_OF_A_COPY = {"self-crossing", "duplicate-line", "off-plane", "open-contour", "layer-role"}
 """A drawing with one of these is not what is cut: a clean copy stands in for it."""
+
+_CHORD_MM = 0.01
 
 
 @dataclass(frozen=True, slots=True)
@@ -77,9 +80,13 @@ def read_job(job: Job, *, jobs: int = 1, progress: Progress | None = None) -> Re
         answer = _of_part(report, ask, answers)
         if answer is None or not answer.drawing.parts:
             why = _why_lost(report, ask) if answer is None else "its drawing holds no closed outline"
-            lost.append(Unplaced(ask.name, (ask.quantity + ask.quantity_opposite) * job.sets, why))
+            lost.append(Unplaced(ask.name, quantity(job, ask), why))
             continue
-        pieces += [_piece(job, ask, answer.drawing, part) for part in answer.drawing.parts]
+        for part in answer.drawing.parts:
+            if polygon(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=_CHORD_MM).is_valid:
+                pieces.append(_piece(job, ask, answer.drawing, part))
+            else:
+                lost.append(Unplaced(part.name, quantity(job, ask), "its outlines cross each other"))
     if not pieces:
         raise DrawingError(f"{job.path}: none of its drawings can be used: {lost[0].why if lost else 'it names none'}")
     return ReadJob(job, report, tuple(pieces), tuple(lost))

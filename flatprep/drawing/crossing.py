@@ -61,7 +61,9 @@ def crossings(rings: Sequence[Chain], shapes: Polygons) -> Crossings:
             shared.append((i, j))
         elif _overlap(shapes[i], shapes[j]):
             crossed.append((i, j))
-    clusters = _clusters(shared)
+    in_strips = {i for pair in shared for i in pair}
+    # a strip that shares an edge with one neighbour and overlaps another belongs to the same outline
+    clusters = _clusters([*shared, *(pair for pair in crossed if in_strips & set(pair))])
     for i, j in crossed:
         place = shapely.intersection(shapely.boundary(shapes[i]), shapely.boundary(shapes[j])).representative_point()
         both = _handles(rings[i]) + _handles(rings[j])

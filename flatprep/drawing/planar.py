@@ -16,6 +16,7 @@ from shapely.geometry.base import BaseGeometry
 from flatprep.drawing.chain import Chain
 from flatprep.drawing.ends import node_ids
 from flatprep.geom.bulge import Floats, Segments, length, points_along, segments, split_arcs
+from flatprep.geom.polygons import polygon
 from flatprep.model.drawing import Curve
 
 CHORD_MM = 0.002
@@ -66,7 +67,7 @@ def regions_of_rings(rings: Sequence[Chain]) -> tuple[Chain, ...]:
     shapes.sort(key=lambda s: -s.area)
     whole: BaseGeometry = Polygon()
     for shape in shapes:
-        inside = whole.intersection(shape).area > 0.5 * shape.area
+        inside = whole.intersection(shape).area > 0.98 * shape.area
         whole = (whole.difference if inside else whole.union)(shape, grid_size=_SNAP_MM)
     return _regions(whole, curves).rings
 
@@ -77,16 +78,14 @@ def even_odd(ring: Chain) -> tuple[Chain, ...]:
     faces = get_parts(polygonize(get_parts(unary_union(line)).tolist()))
     curve = Curve(ring.xyb, closed=True, layer=ring.layers[0], handle=ring.handles[0] if ring.handles else "")
     source = _Source([curve])
-    return tuple(source.ring(np.asarray(face.exterior.coords)[:-1], ring.layers) for face in faces if face.area > 1e-6)
+    return tuple(c for face in faces if face.area > 1e-6 for c in source.rings_of(Polygon(face.exterior), ring.layers))
 
 
 def _regions(whole: BaseGeometry, curves: Sequence[Curve]) -> Regions:
     source = _Source(curves)
     layers = tuple(sorted({c.layer for c in curves}))
     areas = [p for p in get_parts(whole).tolist() if isinstance(p, Polygon) and p.area > 1e-6]
-    rings = tuple(
-        source.ring(np.asarray(edge.coords)[:-1], layers) for area in areas for edge in (area.exterior, *area.interiors)
-    )
+    rings = tuple(ring for area in areas for ring in source.rings_of(area, layers))
     inner: list[Curve] = []
     rest: list[Curve] = []
     boundary = unary_union([area.boundary for area in areas]) if areas else None
@@ -146,8 +145,22 @@ class _Source:
         self._vertices = np.vstack([self._seg.start, self._seg.end])
         self._corners = STRtree(points(self._vertices))
 
-    def ring(self, xy: Floats, layers: tuple[str, ...]) -> Chain:
-        """Exact contour through the points of a chord ring."""
+    def rings_of(self, area: Polygon, layers: tuple[str, ...]) -> list[Chain]:
+        """Contours of a region, exact unless that would make them cross.
+
+        Where an outline touches itself a thousandth of a millimetre decides: there shapely's own points stay.
+        """
+        edges = [np.asarray(edge.coords)[:-1] for edge in (area.exterior, *area.interiors)]
+        exact = [self._exact(xy, layers) for xy in edges]
+        if polygon(exact[0].xyb, [c.xyb for c in exact[1:]], chord_mm=CHORD_MM).is_valid:
+            return exact
+        plain = [np.column_stack([xy, np.zeros(len(xy))]) for xy in edges]
+        return [
+            Chain(rows, chain.handles[:1] * len(rows), layers, closed=True)
+            for rows, chain in zip(plain, exact, strict=True)
+        ]
+
+    def _exact(self, xy: Floats, layers: tuple[str, ...]) -> Chain:
         nxt = np.roll(xy, -1, axis=0)
         near = self._tree.query_nearest(points((xy + nxt) / 2.0), all_matches=False)[1]
         own = self._owner[near]

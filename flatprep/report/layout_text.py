@@ -27,11 +27,9 @@ def _sheet(number: int, sheet: SheetLayout) -> list[str]:
     width = float(sheet.outline[:, 1].max() - sheet.outline[:, 1].min())
     counts = Counter(p.part for p in sheet.placements)
     held = ", ".join(f"{n} x {name}" for name, n in sorted(counts.items()))
-    return [
-        f"{sheet_name(number)}: {sheet.stock}, {sheet.material} {sheet.thickness_mm:g} mm, {length:.2f} x {width:.2f} mm, "
-        f"used length {sheet.used_length_mm:.2f} mm, {100 * sheet.utilisation:.1f} % of it parts",
-        f"  {held}",
-    ]
+    what = f"{sheet_name(number)}: {sheet.stock}, {sheet.material} {sheet.thickness_mm:g} mm"
+    share = f"used length {sheet.used_length_mm:.2f} mm, {100 * sheet.utilisation:.1f} % of it parts"
+    return [f"{what}, {length:.2f} x {width:.2f} mm, {share}", f"  {held}"]
 
 
 def _count(n: int, what: str) -> str:
