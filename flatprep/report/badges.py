@@ -5,12 +5,15 @@ from dataclasses import dataclass
 from math import cos, hypot, radians, sin
 
 from flatprep.model.finding import Finding
-from flatprep.model.work import Step
+from flatprep.model.work import Step, StepKind
 
 Point = tuple[float, float]
 
 MOST_BADGES = 60
 """Above this many places a step gets a badge at its first place only."""
+
+_UNMARKED = frozenset({StepKind.DEBURR, StepKind.FLATNESS})
+"""Done all over the part: a mark would only hide the others."""
 
 _DIRECTIONS_DEG = (60, 120, 300, 240, 20, 160, 340, 200, 90, 270)
 _REACHES = (1.9, 2.9, 4.2, 6.0)
@@ -54,6 +57,7 @@ def finding_badges(findings: Sequence[Finding]) -> tuple[Badge, ...]:
 
 def step_badges(steps: Sequence[Step]) -> tuple[Badge, ...]:
     """One badge a place, with the numbers of all steps done there."""
+    steps = [step for step in steps if step.kind not in _UNMARKED]
     sparing = sum(len(step.at) for step in steps) > MOST_BADGES
     places: dict[Point, list[Step]] = {}
     for step in steps:

@@ -104,6 +104,17 @@ def duration(seconds: float | None) -> str:
     return f"{minutes // 60}{_GAP}h {minutes % 60}{_GAP}min"
 
 
+def capital(words: str) -> str:
+    """Turn the first letter into a capital, leave the rest alone."""
+    return words[:1].upper() + words[1:]
+
+
+def sentence(words: str) -> str:
+    """Return the words with a capital first and one stop last."""
+    stop = "" if words.rstrip().endswith(("?", "!", ".")) or not words.strip() else "."
+    return capital(words.strip()) + stop
+
+
 def counted(count: int, one: str, many: str = "") -> str:
     """``1 part``, ``3 parts``."""
     return f"{count} {one if count == 1 else many or one + 's'}"

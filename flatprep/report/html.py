@@ -18,7 +18,6 @@ from flatprep.report.charts import search_plot
 from flatprep.report.overview import figures, verdict
 from flatprep.report.part_figure import sign
 from flatprep.report.sheet_figure import shape_defs
-from flatprep.report.tools import Tool, tool_list
 from flatprep.report.views import part_view, part_views, shapes_of, sheet_views
 
 
@@ -41,7 +40,7 @@ def report_html(bundle: Bundle) -> str:
         sheets=sheet_views(bundle, shapes),
         shapes=Markup(shape_defs(shapes)),
         plot=Markup(search_plot(bundle.search)),
-        tools=[{"title": tool_title(tool), "tool": tool} for tool in tool_list(bundle.cards)],
+        tools=bundle.checklist.tools if bundle.checklist else (),
         unplaced=bundle.layout.unplaced if bundle.layout else (),
         stock=bundle.estimate.stock if bundle.estimate else (),
         cautions=_cautions(bundle),
@@ -52,11 +51,6 @@ def report_html(bundle: Bundle) -> str:
 def bench_sheet_html(bundle: Bundle, card: PartCard) -> str:
     """Return the printable bench sheet of one part: title block, picture with numbers, steps with boxes to tick."""
     return _render("bench.html.j2", bundle, view=part_view(bundle, card), cautions=_cautions(bundle))
-
-
-def tool_title(tool: Tool) -> str:
-    """``ream 8 H7``."""
-    return f"{tool.kind.value.replace('-', ' ')} {tool.size}".strip()
 
 
 def _cautions(bundle: Bundle) -> tuple[str, ...]:
@@ -94,7 +88,8 @@ def _environment(units: str, currency: str | None) -> Environment:
         "money": lambda amount: show.money(amount, currency),
         "percent": show.percent,
         "counted": show.counted,
-        "capital": lambda words: words[:1].upper() + words[1:],
+        "capital": show.capital,
+        "sentence": show.sentence,
         "sign": lambda kind, words: Markup(sign(kind, str(words))),
         "relative": lambda file: "./" + quote(file),
     }

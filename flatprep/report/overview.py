@@ -91,7 +91,7 @@ def _figures(bundle: Bundle) -> Iterator[Figure]:
 
 def _sheets(layout: Layout, estimate: Estimate | None) -> Figure:
     used = estimate.utilisation if estimate else None
-    return Figure("Sheets", str(len(layout.sheets)), f"{percent(used)} of them is parts" if used is not None else "")
+    return Figure("Sheets", str(len(layout.sheets)), f"{percent(used)} of it is parts" if used is not None else "")
 
 
 def _mass(estimate: Estimate) -> Figure:

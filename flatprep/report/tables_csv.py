@@ -1,4 +1,4 @@
-"""Parts, findings, steps and sheets as CSV tables: one row a thing, plain figures, units in the heads.
+"""Parts, findings and sheets as CSV tables: one row a thing, plain figures, units in the heads.
 
 Decimal points and commas as RFC 4180 has them. A text that a spreadsheet would take for a formula gets an apostrophe in
 front: names come from strangers' drawings.
@@ -61,26 +61,6 @@ def findings_csv(bundle: Bundle) -> str:
         for file, message in bundle.unreadable
     ]
     return _table(head, rows)
-
-
-def steps_csv(bundle: Bundle) -> str:
-    """Return one row a bench step and part; places as ``(x y)`` in mm."""
-    head = (
-        "part", "revision", "quantity", "step", "kind", "size", "tool_dia_mm", "cut_dia_mm", "depth_mm", "count",
-        "side", "places_mm", "note", "caution",
-    )  # fmt: skip
-    return _table(
-        head,
-        (
-            (
-                card.name, card.revision, card.quantity + card.quantity_opposite, s.order, s.kind.value, s.size,
-                s.tool_dia_mm, s.cut_dia_mm, s.depth_mm, s.count, s.side,
-                " ".join(f"({x:.3f} {y:.3f})" for x, y in s.at), s.note, s.caution,
-            )
-            for card in bundle.cards
-            for s in card.steps
-        ),
-    )  # fmt: skip
 
 
 def sheets_csv(bundle: Bundle) -> str:

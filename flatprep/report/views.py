@@ -10,10 +10,10 @@ from markupsafe import Markup
 from flatprep.model.finding import Severity
 from flatprep.model.layout import SheetLayout
 from flatprep.model.work import Step, StepKind
-from flatprep.report.badges import finding_badges, step_badges
+from flatprep.report.badges import Point, finding_badges, step_badges
 from flatprep.report.bundle import Bundle, Offcut, PartCard
 from flatprep.report.charts import share_bar
-from flatprep.report.figures import counted, length, percent, size
+from flatprep.report.figures import counted, length, percent, place, size
 from flatprep.report.part_figure import frame, part_figure
 from flatprep.report.sheet_figure import Shape, sheet_box, sheet_figure
 
@@ -32,17 +32,19 @@ _WORK = {
     StepKind.PRESS: "Press in",
     StepKind.INSPECT: "Inspect",
 }
-_TOOLS = {StepKind.TAP: "Drill first", StepKind.REAM: "Reamer", StepKind.COUNTERSINK: "Countersink", StepKind.DRILL: ""}
+_MOST_PLACES = 12
+"""More are only counted: their marks are in the picture."""
 
 
 @dataclass(frozen=True, slots=True)
 class StepRow:
-    """A bench step and the key its tick is kept under: another drawing or another step has another key."""
+    """A bench step in words."""
 
     step: Step
     tick: str
     title: str
     tool: str
+    places: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,6 +62,8 @@ class PartView:
     size: str
     stuff: str
     tally: str
+    questions: tuple[str, ...]
+    flip: str
     mass_bar: Markup
     cost_bar: Markup
 
@@ -107,6 +111,7 @@ def part_views(bundle: Bundle) -> tuple[PartView, ...]:
 def part_view(bundle: Bundle, card: PartCard, index: int = 0, mass: float = 0.0, cost: float = 0.0) -> PartView:
     """View of one card; `mass` and `cost` are its shares of the job's."""
     part = card.part
+    asked = next((p for p in bundle.checklist.parts if p.name == card.name), None) if bundle.checklist else None
     badges = (*finding_badges(card.findings), *step_badges(card.steps))
     label = f"{card.name}: outline with numbered marks"
     return PartView(
@@ -114,32 +119,50 @@ def part_view(bundle: Bundle, card: PartCard, index: int = 0, mass: float = 0.0,
         card=card,
         picture=Markup(part_figure(part, badges, units=bundle.units, label=label)) if part else Markup(""),
         datum=part is not None and _holds_origin(frame(part)[1]),
-        steps=tuple(step_row(card, step, bundle.units) for step in card.steps),
+        steps=step_rows(card, bundle.units),
         material=card.material_name or card.material,
         pieces=_pieces(card),
         total=card.quantity + card.quantity_opposite,
         size=size(*part.size_mm, bundle.units) if part else "",
         stuff=_stuff(card, bundle.units),
         tally=_tally(card),
+        questions=asked.questions if asked else (),
+        flip=asked.flip if asked else "",
         mass_bar=Markup(share_bar(mass, f"{percent(mass)} of the mass")) if mass else Markup(""),
         cost_bar=Markup(share_bar(cost, f"{percent(cost)} of the cost")) if cost else Markup(""),
     )
 
 
-def step_row(card: PartCard, step: Step, units: str) -> StepRow:
-    """Row of a step."""
-    identity = (card.name, card.revision, card.digest, step.order, step.kind, step.size, step.tool_dia_mm, step.at)
-    tick = hashlib.sha256(repr(identity).encode()).hexdigest()[:12]
-    tool = "" if step.tool_dia_mm is None else _TOOLS.get(step.kind, "Tool")
-    return StepRow(step, tick, step_title(step, units), tool)
+def step_rows(card: PartCard, units: str) -> tuple[StepRow, ...]:
+    """Rows of a card's steps, in order."""
+    first: dict[tuple[Point, ...], int] = {}
+    rows = []
+    for step in card.steps:
+        earlier = first.setdefault(step.at, step.order)
+        title = step_title(step)
+        tool = "" if step.tool.lower() == title.lower() else step.tool
+        rows.append(StepRow(step, _tick(card, step), title, tool, places(step, earlier, units)))
+    return tuple(rows)
 
 
-def step_title(step: Step, units: str = "mm") -> str:
-    """``Countersink M5 ISO 10642``, ``Drill ⌀ 6.8 mm``."""
-    if step.kind is StepKind.DRILL and step.tool_dia_mm is not None:
-        use = f" ({step.size})" if step.size else ""
-        return f"Drill ⌀ {length(step.tool_dia_mm, units)}{use}"
+def step_title(step: Step) -> str:
+    """``Countersink M5 ISO 10642``, and at how many places."""
     return f"{_WORK[step.kind]} {step.size}".strip()
+
+
+def places(step: Step, earlier: int, units: str) -> str:
+    """Where a step is done: its places, or the earlier step that has the same ones."""
+    if len(step.at) > 1 and earlier != step.order:
+        return f"Same places as step {earlier}."
+    listed = ", ".join(place(at, units) for at in step.at[:_MOST_PLACES])
+    more = len(step.at) - _MOST_PLACES
+    return f"At {listed}{f' and {more} more' if more > 0 else ''}." if listed else ""
+
+
+def _tick(card: PartCard, step: Step) -> str:
+    """Key under which the browser keeps the tick: another drawing or another step has another."""
+    identity = (card.name, card.revision, card.digest, step.order, step.kind, step.size, step.tool_dia_mm, step.at)
+    return hashlib.sha256(repr(identity).encode()).hexdigest()[:12]
 
 
 def shapes_of(views: Sequence[PartView]) -> dict[str, Shape]:
@@ -213,7 +236,7 @@ def _pieces(card: PartCard) -> str:
 
 def _stuff(card: PartCard, units: str) -> str:
     thickness = length(card.thickness_mm, units) if card.thickness_mm is not None else ""
-    return " ".join(word for word in (card.material_name or card.material, thickness) if word)
+    return ", ".join(word for word in (card.material_name or card.material, thickness) if word)
 
 
 def _tally(card: PartCard) -> str:

@@ -11,7 +11,7 @@ from flatprep.model.drawing import Contour, Curve, Part
 from flatprep.model.estimate import Estimate, PartEstimate, StockUse
 from flatprep.model.finding import Finding, Severity
 from flatprep.model.layout import Layout, Placement, SheetLayout, Unplaced
-from flatprep.model.work import Checklist, Step, StepKind
+from flatprep.model.work import Checklist, PartSteps, Step, StepKind, Tool
 from flatprep.report.bundle import Bundle, Offcut, PartCard, SearchPoint
 
 
@@ -41,7 +41,17 @@ STEPS = (
     Step(1, StepKind.DEBURR, note="both faces"),
     Step(2, StepKind.DRILL, "M6", 6.6, count=1, at=((20.0, 20.0),), caution="wear eye protection"),
     Step(3, StepKind.DRILL, "", 11.8, count=1, at=((60.0, 30.0),), cut_dia_mm=11.5),
-    Step(4, StepKind.REAM, "12 H7", 12.0, count=1, at=((60.0, 30.0),), side="A"),
+    Step(
+        4,
+        StepKind.REAM,
+        "12 H7",
+        12.0,
+        count=1,
+        at=((60.0, 30.0),),
+        side="A",
+        tool="reamer 12 H7",
+        why="straight after drilling",
+    ),
 )
 
 
@@ -71,7 +81,11 @@ def bundle(card: PartCard) -> Bundle:
     )  # fmt: skip
     return Bundle(
         "wheel hoe", "B", "mm", 2, (card, tray), Layout(4.0, 8.0, (sheet,), (Unplaced("leaf", 1, "too large"),)),
-        estimate, Checklist((), ("Clamp the part.",)), (("bad.dxf", "no entity"),), (("sheet-01.dxf", "sheet 1"),),
+        estimate, Checklist(
+            (PartSteps("leaf", 4, STEPS, 2, ("is the hole of 5 mm for M5?",), "one face is countersunk"),),
+            ("Clamp the part.",),
+            (Tool("reamer 12 H7", 6, ("leaf",)),),
+        ), (("bad.dxf", "no entity"),), (("sheet-01.dxf", "sheet 1"),),
         ("spacing 4 mm",), ("Local rules come first.",),
         (SearchPoint(0.5, 2, 600.0, 0.5), SearchPoint(3.0, 1, 520.0, 0.6)),
         (Offcut(1, 520.0, 8.0, 592.0, 292.0),), "0.1.0",

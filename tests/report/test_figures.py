@@ -66,6 +66,13 @@ def test_area():
     assert figures.area(645.16, "in") == "1\u00a0in²"
 
 
+@pytest.mark.parametrize(
+    ("words", "text"), [("cut it", "Cut it."), ("Cut it. ", "Cut it."), ("why?", "Why?"), ("", "")]
+)
+def test_a_sentence_ends_once(words, text):
+    assert figures.sentence(words) == text
+
+
 def test_percent_and_counts():
     assert figures.percent(0.8123) == "81.2\u00a0%"
     assert figures.counted(1, "piece") == "1 piece"

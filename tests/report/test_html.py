@@ -30,13 +30,18 @@ class Page(HTMLParser):
         return [a for t, a in self.elements if t == tag and named.items() <= a.items()]
 
 
+def ticks(page: Page) -> list[str | None]:
+    """Keys of the steps' tick boxes; the kit list has its own."""
+    return [a["data-tick"] for a in page.all("input", type="checkbox") if "data-kit" not in a]
+
+
 def test_every_part_finding_step_and_sheet_is_there(bundle):
     page = Page(report_html(bundle))
     assert len(page.all("article", class_="part")) == 2
     assert len(page.all("article", class_="sheet-part")) == 1
     keys = [a["data-mark"] for a in page.all("tr") if "data-mark" in a]
     assert keys == ["f1", "f2", "f3", "s1", "s2", "s3", "s4"]
-    assert len(page.all("input", type="checkbox")) == 4
+    assert len(ticks(page)) == 4
     text = " ".join(page.words)
     assert page.all("ul", class_="sheet-list")
     for words in (
@@ -109,16 +114,31 @@ def test_markup_in_names_stays_text(bundle):
 
 
 def test_ticks_change_with_the_drawing_and_with_the_step_only(bundle):
-    def ticks(one):
-        return [a["data-tick"] for a in Page(report_html(one)).all("input", type="checkbox")]
+    def made(one):
+        return ticks(Page(report_html(one)))
 
-    before = ticks(bundle)
+    before = made(bundle)
     leaf, tray = bundle.cards
-    assert ticks(replace(bundle, assumed=("another",))) == before
-    assert not set(ticks(replace(bundle, cards=(replace(leaf, digest="ff"), tray)))) & set(before)
+    assert made(replace(bundle, assumed=("another",))) == before
+    assert not set(made(replace(bundle, cards=(replace(leaf, digest="ff"), tray)))) & set(before)
     other = replace(leaf, steps=(*leaf.steps[:3], replace(leaf.steps[3], size="12 H8")))
-    assert ticks(replace(bundle, cards=(other, tray)))[:3] == before[:3]
-    assert ticks(replace(bundle, cards=(other, tray)))[3] != before[3]
+    assert made(replace(bundle, cards=(other, tray)))[:3] == before[:3]
+    assert made(replace(bundle, cards=(other, tray)))[3] != before[3]
+
+
+def test_questions_sides_kit_and_reasons_are_shown(bundle):
+    words = " ".join(Page(report_html(bundle)).words)
+    for known in ("Is the hole of 5 mm for M5?", "One face is countersunk.", "Reamer 12 H7", "straight after drilling"):
+        assert known in words
+
+
+def test_places_are_said_once(bundle):
+    leaf = bundle.cards[0]
+    two = ((10.0, 10.0), (50.0, 10.0))
+    steps = tuple(replace(step, at=two, count=2) for step in leaf.steps[2:])
+    words = " ".join(Page(report_html(replace(bundle, cards=(replace(leaf, steps=steps),)))).words)
+    assert words.count("At (10,\u00a010), (50,\u00a010).") == 1
+    assert "Same places as step 3." in words
 
 
 def test_lengths_follow_the_job_s_unit(bundle):

@@ -6,11 +6,9 @@ from dataclasses import replace
 import pytest
 
 from flatprep.model.finding import Finding, Severity
-from flatprep.model.work import Step, StepKind
 from flatprep.report.bundle import Bundle, PartCard, SearchPoint
 from flatprep.report.charts import search_plot, share_bar
 from flatprep.report.overview import figures, verdict
-from flatprep.report.tools import tool_list
 
 
 def card_with(*severities: Severity) -> PartCard:
@@ -51,22 +49,6 @@ def test_what_is_not_known_is_said_not_invented(bundle):
     shown = {f.name: f.value for f in figures(unpriced)}
     assert shown["Material cost"] == "not known"
     assert shown["Mass, one set"] == "not known"
-
-
-def test_tools_are_counted_over_all_pieces_and_parts():
-    drill = Step(2, StepKind.DRILL, "M6", 6.6, count=4)
-    other = Step(3, StepKind.DRILL, "", 6.6, count=1)
-    tap = Step(4, StepKind.TAP, "M5", 4.2, count=2)
-    cards = (
-        PartCard("leaf", None, quantity=3, quantity_opposite=2, steps=(Step(1, StepKind.DEBURR), drill, tap)),
-        PartCard("rail", None, quantity=10, steps=(other,)),
-    )
-    tools = tool_list(cards)
-    # by hand: (3 + 2) x 4 + 10 x 1 drilled; (3 + 2) x 2 tapped; deburring takes no listed tool
-    assert [(t.kind, t.size, t.tool_dia_mm, t.operations, t.parts) for t in tools] == [
-        (StepKind.DRILL, "", 6.6, 30, ("leaf", "rail")),
-        (StepKind.TAP, "M5", 4.2, 10, ("leaf",)),
-    ]
 
 
 def test_a_bar_is_as_long_as_its_share():

@@ -4,7 +4,7 @@ import csv
 import io
 from dataclasses import replace
 
-from flatprep.report.tables_csv import findings_csv, parts_csv, sheets_csv, steps_csv
+from flatprep.report.tables_csv import findings_csv, parts_csv, sheets_csv
 
 
 def rows(text: str) -> list[dict[str, str]]:
@@ -28,15 +28,6 @@ def test_findings_and_unreadable_drawings(bundle):
     assert (table[0]["measured"], table[0]["limit"], table[0]["x_mm"]) == ("5.0", "6.0", "20.0")
     assert (table[2]["x_mm"], table[2]["number"]) == ("", "3")
     assert table[3]["drawing"] == "bad.dxf"
-
-
-def test_steps(bundle):
-    table = rows(steps_csv(bundle))
-    assert [(row["step"], row["kind"], row["size"]) for row in table][1:] == [
-        ("2", "drill", "M6"), ("3", "drill", ""), ("4", "ream", "12 H7"),
-    ]  # fmt: skip
-    assert table[1]["places_mm"] == "(20.000 20.000)"
-    assert {row["quantity"] for row in table} == {"6"}
 
 
 def test_a_sheet_adds_up_to_its_pieces(bundle):

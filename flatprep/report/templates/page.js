@@ -59,7 +59,7 @@
   const ticks = all("input[data-tick]");
   const count = () => {
     for (const place of all("[data-count]")) {
-      const own = ticks.filter((t) => place.dataset.count === "" || t.closest("#" + place.dataset.count));
+      const own = ticks.filter((t) => place.dataset.count === "" ? !("kit" in t.dataset) : t.closest("#" + place.dataset.count));
       place.textContent = own.filter((t) => t.checked).length + " of " + own.length + " done";
     }
   };
