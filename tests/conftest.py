@@ -6,6 +6,8 @@ from pathlib import Path
 import pytest
 from hypothesis import settings
 
+# a failure of flatprep itself is to be seen whole in a test
+os.environ["FLATPREP_TRACEBACK"] = "1"
 settings.register_profile("house", deadline=None, max_examples=60, derandomize=True)
 settings.load_profile("house")
 

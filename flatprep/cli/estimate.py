@@ -5,13 +5,15 @@ from pathlib import Path
 
 import click
 
+from flatprep.api.breaks import break_table
 from flatprep.api.nest import nest_job
 from flatprep.api.stored import stored_layout
 from flatprep.api.work import estimate_job
 from flatprep.cli.jobs import job_argument, open_job, read_drawings
-from flatprep.cli.options import output_format, said_about_parts, search_budget
+from flatprep.cli.options import said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
 from flatprep.nest.problem import Budget
+from flatprep.report.estimate_csv import estimate_csv
 from flatprep.report.estimate_json import estimate_document
 from flatprep.report.estimate_text import estimate_text
 
@@ -19,12 +21,16 @@ from flatprep.report.estimate_text import estimate_text
 @click.command("estimate")
 @job_argument
 @click.option("--layout", "layout_file", type=click.Path(path_type=Path), help="a layout.json, instead of a new nest")
+@click.option("--breaks", "with_breaks", is_flag=True, help="also what one set costs when several are made together")
 @said_about_parts
 @search_budget
-@output_format
+@click.option(
+    "--format", "form", type=click.Choice(["text", "json", "csv"]), default="text", help="text, JSON or a table"
+)
 def command(
     job_file: Path,
     layout_file: Path | None,
+    with_breaks: bool,
     seconds: float,
     steps: int | None,
     seed: int,
@@ -34,13 +40,20 @@ def command(
 ) -> None:
     """Mass, cut length, pierces and material cost, per part and for the job."""
     job = open_job(job_file, **said)  # type: ignore[arg-type]
+    budget = Budget(seconds, steps, seed, jobs)
     with progress_line() as progress:
         read = read_drawings(job, jobs, progress)
         if layout_file is not None:
             layout = stored_layout(layout_file)
         elif job.stock:
-            layout = nest_job(read, Budget(seconds, steps, seed, jobs), progress=progress).layout
+            layout = nest_job(read, budget, progress=progress).layout
         else:
             layout = None
+        breaks = break_table(read, budget, progress=progress) if with_breaks else ()
     result = estimate_job(read, layout)
-    click.echo(json.dumps(estimate_document(result), indent=1) if form == "json" else estimate_text(result))
+    if form == "json":
+        click.echo(json.dumps(estimate_document(result, breaks), indent=1))
+    elif form == "csv":
+        click.echo(estimate_csv(result), nl=False)
+    else:
+        click.echo(estimate_text(result, breaks, units=job.units))

@@ -56,6 +56,14 @@ class Root(click.Group):
         except KeyboardInterrupt:
             click.echo("stopped", err=True)
             ctx.exit(130)
+        except (click.ClickException, click.exceptions.Exit, click.Abort, BrokenPipeError):
+            raise
+        except Exception as err:
+            if os.environ.get("FLATPREP_TRACEBACK"):
+                raise
+            click.echo(f"error: flatprep itself failed ({type(err).__name__}: {err})", err=True)
+            click.echo("  try: set FLATPREP_TRACEBACK=1, run it again, and report what it prints", err=True)
+            ctx.exit(ExitStatus.UNUSABLE)
 
 
 @click.group(cls=Root, context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 100})

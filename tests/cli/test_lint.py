@@ -187,3 +187,15 @@ def test_help_loads_no_heavy_library():
         "assert not heavy, heavy",
     ]
     subprocess.run([sys.executable, "-c", "\n".join(lines)], check=True, capture_output=True)
+
+
+def test_a_failure_of_flatprep_itself_is_told_without_a_traceback(run, tmp_path, monkeypatch):
+    def broken(*_args, **_options):
+        raise ZeroDivisionError("a bug")
+
+    monkeypatch.delenv("FLATPREP_TRACEBACK")
+    monkeypatch.setattr("flatprep.cli.lint.lint_paths", broken)
+    got = run("lint", drawn(tmp_path, plate(8)))
+    assert got.exit_code == 2
+    assert "a bug" in got.stderr
+    assert "Traceback" not in got.output
