@@ -1,17 +1,20 @@
 """The bench work of a job: per part the steps in order, and the kit list."""
 
 from collections.abc import Sequence
+from dataclasses import replace
 from itertools import groupby
 
 from flatprep.bench.bends import BendLines, bend_lines, check_bends
 from flatprep.bench.cautions import job_cautions, step_caution
-from flatprep.bench.match import Target, check_counts, targets
+from flatprep.bench.finish import coated
+from flatprep.bench.match import Found, check_counts, places_of, targets
 from flatprep.bench.ops import Op
 from flatprep.bench.part import BenchPart
 from flatprep.bench.plan import plan, reason
+from flatprep.bench.questions import questions
+from flatprep.bench.sides import opposite_note, side_bound
 from flatprep.model.work import Checklist, PartSteps, Step, Tool
-
-Found = tuple[tuple[Target, ...], ...]
+from flatprep.practice.asked import all_work
 
 
 def checklist(parts: Sequence[BenchPart]) -> Checklist:
@@ -31,7 +34,7 @@ def checklist(parts: Sequence[BenchPart]) -> Checklist:
 
 def _drawing(group: list[BenchPart]) -> list[PartSteps]:
     """Return the steps of the parts of one drawing, which share the job's words."""
-    found = [(bench, tuple(targets(bench, work) for work in bench.work)) for bench in group]
+    found = [(bench, places_of(bench)) for bench in group]
     bends = [(bench, bend_lines(bench)) for bench in group]
     check_counts(found)
     check_bends(bends)
@@ -39,9 +42,13 @@ def _drawing(group: list[BenchPart]) -> list[PartSteps]:
 
 
 def _part(bench: BenchPart, places: Found, bends: tuple[BendLines, ...]) -> PartSteps:
-    ops = plan(bench, places, bends)
+    full = replace(bench, work=all_work(bench.holes, bench.work, bench.texts, bench.units))
+    drawn = tuple(targets(full, work) for work in full.work[len(bench.work) :])
+    ops = [coated(opposite_note(op, bench), bench) for op in plan(full, (*places, *drawn), bends)]
     steps = tuple(_step(n, op, bench) for n, op in enumerate(ops, 1))
-    return PartSteps(bench.name, bench.quantity, steps, bench.quantity_opposite)
+    bound = side_bound(full.work, bench.bends, bench.good_face)
+    flip = f"not to be turned over to save material: {bound}" if bound else ""
+    return PartSteps(bench.name, bench.quantity, steps, bench.quantity_opposite, questions(bench, full.work), flip)
 
 
 def _step(order: int, op: Op, bench: BenchPart) -> Step:

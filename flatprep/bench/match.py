@@ -1,7 +1,4 @@
-"""Which holes of a part a piece of bench work is meant for."""
-
-from dataclasses import dataclass
-from math import hypot
+"""The holes of a part that bench work is meant for, held against what the job says of them."""
 
 import shapely
 
@@ -13,23 +10,15 @@ from flatprep.geom.bulge import Floats
 from flatprep.job.values import Point, Work
 from flatprep.measure.holes import Hole, HoleShape
 from flatprep.model.drawing import Part
+from flatprep.practice.targets import Target, nearest_hole, targets_of
 
-SAME_DIA_MM = 0.02
-"""A drawn diameter this near to the one asked for is meant: covers inches rounded to thousandths, and chord circles."""
-OFF_CENTRE_MM = 0.1
+Found = tuple[tuple[Target, ...], ...]
+"""The places of each piece of work of a part."""
 
 
-@dataclass(frozen=True, slots=True)
-class Target:
-    """A place that is worked on, and the hole drawn there, if there is one."""
-
-    at: Point
-    hole: Hole | None
-
-    @property
-    def drawn_mm(self) -> float | None:
-        """Drawn diameter (a hexagon's across flats), None where there is no hole."""
-        return self.hole.width_mm if self.hole else None
+def places_of(bench: BenchPart) -> Found:
+    """Return the places of each piece of the job's work on a part; see `targets`."""
+    return tuple(targets(bench, work) for work in bench.work)
 
 
 def targets(bench: BenchPart, work: Work) -> tuple[Target, ...]:
@@ -38,28 +27,20 @@ def targets(bench: BenchPart, work: Work) -> tuple[Target, ...]:
     Raises
     ------
     JobError
-        When a place lies off the part, or in a hole but not at its centre.
+        When a place is not on the material and no hole has its centre there.
     """
-    if work.hole_mm is not None:
-        return tuple(Target(h.at, h) for h in bench.holes if _fits(h, work, work.hole_mm))
-    return tuple(_at(bench, work, point) for point in work.at)
+    found = targets_of(bench.holes, work)
+    for target in found:
+        if target.hole is None and not _on_material(bench.part, target.at):
+            near = nearest_hole(bench.holes, target.at)
+            hint = f"the nearest hole is at ({near.at[0]:.3f}, {near.at[1]:.3f})" if near else "the drawing has no hole"
+            shown = f"({target.at[0]:g}, {target.at[1]:g})"
+            raise JobError(f"{work.where}: at = {shown}: no hole has its centre there, and it is not on the part", hint)
+    return found
 
 
-def _fits(hole: Hole, work: Work, diameter_mm: float) -> bool:
-    shape = HoleShape.HEXAGON if work.kind == "nut_pocket" and hole.shape is HoleShape.HEXAGON else HoleShape.CIRCLE
-    return hole.shape is shape and abs(hole.width_mm - diameter_mm) <= SAME_DIA_MM
-
-
-def _at(bench: BenchPart, work: Work, point: Point) -> Target:
-    near = min(bench.holes, key=lambda h: _apart(h.at, point), default=None)
-    if near is not None and _apart(near.at, point) <= OFF_CENTRE_MM:
-        return Target(near.at, near)
-    ring = shapely.Polygon(*_rings(bench.part))
-    if ring.contains(shapely.Point(point)):
-        return Target(point, None)
-    shown = f"({point[0]:g}, {point[1]:g})"
-    hint = f"the nearest hole is at ({near.at[0]:.3f}, {near.at[1]:.3f})" if near else "the drawing has no hole"
-    raise JobError(f"{work.where}: at = {shown}: no hole has its centre there, and it is not on the material", hint)
+def _on_material(part: Part, point: Point) -> bool:
+    return bool(shapely.Polygon(*_rings(part)).contains(shapely.Point(point)))
 
 
 def _rings(part: Part) -> tuple[Floats, list[Floats]]:
@@ -67,11 +48,7 @@ def _rings(part: Part) -> tuple[Floats, list[Floats]]:
     return outer, holes
 
 
-def _apart(a: Point, b: Point) -> float:
-    return hypot(a[0] - b[0], a[1] - b[1])
-
-
-def check_counts(group: list[tuple[BenchPart, tuple[tuple[Target, ...], ...]]]) -> None:
+def check_counts(group: list[tuple[BenchPart, Found]]) -> None:
     """Hold what was found in all parts of a drawing against what the job says.
 
     Parameters

@@ -3,10 +3,10 @@
 from dataclasses import dataclass, replace
 from enum import IntEnum
 
-from flatprep.bench.match import Target
 from flatprep.bench.part import BenchPart
 from flatprep.job.values import Pilots, Point, Work
 from flatprep.model.work import StepKind
+from flatprep.practice.targets import Target
 
 CLOSE_MM = 0.05
 """A hole this near to what a drill would leave needs no drill."""
@@ -87,7 +87,7 @@ class Op:
 
 def spoilt(op: Op, why: str) -> Op:
     """Return the operation marked as not possible as drawn: it stays in the list, so that nobody overlooks it."""
-    return replace(op, problem=why).with_note(f"NOT POSSIBLE AS DRAWN: {why}")
+    return replace(op, problem=why, note="; ".join(t for t in (f"NOT POSSIBLE AS DRAWN: {why}", op.note) if t))
 
 
 def late(op: Op) -> Op:

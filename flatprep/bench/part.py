@@ -28,6 +28,8 @@ class BenchPart:
         Texts of the drawing, for its callouts.
     pilots : Pilots
         What is cut where bench work opens a hole up.
+    units : str
+        The drawing's unit, which bare numbers in its texts are in.
     where : str
         Place in the job file, for messages; parts of one drawing share it.
     """
@@ -46,6 +48,7 @@ class BenchPart:
     finish: str = ""
     good_face: str | None = None
     where: str = ""
+    units: str = "mm"
 
     @cached_property
     def holes(self) -> tuple[Hole, ...]:
@@ -65,11 +68,16 @@ class BenchPart:
 
 
 def bench_part(
-    ask: JobPart, part: Part, *, sets: int = 1, pilots: Pilots = Pilots.AS_DRAWN, texts: Sequence[Text] = ()
-) -> BenchPart:
-    """Return the bench's view of a part of a job; quantities become those of all sets."""
+    ask: JobPart, part: Part, *, sets: int = 1, pilots: Pilots = Pilots.AS_DRAWN, texts: Sequence[Text] = (),
+    units: str = "mm",
+) -> BenchPart:  # fmt: skip
+    """Return the bench's view of a part of a job; quantities become those of all sets.
+
+    `texts` are the drawing's, whose callouts are read as work; bare numbers in them are in `units`.
+    """
     return BenchPart(
         name=part.name, part=part, process=ask.process, quantity=ask.quantity * sets, material=ask.material,
         thickness_mm=ask.thickness_mm, work=ask.work, bends=ask.bends, texts=tuple(texts), pilots=pilots,
         quantity_opposite=ask.quantity_opposite * sets, finish=ask.finish, good_face=ask.good_face, where=ask.where,
+        units=units,
     )  # fmt: skip

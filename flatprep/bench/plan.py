@@ -6,11 +6,12 @@ from dataclasses import replace
 from flatprep.base.errors import FlatprepError, JobError
 from flatprep.bench import fits, screws, threads
 from flatprep.bench.bends import BendLines, bend_ops, near_bend
-from flatprep.bench.match import SAME_DIA_MM, Target
+from flatprep.bench.match import Found
 from flatprep.bench.ops import WHY, Ask, Op, Rank, late
 from flatprep.bench.part import BenchPart
 from flatprep.job.values import Point, Work
 from flatprep.model.work import StepKind
+from flatprep.practice.targets import SAME_DIA_MM, Target
 
 OPS: Mapping[str, Callable[[Ask], list[Op]]] = {
     "tap": threads.tap_ops,
@@ -19,15 +20,15 @@ OPS: Mapping[str, Callable[[Ask], list[Op]]] = {
     "bore": fits.bore_ops,
     "clearance": screws.clearance_ops,
     "drill": screws.drill_ops,
-    "countersink": screws.countersink_ops,
-    "counterbore": screws.counterbore_ops,
+    "countersink": screws.sink_ops,
+    "counterbore": screws.sink_ops,
     "nut_pocket": screws.nut_pocket_ops,
     "press": screws.press_ops,
 }
 """By the kind of work; the keys are those of ``[[part.work]]``."""
 
 _MAKES_HOLE = ("tap", "thread_insert", "ream", "bore", "clearance", "drill")
-_SITS_IN_HOLE = {"countersink": screws.countersink_ops, "counterbore": screws.counterbore_ops}
+_SITS_IN_HOLE = ("countersink", "counterbore")
 _WAITS = (StepKind.TAP, StepKind.REAM, StepKind.BORE, StepKind.THREAD_INSERT)
 _RAISES_BURR = (
     StepKind.DRILL, StepKind.REAM, StepKind.BORE, StepKind.COUNTERSINK, StepKind.COUNTERBORE, StepKind.TAP,
@@ -35,7 +36,7 @@ _RAISES_BURR = (
 )  # fmt: skip
 
 
-def plan(bench: BenchPart, found: tuple[tuple[Target, ...], ...], bends: tuple[BendLines, ...]) -> list[Op]:
+def plan(bench: BenchPart, found: Found, bends: tuple[BendLines, ...]) -> list[Op]:
     """Return the operations of a part in order.
 
     Parameters
@@ -78,7 +79,7 @@ def operations(ask: Ask, made: Op | None = None) -> list[Op]:
     work = ask.work
     try:
         if made is not None:
-            ops = [replace(op, cut_dia_mm=made.cut_dia_mm) for op in _SITS_IN_HOLE[work.kind](ask, made.tool_dia_mm)]
+            ops = [replace(op, cut_dia_mm=made.cut_dia_mm) for op in screws.sink_ops(ask, made.tool_dia_mm)]
         else:
             ops = OPS[work.kind](ask)
     except JobError:
@@ -88,7 +89,7 @@ def operations(ask: Ask, made: Op | None = None) -> list[Op]:
     return [op.with_note(work.note) if work.note and op is ops[-1] and work.kind != "press" else op for op in ops]
 
 
-def _made_by_others(ask: Ask, found: tuple[tuple[Target, ...], ...]) -> Op | None:
+def _made_by_others(ask: Ask, found: Found) -> Op | None:
     """Return the operation of another piece of work that finishes the holes, if there is one."""
     if ask.work.kind not in _SITS_IN_HOLE:
         return None

@@ -1,21 +1,14 @@
 """Operations for screws that pass through: clearance, countersink, counterbore, plain drilling, pockets, pressing."""
 
-import re
 from dataclasses import replace
-from math import radians, tan
 
 from flatprep.bench.ops import CLOSE_MM, Ask, Op, Rank, open_up, spoilt
 from flatprep.model.work import StepKind
-from flatprep.practice.sinks import sink_depth_mm, sink_room
+from flatprep.practice.sinks import Sink, find_sink, sink_room
 from flatprep.profile.hardware.clearance import find_clearance, split_series
 from flatprep.profile.hardware.drills import find_drill
-from flatprep.profile.hardware.heads import find_counterbore, find_countersink
-from flatprep.profile.hardware.names import tidy
 from flatprep.profile.hardware.nuts import find_nut
 from flatprep.profile.hardware.rules import section
-
-_PLAIN_SINK = re.compile(r"[ØøD]?\s*(\d+(?:\.\d+)?)\s*(?:mm)?\s*(?:x|by|at)?\s*(60|75|82|90|100|110|120)\s*(?:°|deg)?")
-_PLAIN_BORE = re.compile(r"[ØøD]?\s*(\d+(?:\.\d+)?)\s*(?:mm)?\s*(?:x|by|depth)\s*(\d+(?:\.\d+)?)\s*(?:mm)?(?:\s*deep)?")
 
 
 def clearance_ops(ask: Ask) -> list[Op]:
@@ -53,77 +46,51 @@ def through_ops(ask: Ask, diameter_mm: float, size: str, drill: str, note: str) 
     ]  # fmt: skip
 
 
-def countersink_ops(ask: Ask, hole_mm: float | None = None) -> list[Op]:
-    """Return the hole (unless other work makes it) and its sink.
+def sink_ops(ask: Ask, hole_mm: float | None = None) -> list[Op]:
+    """Return the hole (unless other work makes it), and its countersink or counterbore.
 
     Parameters
     ----------
     hole_mm
         Finished diameter of the hole where other work makes it.
     """
-    plain = _PLAIN_SINK.fullmatch(tidy(ask.work.size))
-    if plain:
-        dia, angle, name, head = float(plain[1]), float(plain[2]), f"{float(plain[1]):g} x {plain[2]}°", ""
-        holes: list[Op] = []
-        hole, cut = hole_mm or ask.drawn_mm or 0.0, ask.drawn_mm
-    else:
-        found = find_countersink(ask.work.size)
-        dia, angle, name = found.sink_dia_mm, found.angle_deg, found.name
-        head = f"head {found.head_dia_mm:.4g} mm sharp, sink by {found.sink_rule}"
-        under = find_clearance(found.screw).medium_mm
-        holes = [] if hole_mm else through_ops(ask, under, f"{found.screw} clearance", "", "medium series")
-        hole, cut = hole_mm or max(under, ask.drawn_mm or 0.0), _cuttable(ask, under)
-    sink = _sink(ask, name, dia, angle, hole).with_note(head)
-    return [*holes, replace(sink, cut_dia_mm=None if hole_mm else cut)]
+    sink = find_sink(ask.work.kind, ask.work.size, hole_mm or ask.drawn_mm, ask.work.depth_mm)
+    holes: list[Op] = []
+    cut = ask.drawn_mm
+    if sink.through_mm is not None and hole_mm is None:
+        holes = through_ops(ask, sink.through_mm, f"{sink.screw} clearance", "", "medium series")
+        cut = _cuttable(ask, sink.through_mm)
+    op = _countersink(ask, sink) if sink.angle_deg is not None else _counterbore(ask, sink)
+    return [*holes, _in_sheet(replace(op, cut_dia_mm=cut), sink, ask.bench.thickness_mm)]
 
 
 def _cuttable(ask: Ask, diameter_mm: float) -> float | None:
     return diameter_mm if diameter_mm >= ask.bench.least_hole_mm - 1e-3 else None
 
 
-def _sink(ask: Ask, name: str, dia_mm: float, angle_deg: float, hole_mm: float) -> Op:
-    depth = sink_depth_mm(dia_mm, hole_mm, angle_deg)
-    thickness = ask.bench.thickness_mm
-    op = Op(
-        StepKind.COUNTERSINK, Rank.COUNTERSINK, ask.at, name, dia_mm, f"countersink {angle_deg:g}°, {dia_mm:.4g} mm up",
-        depth, None, ask.work.side, f"to {dia_mm:.2f} mm at the face, {angle_deg:g}°",
+def _countersink(ask: Ask, sink: Sink) -> Op:
+    note = f"to {sink.dia_mm:.2f} mm at the face, {sink.angle_deg:g}°"
+    tool = f"countersink {sink.angle_deg:g}°, {sink.dia_mm:.4g} mm up"
+    return Op(
+        StepKind.COUNTERSINK, Rank.COUNTERSINK, ask.at, sink.name, sink.dia_mm, tool, sink.depth_mm,
+        side=ask.work.side, note="; ".join(t for t in (note, sink.note) if t),
     )  # fmt: skip
-    if thickness is None:
+
+
+def _counterbore(ask: Ask, sink: Sink) -> Op:
+    return Op(
+        StepKind.COUNTERBORE, Rank.COUNTERBORE, ask.at, sink.name, sink.dia_mm, f"counterbore {sink.dia_mm:g} mm",
+        sink.depth_mm, side=ask.work.side, note=sink.note,
+    )  # fmt: skip
+
+
+def _in_sheet(op: Op, sink: Sink, thickness_mm: float | None) -> Op:
+    if thickness_mm is None:
         return op
-    room = sink_room(depth, thickness)
+    room = sink_room(sink.depth_mm, thickness_mm)
     if room.through:
-        widest = hole_mm + 2.0 * (thickness - room.land_needed_mm) * tan(radians(angle_deg) / 2.0)
-        return spoilt(
-            op, f"the sink is {depth:.2f} mm deep in {thickness:g} mm sheet, which holds {widest:.2f} mm at most"
-        )
-    return op.with_note(f"{room.land_mm:.2f} mm of straight hole left under the sink") if room.thin else op
-
-
-def counterbore_ops(ask: Ask, hole_mm: float | None = None) -> list[Op]:
-    """Return the hole (unless other work makes it) and its counterbore."""
-    plain = _PLAIN_BORE.fullmatch(tidy(ask.work.size))
-    if plain:
-        dia, depth, name, holes, cut = (
-            float(plain[1]),
-            float(plain[2]),
-            f"{plain[1]} x {plain[2]} deep",
-            [],
-            ask.drawn_mm,
-        )
-    else:
-        found = find_counterbore(ask.work.size)
-        dia, depth, name = found.bore_mm, ask.work.depth_mm or found.depth_mm, f"{found.screw} ISO 4762"
-        under = find_clearance(found.screw).medium_mm
-        holes = [] if hole_mm else through_ops(ask, under, f"{found.screw} clearance", "", "medium series")
-        cut = _cuttable(ask, under)
-    op = Op(
-        StepKind.COUNTERBORE, Rank.COUNTERBORE, ask.at, name, dia, f"counterbore {dia:g} mm", depth,
-        None if hole_mm else cut, ask.work.side,
-    )  # fmt: skip
-    thickness = ask.bench.thickness_mm
-    if thickness is not None and depth >= thickness - 1e-3:
-        op = spoilt(op, f"{depth:g} mm deep in {thickness:g} mm sheet: the head falls through")
-    return [*holes, op]
+        return spoilt(op, f"{sink.depth_mm:.2f} mm deep in {thickness_mm:g} mm sheet")
+    return op.with_note(f"only {room.land_mm:.2f} mm of straight hole left below") if room.thin else op
 
 
 def nut_pocket_ops(ask: Ask) -> list[Op]:

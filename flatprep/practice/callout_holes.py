@@ -1,0 +1,165 @@
+"""The holes that a drawing's callouts stand for: by their leaders, else by what is nearest and can be meant."""
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from math import cos, hypot, radians, sin
+
+from flatprep.job.values import Point, Work
+from flatprep.measure.holes import Hole, HoleShape
+from flatprep.model.drawing import Text
+from flatprep.practice.callouts import Callout, parse_callouts
+from flatprep.practice.targets import SAME_DIA_MM, apart_mm
+from flatprep.profile.hardware.clearance import find_clearance
+from flatprep.profile.hardware.fits import parse_fit
+from flatprep.profile.hardware.heads import all_countersinks, find_countersink
+from flatprep.profile.hardware.names import UnknownHardwareError
+from flatprep.profile.hardware.threads import find_thread
+
+REACH_HEIGHTS = 4.0
+"""A text without a leader speaks of a hole whose rim is no farther than so many heights of its letters."""
+LEAST_REACH_MM = 10.0
+LETTER_WIDTH = 0.75
+"""Width of a letter over its height, about."""
+LEADER_SLACK_MM = 1.0
+
+
+@dataclass(frozen=True, slots=True)
+class DrawnWork:
+    """What the callouts of a drawing ask for, and what has to be asked back."""
+
+    work: tuple[Work, ...]
+    questions: tuple[str, ...]
+
+
+def drawn_work(holes: Sequence[Hole], texts: Iterable[Text], unit: str = "mm") -> DrawnWork:
+    """Return the bench work that callouts ask for; what is not certain becomes a question, not work.
+
+    Parameters
+    ----------
+    holes
+        Of one part.
+    texts
+        Of its drawing.
+    unit
+        The drawing's unit, which bare numbers in the texts are in.
+    """
+    work: list[Work] = []
+    questions: list[str] = []
+    round_holes = [h for h in holes if h.shape is HoleShape.CIRCLE]
+    for text in texts:
+        for callout in parse_callouts(text.text, unit):
+            made, question = _work(callout, text, round_holes)
+            work += made
+            questions += question
+    return DrawnWork(tuple(_joined(work)), tuple(dict.fromkeys(questions)))
+
+
+def _work(callout: Callout, text: Text, holes: Sequence[Hole]) -> tuple[list[Work], list[str]]:
+    said = f'the drawing says "{" ".join(text.text.split())}"'
+    named = _pointed_at(text, holes)
+    near = named or _nearest(text, holes, callout)
+    if near is None:
+        return [], []
+    if not _can_be_meant(callout, near.width_mm):
+        return [], [f"{said} at a hole of {near.width_mm:.4g} mm: is that hole meant?"]
+    unnamed = _heads_to_choose(callout)
+    if unnamed:
+        return [], [f"{said}: which head? {unnamed}"]
+    alike = [h for h in holes if abs(h.width_mm - near.width_mm) <= SAME_DIA_MM]
+    if callout.count is None:
+        meant = [near]
+    elif callout.count == len(alike):
+        meant = alike
+    else:
+        return [], [f"{said}: holes of {near.width_mm:.4g} mm drawn: {len(alike)}, asked for: {callout.count}"]
+    one = Work(
+        callout.kind, callout.size, at=tuple(h.at for h in meant), side=callout.side, where=said,
+        depth_mm=callout.depth_mm if callout.kind != "counterbore" else None, note="as the drawing's callout asks",
+    )  # fmt: skip
+    return [one], []
+
+
+def _pointed_at(text: Text, holes: Sequence[Hole]) -> Hole | None:
+    """Return the hole that a leader of the text points to: its tip on the rim or inside."""
+    found = [
+        (apart_mm(hole.at, tip), k)
+        for tip in text.points_to
+        for k, hole in enumerate(holes)
+        if apart_mm(hole.at, tip) <= hole.width_mm / 2.0 + LEADER_SLACK_MM
+    ]
+    return holes[min(found)[1]] if found else None
+
+
+def _nearest(text: Text, holes: Sequence[Hole], callout: Callout) -> Hole | None:
+    """Return the nearest hole in reach that can be meant, else the nearest in reach."""
+    if text.points_to:
+        return None
+    reach = max(LEAST_REACH_MM, REACH_HEIGHTS * text.height_mm)
+    rims = [(_to_text_mm(text, h.at) - h.width_mm / 2.0, k) for k, h in enumerate(holes)]
+    in_reach = sorted((max(rim, 0.0), k) for rim, k in rims if rim <= reach)
+    meant = [k for _, k in in_reach if _can_be_meant(callout, holes[k].width_mm)]
+    if meant:
+        return holes[meant[0]]
+    return holes[in_reach[0][1]] if in_reach else None
+
+
+def _to_text_mm(text: Text, point: Point) -> float:
+    """Return the distance of a point from the box of a text that runs from its insertion point, mm."""
+    turn = radians(text.turn_deg)
+    dx, dy = point[0] - text.at[0], point[1] - text.at[1]
+    along, up = dx * cos(turn) + dy * sin(turn), dy * cos(turn) - dx * sin(turn)
+    long = max(len(line) for line in text.text.splitlines()) * LETTER_WIDTH * text.height_mm
+    return hypot(max(-along, 0.0, along - long), max(-up, 0.0, up - text.height_mm))
+
+
+def _can_be_meant(callout: Callout, drawn_mm: float) -> bool:
+    """Tell whether a hole of that diameter may be drawn for what the callout asks: a pilot, or the size itself."""
+    low, high = _sizes(callout)
+    return low - SAME_DIA_MM <= drawn_mm <= high + SAME_DIA_MM
+
+
+def _sizes(callout: Callout) -> tuple[float, float]:
+    if callout.kind == "tap":
+        thread = find_thread(callout.size)
+        return 0.4 * thread.major_mm, thread.major_mm
+    if callout.kind in ("ream", "bore"):
+        size = parse_fit(callout.size).first
+        return 0.5 * size.nominal_mm, size.most_mm
+    if callout.kind == "drill" and callout.diameter_mm is not None:
+        return callout.diameter_mm * 0.9, callout.diameter_mm + 0.1
+    if " x " in callout.size:
+        return 0.2, float(callout.size.split(" x ")[0])
+    return 0.2, _through_mm(callout)
+
+
+def _through_mm(callout: Callout) -> float:
+    """Return the largest hole under the head of a screw, mm."""
+    return find_clearance(callout.size.split()[0]).coarse_mm
+
+
+def _heads_to_choose(callout: Callout) -> str:
+    """Return the heads that a countersink callout may mean, with their sinks; empty where it is clear."""
+    if callout.kind != "countersink" or " x " in callout.size:
+        return ""
+    try:
+        find_countersink(callout.size)
+    except UnknownHardwareError:
+        screw = callout.size.split()[0]
+        heads = [c for c in all_countersinks() if c.screw == screw]
+        return ", ".join(f"{c.standard} (sink {c.sink_dia_mm:.4g} mm)" for c in heads) or "none is known for that screw"
+    return ""
+
+
+def _joined(work: list[Work]) -> list[Work]:
+    """Join work of the same kind and size that several texts ask for, hole by hole."""
+    out: dict[tuple[object, ...], Work] = {}
+    for one in work:
+        key = (one.kind, one.size, one.side, one.depth_mm)
+        if key in out:
+            places = tuple(dict.fromkeys((*out[key].at, *one.at)))
+            out[key] = Work(
+                one.kind, one.size, at=places, side=one.side, where=out[key].where, depth_mm=one.depth_mm, note=one.note
+            )
+        else:
+            out[key] = one
+    return list(out.values())
