@@ -341,12 +341,15 @@ def test_outer_runs_left_and_holes_run_right(tmp_path):
     assert signed_area(part.outer.xyb) > 0 > signed_area(part.holes[0].xyb)
 
 
-def test_sheet_border_around_parts_is_not_cut(tmp_path):
+@pytest.mark.parametrize("turn_deg", [0, 33.7])
+def test_sheet_border_around_parts_is_not_cut(tmp_path, turn_deg):
     def paint(msp):
         box(msp, -10, -10, 400, 200)
         for x in (0, 100, 200):
             box(msp, x, 0, 80, 50)
             msp.add_circle((x + 40, 25), 10)
+        for entity in msp:
+            entity.transform(Matrix44.z_rotate(radians(turn_deg)))
 
     drawing = read(drawn(tmp_path, paint))
     assert [p.area_mm2 for p in drawing.parts] == pytest.approx([PLATE] * 3)
