@@ -25,6 +25,12 @@ from flatprep.report.layout_json import PartSource, layout_document, sheet_name
 from flatprep.report.sheet_svg import sheet_svg
 
 OnBetter = Callable[[Layout], None]
+Stop = Callable[[], bool]
+
+
+def never() -> bool:
+    """Do not stop."""
+    return False
 
 
 @dataclass(frozen=True, slots=True)
@@ -38,9 +44,16 @@ class Nested:
 
 
 def nest_job(
-    read_job: ReadJob, budget: Budget, *, progress: Progress | None = None, on_better: OnBetter | None = None
+    read_job: ReadJob,
+    budget: Budget,
+    *,
+    progress: Progress | None = None,
+    on_better: OnBetter | None = None,
+    stop: Stop = never,
 ) -> Nested:
     """Lay a job's parts on its stock.
+
+    `stop` is asked now and then: once it says True, the search ends with the best it has.
 
     Raises
     ------
@@ -48,7 +61,7 @@ def nest_job(
         When the job names no stock, or a remnant's outline cannot be used.
     """
     ask = nest_ask(read_job)
-    layout = nest(ask, budget, progress or Silent(), on_better)
+    layout = nest(ask, budget, progress or Silent(), on_better, stop)
     layout = replace(layout, unplaced=(*layout.unplaced, *read_job.lost))
     return Nested(read_job, layout, ask, spacing_warnings(read_job.job))
 

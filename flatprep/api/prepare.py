@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from flatprep import __version__
-from flatprep.api.nest import Nested, nest_job, write_layout
+from flatprep.api.nest import Nested, Stop, nest_job, never, write_layout
 from flatprep.api.pieces import Piece, ReadJob, quantity
 from flatprep.api.work import checklist_job, estimate_job
 from flatprep.base.files import make_folder, write_whole
@@ -52,7 +52,9 @@ class Prepared:
         return sum(u.count for u in self.nested.layout.unplaced) if self.nested else 0
 
 
-def prepare_job(read: ReadJob, budget: Budget, *, progress: Progress | None = None) -> Prepared:
+def prepare_job(
+    read: ReadJob, budget: Budget, *, progress: Progress | None = None, stop: Stop | None = None
+) -> Prepared:
     """Check, nest, list the bench work and estimate a job.
 
     Raises
@@ -67,7 +69,9 @@ def prepare_job(read: ReadJob, budget: Budget, *, progress: Progress | None = No
     def better(layout: Layout) -> None:
         points.append(_point(layout, time.monotonic() - began))
 
-    nested = nest_job(read, budget, progress=progress, on_better=better) if read.job.stock else None
+    nested = None
+    if read.job.stock:
+        nested = nest_job(read, budget, progress=progress, on_better=better, stop=stop or never)
     money = estimate_job(read, nested.layout if nested else None)
     return Prepared(read, steps, money, nested, _bundle(read, steps, money, nested, points))
 

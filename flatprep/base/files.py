@@ -2,9 +2,16 @@
 
 import os
 import tempfile
+from collections.abc import Iterator
+from contextlib import contextmanager
 from pathlib import Path
 
 from flatprep.base.errors import OutputError
+
+try:
+    import fcntl
+except ImportError:  # pragma: no cover - not on every system
+    fcntl = None  # type: ignore[assignment]
 
 
 def write_whole(path: Path, data: str | bytes) -> None:
@@ -49,6 +56,31 @@ def make_folder(path: Path) -> None:
         raise OutputError(
             f"{path}: cannot be written into ({err.strerror or err})", "choose another folder with --out"
         ) from err
+
+
+@contextmanager
+def claimed(folder: Path) -> Iterator[None]:
+    """Make a folder and keep other runs out of it; the claim ends with the process, however it ends.
+
+    Raises
+    ------
+    OutputError
+        When it cannot be written into, or another run is writing into it.
+    """
+    make_folder(folder)
+    if fcntl is None:  # a system without such locks
+        yield
+        return
+    handle = os.open(folder, os.O_RDONLY)
+    try:
+        fcntl.flock(handle, fcntl.LOCK_EX | fcntl.LOCK_NB)
+    except OSError as err:
+        os.close(handle)
+        raise OutputError(f"{folder}: another run is writing into it", "wait for it, or choose another folder") from err
+    try:
+        yield
+    finally:
+        os.close(handle)
 
 
 def _umask() -> int:

@@ -7,6 +7,8 @@ import click
 
 from flatprep.api.nest import Nested, nest_job, write_layout
 from flatprep.base.errors import ExitStatus
+from flatprep.base.files import claimed
+from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, open_job, read_drawings
 from flatprep.cli.options import output_format, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
@@ -35,17 +37,18 @@ def command(
 ) -> None:
     """Lay a job's parts on its stock; writes layout.json and a DXF and SVG for each sheet."""
     job = open_job(job_file, **said)  # type: ignore[arg-type]
-    with progress_line() as progress:
+    with claimed(folder), progress_line() as progress:
         read = read_drawings(job, jobs, progress)
-        nested = nest_job(read, Budget(seconds, steps, seed, jobs), progress=progress)
-    for warning in nested.warnings:
-        click.echo(f"warning: {warning}", err=True)
-    write_layout(nested, folder)
+        with stoppable() as stop:
+            nested = nest_job(read, Budget(seconds, steps, seed, jobs), progress=progress, stop=stop)
+            for warning in nested.warnings:
+                click.echo(f"warning: {warning}", err=True)
+            write_layout(nested, folder)
     if form == "json":
         click.echo(json.dumps(json.loads((folder / "layout.json").read_text()), indent=1))
     else:
         click.echo(layout_text(nested.layout, folder))
-    ctx.exit(status(nested))
+    ctx.exit(stop.exit_status if stop() else status(nested))
 
 
 def status(nested: Nested) -> ExitStatus:

@@ -6,6 +6,8 @@ import click
 
 from flatprep.api.prepare import Prepared, prepare_job, write_prepared
 from flatprep.base.errors import ExitStatus
+from flatprep.base.files import claimed
+from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, open_job, read_drawings
 from flatprep.cli.options import said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
@@ -32,14 +34,16 @@ def command(
 ) -> None:
     """Check, nest, list the bench work and estimate a job, all into one folder with report.html."""
     job = open_job(job_file, **said)  # type: ignore[arg-type]
-    with progress_line() as progress:
+    with claimed(folder), progress_line() as progress:
         read = read_drawings(job, jobs, progress)
-        done = prepare_job(read, Budget(seconds, steps, seed, jobs), progress=progress)
-        for warning in done.nested.warnings if done.nested else ():
-            click.echo(f"warning: {warning}", err=True)
-        write_prepared(done, folder)
+        with stoppable() as stop:
+            done = prepare_job(read, Budget(seconds, steps, seed, jobs), progress=progress, stop=stop)
+            for warning in done.nested.warnings if done.nested else ():
+                click.echo(f"warning: {warning}", err=True)
+            write_prepared(done, folder)
     click.echo(summary(done, folder))
-    ctx.exit(ExitStatus.FINDINGS if done.loud or done.unplaced else ExitStatus.CLEAN)
+    status = ExitStatus.FINDINGS if done.loud or done.unplaced else ExitStatus.CLEAN
+    ctx.exit(stop.exit_status if stop() else status)
 
 
 def summary(done: Prepared, folder: Path) -> str:

@@ -17,12 +17,19 @@ class Clock:
         A budget that makes the result the same on every machine.
     now
         Where the time comes from.
+    stop
+        Asked whenever the budget is: True ends the search early.
     """
 
     def __init__(
-        self, seconds: float = 30.0, steps: int | None = None, now: Callable[[], float] = time.monotonic
+        self,
+        seconds: float = 30.0,
+        steps: int | None = None,
+        now: Callable[[], float] = time.monotonic,
+        stop: Callable[[], bool] = lambda: False,
     ) -> None:
         self._now = now
+        self.stopped = stop
         self._start = now()
         self.seconds = seconds
         self.steps = steps
@@ -45,5 +52,5 @@ class Clock:
         return self.elapsed_s / max(self.seconds, 1e-9)
 
     def passed(self) -> bool:
-        """Tell whether the budget is used up."""
-        return self.spent >= 1.0
+        """Tell whether the budget is used up, or the search is to stop."""
+        return self.spent >= 1.0 or self.stopped()

@@ -28,6 +28,7 @@ def nest(
     budget: Budget = USUAL,
     progress: Progress = QUIET,
     on_better: Callable[[Layout], None] | None = None,
+    stop: Callable[[], bool] = lambda: False,
 ) -> Layout:
     """Lay the parts of a job on its stock.
 
@@ -42,6 +43,8 @@ def nest(
         Told what is being done.
     on_better
         Called with each better layout of the whole job, verified.
+    stop
+        Asked several times a second: True ends the search with the best so far.
 
     Returns
     -------
@@ -57,7 +60,7 @@ def nest(
         raise ValueError("spacing and margin must not be negative")
     item_groups, hopeless = split(ask)
     groups = [prepare_group(items, ask) for items in item_groups]
-    job = _Job(ask, hopeless, progress, on_better)
+    job = _Job(ask, hopeless, progress, on_better, stop)
     job.lay_first(groups, budget)
     job.improve(budget)
     return job.layout()
@@ -72,7 +75,9 @@ class _Job:
         hopeless: Sequence[Unplaced],
         progress: Progress,
         on_better: Callable[[Layout], None] | None,
+        stop: Callable[[], bool],
     ) -> None:
+        self._stopped = stop
         self._ask, self._hopeless, self._progress, self._on_better = ask, hopeless, progress, on_better
         self._started = time.monotonic()
         self._answers: list[Answer] = []
@@ -102,9 +107,9 @@ class _Job:
             share = weights[number] / sum(weights[number:])
             left = budget.seconds - ENDING_S - (time.monotonic() - self._started)
             steps = None if budget.steps is None else max(1, int(budget.steps * weights[number] / sum(weights)))
-            if left <= 0.0 and steps is None:
+            if (left <= 0.0 and steps is None) or self._stopped():
                 return
-            effort = Effort(Clock(left * share, steps), budget.seed, budget.jobs)
+            effort = Effort(Clock(left * share, steps, stop=self._stopped), budget.seed, budget.jobs)
             improve(answer, self._ask.margin_mm, effort, partial(self._take, number))
 
     def _take(self, number: int, answer: Answer) -> None:
@@ -123,10 +128,11 @@ class _Job:
         if self._on_better is not None:
             self._on_better(layout)
 
-    @staticmethod
-    def _stop(until: float, budget: Budget) -> Callable[[], bool]:
+    def _stop(self, until: float, budget: Budget) -> Callable[[], bool]:
         """Whether the constructive rule has had its time; with a budget in steps the clock is not looked at."""
-        return (lambda: False) if budget.steps is not None else (lambda: time.monotonic() >= until)
+        if budget.steps is not None:
+            return self._stopped
+        return lambda: time.monotonic() >= until or self._stopped()
 
 
 def difficulty(answer: Answer) -> float:
