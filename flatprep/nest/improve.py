@@ -157,5 +157,5 @@ def _shared(clock: Clock, parts: int) -> Clock:
     if parts == 1:
         return clock
     if clock.steps is not None:
-        return Clock(steps=max(1, clock.steps // parts))
-    return Clock(max(clock.seconds - clock.elapsed_s, 0.0) / parts)
+        return Clock(steps=max(1, clock.steps // parts), stop=clock.stopped)
+    return Clock(max(clock.seconds - clock.elapsed_s, 0.0) / parts, stop=clock.stopped)
