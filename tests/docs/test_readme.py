@@ -14,6 +14,8 @@ from click import Context
 
 from flatprep.cli.main import Root
 from flatprep.job import load, parts, stocks, works
+from flatprep.profile import material_load, process_load
+from flatprep.profile.process import FEATURES
 
 ROOT = Path(__file__).parents[2]
 README = (ROOT / "README.md").read_text(encoding="utf-8")
@@ -80,6 +82,12 @@ def test_the_python_example_runs(folder):
 def test_every_command_has_an_example():
     for name in Root().list_commands(Context(Root())):
         assert f"flatprep {name}" in README, name
+
+
+@pytest.mark.parametrize("keys", [process_load.KEYS, material_load.KEYS, FEATURES])
+def test_every_key_of_a_profile_is_explained(keys):
+    reference = README.partition("## Profiles")[2].partition("\n## ")[0]
+    assert [key for key in keys if f"`{key}`" not in reference] == []
 
 
 @pytest.mark.parametrize(
