@@ -1,6 +1,5 @@
 """Where every piece is during the search, and how heavily each pair's collision weighs."""
 
-from collections.abc import Sequence
 from typing import NamedTuple
 
 import numpy as np
@@ -28,6 +27,8 @@ class Board(NamedTuple):
         The field: rectangles x0, y0, x1, y1 that hold pieces, mm.
     movable : ndarray, shape (1,), int64
         Number of pieces that may move.
+    turning : ndarray, shape (s,), int64
+        1 for shapes whose pieces may at present turn to any angle, else 0.
     """
 
     variant: Ints
@@ -41,21 +42,33 @@ class Board(NamedTuple):
     weight: Floats
     rect: Floats
     movable: Ints
+    turning: Ints
 
 
-def new_board(variants: Sequence[int], rect: Floats, fixed: int = 0) -> Board:
+class Ground(NamedTuple):
+    """All that the kernels of the search read and write."""
+
+    outlines: Outlines
+    tables: Tables
+    board: Board
+
+
+def new_board(variants: Ints, rect: Floats, shapes: int, fixed: int = 0) -> Board:
     """Board of pieces that lie nowhere yet."""
     n = len(variants)
-    line = [np.zeros(n) for _ in range(4)]
     return Board(
-        np.array(variants, dtype=np.int64),
-        np.zeros(n, dtype=np.int64),
-        np.zeros((n, 2)),
-        *line,
-        np.zeros((n, n)),
-        np.ones((n, n)),
-        np.array(rect, dtype=np.float64),
-        np.array([n - fixed], dtype=np.int64),
+        variant=variants.copy(),
+        home=np.zeros(n, dtype=np.int64),
+        at=np.zeros((n, 2)),
+        left=np.zeros(n),
+        right=np.zeros(n),
+        low=np.zeros(n),
+        high=np.zeros(n),
+        loss=np.zeros((n, n)),
+        weight=np.ones((n, n)),
+        rect=rect.copy(),
+        movable=np.array([n - fixed], dtype=np.int64),
+        turning=np.zeros(shapes, dtype=np.int64),
     )
 
 
@@ -72,10 +85,9 @@ def put(outlines: Outlines, board: Board, i: int, v: int, x: float, y: float) ->
 
 
 @bare
-def weighted_loss(
-    outlines: Outlines, tables: Tables, board: Board, i: int, v: int, x: float, y: float, limit: float
-) -> float:
+def weighted_loss(ground: Ground, i: int, v: int, x: float, y: float, limit: float) -> float:
     """Weighted loss (mm²) of piece i in variant v at (x, y); may stop as soon as it is above `limit`."""
+    outlines, tables, board = ground.outlines, ground.tables, ground.board
     left, low = x + outlines.rings.box[v, 0], y + outlines.rings.box[v, 1]
     right, high = x + outlines.rings.box[v, 2], y + outlines.rings.box[v, 3]
     total = 0.0
@@ -90,8 +102,9 @@ def weighted_loss(
 
 
 @bare
-def settle(outlines: Outlines, tables: Tables, board: Board, i: int) -> None:
+def settle(ground: Ground, i: int) -> None:
     """Compute the losses of piece i with all others anew."""
+    outlines, tables, board = ground.outlines, ground.tables, ground.board
     x, y, v = board.at[i, 0], board.at[i, 1], board.variant[i]
     for j in range(len(board.variant)):
         loss = 0.0
@@ -108,11 +121,12 @@ def settle(outlines: Outlines, tables: Tables, board: Board, i: int) -> None:
 
 
 @bare
-def settle_all(outlines: Outlines, tables: Tables, board: Board) -> float:
+def settle_all(ground: Ground) -> float:
     """Compute every loss anew and return their sum, mm²."""
+    board = ground.board
     total = 0.0
     for i in range(board.movable[0]):
-        settle(outlines, tables, board, i)
+        settle(ground, i)
     for i in range(board.movable[0]):
         for j in range(i):
             total += board.loss[i, j]

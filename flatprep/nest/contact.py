@@ -17,7 +17,7 @@ FADE = 5.0
 def is_inside(rings: Rings, v: int, px: float, py: float) -> bool:
     """Tell whether a point (mm, in the frame of variant v) lies in its material: the even-odd rule."""
     odd = False
-    for e in range(rings.at[v], rings.at[v + 1]):
+    for e in range(rings.at[v, 0], rings.at[v, 1]):
         y0 = rings.edge[e, 1]
         y1 = rings.edge[e, 3]
         if (y0 > py) != (y1 > py):
@@ -33,7 +33,7 @@ def edges_cross(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
     edge = rings.edge
     left, low = rings.box[b, 0] + dx, rings.box[b, 1] + dy
     right, high = rings.box[b, 2] + dx, rings.box[b, 3] + dy
-    for i in range(rings.at[a], rings.at[a + 1]):
+    for i in range(rings.at[a, 0], rings.at[a, 1]):
         x0, y0, x1, y1 = edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]
         i_left, i_right = min(x0, x1), max(x0, x1)
         i_low, i_high = min(y0, y1), max(y0, y1)
@@ -41,7 +41,7 @@ def edges_cross(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
             continue
         ux, uy = x1 - x0, y1 - y0
         sx, sy = x0 - dx, y0 - dy
-        for j in range(rings.at[b], rings.at[b + 1]):
+        for j in range(rings.at[b, 0], rings.at[b, 1]):
             cx, cy, ex, ey = edge[j, 0], edge[j, 1], edge[j, 2], edge[j, 3]
             c_left = ux * (cy - sy) - uy * (cx - sx) > 0.0
             e_left = ux * (ey - sy) - uy * (ex - sx) > 0.0
@@ -66,8 +66,8 @@ def overlap(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
         return False
     if edges_cross(rings, a, b, dx, dy):
         return True
-    at_a = rings.at[a]
-    at_b = rings.at[b]
+    at_a = rings.at[a, 0]
+    at_b = rings.at[b, 0]
     if is_inside(rings, a, rings.edge[at_b, 0] + dx, rings.edge[at_b, 1] + dy):
         return True
     return is_inside(rings, b, rings.edge[at_a, 0] - dx, rings.edge[at_a, 1] - dy)
@@ -93,7 +93,7 @@ def _corners_from_edges(rings: Rings, a: int, b: int, dx: float, dy: float, cap:
     """Least squared distance, at most cap², of the corners of b moved by (dx, dy) from the edges of a."""
     edge = rings.edge
     best = cap * cap
-    for j in range(rings.at[b], rings.at[b + 1]):
+    for j in range(rings.at[b, 0], rings.at[b, 1]):
         px, py = edge[j, 0] + dx, edge[j, 1] + dy
         if (
             px < rings.box[a, 0] - cap
@@ -102,7 +102,7 @@ def _corners_from_edges(rings: Rings, a: int, b: int, dx: float, dy: float, cap:
             or py > rings.box[a, 3] + cap
         ):
             continue
-        for i in range(rings.at[a], rings.at[a + 1]):
+        for i in range(rings.at[a, 0], rings.at[a, 1]):
             best = min(best, squared_distance(px, py, edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]))
     return best
 
@@ -119,8 +119,8 @@ def gap(rings: Rings, a: int, b: int, dx: float, dy: float, cap: float) -> float
 def depth(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> float:
     """Lower bound of the move that frees b from a, mm: the deepest overlap of two inner circles, 0 if none."""
     deepest = 0.0
-    for i in range(outlines.pole_at[a], outlines.pole_at[a + 1]):
-        for j in range(outlines.pole_at[b], outlines.pole_at[b + 1]):
+    for i in range(outlines.pole_at[a, 0], outlines.pole_at[a, 1]):
+        for j in range(outlines.pole_at[b, 0], outlines.pole_at[b, 1]):
             ux = outlines.pole[j, 0] + dx - outlines.pole[i, 0]
             uy = outlines.pole[j, 1] + dy - outlines.pole[i, 1]
             reach = outlines.pole[i, 2] + outlines.pole[j, 2] - deepest
@@ -149,10 +149,10 @@ def collision_loss(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> 
     larger = max(outlines.size[sa, 1], outlines.size[sb, 1])
     reach = REACH_SHARE * larger
     area = FLOOR_SHARE * larger * min(outlines.size[sa, 2], outlines.size[sb, 2])
-    for i in range(outlines.pole_at[a], outlines.pole_at[a + 1]):
+    for i in range(outlines.pole_at[a, 0], outlines.pole_at[a, 1]):
         px, py = outlines.pole[i, 0] - dx, outlines.pole[i, 1] - dy
         radius = outlines.pole[i, 2]
-        for j in range(outlines.pole_at[b], outlines.pole_at[b + 1]):
+        for j in range(outlines.pole_at[b, 0], outlines.pole_at[b, 1]):
             ux = outlines.pole[j, 0] - px
             uy = outlines.pole[j, 1] - py
             both = radius + outlines.pole[j, 2]
@@ -163,4 +163,4 @@ def collision_loss(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> 
             if deep < reach:
                 deep = reach * reach / (2.0 * reach - deep)
             area += deep * min(radius, outlines.pole[j, 2])
-    return math.sqrt(area) * outlines.size[sa, 0] * outlines.size[sb, 0]
+    return float(math.sqrt(area) * outlines.size[sa, 0] * outlines.size[sb, 0])

@@ -1,16 +1,18 @@
 """The search's working state: one board, layouts to go back to, tries to untangle it."""
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
 
 from flatprep.geom.bulge import Floats
-from flatprep.nest.board import Board, new_board, put, settle_all
+from flatprep.nest.board import Board, Ground, new_board, put, settle_all
 from flatprep.nest.clock import Clock
 from flatprep.nest.field import Field
 from flatprep.nest.outlines import Ints, Outlines
-from flatprep.nest.tables import Tables, no_tables
-from flatprep.nest.untangle import copy_places, lay_again, sweeps
+from flatprep.nest.tables import no_tables, prepare_tables
+from flatprep.nest.turning import turn_into, with_own_variants
+from flatprep.nest.untangle import new_try, remember, sweeps
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -20,7 +22,9 @@ class Spots:
     Attributes
     ----------
     variant, home : ndarray, shape (n,), int64
-        Variant and rectangle of each piece, fixed ones included.
+        Packed variant and rectangle of each piece, fixed ones included.
+    turn : ndarray, shape (n,), float64
+        Turn of each piece, degrees; another than its variant's where it turned freely.
     at : ndarray, shape (n, 2), float64
         Origins in the plane of the field, mm.
     rects : int
@@ -33,6 +37,7 @@ class Spots:
 
     variant: Ints
     home: Ints
+    turn: Floats
     at: Floats
     rects: int
     length_mm: float
@@ -49,27 +54,53 @@ class Engine:
 
     Parameters
     ----------
-    outlines, tables
-        Variants of all shapes, the field's fixed ones last, and the grids of their pairs.
+    outlines
+        Packed variants of all shapes, the field's fixed ones last.
+    free
+        For each of these shapes, whether it may turn to any angle.
     field
         The containers.
-    variants : ndarray, shape (n,), int64
-        Variant of each piece to begin with, fixed ones last.
+    start
+        The layout to begin with.
     clock, rng
         What may be spent, and the source of chance.
     """
 
     def __init__(
-        self, outlines: Outlines, tables: Tables, field: Field, variants: Ints, clock: Clock, rng: np.random.Generator
+        self,
+        outlines: Outlines,
+        free: Sequence[bool],
+        field: Field,
+        start: Spots,
+        clock: Clock,
+        rng: np.random.Generator,
     ) -> None:
-        self.outlines, self.tables, self.field = outlines, tables, field
-        self.clock, self.rng = clock, rng
+        self.field, self.clock, self.rng = field, clock, rng
         self.stop_at = 1.0
-        self.board = new_board(variants, field.rect, len(field.fixed))
-        self._kept = new_board(variants, field.rect, len(field.fixed))
-        self._exact = no_tables(outlines)
-        for i in range(int(self.board.movable[0]), len(variants)):
-            put(outlines, self.board, i, int(variants[i]), 0.0, 0.0)
+        self._free = np.array(free, dtype=np.int64)
+        self._packed = len(outlines.shape)
+        self.outlines = with_own_variants(outlines, outlines.shape[start.variant], free)
+        board = new_board(start.variant, field.rect, len(free), len(field.fixed))
+        self.ground = Ground(self.outlines, prepare_tables(self.outlines, self._packed), board)
+        self._exact = no_tables(self.outlines)
+        self._try = new_try(len(start.variant))
+        for i in range(int(board.movable[0]), len(start.variant)):
+            put(self.outlines, board, i, int(start.variant[i]), 0.0, 0.0)
+        self.lay(start)
+
+    @property
+    def board(self) -> Board:
+        """The pieces."""
+        return self.ground.board
+
+    @property
+    def may_turn(self) -> bool:
+        """Tell whether any piece may turn to any angle."""
+        return bool(self._free.any())
+
+    def turn_freely(self) -> None:
+        """From now on let pieces that may turn freely take any angle, not only the packed ones."""
+        self.board.turning[:] = self._free
 
     @property
     def time_left(self) -> bool:
@@ -93,31 +124,35 @@ class Engine:
         """Set the field: the first `rects` rectangles, the last one cut to a length."""
         rect = self.field.rect[:rects].copy()
         rect[-1, 2] = rect[-1, 0] + length_mm
-        self.board = self.board._replace(rect=rect)
+        self.ground = self.ground._replace(board=self.board._replace(rect=rect))
 
     def lay(self, spots: Spots) -> None:
         """Set field and pieces to what was kept; losses are left as they are."""
         self.use(spots.rects, spots.length_mm)
+        self._lay(spots.variant, spots.home, spots.turn, spots.at)
+
+    def _lay(self, variant: Ints, home: Ints, turn: Floats, at: Floats) -> None:
         for i in range(int(self.board.movable[0])):
-            self.board.home[i] = spots.home[i]
-            put(self.outlines, self.board, i, int(spots.variant[i]), float(spots.at[i, 0]), float(spots.at[i, 1]))
+            v, angle = int(variant[i]), float(turn[i])
+            if v >= self._packed or angle != self.outlines.turn[v, 2]:
+                turn_into(self.outlines, v, self._packed + i, angle)
+                v = self._packed + i
+            self.board.home[i] = home[i]
+            put(self.outlines, self.board, i, v, float(at[i, 0]), float(at[i, 1]))
 
     def spots(self, loss: float = 0.0) -> Spots:
         """Return field and pieces as they are; without loss, the last rectangle is cut to where they reach."""
-        b = self.board
-        if loss > 0.0:
-            return Spots(b.variant.copy(), b.home.copy(), b.at.copy(), len(b.rect), self.length_mm, loss)
-        self._drop_empty()
-        return Spots(b.variant.copy(), b.home.copy(), b.at.copy(), len(self.board.rect), self.reach_mm)
-
-    def _drop_empty(self) -> None:
-        """Give up rectangles at the end that hold nothing."""
-        while len(self.board.rect) > 1 and self.reach_mm == 0.0:
-            self.board = self.board._replace(rect=self.board.rect[:-1].copy())
+        if loss <= 0.0:
+            while len(self.board.rect) > 1 and self.reach_mm == 0.0:  # the last one is empty
+                self.use(len(self.board.rect) - 1, 0.0)
+            self.use(len(self.board.rect), self.reach_mm)
+        b, o = self.board, self.outlines
+        turn = o.turn[b.variant, 2]
+        return Spots(o.base[b.variant], b.home.copy(), turn, b.at.copy(), len(b.rect), self.length_mm, loss)
 
     def is_free(self) -> bool:
         """Tell by the exact geometry, without tables, whether no piece overlaps another."""
-        return float(settle_all(self.outlines, self._exact, self.board)) == 0.0
+        return float(settle_all(self.ground._replace(tables=self._exact))) == 0.0
 
     def untangle(self, patience: int, tries: int) -> float:
         """Try to remove all overlap; leaves the board in the state of least loss and returns that loss, mm².
@@ -129,16 +164,17 @@ class Engine:
         tries
             How often to start again from the state of least loss, weights kept.
         """
+        attempt = self._try
         self.board.weight[:] = 1.0
-        first = float(settle_all(self.outlines, self.tables, self.board))
-        loss = np.array([first, first])
-        copy_places(self.board, self._kept)
+        attempt.loss[:] = float(settle_all(self.ground))
+        remember(self.ground, attempt)
         for _ in range(tries):
-            count = np.array([0, patience], dtype=np.int64)
-            while loss[0] > 0.0 and count[0] < count[1] and self.time_left:
-                self.clock.spend(sweeps(self.outlines, self.tables, self.board, self._kept, count, loss, self.rng))
-            loss[1] = loss[0]
-            lay_again(self.outlines, self.tables, self._kept, self.board)
-            if loss[0] <= 0.0 or not self.time_left:
+            attempt.sweeps[:] = 0, patience
+            while attempt.loss[0] > 0.0 and attempt.sweeps[0] < patience and self.time_left:
+                self.clock.spend(sweeps(self.ground, attempt, self.rng))
+            attempt.loss[1] = attempt.loss[0]
+            self._lay(attempt.variant, attempt.home, attempt.turn, attempt.at)
+            settle_all(self.ground)
+            if attempt.loss[0] <= 0.0 or not self.time_left:
                 break
-        return float(loss[0])
+        return float(attempt.loss[0])

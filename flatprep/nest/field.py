@@ -63,7 +63,9 @@ def places_of(outlines: Outlines, field: Field, variant: Ints, home: Ints, at: F
     """Places, in their containers' own coordinates, of pieces in the plane."""
     own = at - field.shift[home]
     return tuple(
-        Place(int(outlines.shape[v]), int(k), float(outlines.turn[v, 2]), bool(outlines.mirrored[v]), float(x), float(y))
+        Place(
+            int(outlines.shape[v]), int(k), float(outlines.turn[v, 2]), bool(outlines.mirrored[v]), float(x), float(y)
+        )
         for v, k, (x, y) in zip(variant, home, own, strict=True)
     )
 

@@ -16,7 +16,7 @@ Ints = npt.NDArray[np.int64]
 # Two pieces that the search takes for free may therefore overlap by twice this, far below the 1e-6 mm of the verifier.
 HAIR_MM = 2e-7
 # The tip of a sharp corner is drawn in by at most this many hairs.
-LONGEST_MITRE = 1000.0
+LONGEST_MITRE = 4.0
 
 
 class Rings(NamedTuple):
@@ -25,9 +25,9 @@ class Rings(NamedTuple):
     Attributes
     ----------
     edge : ndarray, shape (edges, 4), float64
-        x0, y0, x1, y1 in mm, material on the left, drawn in by `HAIR_MM`; the edges of variant v are rows at[v] to
-        at[v + 1].
-    at : ndarray, shape (v + 1,), int64
+        x0, y0, x1, y1 in mm, material on the left, drawn in by `HAIR_MM`; the edges of variant v are rows
+        at[v, 0] to at[v, 1].
+    at : ndarray, shape (v, 2), int64
     box : ndarray, shape (v, 4), float64
         Least x, least y, greatest x, greatest y of the true outline, mm.
     """
@@ -44,12 +44,15 @@ class Outlines(NamedTuple):
     ----------
     rings : Rings
     pole : ndarray, shape (poles, 3), float64
-        Centre x, y and radius (mm) of circles inside the material, largest first; rows pole_at[v] to pole_at[v + 1].
+        Centre x, y and radius (mm) of circles inside the material, largest first; rows
+        pole_at[v, 0] to pole_at[v, 1].
     turn : ndarray, shape (v, 3), float64
         Cosine and sine of the turn, and the turn in degrees as it was given.
     shape, mirrored : ndarray, shape (v,), int64
+    base : ndarray, shape (v,), int64
+        The packed variant of which this one is a turned copy; itself where it is packed.
     first : ndarray, shape (s + 1,), int64
-        Variants of shape s are first[s] to first[s + 1].
+        Packed variants of shape s are first[s] to first[s + 1].
     size : ndarray, shape (s, 4), float64
         Fourth root of the hull's area (mm^0.5), diameter (mm), geometric mean and smaller one of the box's sides (mm).
     """
@@ -60,6 +63,7 @@ class Outlines(NamedTuple):
     turn: Floats
     shape: Ints
     mirrored: Ints
+    base: Ints
     first: Ints
     size: Floats
 
@@ -82,8 +86,8 @@ def drawn_in(ring: Floats, by_mm: float = HAIR_MM) -> Floats:
     along /= np.linalg.norm(along, axis=1, keepdims=True)
     left = np.column_stack([-along[:, 1], along[:, 0]])
     both = left + np.roll(left, 1, axis=0)
-    stretch = 1.0 / np.maximum(0.5 * np.sum(both * both, axis=1), 1.0 / LONGEST_MITRE)
-    moved: Floats = ring + by_mm * both * stretch[:, None]
+    norm = np.maximum(np.linalg.norm(both, axis=1, keepdims=True), 1e-9)
+    moved: Floats = ring + by_mm * both / norm * np.minimum(2.0 / norm, LONGEST_MITRE)
     return moved
 
 
@@ -166,10 +170,12 @@ def pack(shapes: Sequence[Shape], turns: Sequence[Sequence[float]]) -> Outlines:
         turn=np.array(turn),
         shape=np.array(kind, dtype=np.int64),
         mirrored=np.array(flipped, dtype=np.int64),
+        base=np.arange(len(kind), dtype=np.int64),
         first=np.array(first, dtype=np.int64),
         size=np.array([size_of(s) for s in shapes]),
     )
 
 
 def _starts(groups: Sequence[Floats]) -> Ints:
-    return np.cumsum([0, *(len(g) for g in groups)]).astype(np.int64)
+    ends = np.cumsum([len(g) for g in groups])
+    return np.column_stack([ends - [len(g) for g in groups], ends]).astype(np.int64)

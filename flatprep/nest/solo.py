@@ -7,7 +7,6 @@ import numpy as np
 from flatprep.nest.clock import Clock
 from flatprep.nest.engine import Engine, Spots
 from flatprep.nest.squeeze import Squeeze
-from flatprep.nest.tables import prepare_tables
 from flatprep.nest.task import Task
 
 Exchange = Callable[[Spots], Spots]
@@ -34,8 +33,7 @@ def run(task: Task, clock: Clock, seed: int, found: Callable[[Spots], None], exc
         The layout to begin with overlaps.
     """
     rng = np.random.default_rng(seed)
-    engine = Engine(task.outlines, prepare_tables(task.outlines), task.field, task.start.variant, clock, rng)
-    engine.lay(task.start)
+    engine = Engine(task.outlines, task.free, task.field, task.start, clock, rng)
     if not engine.is_free():
         raise ValueError("the layout to begin with overlaps")
     return Squeeze(engine, task.start, found, exchange).run()

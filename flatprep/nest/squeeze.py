@@ -6,17 +6,16 @@ import numpy as np
 
 from flatprep.nest.board import put
 from flatprep.nest.engine import Engine, Spots
-from flatprep.nest.moves import any_spot, clamp, fits
+from flatprep.nest.spots import any_spot, clamp, fits
 
 ROAM_SHARE = 0.8
+# Pieces that may turn to any angle keep to the packed turns, which are faster to look up, for this share of the time.
+TURNING_AT = 0.5
 LONGEST_STEP, SHORTEST_STEP = 0.05, 0.001
 ROAM_PATIENCE, ROAM_TRIES = 200, 3
 TIGHT_LONGEST, TIGHT_SHORTEST = 0.0005, 0.00001
 TIGHT_PATIENCE = 100
 SHELF = 40
-
-# Told of each better layout; may hand back one that is better still (of another process).
-Found = Callable[[Spots], None]
 
 
 def shorten(engine: Engine, rects: int, length_mm: float) -> None:
@@ -101,6 +100,10 @@ class Squeeze:
 
     def run(self) -> Spots:
         """Roam, then tighten, until the time is gone; return the best layout."""
+        if self.engine.may_turn:
+            self.engine.stop_at = TURNING_AT
+            self.roam()
+            self.engine.turn_freely()
         self.engine.stop_at = ROAM_SHARE
         self.roam()
         self.engine.stop_at = 1.0

@@ -5,7 +5,7 @@ For every pair of shapes and relative turn a grid of nodes covers the box in whi
 - its separation: where the two are free, the distance of the outlines; where they collide, minus a lower bound of
   the move that frees them. Both change by at most the distance moved (they are 1-Lipschitz), so the nearest node
   alone mostly tells for sure whether an offset is free or collides; the rest is tested exactly;
-- the loss of the collision and how it changes along both axes: between nodes it is taken to be linear.
+- the loss of the collision, read by bilinear interpolation.
 
 So a look-up costs the same for any number of corners and windows, and nothing is computed before it is needed.
 """
@@ -24,11 +24,10 @@ from flatprep.nest.outlines import Ints, Outlines, turned
 MOST_NODES = 64
 LEAST_NODES = 12
 # All grids together, MB, if every node were asked for; memory is taken page by page as nodes are filled.
-MOST_MB = 140.0
+MOST_MB = 100.0
 # Separations are stored as float32: they are read short by this much of the grid's cell.
 ROUNDING = 1e-3
 LEAST_APART = 1e-30  # stands for 0, which means: not yet known
-LEAST_LOSS = 1e-12  # of a collision, mm²
 WHOLE_TURN = 360_000_000  # in millionths of a degree
 
 
@@ -43,8 +42,8 @@ class Tables(NamedTuple):
         First node and spacing of nodes, mm, as offsets of b from a with the turn of a undone.
     pair : ndarray, shape (t, 2), int64
         Variants a and b that stand for the grid.
-    node : ndarray, shape (t, n, n, 4), float32
-        Of node (x, y): separation (mm; 0: not yet known), loss (mm²), change of the loss (mm²) over one cell in x, in y.
+    node : ndarray, shape (t, n, n, 2), float32
+        Separation (mm; 0: not yet known) and loss (mm²) of node (x, y).
     """
 
     of: npt.NDArray[np.int32]
@@ -59,25 +58,29 @@ def no_tables(outlines: Outlines) -> Tables:
     v = len(outlines.shape)
     none = np.zeros((0, 2))
     return Tables(
-        np.zeros((v, v), dtype=np.int32), none, none, np.zeros((0, 2), dtype=np.int64), np.zeros((0, 1, 1, 4), np.float32)
+        np.zeros((v, v), dtype=np.int32),
+        none,
+        none,
+        np.zeros((0, 2), dtype=np.int64),
+        np.zeros((0, 1, 1, 2), np.float32),
     )
 
 
-def prepare_tables(outlines: Outlines) -> Tables:
-    """Empty grids for every pair of variants; pairs that differ by a common turn share one."""
-    of, pairs = _grids_of_pairs(outlines)
-    n = int(np.clip(np.sqrt(MOST_MB * 1e6 / (16.0 * len(pairs))), LEAST_NODES, MOST_NODES))
+def prepare_tables(outlines: Outlines, packed: int) -> Tables:
+    """Empty grids for every pair of the first `packed` variants; pairs that differ by a common turn share one."""
+    of, pairs = _grids_of_pairs(outlines, packed)
+    n = int(np.clip(np.sqrt(MOST_MB * 1e6 / (8.0 * len(pairs))), LEAST_NODES, MOST_NODES))
     a, b = pairs.T
     reach = _boxes_unturned(outlines, a, a), _boxes_unturned(outlines, a, b)
     low = reach[0][:, :2] - reach[1][:, 2:]
     high = reach[0][:, 2:] - reach[1][:, :2]
-    return Tables(of, low, (high - low) / (n - 1), pairs, np.zeros((len(pairs), n, n, 4), dtype=np.float32))
+    return Tables(of, low, (high - low) / (n - 1), pairs, np.zeros((len(pairs), n, n, 2), dtype=np.float32))
 
 
-def _grids_of_pairs(outlines: Outlines) -> tuple[npt.NDArray[np.int32], Ints]:
+def _grids_of_pairs(outlines: Outlines, packed: int) -> tuple[npt.NDArray[np.int32], Ints]:
     """Number the grids: one for each pair of shapes, mirror states and relative turn (to 1e-6 degrees)."""
     v = len(outlines.shape)
-    a, b = np.triu_indices(v)
+    a, b = np.triu_indices(packed)
     relative = np.round((outlines.turn[b, 2] - outlines.turn[a, 2]) % 360.0 * 1e6).astype(np.int64) % WHOLE_TURN
     state = 2 * outlines.shape + outlines.mirrored
     key = (state[a] * (state.max() + 1) + state[b]) * WHOLE_TURN + relative
@@ -92,7 +95,7 @@ def _boxes_unturned(outlines: Outlines, a: Ints, b: Ints) -> Floats:
     """Boxes of variants b with the turns of variants a undone, shape (t, 4)."""
     rings, boxes = outlines.rings, np.empty((len(a), 4))
     for t, (va, vb) in enumerate(zip(a, b, strict=True)):
-        corners = rings.edge[rings.at[vb] : rings.at[vb + 1], :2]
+        corners = rings.edge[rings.at[vb, 0] : rings.at[vb, 1], :2]
         back = turned(corners, -outlines.turn[va, 2], mirrored=False)
         boxes[t] = *back.min(axis=0), *back.max(axis=0)
     return boxes
@@ -110,13 +113,8 @@ def fill_node(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> Non
         apart = -depth(outlines, a, b, dx, dy)
     else:
         apart = gap(outlines.rings, a, b, dx, dy, math.hypot(tables.cell[t, 0], tables.cell[t, 1]))
-    ax, ay = 0.5 * c * tables.cell[t, 0], 0.5 * s * tables.cell[t, 0]
-    bx, by = -0.5 * s * tables.cell[t, 1], 0.5 * c * tables.cell[t, 1]
-    node = tables.node[t, i, j]
-    node[1] = collision_loss(outlines, a, b, dx, dy)
-    node[2] = collision_loss(outlines, a, b, dx + ax, dy + ay) - collision_loss(outlines, a, b, dx - ax, dy - ay)
-    node[3] = collision_loss(outlines, a, b, dx + bx, dy + by) - collision_loss(outlines, a, b, dx - bx, dy - by)
-    node[0] = apart if abs(apart) > LEAST_APART else LEAST_APART
+    tables.node[t, i, j, 1] = collision_loss(outlines, a, b, dx, dy)
+    tables.node[t, i, j, 0] = apart if abs(apart) > LEAST_APART else LEAST_APART
 
 
 @inner
@@ -139,11 +137,21 @@ def pair_loss(outlines: Outlines, tables: Tables, a: int, b: int, dx: float, dy:
     if tables.node[t, i, j, 0] == 0.0:
         fill_node(outlines, tables, t, i, j)
     apart = float(tables.node[t, i, j, 0])
-    u, w = u - i, w - j
-    off = math.sqrt(u * u * wide * wide + w * w * tall * tall) + ROUNDING * wide
+    off = math.sqrt((u - i) * (u - i) * wide * wide + (w - j) * (w - j) * tall * tall) + ROUNDING * wide
     if apart > off:
         return 0.0
     if apart >= -off and not overlap(outlines.rings, a, b, dx, dy):
         return 0.0
-    loss = tables.node[t, i, j, 1] + u * tables.node[t, i, j, 2] + w * tables.node[t, i, j, 3]
-    return max(float(loss), LEAST_LOSS)
+    i, j = int(u), int(w)
+    u, w = u - i, w - j
+    if tables.node[t, i, j, 0] == 0.0:
+        fill_node(outlines, tables, t, i, j)
+    if tables.node[t, i + 1, j, 0] == 0.0:
+        fill_node(outlines, tables, t, i + 1, j)
+    if tables.node[t, i, j + 1, 0] == 0.0:
+        fill_node(outlines, tables, t, i, j + 1)
+    if tables.node[t, i + 1, j + 1, 0] == 0.0:
+        fill_node(outlines, tables, t, i + 1, j + 1)
+    near = tables.node[t, i, j, 1] * (1.0 - w) + tables.node[t, i, j + 1, 1] * w
+    far = tables.node[t, i + 1, j, 1] * (1.0 - w) + tables.node[t, i + 1, j + 1, 1] * w
+    return float(near * (1.0 - u) + far * u)

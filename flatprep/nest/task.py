@@ -7,8 +7,8 @@ import numpy as np
 
 from flatprep.geom.bulge import Floats
 from flatprep.nest.engine import Spots
-from flatprep.nest.field import Field, field_of, places_of, variant_of
-from flatprep.nest.outlines import Ints, Outlines, pack
+from flatprep.nest.field import Field, field_of, variant_of
+from flatprep.nest.outlines import HAIR_MM, LONGEST_MITRE, Ints, Outlines, pack, turned
 from flatprep.nest.rows import flattest_variants, lay_in_columns
 from flatprep.nest.shapes import Best, Container, Place, Shape
 
@@ -27,6 +27,8 @@ class Task:
     field : Field
     outlines : Outlines
         The shapes' variants, then one for each of the field's fixed shapes.
+    free : tuple of bool
+        For each of these shapes, whether it may turn to any angle.
     start : Spots
         A layout without overlap.
     """
@@ -34,13 +36,19 @@ class Task:
     shapes: tuple[Shape, ...]
     field: Field
     outlines: Outlines
+    free: tuple[bool, ...]
     start: Spots
 
     def best(self, spots: Spots) -> Best:
         """Return a layout in the containers' own coordinates."""
-        n = sum(s.count for s in self.shapes)
-        places = places_of(self.outlines, self.field, spots.variant[:n], spots.home[:n], spots.at[:n])
-        return Best(places, spots.rects, spots.length_mm)
+        o, n = self.outlines, sum(s.count for s in self.shapes)
+        own = spots.at[:n] - self.field.shift[spots.home[:n]]
+        turn = spots.turn[:n] % 360.0
+        places = (
+            Place(int(o.shape[v]), int(k), float(t), bool(o.mirrored[v]), float(x), float(y))
+            for v, k, t, (x, y) in zip(spots.variant[:n], spots.home[:n], turn, own, strict=True)
+        )
+        return Best(tuple(places), spots.rects, spots.length_mm)
 
 
 def strip_task(shapes: Sequence[Shape], width_mm: float, start: Sequence[Place] | None) -> Task:
@@ -83,24 +91,19 @@ def sheets_task(shapes: Sequence[Shape], containers: Sequence[Container], start:
         No layout to begin with: the pieces do not fit, or one is missing from `start`.
     """
     field = field_of(containers)
-    free = _turns_of_free(shapes, start or ())
-    turns = [free[s] if shape.turns_deg is None else tuple(shape.turns_deg) for s, shape in enumerate(shapes)]
+    even = _even_turns(sum(s.turns_deg is None for s in shapes))
+    turns = [even if s.turns_deg is None else tuple(s.turns_deg) for s in shapes]
     outlines = pack([*shapes, *field.fixed], [*turns, *((0.0,) for _ in field.fixed)])
     kinds = np.repeat(np.arange(len(shapes)), [s.count for s in shapes])
     spots = _given(outlines, field, kinds, start) if start else _in_columns(outlines, field, kinds)
-    return Task(tuple(shapes), field, outlines, spots)
+    free = (*(s.turns_deg is None for s in shapes), *(False for _ in field.fixed))
+    return Task(tuple(shapes), field, outlines, free, spots)
 
 
-def _turns_of_free(shapes: Sequence[Shape], start: Sequence[Place]) -> dict[int, tuple[float, ...]]:
-    """Turns (degrees) to try for each shape that may turn freely: evenly spread, and those it has at the start."""
-    free = [s for s, shape in enumerate(shapes) if shape.turns_deg is None]
-    many = next((turns for kinds, turns in FREE_TURNS if len(free) <= kinds), FEWEST_FREE_TURNS)
-    even = [360.0 * k / many for k in range(many)]
-    had: dict[int, set[float]] = {s: set(even) for s in free}
-    for place in start:
-        if place.shape in had:
-            had[place.shape].add(place.turn_deg % 360.0)
-    return {s: tuple(sorted(turns)) for s, turns in had.items()}
+def _even_turns(kinds: int) -> tuple[float, ...]:
+    """Turns (degrees) to pack of shapes that may turn freely, evenly spread; fewer where there are many kinds."""
+    many = next((turns for most, turns in FREE_TURNS if kinds <= most), FEWEST_FREE_TURNS)
+    return tuple(360.0 * k / many for k in range(many))
 
 
 def _given(outlines: Outlines, field: Field, kinds: Ints, start: Sequence[Place]) -> Spots:
@@ -108,10 +111,11 @@ def _given(outlines: Outlines, field: Field, kinds: Ints, start: Sequence[Place]
     places = sorted(start, key=lambda p: p.shape)
     if [p.shape for p in places] != kinds.tolist():
         raise ValueError("the start does not hold every piece once")
-    variants = [variant_of(outlines, p) for p in places]
+    variants = np.array([variant_of(outlines, p) for p in places], dtype=np.int64)
     home = np.array([p.container for p in places], dtype=np.int64)
     at = np.array([(p.x, p.y) for p in places]) + field.shift[home]
-    return _spots(outlines, field, np.array(variants, dtype=np.int64), home, at)
+    turn = np.array([p.turn_deg for p in places])
+    return _spots(outlines, field, variants, home, turn, at)
 
 
 def _in_columns(outlines: Outlines, field: Field, kinds: Ints) -> Spots:
@@ -120,18 +124,25 @@ def _in_columns(outlines: Outlines, field: Field, kinds: Ints) -> Spots:
     laid = None if field.fixed else lay_in_columns(outlines.rings.box[variants], list(field.rect))
     if laid is None:
         raise ValueError("the pieces do not fit into the containers as boxes in columns")
-    return _spots(outlines, field, variants, *laid)
+    home, at = laid
+    return _spots(outlines, field, variants, home, outlines.turn[variants, 2], at)
 
 
-def _spots(outlines: Outlines, field: Field, variants: Ints, home: Ints, at: Floats) -> Spots:
+def _spots(outlines: Outlines, field: Field, variants: Ints, home: Ints, turn: Floats, at: Floats) -> Spots:
     """Layout with the field's fixed pieces added at the end."""
     fixed = len(field.fixed)
     last = int(home.max())
-    reach = (at[:, 0] + outlines.rings.box[variants, 2])[home == last].max() - field.rect[last, 0]
+    right = [
+        x + turned(outlines.rings.edge[slice(*outlines.rings.at[v]), :2], t - outlines.turn[v, 2], mirrored=False)[:, 0].max()
+        for v, t, x, k in zip(variants, turn, at[:, 0], home, strict=True)
+        if k == last
+    ]
+    reach = max(right) + LONGEST_MITRE * HAIR_MM - field.rect[last, 0]
     own = np.arange(len(outlines.shape) - fixed, len(outlines.shape))
     return Spots(
         np.concatenate([variants, own]),
         np.concatenate([home, np.full(fixed, -1)]),
+        np.concatenate([turn, np.zeros(fixed)]),
         np.vstack([at, np.zeros((fixed, 2))]),
         last + 1,
         float(reach),

@@ -1,14 +1,14 @@
 """Remove all overlap from a board: move colliding pieces in turn, weigh what keeps colliding ever more."""
 
+from typing import NamedTuple
+
 import numpy as np
 
 from flatprep.geom.bulge import Floats
 from flatprep.nest._jit import bare, kernel
-from flatprep.nest.board import Board, is_colliding, put, settle_all
-from flatprep.nest.moves import KEPT, move_piece
-from flatprep.nest.outlines import Ints, Outlines
-from flatprep.nest.snap import MOST_LINES
-from flatprep.nest.tables import Tables
+from flatprep.nest.board import Board, Ground, is_colliding
+from flatprep.nest.moves import Room, move_piece, new_room
+from flatprep.nest.outlines import Ints
 
 # Weights of colliding pairs grow by up to this much a sweep, the others shrink towards 1.
 LEAST_GROWTH, MORE_GROWTH, DECAY = 1.2, 0.3, 0.97
@@ -16,6 +16,48 @@ LEAST_GROWTH, MORE_GROWTH, DECAY = 1.2, 0.3, 0.97
 GAIN = 0.02
 # Positions tried in one call of the kernel: some 0.05 s, so that signals are served.
 CALL = 40_000
+
+
+class Try(NamedTuple):
+    """A try to remove all overlap, and the state of least loss it has seen.
+
+    Attributes
+    ----------
+    variant, home : ndarray, shape (n,), int64
+    at : ndarray, shape (n, 2), float64
+    turn : ndarray, shape (n,), float64
+        As of `Board`, and the turn of each piece (degrees), at the least loss.
+    loss : ndarray, shape (2,), float64
+        Least loss, and the loss that the last gain reached, mm².
+    sweeps : ndarray, shape (2,), int64
+        Sweeps since the last gain; sweeps without one after which to stop.
+    order : ndarray, shape (n,), int64
+    room : Room
+        Room to work in.
+    """
+
+    variant: Ints
+    home: Ints
+    at: Floats
+    turn: Floats
+    loss: Floats
+    sweeps: Ints
+    order: Ints
+    room: Room
+
+
+def new_try(pieces: int) -> Try:
+    """Return room for tries with so many pieces."""
+    return Try(
+        variant=np.zeros(pieces, dtype=np.int64),
+        home=np.zeros(pieces, dtype=np.int64),
+        at=np.zeros((pieces, 2)),
+        turn=np.zeros(pieces),
+        loss=np.zeros(2),
+        sweeps=np.zeros(2, dtype=np.int64),
+        order=np.zeros(pieces, dtype=np.int64),
+        room=new_room(),
+    )
 
 
 @bare
@@ -40,10 +82,9 @@ def reweigh(board: Board) -> float:
 
 
 @bare
-def sweep(
-    outlines: Outlines, tables: Tables, board: Board, order: Ints, kept: Floats, lines: Floats, rng: np.random.Generator
-) -> int:
+def sweep(ground: Ground, attempt: Try, rng: np.random.Generator) -> int:
     """Visit every colliding piece once, in random order; return the number of places tried."""
+    board, order = ground.board, attempt.order
     many = 0
     for i in range(board.movable[0]):
         if is_colliding(board, i):
@@ -55,59 +96,33 @@ def sweep(
     tried = 0
     for i in range(many):
         if is_colliding(board, order[i]):
-            tried += move_piece(outlines, tables, board, order[i], kept, lines, rng)
+            tried += move_piece(ground, order[i], attempt.room, rng)
     return tried
 
 
+@bare
+def remember(ground: Ground, attempt: Try) -> None:
+    """Keep the state of the board as the one of least loss."""
+    board = ground.board
+    for i in range(len(board.variant)):
+        attempt.variant[i] = board.variant[i]
+        attempt.home[i] = board.home[i]
+        attempt.at[i, 0], attempt.at[i, 1] = board.at[i, 0], board.at[i, 1]
+        attempt.turn[i] = ground.outlines.turn[board.variant[i], 2]
+
+
 @kernel
-def sweeps(
-    outlines: Outlines, tables: Tables, board: Board, kept: Board, count: Ints, loss: Floats, rng: np.random.Generator
-) -> int:
-    """Sweep until nothing collides, patience is out or the call has lasted long enough.
-
-    Parameters
-    ----------
-    kept : Board
-        Takes the places of the state with the least loss.
-    count : ndarray, shape (2,), int64
-        Sweeps since the last gain, updated; sweeps without a gain after which to stop.
-    loss : ndarray, shape (2,), float64
-        Least loss so far and the loss that the last gain reached, mm², updated.
-
-    Returns
-    -------
-    int
-        Places tried.
-    """
-    order = np.empty(len(board.variant), dtype=np.int64)
-    room = np.empty((KEPT, 6))
-    lines = np.empty((MOST_LINES, 3))
+def sweeps(ground: Ground, attempt: Try, rng: np.random.Generator) -> int:
+    """Sweep until nothing collides, patience is out or the call has lasted long enough; return the places tried."""
     tried = 0
-    while tried < CALL and loss[0] > 0.0 and count[0] < count[1]:
-        tried += sweep(outlines, tables, board, order, room, lines, rng)
-        total = reweigh(board)
-        count[0] += 1
-        if total < loss[0]:
-            loss[0] = total
-            copy_places(board, kept)
-            if total < (1.0 - GAIN) * loss[1]:
-                loss[1] = total
-                count[0] = 0
+    while tried < CALL and attempt.loss[0] > 0.0 and attempt.sweeps[0] < attempt.sweeps[1]:
+        tried += sweep(ground, attempt, rng)
+        total = reweigh(ground.board)
+        attempt.sweeps[0] += 1
+        if total < attempt.loss[0]:
+            attempt.loss[0] = total
+            remember(ground, attempt)
+            if total < (1.0 - GAIN) * attempt.loss[1]:
+                attempt.loss[1] = total
+                attempt.sweeps[0] = 0
     return tried
-
-
-@kernel
-def copy_places(source: Board, target: Board) -> None:
-    """Copy where the pieces are; not losses, weights and field."""
-    target.variant[:] = source.variant
-    target.home[:] = source.home
-    target.at[:] = source.at
-
-
-@kernel
-def lay_again(outlines: Outlines, tables: Tables, kept: Board, board: Board) -> float:
-    """Put the board back to kept places; return its loss, mm²."""
-    for i in range(len(kept.variant)):
-        board.home[i] = kept.home[i]
-        put(outlines, board, i, kept.variant[i], kept.at[i, 0], kept.at[i, 1])
-    return settle_all(outlines, tables, board)
