@@ -210,8 +210,27 @@ def _line_line(b: Boundary, f: Features, i: Ints, j: Ints) -> Chords:
     v0, v1 = np.minimum(w0, w1), np.maximum(w0, w1)
     p0, p1 = a + s0[:, None] * t, a + s1[:, None] * t
     q0, q1 = p0 + v0[:, None] * n, p1 + v1[:, None] * n
+    end_p, end_q = _nearest_ends(b, f.row[i], f.row[j])
+    p0, q0 = np.where(tapered[:, None], end_p, p0), np.where(tapered[:, None], end_q, q0)
+    least = np.where(tapered, np.hypot(*(q0 - p0).T), least)
+    good &= ~tapered | (least > 1e-6)  # sides that meet are those of a corner
     nu, no = f.nu[i], np.zeros(len(i), dtype=bool)
     return take(Chords(i, j, least, p0, q0, p1, q1, nu, nu, no, tapered), good)
+
+
+def _nearest_ends(b: Boundary, i: Ints, j: Ints) -> tuple[Floats, Floats]:
+    """Nearest points of lines i and j, which do not cross: one of them is an end, each of shape (n, 2)."""
+    best, p, q = np.full(len(i), np.inf), np.zeros((len(i), 2)), np.zeros((len(i), 2))
+    for own, other, turned in ((i, j, False), (j, i, True)):
+        a, d = b.start[other], b.end[other] - b.start[other]
+        for end in (b.start[own], b.end[own]):
+            t = np.clip(np.sum((end - a) * d, axis=1) / np.sum(d * d, axis=1), 0.0, 1.0)
+            foot = a + t[:, None] * d
+            apart = np.hypot(*(foot - end).T)
+            nearer = (apart < best)[:, None]
+            best = np.minimum(best, apart)
+            p, q = np.where(nearer, foot if turned else end, p), np.where(nearer, end if turned else foot, q)
+    return p, q
 
 
 def _line_arc(b: Boundary, f: Features, i: Ints, j: Ints) -> Chords:
