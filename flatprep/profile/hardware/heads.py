@@ -6,9 +6,8 @@ from dataclasses import dataclass
 from functools import lru_cache
 from pathlib import Path
 
-from flatprep.base.names import plain
 from flatprep.base.units import MM_PER_UNIT
-from flatprep.profile.hardware.names import screw_size, tidy, unknown
+from flatprep.profile.hardware.names import metric_size, screw_size, tidy, unknown
 from flatprep.profile.hardware.table import HardwareTable, table
 from flatprep.profile.toml_check import Table
 
@@ -135,7 +134,7 @@ def find_counterbore(name: str, own: Sequence[Path] = ()) -> Counterbore:
     """
     known = _counterbores(tuple(own))
     text = re.sub(r"\b(?:ISO[\s-]*4762|DIN[\s-]*912|DIN[\s-]*974(?:-1)?)\b", " ", tidy(name), flags=re.IGNORECASE)
-    found = [c for c in known if plain(c.screw) == plain(text)]
+    found = [c for c in known if c.screw == metric_size(text)]
     if not found:
         raise unknown("counterbore", name, [f"{c.screw} ISO 4762" for c in known])
     return found[0]
