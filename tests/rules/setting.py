@@ -23,9 +23,8 @@ def laser(errors=None, warns=None, **rest):
 
 
 def router(tool=3.0, **rest):
-    return Process(
-        "shop-router", "shop router", ProcessKind.ROUTER, tool, tool, general=Terms((Band({}, {}, {}),)), **rest
-    )
+    nothing = Terms((Band({}, {}, {}),))
+    return Process("shop-router", "shop router", ProcessKind.ROUTER, tool, tool, general=nothing, **rest)
 
 
 def steel(**rest):
@@ -49,6 +48,6 @@ def bend_at(y, radius=2.0, angle=90.0):
     return BendAsk(angle, radius, line=((0.0, y), (100.0, y)))
 
 
-BENDS = BendRule(refuse=((2.0, 1.0),), prefer=((2.0, 1.5),), along_grain=1.5)
+BENDS = BendRule(refuse=1.0, prefer=((2.0, 1.5),), along_grain=1.5)
 """At 2 mm: refused below 2 mm, preferred from 3 mm on."""
 NEVER = Verdict("never", "it gives off acid gas", "Do not try.", "made up for the test")

@@ -8,40 +8,18 @@ import pytest
 import flatprep.rules
 from flatprep.model.finding import Finding, Severity
 from flatprep.profile.process import Limit
-from flatprep.rules.base import Context, Rule, findings, judge
+from flatprep.rules.base import Rule, findings, judge
 from tests.rules.setting import context
 
-CONTRACT = [
-    "open-contour",
-    "duplicate-line",
-    "self-crossing",
-    "tiny-segment",
-    "unknown-units",
-    "unsupported-entity",
-    "text-not-outlined",
-    "off-plane",
-    "empty-drawing",
-    "loose-island",
-    "several-parts",
-    "small-hole",
-    "thin-web",
-    "narrow-slot",
-    "inside-corner",
-    "small-part",
-    "too-large",
-    "hole-near-bend",
-    "short-flange",
-    "tight-bend",
-    "bend-along-grain",
-    "thickness-out-of-range",
-    "wrong-process",
-    "unsafe-material",
-    "tap-hole-size",
-    "thread-engagement",
-    "bore-size",
-    "countersink-too-deep",
-    "unclear-hole",
-]
+# fmt: off
+CONTRACT = {
+    "open-contour", "duplicate-line", "self-crossing", "tiny-segment", "unknown-units", "unsupported-entity",
+    "text-not-outlined", "off-plane", "empty-drawing", "loose-island", "several-parts", "small-hole", "thin-web",
+    "narrow-slot", "inside-corner", "small-part", "too-large", "hole-near-bend", "short-flange", "tight-bend",
+    "bend-along-grain", "thickness-out-of-range", "wrong-process", "unsafe-material", "tap-hole-size",
+    "thread-engagement", "bore-size", "countersink-too-deep", "unclear-hole",
+}
+# fmt: on
 
 
 def modules():
@@ -63,7 +41,7 @@ def test_a_module_is_named_as_its_rule():
 
 
 def test_every_rule_of_the_interface_is_there():
-    assert set(CONTRACT) <= {rule.id for rule in flatprep.rules.ALL}
+    assert {rule.id for rule in flatprep.rules.ALL} >= CONTRACT
 
 
 @pytest.mark.parametrize("rule", flatprep.rules.ALL, ids=lambda r: r.id)
@@ -98,7 +76,3 @@ def test_judge(measured, verdict):
 
 def test_without_a_warning_level_only_errors_are_loud():
     assert judge(2.0, Limit(2.0, None, "made up"), 0.001) is None
-
-
-def test_nothing_known_nothing_said():
-    assert flatprep.rules.run(Context(context().drawing)) == flatprep.rules.run(context())
