@@ -24,9 +24,6 @@ MOST_CHORDS = 40_000
 SAME_WIDTH_MM = 0.02
 """What is within this of the least width belongs to the same stretch."""
 
-ROUNDING_MM = 1e-4
-"""A width at the limit is found on whichever side of it rounding puts it."""
-
 Point = tuple[float, float]
 
 
@@ -86,7 +83,6 @@ def widths(b: Boundary, *, side: int, rows: Bools, most_mm: float) -> tuple[Widt
     The medial axis by its discs: Ma, Bae and Choi, "3D medial axis point approximation using nearest neighbors and
     the normal field" (2012), describe the maximal ball that touches at two points; here the two points are opposite.
     """
-    most_mm += ROUNDING_MM
     f = features(b, side=side, rows=rows)
     if len(f.kind) < 2:
         return ()
