@@ -21,7 +21,8 @@ PRINTED_MM = 0.0005
 def _asked(row):
     material = load_material(row["material"]) if "material" in row else None
     kind, name = row["ask"]
-    given = {key: row[short] for short, key in (("thickness", "thickness_mm"), ("radius", "radius_mm"), ("angle", "angle_deg")) if short in row}  # fmt: skip
+    units = {"thickness": "thickness_mm", "radius": "radius_mm", "angle": "angle_deg"}
+    given = {key: row[short] for short, key in units.items() if short in row}
     return lookup(kind, name, material=material, **given)
 
 
@@ -75,9 +76,11 @@ def test_every_bend_radius_is_as_published(row):
     ("kind", "name", "near"),
     [
         ("thread", "M9", "M8"), ("clearance", "M9", "M8"), ("fit", "22 N9", "N7"), ("bearing", "605", "604"),
-        ("nut", "M9", "M8 ISO 4032"), ("countersink", "M5", "M5 ISO 10642"), ("shoulder-screw", "M6", "name the shoulder"),
+        ("nut", "M9", "M8 ISO 4032"), ("countersink", "M5", "M5 ISO 10642"),
+        ("shoulder-screw", "M6", "name the shoulder"),
         ("tolerance", "iso 1 2", "iso2768 m 35"), ("gauge", "x", "whole number"), ("counterbore", "M7", "M6"),
-        ("bush", "11", "10 x 12"), ("pin", "7", "6 ISO"), ("drill", "#99", "#80"), ("bend-radius", "6062-T6", "6061-T6"),
+        ("bush", "11", "10 x 12"), ("pin", "7", "6 ISO"), ("drill", "#99", "#80"),
+        ("bend-radius", "6062-T6", "6061-T6"),
         ("thread", "", "flatprep lookup thread"), ("thred", "M6", "thread"), ("bend", "", "--thickness"),
     ],
 )  # fmt: skip
@@ -142,7 +145,8 @@ def test_impossible_bends(sizes):
 
 
 @pytest.mark.parametrize(
-    ("family", "k"), [("aluminium", (0.38, 0.41)), ("low-carbon-steel", (0.42, 0.47)), ("stainless", (0.44, 0.48)), ("wood", None)]
+    ("family", "k"), [("aluminium", (0.38, 0.41)), ("low-carbon-steel", (0.42, 0.47)),
+    ("stainless", (0.44, 0.48)), ("wood", None)]
 )  # fmt: skip
 def test_measured_k_factors(family, k):
     """K factor table attributed to Machinery's Handbook, 26th edition."""
