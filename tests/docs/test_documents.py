@@ -52,7 +52,7 @@ def test_standard_output_is_one_document_of_its_schema(kind, words):
 
 def test_prepare_writes_documents_of_their_schemas(tmp_path):
     out = tmp_path / "out"
-    flatprep("prepare", JOB, "--out", str(out), "--steps", "1")
+    flatprep("prepare", JOB, "--out", str(out), "--seconds", "2")
     for kind in ("lint", "layout", "checklist", "estimate"):
         assert faults(kind, json.loads((out / f"{kind}.json").read_text(encoding="utf-8"))) == [], kind
     for name in ("report.html", "parts.csv", "findings.csv", "steps.csv", "sheets.csv", "bench/side_plate.html"):
