@@ -233,11 +233,13 @@ def test_200_parts_answer_in_two_seconds(opened, many):
 
 
 @pytest.mark.parametrize("scheme", ["light", "dark"])
-def test_an_accessibility_checker_finds_nothing(opened, bundle, scheme):
+@pytest.mark.parametrize("kind", ["report", "bench sheet"])
+def test_an_accessibility_checker_finds_nothing(opened, bundle, scheme, kind):
+    text = report_html(bundle) if kind == "report" else bench_sheet_html(bundle, bundle.cards[0])
     axe = os.environ.get("FLATPREP_AXE")
     if not axe:
         pytest.skip("FLATPREP_AXE does not name axe-core's axe.min.js (npm install axe-core)")
-    page = opened(report_html(bundle))
+    page = opened(text)
     page.emulate_media(color_scheme=scheme)
     page.evaluate(Path(axe).read_text(encoding="utf-8") + ";0")
     faults = page.evaluate("axe.run().then(r => r.violations.map(v => v.impact + ' ' + v.id))")
