@@ -19,7 +19,7 @@ Bools = npt.NDArray[np.bool_]
 
 @dataclass(frozen=True, eq=False)
 class Boundary:
-    """The edges of several closed contours, one row an edge; material lies to the left of each.
+    """The edges of closed contours, of one part or several, one row an edge; material lies to the left of each.
 
     Attributes
     ----------
@@ -29,8 +29,8 @@ class Boundary:
         mm; infinite for lines.
     angle, sweep : ndarray, shape (n,)
         rad; polar angle of the start seen from the centre, and signed sweep (0 for lines).
-    contour : ndarray of int, shape (n,)
-        Which contour the edge belongs to.
+    part, contour : ndarray of int, shape (n,)
+        Which part and which contour the edge belongs to.
     edge : ndarray of int, shape (n,)
         Which edge of that contour it is.
     next : ndarray of int, shape (n,)
@@ -47,6 +47,7 @@ class Boundary:
     radius: Floats
     angle: Floats
     sweep: Floats
+    part: Ints
     contour: Ints
     edge: Ints
     next: Ints
@@ -125,7 +126,9 @@ class Boundary:
         before = np.cumsum(self.total) - self.total
         whole = np.mod(place, self.total[contour]) + before[contour]
         row = np.searchsorted(self.run + before[self.contour], whole, side="right") - 1
-        row = np.maximum(row, self.first[contour])  # rounding at a contour's start must not fall into the one before
+        # rounding at a contour's seam must not fall into the one before, nor into the next
+        last = np.append(self.first[1:], len(self.contour))[contour] - 1
+        row = np.clip(row, self.first[contour], last)
         share = np.clip((whole - before[contour] - self.run[row]) / self.length[row], 0.0, 1.0)
         return self.points(row, share)
 
@@ -139,8 +142,16 @@ class Boundary:
         return out
 
 
-def boundary(contours: Sequence[Floats]) -> Boundary:
-    """Put closed bulge polylines into columns; edges without length are left out."""
+def boundary(contours: Sequence[Floats], parts: Ints | None = None) -> Boundary:
+    """Put closed bulge polylines into columns; edges without length are left out.
+
+    Parameters
+    ----------
+    contours
+        Material to the left.
+    parts : ndarray of int, shape (contours,)
+        Which part each contour belongs to, ascending; all to one by default.
+    """
     start = np.vstack([c[:, :2] for c in contours])
     end = np.vstack([np.roll(c[:, :2], -1, axis=0) for c in contours])
     bulge = np.concatenate([c[:, 2] for c in contours])
@@ -170,11 +181,30 @@ def boundary(contours: Sequence[Floats]) -> Boundary:
         radius=seg.radius[0::2],
         angle=seg.angle[0::2],
         sweep=seg.sweep[0::2],
+        part=np.zeros(len(start), dtype=np.intp) if parts is None else parts[contour],
         contour=contour,
         edge=edge,
         next=follows,
         run=run,
         total=total,
+    )
+
+
+def of_part(b: Boundary, part: int) -> Boundary:
+    """Return the edges of one part, contours and rows counted from its own first."""
+    lo, hi = np.searchsorted(b.part, [part, part + 1])
+    if lo == 0 and hi == len(b):
+        return b
+    own = {
+        name: getattr(b, name)[lo:hi] for name in ("start", "end", "centre", "radius", "angle", "sweep", "edge", "run")
+    }
+    first = int(b.contour[lo])
+    return Boundary(
+        **own,
+        part=np.zeros(hi - lo, dtype=np.intp),
+        contour=b.contour[lo:hi] - first,
+        next=b.next[lo:hi] - lo,
+        total=b.total[first : int(b.contour[hi - 1]) + 1],
     )
 
 
