@@ -14,7 +14,7 @@ from flatprep.job.terms import CostTerms
 from flatprep.job.values import Stock
 from flatprep.model.drawing import Part
 from flatprep.model.estimate import Estimate, PartEstimate, StockUse
-from flatprep.model.layout import Layout
+from flatprep.model.layout import Layout, SheetLayout
 from flatprep.profile.material import Material
 from flatprep.profile.process import Process
 
@@ -86,11 +86,11 @@ def estimate(
     result = Estimate(
         currency=ask.currency,
         parts=parts,
-        stock=_stock_use(stock, layout, lines) if layout and lines else (),
+        stock=_stock_use(items, stock, layout, lines) if layout and lines else (),
         mass_kg=None if whole is None else whole / ask.sets,
         mass_limit_kg=ask.mass_limit_kg,
         material_cost=lines.total if lines else None,
-        utilisation=_utilisation(items, layout) if layout else None,
+        utilisation=_utilisation(items, [s for s in layout.sheets if s.placements]) if layout else None,
         sets=ask.sets,
         share=str(ask.terms.share),
         cut_time_s=seconds,
@@ -126,35 +126,32 @@ def _part(item: Costed, lines: Lines | None, whole: float | None, placed: Counte
     )
 
 
-def _stock_use(stock: Sequence[Stock], layout: Layout, lines: Lines) -> tuple[StockUse, ...]:
-    used = [sheet for sheet in layout.sheets if sheet.placements]
-    count = Counter(sheet.stock for sheet in used)
+def _stock_use(items: Sequence[Costed], stock: Sequence[Stock], layout: Layout, lines: Lines) -> tuple[StockUse, ...]:
     out = []
     for one in stock:
-        if one.name not in count:
+        sheets = [sheet for sheet in layout.sheets if sheet.stock == one.name and sheet.placements]
+        if not sheets:
             continue
         is_open = one.length_mm is None and one.outline is None
-        taken = sum(sheet.used_length_mm for sheet in used if sheet.stock == one.name)
-        price = one.price_per_metre if is_open else one.price_per_sheet
         credit = sum((bill.credit for bill in lines.bills if bill.stock == one.name), Decimal(0))
         out.append(
             StockUse(
-                one.name,
-                count[one.name],
-                price,
-                taken if is_open else None,
-                lines.stock.get(one.name),
-                to_cents(credit),
+                name=one.name,
+                count=len(sheets),
+                price=one.price_per_metre if is_open else one.price_per_sheet,
+                length_mm=sum(sheet.used_length_mm for sheet in sheets) if is_open else None,
+                cost=lines.stock.get(one.name),
+                credit=to_cents(credit),
+                utilisation=_utilisation(items, sheets),
             )
         )
     return tuple(out)
 
 
-def _utilisation(items: Sequence[Costed], layout: Layout) -> float | None:
+def _utilisation(items: Sequence[Costed], sheets: Sequence[SheetLayout]) -> float | None:
     areas = {item.part.name: item.part.area_mm2 for item in items}
-    used = [sheet for sheet in layout.sheets if sheet.placements]
-    whole = sum(sheet_area_mm2(sheet) for sheet in used)
-    return sum(areas[p.part] for sheet in used for p in sheet.placements) / whole if whole else None
+    whole = sum(sheet_area_mm2(sheet) for sheet in sheets)
+    return sum(areas[p.part] for sheet in sheets for p in sheet.placements) / whole if whole else None
 
 
 def _machine_cost(items: Sequence[Costed], parts: Sequence[PartEstimate], rate: Decimal | None) -> Decimal | None:

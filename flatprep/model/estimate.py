@@ -66,7 +66,7 @@ class StockUse:
     """Stock the job takes: `price` is that of one sheet, or of one metre where `length_mm` is given.
 
     `length_mm` is the length taken from open stock, all its sheets together; `cost` what all of it is charged with,
-    after discount and credits.
+    after discount and credits; `utilisation` is the net area of the parts over that of its sheets.
     """
 
     name: str
@@ -75,6 +75,7 @@ class StockUse:
     length_mm: float | None = None
     cost: Decimal | None = None
     credit: Decimal = Decimal(0)
+    utilisation: float | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -106,10 +107,11 @@ class Estimate:
 
 @dataclass(frozen=True, slots=True)
 class QuantityBreak:
-    """What a number of sets costs, from a nest of its own."""
+    """What a number of sets costs, from a nest of its own; no cost where `unplaced` pieces found no room."""
 
     sets: int
     sheets: int
     material_cost: Decimal | None
     cost_per_set: float | None
     utilisation: float | None
+    unplaced: int = 0

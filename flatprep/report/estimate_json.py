@@ -79,6 +79,7 @@ def _stock(use: StockUse) -> dict[str, object]:
         "length_mm": use.length_mm,
         "cost": _money(use.cost),
         "credit": float(use.credit),
+        "utilisation": use.utilisation,
     }
 
 
@@ -89,4 +90,5 @@ def _break(one: QuantityBreak) -> dict[str, object]:
         "material_cost": _money(one.material_cost),
         "cost_per_set": one.cost_per_set,
         "utilisation": one.utilisation,
+        "unplaced": one.unplaced,
     }

@@ -51,13 +51,14 @@ def _part(part: PartEstimate, currency: str | None, units: str) -> list[str]:
 
 
 def _stock(estimate: Estimate, units: str) -> str:
-    head = ["stock to take", "sheets", "length", "price", "cost"]
+    head = ["stock to take", "sheets", "length", "utilisation", "price", "cost"]
     return columns(head, [_use(use, estimate.currency, units) for use in estimate.stock])
 
 
 def _use(use: StockUse, currency: str | None, units: str) -> list[str]:
     price = money(use.price, currency) + (" per m" if use.length_mm is not None and use.price is not None else "")
-    return [use.name, str(use.count), length(use.length_mm, units), price, money(use.cost, currency)]
+    taken = length(use.length_mm, units)
+    return [use.name, str(use.count), taken, percent(use.utilisation), price, money(use.cost, currency)]
 
 
 def _totals(estimate: Estimate) -> list[str]:
@@ -83,14 +84,10 @@ def _totals(estimate: Estimate) -> list[str]:
 
 
 def _breaks(breaks: tuple[QuantityBreak, ...], currency: str | None) -> str:
-    rows = [
-        [
-            str(b.sets),
-            str(b.sheets),
-            percent(b.utilisation),
-            money(b.material_cost, currency),
-            money(b.cost_per_set, currency),
-        ]
-        for b in breaks
-    ]
-    return columns(["sets", "sheets", "utilisation", "material cost", "per set"], rows, left=0)
+    rows = [_break(one, currency) for one in breaks]
+    return columns(["sets", "sheets", "not placed", "utilisation", "material cost", "per set"], rows, left=0)
+
+
+def _break(one: QuantityBreak, currency: str | None) -> list[str]:
+    counts = [str(one.sets), str(one.sheets), str(one.unplaced)]
+    return [*counts, percent(one.utilisation), money(one.material_cost, currency), money(one.cost_per_set, currency)]

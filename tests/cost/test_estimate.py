@@ -31,7 +31,7 @@ def test_shares_by_net_area():
     assert [p.line_cost for p in e.parts] == [Decimal("20.00"), Decimal("30.00"), Decimal("50.00")]
     assert [p.material_cost for p in e.parts] == pytest.approx([20.0, 30.0, 50.0])
     assert (e.material_cost, e.currency) == (Decimal("100.00"), "EUR")
-    assert e.utilisation == pytest.approx(10000.0 / 500000.0)
+    assert e.utilisation == e.stock[0].utilisation == pytest.approx(10000.0 / 500000.0)
     assert (e.stock[0].name, e.stock[0].count, e.stock[0].price, e.stock[0].cost) == (
         "s3",
         1,

@@ -51,7 +51,7 @@ def test_json_has_the_fields_of_the_contract_and_nothing_rounded():
 def test_json_of_quantity_breaks():
     breaks = (QuantityBreak(5, 2, DONE.material_cost, 20.0, 0.8),)
     assert estimate_document(DONE, breaks)["quantity_breaks"] == [
-        {"sets": 5, "sheets": 2, "material_cost": 100.0, "cost_per_set": 20.0, "utilisation": 0.8}
+        {"sets": 5, "sheets": 2, "material_cost": 100.0, "cost_per_set": 20.0, "utilisation": 0.8, "unplaced": 0}
     ]
 
 
