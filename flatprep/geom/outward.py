@@ -121,8 +121,8 @@ def _lengthened(points: Floats, into: Floats, out: Floats, turn: Floats) -> tupl
     fine = (turn > 0.0) & (np.roll(turn, -1) > 0.0) & (lean > 1e-12)
     along = np.where(fine, _cross(out, beyond) / np.where(fine, lean, 1.0), 0.0)
     meet = points + along[:, None] * into
-    length = np.hypot(out[:, 0], out[:, 1])
-    off = np.abs(_cross(out, meet - points)) / np.maximum(length, 1e-300)
+    foot = np.sum((meet - points) * out, axis=1) / np.maximum(np.sum(out * out, axis=1), 1e-300)
+    off = np.hypot(*(meet - points - np.clip(foot, 0.0, 1.0)[:, None] * out).T)
     return meet, np.where(fine, off, np.inf)
 
 

@@ -177,9 +177,10 @@ class Layer:
         rows, since = sheet.rows.get(v), sheet.since.get(v, np.zeros(0))
         if rows is None:
             rows = grid_rows(self._cuts, v, bed.room, ROWS)
-        fresh = contact_rows(self._cuts, v, bed, sheet.seen.get(v, 0))
+        every = np.concatenate([rows, contact_rows(self._cuts, v, bed, sheet.seen.get(v, 0))])
         sheet.seen[v] = int(bed.laid[0])
-        sheet.rows[v] = np.concatenate([rows, fresh])
+        first = np.sort(np.unique(np.round(every, 7), return_index=True)[1])
+        sheet.rows[v] = every[first]
         start = np.full(len(sheet.rows[v]) - len(since), bed.room[0] - self._cuts.box[v, 0])
         sheet.since[v] = np.concatenate([since, start])
         return sheet.rows[v], sheet.since[v]

@@ -9,7 +9,9 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
+from shapely.geometry import MultiPoint, Polygon
 
+from flatprep.geom.bulge import Floats, Similarity
 from flatprep.nest.clock import Clock
 from flatprep.nest.construct import Bin, Layer
 from flatprep.nest.firstfit import Answer, answer_of
@@ -18,6 +20,7 @@ from flatprep.nest.search import search, sheets_task
 from flatprep.nest.shapes import Best, Container, Place, Shape
 
 Turns = tuple[float, ...] | None
+SAME_MM = 1e-6
 
 
 @dataclass(frozen=True, slots=True)
@@ -76,7 +79,7 @@ def improve(answer: Answer, margin_mm: float, effort: Effort, found: Callable[[A
     for number, turns in enumerate(classes):
         sheets = [n for n, kind in enumerate(current.supply) if answer.group.bins[kind].turns == turns]
         portion = portion_of(current, sheets, waiting=number == len(classes) - 1)
-        if len(portion.start) < 2:
+        if len(portion.start) < 2 or is_shortest(portion):
             continue
         task = sheets_task(portion.shapes, portion.containers, portion.start)
         track = _Track(current, portion, margin_mm, found)
@@ -124,6 +127,33 @@ def portion_of(answer: Answer, sheets: Sequence[int], *, waiting: bool) -> Porti
     return Portion(
         tuple(sheets), shapes, of_group, tuple(containers), tuple(replace(p, shape=own[p.shape]) for p in start)
     )
+
+
+def is_shortest(portion: Portion) -> bool:
+    """Tell whether one sheet is used no further than its widest piece, or the area of all pieces, asks for."""
+    if len(portion.containers) > 1:
+        return False
+    outer = portion.containers[0].outer
+    reach = max(_extent(portion.shapes[p.shape].outer, p.turn_deg, mirrored=p.mirrored)[1] + p.x for p in portion.start)
+    area = sum(s.count * Polygon(s.outer, s.holes).area for s in portion.shapes)
+    least = max(area / float(np.ptp(outer[:, 1])), *(_least_width(s) for s in portion.shapes))
+    return bool(reach - float(outer[:, 0].min()) <= least + SAME_MM)
+
+
+def _least_width(shape: Shape) -> float:
+    """Least extent of a shape along x over its turns; for a free one, across some edge of its hull."""
+    turns = shape.turns_deg
+    if turns is None:
+        hull = np.asarray(MultiPoint(shape.outer).convex_hull.boundary.coords)
+        turns = tuple(float(90.0 - np.degrees(np.arctan2(dy, dx))) for dx, dy in np.diff(hull, axis=0))
+    extents = [_extent(shape.outer, t, mirrored=m) for t in turns for m in shape.mirror]
+    return min(high - low for low, high in extents)
+
+
+def _extent(ring: Floats, turn_deg: float, *, mirrored: bool) -> tuple[float, float]:
+    """Least and greatest x of a ring turned about its origin."""
+    x = Similarity(turn_deg=turn_deg, mirrored=mirrored).points(ring)[:, 0]
+    return float(x.min()), float(x.max())
 
 
 def _waiting(answer: Answer, kinds: Sequence[Bin]) -> tuple[list[Place], Container | None]:

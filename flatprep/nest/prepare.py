@@ -22,6 +22,8 @@ TOLERANCE_SHARE = 1.0 / 25.0
 """Outlines are simplified within this share of the spacing."""
 QUARTER = 12
 """Chords a quarter circle of a grown corner."""
+OFFSET_EXCESS = 1.002
+"""Offsets are made this much larger: GEOS takes ends of offset edges nearer than a thousandth of it for one."""
 MANY = 400
 """Rings of more points are simplified before they are grown: an offset of a long comb would take minutes."""
 
@@ -52,7 +54,7 @@ def grow(part: Part, spacing_mm: float, *, windows: bool) -> Grown:
     shape = Polygon(shape.exterior, [h for h in shape.interiors if windows])
     half = spacing_mm / 2.0
     if half > 0.0:
-        shape = _one_piece(shape.buffer(half / cos(pi / (4 * QUARTER)), quad_segs=QUARTER))
+        shape = _one_piece(shape.buffer(_offset(half), quad_segs=QUARTER))
     box = np.array(part.outer.bounds) + np.array([-half, -half, half, half])
     outer = clipped(simple_ring(np.asarray(shape.exterior.coords)[:-1], tolerance, 1.0), box)
     holes = [simple_ring(np.asarray(h.coords)[:-1], tolerance, -1.0) for h in shape.interiors if windows]
@@ -100,8 +102,13 @@ def usable_region(sheet: StockSheet, inset_mm: float) -> Polygon | MultiPolygon:
     border = sheet.outline if sheet.outline is not None else _rectangle_points(sheet)
     region = valid_polygon(Polygon(border, list(sheet.holes)))
     if inset_mm > 0.0:
-        region = region.buffer(-inset_mm / cos(pi / (4 * QUARTER)), quad_segs=QUARTER)
+        region = region.buffer(-_offset(inset_mm), quad_segs=QUARTER)
     return region
+
+
+def _offset(distance_mm: float) -> float:
+    """Return what to offset by so that chords of round corners, too, are `distance_mm` away."""
+    return OFFSET_EXCESS * distance_mm / cos(pi / (4 * QUARTER))
 
 
 def _rectangle_points(sheet: StockSheet) -> Floats:

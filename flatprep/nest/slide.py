@@ -126,10 +126,15 @@ def _leftmost(cuts: Cuts, bed: Bed, v: int, x: float, y: float) -> float:
 
 
 def contact_rows(cuts: Cuts, v: int, bed: Bed, seen: int) -> Floats:
-    """Heights at which variant v lies just on, and just under, each piece laid after the first `seen`."""
-    who, y = bed.who[seen : bed.laid[0]], bed.at[seen : bed.laid[0], 1]
-    on, under = y + cuts.box[who, 3] - cuts.box[v, 1], y + cuts.box[who, 1] - cuts.box[v, 3]
-    return np.column_stack([on, under]).ravel()
+    """Heights at which variant v begins or ends at a level edge of a piece laid after the first `seen`."""
+    levels = [
+        y + cuts.level[cuts.level_at[w] : cuts.level_at[w + 1]]
+        for w, y in zip(bed.who[seen : bed.laid[0]], bed.at[seen : bed.laid[0], 1], strict=True)
+    ]
+    level = np.concatenate([np.zeros(0), *levels])
+    rows = np.concatenate([level - cuts.box[v, 1], level - cuts.box[v, 3]])
+    inside = (rows >= bed.room[1] - cuts.box[v, 1] - THIN_MM) & (rows <= bed.room[3] - cuts.box[v, 3] + THIN_MM)
+    return np.asarray(rows[inside], dtype=np.float64)
 
 
 def grid_rows(cuts: Cuts, v: int, room: Floats, count: int) -> Floats:

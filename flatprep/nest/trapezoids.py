@@ -19,6 +19,8 @@ Span = tuple[int, int]
 
 THIN_MM = 1e-8
 """Levels nearer than this are one; what overlaps by no more counts as touching."""
+MOST_LEVELS = 6
+"""Level edges of an outline that others are tried at."""
 
 
 class Cuts(NamedTuple):
@@ -32,6 +34,10 @@ class Cuts(NamedTuple):
         Those of variant v are at[v] to at[v + 1], by rising level.
     box : ndarray, shape (v, 4)
         Least x, least y, greatest x, greatest y, mm.
+    level : ndarray, shape (k,)
+        Heights at which an outline has its box's sides and its longest level edges, mm; those of variant v are
+        level_at[v] to level_at[v + 1].
+    level_at : ndarray, shape (v + 1,), int64
     """
 
     row: Floats
@@ -39,6 +45,8 @@ class Cuts(NamedTuple):
     column: Floats
     column_at: Ints
     box: Floats
+    level: Floats
+    level_at: Ints
 
 
 def cut_up(outlines: Sequence[Sequence[Floats]]) -> Cuts:
@@ -46,7 +54,18 @@ def cut_up(outlines: Sequence[Sequence[Floats]]) -> Cuts:
     rows = [trapezoids(edges_of(rings)) for rings in outlines]
     columns = [trapezoids(edges_of([r[:, ::-1] for r in rings])) for rings in outlines]
     boxes = [np.concatenate([np.vstack(rings).min(axis=0), np.vstack(rings).max(axis=0)]) for rings in outlines]
-    return Cuts(_stacked(rows), _starts(rows), _stacked(columns), _starts(columns), np.array(boxes).reshape(-1, 4))
+    levels = [levels_of(rings) for rings in outlines]
+    box, level = np.array(boxes).reshape(-1, 4), np.concatenate([np.zeros(0), *levels])
+    return Cuts(_stacked(rows), _starts(rows), _stacked(columns), _starts(columns), box, level, _starts(levels))
+
+
+def levels_of(rings: Sequence[Floats]) -> Floats:
+    """Heights of the box's lower and upper side and of the longest level edges, rising, none twice."""
+    edges = np.vstack([np.hstack([ring, np.roll(ring, -1, axis=0)]) for ring in rings])
+    flat = edges[np.abs(edges[:, 3] - edges[:, 1]) <= THIN_MM]
+    longest = flat[np.argsort(-np.abs(flat[:, 2] - flat[:, 0]), kind="stable")][:MOST_LEVELS, 1]
+    every = np.array([edges[:, 1].min(), edges[:, 1].max(), *longest])
+    return np.sort(every[np.unique(np.round(every, 7), return_index=True)[1]])
 
 
 def edges_of(rings: Sequence[Floats]) -> Floats:
