@@ -1,0 +1,108 @@
+"""What the DXF writer writes, read back with ezdxf alone."""
+
+import io
+
+import ezdxf
+import numpy as np
+import pytest
+from ezdxf.math import bulge_to_arc
+
+from flatprep.drawing.write import border_drawing, cutting_order, part_drawing, sheet_drawing
+from flatprep.geom.bulge import circle, reverse
+from flatprep.model.drawing import Contour, Curve, Part
+from flatprep.model.layout import Placement, SheetLayout
+
+PLATE = np.array([[0.0, 0, 0], [40, 0, 1], [40, 20, 0], [0, 20, 0]])
+HOLE = circle(10.0, 10.0, 3.0)
+
+
+def part(name="plate", **more):
+    return Part(name, Contour(PLATE), (Contour(reverse(HOLE, closed=True)),), **more)
+
+
+def sheet(*placements, holes=()):
+    outline = np.array([[0.0, 0], [300, 0], [300, 200], [0, 200]])
+    return SheetLayout("al3", "al-5052-h32", 3.0, outline, holes, 100.0, 0.1, placements)
+
+
+def read(text):
+    return ezdxf.read(io.StringIO(text))
+
+
+def on(doc, layer):
+    return [e for e in doc.modelspace() if e.dxf.layer == layer]
+
+
+def test_sheet_is_sound_in_millimetres_and_every_contour_one_closed_entity():
+    doc = read(sheet_drawing(sheet(Placement("plate", 1, 0.0, False, 20.0, 30.0)), {"plate": part()}))
+    assert doc.audit().errors == []
+    assert doc.header["$INSUNITS"] == 4
+    hole, outer = on(doc, "CUT")
+    assert (hole.dxftype(), outer.dxftype()) == ("CIRCLE", "LWPOLYLINE")  # inner before outer
+    assert (hole.dxf.center.x, hole.dxf.center.y, hole.dxf.radius) == (30.0, 40.0, 3.0)
+    assert outer.closed
+    assert [p[4] for p in outer.get_points()] == [0, 1, 0, 0]
+
+
+def test_mirrored_and_turned_part_lands_where_the_placement_says():
+    """(x, y) -> (-x, y) -> turned by 90 -> (-y, -x) -> moved by (100, 100)."""
+    doc = read(sheet_drawing(sheet(Placement("plate", 1, 90.0, True, 100.0, 100.0)), {"plate": part()}))
+    hole, outer = on(doc, "CUT")
+    assert (hole.dxf.center.x, hole.dxf.center.y) == pytest.approx((90.0, 90.0))
+    points = outer.get_points("xyb")
+    assert [(x, y) for x, y, _ in points] == [(100.0, 100.0), (100.0, 60.0), (80.0, 60.0), (80.0, 100.0)]
+    centre, _, _, radius = bulge_to_arc(points[1][:2], points[2][:2], points[1][2])
+    assert (centre.x, centre.y, radius) == pytest.approx((90.0, 60.0, 10.0))
+    assert points[1][2] == -1.0
+
+
+def test_the_same_layout_gives_the_same_bytes():
+    made = [sheet_drawing(sheet(Placement("plate", 1, 0.0, False, 20.0, 30.0)), {"plate": part()}) for _ in range(2)]
+    assert made[0] == made[1]
+    assert "2026" not in made[0].split("HANDSEED")[0].split("TDCREATE")[1][:40]
+
+
+def test_marks_are_marked_and_bend_lines_only_noted():
+    mark = Curve(np.array([[5.0, 5, 0], [15, 5, 0]]), closed=False)
+    bend = Curve(np.array([[20.0, 0, 0], [20, 20, 0]]), closed=False)
+    doc = read(
+        sheet_drawing(sheet(Placement("plate", 1, 0.0, False, 0.0, 0.0)), {"plate": part(marks=(mark,), bends=(bend,))})
+    )
+    assert [e.dxftype() for e in on(doc, "MARK")] == ["LWPOLYLINE"]
+    assert sum(e.dxftype() == "LWPOLYLINE" for e in on(doc, "NOTE")) == 1
+    assert len(on(doc, "CUT")) == 2
+
+
+def test_border_holes_and_labels_are_on_layers_of_their_own():
+    hole = np.array([[200.0, 100], [220, 100], [220, 120], [200, 120]])
+    layout = sheet(Placement("plate", 7, 0.0, False, 0.0, 0.0), holes=(hole,))
+    doc = read(sheet_drawing(layout, {"plate": part()}, title=("wheel hoe", "revision B")))
+    assert len(on(doc, "SHEET")) == 2
+    assert {e.dxf.text for e in on(doc, "NOTE") if e.dxftype() == "TEXT"} == {"plate 7", "wheel hoe", "revision B"}
+    styles = {layer.dxf.name: layer.dxf.linetype for layer in doc.layers}
+    assert len({styles[n] for n in ("CUT", "MARK", "SHEET", "NOTE")}) == 4
+    assert {doc.layers.get(n).dxf.color for n in ("CUT", "MARK", "SHEET", "NOTE")} == {8}
+
+
+def test_piece_in_a_window_is_cut_first_then_small_before_large():
+    frame = Part("frame", Contour(circle(0, 0, 50.0)), (Contour(reverse(circle(0, 0, 30.0), closed=True)),))
+    coin, large, small = (
+        Part(n, Contour(circle(0, 0, r))) for n, r in (("coin", 20.0), ("large", 40.0), ("small", 5.0))
+    )
+    parts = {p.name: p for p in (frame, coin, large, small)}
+    places = [("frame", 60.0), ("large", 200.0), ("coin", 60.0), ("small", 130.0)]
+    layout = sheet(*(Placement(n, 1, 0.0, False, x, 80.0) for n, x in places))
+    assert [layout.placements[k].part for k in cutting_order(layout, parts)] == ["coin", "small", "frame", "large"]
+
+
+def test_part_drawing_keeps_the_parts_own_coordinates():
+    doc = read(part_drawing([part(), Part("disc", Contour(circle(100.0, 5.0, 8.0)))], notes=("as cut",)))
+    assert doc.audit().errors == []
+    assert [e.dxftype() for e in on(doc, "CUT")] == ["CIRCLE", "LWPOLYLINE", "CIRCLE"]
+    assert [e.dxf.text for e in on(doc, "NOTE")] == ["as cut"]
+
+
+def test_border_drawing_can_be_read_as_an_outline():
+    doc = read(border_drawing(PLATE, (HOLE,), notes=("rest",)))
+    assert [e.dxftype() for e in on(doc, "CUT")] == ["LWPOLYLINE", "LWPOLYLINE"]
+    assert all(e.closed for e in on(doc, "CUT"))

@@ -1,0 +1,79 @@
+"""The picture of a sheet."""
+
+from xml.etree import ElementTree
+
+import numpy as np
+import pytest
+
+from flatprep.geom.bulge import circle
+from flatprep.model.drawing import Contour, Curve, Part
+from flatprep.model.layout import Placement, SheetLayout
+from flatprep.report.sheet_svg import OKABE_ITO, sheet_svg
+
+SVG = "{http://www.w3.org/2000/svg}"
+MARK = Curve(np.array([[-5.0, 0, 0], [5, 0, 0]]), closed=False)
+PARTS = {n: Part(n, Contour(circle(0, 0, 20.0)), marks=(MARK,)) for n in ("a & b", "wheel")}
+
+
+def picture(**more):
+    outline = np.array([[0.0, 0], [300, 0], [300, 200], [0, 200]])
+    places = (Placement("a & b", 1, 30.0, True, 60.0, 50.0), Placement("wheel", 1, 0.0, False, 120.0, 50.0))
+    one = SheetLayout("al3", "al-5052-h32", 3.0, outline, (), 148.0, 0.042, places)
+    return ElementTree.fromstring(sheet_svg(one, 2, PARTS, margin_mm=8.0, job="wheel hoe", **more))
+
+
+def texts(root):
+    return [t.text for t in root.iter(f"{SVG}text")]
+
+
+def test_picture_is_true_to_scale():
+    root = picture()
+    width, height = (float(root.get(k).removesuffix("mm")) for k in ("width", "height"))
+    box = [float(v) for v in root.get("viewBox").split(",")] if "," in root.get("viewBox") else None
+    box = box or [float(v) for v in root.get("viewBox").split()]
+    assert (width, height) == pytest.approx(box[2:], abs=0.002)
+    assert box[0] < 0.0
+    assert box[0] + box[2] > 300.0
+
+
+def test_every_piece_is_named_and_escaped():
+    root = picture()
+    assert {"a & b 1", "wheel 1"} <= set(texts(root))
+    titles = {t.text for t in root.iter(f"{SVG}title")}
+    assert {"a & b 1", "wheel 1", "wheel hoe sheet 2"} <= titles
+
+
+def test_piece_is_moved_by_its_placement_with_y_turned_over():
+    """Mirrored, turned by 30 degrees, moved to (60, 50): the part's origin comes to (60, -50) on the page."""
+    group = next(g for g in picture().iter(f"{SVG}g") if g.find(f"{SVG}title") is not None)
+    a, b, c, d, e, f = (float(v) for v in group.get("transform").removeprefix("matrix(").removesuffix(")").split())
+    assert (e, f) == (60.0, -50.0)
+    assert a * d - b * c == pytest.approx(-1.0)
+    assert (a, b) == pytest.approx((-np.cos(np.radians(30)), np.sin(np.radians(30))))
+
+
+def test_sheet_data_used_length_and_scale_bar_are_written():
+    words = " | ".join(texts(picture()))
+    for part in (
+        "wheel hoe",
+        "sheet 2",
+        "al3",
+        "al-5052-h32",
+        "300 × 200",
+        "2 parts",
+        "4.2",
+        "used length 148",
+        "50 mm",
+    ):
+        assert part in words.replace("\u00a0", " ")
+
+
+def test_inch_job_is_told_in_inches():
+    words = " | ".join(texts(picture(units="in"))).replace("\u00a0", " ")
+    assert "used length 5.827 in" in words
+    assert "mm" not in words
+
+
+def test_each_part_has_a_colour_of_the_palette():
+    fills = {p.get("fill") for p in picture().iter(f"{SVG}path")} & set(OKABE_ITO)
+    assert len(fills) == 2
