@@ -6,10 +6,12 @@ own folder, or the user's cache folder; where neither can be written, in a folde
 """
 
 import atexit
+import hashlib
 import os
 import shutil
 import tempfile
 from collections.abc import Callable
+from pathlib import Path
 from typing import Any, TypeVar, cast
 
 F = TypeVar("F", bound=Callable[..., Any])
@@ -17,14 +19,24 @@ F = TypeVar("F", bound=Callable[..., Any])
 JIT = os.environ.get("FLATPREP_NO_JIT") != "1"
 
 
-def _temporary_cache() -> None:
-    """Give this process and its children a cache folder that goes away with it."""
-    import numba  # noqa: PLC0415
+def drop_stale(package: Path) -> None:
+    """Delete compiled code when the source of any kernel has changed.
 
-    folder = tempfile.mkdtemp(prefix="flatprep-numba-")
-    atexit.register(shutil.rmtree, folder, ignore_errors=True)
-    os.environ["NUMBA_CACHE_DIR"] = folder
-    numba.config.CACHE_DIR = folder
+    numba looks at the one file a kernel stands in, though it compiles the kernels of other files into it.
+    """
+    sources = [p.read_bytes() for p in sorted(package.glob("*.py"))]
+    digest = hashlib.sha256(b"".join(s for s in sources if b"_jit import" in s)).hexdigest()
+    cache = package / "__pycache__"
+    note = cache / "kernels.sha256"
+    try:
+        if note.exists() and note.read_text() == digest:
+            return
+        cache.mkdir(exist_ok=True)
+        for compiled in [*cache.glob("*.nbi"), *cache.glob("*.nbc")]:
+            compiled.unlink(missing_ok=True)
+        note.write_text(digest)
+    except OSError:  # not ours to write to: an installed package does not change either
+        return
 
 
 def kernel(func: F) -> F:
@@ -46,10 +58,24 @@ def _compiled(func: F, options: dict[str, Any]) -> F:
     if not JIT:
         func.py_func = func  # type: ignore[attr-defined]
         return func
-    import numba  # noqa: PLC0415
+    import numba
 
     try:
         return cast(F, numba.njit(cache=True, nogil=True, **options)(func))
     except RuntimeError:  # numba found no folder to write to
         _temporary_cache()
         return cast(F, numba.njit(cache=True, nogil=True, **options)(func))
+
+
+def _temporary_cache() -> None:
+    """Give this process and its children a cache folder that goes away with it."""
+    import numba
+
+    folder = tempfile.mkdtemp(prefix="flatprep-numba-")
+    atexit.register(shutil.rmtree, folder, ignore_errors=True)
+    os.environ["NUMBA_CACHE_DIR"] = folder
+    numba.config.CACHE_DIR = folder  # type: ignore[attr-defined]
+
+
+if JIT:
+    drop_stale(Path(__file__).parent)

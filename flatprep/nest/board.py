@@ -97,7 +97,7 @@ def weighted_loss(ground: Ground, i: int, v: int, x: float, y: float, limit: flo
             if loss > 0.0:
                 total += loss * board.weight[i, j]
                 if total > limit:
-                    return total
+                    break
     return total
 
 
@@ -138,7 +138,7 @@ def settle_all(ground: Ground) -> float:
 @bare
 def is_colliding(board: Board, i: int) -> bool:
     """Tell whether piece i overlaps another."""
+    worst = 0.0
     for j in range(len(board.variant)):
-        if board.loss[i, j] > 0.0:
-            return True
-    return False
+        worst = max(worst, board.loss[i, j])
+    return worst > 0.0

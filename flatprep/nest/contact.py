@@ -30,27 +30,26 @@ def is_inside(rings: Rings, v: int, px: float, py: float) -> bool:
 @bare
 def edges_cross(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
     """Tell whether an edge of variant a crosses one of variant b moved by (dx, dy) mm."""
-    edge = rings.edge
-    left, low = rings.box[b, 0] + dx, rings.box[b, 1] + dy
-    right, high = rings.box[b, 2] + dx, rings.box[b, 3] + dy
-    for i in range(rings.at[a, 0], rings.at[a, 1]):
-        x0, y0, x1, y1 = edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]
-        i_left, i_right = min(x0, x1), max(x0, x1)
-        i_low, i_high = min(y0, y1), max(y0, y1)
-        if i_right < left or i_left > right or i_high < low or i_low > high:
+    edge, box = rings.edge, rings.box
+    for j in range(rings.at[b, 0], rings.at[b, 1]):
+        cx, cy, ex, ey = edge[j, 0] + dx, edge[j, 1] + dy, edge[j, 2] + dx, edge[j, 3] + dy
+        left, right = min(cx, ex), max(cx, ex)
+        low, high = min(cy, ey), max(cy, ey)
+        if right < box[a, 0] or left > box[a, 2] or high < box[a, 1] or low > box[a, 3]:
             continue
-        ux, uy = x1 - x0, y1 - y0
-        sx, sy = x0 - dx, y0 - dy
-        for j in range(rings.at[b, 0], rings.at[b, 1]):
-            cx, cy, ex, ey = edge[j, 0], edge[j, 1], edge[j, 2], edge[j, 3]
-            c_left = ux * (cy - sy) - uy * (cx - sx) > 0.0
-            e_left = ux * (ey - sy) - uy * (ex - sx) > 0.0
-            if c_left != e_left:
-                vx, vy = ex - cx, ey - cy
-                a_left = vx * (sy - cy) - vy * (sx - cx) > 0.0
-                b_left = vx * (sy + uy - cy) - vy * (sx + ux - cx) > 0.0
-                if a_left != b_left:
-                    return True
+        vx, vy = ex - cx, ey - cy
+        for i in range(rings.at[a, 0], rings.at[a, 1]):
+            x0, x1 = edge[i, 0], edge[i, 2]
+            if (x0 < left and x1 < left) or (x0 > right and x1 > right):
+                continue
+            y0, y1 = edge[i, 1], edge[i, 3]
+            if (y0 < low and y1 < low) or (y0 > high and y1 > high):
+                continue
+            if (vx * (y0 - cy) - vy * (x0 - cx) > 0.0) == (vx * (y1 - cy) - vy * (x1 - cx) > 0.0):
+                continue
+            ux, uy = x1 - x0, y1 - y0
+            if (ux * (cy - y0) - uy * (cx - x0) > 0.0) != (ux * (ey - y0) - uy * (ex - x0) > 0.0):
+                return True
     return False
 
 
@@ -103,7 +102,15 @@ def _corners_from_edges(rings: Rings, a: int, b: int, dx: float, dy: float, cap:
         ):
             continue
         for i in range(rings.at[a, 0], rings.at[a, 1]):
-            best = min(best, squared_distance(px, py, edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]))
+            x0, y0, x1, y1 = edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]
+            if (
+                (x0 - px > cap and x1 - px > cap)
+                or (px - x0 > cap and px - x1 > cap)
+                or (y0 - py > cap and y1 - py > cap)
+                or (py - y0 > cap and py - y1 > cap)
+            ):
+                continue
+            best = min(best, squared_distance(px, py, x0, y0, x1, y1))
     return best
 
 

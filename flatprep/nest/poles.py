@@ -35,13 +35,13 @@ def inner_circles(edges: Floats, most: int = MOST_POLES) -> Floats:
     nodes = np.stack(np.meshgrid(*across), axis=-1).reshape(-1, 2)
     nodes = np.vstack([nodes, _middles(edges)])
     room = np.where(_inside(nodes, edges), _distance(nodes, edges), -1.0)
-    circles = []
+    circles: list[tuple[float, float, float]] = []
     while len(circles) < most:
         at = int(np.argmax(room))
         radius = float(room[at])
         if circles and radius < LEAST_SHARE * circles[0][2]:
             break
-        circles.append((*nodes[at], max(radius, 0.0)))
+        circles.append((float(nodes[at, 0]), float(nodes[at, 1]), max(radius, 0.0)))
         room = np.minimum(room, np.hypot(*(nodes - nodes[at]).T) - radius)
     return np.array(circles, dtype=np.float64)
 

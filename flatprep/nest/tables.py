@@ -78,7 +78,7 @@ def prepare_tables(outlines: Outlines, packed: int) -> Tables:
 
 
 def _grids_of_pairs(outlines: Outlines, packed: int) -> tuple[npt.NDArray[np.int32], Ints]:
-    """Number the grids: one for each pair of shapes, mirror states and relative turn (to 1e-6 degrees)."""
+    """Give a number to each pair of shapes, mirror states and relative turn (to 1e-6 degrees)."""
     v = len(outlines.shape)
     a, b = np.triu_indices(packed)
     relative = np.round((outlines.turn[b, 2] - outlines.turn[a, 2]) % 360.0 * 1e6).astype(np.int64) % WHOLE_TURN
@@ -118,6 +118,19 @@ def fill_node(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> Non
 
 
 @inner
+def fill_cell(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> None:
+    """Compute those of the four nodes of a cell that are not yet known."""
+    if tables.node[t, i, j, 0] == 0.0:
+        fill_node(outlines, tables, t, i, j)
+    if tables.node[t, i + 1, j, 0] == 0.0:
+        fill_node(outlines, tables, t, i + 1, j)
+    if tables.node[t, i, j + 1, 0] == 0.0:
+        fill_node(outlines, tables, t, i, j + 1)
+    if tables.node[t, i + 1, j + 1, 0] == 0.0:
+        fill_node(outlines, tables, t, i + 1, j + 1)
+
+
+@inner
 def pair_loss(outlines: Outlines, tables: Tables, a: int, b: int, dx: float, dy: float) -> float:
     """Loss (mm²) of variant b, its origin (dx, dy) mm from that of variant a: 0 just where they do not overlap."""
     t = tables.of[a, b]
@@ -144,14 +157,7 @@ def pair_loss(outlines: Outlines, tables: Tables, a: int, b: int, dx: float, dy:
         return 0.0
     i, j = int(u), int(w)
     u, w = u - i, w - j
-    if tables.node[t, i, j, 0] == 0.0:
-        fill_node(outlines, tables, t, i, j)
-    if tables.node[t, i + 1, j, 0] == 0.0:
-        fill_node(outlines, tables, t, i + 1, j)
-    if tables.node[t, i, j + 1, 0] == 0.0:
-        fill_node(outlines, tables, t, i, j + 1)
-    if tables.node[t, i + 1, j + 1, 0] == 0.0:
-        fill_node(outlines, tables, t, i + 1, j + 1)
+    fill_cell(outlines, tables, t, i, j)
     near = tables.node[t, i, j, 1] * (1.0 - w) + tables.node[t, i, j + 1, 1] * w
     far = tables.node[t, i + 1, j, 1] * (1.0 - w) + tables.node[t, i + 1, j + 1, 1] * w
     return float(near * (1.0 - u) + far * u)

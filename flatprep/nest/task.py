@@ -101,7 +101,7 @@ def sheets_task(shapes: Sequence[Shape], containers: Sequence[Container], start:
 
 
 def _even_turns(kinds: int) -> tuple[float, ...]:
-    """Turns (degrees) to pack of shapes that may turn freely, evenly spread; fewer where there are many kinds."""
+    """Spread the turns (degrees) of shapes that may turn freely evenly; fewer where there are many kinds."""
     many = next((turns for most, turns in FREE_TURNS if kinds <= most), FEWEST_FREE_TURNS)
     return tuple(360.0 * k / many for k in range(many))
 
@@ -132,8 +132,9 @@ def _spots(outlines: Outlines, field: Field, variants: Ints, home: Ints, turn: F
     """Layout with the field's fixed pieces added at the end."""
     fixed = len(field.fixed)
     last = int(home.max())
+    rings = outlines.rings
     right = [
-        x + turned(outlines.rings.edge[slice(*outlines.rings.at[v]), :2], t - outlines.turn[v, 2], mirrored=False)[:, 0].max()
+        x + turned(rings.edge[slice(*rings.at[v]), :2], t - outlines.turn[v, 2], mirrored=False)[:, 0].max()
         for v, t, x, k in zip(variants, turn, at[:, 0], home, strict=True)
         if k == last
     ]
