@@ -7,18 +7,20 @@ from itertools import groupby
 from flatprep.bench.bends import BendLines, bend_lines, check_bends
 from flatprep.bench.cautions import job_cautions, step_caution
 from flatprep.bench.finish import coated
+from flatprep.bench.joints import check_joints
 from flatprep.bench.match import Found, check_counts, places_of, targets
 from flatprep.bench.ops import Op
 from flatprep.bench.part import BenchPart
 from flatprep.bench.plan import plan, reason
 from flatprep.bench.questions import questions
 from flatprep.bench.sides import opposite_note, side_bound
+from flatprep.job.values import JointAsk
 from flatprep.model.work import Checklist, PartSteps, Step, Tool
 from flatprep.practice.asked import all_work
 
 
-def checklist(parts: Sequence[BenchPart]) -> Checklist:
-    """Return the bench work of a job's parts.
+def checklist(parts: Sequence[BenchPart], joints: Sequence[JointAsk] = ()) -> Checklist:
+    """Return the bench work of a job's parts, and its joints worked out.
 
     Raises
     ------
@@ -29,7 +31,7 @@ def checklist(parts: Sequence[BenchPart]) -> Checklist:
     done: list[PartSteps] = []
     for _, group in groupby(parts, key=lambda bench: bench.where or bench.name):
         done += _drawing(list(group))
-    return Checklist(tuple(done), job_cautions(parts), _kit(done))
+    return Checklist(tuple(done), job_cautions(parts), _kit(done), check_joints(joints, parts))
 
 
 def _drawing(group: list[BenchPart]) -> list[PartSteps]:

@@ -96,6 +96,52 @@ class Tool:
     parts: tuple[str, ...]
 
 
+class Outcome(StrEnum):
+    """How a check came out; ``open``: it cannot be told from what is given."""
+
+    GOOD = "good"
+    BAD = "bad"
+    OPEN = "open"
+
+
+@dataclass(frozen=True, slots=True)
+class JointCheck:
+    """One thing that was checked of a joint: how it came out, with the figures it rests on."""
+
+    what: str
+    outcome: Outcome
+    text: str
+
+
+@dataclass(frozen=True, slots=True)
+class JointReport:
+    """A joint worked out.
+
+    Attributes
+    ----------
+    name, fastener : str
+    count : int
+        Joints of this kind in one set.
+    grip_mm : float
+        What the fastener passes through before its thread takes hold.
+    buy : str
+        The fastener to buy, with its length; empty where none fits.
+    checks : tuple of JointCheck
+    """
+
+    name: str
+    fastener: str
+    count: int
+    grip_mm: float
+    buy: str
+    checks: tuple[JointCheck, ...]
+
+    @property
+    def closes(self) -> bool:
+        """Whether nothing that was checked is wrong."""
+        return all(check.outcome is not Outcome.BAD for check in self.checks)
+
+
 @dataclass(frozen=True, slots=True)
 class Checklist:
     """The bench work of a job.
@@ -104,8 +150,11 @@ class Checklist:
     ----------
     tools : tuple of Tool
         The kit list.
+    joints : tuple of JointReport
+        The joints of the job, worked out.
     """
 
     parts: tuple[PartSteps, ...]
     cautions: tuple[str, ...]
     tools: tuple[Tool, ...] = ()
+    joints: tuple[JointReport, ...] = ()

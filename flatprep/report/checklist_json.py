@@ -1,6 +1,6 @@
 """The checklist as one JSON document."""
 
-from flatprep.model.work import Checklist, PartSteps, Step
+from flatprep.model.work import Checklist, JointReport, PartSteps, Step
 
 
 def checklist_document(checklist: Checklist) -> dict[str, object]:
@@ -10,7 +10,16 @@ def checklist_document(checklist: Checklist) -> dict[str, object]:
         "parts": [_part(part) for part in checklist.parts],
         "cautions": list(checklist.cautions),
         "tools": [{"tool": t.name, "uses": t.uses, "parts": list(t.parts)} for t in checklist.tools],
+        "joints": [_joint(joint) for joint in checklist.joints],
     }
+
+
+def _joint(joint: JointReport) -> dict[str, object]:
+    return {
+        "name": joint.name, "fastener": joint.fastener, "count": joint.count, "closes": joint.closes,
+        "grip_mm": joint.grip_mm, "buy": joint.buy or None,
+        "checks": [{"what": c.what, "outcome": str(c.outcome), "text": c.text} for c in joint.checks],
+    }  # fmt: skip
 
 
 def _part(part: PartSteps) -> dict[str, object]:

@@ -2,7 +2,7 @@
 
 from textwrap import wrap
 
-from flatprep.model.work import Checklist, PartSteps, Step
+from flatprep.model.work import Checklist, JointReport, Outcome, PartSteps, Step
 from flatprep.report.figures import counted, length, place
 
 _WIDTH = 110
@@ -20,6 +20,8 @@ def checklist_text(checklist: Checklist, units: str = "mm") -> str:
             *(f"  [ ] {t.name}  ({t.uses} x: {', '.join(t.parts)})" for t in checklist.tools),
             "",
         ]
+    for joint in checklist.joints:
+        lines += [*_joint(joint), ""]
     if checklist.cautions:
         lines += ["cautions", *(line for text in checklist.cautions for line in _wrapped(text, "  - "))]
     return "\n".join(lines).rstrip() + "\n"
@@ -55,6 +57,17 @@ def _step(step: Step, units: str) -> list[str]:
         lines.append(f"          at {shown}{more}")
     lines += _wrapped(step.note, "          ") if step.note else []
     lines += _wrapped(step.caution, "          ! ") if step.caution else []
+    return lines
+
+
+_MARK = {Outcome.GOOD: "ok", Outcome.BAD: "NO", Outcome.OPEN: "? "}
+
+
+def _joint(joint: JointReport) -> list[str]:
+    closes = "closes" if joint.closes else "does NOT close"
+    lines = [f"joint {joint.name}: {closes}; {counted(joint.count, 'piece')} of {joint.buy or joint.fastener}"]
+    for check in joint.checks:
+        lines += _wrapped(f"{check.what}: {check.text}", f"  {_MARK[check.outcome]}  ")
     return lines
 
 
