@@ -1,5 +1,6 @@
 """Work on many files in processes that can be stopped: one that hangs or eats memory costs itself, not the run."""
 
+import gc
 import multiprocessing
 import signal
 import time
@@ -9,6 +10,8 @@ from dataclasses import dataclass
 from multiprocessing.connection import Connection, wait
 from typing import Any, Generic, TypeVar
 
+_OBJECTS = 200_000
+"""A worker looks for cycles after an item that has left more new objects than this."""
 Item = TypeVar("Item")
 Result = TypeVar("Result")
 
@@ -124,6 +127,9 @@ def _serve(pipe: Connection, work: Callable[[Any], Any], megabytes: float) -> No
     # the parent answers for interruptions
     signal.signal(signal.SIGINT, signal.SIG_IGN)
     _cap_memory(megabytes)
+    # reading a drawing makes many objects and hardly a cycle: looking for cycles all the time costs a tenth
+    gc.disable()
+    gc.freeze()
     while True:
         try:
             item = pipe.recv()
@@ -135,6 +141,9 @@ def _serve(pipe: Connection, work: Callable[[Any], Any], megabytes: float) -> No
             answer = Lost(f"it takes more than {megabytes:.0f} MB of memory")
         with suppress(BrokenPipeError):
             pipe.send(answer)
+        del item, answer
+        if gc.get_count()[0] > _OBJECTS:
+            gc.collect()
 
 
 def _cap_memory(megabytes: float) -> None:

@@ -74,9 +74,14 @@ def _coincide(a: Floats, b: Floats, same_mm: float) -> bool:
 
 
 def _lies_along(xy: Floats, edge: shapely.LineString, same_mm: float) -> bool:
+    """Tell whether all points, and the middles between them, are near the edge; a few are asked first."""
     middles = (xy[1:] + xy[:-1]) / 2.0
     probe = shapely.points(np.vstack([xy, middles]))
-    return bool((shapely.distance(probe, edge) <= same_mm).all())
+    few = probe[:: max(1, len(probe) // 8)]
+    if not shapely.dwithin(edge, few, same_mm).all():
+        return False
+    shapely.prepare(edge)
+    return bool(shapely.dwithin(edge, probe, same_mm).all())
 
 
 def _closed_line(xy: Floats) -> shapely.LineString:

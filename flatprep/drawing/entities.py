@@ -14,6 +14,8 @@ from flatprep.geom.smooth import ellipse, nurbs
 
 # ezdxf types its DXF attributes only loosely
 Dxf = Any
+FULL_RAD = 1e-5
+"""An arc that misses a full turn by less is a circle: programs write angles with five decimals."""
 
 
 class UnusableEntityError(Exception):
@@ -94,7 +96,7 @@ def _arc(e: Dxf, _tol: float) -> Shape:
         raise UnusableEntityError(f"its radius is {r:g}")
     start, end = radians(e.dxf.start_angle), radians(e.dxf.end_angle)
     sweep = (end - start) % (2 * pi)
-    full = sweep < 1e-9 or sweep > 2 * pi - 1e-9
+    full = sweep < 1e-9 or sweep > 2 * pi - FULL_RAD
     if full:
         return Shape(
             np.array([[flip * c.x + r, c.y, 1.0], [flip * c.x - r, c.y, 1.0]]),
@@ -120,7 +122,7 @@ def _ellipse(e: Dxf, tol: float) -> Shape:
     minor = flip * ratio * np.array([-m.y, m.x])
     start, end = e.dxf.start_param, e.dxf.end_param
     sweep = (end - start) % (2 * pi)
-    full = sweep < 1e-6 or sweep > 2 * pi - 1e-6
+    full = sweep < 1e-6 or sweep > 2 * pi - FULL_RAD
     start, sweep = (0.0, 2 * pi) if full else (start % (2 * pi), sweep)
     xyb = fit_arcs(ellipse(np.array([c.x, c.y]), major, minor, start, start + sweep), tol)
     return Shape(xyb[:-1] if full else xyb, full, c.z, c.z)
