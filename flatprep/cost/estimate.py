@@ -21,7 +21,11 @@ from flatprep.profile.process import Process
 
 @dataclass(frozen=True, slots=True)
 class Costed:
-    """A part to be estimated; `quantity` counts all sets and both hands, `removed_mm3` is what bench work takes off."""
+    """A part to be estimated.
+
+    `part` is the shape that is cut, `quantity` counts all sets and both hands, `removed_mm3` is what bench work
+    takes off afterwards.
+    """
 
     part: Part
     quantity: int
@@ -32,11 +36,19 @@ class Costed:
 
     @property
     def mass_kg(self) -> float | None:
-        """Mass of one piece; None without thickness or density."""
+        """Mass of one piece as cut; None without thickness or density."""
+        return self._mass_kg(0.0)
+
+    @property
+    def finished_mass_kg(self) -> float | None:
+        """Mass of one piece after bench work; None without thickness or density."""
+        return self._mass_kg(self.removed_mm3)
+
+    def _mass_kg(self, removed_mm3: float) -> float | None:
         density = self.material.density_kg_m3 if self.material else None
         if density is None or self.thickness_mm is None:
             return None
-        return mass_kg(self.part.area_mm2, self.thickness_mm, density, self.removed_mm3)
+        return mass_kg(self.part.area_mm2, self.thickness_mm, density, removed_mm3)
 
     @property
     def cut_time_s(self) -> float | None:
@@ -78,11 +90,11 @@ def estimate(
     """
     ask = ask or Ask()
     lines = share_out([i.part for i in items], stock, layout, ask.terms) if layout else None
-    masses = [item.mass_kg for item in items]
-    whole = _sum([None if m is None else m * i.quantity for m, i in zip(masses, items, strict=True)])
+    whole = _of_all(items, [item.mass_kg for item in items])
+    finished = _of_all(items, [item.finished_mass_kg for item in items])
     placed = Counter(p.part for sheet in layout.sheets for p in sheet.placements) if layout else None
     parts = tuple(_part(item, lines, whole, placed) for item in items)
-    seconds = _sum([None if p.cut_time_s is None else p.cut_time_s * p.quantity for p in parts])
+    seconds = _of_all(items, [item.cut_time_s for item in items])
     result = Estimate(
         currency=ask.currency,
         parts=parts,
@@ -97,13 +109,15 @@ def estimate(
         machine_cost=_machine_cost(items, parts, ask.terms.machine_rate),
         discount_percent=lines.percent if lines else Decimal(0),
         credits=to_cents(sum((b.credit for b in lines.bills), Decimal(0))) if lines else Decimal(0),
+        finished_mass_kg=None if finished is None else finished / ask.sets,
     )
     return notes_of(result, nested=layout is not None)
 
 
-def _sum(values: Sequence[float | None]) -> float | None:
-    known = [v for v in values if v is not None]
-    return sum(known) if len(known) == len(values) else None
+def _of_all(items: Sequence[Costed], each: Sequence[float | None]) -> float | None:
+    """Add up what all pieces have of something; None where it is not known of one of them."""
+    known = [v * item.quantity for item, v in zip(items, each, strict=True) if v is not None]
+    return sum(known) if len(known) == len(items) else None
 
 
 def _part(item: Costed, lines: Lines | None, whole: float | None, placed: Counter[str] | None) -> PartEstimate:
@@ -123,6 +137,7 @@ def _part(item: Costed, lines: Lines | None, whole: float | None, placed: Counte
         mass_share=mass * item.quantity / whole if mass is not None and whole else None,
         placed=placed[part.name] if placed is not None else None,
         properties=mass_properties(part, mass),
+        finished_mass_kg=item.finished_mass_kg,
     )
 
 

@@ -41,8 +41,8 @@ class MassProperties:
 class PartEstimate:
     """Figures of one piece; `line_cost` is that of all its pieces. None: not known.
 
-    `mass_kg` is without what bench work takes off, where that is known; `mass_share` is the share of all its pieces
-    in the mass of the job.
+    `mass_kg` is that of the part as cut, `finished_mass_kg` without what bench work takes off, as far as that is
+    known; `mass_share` is the share of all its pieces in the mass of the job.
     """
 
     name: str
@@ -59,6 +59,7 @@ class PartEstimate:
     mass_share: float | None = None
     placed: int | None = None
     properties: MassProperties | None = None
+    finished_mass_kg: float | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -80,7 +81,7 @@ class StockUse:
 
 @dataclass(frozen=True, slots=True)
 class Estimate:
-    """The whole job: masses for one set, cost for all sets."""
+    """The whole job: masses for one set (as cut, and finished at the bench), cost for all sets."""
 
     currency: str | None
     parts: tuple[PartEstimate, ...]
@@ -96,6 +97,7 @@ class Estimate:
     machine_cost: Decimal | None = None
     discount_percent: Decimal = Decimal(0)
     credits: Decimal = Decimal(0)
+    finished_mass_kg: float | None = None
 
     @property
     def mass_left_kg(self) -> float | None:

@@ -10,7 +10,8 @@ SCHEMA = "flatprep-estimate/1"
 def estimate_document(estimate: Estimate, breaks: tuple[QuantityBreak, ...] = ()) -> dict[str, object]:
     """Return the document; what is not known is None, `notes` say why.
 
-    Mass and mass limit are those of one set, cost and stock those of all sets.
+    Mass and mass limit are those of one set, cost and stock those of all sets; `mass_kg` is as cut,
+    `finished_mass_kg` after bench work.
     """
     document: dict[str, object] = {
         "schema": SCHEMA,
@@ -19,6 +20,7 @@ def estimate_document(estimate: Estimate, breaks: tuple[QuantityBreak, ...] = ()
         "parts": [_part(part) for part in estimate.parts],
         "stock": [_stock(use) for use in estimate.stock],
         "mass_kg": estimate.mass_kg,
+        "finished_mass_kg": estimate.finished_mass_kg,
         "mass_limit_kg": estimate.mass_limit_kg,
         "mass_left_kg": estimate.mass_left_kg,
         "material_cost": _money(estimate.material_cost),
@@ -47,6 +49,7 @@ def _part(part: PartEstimate) -> dict[str, object]:
         "thickness_mm": part.thickness_mm,
         "area_mm2": part.area_mm2,
         "mass_kg": part.mass_kg,
+        "finished_mass_kg": part.finished_mass_kg,
         "mass_share": part.mass_share,
         "cut_length_mm": part.cut_length_mm,
         "pierces": part.pierces,

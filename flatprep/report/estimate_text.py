@@ -67,11 +67,15 @@ def _totals(estimate: Estimate) -> list[str]:
     if estimate.mass_limit_kg is not None and estimate.mass_left_kg is not None:
         word = "left" if estimate.mass_left_kg >= 0.0 else "too much"
         limit = f" of {mass(estimate.mass_limit_kg)}, {mass(abs(estimate.mass_left_kg))} {word}"
+    done = estimate.finished_mass_kg
+    lighter = done is not None and estimate.mass_kg is not None and done < 0.999 * estimate.mass_kg
     lines = [
         f"mass {'of one set ' if estimate.sets > 1 else ''}{mass(estimate.mass_kg)}{limit}",
         f"material cost{sets} {money(estimate.material_cost, estimate.currency)}",
         f"utilisation {percent(estimate.utilisation)}",
     ]
+    if lighter:
+        lines.insert(1, f"after bench work {mass(done)}")
     if estimate.discount_percent:
         lines.append(f"discount {estimate.discount_percent.normalize():f} %")
     if estimate.credits:

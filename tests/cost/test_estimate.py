@@ -60,7 +60,9 @@ def test_masses_are_those_of_one_set():
 
 def test_bench_work_is_taken_off():
     e = estimate([costed(rectangle("a", 100.0, 100.0), removed=1000.0)])
-    assert e.parts[0].mass_kg == pytest.approx((30000.0 - 1000.0) * 7850e-9)
+    assert (e.parts[0].mass_kg, e.mass_kg) == pytest.approx((30000.0 * 7850e-9, 30000.0 * 7850e-9))
+    done = (30000.0 - 1000.0) * 7850e-9
+    assert (e.parts[0].finished_mass_kg, e.finished_mass_kg) == pytest.approx((done, done))
 
 
 @pytest.mark.parametrize(

@@ -4,7 +4,10 @@ import csv
 import io
 import json
 import re
+from dataclasses import replace
+from importlib.resources import files
 
+import jsonschema
 import pytest
 
 from flatprep.cost.estimate import Ask, Costed, estimate
@@ -12,7 +15,8 @@ from flatprep.model.estimate import QuantityBreak
 from flatprep.profile.material_load import load_material
 from flatprep.profile.process_load import load_process
 from flatprep.report.columns import columns
-from flatprep.report.estimate_csv import estimate_csv, safe
+from flatprep.report.csv_table import safe
+from flatprep.report.estimate_csv import estimate_csv
 from flatprep.report.estimate_json import estimate_document
 from flatprep.report.estimate_text import estimate_text
 from tests.cost.shapes import layout, rectangle, sheet, stock
@@ -46,6 +50,19 @@ def test_json_has_the_fields_of_the_contract_and_nothing_rounded():
     assert (document["mass_limit_kg"], document["material_cost"]) == (0.05, 100.0)
     assert document["utilisation"] == pytest.approx(0.02)
     assert document["notes"]
+
+
+def test_json_keeps_the_published_schema():
+    schema = json.loads((files("flatprep.report") / "schemas" / "estimate.json").read_text())
+    jsonschema.validate(estimate_document(DONE), schema)
+    jsonschema.validate(estimate_document(estimate(ITEMS)), schema)
+
+
+def test_text_tells_the_mass_after_bench_work_where_it_differs():
+    lighter = estimate([replace(ITEMS[0], removed_mm3=3000.0)])
+    # 2 x (6000 - 3000) x 2700e-9 = 16.2 g
+    assert "after bench work 16.2 g" in shown(lighter)
+    assert "after bench work" not in shown(DONE)
 
 
 def test_json_of_quantity_breaks():
