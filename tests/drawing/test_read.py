@@ -46,6 +46,16 @@ def old_polyline(msp):
     msp.add_polyline2d([(30, 25, 1), (50, 25, 1)], format="xyb", close=True)
 
 
+def full_ellipse_in_five_decimals(msp):
+    box(msp, 0, 0, 80, 50)
+    msp.add_ellipse((40, 25), (-7e-8, -10), 1.0, 0, 6.28318)
+
+
+def full_turn_arc_in_four_decimals(msp):
+    box(msp, 0, 0, 80, 50)
+    msp.add_arc((40, 25), 10, 0.0, 359.9999)
+
+
 def full_ellipse(msp):
     box(msp, 0, 0, 80, 50)
     msp.add_ellipse((40, 25), (0, 10), 1.0)
@@ -82,6 +92,8 @@ def mirrored_plane(msp):
         bulges,
         old_polyline,
         full_ellipse,
+        full_ellipse_in_five_decimals,
+        full_turn_arc_in_four_decimals,
         half_ellipses,
         rational_spline,
         mirrored_plane,
