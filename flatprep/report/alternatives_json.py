@@ -1,13 +1,11 @@
 """The what-if table as the JSON document ``flatprep-alternatives/1`` and as CSV."""
 
-import csv
-import io
 from collections.abc import Sequence
 from dataclasses import asdict, fields
 from decimal import Decimal
 
 from flatprep.model.alternative import Alternative, PartAlternatives
-from flatprep.report.estimate_csv import safe
+from flatprep.report.csv_table import csv_table
 
 SCHEMA = "flatprep-alternatives/1"
 
@@ -30,12 +28,8 @@ def _plain(value: object) -> object:
 def alternatives_csv(tables: Sequence[PartAlternatives]) -> str:
     """Return one line an option, under a head."""
     names = [field.name for field in fields(Alternative)]
-    out = io.StringIO()
-    writer = csv.writer(out, lineterminator="\n")
-    writer.writerow(["part", *names])
-    for table in tables:
-        writer.writerows([safe(table.part), *_cells(option, names)] for option in table.options)
-    return out.getvalue()
+    rows = ([table.part, *_cells(option, names)] for table in tables for option in table.options)
+    return csv_table(["part", *names], rows)
 
 
 def _cells(option: Alternative, names: Sequence[str]) -> list[object]:

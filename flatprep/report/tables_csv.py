@@ -1,20 +1,12 @@
-"""Parts, findings and sheets as CSV tables: one row a thing, plain figures, units in the heads.
+"""Parts, findings and sheets as CSV tables: one row a thing, plain figures, units in the heads."""
 
-Decimal points and commas as RFC 4180 has them. A text that a spreadsheet would take for a formula gets an apostrophe in
-front: names come from strangers' drawings.
-"""
-
-import csv
-import io
 from collections import Counter
-from collections.abc import Iterable, Sequence
 
 from flatprep.report.bundle import Bundle
+from flatprep.report.csv_table import csv_table
 from flatprep.report.sheet_figure import sheet_box
 
 Cell = str | float | int | None
-
-_FORMULA_STARTS = ("=", "+", "-", "@", "\t", "\r")
 
 
 def parts_csv(bundle: Bundle) -> str:
@@ -24,7 +16,7 @@ def parts_csv(bundle: Bundle) -> str:
         "quantity_opposite", "width_mm", "height_mm", "area_mm2", "cut_length_mm", "pierces", "mass_kg",
         "material_cost", "line_cost", "errors", "warnings", "notes", "note",
     )  # fmt: skip
-    return _table(head, (_part_row(bundle, i) for i in range(len(bundle.cards))))
+    return csv_table(head, (_part_row(bundle, i) for i in range(len(bundle.cards))))
 
 
 def _part_row(bundle: Bundle, index: int) -> tuple[Cell, ...]:
@@ -60,7 +52,7 @@ def findings_csv(bundle: Bundle) -> str:
         (None, file, None, "error", "unreadable", message, None, None, None, None, None, "", "")
         for file, message in bundle.unreadable
     ]
-    return _table(head, rows)
+    return csv_table(head, rows)
 
 
 def sheets_csv(bundle: Bundle) -> str:
@@ -78,18 +70,4 @@ def sheets_csv(bundle: Bundle) -> str:
         )  # fmt: skip
         counts = Counter(placement.part for placement in sheet.placements)
         rows += [(*known, name, count) for name, count in sorted(counts.items())]
-    return _table(head, rows)
-
-
-def _table(head: Sequence[str], rows: Iterable[Sequence[Cell]]) -> str:
-    out = io.StringIO()
-    writer = csv.writer(out, lineterminator="\r\n")
-    writer.writerow(head)
-    writer.writerows([_cell(value) for value in row] for row in rows)
-    return out.getvalue()
-
-
-def _cell(value: Cell) -> Cell:
-    if isinstance(value, str) and value.startswith(_FORMULA_STARTS):
-        return "'" + value
-    return "" if value is None else value
+    return csv_table(head, rows)
