@@ -6,6 +6,7 @@ from itertools import pairwise
 from math import atan2, cos, degrees, hypot, sin
 
 import numpy as np
+import numpy.typing as npt
 import shapely
 from shapely import affinity
 
@@ -113,18 +114,24 @@ def rim_to_line_mm(hole: Hole, line: BendLine) -> float:
     return -min(abs(float(across.bounds[1])), abs(float(across.bounds[3])))
 
 
-def legs_mm(part: Part, line: BendLine, others: Sequence[BendLine]) -> tuple[float, ...]:
-    """How far the material runs from a bend line on each side where it has any, up to the next bend, mm."""
+def legs_mm(part: Part, lines: Sequence[BendLine]) -> tuple[tuple[float, ...], ...]:
+    """How far the material runs from each bend line on each side where it has any, up to the next bend, mm."""
+    if not lines:
+        return ()
     shape = valid_polygon(polygon(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=CHORD_MM))
-    for other in (line, *others):
-        cut = shapely.LineString([other.start, other.end])
-        shape = shape.difference(cut.buffer(HAIR_MM, cap_style="square", join_style="mitre"))
-    local = _along_line(shape, line)
+    hairs = [shapely.LineString([line.start, line.end]).buffer(HAIR_MM, cap_style="square") for line in lines]
+    pieces = shapely.get_parts(shape.difference(shapely.union_all(hairs)))
+    return tuple(_legs(pieces, line) for line in lines)
+
+
+def _legs(pieces: npt.NDArray[np.object_], line: BendLine) -> tuple[float, ...]:
+    near = pieces[shapely.dwithin(pieces, shapely.LineString([line.start, line.end]), 0.01)]
+    local = [_along_line(piece, line) for piece in near]
     out = []
     for side in (1.0, -1.0):
-        touching = [g for g in getattr(local, "geoms", [local]) if _beside(g, line.length_mm, side)]
-        if touching:
-            out.append(max(abs(side * (g.bounds[3] if side > 0 else g.bounds[1])) for g in touching))
+        reach = [g.bounds[3] if side > 0 else -g.bounds[1] for g in local if _beside(g, line.length_mm, side)]
+        if reach:
+            out.append(float(max(reach)))
     return tuple(out)
 
 

@@ -47,7 +47,7 @@ class Pieces:
 def sound(b: Boundary, f: Features, c: Chords) -> Pieces:
     """Return the pieces of the chords' stretches that are webs (or slots)."""
     which, share, length = _samples(f, c)
-    clear = free(b, *chord_at(f, c, which, share))
+    clear = free(b, b.part[f.row[c.first[which]]], *chord_at(f, c, which, share))
     edge = np.append(True, which[1:] != which[:-1])
     begin = np.nonzero(clear & (edge | ~np.append(False, clear[:-1])))[0]
     close = np.nonzero(clear & (np.append(edge[1:], True) | ~np.append(clear[1:], False)))[0]
@@ -85,8 +85,8 @@ def chord_at(f: Features, c: Chords, which: Ints, share: Floats) -> tuple[Floats
     return p, q
 
 
-def free(b: Boundary, p: Floats, q: Floats) -> Bools:
-    """Whether the discs on the chords pq as diameters, a little smaller, hold no boundary, shape (m,)."""
+def free(b: Boundary, part: Ints, p: Floats, q: Floats) -> Bools:
+    """Whether the discs on the chords pq as diameters, a little smaller, hold no edge of their part, shape (m,)."""
     middle = (p + q) / 2.0
     radius = np.hypot(*(q - p).T) / 2.0 * DISC_SHARE - DISC_MM
     out = np.ones(len(p), dtype=bool)
@@ -95,6 +95,8 @@ def free(b: Boundary, p: Floats, q: Floats) -> Bools:
         some = tried[k : k + CHUNK]
         m, r = middle[some], radius[some]
         which, row = b.tree.query(shapely.box(*np.hstack([m - r[:, None], m + r[:, None]]).T))
+        own = b.part[row] == part[some[which]]
+        which, row = which[own], row[own]
         hit = b.distance(row, m[which]) < r[which]
         out[some[which[hit]]] = False
     return out

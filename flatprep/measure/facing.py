@@ -146,7 +146,8 @@ def facing_pairs(b: Boundary, f: Features, reach_mm: float, most: int) -> tuple[
         i += k
         i, j = i[i < j], j[i < j]
         angle = np.abs(wrap(f.nu[i] - f.nu[j] + np.pi))
-        good = angle <= f.half[i] + f.half[j] + np.where((f.kind[i] < 2) & (f.kind[j] < 2), TAPER_RAD, ANGLE_RAD)
+        slack = np.where((f.kind[i] < 2) & (f.kind[j] < 2), TAPER_RAD, ANGLE_RAD)
+        good = (angle <= f.half[i] + f.half[j] + slack) & (b.part[f.row[i]] == b.part[f.row[j]])
         found.append((i[good], j[good]))
     return np.concatenate([p[0] for p in found]), np.concatenate([p[1] for p in found])
 

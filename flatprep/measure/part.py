@@ -1,18 +1,64 @@
 """A part with what is measured on it, each quantity once."""
 
-from collections.abc import Iterable
-from dataclasses import dataclass, field
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 
 import numpy as np
 
 from flatprep.base.tolerances import DEFAULT, Tolerances
-from flatprep.measure.boundary import Boundary, boundary
+from flatprep.measure.boundary import Boundary, boundary, of_part
 from flatprep.measure.corners import Corner, inside_corners
 from flatprep.measure.facing import TooFineError
 from flatprep.measure.holes import Hole, HoleShape, recognise
 from flatprep.measure.widths import Width, widths
 from flatprep.model.drawing import Part
+
+Found = tuple[tuple[Width, ...] | None, ...]
+"""Widths of each part of a drawing; None where its edges are too fine to measure."""
+
+
+@dataclass(frozen=True, eq=False)
+class _Together:
+    """The parts of one drawing, measured in one go: a call costs more than most parts have to measure."""
+
+    shapes: tuple[tuple[Hole, ...], ...]
+    kept: dict[tuple[int, float], Found] = field(default_factory=dict)
+
+    @cached_property
+    def boundary(self) -> Boundary:
+        """All edges of all parts."""
+        parts = np.repeat(np.arange(len(self.shapes)), [len(own) for own in self.shapes])
+        return boundary([shape.exact for own in self.shapes for shape in own], parts)
+
+    def widths(self, side: int, most_mm: float) -> Found:
+        """Webs or slots of every part; see `flatprep.measure.widths.widths`."""
+        key = side, most_mm
+        if key not in self.kept:
+            try:
+                self.kept[key] = self._measured(side, most_mm)
+            except TooFineError:
+                single = len(self.shapes) == 1
+                apart = [None] if single else [_Together((own,)).widths(side, most_mm)[0] for own in self.shapes]
+                self.kept[key] = tuple(apart)
+        return self.kept[key]
+
+    def _measured(self, side: int, most_mm: float) -> Found:
+        b = self.boundary
+        # holes of a known shape are measured as such
+        open_form = [side > 0 or k == 0 or s.shape is HoleShape.OTHER for own in self.shapes for k, s in enumerate(own)]
+        found = widths(b, side=side, rows=np.array(open_form)[b.contour], most_mm=most_mm)
+        out: list[list[Width]] = [[] for _ in self.shapes]
+        for width in found:
+            out[int(b.part[width.rows[0]])].append(width)
+        return tuple(tuple(self._own(width, k) for width in own) for k, own in enumerate(out))
+
+    def _own(self, width: Width, part: int) -> Width:
+        """Count a width's contours and rows within its part."""
+        before = sum(len(own) for own in self.shapes[:part])
+        row = int(np.searchsorted(self.boundary.part, part))
+        (a, z), (i, j) = width.contours, width.rows
+        return replace(width, contours=(a - before, z - before), rows=(i - row, j - row))
 
 
 @dataclass(frozen=True, eq=False)
@@ -21,7 +67,8 @@ class MeasuredPart:
 
     part: Part
     tol: Tolerances = DEFAULT
-    _widths: dict[tuple[int, float], tuple[Width, ...] | None] = field(default_factory=dict, repr=False)
+    number: int = 0
+    others: _Together | None = None
 
     @property
     def name(self) -> str:
@@ -29,24 +76,28 @@ class MeasuredPart:
         return self.part.name
 
     @cached_property
-    def outline(self) -> Hole:
-        """The outer contour by its shape, as if it were a hole."""
-        return recognise(self.part.outer)
-
-    @cached_property
-    def holes(self) -> tuple[Hole, ...]:
-        """The holes by their shapes, in the part's order."""
-        return tuple(recognise(c) for c in self.part.holes)
+    def _together(self) -> _Together:
+        return self.others or _Together((_shapes(self.part),))
 
     @property
     def shapes(self) -> tuple[Hole, ...]:
         """The outline, then the holes: what the contour numbers of widths and corners count."""
-        return (self.outline, *self.holes)
+        return self._together.shapes[self.number]
+
+    @property
+    def outline(self) -> Hole:
+        """The outer contour by its shape, as if it were a hole."""
+        return self.shapes[0]
+
+    @property
+    def holes(self) -> tuple[Hole, ...]:
+        """The holes by their shapes, in the part's order."""
+        return self.shapes[1:]
 
     @cached_property
     def boundary(self) -> Boundary:
         """All edges, circles that are drawn with chords as circles; contour 0 is the outer one, then the holes."""
-        return boundary([shape.exact for shape in self.shapes])
+        return of_part(self._together.boundary, self.number)
 
     def webs(self, most_mm: float) -> tuple[Width, ...]:
         """Webs of at most `most_mm`; see `flatprep.measure.widths.widths`.
@@ -55,7 +106,7 @@ class MeasuredPart:
         ------
         TooFineError
         """
-        return self._measured(1, most_mm, range(len(self.shapes)))
+        return self._widths(1, most_mm)
 
     def slots(self, most_mm: float) -> tuple[Width, ...]:
         """Slots and gaps of at most `most_mm`; holes of a recognised shape are measured as such, not here.
@@ -64,8 +115,7 @@ class MeasuredPart:
         ------
         TooFineError
         """
-        free_form = [k for k, hole in enumerate(self.shapes) if k == 0 or hole.shape is HoleShape.OTHER]
-        return self._measured(-1, most_mm, free_form)
+        return self._widths(-1, most_mm)
 
     def inside_corners(self, tool_radius_mm: float, least_gap_mm: float) -> tuple[Corner, ...]:
         """Corners that a tool cannot fill; see `flatprep.measure.corners.inside_corners`."""
@@ -81,15 +131,18 @@ class MeasuredPart:
             out += [names[int(self.boundary.edge[row])]] if each else shape.handles
         return tuple(dict.fromkeys(h for h in out if h))
 
-    def _measured(self, side: int, most_mm: float, contours: Iterable[int]) -> tuple[Width, ...]:
-        key = side, most_mm
-        if key not in self._widths:
-            rows = np.isin(self.boundary.contour, list(contours))
-            try:
-                self._widths[key] = widths(self.boundary, side=side, rows=rows, most_mm=most_mm)
-            except TooFineError:
-                self._widths[key] = None
-        found = self._widths[key]
+    def _widths(self, side: int, most_mm: float) -> tuple[Width, ...]:
+        found = self._together.widths(side, most_mm)[self.number]
         if found is None:
             raise TooFineError
         return found
+
+
+def measured_parts(parts: Sequence[Part], tol: Tolerances = DEFAULT) -> tuple[MeasuredPart, ...]:
+    """Return the parts of a drawing, to be measured together."""
+    together = _Together(tuple(_shapes(part) for part in parts))
+    return tuple(MeasuredPart(part, tol, k, together) for k, part in enumerate(parts))
+
+
+def _shapes(part: Part) -> tuple[Hole, ...]:
+    return tuple(recognise(contour) for contour in part.contours)

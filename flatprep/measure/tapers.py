@@ -41,7 +41,7 @@ def _closed(b: Boundary, s: Pieces) -> Bools:
     far, half = (_across(b, s, k, (sense * share * RUN * width)[k]) for share in (1.0, 0.5))
     long_enough = np.hypot(*(far[1] - far[0]).T) <= SPREAD * width[k]
     inset = (1.0 - CORE) / 2.0 * (half[1] - half[0])
-    good[k] = long_enough & free(b, half[0] + inset, half[1] - inset)
+    good[k] = long_enough & free(b, b.part[s.row[k, 0]], half[0] + inset, half[1] - inset)
     return good
 
 

@@ -17,7 +17,7 @@ def touches(b: Boundary, f: Features) -> Chords:
     feature[f.row[edges]] = np.nonzero(edges)[0]
     lo, hi = b.end - TOUCH_MM, b.end + TOUCH_MM
     i, j = b.tree.query(shapely.box(*np.hstack([lo, hi]).T))
-    other = (b.contour[i] != b.contour[j]) & (feature[i] >= 0) & (feature[j] >= 0)
+    other = (b.part[i] == b.part[j]) & (b.contour[i] != b.contour[j]) & (feature[i] >= 0) & (feature[j] >= 0)
     i, j = i[other], j[other]
     near = b.distance(j, b.end[i]) <= TOUCH_MM
     # a corner on a corner is met from both sides and from two edges each: one is enough

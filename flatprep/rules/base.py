@@ -6,7 +6,7 @@ from functools import cached_property
 
 from flatprep.base.tolerances import DEFAULT, Tolerances
 from flatprep.job.values import JobPart
-from flatprep.measure.part import MeasuredPart
+from flatprep.measure.part import MeasuredPart, measured_parts
 from flatprep.model.drawing import Drawing, Fault
 from flatprep.model.finding import Finding, Severity
 from flatprep.profile.material import Material
@@ -37,7 +37,7 @@ class Context:
     @cached_property
     def parts(self) -> tuple[MeasuredPart, ...]:
         """The drawing's parts with their measured features, each computed once."""
-        return tuple(MeasuredPart(part, self.tol) for part in self.drawing.parts)
+        return measured_parts(self.drawing.parts, self.tol)
 
     @property
     def family(self) -> str | None:

@@ -19,8 +19,9 @@ def check(ctx: Context) -> Iterator[Finding]:
     asks = ctx.job_part.bends if ctx.job_part else ()
     for part in ctx.parts:
         lines = bend_lines(part.part, asks)
-        for n, line in enumerate(lines):
-            yield from _told(ctx, part.part, line, lines[:n] + lines[n + 1 :])
+        for line, legs in zip(lines, legs_mm(part.part, lines), strict=True):
+            if legs:
+                yield from _told(ctx, part.part, line, min(legs))
 
 
 def least_flange(thickness_mm: float, radius_mm: float) -> Limit:
@@ -34,14 +35,11 @@ def die_width_mm(thickness_mm: float) -> float:
     return thickness_mm * (6.0 if thickness_mm <= 3.0 else 8.0 if thickness_mm <= 10.0 else 10.0)
 
 
-def _told(ctx: Context, part: Part, line: BendLine, others: tuple[BendLine, ...]) -> Iterator[Finding]:
+def _told(ctx: Context, part: Part, line: BendLine, leg_mm: float) -> Iterator[Finding]:
     thickness = ctx.thickness_mm or 0.0
     radius = line.radius_mm or thickness
-    legs = legs_mm(part, line, others)
-    if not legs:
-        return
     # from the bend line in the flat to the edge, plus half of what the bend takes off both outside legs
-    outside = min(legs) + bend(thickness, radius, min(line.angle_deg, MOST_DEG)).deduction_mm / 2.0
+    outside = leg_mm + bend(thickness, radius, min(line.angle_deg, MOST_DEG)).deduction_mm / 2.0
     verdict = judge(outside, least_flange(thickness, radius), ctx.slack_mm())
     if verdict is not None:
         yield Finding(

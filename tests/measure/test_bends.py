@@ -31,10 +31,11 @@ def test_legs(turn):
     plate = part(moved(rectangle(0, 0, 100, 60), turn, 5, 7))
     (a, b), (c, d) = (moved(path((0, y), (100, y)), turn, 5, 7)[:, :2].tolist() for y in (20, 45))
     first, second = BendLine(tuple(a), tuple(b)), BendLine(tuple(c), tuple(d))
-    assert legs_mm(plate, first, ()) == pytest.approx((40, 20), abs=1e-4)
+    assert legs_mm(plate, [first])[0] == pytest.approx((40, 20), abs=1e-4)
     # up to the next bend only
-    assert legs_mm(plate, first, (second,)) == pytest.approx((25, 20), abs=1e-4)
-    assert legs_mm(plate, second, (first,)) == pytest.approx((15, 25), abs=1e-4)
+    two = legs_mm(plate, [first, second])
+    assert two[0] == pytest.approx((25, 20), abs=1e-4)
+    assert two[1] == pytest.approx((15, 25), abs=1e-4)
 
 
 def test_asked_lines_stand_for_drawn_ones():
