@@ -41,6 +41,7 @@ def report_html(bundle: Bundle) -> str:
         shapes=Markup(shape_defs(shapes)),
         plot=Markup(search_plot(bundle.search)),
         tools=bundle.checklist.tools if bundle.checklist else (),
+        joints=bundle.checklist.joints if bundle.checklist else (),
         unplaced=bundle.layout.unplaced if bundle.layout else (),
         stock=bundle.estimate.stock if bundle.estimate else (),
         cautions=_cautions(bundle),

@@ -48,6 +48,7 @@ class Figure:
 
 def verdict(bundle: Bundle) -> Verdict:
     """Judge the job by its findings, unreadable drawings and unplaced parts."""
+    joints = bundle.checklist.joints if bundle.checklist else ()
     stops = [
         (bundle.count(Severity.ERROR), "error", "errors"),
         (len(bundle.unreadable), "drawing unreadable", "drawings unreadable"),
@@ -56,6 +57,7 @@ def verdict(bundle: Bundle) -> Verdict:
             "piece without a place",
             "pieces without a place",
         ),
+        (sum(not joint.closes for joint in joints), "joint that does not close", "joints that do not close"),
     ]
     warnings = bundle.count(Severity.WARNING)
     said = [counted(n, one, many) for n, one, many in stops if n]

@@ -11,7 +11,7 @@ from flatprep.model.drawing import Contour, Curve, Part
 from flatprep.model.estimate import Estimate, PartEstimate, StockUse
 from flatprep.model.finding import Finding, Severity
 from flatprep.model.layout import Layout, Placement, SheetLayout, Unplaced
-from flatprep.model.work import Checklist, PartSteps, Step, StepKind, Tool
+from flatprep.model.work import Checklist, JointCheck, JointReport, Outcome, PartSteps, Step, StepKind, Tool
 from flatprep.report.bundle import Bundle, Offcut, PartCard, SearchPoint
 
 
@@ -55,6 +55,11 @@ STEPS = (
 )
 
 
+JOINT = JointReport(
+    "pivot", "M8 ISO 4017", 1, 16.0, "M8 x 30", (JointCheck("clearance", Outcome.GOOD, "hole 9 mm for M8"),)
+)
+
+
 @pytest.fixture
 def card() -> PartCard:
     estimate = PartEstimate("leaf", 6, 7000.0, 0.22, 412.0, 3, 2.5, Decimal("15.00"), None)
@@ -85,6 +90,7 @@ def bundle(card: PartCard) -> Bundle:
             (PartSteps("leaf", 4, STEPS, 2, ("is the hole of 5 mm for M5?",), "one face is countersunk"),),
             ("Clamp the part.",),
             (Tool("reamer 12 H7", 6, ("leaf",)),),
+            (JOINT,),
         ), (("bad.dxf", "no entity"),), (("sheet-01.dxf", "sheet 1"),),
         ("spacing 4 mm",), ("Local rules come first.",),
         (SearchPoint(0.5, 2, 600.0, 0.5), SearchPoint(3.0, 1, 520.0, 0.6)),

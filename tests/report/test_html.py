@@ -128,7 +128,13 @@ def test_ticks_change_with_the_drawing_and_with_the_step_only(bundle):
 
 def test_questions_sides_kit_and_reasons_are_shown(bundle):
     words = " ".join(Page(report_html(bundle)).words)
-    for known in ("Is the hole of 5 mm for M5?", "One face is countersunk.", "Reamer 12 H7", "straight after drilling"):
+    for known in (
+        "Is the hole of 5 mm for M5?",
+        "One face is countersunk.",
+        "Reamer 12 H7",
+        "straight after drilling",
+        "Hole 9 mm for M8.",
+    ):
         assert known in words
 
 

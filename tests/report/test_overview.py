@@ -6,6 +6,7 @@ from dataclasses import replace
 import pytest
 
 from flatprep.model.finding import Finding, Severity
+from flatprep.model.work import JointCheck, Outcome
 from flatprep.report.bundle import Bundle, PartCard, SearchPoint
 from flatprep.report.charts import search_plot, share_bar
 from flatprep.report.overview import figures, verdict
@@ -34,6 +35,12 @@ def test_the_verdict_follows_the_worst(bundle, level, word):
 def test_a_piece_without_a_place_stops_the_job(bundle):
     calm = replace(bundle, cards=(card_with(),), unreadable=())
     assert verdict(calm).detail == "1 piece without a place."
+
+
+def test_a_joint_that_does_not_close_stops_the_job(bundle):
+    joint = replace(bundle.checklist.joints[0], checks=(JointCheck("length", Outcome.BAD, "bolt too short"),))
+    calm = Bundle("a", cards=(card_with(),), checklist=replace(bundle.checklist, joints=(joint,)))
+    assert verdict(calm).detail == "1 joint that does not close."
 
 
 def test_mass_is_held_against_its_limit(bundle):
