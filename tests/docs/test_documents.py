@@ -33,6 +33,7 @@ def flatprep(*words: str) -> str:
         ("lint", ("lint", JOB)),
         ("lint", ("lint", RECEIVED, "--process", "fibre-laser")),
         ("checklist", ("checklist", JOB)),
+        ("alternatives", ("alternatives", JOB)),
         ("lookup", ("lookup", "thread", "M6")),
         ("lookup", ("lookup", "clearance", "1/4")),
         ("lookup", ("lookup", "fit", "22 N7")),
@@ -48,6 +49,12 @@ def flatprep(*words: str) -> str:
 )
 def test_standard_output_is_one_document_of_its_schema(kind, words):
     assert faults(kind, json.loads(flatprep(*words, "--format", "json"))) == []
+
+
+@pytest.mark.parametrize("name", ["side_plate", "wheel_disc", "link_lower", "tray_bracket", "tray_floor"])
+def test_repair_keeps_its_schema(name, tmp_path):
+    words = ("repair", f"{RECEIVED}/{name}.dxf", "--out", str(tmp_path / "clean.dxf"), "--format", "json")
+    assert faults("repair", json.loads(flatprep(*words))) == []
 
 
 def test_prepare_writes_documents_of_their_schemas(tmp_path):

@@ -47,6 +47,22 @@ GOOD = {
         "stock": [{"name": "al3", "count": 1, "price": None}],
         "mass_kg": None, "mass_limit_kg": None, "material_cost": None, "utilisation": None,
     },
+    "alternatives": {
+        "schema": "flatprep-alternatives/1", "currency": None,
+        "parts": [{"part": "leaf", "material": "mild-steel", "thickness_mm": 4.0, "mass_kg": 1.0, "cost": None,
+                   "notes": [],
+                   "options": [{"basis": "stiffness", "material": "al", "material_name": "aluminium", "needed_mm": 5.8,
+                                "thickness_mm": 6.0, "mass_kg": None, "mass_ratio": 0.5, "cost": None,
+                                "deflection_ratio": 0.9, "strength_ratio": None, "process": None, "caution": "",
+                                "findings": None, "note": ""}]}],
+    },
+    "repair": {
+        "schema": "flatprep-repair/1", "file": "a.dxf", "out": "b.dxf", "units_before": "mm",
+        "parts": [{"name": "leaf", "area_mm2": 1.0, "cut_length_mm": 4.0, "holes": 0, "size_mm": [1.0, 1.0]}],
+        "area_before_mm2": 1.0, "area_after_mm2": 1.0,
+        "changes": [{"kind": "joined", "message": "a gap", "at": None, "measured_mm": 0.02, "handles": ["2F"]}],
+        "left": [],
+    },
     "lookup": {"kind": "nut", "name": "M8", "values": {"across_flats_mm": 13.0}, "source": "ISO 4032"},
 }  # fmt: skip
 BAD = [
@@ -62,6 +78,10 @@ BAD = [
     ("checklist", ("parts", 0, "steps", 0, "side"), "C"),
     ("estimate", ("material_cost",), -1.0),
     ("estimate", ("parts", 0, "mass_kg"), "heavy"),
+    ("alternatives", ("parts", 0, "options", 0, "basis"), "colour"),
+    ("alternatives", ("parts", 0, "options", 0, "mass_kg"), -1.0),
+    ("repair", ("changes", 0, "message"), ""),
+    ("repair", ("parts", 0, "holes"), 0.5),
     ("lookup", ("source",), ""),
     ("lookup", ("values",), {}),
 ]
