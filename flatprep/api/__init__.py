@@ -7,7 +7,7 @@ from importlib import import_module
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from flatprep.api.lint import Said, lint_job, lint_paths
+    from flatprep.api.lint import lint_job, lint_paths
     from flatprep.api.nest import Nested, nest_job, write_layout
     from flatprep.api.pieces import ReadJob, read_job
     from flatprep.api.prepare import Prepared, prepare_job, write_prepared
@@ -23,7 +23,6 @@ _HOME = {
     "Nested": "flatprep.api.nest",
     "Prepared": "flatprep.api.prepare",
     "ReadJob": "flatprep.api.pieces",
-    "Said": "flatprep.api.lint",
     "checklist_job": "flatprep.api.work",
     "estimate_job": "flatprep.api.work",
     "lint_job": "flatprep.api.lint",
@@ -41,7 +40,6 @@ _HOME = {
 __all__ = [  # noqa: RUF022 - in the order of use
     "load_job",
     "JobOptions",
-    "Said",
     "lint_paths",
     "lint_job",
     "read_job",

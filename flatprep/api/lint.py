@@ -10,6 +10,7 @@ from flatprep.base.progress import Progress, Silent
 from flatprep.base.tolerances import DEFAULT, Tolerances
 from flatprep.base.workers import Caps, Lost, Pool
 from flatprep.drawing.read import ReadOptions, read
+from flatprep.job.context import JobOptions
 from flatprep.job.values import Job, JobPart
 from flatprep.model.drawing import Role
 from flatprep.model.linted import Linted, LintReport, Unreadable
@@ -24,29 +25,6 @@ from flatprep.rules.base import Context
 _SECONDS = 6.0
 _SECONDS_A_MEGABYTE = 20.0
 """A drawing may take `_SECONDS`, and more the larger its file: ten times what a usual one of its size needs."""
-
-
-@dataclass(frozen=True, slots=True)
-class Said:
-    """What the user says about drawings that no job describes.
-
-    Attributes
-    ----------
-    process, material, thickness : str or None
-        As written: ids, a profile file, a thickness with its unit or gauge.
-    units : str or None
-    roles : mapping
-        Layer name -> role.
-    folders : tuple of Path
-        Own profiles.
-    """
-
-    process: str | None = None
-    material: str | None = None
-    thickness: str | None = None
-    units: str | None = None
-    roles: Mapping[str, Role] = field(default_factory=dict)
-    folders: tuple[Path, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -68,7 +46,7 @@ class LintTask:
 
 
 def lint_paths(
-    paths: Sequence[Path], said: Said | None = None, *, jobs: int = 1, progress: Progress | None = None
+    paths: Sequence[Path], said: JobOptions | None = None, *, jobs: int = 1, progress: Progress | None = None
 ) -> LintReport:
     """Check drawings and folders of drawings.
 
@@ -77,8 +55,8 @@ def lint_paths(
     FlatprepError
         When an option, a profile or a cut list is wrong. A drawing that cannot be read is no error: it is reported.
     """
-    said = said or Said()
-    process = load_process(said.process, said.folders) if said.process else None
+    said = said or JobOptions()
+    process = load_process(said.process, said.profile_folders) if said.process else None
     found, missing = find_drawings(paths)
     tasks = [_task(one, said, process) for one in found]
     report = lint_tasks(tasks, jobs=jobs, progress=progress)
@@ -140,18 +118,18 @@ def lint_one(task: LintTask) -> Linted | Unreadable:
     )
 
 
-def _task(one: Found, said: Said, process: Process | None) -> LintTask:
+def _task(one: Found, said: JobOptions, process: Process | None) -> LintTask:
     row = one.row
     try:
         material_name = (row.material if row else "") or said.material
-        material = load_material(material_name, said.folders) if material_name else None
+        material = load_material(material_name, said.profile_folders) if material_name else None
         thickness = (row.thickness if row else "") or said.thickness
         thickness_mm = parse_thickness_mm(thickness, "mm", material) if thickness else None
     except FlatprepError as err:
         if row is None:
             raise
         raise type(err)(f"cutlist.csv: line {row.line} ({row.file}): {err.message}", err.remedy) from err
-    return LintTask(one.path, said.units, said.roles, process, material, thickness_mm)
+    return LintTask(one.path, said.units, said.layers, process, material, thickness_mm)
 
 
 def _unknown(tasks: Sequence[LintTask]) -> tuple[str, ...]:
@@ -178,4 +156,4 @@ def _lost(task: LintTask, answer: Lost) -> Unreadable:
     return Unreadable(str(task.path), f"{task.path}: given up, {answer.why}", "export a plainer drawing of the part")
 
 
-__all__ = ["LintTask", "Missing", "Said", "lint_job", "lint_one", "lint_paths", "lint_tasks"]
+__all__ = ["LintTask", "Missing", "lint_job", "lint_one", "lint_paths", "lint_tasks"]

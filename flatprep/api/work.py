@@ -20,7 +20,7 @@ def checklist_job(read: ReadJob) -> Checklist:
     JobError
         When work names holes, threads or fits that do not exist.
     """
-    return checklist(bench_parts(read))
+    return checklist(bench_parts(read), read.job.joints)
 
 
 def estimate_job(read: ReadJob, layout: Layout | None) -> Estimate:

@@ -8,9 +8,11 @@ import click
 from flatprep.api.alternatives import WhatIf, alternatives_job
 from flatprep.api.stored import stored_layout
 from flatprep.api.work import estimate_job
-from flatprep.cli.jobs import job_argument, open_job, read_drawings
+from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import said_about_parts
 from flatprep.cli.progress import progress_line
+from flatprep.job.context import JobOptions
+from flatprep.job.load import load_job
 from flatprep.report.alternatives_json import alternatives_csv, alternatives_document
 from flatprep.report.alternatives_text import alternatives_text
 
@@ -32,18 +34,17 @@ def command(
     every: bool,
     layout_file: Path | None,
     form: str,
-    folders: tuple[Path, ...],
-    **said: object,
+    said: JobOptions,
 ) -> None:
     """Show what a job's parts could be made of: other thicknesses and materials, as stiff, as strong, or as thick.
 
     Each option has the thickness needed and the next one sold, mass, cost, a process that cuts it, and what lint says.
     """
-    job = open_job(job_file, folders=folders, **said)  # type: ignore[arg-type]
+    job = load_job(job_file, said)
     with progress_line() as progress:
         read = read_drawings(job, 1, progress)
         now = estimate_job(read, stored_layout(layout_file)).utilisation if layout_file else None
-        tables = alternatives_job(read, WhatIf(parts, tried, every, folders, now), progress=progress)
+        tables = alternatives_job(read, WhatIf(parts, tried, every, said.profile_folders, now), progress=progress)
     if form == "json":
         click.echo(json.dumps(alternatives_document(tables, currency=job.currency), indent=1))
     elif form == "csv":

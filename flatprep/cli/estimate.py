@@ -9,9 +9,11 @@ from flatprep.api.breaks import break_table
 from flatprep.api.nest import nest_job
 from flatprep.api.stored import stored_layout
 from flatprep.api.work import estimate_job
-from flatprep.cli.jobs import job_argument, open_job, read_drawings
+from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
+from flatprep.job.context import JobOptions
+from flatprep.job.load import load_job
 from flatprep.nest.problem import Budget
 from flatprep.report.estimate_csv import estimate_csv
 from flatprep.report.estimate_json import estimate_document
@@ -31,18 +33,14 @@ def command(
     job_file: Path,
     layout_file: Path | None,
     with_breaks: bool,
-    seconds: float,
-    steps: int | None,
-    seed: int,
-    jobs: int,
+    budget: Budget,
     form: str,
-    **said: object,
+    said: JobOptions,
 ) -> None:
     """Mass, cut length, pierces and material cost, per part and for the job."""
-    job = open_job(job_file, **said)  # type: ignore[arg-type]
-    budget = Budget(seconds, steps, seed, jobs)
+    job = load_job(job_file, said)
     with progress_line() as progress:
-        read = read_drawings(job, jobs, progress)
+        read = read_drawings(job, budget.jobs, progress)
         if layout_file is not None:
             layout = stored_layout(layout_file)
         elif job.stock:

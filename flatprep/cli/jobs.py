@@ -1,4 +1,4 @@
-"""What the commands that take a job share: loading it, and reading its drawings."""
+"""What the commands that take a job share: its argument, and reading its drawings."""
 
 from collections.abc import Callable
 from pathlib import Path
@@ -8,8 +8,6 @@ import click
 
 from flatprep.api.pieces import ReadJob, read_job
 from flatprep.base.progress import Progress
-from flatprep.cli.options import parse_roles
-from flatprep.job.load import JobOptions, load_job
 from flatprep.job.values import Job
 
 Command = TypeVar("Command", bound=Callable[..., Any])
@@ -21,21 +19,6 @@ def job_argument(command: Command) -> Command:
         "--anywhere", is_flag=True, help="let the job read files that lie neither under its folder nor beside it"
     )(command)
     return click.argument("job_file", metavar="JOB.toml", type=click.Path(path_type=Path))(command)
-
-
-def open_job(
-    job_file: Path,
-    *,
-    process: str | None = None,
-    material: str | None = None,
-    thickness: str | None = None,
-    units: str | None = None,
-    layers: tuple[str, ...] = (),
-    folders: tuple[Path, ...] = (),
-    anywhere: bool = False,
-) -> Job:
-    """Load a job with what the command line says."""
-    return load_job(job_file, JobOptions(folders, process, material, thickness, units, parse_roles(layers), anywhere))
 
 
 def read_drawings(job: Job, jobs: int, progress: Progress) -> ReadJob:

@@ -5,11 +5,12 @@ from pathlib import Path
 
 import click
 
-from flatprep.api.lint import Said, lint_job, lint_paths
+from flatprep.api.lint import lint_job, lint_paths
 from flatprep.base.errors import ExitStatus, UsageError
-from flatprep.cli.options import output_format, parse_roles, said_about_parts
+from flatprep.cli.options import output_format, said_about_parts
 from flatprep.cli.progress import progress_line
-from flatprep.job.load import JobOptions, load_job
+from flatprep.job.context import JobOptions
+from flatprep.job.load import load_job
 from flatprep.model.linted import LintReport
 from flatprep.report.lint_json import lint_document
 from flatprep.report.lint_text import lint_text
@@ -24,12 +25,7 @@ from flatprep.report.lint_text import lint_text
 def command(
     ctx: click.Context,
     paths: tuple[Path, ...],
-    process: str | None,
-    material: str | None,
-    thickness: str | None,
-    units: str | None,
-    layers: tuple[str, ...],
-    folders: tuple[Path, ...],
+    said: JobOptions,
     jobs: int,
     form: str,
 ) -> None:
@@ -41,12 +37,8 @@ def command(
                 raise UsageError(
                     f"{jobs_given[0]}: a job is checked alone", "give one job file, or drawings and folders"
                 )
-            options = JobOptions(
-                profile_folders=folders, process=process, material=material, thickness=thickness, units=units
-            )
-            report = lint_job(load_job(paths[0], options), jobs=jobs, progress=progress)
+            report = lint_job(load_job(paths[0], said), jobs=jobs, progress=progress)
         else:
-            said = Said(process, material, thickness, units, parse_roles(layers), folders)
             report = lint_paths(paths, said, jobs=jobs, progress=progress)
     click.echo(json.dumps(lint_document(report), indent=1) if form == "json" else lint_text(report))
     ctx.exit(status(report))

@@ -9,9 +9,11 @@ from flatprep.api.nest import Nested, nest_job, write_layout
 from flatprep.base.errors import ExitStatus
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
-from flatprep.cli.jobs import job_argument, open_job, read_drawings
+from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import output_format, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
+from flatprep.job.context import JobOptions
+from flatprep.job.load import load_job
 from flatprep.nest.problem import Budget
 from flatprep.report.layout_text import layout_text
 
@@ -28,19 +30,16 @@ def command(
     /,
     job_file: Path,
     folder: Path,
-    seconds: float,
-    steps: int | None,
-    seed: int,
-    jobs: int,
+    budget: Budget,
     form: str,
-    **said: object,
+    said: JobOptions,
 ) -> None:
     """Lay a job's parts on its stock; writes layout.json and a DXF and SVG for each sheet."""
-    job = open_job(job_file, **said)  # type: ignore[arg-type]
+    job = load_job(job_file, said)
     with claimed(folder), progress_line() as progress:
-        read = read_drawings(job, jobs, progress)
+        read = read_drawings(job, budget.jobs, progress)
         with stoppable() as stop:
-            nested = nest_job(read, Budget(seconds, steps, seed, jobs), progress=progress, stop=stop)
+            nested = nest_job(read, budget, progress=progress, stop=stop)
             for warning in nested.warnings:
                 click.echo(f"warning: {warning}", err=True)
             write_layout(nested, folder)

@@ -1,6 +1,7 @@
 """Options that several commands share, each written once."""
 
 from collections.abc import Callable
+from functools import wraps
 from pathlib import Path
 from typing import Any, TypeVar
 
@@ -8,7 +9,9 @@ import click
 
 from flatprep.base.errors import UsageError
 from flatprep.base.units import MM_PER_UNIT
+from flatprep.job.context import JobOptions
 from flatprep.model.drawing import Role
+from flatprep.nest.problem import Budget
 
 Command = TypeVar("Command", bound=Callable[..., Any])
 
@@ -24,9 +27,24 @@ def output_format(command: Command) -> Command:
     )(command)
 
 
-def said_about_parts(command: Command) -> Command:
-    """Add ``--process``, ``--material``, ``--thickness``, ``--units``, ``--layer`` and ``--profiles``."""
-    for option in (
+def said_about_parts(command: Callable[..., Any]) -> Any:
+    """Add what is said about parts; the command gets it as ``said``, a `JobOptions`.
+
+    These are ``--process``, ``--material``, ``--thickness``, ``--units``, ``--layer`` and ``--profiles``.
+    """
+
+    @wraps(command)
+    def joined(*args: Any, **words: Any) -> Any:
+        said = JobOptions(
+            profile_folders=words.pop("folders"),
+            layers=parse_roles(words.pop("layers")),
+            anywhere=words.pop("anywhere", False),
+            **{key: words.pop(key) for key in ("process", "material", "thickness", "units")},
+        )
+        return command(*args, said=said, **words)
+
+    return _with_options(
+        joined,
         click.option("--profiles", "folders", metavar="DIR", multiple=True, type=click.Path(path_type=Path),
                      help="own profiles, looked up before the shipped ones"),
         click.option("--layer", "layers", metavar="NAME=ROLE", multiple=True,
@@ -36,20 +54,30 @@ def said_about_parts(command: Command) -> Command:
         click.option("--thickness", metavar="VALUE", help="3, 3mm, 0.125in, 1/8in or 16ga"),
         click.option("--material", metavar="ID", help="material id or designation"),
         click.option("--process", metavar="ID|FILE", help="process id or profile file"),
-    ):  # fmt: skip
-        command = option(command)
-    return command
+    )  # fmt: skip
 
 
-def search_budget(command: Command) -> Command:
-    """Add ``--seconds``, ``--steps``, ``--seed`` and ``--jobs``."""
-    for option in (
+def search_budget(command: Callable[..., Any]) -> Any:
+    """Add ``--seconds``, ``--steps``, ``--seed`` and ``--jobs``; the command gets them as ``budget``."""
+
+    @wraps(command)
+    def joined(*args: Any, **words: Any) -> Any:
+        budget = Budget(*(words.pop(key) for key in ("seconds", "steps", "seed", "jobs")))
+        return command(*args, budget=budget, **words)
+
+    return _with_options(
+        joined,
         click.option("--jobs", type=click.IntRange(1, 64), default=1, show_default=True, help="processes"),
         click.option("--seed", type=click.IntRange(0), default=1, show_default=True, help="start of the random search"),
         click.option("--steps", type=click.IntRange(1), help="a budget that does not depend on the clock"),
         click.option("--seconds", type=click.FloatRange(0, min_open=True), default=30.0, show_default=True,
                      help="search budget, wall time"),
-    ):  # fmt: skip
+    )  # fmt: skip
+
+
+def _with_options(command: Callable[..., Any], *options: Callable[[Any], Any]) -> Any:
+    """Decorate a command; click's options keep its type, which mypy cannot see through `wraps`."""
+    for option in options:
         command = option(command)
     return command
 

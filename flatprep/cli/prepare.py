@@ -8,9 +8,11 @@ from flatprep.api.prepare import Prepared, prepare_job, write_prepared
 from flatprep.base.errors import ExitStatus
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
-from flatprep.cli.jobs import job_argument, open_job, read_drawings
+from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
+from flatprep.job.context import JobOptions
+from flatprep.job.load import load_job
 from flatprep.model.finding import Severity
 from flatprep.nest.problem import Budget
 
@@ -26,18 +28,15 @@ def command(
     /,
     job_file: Path,
     folder: Path,
-    seconds: float,
-    steps: int | None,
-    seed: int,
-    jobs: int,
-    **said: object,
+    budget: Budget,
+    said: JobOptions,
 ) -> None:
     """Check, nest, list the bench work and estimate a job, all into one folder with report.html."""
-    job = open_job(job_file, **said)  # type: ignore[arg-type]
+    job = load_job(job_file, said)
     with claimed(folder), progress_line() as progress:
-        read = read_drawings(job, jobs, progress)
+        read = read_drawings(job, budget.jobs, progress)
         with stoppable() as stop:
-            done = prepare_job(read, Budget(seconds, steps, seed, jobs), progress=progress, stop=stop)
+            done = prepare_job(read, budget, progress=progress, stop=stop)
             for warning in done.nested.warnings if done.nested else ():
                 click.echo(f"warning: {warning}", err=True)
             write_prepared(done, folder)

@@ -10,7 +10,8 @@ from flatprep.api.repair import repair_file
 from flatprep.base.errors import ExitStatus, UsageError
 from flatprep.base.tolerances import DEFAULT
 from flatprep.base.units import parse_length_mm
-from flatprep.cli.options import output_format, parse_roles, said_about_parts
+from flatprep.cli.options import output_format, said_about_parts
+from flatprep.job.context import JobOptions
 from flatprep.profile.process_load import load_process
 from flatprep.repair.values import RepairOptions, RoundLimits
 from flatprep.report.repair_json import repair_document
@@ -45,12 +46,7 @@ def command(
     gap: str,
     deviation: str,
     every: bool,
-    process: str | None,
-    material: str | None,
-    thickness: str | None,
-    units: str | None,
-    layers: tuple[str, ...],
-    folders: tuple[Path, ...],
+    said: JobOptions,
     form: str,
 ) -> None:
     """Write a clean drawing: joined, without doubles, arcs for chords, flat, in mm, on layers CUT, MARK and BEND.
@@ -58,10 +54,10 @@ def command(
     Ends with 1 when something is left that repair will not guess.
     """
     tol = DEFAULT
-    if process:
-        tol = replace(tol, join_mm=load_process(process, folders).join_gap_mm)
+    if said.process:
+        tol = replace(tol, join_mm=load_process(said.process, said.profile_folders).join_gap_mm)
     options = RepairOptions(
-        _length("--gap", gap), _rounding(_length("--deviation", deviation)), units, parse_roles(layers), tol
+        _length("--gap", gap), _rounding(_length("--deviation", deviation)), said.units, said.layers, tol
     )
     done = repair_file(file, out, options)
     if form == "json":
