@@ -3,13 +3,18 @@
 import numpy as np
 
 from flatprep.geom.bulge import Floats
-from flatprep.measure.boundary import Boundary, Ints
+from flatprep.measure.boundary import Bools, Boundary, Ints
 from flatprep.measure.discs import Pieces
 
 SAMPLES = 17
 """So many places on each side are looked at between two pieces."""
+FEW = 5
+"""So many are enough to see that most strips are too wide."""
 ROOM = 1.02
 """What is at most so many times the sought width stays one web."""
+
+Strips = tuple[list[Ints], list[Floats], list[Floats]]
+"""Contour, start and length (mm) of the runs between two pieces, on both sides."""
 
 
 def groups(b: Boundary, s: Pieces, most_mm: float) -> list[list[int]]:
@@ -50,25 +55,39 @@ def _neighbours(s: Pieces) -> Ints:
     return np.unique(pairs[pairs[:, 0] != pairs[:, 1]], axis=0)
 
 
-def _linked(b: Boundary, s: Pieces, pairs: Ints, room_mm: float) -> Ints:
-    """Which pairs have a strip between them that is nowhere wider than the room, shape (m,), bool."""
+def _linked(b: Boundary, s: Pieces, pairs: Ints, room_mm: float) -> Bools:
+    """Which pairs have a strip between them that is nowhere wider than the room, shape (m,)."""
     i, j = pairs.T
-    contour, start, span = _strips(b, s, i, j)
+    strips = _strips(b, s, i, j)
+    span = strips[2]
     # from any place between, an end is at most half the run away
-    surely = np.maximum(*span) / 2.0 + np.maximum(s.chord.width[i], s.chord.width[j]) <= room_mm
-    if surely.all():
-        return np.asarray(surely)
-    share = np.linspace(0.0, 1.0, SAMPLES)
-    one, two = (
-        b.locate(np.repeat(contour[side], SAMPLES), (start[side][:, None] + span[side][:, None] * share).ravel())
-        for side in (0, 1)
-    )
-    one, two = one.reshape(len(i), SAMPLES, 2), two.reshape(len(i), SAMPLES, 2)
-    wide = np.maximum(_farthest(one, two), _farthest(two, one))
-    return np.asarray(wide <= room_mm)
+    out: Bools = np.maximum(*span) / 2.0 + np.maximum(s.chord.width[i], s.chord.width[j]) <= room_mm
+    open_ = np.nonzero(~out)[0]
+    if len(open_):
+        open_ = open_[~_surely_wide(b, strips, open_, room_mm)]
+    if len(open_):
+        one, two = (_along(b, strips, side, open_, SAMPLES) for side in (0, 1))
+        out[open_] = np.maximum(_farthest(one, two), _farthest(two, one)) <= room_mm
+    return out
 
 
-def _strips(b: Boundary, s: Pieces, i: Ints, j: Ints) -> tuple[list[Ints], list[Floats], list[Floats]]:
+def _surely_wide(b: Boundary, strips: Strips, rows: Ints, room_mm: float) -> Bools:
+    """Which strips have a place that is too far from the other side, judged by a few places on each."""
+    sides = [_along(b, strips, side, rows, FEW) for side in (0, 1)]
+    apart = np.sqrt(np.sum((sides[0][:, :, None] - sides[1][:, None]) ** 2, axis=3))
+    half_step = [strips[2][side][rows, None] / (2 * (FEW - 1)) for side in (0, 1)]
+    far = [apart.min(axis=2) - half_step[1], apart.min(axis=1) - half_step[0]]
+    return np.asarray((np.maximum(*far) > room_mm).any(axis=1))
+
+
+def _along(b: Boundary, strips: Strips, side: int, rows: Ints, count: int) -> Floats:
+    """Places along one side of strips, evenly, shape (m, count, 2)."""
+    contour, start, span = (column[side][rows] for column in strips)
+    places = start[:, None] + span[:, None] * np.linspace(0.0, 1.0, count)
+    return b.locate(np.repeat(contour, count), places.ravel()).reshape(len(rows), count, 2)
+
+
+def _strips(b: Boundary, s: Pieces, i: Ints, j: Ints) -> Strips:
     """Find the runs of boundary between pieces i and j, the shortest that face each other: contour, start, length.
 
     Material lies to the left on both sides, so the sides run against each other.
