@@ -36,7 +36,7 @@ def load_material(name: str, own: Sequence[Path] = ()) -> Material:
     for material in known:
         if asked in {plain(word) for word in (material.id, material.name, *material.aliases)}:
             return material
-    names = [word for material in known for word in (material.id, *material.aliases)]
+    names = [word for material in known for word in (material.id, material.name, *material.aliases)]
     shown = names if nearest(name, names) else [material.id for material in known]
     raise ProfileError(f'unknown material "{name}"', did_you_mean(name, shown))
 

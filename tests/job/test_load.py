@@ -50,6 +50,12 @@ def test_bench_work_and_bends(job):
     assert (by_layer.layer, by_layer.radius_mm, by_layer.direction) == ("BEND", None, "up")
 
 
+def test_a_hem_is_a_bend_of_180_degrees(tmp_path):
+    text = 'process = "router"\n[[part]]\ndrawing = "leaf.dxf"\n[[part.bend]]\nlayer = "B"\nangle = 180\nradius = 0\n'
+    bend = load_job(write_job(tmp_path, text)).parts[0].bends[0]
+    assert (bend.angle_deg, bend.radius_mm) == (180.0, 0.0)
+
+
 def test_joints(job):
     joint = job.joints[0]
     assert (joint.name, joint.fastener, joint.nut, joint.count) == ("pivot", "shoulder 1/4", "10-24", 2)

@@ -33,7 +33,13 @@ def test_no_designation_means_two_materials():
 
 @pytest.mark.parametrize(
     ("name", "nearest"),
-    [("mild-stel", "mild-steel"), ("al-5052-h23", "al-5052-h32"), ("acryllic", "acrylic"), ("zzz", "known: abs")],
+    [
+        ("mild-stel", "mild-steel"),
+        ("al-5052-h23", "al-5052-h32"),
+        ("acryllic", "acrylic"),
+        ("aluminium", "aluminium 6"),
+        ("zzz", "known: abs"),
+    ],
 )
 def test_unknown_materials_get_the_nearest(name, nearest):
     with pytest.raises(ProfileError, match=f'unknown material "{name}"') as caught:
