@@ -68,8 +68,15 @@ def regions_of_rings(rings: Sequence[Chain]) -> tuple[Chain, ...]:
     whole: BaseGeometry = Polygon()
     for shape in shapes:
         inside = whole.intersection(shape).area > 0.98 * shape.area
-        whole = (whole.difference if inside else whole.union)(shape, grid_size=_SNAP_MM)
+        whole = areal((whole.difference if inside else whole.union)(shape, grid_size=_SNAP_MM))
     return _regions(whole, curves).rings
+
+
+def areal(shape: BaseGeometry) -> BaseGeometry:
+    """Return what has an area: slivers that the grid collapses to lines are in the way of the next operation."""
+    if shape.geom_type != "GeometryCollection":
+        return shape
+    return unary_union([g for g in get_parts(shape).tolist() if g.area > 0.0])
 
 
 def even_odd(ring: Chain) -> tuple[Chain, ...]:
