@@ -8,6 +8,7 @@ import click
 
 from flatprep.api.pieces import ReadJob, read_job
 from flatprep.base.progress import Progress
+from flatprep.cli.talk import tell, warn
 from flatprep.job.values import Job
 
 Command = TypeVar("Command", bound=Callable[..., Any])
@@ -25,5 +26,9 @@ def read_drawings(job: Job, jobs: int, progress: Progress) -> ReadJob:
     """Read and check the job's drawings; what cannot be read is said on stderr and kept for the result."""
     read = read_job(job, jobs=jobs, progress=progress)
     for one in read.lost:
-        click.echo(f"warning: {one.part}: {one.why}", err=True)
+        warn(f"{one.part}: {one.why}")
+    for linted in read.report.linted:
+        units = f"{linted.drawing.units} ({linted.drawing.units_from})"
+        mended = ", recovered" if linted.drawing.recovered else ""
+        tell(f"{linted.file}: {len(linted.drawing.parts)} parts, {units}{mended}")
     return read

@@ -8,6 +8,7 @@ import click
 
 from flatprep import __version__
 from flatprep.base.errors import ExitStatus, FlatprepError
+from flatprep.cli import talk
 
 _COMMANDS = {
     "alternatives": "what else parts could be made of: thickness, mass, cost, and whether it can be cut",
@@ -37,6 +38,8 @@ class Root(click.Group):
             return None
         module = importlib.import_module(f"flatprep.cli.{cmd_name}")
         command: click.Command = module.command
+        if not any(param.name == "quiet" for param in command.params):
+            talk.add_to(command)
         return command
 
     def format_commands(self, ctx: click.Context, formatter: click.HelpFormatter) -> None:

@@ -12,6 +12,7 @@ from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import output_format, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
+from flatprep.cli.talk import warn
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
 from flatprep.nest.problem import Budget
@@ -41,7 +42,7 @@ def command(
         with stoppable() as stop:
             nested = nest_job(read, budget, progress=progress, stop=stop)
             for warning in nested.warnings:
-                click.echo(f"warning: {warning}", err=True)
+                warn(warning)
             write_layout(nested, folder)
     if form == "json":
         click.echo(json.dumps(json.loads((folder / "layout.json").read_text()), indent=1))

@@ -5,12 +5,14 @@ from pathlib import Path
 import click
 
 from flatprep.api.prepare import Prepared, prepare_job, write_prepared
-from flatprep.base.errors import ExitStatus
+from flatprep.base.errors import ExitStatus, FlatprepError
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
+from flatprep.cli.talk import warn
+from flatprep.cli.watch import inputs, wait_for_change
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
 from flatprep.model.finding import Severity
@@ -20,6 +22,9 @@ from flatprep.nest.problem import Budget
 @click.command("prepare")
 @job_argument
 @click.option("--out", "folder", required=True, type=click.Path(path_type=Path), help="folder for everything")
+@click.option(
+    "--watch", is_flag=True, help="run again whenever the job or one of its drawings changes; ends with Ctrl-C"
+)
 @said_about_parts
 @search_budget
 @click.pass_context
@@ -28,21 +33,41 @@ def command(
     /,
     job_file: Path,
     folder: Path,
+    watch: bool,
     budget: Budget,
     said: JobOptions,
 ) -> None:
-    """Check, nest, list the bench work and estimate a job, all into one folder with report.html."""
+    """Check, nest, list the bench work and estimate a job, all into one folder with report.html.
+
+    Ends with 0 when there is nothing to look at, else 1; stopped by SIGINT or SIGTERM it writes the best layout so far
+    and ends with 130 or 143.
+    """
+    if not watch:
+        ctx.exit(_once(job_file, folder, budget, said))
+    while True:
+        try:
+            status = _once(job_file, folder, budget, said)
+        except FlatprepError as err:
+            click.echo(f"error: {err.message}", err=True)
+            status = err.exit_status
+        if status > ExitStatus.UNUSABLE:
+            ctx.exit(status)
+        click.echo("waiting for a change", err=True)
+        wait_for_change(inputs(job_file, said))
+
+
+def _once(job_file: Path, folder: Path, budget: Budget, said: JobOptions) -> int:
     job = load_job(job_file, said)
     with claimed(folder), progress_line() as progress:
         read = read_drawings(job, budget.jobs, progress)
         with stoppable() as stop:
             done = prepare_job(read, budget, progress=progress, stop=stop)
             for warning in done.nested.warnings if done.nested else ():
-                click.echo(f"warning: {warning}", err=True)
+                warn(warning)
             write_prepared(done, folder)
     click.echo(summary(done, folder))
     status = ExitStatus.FINDINGS if done.loud or done.unplaced else ExitStatus.CLEAN
-    ctx.exit(stop.exit_status if stop() else status)
+    return stop.exit_status if stop() else status
 
 
 def summary(done: Prepared, folder: Path) -> str:

@@ -7,6 +7,7 @@ from collections.abc import Iterator
 from contextlib import contextmanager
 
 from flatprep.base.progress import Progress, Silent
+from flatprep.cli.talk import Talk, level
 
 _FIRST_AFTER_S = 1.0
 _EVERY_S = 0.1
@@ -41,8 +42,8 @@ class _Line:
 
 @contextmanager
 def progress_line() -> Iterator[Progress]:
-    """Give a progress that a terminal shows; the line is gone when the work ends."""
-    if not sys.stderr.isatty():
+    """Give a progress that a terminal shows, unless it is to be quiet; the line is gone when the work ends."""
+    if not sys.stderr.isatty() or level() is Talk.QUIET:
         yield Silent()
         return
     line = _Line()

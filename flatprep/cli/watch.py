@@ -1,0 +1,51 @@
+"""Wait until one of a job's files changes."""
+
+import time
+from collections.abc import Iterable
+from contextlib import suppress
+from pathlib import Path
+
+from flatprep.base.errors import FlatprepError
+from flatprep.job.context import JobOptions
+from flatprep.job.load import load_job
+
+_EVERY_S = 0.5
+
+
+def inputs(job_file: Path, said: JobOptions) -> tuple[Path, ...]:
+    """Files that a job reads; the job alone while it has a mistake."""
+    files = [job_file, *job_file.parent.glob("*.csv"), *(p for f in said.profile_folders for p in f.rglob("*.toml"))]
+    with suppress(FlatprepError):
+        job = load_job(job_file, said)
+        files += [part.drawing for part in job.parts]
+        files += [stock.outline for stock in job.stock if isinstance(stock.outline, Path)]
+    return tuple(dict.fromkeys(files))
+
+
+def wait_for_change(files: Iterable[Path], *, every_s: float = _EVERY_S) -> None:
+    """Return once a file has changed, come or gone, and has then been left alone for a moment.
+
+    A program that saves a drawing writes it in pieces: half a file is not to be read.
+    """
+    watched = tuple(files)
+    before = _stamps(watched)
+    while (now := _stamps(watched)) == before:
+        time.sleep(every_s)
+    while True:
+        time.sleep(every_s)
+        later = _stamps(watched)
+        if later == now:
+            return
+        now = later
+
+
+def _stamps(files: Iterable[Path]) -> tuple[tuple[int, int] | None, ...]:
+    return tuple(_stamp(path) for path in files)
+
+
+def _stamp(path: Path) -> tuple[int, int] | None:
+    try:
+        status = path.stat()
+    except OSError:
+        return None
+    return status.st_mtime_ns, status.st_size
