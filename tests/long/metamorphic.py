@@ -63,7 +63,8 @@ def main() -> int:
     print(
         f"{tally['plain']} variants: parts the same in {tally['plain'] - tally['plain, parts']}, findings in "
         f"{tally['plain'] - tally['plain, findings']}; of drawings whose outlines cross or branch "
-        f"{tally['ambiguous']}: parts the same in {tally['ambiguous'] - tally['ambiguous, parts']}; not done {tally['not done']}"
+        f"{tally['ambiguous']}: parts the same in {tally['ambiguous'] - tally['ambiguous, parts']}; "
+        f"not done {tally['not done']}"
     )
     return 1 if tally["plain, parts"] or tally["plain, findings"] else 0
 
