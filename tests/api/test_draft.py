@@ -1,0 +1,77 @@
+"""A drafted job file can be loaded, and says what it guessed."""
+
+import shutil
+from pathlib import Path
+
+import pytest
+from click.testing import CliRunner
+
+from flatprep.api.draft import draft_job
+from flatprep.base.errors import ProfileError, UsageError
+from flatprep.cli.main import root
+from flatprep.job.load import load_job
+from flatprep.report.draft_toml import draft_toml
+
+LEAF = Path(__file__).parents[2] / "sample_parts" / "drawings" / "washer.dxf"
+
+
+@pytest.fixture
+def folder(tmp_path):
+    """Drawings in two levels, two of them of one name."""
+    for name in ("ring_3mm_steel_x4.dxf", 'odd "name"\u00e9.dxf', "left/leaf.dxf", "right/leaf.DXF"):
+        target = tmp_path / "parts" / name
+        target.parent.mkdir(parents=True, exist_ok=True)
+        shutil.copy(LEAF, target)
+    return tmp_path / "parts"
+
+
+def test_a_drafted_job_loads_and_holds_every_drawing(folder, tmp_path):
+    job_file = tmp_path / "job.toml"
+    job_file.write_text(draft_toml(draft_job(folder, tmp_path, process="fibre-laser")), encoding="utf-8")
+    job = load_job(job_file)
+    assert sorted(part.name for part in job.parts) == ["left_leaf", 'odd "name"é', "right_leaf", "ring_3mm_steel_x4"]
+    ring = next(part for part in job.parts if part.name.startswith("ring"))
+    assert (ring.material.id, ring.thickness_mm, ring.quantity) == ("mild-steel", 3.0, 4)
+    assert [(stock.material.id, stock.thickness_mm) for stock in job.stock] == [("mild-steel", 3.0)]
+    assert all(part.drawing.exists() for part in job.parts)
+
+
+def test_guesses_and_gaps_are_marked(folder, tmp_path):
+    text = draft_toml(draft_job(folder, tmp_path))
+    assert 'material = "mild-steel"   # guess, from the name' in text
+    assert "quantity = 4   # guess, from the name" in text
+    assert text.count("the name does not tell") == 6  # three drawings without material and thickness
+    assert "not said: needed" in text
+
+
+def test_a_cut_list_goes_before_names(folder, tmp_path):
+    (folder / "cutlist.csv").write_text("file,material,thickness,quantity\nring_3mm_steel_x4.dxf,acrylic,5mm,7\n")
+    draft = draft_job(folder, tmp_path)
+    assert draft.cutlist == "parts/cutlist.csv"
+    assert not [part for part in draft.parts if "ring" in part.drawing]
+
+
+def test_wrong_asks(folder, tmp_path):
+    empty = tmp_path / "empty"
+    empty.mkdir()
+    with pytest.raises(UsageError, match=r"no \.dxf drawing"):
+        draft_job(empty, tmp_path)
+    with pytest.raises(ProfileError, match="unknown process"):
+        draft_job(folder, tmp_path, process="bread-knife")
+
+
+def test_a_job_file_is_never_overwritten(folder, tmp_path):
+    target = tmp_path / "job.toml"
+    target.write_text("mine")
+    done = CliRunner().invoke(root, ["draft", str(folder), "--out", str(target)])
+    assert done.exit_code == 2
+    assert "is there already" in done.stderr
+    assert target.read_text() == "mine"
+
+
+def test_the_command_writes_the_file_and_tells_what_is_missing(folder, tmp_path):
+    target = tmp_path / "job.toml"
+    done = CliRunner().invoke(root, ["draft", str(folder), "--out", str(target), "--process", "router"])
+    assert done.exit_code == 0
+    assert "4 drawings; 3 without a material, 3 without a thickness" in done.stderr
+    assert load_job(target).process.id == "router"
