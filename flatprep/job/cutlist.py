@@ -40,8 +40,7 @@ def find_cutlist(folder: Path) -> Path | None:
 def load_cutlist(path: Path) -> tuple[CutRow, ...]:
     """Read a cut list: comma, semicolon or tab between the columns, any line ends, with or without a byte order mark.
 
-    Empty lines and lines that begin with ``#`` are passed over. With semicolons or tabs a thickness may have a
-    decimal comma.
+    Empty lines and lines that begin with ``#`` are passed over. A thickness may have a decimal comma.
 
     Raises
     ------
@@ -54,7 +53,7 @@ def load_cutlist(path: Path) -> tuple[CutRow, ...]:
         raise JobError(f"{path}: is empty", f"first line: {','.join(NEEDED)}")
     separator = max(",;\t", key=lines[0][1].count)
     header = _header(path, lines[0][0], _split(path, *lines[0], separator))
-    rows = tuple(_row(path, n, header, _split(path, n, line, separator), separator) for n, line in lines[1:])
+    rows = tuple(_row(path, n, header, _split(path, n, line, separator)) for n, line in lines[1:])
     if not rows:
         raise JobError(f"{path}: has no row below its header", "add one line a drawing")
     return rows
@@ -101,7 +100,7 @@ def _header(path: Path, number: int, names: list[str]) -> list[str]:
     return header
 
 
-def _row(path: Path, number: int, header: list[str], given: list[str], separator: str) -> CutRow:
+def _row(path: Path, number: int, header: list[str], given: list[str]) -> CutRow:
     if any(given[len(header) :]):
         raise JobError(
             f"{path}: line {number}: {len(given)} cells for {len(header)} columns",
@@ -110,7 +109,7 @@ def _row(path: Path, number: int, header: list[str], given: list[str], separator
     cell = dict.fromkeys(NEEDED + OPTIONAL, "") | dict(zip(header, given, strict=False))
     if not cell["file"]:
         raise JobError(f"{path}: line {number}: file is empty", "name the drawing")
-    if separator != "," and re.fullmatch(r"\d+,\d+\D*", cell["thickness"]):
+    if re.fullmatch(r"\d+,\d+\D*", cell["thickness"]):
         cell["thickness"] = cell["thickness"].replace(",", ".")
     return CutRow(
         file=cell["file"].replace("\\", "/"),

@@ -50,9 +50,11 @@ def test_comments_and_line_numbers(tmp_path):
     assert [(r.file, r.quantity, r.line) for r in rows(tmp_path, text)] == [("a.dxf", 1, 5), ("b.dxf", 0, 6)]
 
 
-def test_a_decimal_comma_where_it_cannot_be_a_separator(tmp_path):
-    text = "file;material;thickness;quantity\na.dxf;birch-ply;6,5 mm;1\nb.dxf;birch-ply;6,5;1\n"
-    assert [r.thickness for r in rows(tmp_path, text)] == ["6.5 mm", "6.5"]
+@pytest.mark.parametrize(("thickness", "separator"), [("6,5 mm", ";"), ("6,5", "\t"), ('"6,5 mm"', ",")])
+def test_a_decimal_comma(tmp_path, thickness, separator):
+    text = separator.join(("file", "material", "thickness", "quantity")) + "\n"
+    text += separator.join(("a.dxf", "birch-ply", thickness, "1"))
+    assert rows(tmp_path, text)[0].thickness == thickness.strip('"').replace(",", ".")
 
 
 def test_western_letters_of_an_older_spreadsheet(tmp_path):

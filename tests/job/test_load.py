@@ -50,6 +50,12 @@ def test_bench_work_and_bends(job):
     assert (by_layer.layer, by_layer.radius_mm, by_layer.direction) == ("BEND", None, "up")
 
 
+def test_nothing_between_parts_and_no_border_are_allowed(tmp_path):
+    text = 'process = "router"\nspacing = 0\nmargin = 0\n[[part]]\ndrawing = "leaf.dxf"\n'
+    job = load_job(write_job(tmp_path, text))
+    assert (job.spacing_mm, job.margin_mm) == (0.0, 0.0)
+
+
 def test_a_hem_is_a_bend_of_180_degrees(tmp_path):
     text = 'process = "router"\n[[part]]\ndrawing = "leaf.dxf"\n[[part.bend]]\nlayer = "B"\nangle = 180\nradius = 0\n'
     bend = load_job(write_job(tmp_path, text)).parts[0].bends[0]

@@ -107,6 +107,12 @@ def test_kerf_table_is_straight_between_and_flat_beyond():
     assert p.kerf_at("aluminium", None) == p.kerf_at("stainless", 2.0) == 0.2
 
 
+def test_what_holds_without_any_table_of_limits():
+    bare = parse_process({"kind": "laser", "kerf_table": [[0, 0.1], [4, 0.3]]}, "p.toml", "p")
+    assert (bare.join_gap_mm, bare.kerf_mm, bare.limit("hole", None, 3.0)) == (0.05, 0.0, None)
+    assert bare.kerf_at(None, 1.0) == pytest.approx(0.15)
+
+
 def test_cutting_time_from_feeds():
     # 1000 mm at 2000 mm/min are 30 s, and three pierces of 0.5 s
     p = process(family={"aluminium": {"feed_mm_min": [[1, 3000], [3, 1000]], "pierce_s": [[1, 0.4], [3, 0.6]]}})
