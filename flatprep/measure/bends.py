@@ -101,17 +101,26 @@ def _among(line: BendLine, named: Sequence[tuple[Point, Point]], tol_mm: float =
     return any(shapely.LineString(ends).buffer(tol_mm).contains(drawn) for ends in named)
 
 
-def rim_to_line_mm(hole: Hole, line: BendLine) -> float:
-    """Distance of a hole's rim from a bend line, mm; negative as far as the hole reaches over it."""
-    if hole.shape is HoleShape.CIRCLE:
-        return float(shapely.LineString([line.start, line.end]).distance(shapely.Point(hole.at))) - hole.width_mm / 2.0
-    rim = polygon(hole.contour.xyb, (), chord_mm=CHORD_MM)
+def rim_to_line(hole: Hole, line: BendLine) -> tuple[float, Point]:
+    """Distance of a hole's rim from a bend line, mm, and the place midway between.
+
+    The distance is negative, as far as the hole reaches over it, for a hole that lies across the line; its place is
+    then on the line.
+    """
     axis = shapely.LineString([line.start, line.end])
+    centre = shapely.Point(hole.at)
+    if hole.shape is HoleShape.CIRCLE:
+        apart = float(axis.distance(centre)) - hole.width_mm / 2.0
+        foot = axis.interpolate(axis.project(centre))
+        share = 0.0 if apart <= 0.0 else apart / 2.0 / (apart + hole.width_mm / 2.0)
+        return apart, (foot.x + (centre.x - foot.x) * share, foot.y + (centre.y - foot.y) * share)
+    rim = polygon(hole.contour.xyb, (), chord_mm=CHORD_MM)
+    a, z = shapely.get_coordinates(shapely.shortest_line(axis, rim)).tolist()
     apart = float(rim.distance(axis))
-    if apart > 0.0:
-        return apart
-    across = _along_line(rim, line)
-    return -min(abs(float(across.bounds[1])), abs(float(across.bounds[3])))
+    if apart <= 0.0:
+        over = _along_line(rim, line).bounds
+        apart = -min(abs(float(over[1])), abs(float(over[3])))
+    return apart, ((a[0] + z[0]) / 2, (a[1] + z[1]) / 2)
 
 
 def legs_mm(part: Part, lines: Sequence[BendLine]) -> tuple[tuple[float, ...], ...]:
@@ -148,11 +157,3 @@ def _along_line(shape: shapely.Geometry, line: BendLine) -> shapely.Geometry:
     c, s = cos(line.direction_rad), sin(line.direction_rad)
     x, y = line.start
     return affinity.affine_transform(shape, [c, s, -s, c, -(c * x + s * y), s * x - c * y])
-
-
-def nearest_place(hole: Hole, line: BendLine) -> Point:
-    """Point of the bend line that is nearest to the hole's centre, mm."""
-    a, d = np.array(line.start), np.array(line.end) - np.array(line.start)
-    t = float(np.clip((np.array(hole.at) - a) @ d / (d @ d), 0.0, 1.0))
-    x, y = (a + t * d).tolist()
-    return (x, y)

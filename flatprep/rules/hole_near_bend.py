@@ -2,7 +2,7 @@
 
 from collections.abc import Iterator
 
-from flatprep.measure.bends import BendLine, bend_lines, nearest_place, rim_to_line_mm
+from flatprep.measure.bends import BendLine, bend_lines, rim_to_line
 from flatprep.measure.holes import Hole
 from flatprep.model.finding import Finding, Severity
 from flatprep.practice.bends import MOST_DEG, clear_of_bend_mm, tangent_mm
@@ -29,7 +29,7 @@ def _told(ctx: Context, part: str, hole: Hole, line: BendLine) -> Iterator[Findi
     radius = line.radius_mm or thickness
     least, safe = (clear_of_bend_mm(key, thickness, radius) for key in ("hole_error", "hole_warn"))
     limit = Limit(least, safe, SOURCE)
-    apart = rim_to_line_mm(hole, line)
+    apart, place = rim_to_line(hole, line)
     clear = apart - tangent_mm(radius, thickness, min(line.angle_deg, MOST_DEG))
     verdict = judge(clear, limit, ctx.slack_mm(chords=hole.chords))
     if verdict is None:
@@ -42,7 +42,7 @@ def _told(ctx: Context, part: str, hole: Hole, line: BendLine) -> Iterator[Findi
         severity=verdict[0] if line.said and not relief else Severity.WARNING,
         message=f"the hole {'lies across the bend line' if relief else 'is near the bend'}{assumed}",
         part=part,
-        at=nearest_place(hole, line) if relief else hole.at,
+        at=place,
         measured=clear,
         limit=verdict[1],
         unit="mm",

@@ -29,7 +29,7 @@ def _long_holes(ctx: Context, part: MeasuredPart, limit: Limit) -> Iterator[Find
             yield Finding(
                 rule=RULE.id,
                 severity=verdict[0],
-                message=f"the {hole.shape} hole is narrow for its thickness",
+                message=f"the {'obround' if hole.shape is HoleShape.OBROUND else 'rectangular'} slot is narrow",
                 part=part.name,
                 at=hole.at,
                 measured=hole.width_mm,

@@ -2,9 +2,19 @@
 
 from collections.abc import Iterator
 
+from flatprep.measure.facing import TooFineError
 from flatprep.measure.holes import Hole, HoleShape, inscribed_diameter
+from flatprep.measure.part import MeasuredPart
 from flatprep.model.finding import Finding, Severity
 from flatprep.rules.base import Context, Rule, judge, reach_mm
+
+_NAMES = {
+    HoleShape.CIRCLE: "round",
+    HoleShape.OBROUND: "obround",
+    HoleShape.RECTANGLE: "rectangular",
+    HoleShape.HEXAGON: "hexagonal",
+    HoleShape.OTHER: "free-form",
+}
 
 
 def check(ctx: Context) -> Iterator[Finding]:
@@ -13,8 +23,9 @@ def check(ctx: Context) -> Iterator[Finding]:
     if limit is None:
         return
     for part in ctx.parts:
-        for hole in part.holes:
-            if hole.is_long:
+        slots = _narrow(ctx, part)
+        for k, hole in enumerate(part.holes, start=1):
+            if hole.is_long or k in slots:  # both answer to narrow-slot
                 continue
             size = clear_mm(hole, reach_mm(limit))
             verdict = judge(size, limit, ctx.slack_mm(chords=hole.chords))
@@ -22,7 +33,7 @@ def check(ctx: Context) -> Iterator[Finding]:
                 yield Finding(
                     rule=RULE.id,
                     severity=verdict[0],
-                    message=f"the {hole.shape if hole.shape is not HoleShape.CIRCLE else 'round'} hole is small",
+                    message=f"the {_NAMES[hole.shape]} hole is small",
                     part=part.name,
                     at=hole.at,
                     measured=size,
@@ -30,6 +41,18 @@ def check(ctx: Context) -> Iterator[Finding]:
                     unit="mm",
                     handles=hole.handles,
                 )
+
+
+def _narrow(ctx: Context, part: MeasuredPart) -> frozenset[int]:
+    """Which contours of a part are holes that are too narrow somewhere, and are told as such."""
+    limit = ctx.limit("slot")
+    if limit is None:
+        return frozenset()
+    try:
+        found = part.slots(reach_mm(limit))
+    except TooFineError:
+        return frozenset()
+    return frozenset(w.contours[0] for w in found if judge(w.width_mm, limit, ctx.slack_mm()) is not None)
 
 
 def clear_mm(hole: Hole, needed_mm: float) -> float:

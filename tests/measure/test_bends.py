@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 
 from flatprep.job.values import BendAsk
-from flatprep.measure.bends import BendLine, bend_lines, legs_mm, rim_to_line_mm
+from flatprep.measure.bends import BendLine, bend_lines, legs_mm, rim_to_line
 from flatprep.measure.holes import recognise
 from flatprep.model.drawing import Curve
 from tests.measure.shapes import circle, contour, moved, part, path, rectangle
@@ -13,17 +13,21 @@ LINE = BendLine((0, 20), (100, 20))
 
 
 @pytest.mark.parametrize(
-    ("hole", "apart"),
+    ("hole", "apart", "place"),
     [
-        pytest.param(circle(50, 30, 4), 6.0, id="circle"),
-        pytest.param(rectangle(40, 25, 10, 10), 5.0, id="rectangle"),
-        pytest.param(circle(50, 21, 4), -3.0, id="circle-over-the-line"),
-        pytest.param(rectangle(40, 18, 10, 12), -2.0, id="rectangle-over-the-line"),
-        pytest.param(circle(106, 20, 4), 2.0, id="beyond-the-end"),
+        pytest.param(circle(50, 30, 4), 6.0, (50, 23), id="circle"),
+        pytest.param(rectangle(40, 25, 10, 10), 5.0, (40, 22.5), id="rectangle"),
+        pytest.param(circle(50, 21, 4), -3.0, (50, 20), id="circle-over-the-line"),
+        pytest.param(rectangle(40, 18, 10, 12), -2.0, (40, 20), id="rectangle-over-the-line"),
+        pytest.param(circle(106, 20, 4), 2.0, (101, 20), id="beyond-the-end"),
     ],
 )
-def test_rim_to_line(hole, apart):
-    assert rim_to_line_mm(recognise(contour(hole, hole=True)), LINE) == pytest.approx(apart, abs=1e-6)
+def test_rim_to_line(hole, apart, place):
+    found, at = rim_to_line(recognise(contour(hole, hole=True)), LINE)
+    assert found == pytest.approx(apart, abs=1e-6)
+    # the nearest place of a side that runs along the line is any of it
+    assert at[1] == pytest.approx(place[1], abs=1e-6)
+    assert at[0] == pytest.approx(place[0], abs=10.0 if len(hole) == 4 else 1e-6)
 
 
 @pytest.mark.parametrize("turn", [0.0, 90.0, 33.0])
