@@ -132,7 +132,7 @@ def open_up(ask: Ask, as_cut_mm: float | None, drill_mm: float, cut_dia_mm: floa
     out = []
     if as_cut_mm is None:
         out.append(
-            Op(StepKind.CENTRE_MARK, Rank.CENTRE_MARK, ask.at, size, cut_dia_mm=cut_dia_mm, side=ask.work.side,
+            Op(StepKind.CENTRE_MARK, Rank.CENTRE_MARK, ask.at, size, cut_dia_mm=cut_dia_mm,
                note="no hole is cut here: centre mark, drill solid")
         )  # fmt: skip
     note = f"opens the cut hole of {as_cut_mm:.4g} mm" if as_cut_mm is not None else "in steps, smallest drill first"

@@ -22,7 +22,7 @@ class Target:
     @property
     def drawn_mm(self) -> float | None:
         """Drawn diameter (a hexagon's across flats), None where there is no hole."""
-        return self.hole.width_mm if self.hole else None
+        return round(self.hole.width_mm, 6) if self.hole else None
 
 
 def targets_of(holes: Iterable[Hole], work: Work) -> tuple[Target, ...]:
