@@ -195,7 +195,7 @@ def _walk(members: list[int], curves: Sequence[Curve], nodes: Ints) -> Chain:
         at_node[int(nodes[2 * i + 1])].append(2 * i + 1)
     dangling = [ends[0] for _, ends in sorted(at_node.items()) if len(ends) == 1]
     at = dangling[0] if dangling else 2 * members[0]
-    rows: list[Floats] = []
+    pieces: list[Floats] = []
     handles: list[str] = []
     layers: set[str] = set()
     left = set(members)
@@ -203,14 +203,24 @@ def _walk(members: list[int], curves: Sequence[Curve], nodes: Ints) -> Chain:
         i = at // 2
         left.remove(i)
         xyb = curves[i].xyb if at % 2 == 0 else bulge.reverse(curves[i].xyb, closed=False)
-        rows.append(xyb[:-1])
+        pieces.append(xyb)
         handles += [curves[i].handle] * (len(xyb) - 1)
         layers.add(curves[i].layer)
-        last = xyb[-1:]
         onward = [e for e in at_node[int(nodes[at ^ 1])] if e // 2 in left]
         if not onward:
             break
         at = onward[0]
     closed = not dangling
-    body = np.vstack(rows if closed else [*rows, last])
-    return Chain(body, tuple(handles), tuple(sorted(layers)), closed, (), len(members))
+    return Chain(_end_to_end(pieces, closed=closed), tuple(handles), tuple(sorted(layers)), closed, (), len(members))
+
+
+def _end_to_end(pieces: Sequence[Floats], *, closed: bool) -> Floats:
+    """One polyline out of pieces that follow each other; they meet midway, whichever of them was drawn first."""
+    body = np.vstack([p[:-1] for p in pieces] + ([] if closed else [pieces[-1][-1:]]))
+    first = np.cumsum([0, *(len(p) - 1 for p in pieces[:-1])])
+    ends = np.array([p[-1, :2] for p in pieces])
+    if closed:
+        body[first, :2] = (body[first, :2] + np.roll(ends, 1, axis=0)) / 2.0
+    else:
+        body[first[1:], :2] = (body[first[1:], :2] + ends[:-1]) / 2.0
+    return body

@@ -346,6 +346,20 @@ def test_depth_two_is_a_part_of_its_own(tmp_path):
     assert drawing.parts[1].area_mm2 == pytest.approx(pi * (900 - 100))
 
 
+@pytest.mark.parametrize("turned", [False, True])
+def test_ends_that_do_not_meet_are_joined_midway(tmp_path, turned):
+    """Whichever line was drawn first, and whichever way it runs."""
+
+    def paint(msp):
+        lines = [((0, 0), (80, 0)), ((80.02, 0), (80.02, 50)), ((80.02, 50), (0, 50)), ((0, 50), (0, 0))]
+        for a, b in reversed(lines) if turned else lines:
+            msp.add_line(*((b, a) if turned else (a, b)))
+
+    (part,) = read(drawn(tmp_path, paint)).parts
+    corners = sorted((round(x, 6), round(y, 6)) for x, y, _ in part.outer.xyb.tolist())
+    assert corners == [(0, 0), (0, 50), (80.01, 0), (80.02, 50)]
+
+
 def test_outer_runs_left_and_holes_run_right(tmp_path):
     from flatprep.geom.bulge import signed_area
 
