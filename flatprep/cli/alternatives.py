@@ -11,6 +11,7 @@ from flatprep.api.work import estimate_job
 from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import said_about_parts
 from flatprep.cli.progress import progress_line
+from flatprep.cost.alternatives_job import job_alternatives
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
 from flatprep.report.alternatives_json import alternatives_csv, alternatives_document
@@ -43,11 +44,13 @@ def command(
     job = load_job(job_file, said)
     with progress_line() as progress:
         read = read_drawings(job, 1, progress)
-        now = estimate_job(read, stored_layout(layout_file)).utilisation if layout_file else None
-        tables = alternatives_job(read, WhatIf(parts, tried, every, said.profile_folders, now), progress=progress)
+        now = estimate_job(read, stored_layout(layout_file) if layout_file else None)
+        ask = WhatIf(parts, tried, every, said.profile_folders, now.utilisation)
+        tables = alternatives_job(read, ask, progress=progress)
+    whole = () if parts else job_alternatives(tables, now)
     if form == "json":
-        click.echo(json.dumps(alternatives_document(tables, currency=job.currency), indent=1))
+        click.echo(json.dumps(alternatives_document(tables, whole, currency=job.currency), indent=1))
     elif form == "csv":
         click.echo(alternatives_csv(tables), nl=False)
     else:
-        click.echo(alternatives_text(tables, currency=job.currency, units=job.units))
+        click.echo(alternatives_text(tables, whole, currency=job.currency, units=job.units))

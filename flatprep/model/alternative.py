@@ -67,3 +67,34 @@ class PartAlternatives:
     cost: Decimal | None
     options: tuple[Alternative, ...]
     notes: tuple[str, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class JobAlternative:
+    """The whole set with all parts of one material made of another; figures are those of one set.
+
+    Attributes
+    ----------
+    present, material : str
+        Material now, and instead.
+    parts : int
+        Kinds of part that change.
+    mass_kg, change_kg : float
+        Of the set then, and the difference to now.
+    limit_left_kg : float or None
+        What the mass limit then leaves.
+    deflection_ratio : float or None
+        Of the part that becomes the least stiff, under the same load; None where it is not known of one.
+    blocked : tuple of str
+        Parts that no process at hand can cut then, or that lint would not pass.
+    """
+
+    basis: Basis
+    present: str
+    material: str
+    parts: int
+    mass_kg: float
+    change_kg: float
+    limit_left_kg: float | None
+    deflection_ratio: float | None
+    blocked: tuple[str, ...]

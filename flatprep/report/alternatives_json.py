@@ -4,15 +4,21 @@ from collections.abc import Sequence
 from dataclasses import asdict, fields
 from decimal import Decimal
 
-from flatprep.model.alternative import Alternative, PartAlternatives
+from flatprep.model.alternative import Alternative, JobAlternative, PartAlternatives
 from flatprep.report.csv_table import csv_table
 
 SCHEMA = "flatprep-alternatives/1"
 
 
-def alternatives_document(tables: Sequence[PartAlternatives], *, currency: str | None = None) -> dict[str, object]:
-    """Return the document: one entry a part, figures unrounded, None where something is not known."""
-    return {"schema": SCHEMA, "currency": currency, "parts": [_plain(asdict(table)) for table in tables]}
+def alternatives_document(
+    tables: Sequence[PartAlternatives], whole: Sequence[JobAlternative] = (), *, currency: str | None = None
+) -> dict[str, object]:
+    """Return the document: one entry a part, and one line for each material made of another in the whole set.
+
+    Figures are unrounded, None where something is not known.
+    """
+    parts = [_plain(asdict(table)) for table in tables]
+    return {"schema": SCHEMA, "currency": currency, "parts": parts, "set": [_plain(asdict(line)) for line in whole]}
 
 
 def _plain(value: object) -> object:

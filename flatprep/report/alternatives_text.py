@@ -2,7 +2,7 @@
 
 from collections.abc import Sequence
 
-from flatprep.model.alternative import Alternative, Basis, PartAlternatives
+from flatprep.model.alternative import Alternative, Basis, JobAlternative, PartAlternatives
 from flatprep.report.columns import columns
 from flatprep.report.figures import UNKNOWN, length, mass, money, significant
 
@@ -15,9 +15,54 @@ _TITLES = {
 _HEAD = ["material", "cut by", "needed", "sold", "mass", "mass ratio", "deflection", "strength", "cost", "lint"]
 
 
-def alternatives_text(tables: Sequence[PartAlternatives], *, currency: str | None = None, units: str = "mm") -> str:
-    """Return one block a part: what it is, then the options by what stays the same, the lightest first."""
-    return "\n\n".join(_part(table, currency, units) for table in tables)
+def alternatives_text(
+    tables: Sequence[PartAlternatives],
+    whole: Sequence[JobAlternative] = (),
+    *,
+    currency: str | None = None,
+    units: str = "mm",
+) -> str:
+    """Return one block a part: what it is, then the options by what stays the same, the lightest first.
+
+    `whole` adds what a set weighs when all parts of a material are made of another.
+    """
+    blocks = [_part(table, currency, units) for table in tables]
+    return "\n\n".join([*blocks, _whole(whole)] if whole else blocks)
+
+
+def _whole(lines: Sequence[JobAlternative]) -> str:
+    head = [
+        "all parts of",
+        "made of",
+        "basis",
+        "kinds",
+        "set weighs",
+        "change",
+        "limit left",
+        "deflection",
+        "in the way",
+    ]
+    rows = [
+        [
+            line.present,
+            line.material,
+            _TITLES[line.basis],
+            str(line.parts),
+            mass(line.mass_kg),
+            ("+" if line.change_kg > 0.0 else "") + mass(line.change_kg),
+            mass(line.limit_left_kg),
+            _times(line.deflection_ratio),
+            _few(line.blocked),
+        ]
+        for line in lines
+    ]
+    return f"one set, material by material\n{columns(head, rows, left=3)}"
+
+
+def _few(names: Sequence[str]) -> str:
+    if not names:
+        return UNKNOWN
+    return names[0] if len(names) == 1 else f"{names[0]} and {len(names) - 1} more"
 
 
 def _part(table: PartAlternatives, currency: str | None, units: str) -> str:

@@ -7,6 +7,7 @@ from decimal import Decimal
 import pytest
 
 from flatprep.cost.alternatives import Choice, alternatives, next_stock_mm, stiffness_ratio, strength_ratio
+from flatprep.cost.alternatives_job import job_alternatives
 from flatprep.cost.breaks import quantity_breaks
 from flatprep.cost.estimate import Ask, Costed, estimate
 from flatprep.cost.prices import price_per_kg, priced
@@ -165,6 +166,64 @@ def test_quantity_breaks_per_set():
     assert (one.sets, one.sheets, one.material_cost, one.cost_per_set) == (1, 1, Decimal("100.00"), 100.0)
     assert (five.sets, five.sheets, five.cost_per_set) == (5, 1, 20.0)
     assert quantity_breaks([estimate([PLATE])])[0].cost_per_set is None
+
+
+def whole_job():
+    """Two kinds of steel part and one of aluminium; two sets; the mass of a set worked by hand.
+
+    side 200 x 100 x 4 twice a set: 2 x 0.628; arm 100 x 50 x 4 once: 0.157; tab of aluminium 50 x 40 x 3: 0.0162.
+    """
+    items = [
+        Costed(rectangle("side", 200.0, 100.0), 4, STEEL, 4.0, LASER),
+        Costed(rectangle("arm", 100.0, 50.0), 2, STEEL, 4.0, LASER),
+        Costed(rectangle("tab", 50.0, 40.0), 2, ALU, 3.0, LASER),
+    ]
+    return items, estimate(items, ask=Ask(sets=2, mass_limit_kg=1.5))
+
+
+def tables_of(items, judge=None):
+    return [alternatives(item, Choice((STEEL, ALU), judge=judge)) for item in items]
+
+
+def test_a_whole_set_in_another_material():
+    items, now = whole_job()
+    assert now.mass_kg == pytest.approx(2 * 0.628 + 0.157 + 0.0162)
+    lines = {(x.present, x.material, x.basis): x for x in job_alternatives(tables_of(items), now)}
+    light = lines["mild-steel", "al-6061-t6", Basis.STIFFNESS]
+    # sides and arm as stiff in 6 mm: 2 x 0.324 + 0.081; the tab stays
+    assert light.mass_kg == pytest.approx(2 * 0.324 + 0.081 + 0.0162)
+    assert light.change_kg == pytest.approx(light.mass_kg - now.mass_kg)
+    assert light.limit_left_kg == pytest.approx(1.5 - light.mass_kg)
+    assert (light.parts, light.blocked) == (2, ())
+    assert light.deflection_ratio == pytest.approx(3.0 * (4.0 / 6.0) ** 3)
+    assert lines["mild-steel", "al-6061-t6", Basis.SAME_THICKNESS].deflection_ratio == pytest.approx(3.0)
+    assert ("al-6061-t6", "mild-steel", Basis.SAME_THICKNESS) in lines
+    assert [x.mass_kg for x in job_alternatives(tables_of(items), now)] == sorted(x.mass_kg for x in lines.values())
+
+
+def test_parts_in_the_way_are_named():
+    items, now = whole_job()
+    tables = tables_of(items, judge=lambda material, thickness, process: ("thin-web",) if thickness == 6.0 else ())
+    line = next(x for x in job_alternatives(tables, now) if (x.material, x.basis) == ("al-6061-t6", Basis.STIFFNESS))
+    assert line.blocked == ("side", "arm")
+
+
+def test_a_set_with_a_part_that_no_sheet_is_thick_enough_for_has_no_line():
+    items, now = whole_job()
+    thin = replace(ALU, stock_mm=(3.0, 5.0))
+    tables = [alternatives(item, Choice((STEEL, thin))) for item in items]
+    assert not [x for x in job_alternatives(tables, now) if (x.present, x.basis) == ("mild-steel", Basis.STIFFNESS)]
+    assert job_alternatives(tables, replace(now, mass_kg=None)) == ()
+
+
+def test_reports_of_the_whole_set():
+    items, now = whole_job()
+    whole = job_alternatives(tables_of(items, judge=lambda *_: ("thin-web",)), now)
+    text = alternatives_text([], whole)
+    assert "one set, material by material" in text
+    assert "side and 1 more" in text
+    document = json.loads(json.dumps(alternatives_document([], whole)))
+    assert document["set"][0]["present"] == whole[0].present
 
 
 def test_reports():
