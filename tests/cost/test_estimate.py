@@ -114,6 +114,12 @@ def test_without_density_or_thickness_no_mass_is_known():
     assert estimate([costed(rectangle("a", 10, 10), thickness=None)]).mass_kg is None
 
 
+@pytest.mark.parametrize(("count", "words"), [(6, "p0, p1, p2, p3, p4, p5"), (8, "p0, p1, p2, p3, p4, p5 and 2 more")])
+def test_long_lists_of_names_are_cut_short(count, words):
+    e = estimate([costed(rectangle(f"p{n}", 10, 10), material=None) for n in range(count)])
+    assert e.notes[0] == f"mass not known, for want of thickness or density: {words}"
+
+
 def test_materials_and_thicknesses_bear_their_own_sheets():
     thick = stock("s6", "200", thickness=6.0)
     items = [*ABC, costed(rectangle("d", 10, 10), thickness=6.0)]

@@ -102,6 +102,13 @@ def test_the_smallest_job_has_the_defaults(tmp_path):
     assert (job.spacing_mm, job.margin_mm, job.mass_limit_kg, job.pilots) == (6.0, 15.0, None, Pilots.AS_DRAWN)
     assert (part.name, part.quantity, part.quantity_opposite, part.turns_deg) == ("leaf", 1, 0, None)
     assert (part.material, part.thickness_mm, part.process) == (None, None, job.process)
+    assert (job.cost.offcut_credit, job.cost.scrap_per_kg, job.cost.machine_rate, job.cost.discounts) == (
+        0,
+        0,
+        None,
+        (),
+    )
+    assert job.cost.offcut_least_mm == (300.0, 300.0)
     assert (job.cost.share, job.cost.breaks, job.windows) == (Share.NET_AREA, (1, 2, 5, 10, 25), None)
 
 
@@ -188,6 +195,7 @@ def test_a_cut_list_beside_the_job(tmp_path):
     leaf, plate = load_job(write_job(tmp_path, text)).parts
     assert leaf.name == "leaf"
     assert (plate.name, plate.material.id, plate.thickness_mm) == ("plate", "birch-ply", 6.0)
+    assert (leaf.quantity, leaf.quantity_opposite) == (1, 0)
     assert (plate.quantity, plate.quantity_opposite, plate.revision, plate.note) == (4, 1, "D", "tray")
     assert plate.turns_deg == (0.0, 180.0)
 
