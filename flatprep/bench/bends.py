@@ -10,7 +10,8 @@ from flatprep.bench.ops import Op, Rank
 from flatprep.bench.part import BenchPart
 from flatprep.job.values import BendAsk, Point
 from flatprep.model.work import StepKind
-from flatprep.practice.bends import Bend, bend, clear_of_bend_mm, measured_k_factor
+from flatprep.practice.bends import FILE, Bend, bend, clear_of_bend_mm, measured_k_factor
+from flatprep.profile.hardware.rules import section
 
 Line = tuple[Point, Point]
 
@@ -113,20 +114,25 @@ def _note(bench: BenchPart, found: BendLines) -> str:
         measured = measured_k_factor(bench.family or "")
         if measured:
             notes.append(f"handbooks measured K {measured[0]:g} to {measured[1]:g}: bend a coupon first")
+    spring = section("springback", file=FILE).numbers(bench.family or "")
+    if spring:
+        notes.append(f"springs back {spring[0]:g} to {spring[1]:g}° of 90")
     notes.append("burr side inside the bend")
     if len(found.lines) > 1:
         notes.append("outer and return flanges first, then inward")
     return "; ".join(notes)
 
 
-def near_bend(point: Point, radius_mm: float, bench: BenchPart, bends: tuple[BendLines, ...]) -> bool:
-    """Tell whether the rim of a hole lies so near to a bend that bending pulls a thread or fit out of shape."""
+def near_bend(
+    point: Point, radius_mm: float, bench: BenchPart, bends: tuple[BendLines, ...], what: str = "tap_after"
+) -> bool:
+    """Tell whether a rim is so near to a bend that bending pulls it out of shape; `what`: a key of ``[near_bend]``."""
     if bench.thickness_mm is None:
         return False
     for found in bends:
         inside = found.ask.radius_mm or bench.thickness_mm
         half = found.figures.allowance_mm / 2.0 if found.figures else inside
-        reach = half + clear_of_bend_mm("tap_after", bench.thickness_mm, inside) + radius_mm
+        reach = half + clear_of_bend_mm(what, bench.thickness_mm, inside) + radius_mm
         if any(distance_mm(point, line) < reach for line in found.lines):
             return True
     return False

@@ -1,9 +1,12 @@
 """Operations for fit holes: ream, bore, and seats for bearings, bushes and pins."""
 
+from dataclasses import replace
+
 from flatprep.bench.ops import Ask, Op, Rank, open_up, spoilt
 from flatprep.model.work import StepKind
-from flatprep.practice.fits import FinishPlan, finish_plan
+from flatprep.practice.fits import FinishPlan, finish_plan, holds
 from flatprep.practice.seats import Seat, find_seat
+from flatprep.profile.hardware.fits import Limits
 from flatprep.profile.hardware.rules import section
 
 
@@ -23,6 +26,17 @@ def ream_ops(ask: Ask) -> list[Op]:
 def bore_ops(ask: Ask) -> list[Op]:
     """Return drill (where nothing is cut) and bore."""
     return _finish(ask, StepKind.BORE, Rank.BORE, "boring head, set to")
+
+
+def _as_cut_will_do(size: Limits, as_cut_mm: float, ask: Ask) -> bool:
+    """Tell whether the hole is drawn inside wide limits that the process alone holds."""
+    inside = size.least_mm - 1e-3 <= as_cut_mm <= size.most_mm + 1e-3
+    return inside and holds(ask.bench.process, size, ask.bench.thickness_mm)
+
+
+def _measure(finish: Op, ask: Ask) -> Op:
+    note = f"the cut alone may hold it: measure; {finish.note}"
+    return replace(finish, kind=StepKind.INSPECT, rank=Rank.CHECK_CUT, tool="", cut_dia_mm=ask.drawn_mm, note=note)
 
 
 def _held(seat: Seat, ask: Ask) -> str:
@@ -48,6 +62,8 @@ def _finish(ask: Ask, kind: StepKind, rank: Rank, tool: str) -> list[Op]:
         kind, rank, ask.at, size.name, size.nominal_mm, f"{tool} {size.name}", ask.work.depth_mm, cut, ask.work.side,
         note, limits_mm=(size.least_mm, size.most_mm),
     )  # fmt: skip
+    if as_cut is not None and _as_cut_will_do(size, as_cut, ask):
+        return [_measure(finish, ask)]
     if as_cut is not None and as_cut > size.least_mm + 1e-3:
         why = f"the hole of {as_cut:.4g} mm is wider than the least finished size {size.least_mm:.3f}"
         return [spoilt(finish, why)]

@@ -53,7 +53,7 @@ def plan(bench: BenchPart, found: Found, bends: tuple[BendLines, ...]) -> list[O
     for work, targets in zip(bench.work, found, strict=True):
         for ask in by_drawn(bench, work, targets):
             ops += operations(ask, _made_by_others(ask, found))
-    ops = [late(op) if op.kind in _WAITS and _pulled(op, bench, bends) else op for op in ops]
+    ops = [_about_bends(op, bench, bends) for op in ops]
     ops = _merged([*ops, *bend_ops(bench, bends)])
     return sorted([*ops, *_frame(bench, ops)], key=lambda op: op.rank)
 
@@ -100,9 +100,15 @@ def _made_by_others(ask: Ask, found: Found) -> Op | None:
     return None
 
 
-def _pulled(op: Op, bench: BenchPart, bends: tuple[BendLines, ...]) -> bool:
+def _about_bends(op: Op, bench: BenchPart, bends: tuple[BendLines, ...]) -> Op:
+    """Return the operation moved behind the bends, or with a word, where a bend pulls its holes out of shape."""
     radius = (op.tool_dia_mm or 0.0) / 2.0
-    return any(near_bend(point, radius, bench, bends) for point in op.at)
+    if op.kind in _WAITS and any(near_bend(point, radius, bench, bends) for point in op.at):
+        return late(op)
+    sunk = op.kind in (StepKind.COUNTERSINK, StepKind.COUNTERBORE)
+    if sunk and any(near_bend(point, radius, bench, bends, "countersink") for point in op.at):
+        return op.with_note("near a bend: the seat may be pulled out of shape")
+    return op
 
 
 def _merged(ops: list[Op]) -> list[Op]:

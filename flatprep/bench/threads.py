@@ -60,25 +60,58 @@ def _skin(tap: Op) -> Op:
 
 
 def _tap_note(ask: Ask, thread: Thread) -> str:
-    bench = ask.bench
-    notes = [f"{percent_of_thread(thread, thread.drill_mm):.0f} % thread (of the {0.6495:g} P height)"]
-    depth = ask.work.depth_mm or bench.thickness_mm
-    if depth is not None:
-        held = engagement(thread, depth, bench.material)
-        notes.append(f"{held.threads:.1f} threads engaged")
-        if held.instead:
-            notes.append(f"{bench.family} takes no machine thread: {held.instead}")
-        elif held.fails:
-            notes.append("too thin for a thread: rivet nut, weld nut, clinch nut or thicker plate")
-        elif held.weak:
-            notes.append("light loads only, or a thread insert")
-    if bench.family == "wear-plate":
-        notes.append("cobalt or carbide drill, rigid machine, low speed; no thread without carbide tooling")
-    elif hardens(bench.material):
-        notes.append("the cut rim is hard: drill it away")
-    if bench.family in section("forming").words("families"):
-        notes.append(f"forming tap: drill {forming_drill_mm(thread):.2f} mm")
+    height = section("percent_thread")["height"]
+    notes = [f"{percent_of_thread(thread, thread.drill_mm):.0f} % thread (of the {height:.4f} P height)"]
+    notes += [*_held(ask, thread), *_blind(ask, thread), *_of_material(ask, thread)]
     return "; ".join(notes)
+
+
+def _held(ask: Ask, thread: Thread) -> list[str]:
+    """Return how many threads engage, and what to do where they are too few."""
+    depth = ask.work.depth_mm or ask.bench.thickness_mm
+    if depth is None:
+        return []
+    held = engagement(thread, depth, ask.bench.material)
+    notes = [f"{held.threads:.1f} threads engaged"]
+    if held.instead:
+        notes.append(f"{ask.bench.family} takes no machine thread: {held.instead}")
+    elif held.fails:
+        notes.append("too thin for a thread: rivet nut, weld nut, clinch nut or thicker plate")
+    elif held.weak:
+        notes.append("light loads only, or a thread insert")
+    return notes
+
+
+def _of_material(ask: Ask, thread: Thread) -> list[str]:
+    """Return what the material asks of drill and tap."""
+    family = ask.bench.family
+    if family == "wear-plate":
+        least = section("carbide")["least_thread"]
+        small = [f"under M{least:g} better a through bolt, a weld nut or an insert"] if thread.major_mm < least else []
+        return ["cobalt or carbide drill, rigid machine, low speed; no thread without carbide tooling", *small]
+    hard = ["the cut rim is hard: drill it away"] if hardens(ask.bench.material) else []
+    forms = family in section("forming").words("families")
+    return [*hard, f"forming tap: drill {forming_drill_mm(thread):.2f} mm"] if forms else hard
+
+
+def _blind(ask: Ask, thread: Thread) -> list[str]:
+    """Return how deep a blind hole is drilled, and that a thread longer than two diameters gains nothing."""
+    thickness, depth = ask.bench.thickness_mm, ask.work.depth_mm
+    useful = section("engagement")["most_useful"] * thread.major_mm
+    if depth is None:
+        long = thickness is not None and thickness > useful + 1e-9
+        return [f"more than {useful:g} mm of thread gains nothing: clear the rest"] if long else []
+    drilled = depth + runout_mm(thread)
+    if thickness is not None and drilled >= thickness:
+        return [f"drill through: a blind hole would be {drilled:.1f} mm deep"]
+    return [f"drill {drilled:.1f} mm deep: the usable thread ends {runout_mm(thread):.1f} mm before the bottom"]
+
+
+def runout_mm(thread: Thread) -> float:
+    """Return what a blind hole is deeper than its thread, mm: DIN 76-2 by pitch, the next larger pitch between."""
+    rules = section("runout")
+    pitches, lengths = rules.numbers("pitch"), rules.numbers("length")
+    return next((n for p, n in zip(pitches, lengths, strict=True) if thread.pitch_mm <= p + 1e-9), lengths[-1])
 
 
 def insert_ops(ask: Ask) -> list[Op]:

@@ -33,6 +33,7 @@ from flatprep.rules import (
     unknown_units,
     unsafe_material,
     unsupported_entity,
+    work_without_hole,
     wrong_process,
 )
 from flatprep.rules.accept import accepted
@@ -68,6 +69,7 @@ ALL: tuple[Rule, ...] = (
     tight_bend.RULE,
     bend_along_grain.RULE,
     # bench work
+    work_without_hole.RULE,
     tap_hole_size.RULE,
     thread_engagement.RULE,
     bore_size.RULE,

@@ -1,13 +1,15 @@
 """countersink-too-deep: sinks and counterbores that leave too little sheet below, or run over an edge."""
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
+from contextlib import suppress
+from itertools import combinations
 
 from flatprep.job.values import Work
 from flatprep.measure.part import MeasuredPart
 from flatprep.model.finding import Finding, Severity
 from flatprep.practice.asked import asked_at
 from flatprep.practice.sinks import Sink, find_sink, sink_room
-from flatprep.practice.targets import Target
+from flatprep.practice.targets import Target, apart_mm
 from flatprep.profile.hardware.names import UnknownHardwareError
 from flatprep.rules.base import Context, Rule
 from flatprep.rules.bore_size import edge_mm
@@ -27,6 +29,7 @@ def check(ctx: Context) -> Iterator[Finding]:
                 continue
             yield from _depth(ctx, part, asked, target, sink)
             yield from _rim(ctx, part, asked, target, sink)
+        yield from _overlaps(ctx, part, work)
 
 
 def _depth(ctx: Context, part: MeasuredPart, asked: Work, target: Target, sink: Sink) -> Iterator[Finding]:
@@ -49,6 +52,24 @@ def _rim(ctx: Context, part: MeasuredPart, asked: Work, target: Target, sink: Si
         yield Finding(RULE.id, Severity.ERROR, message, part.name, target.at, left, 0.0, "mm", _EDGE)
 
 
+def _overlaps(ctx: Context, part: MeasuredPart, work: Sequence[Work]) -> Iterator[Finding]:
+    """Yield each pair of sinks of one side whose rims run into each other."""
+    rims = [(asked, target, sink) for asked, target, sink in _sinks(ctx, part, work)]
+    for (one, at, a), (other, there, b) in combinations(rims, 2):
+        left = apart_mm(at.at, there.at) - (a.dia_mm + b.dia_mm) / 2.0
+        if left < -ctx.slack_mm() and one.side == other.side:
+            middle = ((at.at[0] + there.at[0]) / 2.0, (at.at[1] + there.at[1]) / 2.0)
+            message = f"the {one.kind} for {one.size} runs into the next one"
+            yield Finding(RULE.id, Severity.ERROR, message, part.name, middle, left, 0.0, "mm", _APART)
+
+
+def _sinks(ctx: Context, part: MeasuredPart, work: Sequence[Work]) -> Iterator[tuple[Work, Target, Sink]]:
+    for asked, target in asked_at(part.holes, work, ctx.drawing, KINDS):
+        with suppress(UnknownHardwareError):  # told above
+            yield asked, target, find_sink(asked.kind, asked.size, target.drawn_mm, asked.depth_mm)
+
+
+_APART = "Move the holes apart, or take smaller screws."
 _EDGE = "Move the hole inwards, or take a smaller screw."
 
 RULE = Rule(

@@ -2,12 +2,16 @@
 
 from collections.abc import Iterator
 
+from flatprep.measure.part import MeasuredPart
 from flatprep.model.finding import Finding, Severity
 from flatprep.practice.asked import asked_at
+from flatprep.practice.targets import Target
 from flatprep.practice.threads import THERMAL, hardens
 from flatprep.profile.hardware.names import UnknownHardwareError
-from flatprep.profile.hardware.threads import find_thread
+from flatprep.profile.hardware.rules import section
+from flatprep.profile.hardware.threads import Thread, find_thread
 from flatprep.rules.base import Context, Rule
+from flatprep.rules.bore_size import edge_mm
 
 KINDS = ("tap",)
 
@@ -22,6 +26,7 @@ def check(ctx: Context) -> Iterator[Finding]:
             except UnknownHardwareError as err:
                 yield Finding(RULE.id, Severity.ERROR, err.message, part.name, target.at, remedy=err.remedy)
                 continue
+            yield from _edge(ctx, part, thread, target)
             hole = target.hole
             if hole is None:
                 continue
@@ -33,6 +38,16 @@ def check(ctx: Context) -> Iterator[Finding]:
             elif hole.width_mm >= thread.minor_min_mm - slack and _hard_rim(ctx):
                 message = f"the hole for {thread.name} is cut to the tap drill in steel whose cut edge hardens"
                 yield Finding(RULE.id, Severity.WARNING, message, *size, _HARD, hole.handles)
+
+
+def _edge(ctx: Context, part: MeasuredPart, thread: Thread, target: Target) -> Iterator[Finding]:
+    least, edge = section("edges")["tap"] * thread.major_mm, edge_mm(part, target)
+    if edge < least - ctx.slack_mm():
+        message = f"the thread {thread.name} stands near an edge: it bulges or breaks out"
+        yield Finding(RULE.id, Severity.WARNING, message, part.name, target.at, edge, least, "mm", _INWARDS)
+
+
+_INWARDS = "Move the hole inwards, or take a smaller thread."
 
 
 def _hard_rim(ctx: Context) -> bool:

@@ -9,9 +9,11 @@ from hypothesis import strategies as st
 
 from flatprep.base.errors import JobError
 from flatprep.bench.checklist import checklist
+from flatprep.bench.threads import runout_mm
 from flatprep.job.values import BendAsk, Pilots
 from flatprep.model.drawing import Text
 from flatprep.model.work import StepKind
+from flatprep.profile.hardware.threads import all_threads
 from tests.bench.parts import bench, line, plate, with_bends, work
 
 K = StepKind
@@ -94,6 +96,52 @@ def test_words_on_threads(thickness, material, words):
     assert words in one(steps, K.TAP).note
 
 
+@pytest.mark.parametrize(
+    ("depth", "thickness", "words"),
+    [
+        # DIN 76-2: run-out of pitch 0.8 is 4.2 mm, of 1.25 6.2 mm
+        (6.0, 12.0, "drill 10.2 mm deep: the usable thread ends 4.2 mm before the bottom"),
+        (8.0, 12.0, "drill through: a blind hole would be 12.2 mm deep"),
+        (None, 12.0, "more than 10 mm of thread gains nothing"), (None, 10.0, "12.5 threads engaged; "),
+    ],
+)  # fmt: skip
+def test_blind_and_long_threads(depth, thickness, words):
+    asked = work("tap", "M5", hole_mm=4.2, depth_mm=depth)
+    tap = one(steps_of(plate(100, 50, (30, 25, 4.2)), asked, thickness=thickness), K.TAP)
+    assert words in tap.note
+    assert tap.depth_mm == depth
+
+
+@pytest.mark.parametrize(
+    ("thread", "words"), [("M6", "under M8 better a through bolt"), ("M8", "no thread without carbide")]
+)
+def test_small_threads_in_wear_plate(thread, words):
+    steps = steps_of(
+        plate(100, 50, (30, 25, 4)), work("tap", thread, hole_mm=4), material="wear-plate-500", thickness=8.0
+    )
+    assert words in one(steps, K.TAP).note
+    assert ("under M8" in one(steps, K.TAP).note) is (thread == "M6")
+
+
+@pytest.mark.parametrize(
+    ("pitch", "runout"),
+    [(0.5, 2.8), (0.7, 3.8), (0.8, 4.2), (1, 5.1), (1.25, 6.2), (1.5, 7.3), (1.75, 8.3), (2, 9.3), (2.5, 11.2)],
+)
+def test_runouts(pitch, runout):
+    """DIN 76-2, as quoted by a hole standards table and by the tables of an open CAD program."""
+    thread = next(t for t in all_threads() if t.pitch_mm == pitch and not t.is_inch)
+    assert runout_mm(thread) == runout
+
+
+@pytest.mark.parametrize(
+    ("thread", "drill"), [("M3", 3.1), ("M4", 4.2), ("M5", 5.2), ("M6", 6.3), ("M8", 8.4), ("M10", 10.5), ("M12", 12.5)]
+)
+def test_insert_drills(thread, drill):
+    """DIN 8140, from memory."""
+    steps = steps_of(plate(100, 50, (30, 25, 3)), work("thread_insert", thread, hole_mm=3), material="al-6061-t6")
+    assert one(steps, K.THREAD_INSERT).tool_dia_mm == drill
+
+
 def test_thread_inserts():
     """M5 wire insert: drill 5.2 (DIN 8140, from memory)."""
     steps = steps_of(plate(100, 50, (10, 12, 5.2)), work("thread_insert", "M5", hole_mm=5.2), material="al-6061-t6")
@@ -124,6 +172,18 @@ def test_a_bearing_seat_is_bored():
 def test_a_hole_wider_than_its_fit_cannot_be_reamed():
     ream = one(steps_of(plate(100, 50, (10, 12, 8.2)), work("ream", "8 H7", hole_mm=8.2)), K.REAM)
     assert "wider than the least finished size 8.000" in ream.problem
+
+
+@pytest.mark.parametrize(("drawn", "kind"), [(12.1, K.INSPECT), (12.27, K.INSPECT), (11.5, K.REAM)])
+def test_wide_limits_may_be_cut_as_they_are(drawn, kind):
+    """12 H13: 12.00 to 12.27. The router's IT12 is 0.18 wide: it may be cut so. A laser in 2 mm sheet may miss by 0.2
+    (class 1) and has 0.112 mm of taper, 0.312 together: the hole is cut under size and reamed."""
+    steps = steps_of(
+        plate(100, 50, (50, 25, drawn)), work("ream", "12 H13", hole_mm=drawn), process="router", material="hdpe"
+    )
+    assert any(step.kind is kind and step.size == "12 H13" for step in steps)
+    by_laser = steps_of(plate(100, 50, (50, 25, drawn)), work("ream", "12 H13", hole_mm=drawn), thickness=2.0)
+    assert not any(step.kind is K.INSPECT and step.size == "12 H13" for step in by_laser)
 
 
 def test_a_pilot_with_too_little_left_gets_a_word():
@@ -248,6 +308,24 @@ def test_a_bend_tells_its_figures():
     assert (bend.size, bend.count, bend.at) == ("90° r 3", 1, ((50.0, 30.0),))
     assert "allowance 6.24, deduction 5.76 mm by DIN 6935" in bend.note
     assert "K 0.42 to 0.47" in bend.note
+    assert "springs back 1 to 2° of 90" in bend.note
+
+
+@pytest.mark.parametrize(
+    ("material", "spring"), [("al-5052-h32", "1.5 to 3°"), ("stainless-304", "2 to 4°"), ("wear-plate-400", "6 to 15°")]
+)
+def test_springback(material, spring):
+    """From memory of handbooks."""
+    assert f"springs back {spring}" in one(steps_of(BENT, bends=(BEND,), material=material), K.BEND).note
+
+
+def test_a_sink_near_a_bend_gets_a_word():
+    """4 t + r = 15 mm from the tangent line, 3.12 mm from the bend line, and the sink's radius 5.735: 23.86 mm."""
+    asked = work("countersink", "M5 ISO 10642", hole_mm=5.5, side="A")
+    for y, said in ((6.2, True), (6.1, False)):
+        part = with_bends(plate(100, 60, (50, y, 5.5)), line(0, 30, 100, 30))
+        sink = one(steps_of(part, asked, bends=(BEND,)), K.COUNTERSINK)
+        assert ("pulled out of shape" in sink.note) is said
 
 
 NEEDS = (
@@ -309,7 +387,7 @@ PLATE = plate(100, 50, (10, 12, 4.2), (90, 12, 4.2), (50, 25, 9))
 @pytest.mark.parametrize(
     ("asked", "words"),
     [
-        (work("tap", "M5", hole_mm=4.0), r"hole = 4: no hole is drawn with that .* / the drawing has 2 x 4.2 mm, 1 x 9 mm"),
+        (work("tap", "M5", hole_mm=4.0), r"hole = 4: no hole is drawn .* / the drawing has 2 x 4.2 mm, 1 x 9 mm"),
         (work("tap", "M5", hole_mm=4.2, count=4), r"count = 4: 2 holes of 4.2 mm are drawn"),
         (work("tap", "M9", hole_mm=4.2), r'tap = "M9": thread "M9" is not known / nearest known: M8, M10'),
         (work("ream", "8 Q7", hole_mm=4.2), r'ream = "8 Q7": tolerance class Q7 is not known'),

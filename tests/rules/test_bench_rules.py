@@ -63,6 +63,13 @@ def test_an_unknown_thread_is_a_finding_with_the_nearest_names():
     assert "M7" in one.remedy
 
 
+@pytest.mark.parametrize(("x", "loud"), [(7.5, False), (7.4995, False), (7.49, True), (5.0, True)])
+def test_a_thread_near_an_edge(x, loud):
+    """M5: 1.5 d, 7.5 mm, from the centre to the edge (common practice)."""
+    listed = findings("tap-hole-size", [(x, 50, 4.2)], ("tap", "M5", 4.2))
+    assert [one.severity for one in listed] == ([Severity.WARNING] if loud else [])
+
+
 # ---------------------------------------------------------------- thread-engagement
 
 
@@ -165,6 +172,13 @@ def test_a_sink_over_an_edge(x, loud):
     assert bool(listed) is loud
 
 
+@pytest.mark.parametrize(("apart", "loud"), [(11.47, False), (11.46, True)])
+def test_sinks_that_run_into_each_other(apart, loud):
+    holes = [(50, 50, 5.5), (50 + apart, 50, 5.5)]
+    listed = findings("countersink-too-deep", holes, ("countersink", "M5 ISO 10642", 5.5), thickness=6.0)
+    assert bool(listed) is loud
+
+
 def test_a_counterbore_through_the_sheet():
     one = only(findings("countersink-too-deep", [(50, 50, 6.6)], ("counterbore", "M6", 6.6), thickness=6.0))
     assert (one.severity, one.measured, one.limit) == (Severity.ERROR, pytest.approx(6.4), 6.0)
@@ -198,6 +212,23 @@ def test_alike_holes_are_told_once_and_worked_ones_not_at_all():
     holes = [(20, 50, 6), (50, 50, 6), (80, 50, 8)]
     assert [f.measured for f in findings("unclear-hole", holes)] == pytest.approx([6, 8])
     assert [f.measured for f in findings("unclear-hole", holes, ("drill", "6", 6.0))] == pytest.approx([8])
+
+
+# ---------------------------------------------------------------- work-without-hole
+
+
+def test_work_that_matches_nothing_is_told():
+    one = only(findings("work-without-hole", [(50, 50, 6)], ("tap", "M5", 4.2)))
+    assert (one.severity, one.limit) == (Severity.ERROR, 4.2)
+    assert not findings("work-without-hole", [(50, 50, 4.2)], ("tap", "M5", 4.2))
+
+
+def test_work_on_another_number_of_holes_is_told():
+    part = plate(200, 100, (50, 50, 4.2), (80, 50, 4.2))
+    asked = Work("tap", "M5", hole_mm=4.2, count=4)
+    job = JobPart(Path("plate.dxf"), "plate", load_material("mild-steel"), 3.0, LASER, work=(asked,))
+    one = only(found("work-without-hole", context(part, process=LASER, job_part=job)))
+    assert (one.measured, one.limit, one.unit) == (2, 4, "holes")
 
 
 # ---------------------------------------------------------------- callouts of the drawing
