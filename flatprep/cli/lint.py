@@ -6,6 +6,7 @@ from pathlib import Path
 import click
 
 from flatprep.api.lint import lint_job, lint_paths
+from flatprep.api.pictures import write_pictures
 from flatprep.base.errors import ExitStatus, UsageError
 from flatprep.cli.options import output_format, said_about_parts
 from flatprep.cli.progress import progress_line
@@ -20,6 +21,9 @@ from flatprep.report.lint_text import lint_text
 @click.argument("paths", nargs=-1, required=True, type=click.Path(path_type=Path), metavar="PATH...|JOB.toml")
 @said_about_parts
 @click.option("--jobs", type=click.IntRange(1, 64), default=1, show_default=True, help="processes")
+@click.option(
+    "--svg", "pictures", type=click.Path(path_type=Path), metavar="DIR", help="draw each part with its findings"
+)
 @output_format
 @click.pass_context
 def command(
@@ -27,6 +31,7 @@ def command(
     paths: tuple[Path, ...],
     said: JobOptions,
     jobs: int,
+    pictures: Path | None,
     form: str,
 ) -> None:
     """Check drawings (files, folders or a job's) against material, thickness and process."""
@@ -40,6 +45,8 @@ def command(
             report = lint_job(load_job(paths[0], said), jobs=jobs, progress=progress)
         else:
             report = lint_paths(paths, said, jobs=jobs, progress=progress)
+    if pictures is not None:
+        write_pictures(report, pictures)
     click.echo(json.dumps(lint_document(report), indent=1) if form == "json" else lint_text(report))
     ctx.exit(status(report))
 
