@@ -56,6 +56,22 @@ def test_nothing_between_parts_and_no_border_are_allowed(tmp_path):
     assert (job.spacing_mm, job.margin_mm) == (0.0, 0.0)
 
 
+@pytest.mark.parametrize(("quantity", "opposite"), [(2, 2), (0, 3), (3, 0)])
+def test_handed_pairs(tmp_path, quantity, opposite):
+    text = (
+        f'process = "router"\n[[part]]\ndrawing = "leaf.dxf"\nquantity = {quantity}\nquantity_opposite = {opposite}\n'
+    )
+    part = load_job(write_job(tmp_path, text)).parts[0]
+    assert (part.quantity, part.quantity_opposite) == (quantity, opposite)
+
+
+def test_all_of_it_may_be_given_away(tmp_path):
+    text = 'process = "router"\n[[part]]\ndrawing = "leaf.dxf"\n[cost]\noffcut_credit = 1\n'
+    text += "[[cost.discount]]\nfrom = 0\npercent = 100\n"
+    cost = load_job(write_job(tmp_path, text)).cost
+    assert (cost.offcut_credit, cost.discounts) == (1, (Discount(Decimal(0), Decimal(100)),))
+
+
 def test_a_hem_is_a_bend_of_180_degrees(tmp_path):
     text = 'process = "router"\n[[part]]\ndrawing = "leaf.dxf"\n[[part.bend]]\nlayer = "B"\nangle = 180\nradius = 0\n'
     bend = load_job(write_job(tmp_path, text)).parts[0].bends[0]
