@@ -12,6 +12,7 @@ from flatprep.base.units import MM_PER_UNIT
 from flatprep.drawing.assign import assign
 from flatprep.drawing.collect import Collected, CollectOptions, collect
 from flatprep.drawing.frame import frame_index
+from flatprep.drawing.leaders import with_leaders
 from flatprep.drawing.limits import LIMITS, ReadLimits
 from flatprep.drawing.load import UNIT_OF_CODE, Loaded, load
 from flatprep.drawing.outline import Outlines, outlines
@@ -95,7 +96,7 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         parts=given.parts,
         faults=(*faults, *found.faults, *_guesses(found), *shapes.faults, *sheet_faults, *given.faults),
         skipped=tuple(found.skipped),
-        texts=tuple(found.texts),
+        texts=with_leaders(found.texts, loaded.document, MM_PER_UNIT[units]),
         roles=roles,
         recovered=loaded.recovered,
         loose=shapes.loose,
