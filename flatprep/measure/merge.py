@@ -10,6 +10,10 @@ SAMPLES = 17
 """So many places on each side are looked at between two pieces."""
 FEW = 5
 """So many are enough to see that most strips are too wide."""
+SAME_PLACE_MM = 1e-6
+"""Ends this near to each other on a contour are at one place."""
+MOST_ALIKE = 8
+"""So many ends at one place and the next are paired with each other."""
 ROOM = 1.02
 """What is at most so many times the sought width stays one web."""
 
@@ -19,7 +23,7 @@ Strips = tuple[list[Ints], list[Floats], list[Floats]]
 
 def groups(b: Boundary, s: Pieces, most_mm: float) -> list[list[int]]:
     """Group pieces between which the boundary stays within `most_mm`."""
-    pairs = _neighbours(s)
+    pairs = neighbours(s)
     head = list(range(len(s)))
     if len(pairs):
         for i, j in pairs[_linked(b, s, pairs, ROOM * most_mm)].tolist():
@@ -37,8 +41,11 @@ def _root(head: list[int], k: int) -> int:
     return k
 
 
-def _neighbours(s: Pieces) -> Ints:
-    """Pairs of pieces whose ends follow each other on a contour, both between the same two contours, shape (m, 2)."""
+def neighbours(s: Pieces) -> Ints:
+    """Pairs of pieces whose ends follow each other on a contour, both between the same two contours, shape (m, 2).
+
+    Ends at one place are in no order: each of them is paired with all that lie there, and with the next place's.
+    """
     low, high = s.contour.min(axis=1), s.contour.max(axis=1)
     piece = np.tile(np.arange(len(s)), 2)
     own = np.concatenate([s.contour[:, 0], s.contour[:, 1]])
@@ -47,12 +54,20 @@ def _neighbours(s: Pieces) -> Ints:
     order = np.lexsort((place, line[:, 2], line[:, 1], line[:, 0]))
     piece, line = piece[order], line[order]
     fresh = np.append(True, (line[1:] != line[:-1]).any(axis=1))
-    # the last end on a contour is followed by its first
+    spot = np.cumsum(fresh | np.append(True, np.diff(place[order]) > SAME_PLACE_MM))
     first = np.nonzero(fresh)[0]
-    follows = np.arange(1, len(piece) + 1)
-    follows[np.append(first[1:], len(piece)) - 1] = first
-    pairs = np.sort(np.column_stack([piece, piece[follows]]), axis=1)
-    return np.unique(pairs[pairs[:, 0] != pairs[:, 1]], axis=0)
+    size = np.diff(np.append(first, len(piece)))
+    start, size = np.repeat(first, size), np.repeat(size, size)
+    spots = spot[start + size - 1] - spot[start] + 1
+    rank = np.arange(len(piece)) - start
+    pairs = []
+    for ahead in range(1, MOST_ALIKE + 1):
+        # the last end on a contour is followed by its first
+        other = start + (rank + ahead) % size
+        near = (ahead < size) & (np.mod(spot[other] - spot, spots) <= 1)
+        pairs.append(np.column_stack([piece, piece[other]])[near])
+    found = np.sort(np.vstack(pairs), axis=1)
+    return np.unique(found[found[:, 0] != found[:, 1]], axis=0)
 
 
 def _linked(b: Boundary, s: Pieces, pairs: Ints, room_mm: float) -> Bools:

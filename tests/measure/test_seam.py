@@ -5,6 +5,8 @@ import pytest
 
 from flatprep.geom import bulge
 from flatprep.measure.boundary import boundary
+from flatprep.measure.discs import Pieces
+from flatprep.measure.merge import neighbours
 
 
 def test_places_just_before_the_seam_lie_on_their_own_contour():
@@ -18,3 +20,21 @@ def test_places_just_before_the_seam_lie_on_their_own_contour():
     assert b.locate(which, before_seam) == pytest.approx(seams, abs=1e-6)
     assert b.locate(which, np.nextafter(b.total, np.inf)) == pytest.approx(seams, abs=1e-6)
     assert b.locate(which, np.zeros(len(contours))) == pytest.approx(seams, abs=1e-6)
+
+
+@pytest.mark.parametrize("seed", range(20))
+def test_ends_at_one_place_are_paired_whatever_the_last_digit(seed):
+    """Corners that face each other, and the edges that begin there, all end at one place: in no order."""
+    rng = np.random.default_rng(seed)
+    ends = np.array([[10.0, 50.0], [10.0, 50.0], [50.0, 10.0], [10.0, 50.0], [12.0, 48.0], [30.0, 5.0]])
+
+    def pairs(noise):
+        place = np.repeat((ends + noise)[:, :, None], 2, axis=2)
+        contour = np.zeros(ends.shape, dtype=np.intp)
+        pieces = Pieces(None, np.zeros(6), np.zeros(6), contour, contour, place)
+        return {tuple(pair) for pair in neighbours(pieces).tolist()}
+
+    plain = pairs(0.0)
+    assert {(a, b) for a in range(4) for b in range(a + 1, 4)} <= plain
+    assert {(a, 4) for a in range(4)} <= plain
+    assert pairs(rng.uniform(-1e-9, 1e-9, ends.shape)) == plain

@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from functools import cache
 from pathlib import Path
 
+from flatprep.base.tolerances import DEFAULT
 from flatprep.drawing.read import ReadOptions, read
 from flatprep.model.drawing import Drawing
 from flatprep.model.finding import Finding
@@ -33,7 +34,14 @@ def findings_of(drawing: Drawing) -> list[Finding]:
     """Findings about the part, for 3 mm mild steel on a laser."""
     process, material = _ask()
     found = run(Context(drawing, process, material, 3.0))
-    return [f for f in found if f.rule not in NOT_OF_THE_PART]
+    return [f for f in found if f.rule not in NOT_OF_THE_PART and not _on_the_limit(f)]
+
+
+def _on_the_limit(finding: Finding) -> bool:
+    """Tell whether a measure is so near its limit that the slack for drawings in inches decides."""
+    if finding.measured is None or finding.limit is None:
+        return False
+    return abs(finding.measured - finding.limit) <= DEFAULT.limit_chord_mm + 1e-4
 
 
 @dataclass(frozen=True)
