@@ -116,7 +116,13 @@ def _corners_from_edges(rings: Rings, a: int, b: int, dx: float, dy: float, cap:
 
 @bare
 def gap(rings: Rings, a: int, b: int, dx: float, dy: float, cap: float) -> float:
-    """Distance of two outlines that do not cross, mm, or `cap` where they are farther apart than that."""
+    """Least distance of a corner of one outline from the edges of the other, mm, at most `cap`.
+
+    Notes
+    -----
+    Where the two are free this is their distance. Where they collide it is a lower bound of the move that frees
+    them: freed at last, a corner lies on an edge (the border of the Minkowski sum consists of such moves).
+    """
     one = _corners_from_edges(rings, a, b, dx, dy, cap)
     two = _corners_from_edges(rings, b, a, -dx, -dy, cap)
     return math.sqrt(min(one, two))

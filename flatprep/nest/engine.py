@@ -167,6 +167,7 @@ class Engine:
         attempt = self._try
         self.board.weight[:] = 1.0
         attempt.loss[:] = float(settle_all(self.ground))
+        self.clock.spend(len(attempt.variant))
         remember(self.ground, attempt)
         for _ in range(tries):
             attempt.sweeps[:] = 0, patience

@@ -151,7 +151,7 @@ def pack(shapes: Sequence[Shape], turns: Sequence[Sequence[float]]) -> Outlines:
     for s, (shape, angles) in enumerate(zip(shapes, turns, strict=True)):
         rings = rings_of(shape)
         inner = [drawn_in(r) for r in rings]
-        circles = inner_circles(edges_of(rings))
+        circles = inner_circles(edges_of(inner))
         for mirrored in shape.mirror:
             for angle in angles:
                 outline = turned(shape.outer, angle, mirrored=mirrored)

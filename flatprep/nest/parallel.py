@@ -5,8 +5,8 @@ process that has used up its budget hands in its last one and no longer takes pa
 change nothing in the search, so a budget in steps gives the same result every time.
 """
 
+import math
 import multiprocessing
-import signal
 import time
 from collections.abc import Callable, Sequence
 from multiprocessing.connection import Connection, wait
@@ -14,6 +14,7 @@ from typing import NamedTuple
 
 import numpy as np
 
+from flatprep.base.workers import become_worker
 from flatprep.nest.clock import EVALUATIONS_A_STEP, Clock
 from flatprep.nest.engine import Spots
 from flatprep.nest.solo import run
@@ -22,6 +23,8 @@ from flatprep.nest.task import Task
 MEETING_STEPS = 1000
 # The processes' clocks end together; how long the last word of another process is waited for.
 LAST_WORD_S = 0.5
+# Whether the search is to stop is asked this often while waiting for others.
+PAUSE_S = 0.1
 # A worker shows progress no oftener than this.
 PROGRESS_S = 0.5
 SEED_STRIDE = 7919
@@ -41,6 +44,7 @@ class Job(NamedTuple):
     seed: int
     ends_at: float
     steps: int | None
+    meeting_steps: int
 
 
 class Meetings:
@@ -54,7 +58,7 @@ class Meetings:
         """Look for news, and meet as often as is due."""
         self._look()
         while self._clock.evaluations >= self._next:
-            self._next += MEETING_STEPS * EVALUATIONS_A_STEP
+            self._next += self._every
             other = self._meet(best)
             best = other if other.cost < best.cost else best
         return best
@@ -63,7 +67,10 @@ class Meetings:
 class Hub:
     """Process 0's side: the workers still at work, what they wait for, and the last word of those that are done."""
 
-    def __init__(self, workers: Sequence[Connection], show: Callable[[Spots], None]) -> None:
+    def __init__(
+        self, workers: Sequence[Connection], show: Callable[[Spots], None], stopped: Callable[[], bool] = lambda: False
+    ) -> None:
+        self._stopped = stopped
         self._working = list(workers)
         self._waiting: dict[Connection, Spots] = {}
         self._last: list[Spots] = []
@@ -79,19 +86,21 @@ class Hub:
         """Wait until every worker wants to meet or is done; tell all of them the best, and return it."""
         for worker in list(self._working):
             while worker in self._working and worker not in self._waiting:
-                self._read(worker)
+                if worker.poll(PAUSE_S):
+                    self._read(worker)
+                elif self._stopped():
+                    return self._best_with(best)
         best = self._best_with(best)
         self._answer(best)
         return best
 
-    def end(self, best: Spots, until: float | None) -> Spots:
-        """Let the workers finish, until a time (monotonic s) at most; return the best of all."""
+    def end(self, best: Spots, until: float) -> Spots:
+        """Let the workers finish, until a time (monotonic s) at most or a stop; return the best of all."""
         while self._working:
             best = self._best_with(best)
             self._answer(best)
-            left = None if until is None else max(until - time.monotonic(), 0.0)
-            ready = wait(self._working, left)
-            if not ready:
+            ready = wait(self._working, PAUSE_S)
+            if not ready and (time.monotonic() >= until or self._stopped()):
                 break
             for worker in self._working[:]:
                 if worker in ready:
@@ -124,7 +133,7 @@ class Hub:
 
 def work(job: Job, hub: Connection) -> None:
     """Search in a worker process; its results go to the hub."""
-    signal.signal(signal.SIGINT, signal.SIG_IGN)  # process 0 serves it and ends the workers
+    become_worker()
     clock = Clock(max(job.ends_at - time.time(), 0.0), job.steps)
     said = [-np.inf]
 
@@ -139,30 +148,38 @@ def work(job: Job, hub: Connection) -> None:
         return answer
 
     try:
-        hub.send(Message("done", run(job.task, clock, job.seed, found, Meetings(clock, meet))))
+        hub.send(Message("done", run(job.task, clock, job.seed, found, Meetings(clock, job.meeting_steps, meet))))
     except (EOFError, OSError):  # process 0 is gone
         return
     finally:
         hub.close()
 
 
-def run_jobs(task: Task, clock: Clock, seed: int, found: Callable[[Spots], None], jobs: int) -> Spots:
+def run_jobs(
+    task: Task,
+    clock: Clock,
+    seed: int,
+    found: Callable[[Spots], None],
+    jobs: int,
+    meeting_steps: int = MEETING_STEPS,
+) -> Spots:
     """Search with several processes, this one among them; `found` is told of each better layout of any of them."""
     context = multiprocessing.get_context("spawn")
     pipes = [context.Pipe() for _ in range(jobs - 1)]
-    ends_at = time.time() + clock.seconds - clock.elapsed_s
+    job = Job(task, seed, time.time() + clock.seconds - clock.elapsed_s, clock.steps, meeting_steps)
     workers = [
-        context.Process(target=work, args=(Job(task, seed + k * SEED_STRIDE, ends_at, clock.steps), far), daemon=True)
+        context.Process(target=work, args=(job._replace(seed=seed + k * SEED_STRIDE), far), daemon=True)
         for k, (_, far) in enumerate(pipes, start=1)
     ]
     try:
         for worker, (_, far) in zip(workers, pipes, strict=True):
             worker.start()
             far.close()
-        hub = Hub([near for near, _ in pipes], found)
-        best = run(task, clock, seed, found, Meetings(clock, hub.meet, hub.look))
-        return hub.end(best, None if clock.steps is not None else time.monotonic() + LAST_WORD_S)
+        hub = Hub([near for near, _ in pipes], found, clock.stopped)
+        best = run(task, clock, seed, found, Meetings(clock, meeting_steps, hub.meet, hub.look))
+        return hub.end(best, math.inf if clock.steps is not None else time.monotonic() + LAST_WORD_S)
     finally:
         for worker in workers:
-            worker.terminate()
-            worker.join()
+            if worker.pid is not None:  # it was started
+                worker.kill()
+                worker.join()

@@ -8,9 +8,10 @@ from flatprep.geom.bulge import Floats
 from flatprep.nest.outlines import Ints, Outlines
 
 
-def flattest_variants(outlines: Outlines, shapes: Ints) -> Ints:
-    """For each piece the variant whose box is shortest along x."""
-    wide = outlines.rings.box[:, 2] - outlines.rings.box[:, 0]
+def flattest_variants(outlines: Outlines, shapes: Ints, tallest: float) -> Ints:
+    """For each piece the variant whose box is shortest along x, of those no taller than `tallest`, if there are any."""
+    wide, tall = (outlines.rings.box[:, 2:] - outlines.rings.box[:, :2]).T
+    wide = np.where(tall <= tallest, wide, np.inf)
     best = [
         int(first + np.argmin(wide[first:last]))
         for first, last in zip(outlines.first[:-1], outlines.first[1:], strict=True)

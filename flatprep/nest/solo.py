@@ -4,6 +4,7 @@ from collections.abc import Callable
 
 import numpy as np
 
+from flatprep.nest.bounds import Bounds
 from flatprep.nest.clock import Clock
 from flatprep.nest.engine import Engine, Spots
 from flatprep.nest.squeeze import Squeeze
@@ -36,4 +37,4 @@ def run(task: Task, clock: Clock, seed: int, found: Callable[[Spots], None], exc
     engine = Engine(task.outlines, task.free, task.field, task.start, clock, rng)
     if not engine.is_free():
         raise ValueError("the layout to begin with overlaps")
-    return Squeeze(engine, task.start, found, exchange).run()
+    return Squeeze(engine, task.start, Bounds.of(engine, task.area_mm2), found, exchange).run()

@@ -5,6 +5,7 @@ from collections.abc import Callable
 import numpy as np
 
 from flatprep.nest.board import put
+from flatprep.nest.bounds import Bounds
 from flatprep.nest.engine import Engine, Spots
 from flatprep.nest.spots import any_spot, clamp, fits
 
@@ -16,6 +17,8 @@ ROAM_PATIENCE, ROAM_TRIES = 200, 3
 TIGHT_LONGEST, TIGHT_SHORTEST = 0.0005, 0.00001
 TIGHT_PATIENCE = 100
 SHELF = 40
+# A layout this near the bound cannot be made shorter.
+NOTHING_MM = 1e-5
 
 
 def shorten(engine: Engine, rects: int, length_mm: float) -> None:
@@ -80,6 +83,8 @@ class Squeeze:
         Its state.
     best
         A layout without overlap.
+    bounds
+        What no layout can be shorter than.
     found
         Told of each better one.
     exchange
@@ -87,16 +92,15 @@ class Squeeze:
     """
 
     def __init__(
-        self, engine: Engine, best: Spots, found: Callable[[Spots], None], exchange: Callable[[Spots], Spots]
+        self,
+        engine: Engine,
+        best: Spots,
+        bounds: Bounds,
+        found: Callable[[Spots], None],
+        exchange: Callable[[Spots], Spots],
     ) -> None:
-        self.engine, self.best = engine, best
+        self.engine, self.best, self._bounds = engine, best, bounds
         self._found, self._exchange = found, exchange
-        o, board = engine.outlines, engine.board
-        n = int(board.movable[0])
-        wide = o.rings.box[:, 2] - o.rings.box[:, 0]
-        least = np.array([wide[a:b].min() for a, b in zip(o.first[:-1], o.first[1:], strict=True)])
-        self._widest = float(least[o.shape[board.variant[:n]]].max())
-        self._narrowest = float(least[o.shape[board.variant[:n]]].min())
 
     def run(self) -> Spots:
         """Roam, then tighten, until the time is gone; return the best layout."""
@@ -122,14 +126,21 @@ class Squeeze:
     def _shorter(self, step: float) -> tuple[int, float]:
         """Return the field that is a step (share of a whole length) shorter than the best one's."""
         rects, length = self.best.rects, self.best.length_mm
+        least = self._bounds.least_mm(rects)
         if rects == 1:
-            return 1, max(length * (1.0 - step), self._widest)
+            return 1, max(length * (1.0 - step), least)
         whole = self.engine.field.rect[rects - 1]
         length -= step * float(whole[2] - whole[0])
-        if length >= self._narrowest:
-            return rects, length
+        if least > 0.0 or length >= self._bounds.narrowest_mm:
+            return rects, max(length, least)
         before = self.engine.field.rect[rects - 2]
         return rects - 1, float(before[2] - before[0])
+
+    @property
+    def _going_on(self) -> bool:
+        """Tell whether there is time, and anything to gain."""
+        least = self._bounds.least_mm(self.best.rects)
+        return self.engine.time_left and self.best.length_mm > least + NOTHING_MM
 
     def _swap_from_shelf(self, shelf: list[Spots]) -> None:
         """Lay a failed layout from near the top of the shelf, with two pieces changed over."""
@@ -141,7 +152,7 @@ class Squeeze:
         """Shorten by steps that halve with each failure; at the least step, change failed layouts about."""
         engine, step = self.engine, LONGEST_STEP
         shelf: list[Spots] = []
-        while engine.time_left:
+        while self._going_on:
             other = self._exchange(self.best)
             if other is not self.best:
                 self.best, shelf = other, []
@@ -164,7 +175,7 @@ class Squeeze:
     def tighten(self) -> None:
         """Shorten the best layout by ever smaller steps."""
         engine, start = self.engine, self.engine.clock.spent
-        while engine.time_left:
+        while self._going_on:
             self.best = self._exchange(self.best)
             share = (engine.clock.spent - start) / max(engine.stop_at - start, 1e-9)
             engine.lay(self.best)

@@ -21,9 +21,10 @@ from flatprep.nest._jit import bare, inner
 from flatprep.nest.contact import collision_loss, depth, gap, overlap
 from flatprep.nest.outlines import Ints, Outlines, turned
 
-MOST_NODES = 64
-LEAST_NODES = 12
-# All grids together, MB, if every node were asked for; memory is taken page by page as nodes are filled.
+# Nodes a side: as many as go into MB of grids near the processor, within bounds; fewer where the bounds take too much.
+MOST_NODES, GOOD_NODES, LEAST_NODES = 128, 64, 12
+NEAR_MB = 6.0
+# All grids together, if every node were asked for; memory is taken page by page as nodes are filled.
 MOST_MB = 100.0
 # Separations are stored as float32: they are read short by this much of the grid's cell.
 ROUNDING = 1e-3
@@ -69,12 +70,18 @@ def no_tables(outlines: Outlines) -> Tables:
 def prepare_tables(outlines: Outlines, packed: int) -> Tables:
     """Empty grids for every pair of the first `packed` variants; pairs that differ by a common turn share one."""
     of, pairs = _grids_of_pairs(outlines, packed)
-    n = int(np.clip(np.sqrt(MOST_MB * 1e6 / (8.0 * len(pairs))), LEAST_NODES, MOST_NODES))
+    n = nodes_a_side(len(pairs))
     a, b = pairs.T
     reach = _boxes_unturned(outlines, a, a), _boxes_unturned(outlines, a, b)
     low = reach[0][:, :2] - reach[1][:, 2:]
     high = reach[0][:, 2:] - reach[1][:, :2]
     return Tables(of, low, (high - low) / (n - 1), pairs, np.zeros((len(pairs), n, n, 2), dtype=np.float32))
+
+
+def nodes_a_side(grids: int) -> int:
+    """Return how fine so many grids may be."""
+    near, most = (np.sqrt(mb * 1e6 / (8.0 * grids)) for mb in (NEAR_MB, MOST_MB))
+    return int(max(min(np.clip(near, GOOD_NODES, MOST_NODES), most), LEAST_NODES))
 
 
 def _grids_of_pairs(outlines: Outlines, packed: int) -> tuple[npt.NDArray[np.int32], Ints]:
@@ -109,10 +116,9 @@ def fill_node(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> Non
     y = tables.origin[t, 1] + j * tables.cell[t, 1]
     c, s = outlines.turn[a, 0], outlines.turn[a, 1]
     dx, dy = c * x - s * y, s * x + c * y
+    apart = gap(outlines.rings, a, b, dx, dy, math.hypot(tables.cell[t, 0], tables.cell[t, 1]))
     if overlap(outlines.rings, a, b, dx, dy):
-        apart = -depth(outlines, a, b, dx, dy)
-    else:
-        apart = gap(outlines.rings, a, b, dx, dy, math.hypot(tables.cell[t, 0], tables.cell[t, 1]))
+        apart = -max(apart, depth(outlines, a, b, dx, dy))
     tables.node[t, i, j, 1] = collision_loss(outlines, a, b, dx, dy)
     tables.node[t, i, j, 0] = apart if abs(apart) > LEAST_APART else LEAST_APART
 

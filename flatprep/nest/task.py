@@ -6,9 +6,10 @@ from dataclasses import dataclass
 import numpy as np
 
 from flatprep.geom.bulge import Floats
+from flatprep.nest.construct import least_box_turn
 from flatprep.nest.engine import Spots
 from flatprep.nest.field import Field, field_of, variant_of
-from flatprep.nest.outlines import HAIR_MM, LONGEST_MITRE, Ints, Outlines, pack, turned
+from flatprep.nest.outlines import HAIR_MM, LONGEST_MITRE, Ints, Outlines, pack, signed_area, turned
 from flatprep.nest.rows import flattest_variants, lay_in_columns
 from flatprep.nest.shapes import Best, Container, Place, Shape
 
@@ -31,6 +32,8 @@ class Task:
         For each of these shapes, whether it may turn to any angle.
     start : Spots
         A layout without overlap.
+    area_mm2 : float
+        Material of all pieces.
     """
 
     shapes: tuple[Shape, ...]
@@ -38,6 +41,7 @@ class Task:
     outlines: Outlines
     free: tuple[bool, ...]
     start: Spots
+    area_mm2: float
 
     def best(self, spots: Spots) -> Best:
         """Return a layout in the containers' own coordinates."""
@@ -91,19 +95,25 @@ def sheets_task(shapes: Sequence[Shape], containers: Sequence[Container], start:
         No layout to begin with: the pieces do not fit, or one is missing from `start`.
     """
     field = field_of(containers)
-    even = _even_turns(sum(s.turns_deg is None for s in shapes))
-    turns = [even if s.turns_deg is None else tuple(s.turns_deg) for s in shapes]
+    many = _many_turns(sum(s.turns_deg is None for s in shapes))
+    turns = [_even_turns(s.outer, many) if s.turns_deg is None else tuple(s.turns_deg) for s in shapes]
     outlines = pack([*shapes, *field.fixed], [*turns, *((0.0,) for _ in field.fixed)])
     kinds = np.repeat(np.arange(len(shapes)), [s.count for s in shapes])
     spots = _given(outlines, field, kinds, start) if start else _in_columns(outlines, field, kinds)
     free = (*(s.turns_deg is None for s in shapes), *(False for _ in field.fixed))
-    return Task(tuple(shapes), field, outlines, free, spots)
+    area = sum(s.count * (abs(signed_area(s.outer)) - sum(abs(signed_area(h)) for h in s.holes)) for s in shapes)
+    return Task(tuple(shapes), field, outlines, free, spots, area)
 
 
-def _even_turns(kinds: int) -> tuple[float, ...]:
-    """Spread the turns (degrees) of shapes that may turn freely evenly; fewer where there are many kinds."""
-    many = next((turns for most, turns in FREE_TURNS if kinds <= most), FEWEST_FREE_TURNS)
-    return tuple(360.0 * k / many for k in range(many))
+def _many_turns(kinds: int) -> int:
+    """Return how many turns to pack of shapes that may turn freely: fewer where there are many kinds."""
+    return next((turns for most, turns in FREE_TURNS if kinds <= most), FEWEST_FREE_TURNS)
+
+
+def _even_turns(outer: Floats, many: int) -> tuple[float, ...]:
+    """Spread turns (degrees) evenly, beginning with the one in which the shape's box is least."""
+    first = least_box_turn(outer) % (360.0 / many)
+    return tuple(first + 360.0 * k / many for k in range(many))
 
 
 def _given(outlines: Outlines, field: Field, kinds: Ints, start: Sequence[Place]) -> Spots:
@@ -120,7 +130,7 @@ def _given(outlines: Outlines, field: Field, kinds: Ints, start: Sequence[Place]
 
 def _in_columns(outlines: Outlines, field: Field, kinds: Ints) -> Spots:
     """Return boxes in columns; only in containers that are rectangles."""
-    variants = flattest_variants(outlines, kinds)
+    variants = flattest_variants(outlines, kinds, float((field.rect[:, 3] - field.rect[:, 1]).max()))
     laid = None if field.fixed else lay_in_columns(outlines.rings.box[variants], list(field.rect))
     if laid is None:
         raise ValueError("the pieces do not fit into the containers as boxes in columns")
