@@ -5,13 +5,16 @@ from collections.abc import Iterable
 from dataclasses import dataclass
 
 from flatprep.base.names import plain
+from flatprep.base.units import MM_PER_UNIT
 from flatprep.profile.material import Material
 
 _THICKNESS = (
-    (re.compile(r"(?<![\w.,])t?\s?=?\s?(\d+(?:[.,]\d+)?)\s?mm\b"), "mm"),
+    (re.compile(r"(?<![\w.,])t?\s?=?\s?(\d+(?:[.,]\d+)?)\s?(?:mm|millimet(?:er|re)s?)\b"), "mm"),
     (re.compile(r"(?<![\w.,])(\d*[.,]\d+)\s?in(?:ch)?\b"), "in"),
     (re.compile(r"(?<![\w.,])(\d{1,2})\s?ga(?:uge)?\b"), "ga"),
 )
+_THICKEST_MM = 30.0
+"""A larger number is some other size of the part."""
 _QUANTITY = (
     re.compile(r"(?<![\w.,])x\s?(\d{1,4})(?![\w.,])"),
     re.compile(r"(?<![\w.,])(\d{1,4})\s?x(?![\w.,]|\s\d)"),
@@ -57,11 +60,12 @@ def guess_from_name(stem: str, materials: Iterable[Material]) -> NameGuess:
 
 
 def _thickness(words: str) -> str | None:
-    for pattern, unit in _THICKNESS:
-        found = pattern.search(words)
-        if found and float(found[1].replace(",", ".")) > 0:
-            return f"{found[1].replace(',', '.')}{unit}"
-    return None
+    numbers = ((found[1].replace(",", "."), unit) for pattern, unit in _THICKNESS for found in pattern.finditer(words))
+    return next((f"{number}{unit}" for number, unit in numbers if _is_thickness(float(number), unit)), None)
+
+
+def _is_thickness(number: float, unit: str) -> bool:
+    return number > 0 and (unit == "ga" or number * MM_PER_UNIT[unit] <= _THICKEST_MM)
 
 
 def _quantity(words: str) -> int | None:

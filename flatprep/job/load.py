@@ -1,6 +1,7 @@
 """The job file: TOML in, a checked Job out."""
 
 from collections import Counter
+from dataclasses import replace
 from decimal import Decimal
 from pathlib import Path
 
@@ -51,7 +52,8 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
     unit = top.choice("units", tuple(MM_PER_UNIT), "mm")
     context = Context(unit, Reach(path.parent, options.anywhere), options, _overrides(top, options))
     process = _process(top, context, options)
-    parts = _parts(top, context, process)
+    everywhere = accepts(top, context)
+    parts = tuple(replace(p, accepts=(*p.accepts, *everywhere)) for p in _parts(top, context, process))
     layers = {**roles(top, "layers"), **options.layers}
     return Job(
         path=path,
@@ -69,7 +71,7 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
         units=unit,
         windows=top.optional_flag("windows"),
         layers=layers,
-        accepts=accepts(top, context),
+        accepts=everywhere,
         cost=_cost(top, context),
         joints=tuple(read_joint(one, context, tuple(p.name for p in parts)) for one in top.tables("joint")),
     )

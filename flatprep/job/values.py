@@ -186,5 +186,6 @@ class Job:
     """Whether parts may lie in windows of others; None: as the process has it."""
     layers: Mapping[str, Role] = field(default_factory=dict)
     accepts: tuple[Accept, ...] = ()
+    """What holds for every part; each part has these among its own."""
     cost: CostTerms = field(default_factory=CostTerms)
     joints: tuple[JointAsk, ...] = ()

@@ -3,7 +3,9 @@
 import json
 from dataclasses import replace
 from decimal import Decimal
+from importlib.resources import files
 
+import jsonschema
 import pytest
 
 from flatprep.cost.alternatives import Choice, alternatives, next_stock_mm, stiffness_ratio, strength_ratio
@@ -224,6 +226,8 @@ def test_reports_of_the_whole_set():
     assert "side and 1 more" in text
     document = json.loads(json.dumps(alternatives_document([], whole)))
     assert document["set"][0]["present"] == whole[0].present
+    schema = json.loads((files("flatprep.report") / "schemas" / "alternatives.json").read_text())
+    jsonschema.validate(alternatives_document(tables_of(items), whole), schema)
 
 
 def test_reports():

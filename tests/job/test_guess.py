@@ -21,6 +21,9 @@ MATERIALS = all_materials()
         ("plate t4mm 1.4301", "4mm", None, "stainless-304"),
         ("gasket 0,8mm", "0.8mm", None, None),
         ("stainless steel ring 2 mm 3 off", "2mm", 3, "stainless-304"),
+        ("Fin_3_millimeter_polypropylene", "3mm", None, "polypropylene"),
+        ("Side_Panel_100mm", None, None, None),
+        ("Side_Panel_100mm_3mm", "3mm", None, None),
         # a longer name wins over the shorter one in it
         ("galvanized steel clip 1mm", "1mm", None, "galvanised-steel"),
     ],

@@ -38,6 +38,15 @@ def test_a_part_with_everything(job, tmp_path):
     assert (leaf.accepts[0].rule, leaf.accepts[0].reason, leaf.accepts[0].at) == ("thin-web", "tested", (10.0, 20.0))
 
 
+def test_what_a_job_accepts_is_accepted_of_every_part(tmp_path):
+    text = 'process = "router"\n[[accept]]\nrule = "small-part"\nreason = "tabbed"\n'
+    text += '[[part]]\ndrawing = "leaf.dxf"\n[[part.accept]]\nrule = "thin-web"\nreason = "tested"\n'
+    text += '[[part]]\ndrawing = "plate.dxf"\n'
+    leaf, plate = load_job(write_job(tmp_path, text)).parts
+    assert [a.rule for a in leaf.accepts] == ["thin-web", "small-part"]
+    assert [(a.rule, a.reason, a.at) for a in plate.accepts] == [("small-part", "tabbed", None)]
+
+
 def test_bench_work_and_bends(job):
     leaf = job.parts[0]
     tap, ream, drill = leaf.work
