@@ -15,7 +15,7 @@ from decimal import Decimal
 
 from flatprep.cost.estimate import Costed
 from flatprep.cost.mass import mass_kg
-from flatprep.cost.share import to_cents
+from flatprep.cost.share import decimal, to_cents
 from flatprep.model.alternative import Alternative, Basis, PartAlternatives
 from flatprep.profile.material import Material
 from flatprep.profile.process import Process
@@ -158,7 +158,7 @@ def _cost(material: Material, mass: float | None, choice: Choice) -> Decimal | N
     """Return the price of the sheet a piece takes: its mass over the utilisation, at the user's price per kg."""
     if material.price_per_kg is None or mass is None:
         return None
-    return to_cents(material.price_per_kg * Decimal(repr(mass / (choice.utilisation or 1.0))))
+    return to_cents(material.price_per_kg * decimal(mass / (choice.utilisation or 1.0)))
 
 
 def _process(item: Costed, material: Material, thickness_mm: float, choice: Choice) -> Process | None:

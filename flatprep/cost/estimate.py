@@ -8,7 +8,7 @@ from decimal import Decimal
 from flatprep.cost.lines import Lines, share_out
 from flatprep.cost.mass import mass_kg, mass_properties
 from flatprep.cost.notes import notes_of
-from flatprep.cost.share import to_cents
+from flatprep.cost.share import decimal, to_cents
 from flatprep.cost.sheets import sheet_area_mm2
 from flatprep.job.terms import CostTerms
 from flatprep.job.values import Stock
@@ -174,8 +174,8 @@ def _machine_cost(items: Sequence[Costed], parts: Sequence[PartEstimate], rate: 
     total = Decimal(0)
     for item, part in zip(items, parts, strict=True):
         own = item.process.machine_rate
-        hourly = rate if rate is not None else (None if own is None else Decimal(repr(own)))
+        hourly = rate if rate is not None else (None if own is None else decimal(own))
         if hourly is None or part.cut_time_s is None:
             return None
-        total += hourly * Decimal(repr(part.cut_time_s * part.quantity)) / 3600
+        total += hourly * decimal(part.cut_time_s * part.quantity) / 3600
     return to_cents(total)

@@ -4,6 +4,7 @@ from collections.abc import Sequence
 from dataclasses import replace
 from decimal import Decimal
 
+from flatprep.cost.share import decimal
 from flatprep.job.values import Stock
 from flatprep.profile.material import Material
 
@@ -17,7 +18,7 @@ def price_per_kg(stock: Stock) -> Decimal | None:
     if price is None or density is None or stock.width_mm is None:
         return None
     mass = length * stock.width_mm * stock.thickness_mm * density * 1e-9
-    return price / Decimal(repr(mass))
+    return price / decimal(mass)
 
 
 def priced(materials: Sequence[Material], stock: Sequence[Stock]) -> tuple[Material, ...]:

@@ -12,6 +12,11 @@ def to_cents(amount: Decimal) -> Decimal:
     return amount.quantize(CENT, rounding=ROUND_HALF_UP)
 
 
+def decimal(value: float) -> Decimal:
+    """Return the decimal number that a float is written as; numpy's floats too."""
+    return Decimal(repr(float(value)))
+
+
 def split(bill: Decimal, weights: Sequence[float | Decimal]) -> tuple[Decimal, ...]:
     """Share `bill` out in proportion to `weights`, in whole cents that add up to it.
 

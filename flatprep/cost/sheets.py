@@ -6,6 +6,7 @@ from decimal import Decimal
 
 import numpy as np
 
+from flatprep.cost.share import decimal
 from flatprep.geom.bulge import Floats
 from flatprep.job.terms import CostTerms, Discount
 from flatprep.job.values import Stock
@@ -44,7 +45,7 @@ def gross_price(sheet: SheetLayout, stock: Stock) -> Decimal | None:
     """Return the price of a sheet, or of the length taken from open stock; None where the user gives none."""
     if stock.length_mm is None and stock.outline is None:
         metre = stock.price_per_metre
-        return None if metre is None else metre * Decimal(repr(sheet.used_length_mm)) / 1000
+        return None if metre is None else metre * decimal(sheet.used_length_mm) / 1000
     return stock.price_per_sheet
 
 
@@ -91,9 +92,9 @@ def bill_sheets(
 def _credit(sheet: SheetLayout, stock: Stock, net_mm2: float, paid: Decimal, terms: CostTerms) -> Decimal:
     area = sheet_area_mm2(sheet)
     rest = rest_area_mm2(sheet, stock, terms.offcut_least_mm) if terms.offcut_credit else 0.0
-    credit = paid * terms.offcut_credit * Decimal(repr(rest / area))
+    credit = paid * terms.offcut_credit * decimal(rest / area)
     density = stock.material.density_kg_m3
     if terms.scrap_per_kg and density and stock.material.family in METALS:
         skeleton = max(area - rest - net_mm2, 0.0)
-        credit += terms.scrap_per_kg * Decimal(repr(skeleton * stock.thickness_mm * density * 1e-9))
+        credit += terms.scrap_per_kg * decimal(skeleton * stock.thickness_mm * density * 1e-9)
     return min(credit, paid)

@@ -2,6 +2,7 @@
 
 from decimal import Decimal
 
+import numpy as np
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
@@ -134,6 +135,12 @@ def test_open_stock_is_charged_by_the_length_taken():
     e = estimate(ABC, [strip], layout(sheet(strip, "a", "b", "c", used=1234.5)))
     assert e.material_cost == Decimal("9.88")
     assert (e.stock[0].length_mm, e.stock[0].price) == (1234.5, Decimal("8.00"))
+
+
+def test_lengths_may_come_as_numpy_has_them():
+    strip = stock("strip", length=None, metre="8.00")
+    e = estimate(ABC, [strip], layout(sheet(strip, "a", "b", "c", used=np.float64(1234.5))))
+    assert e.material_cost == Decimal("9.88")
 
 
 def test_remnants_count_with_their_holes_and_empty_sheets_not_at_all():
