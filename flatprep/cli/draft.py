@@ -7,30 +7,29 @@ import click
 from flatprep.api.draft import draft_job
 from flatprep.base.errors import UsageError
 from flatprep.base.files import write_whole
+from flatprep.cli.options import said_about_parts
+from flatprep.job.context import JobOptions
 from flatprep.report.draft_toml import draft_toml, unknown
+from flatprep.report.figures import counted
 
 
 @click.command("draft")
 @click.argument("folder", type=click.Path(path_type=Path))
 @click.option("--out", type=click.Path(path_type=Path), metavar="FILE", help="the job file; default: standard output")
-@click.option("--process", metavar="ID|FILE", help="process id or profile file")
-@click.option(
-    "--profiles", "folders", metavar="DIR", multiple=True, type=click.Path(path_type=Path), help="own profiles"
-)
-def command(folder: Path, out: Path | None, process: str | None, folders: tuple[Path, ...]) -> None:
+@said_about_parts
+def command(folder: Path, out: Path | None, said: JobOptions) -> None:
     """Write a job file from a folder of drawings.
 
-    Material, thickness and quantity are guessed from names such as bracket_5052_3mm_x2.dxf, and marked as guesses.
+    Material, thickness and quantity are guessed from names such as bracket_5052_3mm_x2.dxf, and marked as guesses;
+    --material and --thickness stand where a name tells none.
     """
     if out is not None and out.exists():
         raise UsageError(f"{out} is there already", "choose another name with --out: a job file is never overwritten")
-    draft = draft_job(folder, out.parent if out else Path.cwd(), process=process, profiles=folders)
+    draft = draft_job(folder, out.parent if out else Path.cwd(), said)
     if out is None:
         click.echo(draft_toml(draft), nl=False)
     else:
         write_whole(out, draft_toml(draft))
     materials, thicknesses = unknown(draft.parts)
-    click.echo(
-        f"{len(draft.parts)} drawings; {materials} without a material, {thicknesses} without a thickness: see the file",
-        err=True,
-    )
+    drawings = counted(len(draft.parts), "drawing")
+    click.echo(f"{drawings}; {materials} without a material, {thicknesses} without a thickness: see the file", err=True)

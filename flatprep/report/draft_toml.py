@@ -4,17 +4,30 @@ import json
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from flatprep.job.guess import NameGuess
-
 GUESS = "# guess"
 
 
 @dataclass(frozen=True, slots=True)
 class DraftPart:
-    """A drawing for the job file; `name` only where its stem is not its own."""
+    """A drawing for the job file.
+
+    Attributes
+    ----------
+    drawing : str
+        Seen from the job file.
+    material, thickness : str or None
+        None where nobody said it.
+    guessed : frozenset of str
+        Which of these, and of `quantity`, are guesses.
+    name : str or None
+        Where the drawing's stem is not its own.
+    """
 
     drawing: str
-    guess: NameGuess
+    material: str | None
+    thickness: str | None
+    quantity: int
+    guessed: frozenset[str]
     name: str | None = None
 
 
@@ -61,6 +74,8 @@ def _head(draft: Draft) -> str:
     ]
     if draft.cutlist:
         lines.append(_line("parts", draft.cutlist))
+    if not draft.stock:
+        lines.append("# no [[stock]] could be drafted: it takes a material and a thickness")
     return "\n".join(lines)
 
 
@@ -80,21 +95,20 @@ def _stock(stock: DraftStock) -> str:
 
 
 def _part(part: DraftPart) -> str:
-    guess = part.guess
     lines = ["[[part]]", _line("drawing", part.drawing)]
     lines += [_line("name", part.name)] if part.name else []
     lines += [
-        _guessed("material", guess.material, '"mild-steel"'),
-        _guessed("thickness", guess.thickness, '"3mm"'),
-        f"quantity = {guess.quantity}   {GUESS}, from the name" if guess.quantity else f"quantity = 1   {GUESS}",
+        _value(part, "material", part.material, '"mild-steel"'),
+        _value(part, "thickness", part.thickness, '"3mm"'),
+        f"quantity = {part.quantity}   {GUESS}{', from the name' if 'quantity' in part.guessed else ''}",
     ]
     return "\n".join(lines)
 
 
-def _guessed(key: str, value: str | None, example: str) -> str:
+def _value(part: DraftPart, key: str, value: str | None, example: str) -> str:
     if value is None:
         return f"# {key} = {example}   # the name does not tell: say it here"
-    return f"{_line(key, value)}   {GUESS}, from the name"
+    return _line(key, value) + (f"   {GUESS}, from the name" if key in part.guessed else "")
 
 
 def _line(key: str, value: str) -> str:
@@ -109,4 +123,4 @@ def stock_name(material: str, thickness: str) -> str:
 
 def unknown(parts: Sequence[DraftPart]) -> tuple[int, int]:
     """How many parts lack a material, and how many a thickness."""
-    return sum(p.guess.material is None for p in parts), sum(p.guess.thickness is None for p in parts)
+    return sum(p.material is None for p in parts), sum(p.thickness is None for p in parts)

@@ -84,7 +84,9 @@ def _figures(bundle: Bundle) -> Iterator[Figure]:
     yield Figure("Findings", str(errors + warnings + notes), ", ".join(words))
     steps = sum(len(card.steps) for card in bundle.cards)
     yield Figure("Bench steps", str(steps), f"on {counted(sum(bool(c.steps) for c in bundle.cards), 'part')}")
-    if bundle.layout is not None:
+    if bundle.layout is None:
+        yield Figure("Sheets", "none", "the job names no stock")
+    else:
         yield _sheets(bundle.layout, bundle.estimate)
     if bundle.estimate is not None:
         yield _mass(bundle.estimate)

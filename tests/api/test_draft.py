@@ -7,8 +7,9 @@ import pytest
 from click.testing import CliRunner
 
 from flatprep.api.draft import draft_job
-from flatprep.base.errors import ProfileError, UsageError
+from flatprep.base.errors import FlatprepError, ProfileError, UsageError
 from flatprep.cli.main import root
+from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
 from flatprep.report.draft_toml import draft_toml
 
@@ -27,7 +28,7 @@ def folder(tmp_path):
 
 def test_a_drafted_job_loads_and_holds_every_drawing(folder, tmp_path):
     job_file = tmp_path / "job.toml"
-    job_file.write_text(draft_toml(draft_job(folder, tmp_path, process="fibre-laser")), encoding="utf-8")
+    job_file.write_text(draft_toml(draft_job(folder, tmp_path, JobOptions(process="fibre-laser"))), encoding="utf-8")
     job = load_job(job_file)
     assert sorted(part.name for part in job.parts) == ["left_leaf", 'odd "name"é', "right_leaf", "ring_3mm_steel_x4"]
     ring = next(part for part in job.parts if part.name.startswith("ring"))
@@ -57,7 +58,7 @@ def test_wrong_asks(folder, tmp_path):
     with pytest.raises(UsageError, match=r"no \.dxf drawing"):
         draft_job(empty, tmp_path)
     with pytest.raises(ProfileError, match="unknown process"):
-        draft_job(folder, tmp_path, process="bread-knife")
+        draft_job(folder, tmp_path, JobOptions(process="bread-knife"))
 
 
 def test_a_job_file_is_never_overwritten(folder, tmp_path):
@@ -75,3 +76,23 @@ def test_the_command_writes_the_file_and_tells_what_is_missing(folder, tmp_path)
     assert done.exit_code == 0
     assert "4 drawings; 3 without a material, 3 without a thickness" in done.stderr
     assert load_job(target).process.id == "router"
+
+
+def test_what_is_said_fills_in_what_names_leave_open(folder, tmp_path):
+    job_file = tmp_path / "job.toml"
+    said = JobOptions(process="co2-laser", material="PMMA", thickness="1/4in")
+    text = draft_toml(draft_job(folder, tmp_path, said))
+    assert 'material = "acrylic"\n' in text
+    job_file.write_text(text, encoding="utf-8")
+    parts = {part.name: (part.material.id, part.thickness_mm) for part in load_job(job_file).parts}
+    assert parts["ring_3mm_steel_x4"] == ("mild-steel", 3.0)
+    assert parts["left_leaf"] == ("acrylic", 6.35)
+    assert {stock.material.id for stock in load_job(job_file).stock} == {"mild-steel", "acrylic"}
+
+
+@pytest.mark.parametrize(
+    "said", [JobOptions(material="cheese"), JobOptions(thickness="-3"), JobOptions(thickness="16ga")]
+)
+def test_what_is_said_is_checked(folder, tmp_path, said):
+    with pytest.raises(FlatprepError):
+        draft_job(folder, tmp_path, said)
