@@ -3,6 +3,8 @@
 from collections.abc import Sequence
 from pathlib import Path
 
+from flatprep.base.errors import ProfileError
+
 _PACKAGE = Path(__file__).resolve().parent.parent
 KINDS = ("processes", "materials", "hardware")
 
@@ -20,7 +22,15 @@ def places(kind: str, own: Sequence[Path] = ()) -> tuple[Path, ...]:
     """Return the folders that may hold profiles of a kind, first come first served.
 
     An own folder may have a subfolder of the kind's name, or hold the files itself.
+
+    Raises
+    ------
+    ProfileError
+        When an own folder is not there.
     """
+    for root in own:
+        if not root.is_dir():
+            raise ProfileError(f"{root}: no such folder of profiles", "check the path given with --profiles")
     return tuple(folder for root in own for folder in (root / kind, root)) + (SHIPPED / kind,)
 
 
