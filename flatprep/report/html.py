@@ -42,6 +42,7 @@ def report_html(bundle: Bundle) -> str:
         plot=Markup(search_plot(bundle.search)),
         tools=bundle.checklist.tools if bundle.checklist else (),
         joints=bundle.checklist.joints if bundle.checklist else (),
+        priced=any(card.estimate and card.estimate.line_cost is not None for card in bundle.cards),
         unplaced=bundle.layout.unplaced if bundle.layout else (),
         stock=bundle.estimate.stock if bundle.estimate else (),
         cautions=_cautions(bundle),

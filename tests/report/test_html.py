@@ -166,6 +166,12 @@ def test_a_bench_sheet_is_one_part_with_job_revision_and_hash(bundle):
         assert known in words
 
 
+def test_without_prices_there_is_no_column_of_them(bundle):
+    assert "Share of cost" in report_html(bundle)
+    cards = tuple(replace(card, estimate=None) for card in bundle.cards)
+    assert "Share of cost" not in report_html(replace(bundle, cards=cards))
+
+
 def test_an_empty_job_still_makes_a_page(bundle):
     empty = type(bundle)("nothing")
     assert "Nothing found against cutting" in report_html(empty)
