@@ -105,7 +105,7 @@ class Engine:
     @property
     def time_left(self) -> bool:
         """Tell whether the present phase may go on."""
-        return self.clock.spent < self.stop_at
+        return self.clock.spent < self.stop_at and not self.clock.stopped()
 
     @property
     def length_mm(self) -> float:

@@ -50,9 +50,11 @@ class Job(NamedTuple):
 class Meetings:
     """When a process meets the others: a check in the search that mostly does nothing."""
 
-    def __init__(self, clock: Clock, meet: Callable[[Spots], Spots], look: Callable[[], None] = lambda: None) -> None:
+    def __init__(
+        self, clock: Clock, steps: int, meet: Callable[[Spots], Spots], look: Callable[[], None] = lambda: None
+    ) -> None:
         self._clock, self._meet, self._look = clock, meet, look
-        self._next = MEETING_STEPS * EVALUATIONS_A_STEP
+        self._every = self._next = steps * EVALUATIONS_A_STEP
 
     def __call__(self, best: Spots) -> Spots:
         """Look for news, and meet as often as is due."""
