@@ -110,7 +110,7 @@ def _why_lost(report: LintReport, ask: JobPart) -> str:
 
 
 def _piece(job: Job, ask: JobPart, drawing: Drawing, part: Part) -> Piece:
-    bench = bench_part(ask, part, sets=job.sets, pilots=job.pilots, texts=drawing.texts)
+    bench = bench_part(ask, part, job, drawing)
     done = apply_pilots(bench)
     faulty = any(f.kind in _FAULTS_OF_A_COPY for f in drawing.faults)
     changed = done.part is not part or faulty or bool(drawing.loose)

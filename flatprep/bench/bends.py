@@ -108,7 +108,7 @@ def _note(bench: BenchPart, found: BendLines) -> str:
     else:
         f = found.figures
         notes.append(
-            f"allowance {f.allowance_mm:.2f}, deduction {f.deduction_mm:.2f} mm by DIN 6935, "
+            f"allowance {f.allowance_mm:.2f} mm, deduction {f.deduction_mm:.2f} mm by DIN 6935, "
             f"k {f.k:.3g} (K {f.k_factor:.3g})"
         )
         measured = measured_k_factor(bench.family or "")

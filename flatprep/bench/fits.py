@@ -4,6 +4,7 @@ from dataclasses import replace
 
 from flatprep.bench.ops import Ask, Op, Rank, open_up, spoilt
 from flatprep.model.work import StepKind
+from flatprep.practice.bits import bit_below
 from flatprep.practice.fits import FinishPlan, finish_plan, holds
 from flatprep.practice.seats import Seat, find_seat
 from flatprep.profile.hardware.fits import Limits
@@ -72,4 +73,4 @@ def _finish(ask: Ask, kind: StepKind, rank: Rank, tool: str) -> list[Op]:
     if kind is StepKind.BORE and as_cut is not None:
         return [finish.with_note(f"from the cut hole of {as_cut:.4g} mm")]
     drill = plan.drill_from(as_cut)
-    return [*([] if drill is None else open_up(ask, as_cut, drill, cut)), finish]
+    return [*([] if drill is None else open_up(ask, as_cut, bit_below(drill, inch=ask.bench.inch), cut)), finish]

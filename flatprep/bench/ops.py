@@ -6,6 +6,7 @@ from enum import IntEnum
 from flatprep.bench.part import BenchPart
 from flatprep.job.values import Pilots, Point, Work
 from flatprep.model.work import StepKind
+from flatprep.practice.bits import Bit
 from flatprep.practice.targets import Target
 
 CLOSE_MM = 0.05
@@ -124,20 +125,24 @@ class Ask:
         return self.drawn_mm if self.drawn_mm >= self.bench.least_hole_mm - 1e-3 else None
 
 
-def open_up(ask: Ask, as_cut_mm: float | None, drill_mm: float, cut_dia_mm: float | None, drill: str = "") -> list[Op]:
-    """Return what brings a hole to a drill's size: centre mark and drill, drill, or nothing."""
-    if as_cut_mm is not None and as_cut_mm >= drill_mm - CLOSE_MM:
+def open_up(ask: Ask, as_cut_mm: float | None, bit: Bit, cut_dia_mm: float | None, size: str = "") -> list[Op]:
+    """Return what brings a hole to a drill's size: centre mark and drill, drill, or nothing.
+
+    Parameters
+    ----------
+    as_cut_mm
+        What the cutter leaves; None: nothing.
+    size
+        What the hole is for; the drill's own name where nothing is said.
+    """
+    if as_cut_mm is not None and as_cut_mm >= bit.diameter_mm - CLOSE_MM:
         return []
-    size = drill or f"{drill_mm:g} mm"
-    out = []
-    if as_cut_mm is None:
-        out.append(
-            Op(StepKind.CENTRE_MARK, Rank.CENTRE_MARK, ask.at, size, cut_dia_mm=cut_dia_mm,
-               note="no hole is cut here: centre mark, drill solid")
-        )  # fmt: skip
-    note = f"opens the cut hole of {as_cut_mm:.4g} mm" if as_cut_mm is not None else "in steps, smallest drill first"
-    out.append(
-        Op(StepKind.DRILL, Rank.DRILL, ask.at, size, drill_mm, f"drill {size}", ask.work.depth_mm, cut_dia_mm,
-           ask.work.side, note)
+    drill = Op(
+        StepKind.DRILL, Rank.DRILL, ask.at, size or bit.name, bit.diameter_mm, f"drill {bit.name}", ask.work.depth_mm,
+        cut_dia_mm, note="in steps, smallest drill first",
     )  # fmt: skip
-    return out
+    if as_cut_mm is not None:
+        return [replace(drill, note=f"opens the cut hole of {as_cut_mm:.4g} mm")]
+    note = "no hole is cut here: centre mark, drill solid"
+    mark = Op(StepKind.CENTRE_MARK, Rank.CENTRE_MARK, ask.at, drill.size, cut_dia_mm=cut_dia_mm, note=note)
+    return [mark, drill]

@@ -1,12 +1,11 @@
 """A part as the bench sees it: its shape, what it is made of and by, and what is asked of it."""
 
-from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
 
-from flatprep.job.values import BendAsk, JobPart, Pilots, Work
+from flatprep.job.values import BendAsk, Job, JobPart, Pilots, Work
 from flatprep.measure.holes import Hole, recognise
-from flatprep.model.drawing import Part, Text
+from flatprep.model.drawing import Drawing, Part, Text
 from flatprep.profile.material import Material
 from flatprep.profile.process import Process
 
@@ -30,6 +29,8 @@ class BenchPart:
         What is cut where bench work opens a hole up.
     units : str
         The drawing's unit, which bare numbers in its texts are in.
+    inch : bool
+        The job is in inches: number, letter and fractional drills are named.
     where : str
         Place in the job file, for messages; parts of one drawing share it.
     """
@@ -49,6 +50,7 @@ class BenchPart:
     good_face: str | None = None
     where: str = ""
     units: str = "mm"
+    inch: bool = False
 
     @cached_property
     def holes(self) -> tuple[Hole, ...]:
@@ -67,17 +69,22 @@ class BenchPart:
         return limit.error if limit else 0.0
 
 
-def bench_part(
-    ask: JobPart, part: Part, *, sets: int = 1, pilots: Pilots = Pilots.AS_DRAWN, texts: Sequence[Text] = (),
-    units: str = "mm",
-) -> BenchPart:  # fmt: skip
+def bench_part(ask: JobPart, part: Part, job: Job, drawing: Drawing | None = None) -> BenchPart:
     """Return the bench's view of a part of a job; quantities become those of all sets.
 
-    `texts` are the drawing's, whose callouts are read as work; bare numbers in them are in `units`.
+    Parameters
+    ----------
+    ask
+        What the job says of the part.
+    part
+        Its shape as drawn.
+    drawing
+        Gives the texts, whose callouts are read as work.
     """
     return BenchPart(
-        name=part.name, part=part, process=ask.process, quantity=ask.quantity * sets, material=ask.material,
-        thickness_mm=ask.thickness_mm, work=ask.work, bends=ask.bends, texts=tuple(texts), pilots=pilots,
-        quantity_opposite=ask.quantity_opposite * sets, finish=ask.finish, good_face=ask.good_face, where=ask.where,
-        units=units,
+        name=part.name, part=part, process=ask.process, quantity=ask.quantity * job.sets, material=ask.material,
+        thickness_mm=ask.thickness_mm, work=ask.work, bends=ask.bends, texts=drawing.texts if drawing else (),
+        pilots=job.pilots, quantity_opposite=ask.quantity_opposite * job.sets, finish=ask.finish,
+        good_face=ask.good_face, where=ask.where, units=drawing.units if drawing else "mm",
+        inch=job.units in ("in", "ft"),
     )  # fmt: skip

@@ -4,8 +4,9 @@ from dataclasses import replace
 
 from flatprep.bench.ops import CLOSE_MM, Ask, Op, Rank, open_up, spoilt
 from flatprep.model.work import StepKind
+from flatprep.practice.bits import Bit, bit_for, clearance_bit
 from flatprep.practice.sinks import Sink, find_sink, sink_room
-from flatprep.profile.hardware.clearance import find_clearance, split_series
+from flatprep.profile.hardware.clearance import Clearance, find_clearance, split_series
 from flatprep.profile.hardware.drills import find_drill
 from flatprep.profile.hardware.nuts import find_nut
 from flatprep.profile.hardware.rules import section
@@ -14,35 +15,33 @@ from flatprep.profile.hardware.rules import section
 def clearance_ops(ask: Ask) -> list[Op]:
     """Return the drill, or an inspection where the hole is cut to size."""
     screw, series = split_series(ask.work.size)
-    found = find_clearance(screw)
-    return through_ops(
-        ask, found.series(series), f"{found.screw} clearance", _drill(found.drill(series)), f"{series} series"
-    )
+    return _clearance(ask, find_clearance(screw), series)
 
 
-def _drill(name: str) -> str:
-    return name if name.endswith("mm") else f"drill {name}"
+def _clearance(ask: Ask, hole: Clearance, series: str = "medium") -> list[Op]:
+    bit = clearance_bit(hole, series, inch=ask.bench.inch)
+    return through_ops(ask, bit, f"{hole.screw} clearance", f"{series} series")
 
 
 def drill_ops(ask: Ask) -> list[Op]:
     """Return the drill, or an inspection where the hole is cut to size."""
     size = find_drill(ask.work.size)
-    return through_ops(ask, size, ask.work.size if ask.work.size.strip()[-1:] == "m" else f"{size:g} mm", "", "")
+    named = not ask.work.size.replace("mm", "").replace(".", "").replace(",", "").strip().isdigit()
+    return through_ops(ask, Bit(size, ask.work.size) if named else bit_for(size, inch=ask.bench.inch))
 
 
-def through_ops(ask: Ask, diameter_mm: float, size: str, drill: str, note: str) -> list[Op]:
+def through_ops(ask: Ask, bit: Bit, size: str = "", note: str = "") -> list[Op]:
     """Return what makes a plain hole: cut to size and measured, or drilled."""
-    cut = _cuttable(ask, diameter_mm)
+    cut = _cuttable(ask, bit.diameter_mm)
     as_cut = ask.as_cut_mm(cut)
-    if as_cut is None or as_cut < diameter_mm - CLOSE_MM:
-        ops = open_up(ask, as_cut, diameter_mm, cut, size)
-        told = "; ".join(t for t in (drill, note) if t)
-        return [op.with_note(told) if op.kind is StepKind.DRILL and told else op for op in ops]
-    wide = as_cut > diameter_mm + CLOSE_MM
-    told = f"drawn {as_cut:.4g} mm, wider than {diameter_mm:.4g}" if wide else "cut to size"
+    if as_cut is None or as_cut < bit.diameter_mm - CLOSE_MM:
+        ops = open_up(ask, as_cut, bit, cut, size)
+        return [op.with_note(note) if op.kind is StepKind.DRILL and note else op for op in ops]
+    wide = as_cut > bit.diameter_mm + CLOSE_MM
+    told = f"drawn {as_cut:.4g} mm, wider than {bit.diameter_mm:.4g} mm" if wide else "cut to size"
     return [
-        Op(StepKind.INSPECT, Rank.CHECK_CUT, ask.at, size, diameter_mm, "", ask.work.depth_mm, cut, ask.work.side,
-           "; ".join(t for t in (told, note) if t))
+        Op(StepKind.INSPECT, Rank.CHECK_CUT, ask.at, size or bit.name, bit.diameter_mm, "", ask.work.depth_mm, cut,
+           note="; ".join(t for t in (told, note) if t))
     ]  # fmt: skip
 
 
@@ -58,7 +57,7 @@ def sink_ops(ask: Ask, hole_mm: float | None = None) -> list[Op]:
     holes: list[Op] = []
     cut = ask.drawn_mm
     if sink.through_mm is not None and hole_mm is None:
-        holes = through_ops(ask, sink.through_mm, f"{sink.screw} clearance", "", "medium series")
+        holes = _clearance(ask, find_clearance(sink.screw))
         cut = _cuttable(ask, sink.through_mm)
     op = _countersink(ask, sink) if sink.angle_deg is not None else _counterbore(ask, sink)
     return [*holes, _in_sheet(replace(op, cut_dia_mm=cut), sink, ask.bench.thickness_mm)]

@@ -2,6 +2,7 @@
 
 from flatprep.bench.ops import Ask, Op, Rank, open_up, spoilt
 from flatprep.model.work import StepKind
+from flatprep.practice.bits import bit_for, tap_bit
 from flatprep.practice.threads import (
     PilotHole,
     engagement,
@@ -46,11 +47,7 @@ def tap_ops(ask: Ask) -> list[Op]:
         ]
     if as_cut is not None and thread.admits(as_cut):
         return [tap if taps_directly(ask.bench.process, ask.bench.material, ask.bench.thickness_mm) else _skin(tap)]
-    return [*open_up(ask, as_cut, thread.drill_mm, cut, _drill_name(thread)), tap]
-
-
-def _drill_name(thread: Thread) -> str:
-    return f"{thread.drill} ({thread.metric_drill_mm:g} mm)" if thread.is_inch else thread.drill
+    return [*open_up(ask, as_cut, tap_bit(thread, inch=ask.bench.inch), cut), tap]
 
 
 def _skin(tap: Op) -> Op:
@@ -130,4 +127,4 @@ def insert_ops(ask: Ask) -> list[Op]:
     )  # fmt: skip
     if as_cut is not None and as_cut > drill + 0.2:
         return [spoilt(insert, f"the hole of {as_cut:.4g} mm is wider than the insert's drill of {drill:g} mm")]
-    return [*open_up(ask, as_cut, drill, cut), insert]
+    return [*open_up(ask, as_cut, bit_for(drill, inch=ask.bench.inch), cut), insert]

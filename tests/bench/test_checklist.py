@@ -148,6 +148,25 @@ def test_thread_inserts():
     assert one(steps, K.THREAD_INSERT).tool_dia_mm == 5.2
 
 
+@pytest.mark.parametrize(
+    ("asked", "inch", "tool"),
+    [
+        (("tap", "M5"), False, "drill 4.2 mm"),
+        (("tap", "M5"), True, "drill #19"),  # 0.166 in, 4.216 mm, inside 4.134 to 4.334
+        (("tap", "M1.6"), True, "drill 1.25 mm"),  # 3/64 is 1.191, under 1.221
+        (("tap", "1/4-20"), False, "drill #7 (5.1 mm)"), (("tap", "1/4-20"), True, "drill #7"),
+        (("clearance", "M5"), False, "drill 5.5 mm"), (("clearance", "M5"), True, "drill 7/32"),
+        (("clearance", "1/4"), False, "drill 9/32 (7.142 mm)"), (("clearance", "1/4"), True, "drill 9/32"),
+        (("ream", "8 H7"), False, "drill 7.7 mm"), (("ream", "8 H7"), True, "drill N"),  # 0.302 in, 7.671 mm
+        (("drill", "6.5"), True, "drill F"), (("drill", "#7"), False, "drill #7"),
+        (("drill", "6.5"), False, "drill 6.5 mm"),
+    ],
+)  # fmt: skip
+def test_drills_are_named_as_the_shop_has_them(asked, inch, tool):
+    steps = steps_of(plate(100, 50, (30, 25, 1.1)), work(*asked, hole_mm=1.1), inch=inch, thickness=1.5)
+    assert one(steps, K.DRILL).tool == tool
+
+
 # ---------------------------------------------------------------- fits
 
 
@@ -306,7 +325,7 @@ def test_a_thread_far_from_the_bend_is_cut_before():
 def test_a_bend_tells_its_figures():
     bend = one(steps_of(BENT, bends=(BEND,)), K.BEND)
     assert (bend.size, bend.count, bend.at) == ("90° r 3", 1, ((50.0, 30.0),))
-    assert "allowance 6.24, deduction 5.76 mm by DIN 6935" in bend.note
+    assert "allowance 6.24 mm, deduction 5.76 mm by DIN 6935" in bend.note
     assert "K 0.42 to 0.47" in bend.note
     assert "springs back 1 to 2° of 90" in bend.note
 
