@@ -4,6 +4,7 @@ from collections.abc import Iterator
 
 from flatprep.model.drawing import Part, Role, Text
 from flatprep.model.finding import Finding, Severity
+from flatprep.practice.callouts import parse_callouts
 from flatprep.rules.base import Context, Rule
 
 
@@ -14,7 +15,7 @@ def check(ctx: Context) -> Iterator[Finding]:
     elsewhere: list[Text] = []
     for text in ctx.drawing.texts:
         home = next((p.name for p in ctx.drawing.parts if _over(p, text)), None)
-        if home is None or roles.get(text.layer, Role.CUT) is not Role.CUT:
+        if home is None or roles.get(text.layer, Role.CUT) is not Role.CUT or _annotates(ctx, text):
             elsewhere.append(text)
         else:
             on_part.setdefault(home, []).append(text)
@@ -22,6 +23,11 @@ def check(ctx: Context) -> Iterator[Finding]:
         yield _told(Severity.WARNING, texts, "stands as text on the part and will not be cut", name)
     if elsewhere:
         yield _told(Severity.NOTE, elsewhere, "is taken as a note, not cut", None)
+
+
+def _annotates(ctx: Context, text: Text) -> bool:
+    """Tell whether a text speaks of the part instead of being cut into it: it has a leader, or calls out a hole."""
+    return bool(text.points_to) or bool(parse_callouts(text.text, ctx.drawing.units))
 
 
 def _over(part: Part, text: Text) -> bool:

@@ -247,3 +247,16 @@ def test_without_a_job_and_without_callouts_nothing_is_said():
     ctx = context(part, process=LASER, material=load_material("mild-steel"), thickness=3.0)
     for rule in ("tap-hole-size", "thread-engagement", "bore-size", "countersink-too-deep", "unclear-hole"):
         assert not found(rule, ctx)
+
+
+@pytest.mark.parametrize(
+    ("text", "severity"),
+    [
+        (Text("4x M5", (54, 52), "0", "1", 3.0), Severity.NOTE),
+        (Text("NO 7", (54, 52), "0", "1", 3.0), Severity.WARNING),
+        (Text("polish", (54, 52), "0", "1", 3.0, ((60, 60),)), Severity.NOTE),
+    ],
+    ids=["callout", "lettering", "leader"],
+)  # fmt: skip
+def test_a_callout_on_the_part_is_not_lettering_that_was_forgotten(text, severity):
+    assert only(findings("text-not-outlined", [], texts=(text,))).severity is severity
