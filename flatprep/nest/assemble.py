@@ -74,11 +74,12 @@ def used_length(sheet: FilledSheet, margin_mm: float) -> float:
     """Length along x from the sheet's left end to the last piece and its margin; at most the whole sheet."""
     reach = max(bulge.bounds(s.motion.polyline(s.item.part.outer.xyb), closed=True)[2] for s in sheet.spots)
     stock = sheet.stock
+    end = reach + stock.margins(margin_mm)[1]
     if is_open(stock):
-        return reach + margin_mm
+        return end
     edge = border(stock, 0.0)
     left, right = float(edge[:, 0].min()), float(edge[:, 0].max())
-    return min(reach + margin_mm, right) - left
+    return min(end, right) - left
 
 
 def parts_by_name(items: Sequence[Item]) -> dict[str, Part]:

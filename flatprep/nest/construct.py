@@ -14,7 +14,7 @@ import shapely
 from shapely.geometry import Polygon
 
 from flatprep.geom.bulge import Floats, Similarity
-from flatprep.nest.prepare import clipped, simple_ring
+from flatprep.nest.prepare import clipped, region_of, simple_ring
 from flatprep.nest.shapes import Container, Place, Shape
 from flatprep.nest.slide import Bed, best_row, contact_rows, grid_rows, settle
 from flatprep.nest.trapezoids import Cuts, cut_up
@@ -29,10 +29,17 @@ COARSE_SHARE = 0.01
 
 @dataclass(frozen=True, slots=True)
 class Bin:
-    """A container and the turns each shape may have in it: None for any, empty where it may not lie there."""
+    """A container and the turns each shape may have in it: None for any, empty where it may not lie there.
+
+    Attributes
+    ----------
+    blocked : tuple of ndarray, shape (m, 2)
+        Rings (even-odd) of what already lies there, windows included.
+    """
 
     container: Container
     turns: tuple[tuple[float, ...] | None, ...]
+    blocked: tuple[Floats, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -81,7 +88,7 @@ class Layer:
         self.shapes = tuple(shapes)
         self.bins = tuple(bins)
         self.variants, self._of_bin = _variants(self.shapes, self.bins)
-        walls = [_wall(b.container) for b in self.bins]
+        walls = [[*_wall(b.container), *b.blocked] for b in self.bins]
         moves = [Similarity(turn_deg=v.turn_deg, mirrored=v.mirrored) for v in self.variants]
         outlines = [(coarse_rings if coarse else fine_rings)(s) for s in self.shapes]
         rings = [
@@ -240,9 +247,6 @@ def least_box_turn(ring: Floats) -> float:
 
 def _wall(container: Container) -> list[Floats]:
     """Rings of what a container's box holds beside the container: nothing for a plain rectangle."""
-    region = Polygon(container.outer, list(container.holes))
-    if not region.is_valid:
-        region = Polygon(container.outer).difference(shapely.union_all([Polygon(h) for h in container.holes]))
-    rest = shapely.box(*Polygon(container.outer).bounds).difference(region)
+    rest = shapely.box(*Polygon(container.outer).bounds).difference(region_of(container))
     pieces = [p for p in getattr(rest, "geoms", [rest]) if isinstance(p, Polygon) and p.area > 1e-9]
     return [np.asarray(r.coords)[:-1] for p in pieces for r in (p.exterior, *p.interiors)]

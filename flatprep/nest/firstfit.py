@@ -7,7 +7,7 @@ import numpy as np
 from shapely.geometry import Polygon
 
 from flatprep.model.layout import Unplaced
-from flatprep.nest.assemble import FilledSheet, used_length
+from flatprep.nest.assemble import FilledSheet, Spot, used_length
 from flatprep.nest.construct import Bin, Laid, Layer
 from flatprep.nest.group import Group
 from flatprep.nest.objective import SheetUse, Value, value
@@ -29,6 +29,8 @@ class Answer:
         `container` is an index into `supply`.
     supply : tuple of int
         Kind of each sheet taken: all of them carry something.
+    fillers : tuple of tuple of Spot
+        Further pieces on each sheet, laid where room was left.
     """
 
     group: Group
@@ -36,11 +38,15 @@ class Answer:
     supply: tuple[int, ...]
     unplaced: tuple[Unplaced, ...]
     value: Value
+    fillers: tuple[tuple[Spot, ...], ...] = ()
 
     @property
     def sheets(self) -> tuple[FilledSheet, ...]:
         """True parts on their sheets."""
-        return self.group.filled(self.places, self.supply)
+        filled = self.group.filled(self.places, self.supply)
+        if not self.fillers:
+            return filled
+        return tuple(FilledSheet(f.stock, (*f.spots, *more)) for f, more in zip(filled, self.fillers, strict=True))
 
 
 def first_answers(group: Group, margin_mm: float, stop: Callable[[], bool]) -> Iterator[Answer]:
@@ -76,14 +82,17 @@ def first_answers(group: Group, margin_mm: float, stop: Callable[[], bool]) -> I
 
 
 def answer_of(group: Group, places: Sequence[Place], supply: Sequence[int], margin_mm: float) -> Answer:
-    """Answer from places: sheets that carry nothing dropped, the pieces that are missing listed with the reason."""
-    used = sorted({p.container for p in places})
-    number = {n: i for i, n in enumerate(used)}
+    """Answer from places: sheets that carry nothing dropped, kept ones first, missing pieces listed with the reason."""
+    begun = [k for k, kept in enumerate(group.kept) if kept and k not in supply]
+    supply = (*supply, *begun)
+    used = {p.container for p in places} | {n for n, kind in enumerate(supply) if group.kept[kind]}
+    ordered = sorted(used, key=lambda n: (not group.kept[supply[n]], n))
+    number = {n: i for i, n in enumerate(ordered)}
     kept = tuple(
         Place(p.shape, number[p.container], p.turn_deg, p.mirrored, p.x, p.y)
-        for p in sorted(places, key=lambda p: (p.container, p.shape))
+        for p in sorted(places, key=lambda p: (number[p.container], p.shape))
     )
-    kinds = tuple(supply[n] for n in used)
+    kinds = tuple(supply[n] for n in ordered)
     sheets = group.filled(kept, kinds)
     uses = [SheetUse(s.stock, used_length(s, margin_mm)) for s in sheets]
     counts = [s.count for s in group.shapes]
@@ -124,7 +133,7 @@ def _with_extra_turns(group: Group) -> Group:
             extra_turn(s, t, kind.container) if t is None else t for s, t in zip(group.shapes, kind.turns, strict=True)
         ]
         bins.append(Bin(kind.container, tuple(turns)))
-    return Group(group.stock, tuple(bins), group.shapes, group.owner)
+    return Group(group.stock, tuple(bins), group.shapes, group.owner, group.kept)
 
 
 __all__ = ["Answer", "Laid", "answer_of", "first_answers", "piece_orders"]

@@ -11,6 +11,7 @@ from flatprep.model.layout import Unplaced
 from flatprep.nest.allowed import hands, matches, turns_on, why_no_stock
 from flatprep.nest.assemble import FilledSheet, Spot, spot
 from flatprep.nest.construct import Bin
+from flatprep.nest.keep import Supply, room_left
 from flatprep.nest.objective import is_open
 from flatprep.nest.prepare import Grown, container_of, grow
 from flatprep.nest.problem import Item, NestAsk, StockSheet
@@ -30,12 +31,15 @@ class Group:
         One for each item and hand.
     owner : tuple of (Item, Grown)
         What each shape stands for.
+    kept : tuple of tuple of Spot
+        What already lies on each kind of stock.
     """
 
     stock: tuple[StockSheet, ...]
     bins: tuple[Bin, ...]
     shapes: tuple[Shape, ...]
     owner: tuple[tuple[Item, Grown], ...]
+    kept: tuple[tuple[Spot, ...], ...]
 
     @property
     def pieces(self) -> int:
@@ -43,22 +47,24 @@ class Group:
         return sum(s.count for s in self.shapes)
 
     def filled(self, places: Sequence[Place], supply: Sequence[int]) -> tuple[FilledSheet, ...]:
-        """Sheets with true parts, those of `supply` that carry something, in its order."""
+        """Sheets of `supply` with true parts on them, in its order."""
         spots: dict[int, list[Spot]] = {}
         for p in places:
             item, grown = self.owner[p.shape]
             motion = Similarity(turn_deg=p.turn_deg, dx=p.x, dy=p.y, mirrored=p.mirrored)
             spots.setdefault(p.container, []).append(spot(item, grown.centre, motion))
-        return tuple(FilledSheet(self.stock[supply[n]], tuple(spots[n])) for n in sorted(spots))
+        return tuple(
+            FilledSheet(self.stock[kind], (*self.kept[kind], *spots.get(n, ()))) for n, kind in enumerate(supply)
+        )
 
 
-def split(ask: NestAsk) -> tuple[list[tuple[Item, ...]], list[Unplaced]]:
+def split(items: Sequence[Item], stock: Sequence[StockSheet]) -> tuple[list[tuple[Item, ...]], list[Unplaced]]:
     """Sort items by material and thickness; those that no stock may carry come back with the reason."""
     groups: list[list[Item]] = []
     unplaced = []
-    for item in ask.items:
+    for item in items:
         count = item.quantity + item.quantity_opposite
-        why = why_no_stock(item, ask.stock) if count else None
+        why = why_no_stock(item, stock) if count else None
         if count == 0:
             continue
         if why is not None:
@@ -74,8 +80,8 @@ def split(ask: NestAsk) -> tuple[list[tuple[Item, ...]], list[Unplaced]]:
     return [tuple(group) for group in groups], unplaced
 
 
-def prepare_group(items: Sequence[Item], ask: NestAsk) -> Group:
-    """Grow the parts, shrink the stock, resolve turns against the grain."""
+def prepare_group(items: Sequence[Item], supplies: Sequence[Supply], ask: NestAsk) -> Group:
+    """Grow the parts, shrink the stock, take kept parts off it, resolve turns against the grain."""
     owner: list[tuple[Item, Grown]] = []
     shapes: list[Shape] = []
     for item in items:
@@ -85,17 +91,26 @@ def prepare_group(items: Sequence[Item], ask: NestAsk) -> Group:
             shapes.append(Shape(grown.outer, grown.holes, item.turns_deg, states, count))
     shapes = [_useful_windows(s, shapes) for s in shapes]
     longest = sum(s.count * float(np.hypot(*np.ptp(s.outer, axis=0))) for s in shapes) + 2.0 * ask.margin_mm
-    kinds, bins = [], []
-    for stock in ask.stock:
+    kinds, bins, kept = [], [], []
+    for supply in supplies:
+        stock = supply.stock
         if stock.count == 0 or not any(matches(item, stock) for item in items):
             continue
         try:
             container = container_of(stock, ask.margin_mm, ask.spacing_mm, longest if is_open(stock) else None)
+            container = room_left(container, supply, ask.items, ask.spacing_mm)
         except ValueError:
             continue
         kinds.append(stock)
+        kept.append(kept_spots(supply, ask.items))
         bins.append(Bin(container, tuple(turns_on(item, stock) for item, _ in owner)))
-    return Group(tuple(kinds), tuple(bins), tuple(shapes), tuple(owner))
+    return Group(tuple(kinds), tuple(bins), tuple(shapes), tuple(owner), tuple(kept))
+
+
+def kept_spots(supply: Supply, items: Sequence[Item]) -> tuple[Spot, ...]:
+    """Pieces that already lie on a sheet."""
+    named = {item.name: item for item in items}
+    return tuple(Spot(named[p.part], p.motion) for p in supply.kept)
 
 
 def _useful_windows(shape: Shape, others: Sequence[Shape]) -> Shape:

@@ -76,15 +76,23 @@ def container_of(sheet: StockSheet, margin_mm: float, spacing_mm: float, length_
     ValueError
         When nothing of the sheet is left.
     """
-    inset = margin_mm - spacing_mm / 2.0
+    half = spacing_mm / 2.0
     rectangle = rectangle_of(sheet, length_mm)
-    if rectangle is not None and not sheet.holes:
-        x0, y0, x1, y1 = rectangle
-        x0, y0, x1, y1 = x0 + inset, y0 + inset, x1 - inset, y1 - inset
-        if x1 - x0 <= 0.0 or y1 - y0 <= 0.0:
-            raise ValueError("the margin leaves nothing of the sheet")
-        return Container(np.array([[x0, y0], [x1, y0], [x1, y1], [x0, y1]]))
-    return _region_container(usable_region(sheet, max(inset, 0.0)))
+    if rectangle is None or sheet.holes:
+        return region_container(_without(usable_region(sheet, max(margin_mm - half, 0.0)), sheet.keep_out))
+    x0, y0, x1, y1 = rectangle
+    left, right, bottom, top = sheet.margins(margin_mm)
+    x0, y0, x1, y1 = x0 + left - half, y0 + bottom - half, x1 - right + half, y1 - top + half
+    if x1 - x0 <= 0.0 or y1 - y0 <= 0.0:
+        raise ValueError("the margin leaves nothing of the sheet")
+    if sheet.keep_out:
+        return region_container(_without(shapely.box(x0, y0, x1, y1), sheet.keep_out))
+    return Container(np.array([[x0, y0], [x1, y0], [x1, y1], [x0, y1]]))
+
+
+def _without(region: Polygon | MultiPolygon, boxes: Sequence[Sequence[float]]) -> Polygon | MultiPolygon:
+    """Region without the boxes that nothing may lie in."""
+    return region.difference(shapely.union_all([shapely.box(*b) for b in boxes])) if boxes else region
 
 
 def rectangle_of(sheet: StockSheet, length_mm: float | None = None) -> tuple[float, float, float, float] | None:
@@ -116,7 +124,20 @@ def _rectangle_points(sheet: StockSheet) -> Floats:
     return np.array([[0.0, 0.0], [length, 0.0], [length, sheet.width_mm], [0.0, sheet.width_mm]])
 
 
-def _region_container(region: Polygon | MultiPolygon) -> Container:
+def region_of(container: Container) -> Polygon | MultiPolygon:
+    """Region of a container as shapely sees it."""
+    whole = Polygon(container.outer)
+    return whole.difference(shapely.union_all([Polygon(h) for h in container.holes])) if container.holes else whole
+
+
+def region_container(region: Polygon | MultiPolygon) -> Container:
+    """Container of a region that may be in several pieces.
+
+    Raises
+    ------
+    ValueError
+        When the region is empty.
+    """
     if region.is_empty:
         raise ValueError("the margin leaves nothing of the sheet")
     if isinstance(region, Polygon):

@@ -4,6 +4,7 @@ from dataclasses import dataclass
 
 from flatprep.geom.bulge import Floats
 from flatprep.model.drawing import Part
+from flatprep.model.layout import Placement
 
 
 @dataclass(frozen=True, slots=True)
@@ -22,6 +23,8 @@ class Item:
         Any piece may be mirrored to save material.
     grain : str or None
         ``x`` or ``y``: this direction of the drawing lies along the stock's grain.
+    filler : bool
+        Laid where room is left when all else lies; never costs a sheet, nor length of the last one.
     """
 
     part: Part
@@ -32,6 +35,7 @@ class Item:
     turns_deg: tuple[float, ...] | None = None
     may_flip: bool = False
     grain: str | None = None
+    filler: bool = False
 
     @property
     def name(self) -> str:
@@ -52,6 +56,10 @@ class StockSheet:
         Along x; None for open length.
     count : int or None
         None for any number.
+    margins_mm : (float, float, float, float) or None
+        Left, right, bottom, top, where they differ from the job's margin; for rectangles and open length.
+    keep_out : tuple of (x0, y0, x1, y1)
+        Boxes (clamps, screws) that nothing may lie in, mm.
     """
 
     name: str
@@ -65,17 +73,44 @@ class StockSheet:
     price: float | None = None
     price_per_metre: float | None = None
     grain: str | None = None
+    margins_mm: tuple[float, float, float, float] | None = None
+    keep_out: tuple[tuple[float, float, float, float], ...] = ()
+
+    def margins(self, margin_mm: float) -> tuple[float, float, float, float]:
+        """Return the margins in force (left, right, bottom, top) where the job's is `margin_mm`."""
+        return self.margins_mm or (margin_mm, margin_mm, margin_mm, margin_mm)
+
+
+@dataclass(frozen=True, slots=True)
+class KeptSheet:
+    """A sheet whose placements stay as they are: it is cut already, or was laid by hand.
+
+    Attributes
+    ----------
+    stock : str
+        The name of its stock; one sheet of it is taken.
+    """
+
+    stock: str
+    placements: tuple[Placement, ...]
 
 
 @dataclass(frozen=True, slots=True)
 class NestAsk:
-    """A whole nest: several materials and thicknesses nest apart in one run."""
+    """A whole nest: several materials and thicknesses nest apart in one run.
+
+    Attributes
+    ----------
+    keep : tuple of KeptSheet
+        Placements that stay; the rest of the quantities is nested around them.
+    """
 
     items: tuple[Item, ...]
     stock: tuple[StockSheet, ...]
     spacing_mm: float
     margin_mm: float
     windows: bool = True
+    keep: tuple[KeptSheet, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

@@ -8,13 +8,16 @@ from math import sqrt
 
 from flatprep.base.progress import Progress, Silent
 from flatprep.model.layout import Layout, Unplaced
-from flatprep.nest.assemble import layout_of
+from flatprep.nest.allowed import matches
+from flatprep.nest.assemble import FilledSheet, Spot, layout_of
 from flatprep.nest.clock import Clock
+from flatprep.nest.fill import NO_ROOM, fill
 from flatprep.nest.firstfit import Answer, first_answers
-from flatprep.nest.group import Group, prepare_group, split
+from flatprep.nest.group import kept_spots, prepare_group, split
 from flatprep.nest.improve import Effort, improve
+from flatprep.nest.keep import KeepError, left_to_lay
 from flatprep.nest.problem import Budget, NestAsk
-from flatprep.nest.verify import verify
+from flatprep.nest.verify import LayoutFault, verify
 
 USUAL, QUIET = Budget(), Silent()
 FIRST_SHARE = 0.2
@@ -58,42 +61,91 @@ def nest(
     """
     if ask.spacing_mm < 0.0 or ask.margin_mm < 0.0:
         raise ValueError("spacing and margin must not be negative")
-    item_groups, hopeless = split(ask)
-    groups = [prepare_group(items, ask) for items in item_groups]
-    job = _Job(ask, hopeless, progress, on_better, stop)
-    job.lay_first(groups, budget)
+    job = _Job(ask, stop, _Reporter(progress, on_better))
+    job.lay_first(budget)
     job.improve(budget)
-    return job.layout()
+    job.fill()
+    layout = job.layout()
+    _refuse(verify(layout, ask))
+    return layout
+
+
+class _Reporter:
+    """Tells of better layouts: a line for people, the layout for whoever asked for it."""
+
+    def __init__(self, progress: Progress, on_better: Callable[[Layout], None] | None) -> None:
+        self.progress, self._on_better = progress, on_better
+        self._started = time.monotonic()
+
+    def tell(self, layout: Layout) -> None:
+        """Tell of a layout."""
+        used = len(layout.sheets)
+        last = f", the last used to {layout.sheets[-1].used_length_mm:.0f} mm" if used else ""
+        elapsed = time.monotonic() - self._started
+        self.progress.update(f"{used} sheet{'s' if used != 1 else ''}{last}", done=elapsed)
+        if self._on_better is not None:
+            self._on_better(layout)
 
 
 class _Job:
-    """The best answers so far of all groups of a job."""
+    """The best answers so far of all groups of a job.
 
-    def __init__(
-        self,
-        ask: NestAsk,
-        hopeless: Sequence[Unplaced],
-        progress: Progress,
-        on_better: Callable[[Layout], None] | None,
-        stop: Callable[[], bool],
-    ) -> None:
-        self._stopped = stop
-        self._ask, self._hopeless, self._progress, self._on_better = ask, hopeless, progress, on_better
+    Raises
+    ------
+    KeepError
+        When what is to be kept does not go with the job, or is not sound in itself.
+    """
+
+    def __init__(self, ask: NestAsk, stop: Callable[[], bool], reporter: _Reporter) -> None:
+        self._ask, self._stopped, self._reporter = ask, stop, reporter
         self._started = time.monotonic()
+        items, supplies = left_to_lay(ask)
+        stock = [s.stock for s in supplies]
+        main, self._hopeless = split([i for i in items if not i.filler], stock)
+        fillers, self._left = split([i for i in items if i.filler], stock)
+        self._groups = [prepare_group(group, supplies, ask) for group in main]
+        self._fillers = [prepare_group(group, supplies, ask) for group in fillers]
+        self._left += [Unplaced(i.name, i.quantity + i.quantity_opposite, NO_ROOM) for group in fillers for i in group]
+        used = [s for group in self._groups for s in group.stock]
+        self._idle = [
+            FilledSheet(s.stock, kept_spots(s, ask.items))
+            for s in supplies
+            if s.kept and not any(s.stock is other for other in used)
+        ]
         self._answers: list[Answer] = []
+        _refuse_unsound_keep(ask)
 
     def layout(self) -> Layout:
         """Layout of the whole job as it is."""
-        return whole(self._ask, self._answers, self._hopeless)
+        sheets = [*self._idle, *(sheet for answer in self._answers for sheet in answer.sheets)]
+        unplaced = [*self._hopeless, *(u for answer in self._answers for u in answer.unplaced), *self._left]
+        return layout_of(self._ask, sheets, merged(unplaced))
 
-    def lay_first(self, groups: Sequence[Group], budget: Budget) -> None:
+    def fill(self) -> None:
+        """Lay the fillers, at the very end."""
+        for group in self._fillers:
+            for number, answer in enumerate(self._answers):
+                if answer.supply and any(matches(group.owner[0][0], s) for s in answer.group.stock):
+                    names = {item.name for item, _ in group.owner}
+                    filled, left = fill(answer, group, self._ask)
+                    if _faults(self._ask, filled, left):
+                        continue
+                    self._answers[number] = filled
+                    self._left = [u for u in self._left if u.part not in names] + list(left)
+        if self._fillers:
+            self._reporter.tell(self.layout())
+
+    def lay_first(self, budget: Budget) -> None:
         """Lay every group by the constructive rule; tell of the job's first full layout, then of better ones."""
         until = self._started + budget.seconds * FIRST_SHARE
+        groups = self._groups
         every = [first_answers(group, self._ask.margin_mm, self._stop(until, budget)) for group in groups]
         for number, answers in enumerate(every, start=1):
-            self._progress.update("first layout", done=number, total=len(groups))
-            self._answers.append(_sound(self._ask, next(answers), None))
-        self._tell()
+            self._reporter.progress.update("first layout", done=number, total=len(groups))
+            first = next(answers)
+            _refuse(_faults(self._ask, first, ()))
+            self._answers.append(first)
+        self._reporter.tell(self.layout())
         for number, answers in enumerate(every):
             for answer in answers:
                 self._take(number, answer)
@@ -115,18 +167,9 @@ class _Job:
     def _take(self, number: int, answer: Answer) -> None:
         """Note a better answer of a group if it is sound, and tell of the layout."""
         before = self._answers[number]
-        if answer.value < before.value and _sound(self._ask, answer, before) is answer:
+        if answer.value < before.value and not _faults(self._ask, answer, ()):
             self._answers[number] = answer
-            self._tell()
-
-    def _tell(self) -> None:
-        layout = self.layout()
-        used = len(layout.sheets)
-        last = f", the last used to {layout.sheets[-1].used_length_mm:.0f} mm" if used else ""
-        elapsed = time.monotonic() - self._started
-        self._progress.update(f"{used} sheet{'s' if used != 1 else ''}{last}", done=elapsed)
-        if self._on_better is not None:
-            self._on_better(layout)
+            self._reporter.tell(self.layout())
 
     def _stop(self, until: float, budget: Budget) -> Callable[[], bool]:
         """Whether the constructive rule has had its time; with a budget in steps the clock is not looked at."""
@@ -144,13 +187,6 @@ def difficulty(answer: Answer) -> float:
     return sum(count * sqrt(len(shapes[s].outer) + sum(map(len, shapes[s].holes))) for s, count in laid.items())
 
 
-def whole(ask: NestAsk, answers: Sequence[Answer], hopeless: Sequence[Unplaced]) -> Layout:
-    """Put the answers of all groups together to the layout of the job."""
-    sheets = [sheet for answer in answers for sheet in answer.sheets]
-    unplaced = [*hopeless, *(u for answer in answers for u in answer.unplaced)]
-    return layout_of(ask, sheets, merged(unplaced))
-
-
 def merged(unplaced: Sequence[Unplaced]) -> list[Unplaced]:
     """One entry a part: both hands of a pair may be left out."""
     found: dict[str, Unplaced] = {}
@@ -161,19 +197,25 @@ def merged(unplaced: Sequence[Unplaced]) -> list[Unplaced]:
     return list(found.values())
 
 
-def _sound(ask: NestAsk, answer: Answer, before: Answer | None) -> Answer:
-    """Return the answer if it is sound, else the one before.
+def _faults(ask: NestAsk, answer: Answer, fillers_left: Sequence[Unplaced]) -> tuple[LayoutFault, ...]:
+    """Verify one group's sheets; whether all pieces are there only the whole layout tells."""
+    alone = layout_of(ask, answer.sheets, merged([*answer.unplaced, *fillers_left]))
+    return tuple(f for f in verify(alone, ask) if f.kind != "count")
 
-    Raises
-    ------
-    RuntimeError
-        When the first answer of a group is not sound: a mistake of this program, never to be written out.
-    """
-    items = tuple(dict.fromkeys(item for item, _ in answer.group.owner))
-    alone = NestAsk(items, answer.group.stock, ask.spacing_mm, ask.margin_mm, ask.windows)
-    faults = verify(whole(alone, [answer], []), alone)
-    if not faults:
-        return answer
-    if before is None:
+
+def _refuse(faults: Sequence[LayoutFault]) -> None:
+    """Stop at a first layout that is not sound: a mistake of this program, never to be written out."""
+    if faults:
         raise RuntimeError(f"a layout that is not sound: {faults[0].message}")
-    return before
+
+
+def _refuse_unsound_keep(ask: NestAsk) -> None:
+    """Name what is wrong with kept sheets before anything is laid around them."""
+    if not ask.keep:
+        return
+    items, stock = {i.name: i for i in ask.items}, {s.name: s for s in ask.stock}
+    sheets = [FilledSheet(stock[k.stock], tuple(Spot(items[p.part], p.motion) for p in k.placements)) for k in ask.keep]
+    faults = [f for f in verify(layout_of(ask, sheets, []), ask) if f.kind != "count"]
+    if faults:
+        more = f" and {len(faults) - 1} more" if len(faults) > 1 else ""
+        raise KeepError(f"the kept layout is not sound: {faults[0].message}{more}", "mend the kept layout first")

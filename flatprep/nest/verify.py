@@ -38,8 +38,8 @@ class LayoutFault:
     Attributes
     ----------
     kind : str
-        ``overlap``, ``spacing``, ``margin``, ``window``, ``turn``, ``grain``, ``flip``, ``count``, ``stock``,
-        ``border``, ``figure``.
+        ``overlap``, ``spacing``, ``margin``, ``keep-out``, ``window``, ``turn``, ``grain``, ``flip``, ``count``,
+        ``stock``, ``border``, ``figure``.
     message : str
     sheet : int or None
         From 1.
@@ -80,11 +80,15 @@ def _sheet_faults(
         yield LayoutFault("figure", f"sheet {number}: a placement that is no finite number", number)
         return
     laid = _Laid(sheet, items)
-    yield from laid.margin_faults(number, ask.margin_mm)
+    if stock.margins_mm is None:
+        yield from laid.margin_faults(number, ask.margin_mm)
+    else:
+        yield from laid.side_faults(number, stock.margins_mm)
+    yield from laid.keep_out_faults(number, stock.keep_out)
     yield from laid.gap_faults(number, ask.spacing_mm)
     if not ask.windows:
         yield from laid.window_faults(number)
-    yield from laid.figure_faults(number, ask.margin_mm)
+    yield from laid.figure_faults(number, stock.margins(ask.margin_mm)[1])
 
 
 class _Laid:
@@ -115,6 +119,30 @@ class _Laid:
                 where = "reaches beyond the border" if gap < 0.0 else f"is {gap:.3f} mm from the border"
                 text = f"sheet {number}: {who[0]} {where}, the margin is {margin_mm:g} mm"
                 yield LayoutFault("margin", text, number, who, gap, margin_mm)
+
+    def side_faults(self, number: int, margins_mm: tuple[float, float, float, float]) -> Iterator[LayoutFault]:
+        """Pieces nearer to a side of a rectangle than the margin of that side, on the exact arcs."""
+        x0, y0, x1, y1 = self.stock.bounds
+        for k, (part, p) in enumerate(zip(self.parts, self.sheet.placements, strict=True)):
+            left, low, right, high = bulge.bounds(p.motion.polyline(part.outer.xyb), closed=True)
+            gaps = (left - x0, x1 - right, low - y0, y1 - high)
+            for side, gap, margin in zip(("left", "right", "lower", "upper"), gaps, margins_mm, strict=True):
+                if gap < margin - SLACK_MM:
+                    who = self._names(k)
+                    text = f"sheet {number}: {who[0]} is {gap:.3f} mm from the {side} side, the margin is {margin:g} mm"
+                    yield LayoutFault("margin", text, number, who, gap, margin)
+
+    def keep_out_faults(self, number: int, boxes: Sequence[tuple[float, float, float, float]]) -> Iterator[LayoutFault]:
+        """Pieces that lie in a box where nothing may lie."""
+        for k, piece in enumerate(self.bodies):
+            for box in boxes:
+                if (
+                    clearance(piece, shapely.box(*box)) < 0.0
+                    and clearance(self._body(k, CHORDS_MM[-1]), shapely.box(*box)) < 0.0
+                ):
+                    who = self._names(k)
+                    text = f"sheet {number}: {who[0]} lies where nothing may lie ({box[0]:g}, {box[1]:g})"
+                    yield LayoutFault("keep-out", text, number, who)
 
     def gap_faults(self, number: int, spacing_mm: float) -> Iterator[LayoutFault]:
         """Pairs that overlap or are nearer than the spacing."""
