@@ -1,6 +1,6 @@
 """Run the command line with ``python -m flatprep``."""
 
-from flatprep.cli.main import main
+from flatprep.cli.start import main
 
 if __name__ == "__main__":
     main()

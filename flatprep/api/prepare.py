@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from flatprep import __version__
-from flatprep.api.nest import Nested, Stop, nest_job, never, write_layout
+from flatprep.api.nest import Nested, OnBetter, Stop, nest_job, never, write_layout
 from flatprep.api.pieces import Piece, ReadJob, quantity
 from flatprep.api.work import checklist_job, estimate_job
 from flatprep.base.files import make_folder, write_whole
@@ -53,9 +53,14 @@ class Prepared:
 
 
 def prepare_job(
-    read: ReadJob, budget: Budget, *, progress: Progress | None = None, stop: Stop | None = None
+    read: ReadJob,
+    budget: Budget,
+    *,
+    progress: Progress | None = None,
+    on_better: OnBetter | None = None,
+    stop: Stop = never,
 ) -> Prepared:
-    """Check, nest, list the bench work and estimate a job.
+    """Check, nest, list the bench work and estimate a job; `on_better` and `stop` as for `nest_job`.
 
     Raises
     ------
@@ -68,10 +73,12 @@ def prepare_job(
 
     def better(layout: Layout) -> None:
         points.append(_point(layout, time.monotonic() - began))
+        if on_better is not None:
+            on_better(layout)
 
     nested = None
     if read.job.stock:
-        nested = nest_job(read, budget, progress=progress, on_better=better, stop=stop or never)
+        nested = nest_job(read, budget, progress=progress, on_better=better, stop=stop)
     money = estimate_job(read, nested.layout if nested else None)
     return Prepared(read, steps, money, nested, _bundle(read, steps, money, nested, points))
 

@@ -3,7 +3,7 @@
 import os
 import tempfile
 from collections.abc import Iterator
-from contextlib import contextmanager
+from contextlib import contextmanager, suppress
 from pathlib import Path
 
 from flatprep.base.errors import OutputError
@@ -12,6 +12,8 @@ try:
     import fcntl
 except ImportError:  # pragma: no cover - not on every system
     fcntl = None  # type: ignore[assignment]
+
+_ASIDE, _PART = ".flatprep-", ".part"
 
 
 def write_whole(path: Path, data: str | bytes) -> None:
@@ -22,22 +24,25 @@ def write_whole(path: Path, data: str | bytes) -> None:
     OutputError
         When the folder or the file cannot be written; an older file then stays as it was.
     """
-    raw = data.encode() if isinstance(data, str) else data
+    raw = data.encode("utf-8", "replace") if isinstance(data, str) else data
     aside = None
     try:
-        handle, aside = tempfile.mkstemp(prefix=".", suffix=".part", dir=path.parent)
+        handle, aside = tempfile.mkstemp(prefix=_ASIDE, suffix=_PART, dir=path.parent)
         with os.fdopen(handle, "wb") as out:
             out.write(raw)
             out.flush()
             os.fsync(out.fileno())
         os.chmod(aside, 0o666 & ~_umask())
         os.replace(aside, path)
+        aside = None
     except OSError as err:
-        if aside is not None and os.path.exists(aside):
-            os.unlink(aside)
         raise OutputError(
             f"{path}: cannot be written ({err.strerror or err})", "choose another folder, or make room"
         ) from err
+    finally:
+        if aside is not None:
+            with suppress(OSError):
+                os.unlink(aside)
 
 
 def make_folder(path: Path) -> None:
@@ -50,7 +55,7 @@ def make_folder(path: Path) -> None:
     """
     try:
         path.mkdir(parents=True, exist_ok=True)
-        with tempfile.NamedTemporaryFile(prefix=".", suffix=".part", dir=path):
+        with tempfile.NamedTemporaryFile(prefix=_ASIDE, suffix=_PART, dir=path):
             pass
     except OSError as err:
         raise OutputError(
@@ -61,6 +66,8 @@ def make_folder(path: Path) -> None:
 @contextmanager
 def claimed(folder: Path) -> Iterator[None]:
     """Make a folder and keep other runs out of it; the claim ends with the process, however it ends.
+
+    What a run that was killed had not yet finished to write is cleared away.
 
     Raises
     ------
@@ -78,9 +85,16 @@ def claimed(folder: Path) -> Iterator[None]:
         os.close(handle)
         raise OutputError(f"{folder}: another run is writing into it", "wait for it, or choose another folder") from err
     try:
+        _clear(folder)
         yield
     finally:
         os.close(handle)
+
+
+def _clear(folder: Path) -> None:
+    for left in folder.rglob(f"{_ASIDE}*{_PART}"):
+        with suppress(OSError):
+            left.unlink()
 
 
 def _umask() -> int:

@@ -2,7 +2,9 @@
 
 import gc
 import multiprocessing
+import os
 import signal
+import threading
 import time
 from collections.abc import Callable, Iterator, Sequence
 from contextlib import suppress
@@ -123,9 +125,25 @@ class Pool(Generic[Item, Result]):
         worker.process.join()
 
 
-def _serve(pipe: Connection, work: Callable[[Any], Any], megabytes: float) -> None:
-    # the parent answers for interruptions
+def become_worker() -> None:
+    """Leave interruptions to the parent of this process, and end when it ends, however it does.
+
+    Without this a worker in the middle of its work outlives a parent that was killed.
+    """
     signal.signal(signal.SIGINT, signal.SIG_IGN)
+    signal.signal(signal.SIGTERM, signal.SIG_DFL)
+    parent = multiprocessing.parent_process()
+    if parent is not None:
+        threading.Thread(target=_end_after, args=(parent.sentinel,), daemon=True).start()
+
+
+def _end_after(sentinel: int) -> None:
+    wait([sentinel])
+    os._exit(1)
+
+
+def _serve(pipe: Connection, work: Callable[[Any], Any], megabytes: float) -> None:
+    become_worker()
     _cap_memory(megabytes)
     # reading a drawing makes many objects and hardly a cycle: looking for cycles all the time costs a tenth
     gc.disable()

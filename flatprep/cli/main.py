@@ -2,6 +2,7 @@
 
 import importlib
 import os
+import signal
 import sys
 
 import click
@@ -9,6 +10,7 @@ import click
 from flatprep import __version__
 from flatprep.base.errors import ExitStatus, FlatprepError
 from flatprep.cli import talk
+from flatprep.cli.interrupt import answer_interruptions, status_of
 
 _COMMANDS = {
     "alternatives": "what else parts could be made of: thickness, mass, cost, and whether it can be cut",
@@ -56,9 +58,9 @@ class Root(click.Group):
             if err.remedy:
                 click.echo(f"  try: {err.remedy}", err=True)
             ctx.exit(err.exit_status)
-        except KeyboardInterrupt:
+        except KeyboardInterrupt as interruption:
             click.echo("stopped", err=True)
-            ctx.exit(130)
+            ctx.exit(status_of(interruption.args[0] if interruption.args else signal.SIGINT))
         except (click.ClickException, click.exceptions.Exit, click.Abort, BrokenPipeError):
             raise
         except Exception as err:
@@ -80,6 +82,7 @@ def root() -> None:
 
 def main() -> None:
     """Run flatprep."""
+    answer_interruptions()
     # the arithmetic is small: a thread pool in every process only costs time and memory
     for name in ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS"):
         os.environ.setdefault(name, "1")

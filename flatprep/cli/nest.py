@@ -35,12 +35,16 @@ def command(
     form: str,
     said: JobOptions,
 ) -> None:
-    """Lay a job's parts on its stock; writes layout.json and a DXF and SVG for each sheet."""
+    """Lay a job's parts on its stock; writes layout.json and a DXF and SVG for each sheet.
+
+    Stopped by SIGINT or SIGTERM it writes the best layout so far and ends with 130 or 143; before there is a first
+    one, it leaves the folder as it was.
+    """
     job = load_job(job_file, said)
     with claimed(folder), progress_line() as progress:
         read = read_drawings(job, budget.jobs, progress)
         with stoppable() as stop:
-            nested = nest_job(read, budget, progress=progress, stop=stop)
+            nested = nest_job(read, budget, progress=progress, on_better=stop.keep, stop=stop)
             for warning in nested.warnings:
                 warn(warning)
             write_layout(nested, folder)

@@ -39,8 +39,8 @@ def command(
 ) -> None:
     """Check, nest, list the bench work and estimate a job, all into one folder with report.html.
 
-    Ends with 0 when there is nothing to look at, else 1; stopped by SIGINT or SIGTERM it writes the best layout so far
-    and ends with 130 or 143.
+    Ends with 0 when there is nothing to look at, else 1. Stopped by SIGINT or SIGTERM it writes the best layout so far
+    and ends with 130 or 143; before there is a first one, it leaves the folder as it was.
     """
     if not watch:
         ctx.exit(_once(job_file, folder, budget, said))
@@ -61,7 +61,7 @@ def _once(job_file: Path, folder: Path, budget: Budget, said: JobOptions) -> int
     with claimed(folder), progress_line() as progress:
         read = read_drawings(job, budget.jobs, progress)
         with stoppable() as stop:
-            done = prepare_job(read, budget, progress=progress, stop=stop)
+            done = prepare_job(read, budget, progress=progress, on_better=stop.keep, stop=stop)
             for warning in done.nested.warnings if done.nested else ():
                 warn(warning)
             write_prepared(done, folder)

@@ -35,6 +35,48 @@ def test_failure_leaves_the_older_file_and_nothing_else(tmp_path, monkeypatch):
     assert list(tmp_path.iterdir()) == [path]
 
 
+def test_interruption_while_writing_leaves_the_older_file_and_nothing_else(tmp_path, monkeypatch):
+    path = tmp_path / "a.txt"
+    write_whole(path, "old")
+
+    def interrupted(_handle):
+        raise KeyboardInterrupt
+
+    monkeypatch.setattr(os, "fsync", interrupted)
+    with pytest.raises(KeyboardInterrupt):
+        write_whole(path, "new")
+    assert path.read_text() == "old"
+    assert list(tmp_path.iterdir()) == [path]
+
+
+def test_file_is_on_the_disk_before_it_takes_the_name(tmp_path, monkeypatch):
+    done = []
+    monkeypatch.setattr(os, "fsync", lambda handle: done.append("fsync"))
+    replace = os.replace
+    monkeypatch.setattr(os, "replace", lambda a, b: (done.append("rename"), replace(a, b)))
+    write_whole(tmp_path / "a.txt", "x")
+    assert done == ["fsync", "rename"]
+
+
+def test_what_a_killed_run_left_is_cleared_away(tmp_path):
+    code = (
+        "import os, sys, pathlib\nfrom flatprep.base.files import write_whole\n"
+        "os.fsync = lambda handle: os._exit(9)\nwrite_whole(pathlib.Path(sys.argv[1]), 'x')"
+    )
+    (tmp_path / "bench").mkdir()
+    subprocess.run([sys.executable, "-c", code, str(tmp_path / "bench" / "a.html")], check=False)
+    assert len(list((tmp_path / "bench").iterdir())) == 1
+    (tmp_path / ".mine.part").write_text("of somebody else")
+    with claimed(tmp_path):
+        assert list((tmp_path / "bench").iterdir()) == []
+        assert (tmp_path / ".mine.part").exists()
+
+
+def test_text_that_no_encoding_holds_is_written_all_the_same(tmp_path):
+    write_whole(tmp_path / "a.txt", "leaf\udce9")
+    assert (tmp_path / "a.txt").read_text() == "leaf?"
+
+
 def test_mode_follows_the_umask(tmp_path):
     path = tmp_path / "a.txt"
     before = os.umask(0o027)

@@ -1,6 +1,8 @@
 """Workers that hang, die or eat memory cost one item."""
 
 import os
+import subprocess
+import sys
 import time
 
 import pytest
@@ -41,3 +43,23 @@ def test_memory_is_capped():
 
 def test_nothing_to_do():
     assert list(Pool(work, Caps(lambda item: 1.0), 2).run([])) == []
+
+
+@pytest.mark.skipif(not hasattr(os, "kill") or os.name == "nt", reason="signals of POSIX")
+def test_workers_end_when_their_parent_is_killed():
+    code = (
+        "import os, time\nfrom flatprep.base.workers import Caps, Pool\n"
+        "def work(item):\n    print(os.getpid(), flush=True)\n    time.sleep(60)\n"
+        "list(Pool(work, Caps(lambda item: 60.0), 3).run([1, 2, 3]))"
+    )
+    with subprocess.Popen([sys.executable, "-c", code], stdout=subprocess.PIPE, text=True) as parent:
+        assert parent.stdout is not None
+        workers = [int(parent.stdout.readline()) for _ in range(3)]
+        parent.kill()
+        # the workers hold the other end of this pipe: it closes when the last of them has ended
+        began = time.monotonic()
+        parent.stdout.read()
+    assert time.monotonic() - began < 20
+    for worker in workers:
+        with pytest.raises(ProcessLookupError):
+            os.kill(worker, 0)
