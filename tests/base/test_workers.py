@@ -49,7 +49,7 @@ def test_nothing_to_do():
 def test_workers_end_when_their_parent_is_killed():
     code = (
         "import os, time\nfrom flatprep.base.workers import Caps, Pool\n"
-        "def work(item):\n    print(os.getpid(), flush=True)\n    time.sleep(60)\n"
+        "def work(item):\n    os.write(1, f'{os.getpid()}\\n'.encode())\n    time.sleep(60)\n"
         "list(Pool(work, Caps(lambda item: 60.0), 3).run([1, 2, 3]))"
     )
     with subprocess.Popen([sys.executable, "-c", code], stdout=subprocess.PIPE, text=True) as parent:
