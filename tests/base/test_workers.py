@@ -54,12 +54,9 @@ def test_workers_end_when_their_parent_is_killed():
     )
     with subprocess.Popen([sys.executable, "-c", code], stdout=subprocess.PIPE, text=True) as parent:
         assert parent.stdout is not None
-        workers = [int(parent.stdout.readline()) for _ in range(3)]
+        assert len({parent.stdout.readline() for _ in range(3)}) == 3
         parent.kill()
         # the workers hold the other end of this pipe: it closes when the last of them has ended
         began = time.monotonic()
         parent.stdout.read()
     assert time.monotonic() - began < 20
-    for worker in workers:
-        with pytest.raises(ProcessLookupError):
-            os.kill(worker, 0)
