@@ -13,7 +13,7 @@ from flatprep.model.layout import Placement, SheetLayout
 from flatprep.report.bundle import Offcut
 from flatprep.report.figures import bare_length, number
 from flatprep.report.part_figure import Box, scale_bar
-from flatprep.report.svg_path import part_path, ring_data
+from flatprep.report.svg_path import joined, part_path, ring_data
 from flatprep.report.svg_tag import picture, tag, text
 
 
@@ -27,9 +27,15 @@ class Shape:
 
 
 def shape_defs(shapes: Mapping[str, Shape]) -> str:
-    """Every part once, as ``<path id>``, to be placed by `sheet_figure`."""
-    paths = (tag("path", id=s.id, fill_rule="evenodd", d=part_path(s.part, decimals=2)) for s in shapes.values())
-    return tag("svg", tag("defs", "".join(paths)), class_="shapes", aria_hidden="true", width="0", height="0")
+    """Every part once with its engraving, as ``<g id>``, to be placed by `sheet_figure`."""
+    groups = (tag("g", _shape(shape.part), id=shape.id) for shape in shapes.values())
+    return tag("svg", tag("defs", "".join(groups)), class_="shapes", aria_hidden="true", width="0", height="0")
+
+
+def _shape(part: Part) -> str:
+    marks = joined((curve.xyb for curve in part.marks), decimals=2)
+    drawn = tag("path", fill_rule="evenodd", d=part_path(part, decimals=2))
+    return drawn + (tag("path", class_="engraved", d=marks) if marks else "")
 
 
 def sheet_figure(

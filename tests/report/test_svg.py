@@ -118,8 +118,10 @@ def test_a_sheet_places_every_piece_by_reference(bundle):
     assert [g.find(f"{space}use").get("href") for g in placed] == ["#s1", "#s1", "#s2"]
     assert "turned over" in placed[1].find(f"{space}title").text
     assert "72 × 284 mm left" in "".join(svg.itertext())
-    ids = [p.get("id") for p in ET.fromstring(shape_defs(shapes)).iter("path")]
-    assert ids == ["s1", "s2"]
+    defs = ET.fromstring(shape_defs(shapes))
+    assert [g.get("id") for g in defs.iter("g")] == ["s1", "s2"]
+    # outline and engraving of each; bend lines are not cut
+    assert [p.get("class") for p in defs.iter("path")] == [None, "engraved"] * 2
 
 
 def test_a_name_stands_on_material():
