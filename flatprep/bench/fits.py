@@ -60,8 +60,8 @@ def _finish(ask: Ask, kind: StepKind, rank: Rank, tool: str) -> list[Op]:
     as_cut = ask.as_cut_mm(cut)
     note = "; ".join(t for t in (f"{size.least_mm:.3f} to {size.most_mm:.3f} mm", told, _held(seat, ask)) if t)
     finish = Op(
-        kind, rank, ask.at, size.name, size.nominal_mm, f"{tool} {size.name}", ask.work.depth_mm, cut, ask.work.side,
-        note, limits_mm=(size.least_mm, size.most_mm),
+        kind, rank, ask.at, size.name, size.nominal_mm, f"{tool} {size.name}", ask.work.depth_mm, ask.told_mm(cut),
+        ask.work.side, note, limits_mm=(size.least_mm, size.most_mm),
     )  # fmt: skip
     if as_cut is not None and _as_cut_will_do(size, as_cut, ask):
         return [_measure(finish, ask)]

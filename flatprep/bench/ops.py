@@ -116,12 +116,19 @@ class Ask:
         """The places."""
         return tuple(t.at for t in self.targets)
 
-    def as_cut_mm(self, advised_mm: float | None) -> float | None:
-        """Return the hole that the cutter leaves: as drawn, as advised, or none at all."""
-        if self.bench.pilots is Pilots.CUT and self.drawn_mm is not None:
-            return advised_mm
-        if self.bench.pilots is Pilots.MARK or self.drawn_mm is None:
+    def told_mm(self, advised_mm: float | None) -> float | None:
+        """Return the diameter to cut beforehand that the step names: none where only the centre is marked."""
+        return None if self.drawn_mm is None or self.bench.pilots is Pilots.MARK else advised_mm
+
+    def as_cut_mm(self, advised_mm: float | None, *, opened: bool = True) -> float | None:
+        """Return the hole that the cutter leaves: as drawn, as advised, or none at all.
+
+        `opened` tells whether the work opens the hole up; one that keeps its size is cut as drawn in any case.
+        """
+        if self.drawn_mm is None or (opened and self.bench.pilots is Pilots.MARK):
             return None
+        if opened and self.bench.pilots is Pilots.CUT:
+            return advised_mm
         return self.drawn_mm if self.drawn_mm >= self.bench.least_hole_mm - 1e-3 else None
 
 
@@ -137,6 +144,7 @@ def open_up(ask: Ask, as_cut_mm: float | None, bit: Bit, cut_dia_mm: float | Non
     """
     if as_cut_mm is not None and as_cut_mm >= bit.diameter_mm - CLOSE_MM:
         return []
+    cut_dia_mm = ask.told_mm(cut_dia_mm)
     drill = Op(
         StepKind.DRILL, Rank.DRILL, ask.at, size or bit.name, bit.diameter_mm, f"drill {bit.name}", ask.work.depth_mm,
         cut_dia_mm, note="in steps, smallest drill first",

@@ -33,7 +33,8 @@ def drill_ops(ask: Ask) -> list[Op]:
 def through_ops(ask: Ask, bit: Bit, size: str = "", note: str = "") -> list[Op]:
     """Return what makes a plain hole: cut to size and measured, or drilled."""
     cut = _cuttable(ask, bit.diameter_mm)
-    as_cut = ask.as_cut_mm(cut)
+    opened = ask.drawn_mm is None or ask.drawn_mm < bit.diameter_mm - CLOSE_MM
+    as_cut = ask.as_cut_mm(cut, opened=opened)
     if as_cut is None or as_cut < bit.diameter_mm - CLOSE_MM:
         ops = open_up(ask, as_cut, bit, cut, size)
         return [op.with_note(note) if op.kind is StepKind.DRILL and note else op for op in ops]
@@ -60,7 +61,10 @@ def sink_ops(ask: Ask, hole_mm: float | None = None) -> list[Op]:
         holes = _clearance(ask, find_clearance(sink.screw))
         cut = _cuttable(ask, sink.through_mm)
     op = _countersink(ask, sink) if sink.angle_deg is not None else _counterbore(ask, sink)
-    return [*holes, _in_sheet(replace(op, cut_dia_mm=cut), sink, ask.bench.thickness_mm)]
+    return [
+        *holes,
+        _in_sheet(replace(op, cut_dia_mm=cut if ask.drawn_mm is not None else None), sink, ask.bench.thickness_mm),
+    ]
 
 
 def _cuttable(ask: Ask, diameter_mm: float) -> float | None:

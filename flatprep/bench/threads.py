@@ -38,8 +38,8 @@ def tap_ops(ask: Ask) -> list[Op]:
     cut = tap_cut_mm(ask, thread)
     as_cut = ask.as_cut_mm(cut)
     tap = Op(
-        StepKind.TAP, Rank.TAP, ask.at, thread.name, thread.drill_mm, f"tap {thread.name}", ask.work.depth_mm, cut,
-        ask.work.side, _tap_note(ask, thread), limits_mm=(thread.minor_min_mm, thread.minor_max_mm),
+        StepKind.TAP, Rank.TAP, ask.at, thread.name, thread.drill_mm, f"tap {thread.name}", ask.work.depth_mm,
+        ask.told_mm(cut), ask.work.side, _tap_note(ask, thread), limits_mm=(thread.minor_min_mm, thread.minor_max_mm),
     )  # fmt: skip
     if as_cut is not None and as_cut > thread.minor_max_mm + 0.001:
         return [
@@ -123,7 +123,7 @@ def insert_ops(ask: Ask) -> list[Op]:
     note = f"tap for the insert's outer thread, wind it in to half a turn below the face; {section('insert').source}"
     insert = Op(
         StepKind.THREAD_INSERT, Rank.INSERT, ask.at, thread.name, drill, f"insert tap {thread.name}",
-        ask.work.depth_mm, cut, ask.work.side, note,
+        ask.work.depth_mm, ask.told_mm(cut), ask.work.side, note,
     )  # fmt: skip
     if as_cut is not None and as_cut > drill + 0.2:
         return [spoilt(insert, f"the hole of {as_cut:.4g} mm is wider than the insert's drill of {drill:g} mm")]

@@ -299,6 +299,33 @@ def test_a_place_without_a_hole_is_marked_and_drilled_solid():
     assert one(steps, K.DRILL).tool_dia_mm == pytest.approx(0.201 * 25.4)
 
 
+@pytest.mark.parametrize(
+    ("pilots", "steps", "cut"),
+    [
+        # M8 in 8 mm mild steel: drill 6.8, pilot 6.12 advised; drawn at 6.8 it would be tapped through the cut skin
+        (Pilots.AS_DRAWN, ["tap"], 6.12), (Pilots.CUT, ["drill", "tap"], 6.12),
+        (Pilots.MARK, ["centre-mark", "drill", "tap"], None),
+    ],
+)  # fmt: skip
+def test_pilots_change_the_steps(pilots, steps, cut):
+    found = steps_of(plate(100, 50, (30, 25, 6.8)), work("tap", "M8", hole_mm=6.8), pilots=pilots, thickness=8.0)
+    assert kinds(found)[2:-2] == steps
+    assert one(found, K.TAP).cut_dia_mm == (None if cut is None else pytest.approx(cut))
+
+
+@pytest.mark.parametrize("pilots", list(Pilots))
+def test_a_hole_cut_to_its_size_stays_so_whatever_the_pilots(pilots):
+    steps = steps_of(plate(100, 50, (30, 25, 5.5)), work("clearance", "M5", hole_mm=5.5), pilots=pilots)
+    assert kinds(steps) == ["deburr", "inspect", "inspect"]
+    sunk = steps_of(plate(100, 50, (30, 25, 5.5)), work("countersink", "11 x 90", hole_mm=5.5), pilots=pilots)
+    assert kinds(sunk) == ["deburr", "flatness", "countersink", "deburr", "inspect"]
+
+
+def test_nothing_is_cut_where_nothing_is_drawn():
+    steps = steps_of(plate(100, 50), work("tap", "M5", at=((20.0, 25.0),)))
+    assert [step.cut_dia_mm for step in steps if step.at] == [None] * 4
+
+
 # ---------------------------------------------------------------- order
 
 
