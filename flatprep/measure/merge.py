@@ -115,8 +115,8 @@ def _strips(b: Boundary, s: Pieces, i: Ints, j: Ints) -> Strips:
         same = (s.contour[i, 0] == s.contour[j, side]) & (s.contour[i, 1] == s.contour[j, 1 - side])
         for ahead in (True, False):
             runs = [
-                _run(place[i, 0], place[j, side], b.total[contour[0]], ahead=ahead),
-                _run(place[i, 1], place[j, 1 - side], b.total[contour[1]], ahead=not ahead),
+                way_along(place[i, 0], place[j, side], b.total[contour[0]], ahead=ahead),
+                way_along(place[i, 1], place[j, 1 - side], b.total[contour[1]], ahead=not ahead),
             ]
             size = runs[0][1] + runs[1][1]
             better = same & (size < best)
@@ -127,9 +127,11 @@ def _strips(b: Boundary, s: Pieces, i: Ints, j: Ints) -> Strips:
     return contour, start, span
 
 
-def _run(here: Floats, there: Floats, total: Floats, *, ahead: bool) -> tuple[Floats, Floats]:
+def way_along(here: Floats, there: Floats, total: Floats, *, ahead: bool) -> tuple[Floats, Floats]:
+    """Start and length of the run between two places of a contour `total` long, from here ahead or back to here."""
     first, last = (here, there) if ahead else (there, here)
-    return first, np.mod(last - first, total)
+    # a step back by a rounding error is no way round
+    return first, np.maximum(np.mod(last - first + SAME_PLACE_MM, total) - SAME_PLACE_MM, 0.0)
 
 
 def _farthest(points: Floats, line: Floats) -> Floats:

@@ -6,7 +6,7 @@ import pytest
 from flatprep.geom import bulge
 from flatprep.measure.boundary import boundary
 from flatprep.measure.discs import Pieces
-from flatprep.measure.merge import neighbours
+from flatprep.measure.merge import neighbours, way_along
 
 
 def test_places_just_before_the_seam_lie_on_their_own_contour():
@@ -38,3 +38,21 @@ def test_ends_at_one_place_are_paired_whatever_the_last_digit(seed):
     assert {(a, b) for a in range(4) for b in range(a + 1, 4)} <= plain
     assert {(a, 4) for a in range(4)} <= plain
     assert pairs(rng.uniform(-1e-9, 1e-9, ends.shape)) == plain
+
+
+@pytest.mark.parametrize(
+    ("here", "there", "ahead", "length"),
+    [
+        (10.0, 30.0, True, 20.0),
+        (10.0, 30.0, False, 80.0),
+        (90.0, 5.0, True, 15.0),
+        (77.0, 77.0, True, 0.0),
+        (77.0, np.nextafter(77.0, 0.0), True, 0.0),
+        (77.0, np.nextafter(77.0, 99.0), True, 0.0),
+        (77.0, np.nextafter(77.0, 99.0), False, 0.0),
+    ],
+)
+def test_the_way_along_a_contour(here, there, ahead, length):
+    """Places that differ by a rounding error are no round apart."""
+    _, found = way_along(np.array([here]), np.array([there]), np.array([100.0]), ahead=ahead)
+    assert found == pytest.approx([length], abs=1e-5)
