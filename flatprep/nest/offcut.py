@@ -1,0 +1,147 @@
+"""What is left of a sheet: the largest usable rectangle, and the border of the remnant for next time."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from math import cos, pi
+
+import numpy as np
+import numpy.typing as npt
+import shapely
+from shapely.geometry import MultiPolygon, Polygon
+from shapely.geometry.base import BaseGeometry
+
+from flatprep.geom.bulge import Floats
+from flatprep.geom.outward import outside_points
+from flatprep.model.drawing import Part
+from flatprep.model.layout import SheetLayout
+
+LEAST_MM = 50.0
+"""Shorter side of a rectangle that is still worth keeping (common practice)."""
+NECK_MM = 20.0
+"""Narrower tongues of a remnant are not counted: they bend and tip."""
+CHORD_MM = 0.05
+LIGHT_MM = 0.5
+QUARTER = 4
+ROUND = 1.002 / cos(pi / (4 * QUARTER))
+"""What the distance is multiplied by so that chords of round corners keep it, too."""
+CELLS = 100
+"""Cells along the longer side of a sheet, when a first rectangle is looked for."""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Offcut:
+    """The usable rest of a sheet, sheet coordinates, mm.
+
+    Attributes
+    ----------
+    rectangle : (x0, y0, x1, y1)
+        The largest one found, upright; nothing cut reaches into it.
+    outline : ndarray, shape (n, 2)
+        Border of the piece of the rest that holds the rectangle, tongues narrower than `NECK_MM` left out.
+    holes : tuple of ndarray, shape (m, 2)
+        Where parts were cut out of it.
+    """
+
+    rectangle: tuple[float, float, float, float]
+    outline: Floats
+    holes: tuple[Floats, ...]
+
+    @property
+    def area_mm2(self) -> float:
+        """Area of the remnant."""
+        return float(Polygon(self.outline, self.holes).area)
+
+
+def offcut_of(sheet: SheetLayout, parts: Mapping[str, Part], spacing_mm: float) -> Offcut | None:
+    """Return the usable rest of a sheet, or None where no rectangle of `LEAST_MM` is left.
+
+    Parameters
+    ----------
+    sheet
+        Of fixed length: of open length only what is used was cut off.
+    parts
+        True shapes by the names that the placements use.
+    spacing_mm
+        The rest keeps this much away from the parts: the cut lies between.
+
+    Notes
+    -----
+    What lies in a part's window is scrap, not part of the rest. The rectangle is the largest one on a raster of the
+    sheet (maximal rectangle under a histogram, row by row), then widened side by side until it touches.
+    """
+    rest = _rest(sheet, parts, spacing_mm)
+    box = _largest_rectangle(rest)
+    if box is None or min(box[2] - box[0], box[3] - box[1]) < LEAST_MM:
+        return None
+    opened = rest.buffer(-NECK_MM / 2.0).buffer(NECK_MM / 2.0 - LIGHT_MM).simplify(LIGHT_MM)
+    around = opened.union(shapely.box(*box))
+    middle = shapely.box(*box).centroid
+    pieces = [p for p in getattr(around, "geoms", [around]) if isinstance(p, Polygon) and p.contains(middle)]
+    piece = pieces[0] if pieces else shapely.box(*box)
+    return Offcut(box, _ring(piece.exterior), tuple(_ring(h) for h in piece.interiors if Polygon(h).area > 1.0))
+
+
+def _ring(line: BaseGeometry) -> Floats:
+    return np.asarray(line.coords)[:-1].copy()
+
+
+def _rest(sheet: SheetLayout, parts: Mapping[str, Part], spacing_mm: float) -> Polygon | MultiPolygon:
+    """Sheet without its parts (windows counted to the part) and the cut around them."""
+    taken = []
+    for p in sheet.placements:
+        ring = p.motion.points(outside_points(parts[p.part].outer.xyb, CHORD_MM))
+        taken.append(Polygon(ring).buffer(spacing_mm * ROUND, quad_segs=QUARTER))
+    return Polygon(sheet.outline, list(sheet.holes)).difference(shapely.union_all(taken))
+
+
+def _largest_rectangle(region: Polygon | MultiPolygon) -> tuple[float, float, float, float] | None:
+    """Largest upright rectangle in a region, to the raster; then as wide as it goes."""
+    if region.is_empty:
+        return None
+    x0, y0, x1, y1 = region.bounds
+    step = max(x1 - x0, y1 - y0) / CELLS
+    xs, ys = np.arange(x0, x1 - step / 2, step), np.arange(y0, y1 - step / 2, step)
+    if not len(xs) or not len(ys):
+        return None
+    shapely.prepare(region)
+    grid_x, grid_y = np.meshgrid(xs, ys)
+    free = shapely.covers(region, shapely.box(grid_x, grid_y, grid_x + step, grid_y + step))
+    found = _largest_of_raster(free)
+    if found is None:
+        return None
+    r0, c0, r1, c1 = found
+    return _widened(region, (float(xs[c0]), float(ys[r0]), float(xs[c1]) + step, float(ys[r1]) + step), step)
+
+
+def _largest_of_raster(free: npt.NDArray[np.bool_]) -> tuple[int, int, int, int] | None:
+    """First row and column, last row and column of the largest all-true rectangle."""
+    best, found = 0, None
+    height = np.zeros(free.shape[1], dtype=np.int64)
+    for row in range(free.shape[0]):
+        height = np.where(free[row], height + 1, 0)
+        stack: list[int] = []
+        for column in range(len(height) + 1):
+            now = int(height[column]) if column < len(height) else 0
+            while stack and int(height[stack[-1]]) >= now:
+                tall = int(height[stack.pop()])
+                first = stack[-1] + 1 if stack else 0
+                if tall * (column - first) > best:
+                    best, found = tall * (column - first), (row - tall + 1, first, row, column - 1)
+            stack.append(column)
+    return found
+
+
+def _widened(
+    region: BaseGeometry, box: tuple[float, float, float, float], step: float
+) -> tuple[float, float, float, float]:
+    """Box whose sides are moved out, one after the other, as far as the region lets them, a cell at the most."""
+    sides = list(box)
+    for side, way in ((2, 1.0), (3, 1.0), (0, -1.0), (1, -1.0)):
+        low, high = 0.0, step
+        for _ in range(16):
+            middle = (low + high) / 2.0
+            tried = sides.copy()
+            tried[side] += way * middle
+            low, high = (middle, high) if region.covers(shapely.box(*tried)) else (low, middle)
+        sides[side] += way * low
+    return sides[0], sides[1], sides[2], sides[3]
