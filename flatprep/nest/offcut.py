@@ -74,7 +74,7 @@ def offcut_of(sheet: SheetLayout, parts: Mapping[str, Part], spacing_mm: float) 
     if box is None or min(box[2] - box[0], box[3] - box[1]) < LEAST_MM:
         return None
     opened = rest.buffer(-NECK_MM / 2.0).buffer(NECK_MM / 2.0 - LIGHT_MM).simplify(LIGHT_MM)
-    around = opened.union(shapely.box(*box))
+    around = opened.union(shapely.box(*box)).intersection(rest)
     middle = shapely.box(*box).centroid
     pieces = [p for p in getattr(around, "geoms", [around]) if isinstance(p, Polygon) and p.contains(middle)]
     piece = pieces[0] if pieces else shapely.box(*box)
