@@ -61,6 +61,8 @@ def load_cutlist(path: Path) -> tuple[CutRow, ...]:
 
 def _text(path: Path) -> str:
     try:
+        if path.exists() and not path.is_file():
+            raise JobError(f"{path}: is no file", "name the cut list itself")
         if path.stat().st_size > _MOST_BYTES:
             raise JobError(f"{path}: is larger than {_MOST_BYTES // 1_000_000} MB", "that is no cut list")
         raw = path.read_bytes()

@@ -12,6 +12,9 @@ from flatprep.base.units import MM_PER_UNIT, parse_length_mm
 
 Value = object
 
+MOST_BYTES = 10_000_000
+"""Larger files are refused: profiles and jobs are written by hand."""
+
 
 def read_toml(path: Path, error: type[FlatprepError] = ProfileError) -> dict[str, Value]:
     """Read a TOML file.
@@ -19,9 +22,13 @@ def read_toml(path: Path, error: type[FlatprepError] = ProfileError) -> dict[str
     Raises
     ------
     FlatprepError
-        Of class `error`: when the file is missing, unreadable, not UTF-8 or not TOML (with the line).
+        Of class `error`: when the file is missing, unreadable, too large, not UTF-8 or not TOML (with the line).
     """
     try:
+        if path.exists() and not path.is_file():
+            raise error(f"{path}: is no file", "name the TOML file itself")
+        if path.stat().st_size > MOST_BYTES:
+            raise error(f"{path}: is larger than {MOST_BYTES // 1_000_000} MB", "that is no profile or job")
         return tomllib.loads(path.read_bytes().decode("utf-8-sig").replace("\r\n", "\n"))
     except UnicodeDecodeError as err:
         raise error(f"{path}: is not UTF-8 text (byte {err.start})", "save it as UTF-8") from None

@@ -95,8 +95,10 @@ def test_a_misspelt_column_gets_the_nearest(tmp_path):
 
 
 def test_a_list_that_cannot_be_read(tmp_path):
-    with pytest.raises(JobError, match="cannot be read"):
+    with pytest.raises(JobError, match="is no file"):
         load_cutlist(tmp_path)
+    with pytest.raises(JobError, match="cannot be read"):
+        load_cutlist(tmp_path / "none.csv")
 
 
 def test_finding_it_in_any_case(tmp_path):

@@ -1,9 +1,11 @@
 """Strict TOML: each mistake names file, key, value and what is allowed."""
 
+import os
+
 import pytest
 
 from flatprep.base.errors import JobError, ProfileError
-from flatprep.profile.toml_check import Table, read_toml
+from flatprep.profile.toml_check import MOST_BYTES, Table, read_toml
 
 
 def table(**data):
@@ -142,8 +144,30 @@ def test_files_that_are_no_toml(tmp_path, raw, words):
 def test_files_that_are_not_there(tmp_path):
     with pytest.raises(JobError, match="no such file"):
         read_toml(tmp_path / "no.toml", JobError)
-    with pytest.raises(ProfileError, match="cannot be read"):
+    with pytest.raises(ProfileError, match="is no file"):
         read_toml(tmp_path)
+    os.mkfifo(tmp_path / "pipe.toml")  # reading it would wait for ever
+    with pytest.raises(ProfileError, match="is no file"):
+        read_toml(tmp_path / "pipe.toml")
+
+
+def test_files_too_large_to_be_meant(tmp_path):
+    file = tmp_path / "f.toml"
+    file.write_bytes(b"a = 1\n" + b"#" * MOST_BYTES)
+    with pytest.raises(ProfileError, match="is larger than 10 MB"):
+        read_toml(file)
+
+
+def test_files_that_may_not_be_read(tmp_path, monkeypatch):
+    file = tmp_path / "f.toml"
+    file.touch()
+
+    def refuse(path):
+        raise PermissionError(13, "Permission denied")
+
+    monkeypatch.setattr(type(file), "read_bytes", refuse)
+    with pytest.raises(ProfileError, match=r"cannot be read \(Permission denied\)"):
+        read_toml(file)
 
 
 def test_byte_order_mark_and_dos_line_ends(tmp_path):
