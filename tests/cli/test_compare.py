@@ -5,8 +5,10 @@ from xml.etree import ElementTree
 
 import pytest
 from click.testing import CliRunner
+from jsonschema import Draft202012Validator
 
 from flatprep.cli.main import root
+from flatprep.report.schema import schema
 from tests.drawing.draw import box, drawn
 
 
@@ -60,6 +62,7 @@ def test_the_other_way_round_it_is_scrap(old, new):
 
 def test_json(old, new):
     document = json.loads(call(old, new, "--format", "json").stdout)
+    Draft202012Validator(schema("compare")).validate(document)
     assert document["schema"] == "flatprep-compare/1"
     (part,) = document["parts"]
     assert sorted(h["change"] for h in part["holes"]) == ["appeared", "resized", "same"]

@@ -7,8 +7,10 @@ from math import cos, pi, sin
 import ezdxf
 import pytest
 from click.testing import CliRunner
+from jsonschema import Draft202012Validator
 
 from flatprep.cli.main import root
+from flatprep.report.schema import schema
 from tests.drawing.draw import box, drawn
 
 
@@ -41,6 +43,7 @@ def test_something_left_ends_with_1_and_says_where(tmp_path):
     result = call(path, "--out", tmp_path / "clean.dxf", "--format", "json")
     assert result.exit_code == 1
     document = json.loads(result.stdout)
+    Draft202012Validator(schema("repair")).validate(document)
     assert document["schema"] == "flatprep-repair/1"
     (left,) = document["left"]
     assert (left["rule"], left["at"]) == ("open-contour", pytest.approx([230, 20]))

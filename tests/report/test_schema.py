@@ -63,6 +63,22 @@ GOOD = {
         "changes": [{"kind": "joined", "message": "a gap", "at": None, "measured_mm": 0.02, "handles": ["2F"]}],
         "left": [],
     },
+    "compare": {
+        "schema": "flatprep-compare/1", "old": "a.dxf", "new": "b.dxf", "same": False,
+        "parts": [{"old": {"name": "leaf", "area_mm2": 1.0, "cut_length_mm": 4.0, "holes": 0, "size_mm": [1.0, 1.0]},
+                   "new": {"name": "leaf", "area_mm2": 1.0, "cut_length_mm": 4.0, "holes": 1, "size_mm": [1.0, 1.0]},
+                   "same": False, "motion": {"mirrored": False, "turn_deg": 90.0, "dx": 1.0, "dy": 0.0},
+                   "holes": [{"change": "appeared", "old": None, "moved_mm": None,
+                              "new": {"shape": "circle", "at": [0.5, 0.5], "diameter_mm": 0.2, "width_mm": 0.2,
+                                      "length_mm": 0.2}}],
+                   "outline": [{"added": False, "at": [0.0, 0.0], "depth_mm": 0.1, "length_mm": 1.0, "area_mm2": 0.1}],
+                   "bends": {"appeared": 0, "gone": 0}, "marks": {"appeared": 1, "gone": 0},
+                   "rework": {"possible": True, "motion": {"mirrored": False, "turn_deg": 0.0, "dx": 0.0, "dy": 0.0},
+                              "missing": [],
+                              "steps": [{"task": "drill", "at": [0.5, 0.5], "to_mm": 0.2, "from_mm": None,
+                                         "length_mm": None}]}}],
+        "appeared": [], "gone": [],
+    },
     "lookup": {"kind": "nut", "name": "M8", "values": {"across_flats_mm": 13.0}, "source": "ISO 4032"},
 }  # fmt: skip
 BAD = [
@@ -82,6 +98,9 @@ BAD = [
     ("alternatives", ("parts", 0, "options", 0, "mass_kg"), -1.0),
     ("repair", ("changes", 0, "message"), ""),
     ("repair", ("parts", 0, "holes"), 0.5),
+    ("compare", ("parts", 0, "holes", 0, "change"), "vanished"),
+    ("compare", ("parts", 0, "motion", "turn_deg"), 360.0),
+    ("compare", ("parts", 0, "rework", "steps", 0, "task"), "weld"),
     ("lookup", ("source",), ""),
     ("lookup", ("values",), {}),
 ]
