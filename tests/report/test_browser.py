@@ -9,6 +9,7 @@ import re
 import shutil
 import time
 from collections.abc import Iterator
+from dataclasses import replace
 from pathlib import Path
 
 import pytest
@@ -216,6 +217,37 @@ def test_every_control_has_a_name(opened, bundle):
     assert unnamed == []
     ids = page.eval_on_selector_all("[id]", "all => all.map(e => e.id)")
     assert len(ids) == len(set(ids))
+
+
+@pytest.mark.parametrize(
+    "hostile",
+    [
+        "<img src=x onerror=document.title='ran'>",
+        "</script><script>document.title='ran'</script>",
+        "\"><svg onload=document.title='ran'>",
+        "javascript:document.title='ran'",
+        "{{ 7 * 7 }} {% raw %} <!--",
+        "\u202eevil \U0001f528 " + "long " * 60,
+    ],
+)
+def test_names_from_drawings_run_nothing(opened, bundle, hostile):
+    leaf = bundle.cards[0]
+    finding = replace(leaf.findings[0], message=hostile, remedy=hostile, part=hostile)
+    steps = tuple(replace(step, note=hostile, caution=hostile, size=hostile) for step in leaf.steps)
+    card = replace(leaf, name=hostile, drawing=hostile, note=hostile, findings=(finding,), steps=steps)
+    sheet = bundle.layout.sheets[0]
+    placed = tuple(replace(one, part=hostile) for one in sheet.placements[:2])
+    layout = replace(bundle.layout, sheets=(replace(sheet, stock=hostile, placements=placed),))
+    bad = replace(bundle, name=hostile, cards=(card,), layout=layout, files=((hostile, hostile),))
+    for text in (report_html(bad), bench_sheet_html(bad, card)):
+        page = opened(text)
+        page.hover("tr[data-mark=f1]")
+        assert page.title() != "ran"
+        assert hostile.split()[0] in page.inner_text("h1 >> nth=0")
+        assert page.evaluate("document.documentElement.scrollWidth") <= 1280
+    # a link to a file stays a link to a file
+    page = opened(report_html(bad))
+    assert page.locator("#overview .plain-list a").evaluate("a => a.protocol") == "file:"
 
 
 def test_200_parts_answer_in_two_seconds(opened, many):
