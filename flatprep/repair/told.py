@@ -4,9 +4,11 @@ from collections.abc import Iterator
 from dataclasses import replace
 
 from flatprep.drawing.collect import NOT_CUT
+from flatprep.drawing.roles import role_of
 from flatprep.drawing.write import BEND, CUT, MARK, NOTE
-from flatprep.model.drawing import Drawing, Fault, Skipped, Text
+from flatprep.model.drawing import Drawing, Fault, Role, Skipped, Text
 from flatprep.model.finding import Finding, Severity
+from flatprep.practice.callouts import parse_callouts
 from flatprep.repair.rearc import Rounded
 from flatprep.repair.values import Change, Place
 
@@ -128,8 +130,10 @@ def _finding(rule: str, message: str, at: Place | None, handles: tuple[str, ...]
 def stands_on_part(drawing: Drawing, text: Text) -> bool:
     """Tell whether a text lies on a part and on a layer that may be cut: letters that will be missing."""
     roles = {name: role for name, role, _ in drawing.roles}
-    if text.layer in OWN_LAYERS[1:] or roles.get(text.layer, "cut") != "cut":
+    if (roles.get(text.layer) or role_of(text.layer, "", {}, off=False).role) is not Role.CUT:
         return False
+    if text.points_to or parse_callouts(text.text, drawing.units):
+        return False  # it speaks of the part
     boxes = (part.outer.bounds for part in drawing.parts)
     return any(x0 <= text.at[0] <= x1 and y0 <= text.at[1] <= y1 for x0, y0, x1, y1 in boxes)
 

@@ -2,6 +2,7 @@
 
 from collections.abc import Iterator
 
+from flatprep.drawing.roles import role_of
 from flatprep.model.drawing import Part, Role, Text
 from flatprep.model.finding import Finding, Severity
 from flatprep.practice.callouts import parse_callouts
@@ -15,7 +16,9 @@ def check(ctx: Context) -> Iterator[Finding]:
     elsewhere: list[Text] = []
     for text in ctx.drawing.texts:
         home = next((p.name for p in ctx.drawing.parts if _over(p, text)), None)
-        if home is None or roles.get(text.layer, Role.CUT) is not Role.CUT or _annotates(ctx, text):
+        # a layer that holds texts only has no role yet: its name says what it is for
+        role = roles.get(text.layer) or role_of(text.layer, "", {}, off=False).role
+        if home is None or role is not Role.CUT or _annotates(ctx, text):
             elsewhere.append(text)
         else:
             on_part.setdefault(home, []).append(text)

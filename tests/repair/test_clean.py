@@ -119,7 +119,7 @@ def messy(msp):
     msp.add_line((10, 30), (70, 30), dxfattribs={"layer": "engraving"})
     msp.add_line((200, 0), (260, 40))
     msp.add_lwpolyline([(20, 5), (30, 5), (20, 9), (30, 9)], close=True)
-    msp.add_text("M5", height=4, dxfattribs={"insert": (60, 10)})
+    msp.add_text("RIGHT", height=4, dxfattribs={"insert": (60, 10)})
     msp.add_mtext("left\nhand", dxfattribs={"insert": (300, 10), "char_height": 3})
 
 
@@ -246,3 +246,19 @@ def test_nothing_to_cut(tmp_path):
     done = repair(save(new(), tmp_path))
     assert [f.rule for f in done.left] == ["empty-drawing"]
     assert repair(drawn(tmp_path, lambda msp: msp.add_line((0, 0), (9, 9)))).left[0].rule == "empty-drawing"
+
+
+@pytest.mark.parametrize(
+    ("words", "layer", "left"), [("RIGHT", "0", True), ("4x M5", "0", False), ("RIGHT", "notes", False)]
+)
+def test_texts_that_may_have_been_meant_to_be_cut(tmp_path, words, layer, left):
+    """A callout, or a layer for notes, says that a text is none of them."""
+
+    def paint(msp):
+        plate(msp)
+        msp.add_text(words, height=4, dxfattribs={"insert": (60, 10), "layer": layer})
+
+    done, out = clean(tmp_path, paint)
+    assert [f.rule for f in done.left] == (["text-not-outlined"] if left else [])
+    (text,) = ezdxf.readfile(out).modelspace().query("TEXT")
+    assert (text.dxf.layer, text.dxf.text) == ("CUT" if left else "NOTE", words)
