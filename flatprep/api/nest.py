@@ -1,17 +1,17 @@
 """Nest a job, and write its layout: sheets as DXF and SVG, changed drawings, layout.json."""
 
 import json
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterator, Mapping
 from dataclasses import dataclass, replace
 from pathlib import Path
 
 import numpy as np
 
 from flatprep.api.pieces import Piece, ReadJob, quantity
-from flatprep.base.errors import DrawingError, JobError, OutputError
-from flatprep.base.files import make_folder, write_whole
+from flatprep.base.errors import DrawingError, JobError
+from flatprep.base.files import make_folder, write_together
 from flatprep.base.progress import Progress, Silent
-from flatprep.base.safe_names import safe_stem
+from flatprep.base.safe_names import safe_stems
 from flatprep.drawing.read import ReadOptions, read
 from flatprep.drawing.remnant import outline_of
 from flatprep.drawing.write import part_drawing, sheet_drawing
@@ -91,7 +91,7 @@ def spacing_warnings(job: Job) -> tuple[str, ...]:
 
 
 def write_layout(nested: Nested, folder: Path) -> tuple[Path, ...]:
-    """Write sheets, changed drawings and, last, layout.json.
+    """Write sheets, changed drawings and layout.json, all together or not at all.
 
     Returns
     -------
@@ -103,49 +103,54 @@ def write_layout(nested: Nested, folder: Path) -> tuple[Path, ...]:
     OutputError
         When the folder cannot be written into.
     """
+    make_layout_folders(nested, folder)
+    return write_together(layout_files(nested, folder))
+
+
+def make_layout_folders(nested: Nested, folder: Path) -> None:
+    """Make the folders of a layout.
+
+    Raises
+    ------
+    OutputError
+        When one cannot be written into.
+    """
     make_folder(folder)
-    job = nested.read.job
-    files = _copy_names(nested.read.pieces)
-    written = []
-    for piece in nested.read.pieces:
+    if any(piece.changed for piece in nested.read.pieces):
+        make_folder(folder / "parts")
+
+
+def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | None]]:
+    """Yield the files of a layout with their text, layout.json last; None where an older sheet is to go."""
+    job, pieces, sheets = nested.read.job, nested.read.pieces, nested.layout.sheets
+    copies = _copy_names(pieces)
+    for piece in pieces:
         if piece.changed:
-            written.append(folder / files[piece.name])
-            make_folder(written[-1].parent)
-            write_whole(written[-1], part_drawing(piece.part))
-    parts = {piece.name: piece.part for piece in nested.read.pieces}
-    for number, sheet in enumerate(nested.layout.sheets, start=1):
+            yield folder / copies[piece.name], part_drawing(piece.part)
+    parts = {piece.name: piece.part for piece in pieces}
+    title = (job.name, f"revision {job.revision}") if job.revision else (job.name,)
+    for number, sheet in enumerate(sheets, start=1):
         stem = sheet_name(number)
-        title = (job.name, f"revision {job.revision}") if job.revision else (job.name,)
-        write_whole(folder / f"{stem}.dxf", sheet_drawing(sheet, parts, title=title))
-        write_whole(folder / f"{stem}.svg", sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=job.name))
-        written += [folder / f"{stem}.dxf", folder / f"{stem}.svg"]
-    sources = [_source(job, piece, folder / files[piece.name]) for piece in nested.read.pieces]
-    document = layout_document(nested.layout, sources, folder)
-    _remove_older_sheets(folder, len(nested.layout.sheets))
-    write_whole(folder / "layout.json", json.dumps(document, indent=1) + "\n")
-    return (*written, folder / "layout.json")
+        yield folder / f"{stem}.dxf", sheet_drawing(sheet, parts, title=title)
+        yield folder / f"{stem}.svg", sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=job.name)
+    for older in _older_sheets(folder, len(sheets)):
+        yield older, None
+    sources = [_source(job, piece, folder / copies[piece.name]) for piece in pieces]
+    yield folder / "layout.json", json.dumps(layout_document(nested.layout, sources, folder), indent=1) + "\n"
 
 
-def _remove_older_sheets(folder: Path, count: int) -> None:
-    """Sheets of an earlier run that this layout has no more would be cut by mistake."""
+def _older_sheets(folder: Path, count: int) -> Iterator[Path]:
+    """Sheets of an earlier run that this layout has no more: they would be cut by mistake."""
     number = count + 1
     while any((path := folder / f"{sheet_name(number)}{suffix}").exists() for suffix in (".dxf", ".svg")):
-        for suffix in (".dxf", ".svg"):
-            path = folder / f"{sheet_name(number)}{suffix}"
-            try:
-                path.unlink(missing_ok=True)
-            except OSError as err:
-                raise OutputError(f"{path}: an older sheet cannot be removed ({err.strerror})", "remove it") from err
+        yield from (path.with_suffix(suffix) for suffix in (".dxf", ".svg"))
         number += 1
 
 
 def _copy_names(pieces: tuple[Piece, ...]) -> Mapping[str, str]:
     """Where a changed copy of each part goes, relative to the folder; no two alike."""
     names: dict[str, str] = {}
-    for piece in pieces:
-        stem = safe_stem(piece.name)
-        while f"parts/{stem}.dxf" in names.values():
-            stem += "_"
+    for piece, stem in zip(pieces, safe_stems([piece.name for piece in pieces]), strict=True):
         names[piece.name] = f"parts/{stem}.dxf"
     return names
 

@@ -3,17 +3,17 @@
 import hashlib
 import json
 import time
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
 from flatprep import __version__
-from flatprep.api.nest import Nested, OnBetter, Stop, nest_job, never, write_layout
+from flatprep.api.nest import Nested, OnBetter, Stop, layout_files, make_layout_folders, nest_job, never
 from flatprep.api.pieces import Piece, ReadJob, quantity
 from flatprep.api.work import checklist_job, estimate_job
-from flatprep.base.files import make_folder, write_whole
+from flatprep.base.files import make_folder, write_together
 from flatprep.base.progress import Progress
-from flatprep.base.safe_names import safe_stem
+from flatprep.base.safe_names import safe_stems
 from flatprep.model.estimate import Estimate
 from flatprep.model.finding import Finding
 from flatprep.model.layout import Layout
@@ -84,36 +84,39 @@ def prepare_job(
 
 
 def write_prepared(done: Prepared, folder: Path) -> None:
-    """Write everything into `folder`; report.html comes last.
+    """Write everything into `folder`, all together or not at all.
 
     Raises
     ------
     OutputError
         When the folder cannot be written into.
     """
-    make_folder(folder)
     if done.nested:
-        write_layout(done.nested, folder)
+        make_layout_folders(done.nested, folder)
+    make_folder(folder / "bench")
+    write_together(_files(done, folder))
+
+
+def _files(done: Prepared, folder: Path) -> Iterator[tuple[Path, str | None]]:
+    """Yield every file with its text; report.html comes last."""
+    if done.nested:
+        yield from layout_files(done.nested, folder)
     documents = {
         "lint.json": lint_document(done.read.report),
         "checklist.json": checklist_document(done.checklist),
         "estimate.json": estimate_document(done.estimate),
     }
     for name, document in documents.items():
-        write_whole(folder / name, json.dumps(document, indent=1) + "\n")
-    tables = {
-        "parts.csv": parts_csv(done.bundle),
-        "findings.csv": findings_csv(done.bundle),
-        "sheets.csv": sheets_csv(done.bundle),
-        "steps.csv": checklist_csv(done.checklist),
-        "estimate.csv": estimate_csv(done.estimate),
-    }
-    for name, table in tables.items():
-        write_whole(folder / name, table)
-    make_folder(folder / "bench")
-    for card in done.bundle.cards:
-        write_whole(folder / "bench" / f"{safe_stem(card.name)}.html", bench_sheet_html(done.bundle, card))
-    write_whole(folder / "report.html", report_html(done.bundle))
+        yield folder / name, json.dumps(document, indent=1) + "\n"
+    yield folder / "parts.csv", parts_csv(done.bundle)
+    yield folder / "findings.csv", findings_csv(done.bundle)
+    yield folder / "sheets.csv", sheets_csv(done.bundle)
+    yield folder / "steps.csv", checklist_csv(done.checklist)
+    yield folder / "estimate.csv", estimate_csv(done.estimate)
+    stems = safe_stems([card.name for card in done.bundle.cards])
+    for stem, card in zip(stems, done.bundle.cards, strict=True):
+        yield folder / "bench" / f"{stem}.html", bench_sheet_html(done.bundle, card)
+    yield folder / "report.html", report_html(done.bundle)
 
 
 def _bundle(

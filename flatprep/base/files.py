@@ -2,7 +2,7 @@
 
 import os
 import tempfile
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator
 from contextlib import contextmanager, suppress
 from pathlib import Path
 
@@ -17,32 +17,79 @@ _ASIDE, _PART = ".flatprep-", ".part"
 
 
 def write_whole(path: Path, data: str | bytes) -> None:
-    """Write `data` beside `path`, flush it to the disk, then rename it over `path`.
+    """Write one file: `write_together`."""
+    write_together([(path, data)])
+
+
+def write_together(files: Iterable[tuple[Path, str | bytes | None]]) -> tuple[Path, ...]:
+    """Write every file beside its place and flush it to the disk; once all of them are there, rename them in order.
+
+    Parameters
+    ----------
+    files
+        Paths and what they are to hold; None removes an older file.
+
+    Returns
+    -------
+    tuple of Path
+        Files written.
 
     Raises
     ------
     OutputError
-        When the folder or the file cannot be written; an older file then stays as it was.
+        When one of them cannot be written; older files then stay as they were.
     """
-    raw = data.encode("utf-8", "replace") if isinstance(data, str) else data
-    aside = None
+    asides: list[tuple[str | None, Path]] = []
     try:
-        handle, aside = tempfile.mkstemp(prefix=_ASIDE, suffix=_PART, dir=path.parent)
+        for path, data in files:
+            with _told(path):
+                asides.append((None if data is None else _aside(path, data), path))
+        for number, (aside, path) in enumerate(asides):
+            with _told(path):
+                _put(aside, path)
+            asides[number] = (None, path)
+    finally:
+        for aside, _ in asides:
+            if aside is not None:
+                _drop(aside)
+    return tuple(path for path, written in ((p, p.exists()) for _, p in asides) if written)
+
+
+def _aside(path: Path, data: str | bytes) -> str:
+    """Write a file beside `path`; its name."""
+    handle, aside = tempfile.mkstemp(prefix=_ASIDE, suffix=_PART, dir=path.parent)
+    try:
         with os.fdopen(handle, "wb") as out:
-            out.write(raw)
+            out.write(data.encode("utf-8", "replace") if isinstance(data, str) else data)
             out.flush()
             os.fsync(out.fileno())
         os.chmod(aside, 0o666 & ~_umask())
+    except BaseException:
+        _drop(aside)
+        raise
+    return aside
+
+
+def _put(aside: str | None, path: Path) -> None:
+    if aside is None:
+        path.unlink(missing_ok=True)
+    else:
         os.replace(aside, path)
-        aside = None
+
+
+def _drop(aside: str) -> None:
+    with suppress(OSError):
+        os.unlink(aside)
+
+
+@contextmanager
+def _told(path: Path) -> Iterator[None]:
+    try:
+        yield
     except OSError as err:
         raise OutputError(
             f"{path}: cannot be written ({err.strerror or err})", "choose another folder, or make room"
         ) from err
-    finally:
-        if aside is not None:
-            with suppress(OSError):
-                os.unlink(aside)
 
 
 def make_folder(path: Path) -> None:

@@ -3,6 +3,7 @@
 import hashlib
 import re
 import unicodedata
+from collections.abc import Sequence
 
 _DEVICES = {"con", "prn", "aux", "nul", *(f"com{n}" for n in range(1, 10)), *(f"lpt{n}" for n in range(1, 10))}
 _LONGEST = 80
@@ -20,3 +21,16 @@ def safe_stem(name: str) -> str:
     if stem == name:
         return stem
     return f"{stem}-{hashlib.sha256(plain.encode('utf-8', 'surrogatepass')).hexdigest()[:6]}"
+
+
+def safe_stems(names: Sequence[str]) -> tuple[str, ...]:
+    """Stems of several names, no two alike, also where a system does not tell capitals from small letters."""
+    stems: list[str] = []
+    taken: set[str] = set()
+    for name in names:
+        stem = safe_stem(name)
+        while stem.lower() in taken:
+            stem += "_"
+        taken.add(stem.lower())
+        stems.append(stem)
+    return tuple(stems)
