@@ -111,9 +111,26 @@ def label_place(outer: Floats, holes: Sequence[Floats]) -> tuple[float, float, f
 
 
 def _offcut(offcut: Offcut, unit: float, units: str) -> str:
+    """Dashed, hatched rectangle with its size in the middle."""
     w, h = offcut.x1 - offcut.x0, offcut.y1 - offcut.y0
     words = f"{bare_length(w, units)} × {bare_length(h, units)} {units} left"
     size = min(1.6 * unit, w / (0.6 * len(words)), h / 2)
-    rest = tag("rect", x=offcut.x0, y=-offcut.y1, width=w, height=h)
-    middle = ((offcut.x0 + offcut.x1) / 2, size / 3 - (offcut.y0 + offcut.y1) / 2)
-    return tag("g", rest + text(words, *middle, size), class_="offcut")
+    pieces = (
+        tag("rect", x=offcut.x0, y=-offcut.y1, width=w, height=h),
+        tag("path", class_="hatch", d=hatch(offcut, 2.5 * unit)),
+        text(words, (offcut.x0 + offcut.x1) / 2, size / 3 - (offcut.y0 + offcut.y1) / 2, size),
+    )
+    return tag("g", "".join(pieces), class_="offcut")
+
+
+def hatch(offcut: Offcut, step: float) -> str:
+    """Path of lines at 45 degrees across a rectangle, `step` apart along its sides."""
+    first = offcut.x0 - offcut.y1
+    count = int((offcut.x1 - offcut.y0 - first) / step)
+    lines = []
+    for k in range(1, count + 1):
+        shift = first + k * step  # x - y of the line
+        x0, x1 = max(offcut.x0, offcut.y0 + shift), min(offcut.x1, offcut.y1 + shift)
+        ends = ((x0, shift - x0), (x1, shift - x1))  # y turned over
+        lines.append("M" + "L".join(f"{number(x, 2)} {number(y, 2)}" for x, y in ends))
+    return "".join(lines)

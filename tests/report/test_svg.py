@@ -9,8 +9,9 @@ import pytest
 from flatprep.geom import bulge
 from flatprep.geom.bulge import Similarity
 from flatprep.report.badges import MOST_BADGES, finding_badges, spread, step_badges
+from flatprep.report.bundle import Offcut
 from flatprep.report.part_figure import frame, nice_length_mm, part_figure
-from flatprep.report.sheet_figure import Shape, label_place, shape_defs, sheet_figure, svg_matrix
+from flatprep.report.sheet_figure import Shape, hatch, label_place, shape_defs, sheet_figure, svg_matrix
 from flatprep.report.svg_path import path_data
 from flatprep.report.svg_tag import tag, text
 
@@ -122,6 +123,16 @@ def test_a_sheet_places_every_piece_by_reference(bundle):
     assert [g.get("id") for g in defs.iter("g")] == ["s1", "s2"]
     # outline and engraving of each; bend lines are not cut
     assert [p.get("class") for p in defs.iter("path")] == [None, "engraved"] * 2
+
+
+def test_an_offcut_is_hatched_at_45_degrees_and_no_line_leaves_it():
+    offcut = Offcut(1, 100.0, 20.0, 400.0, 120.0)
+    lines = re.findall(r"M([-\d.]+) ([-\d.]+)L([-\d.]+) ([-\d.]+)", hatch(offcut, 25.0))
+    assert len(lines) == 16  # (300 + 100) / 25
+    for x0, y0, x1, y1 in (tuple(map(float, line)) for line in lines):
+        assert x1 - x0 == pytest.approx(y0 - y1)
+        assert 100 <= x0 <= x1 <= 400
+        assert -120 <= y1 <= y0 <= -20
 
 
 def test_a_name_stands_on_material():
