@@ -13,7 +13,7 @@ import shapely
 from flatprep.geom.bulge import points_along
 
 CHORD_MM = 0.0005
-OPPOSITE_DEG = 177.0
+OPPOSITE_DEG = 178.0
 """Balls whose two points are seen from the centre under less are in corners."""
 
 
@@ -132,13 +132,22 @@ def disagreements(found, contours, *, side, most_mm, step_mm=0.05, tol_mm=0.02):
             said.append(
                 f"missed {seen.width[k]:.4f} at {((seen.p[k] + seen.q[k]) / 2).round(2)} between {low[k]}, {high[k]}"
             )
+    tree = shapely.STRtree(shapely.linestrings(np.stack(_chords(contours)[:2], axis=1)))
+    middle = (seen.p + seen.q) / 2
     for w in found:
         if w.width_mm >= most_mm - tol_mm:
             continue
-        pair = (low == w.contours[0]) & (high == w.contours[1])
-        middle = (seen.p + seen.q) / 2
-        near = pair & (np.hypot(*(middle - np.array(w.at)).T) < 0.3 + w.width_mm / 2)
-        if not near.any() or abs(seen.width[near].min() - w.width_mm) > tol_mm:
+        away = np.hypot(*(middle - np.array(w.at)).T)
+        near = (low == w.contours[0]) & (high == w.contours[1]) & (away < 0.2 + 0.15 * w.width_mm)
+        if near.any() and abs(seen.width[near].min() - w.width_mm) <= tol_mm:
+            continue
+        if not _closed_end(tree, w):
             other = seen.width[near].min() if near.any() else None
             said.append(f"told {w.width_mm:.4f} at {np.round(w.at, 2)} between {w.contours}, balls find {other}")
     return said
+
+
+def _closed_end(tree, w):
+    """Whether no ball fits where a width is told, since what closes the end of a taper is in its way."""
+    _, apart = tree.query_nearest(shapely.Point(w.at), return_distance=True, all_matches=False)
+    return bool(apart[0] < 0.49 * w.width_mm)
