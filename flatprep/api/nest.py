@@ -176,14 +176,15 @@ def _item(job: Job, piece: Piece) -> Item:
             f"{job.path}: part {ask.name!r}: no {missing}", f"add {missing} to the part, or give --{missing}"
         )
     return Item(
-        piece.part,
-        ask.material.id,
-        ask.thickness_mm,
-        ask.quantity * job.sets,
-        ask.quantity_opposite * job.sets,
-        ask.turns_deg,
-        ask.may_flip,
-        ask.grain,
+        part=piece.part,
+        material=ask.material.id,
+        thickness_mm=ask.thickness_mm,
+        quantity=ask.quantity * job.sets,
+        quantity_opposite=ask.quantity_opposite * job.sets,
+        turns_deg=ask.turns_deg,
+        may_flip=ask.may_flip,
+        grain=ask.grain,
+        filler=ask.filler,
     )
 
 
@@ -198,17 +199,19 @@ def _sheet(job: Job, stock: Stock) -> StockSheet:
     if width is None:
         raise JobError(f"{job.path}: stock {stock.name!r}: no width", "give length and width, or an outline")
     return StockSheet(
-        stock.name,
-        stock.material.id,
-        stock.thickness_mm,
-        length,
-        width,
-        outline,
-        holes,
-        stock.count,
-        None if stock.price_per_sheet is None else float(stock.price_per_sheet),
-        None if stock.price_per_metre is None else float(stock.price_per_metre),
-        stock.grain,
+        name=stock.name,
+        material=stock.material.id,
+        thickness_mm=stock.thickness_mm,
+        length_mm=length,
+        width_mm=width,
+        outline=outline,
+        holes=holes,
+        count=stock.count,
+        price=None if stock.price_per_sheet is None else float(stock.price_per_sheet),
+        price_per_metre=None if stock.price_per_metre is None else float(stock.price_per_metre),
+        grain=stock.grain,
+        margins_mm=stock.margins_mm,
+        keep_out=stock.keep_out,
     )
 
 

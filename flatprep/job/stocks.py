@@ -12,7 +12,7 @@ from flatprep.profile.toml_check import Table
 
 KEYS = (
     "name", "material", "thickness", "length", "width", "outline", "count", "price_per_sheet", "price_per_metre",
-    "grain", "measured_thickness",
+    "grain", "measured_thickness", "margins", "keep_out",
 )  # fmt: skip
 """Every key of a ``[[stock]]``."""
 
@@ -45,6 +45,8 @@ def read_stock(table: Table, context: Context) -> Stock:
         if table.has("measured_thickness")
         else None,
         where=table.place,
+        margins_mm=_margins(table, context) if table.has("margins") else None,
+        keep_out=_keep_out(table, context) if table.has("keep_out") else (),
     )
 
 
@@ -54,6 +56,7 @@ def _titled(table: Table) -> Table:
     return Table(table.data, table.file, title, table.error)
 
 
+Box = tuple[float, float, float, float]
 Outline = Path | tuple[Point, ...] | None
 
 
@@ -86,6 +89,35 @@ def _outline(table: Table, context: Context) -> Outline:
     if not is_simple(ring, chord_mm=0.01):
         raise table.fail("outline", "an outline that does not cross or touch itself")
     return points
+
+
+def _margins(table: Table, context: Context) -> Box:
+    if table.has("outline"):
+        raise table.fail("margins", "left out where an outline is given: it has no left, right, bottom and top")
+    left, right, bottom, top = _four(
+        table, "margins", table.get("margins"), context, "four lengths: left, right, bottom, top"
+    )
+    if min(left, right, bottom, top) < 0.0:
+        raise table.fail("margins", "four lengths of 0 or more: left, right, bottom, top")
+    return left, right, bottom, top
+
+
+def _keep_out(table: Table, context: Context) -> tuple[Box, ...]:
+    shape = "a list of boxes [x0, y0, x1, y1], such as [[0, 600, 60, 660]]"
+    value = table.get("keep_out")
+    if not isinstance(value, list):
+        raise table.fail("keep_out", shape)
+    boxes = tuple(_four(table, "keep_out", one, context, shape) for one in value)
+    if any(x0 >= x1 or y0 >= y1 for x0, y0, x1, y1 in boxes):
+        raise table.fail("keep_out", f"{shape}, with x0 below x1 and y0 below y1")
+    return boxes
+
+
+def _four(table: Table, key: str, value: object, context: Context, shape: str) -> Box:
+    if not isinstance(value, list) or len(value) != 4:
+        raise table.fail(key, shape)
+    a, b, c, d = (table.checked_length_mm(key, item, unit=context.unit) for item in value)
+    return a, b, c, d
 
 
 def _count(table: Table) -> int | None:

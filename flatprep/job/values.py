@@ -148,7 +148,11 @@ class JobPart:
 
 @dataclass(frozen=True, slots=True)
 class Stock:
-    """Sheets or a remnant; `length_mm` None with `outline` None means open length, `count` None any number."""
+    """Sheets or a remnant; `length_mm` None with `outline` None means open length, `count` None any number.
+
+    `margins_mm` is left, right, bottom and top where they differ from the job's margin; `keep_out` are boxes
+    (x0, y0, x1, y1), mm, for clamps and screws.
+    """
 
     name: str
     material: Material
@@ -163,6 +167,8 @@ class Stock:
     measured_thickness_mm: float | None = None
     where: str = ""
     """File and key, for messages: ``job.toml: stock 1 (al3)``."""
+    margins_mm: tuple[float, float, float, float] | None = None
+    keep_out: tuple[tuple[float, float, float, float], ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

@@ -100,6 +100,9 @@ def test_stock(job, tmp_path):
     sheet, strip, rest, drawn = job.stock
     assert (sheet.length_mm, sheet.width_mm, sheet.count, sheet.grain) == (2500.0, 1250.0, 2, "length")
     assert (sheet.price_per_sheet, sheet.measured_thickness_mm) == (Decimal("96.05"), 2.9)
+    assert sheet.margins_mm == (10.0, 25.4, 8.0, 0.0)
+    assert sheet.keep_out == ((0.0, 600.0, 60.0, 660.0),)
+    assert (strip.margins_mm, strip.keep_out) == (None, ())
     assert (strip.length_mm, strip.width_mm, strip.count, strip.price_per_metre) == (None, 1219.2, None, Decimal("40"))
     assert strip.thickness_mm == pytest.approx(0.0598 * 25.4)  # 16 gauge mild steel
     assert rest.outline == ((0.0, 0.0), (900.0, 0.0), (700.0, 400.0))

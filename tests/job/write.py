@@ -48,6 +48,8 @@ count = 2
 price_per_sheet = 96.05
 grain = "length"
 measured_thickness = 2.9
+margins = [10, "1in", 8, 0]
+keep_out = [[0, 600, 60, 660]]
 
 [[stock]]
 name = "strip"
