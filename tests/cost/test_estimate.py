@@ -64,6 +64,8 @@ def test_bench_work_is_taken_off():
     assert (e.parts[0].mass_kg, e.mass_kg) == pytest.approx((30000.0 * 7850e-9, 30000.0 * 7850e-9))
     done = (30000.0 - 1000.0) * 7850e-9
     assert (e.parts[0].finished_mass_kg, e.finished_mass_kg) == pytest.approx((done, done))
+    sets = estimate([costed(rectangle("a", 100.0, 100.0), 6, removed=1000.0)], ask=Ask(sets=2))
+    assert sets.finished_mass_kg == pytest.approx(3 * done)
 
 
 @pytest.mark.parametrize(
@@ -86,6 +88,7 @@ def test_the_mass_limit_is_warned_of_before_it_breaks(limit, words):
 def test_without_a_layout_no_cost_is_known():
     e = estimate(ABC, [SHEET])
     assert (e.material_cost, e.utilisation, e.stock) == (None, None, ())
+    assert (e.credits, e.discount_percent) == (0, 0)
     assert all(p.line_cost is None and p.material_cost is None for p in e.parts)
     assert "material cost not known: no layout" in e.notes
 
