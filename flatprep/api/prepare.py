@@ -4,7 +4,7 @@ import hashlib
 import json
 import time
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 
 from flatprep import __version__
@@ -14,6 +14,8 @@ from flatprep.api.work import checklist_job, estimate_job
 from flatprep.base.files import make_folder, write_together
 from flatprep.base.progress import Progress
 from flatprep.base.safe_names import safe_stems
+from flatprep.bench.opposite import opposite_part, opposite_steps
+from flatprep.model.drawing import Part
 from flatprep.model.estimate import Estimate
 from flatprep.model.finding import Finding
 from flatprep.model.layout import Layout
@@ -116,7 +118,17 @@ def _files(done: Prepared, folder: Path) -> Iterator[tuple[Path, str | None]]:
     stems = safe_stems([card.name for card in done.bundle.cards])
     for stem, card in zip(stems, done.bundle.cards, strict=True):
         yield folder / "bench" / f"{stem}.html", bench_sheet_html(done.bundle, card)
+        if card.part and card.quantity_opposite:
+            yield folder / "bench" / f"{stem}-opposite.html", bench_sheet_html(done.bundle, _opposite(card, card.part))
     yield folder / "report.html", report_html(done.bundle)
+
+
+def _opposite(card: PartCard, part: Part) -> PartCard:
+    """Return the card of a handed part's turned-over pieces: their own outline, mirrored."""
+    return replace(
+        card, name=f"{card.name} (opposite hand)", part=opposite_part(part), quantity=card.quantity_opposite,
+        quantity_opposite=0, findings=(), steps=opposite_steps(card.steps),
+    )  # fmt: skip
 
 
 def _bundle(

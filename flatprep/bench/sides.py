@@ -7,6 +7,7 @@ from flatprep.bench.part import BenchPart
 from flatprep.bench.questions import SIDED
 from flatprep.job.values import BendAsk, Work
 
+_ON_OPPOSITE = "on turned-over pieces"
 _OTHER = {"A": "B", "B": "A"}
 
 
@@ -27,4 +28,9 @@ def opposite_note(op: Op, bench: BenchPart) -> Op:
     """Return the operation with the side that it is done from on turned-over pieces."""
     if op.side is None or not bench.quantity_opposite:
         return op
-    return op.with_note(f"on the {bench.quantity_opposite} turned-over pieces from side {_OTHER[op.side]} as drawn")
+    return op.with_note(f"{_ON_OPPOSITE} ({bench.quantity_opposite}) from side {_OTHER[op.side]} as drawn")
+
+
+def is_opposite_note(sentence: str) -> bool:
+    """Tell whether a sentence is that of `opposite_note`."""
+    return sentence.startswith(_ON_OPPOSITE)

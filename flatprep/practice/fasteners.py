@@ -4,7 +4,7 @@ import re
 from dataclasses import dataclass
 from enum import StrEnum
 
-from flatprep.profile.hardware.heads import find_counterbore, find_countersink
+from flatprep.profile.hardware.heads import find_counterbore, find_countersink, names_head
 from flatprep.profile.hardware.names import UnknownHardwareError, inch_size, tidy
 from flatprep.profile.hardware.nuts import find_nut
 from flatprep.profile.hardware.pins import Pin, ShoulderScrew, find_pin, find_shoulder_screw
@@ -73,16 +73,11 @@ def find_fastener(text: str) -> Fastener:
         return Fastener(
             FastenerKind.DOWEL, f"dowel pin {pin.diameter_mm:g} {pin.pin_class} {pin.standard}", None, pin=pin
         )
-    try:
-        sink = find_countersink(_thread_to_size(_NOISE.sub(" ", flat)))
-    except UnknownHardwareError:
+    if not names_head(flat) and not re.search(r"countersunk", flat, re.IGNORECASE):
         return _headed(text, flat)
+    sink = find_countersink(flat)
     thread = find_thread(_coarse(sink.screw))
     return Fastener(FastenerKind.SUNK, f"countersunk screw {sink.name}", thread, sink.sink_dia_mm)
-
-
-def _thread_to_size(text: str) -> str:
-    return re.sub(r"(?<=\d)-\d\d(?!/)(?:\s*UN[CF])?", "", text)
 
 
 def _shoulder(text: str) -> Fastener:

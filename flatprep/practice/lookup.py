@@ -16,8 +16,10 @@ from flatprep.profile.material import Material
 _GENERAL = re.compile(
     r"iso\s*2768(?:-1)?[\s-]*([fmcv])[HKL]?\s+(\d+(?:\.\d+)?)\s*(?:mm)?(?:\s+(radius|chamfer))?", re.I
 )
-_THERMAL = re.compile(r"(?:din\s*)?(?:en\s*)?iso\s*9013(?:[\s-]+class)?[\s-]+([12])\s+(\d+(?:\.\d+)?)\s*(?:mm)?", re.I)
-_RANGE = re.compile(r"(?:en\s*)?iso\s*9013[\s-]+(u|rz5?)[\s-]*(?:range\s*)?(\d)", re.I)
+_THERMAL = re.compile(
+    r"(?:din\s*)?(?:en\s*)?iso\s*9013(?:[\s-]+class)?[\s-]+([12])\s+(\d+(?:\.\d+)?)\s*(?:mm)?", re.IGNORECASE
+)
+_RANGE = re.compile(r"(?:en\s*)?iso\s*9013[\s-]+(u|rz5?)[\s-]*(?:range\s*)?(\d)", re.IGNORECASE)
 
 
 @dataclass(frozen=True, slots=True)

@@ -13,7 +13,7 @@ from flatprep.practice.threads import (
     percent_of_thread,
     stress_area_mm2,
 )
-from flatprep.profile.hardware.clearance import find_clearance
+from flatprep.profile.hardware.clearance import find_clearance, split_series
 from flatprep.profile.hardware.drills import find_drill
 from flatprep.profile.hardware.heads import find_counterbore, find_countersink
 from flatprep.profile.hardware.nuts import find_nut
@@ -52,7 +52,7 @@ def thread(q: Question) -> Values:
 
 def clearance(q: Question) -> Values:
     """``M6``, ``1/4``."""
-    found = find_clearance(q.name, q.own)
+    found = find_clearance(split_series(q.name)[0], q.own)
     values: dict[str, Value] = {"fine_mm": found.fine_mm, "medium_mm": found.medium_mm, "coarse_mm": found.coarse_mm}
     values |= {f"{series}_drill": found.drill(series) for series in ("fine", "medium", "coarse")}
     return found.screw, values, found.source

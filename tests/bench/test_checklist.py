@@ -524,7 +524,7 @@ def test_side_bound_work_forbids_turning_over_and_asks_for_its_side():
     assert "from which side, A or B?" in found.questions[0]
     (told,) = checklist([bench(part, replace(sunk, side="B"), thickness=5.0, quantity_opposite=3)]).parts
     assert not told.questions
-    assert "on the 3 turned-over pieces from side A as drawn" in one(told.steps, K.COUNTERSINK).note
+    assert "on turned-over pieces (3) from side A as drawn" in one(told.steps, K.COUNTERSINK).note
     (plain,) = checklist([bench(part)]).parts
     assert plain.flip == ""
 

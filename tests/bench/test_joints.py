@@ -241,7 +241,7 @@ def test_wrong_joints_name_file_key_and_value(ask, words):
     ("name", "title", "head"),
     [
         ("M12", "hex bolt M12", 20.785), ("M12 ISO 4017", "hex bolt M12", 20.785),
-        ("M8 hex bolt", "hex bolt M8", 15.011),
+        ("M8 hex bolt", "hex bolt M8", 15.011), ("M14 hex", "hex bolt M14", 24.249),
         ("M8x1 hex", "hex bolt M8x1", 15.011), ("M6 ISO 4762", "socket head screw M6", 10.0),
         ("M6 socket head screw", "socket head screw M6", 10.0),
         ("1/4-20 socket", "socket head screw 1/4-20 UNC", 9.525),

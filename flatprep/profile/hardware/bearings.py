@@ -14,7 +14,7 @@ _SEALS = re.compile(
     r"[\s-]*(?:2?RSR?1?|2RSH|2RZ|DDU?|LLU|VV|2RS1|RS1|Z{1,2}|2Z|C[2-5]|M?P6|TN9?)(?=$|[\s-])", re.IGNORECASE
 )
 _SHIELD = re.compile(r"RS|RZ|Z|DD|LL|VV", re.IGNORECASE)
-_WORD = re.compile(r"\b(?:ball\s+)?bearing\b|\bdeep groove\b", re.IGNORECASE)
+_WORD = re.compile(r"\b(?:ball\s+)?bearing\b|\bdeep groove\b|\bDIN[\s-]*625(?:-1)?\b|\bISO[\s-]*15\b", re.IGNORECASE)
 
 
 @dataclass(frozen=True, slots=True)

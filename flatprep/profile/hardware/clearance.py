@@ -7,7 +7,7 @@ from functools import lru_cache
 from pathlib import Path
 
 from flatprep.base.units import MM_PER_UNIT
-from flatprep.profile.hardware.names import screw_size, tidy, unknown
+from flatprep.profile.hardware.names import screw_in, tidy, unknown
 from flatprep.profile.hardware.table import HardwareTable, family, table
 from flatprep.profile.toml_check import Table
 
@@ -68,7 +68,7 @@ def find_clearance(name: str, own: Sequence[Path] = ()) -> Clearance:
     known = all_clearances(own)
     text = re.sub(r"\s*x\s*", "x", tidy(name))
     numbered = re.fullmatch(r"(\d{1,2})-\d\d(?:\s*-?\s*UN[CF])?", text, re.IGNORECASE)
-    size = f"#{int(numbered[1])}" if numbered else screw_size(_THREAD_PART.sub("", text))
+    size = f"#{int(numbered[1])}" if numbered else screw_in(_THREAD_PART.sub("", text))
     found = [c for c in known if c.screw == size]
     if not found:
         raise unknown("clearance hole", name, [c.screw for c in known])

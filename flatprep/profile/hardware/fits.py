@@ -87,7 +87,7 @@ def parse_fit(text: str, own: Sequence[Path] = ()) -> Fit:
     UnknownHardwareError
         For a text that is no fit, a class that is not in the tables, a size outside 0 to 120 mm.
     """
-    match = _FIT.fullmatch(tidy(text))
+    match = _FIT.fullmatch(re.sub(r"^([A-Z]{1,2}\d{1,2})\s+(\S+)$", r"\2 \1", tidy(text)))
     if match is None:
         raise UnknownHardwareError(f'fit "{text}" is not known', 'write size and class, such as "22 N7" or "25 H7/k6"')
     size = float(match[1])

@@ -7,7 +7,7 @@ from functools import lru_cache
 from pathlib import Path
 
 from flatprep.base.units import MM_PER_UNIT
-from flatprep.profile.hardware.names import metric_size, screw_size, tidy, unknown
+from flatprep.profile.hardware.names import screw_in, tidy, unknown
 from flatprep.profile.hardware.table import HardwareTable, table
 from flatprep.profile.toml_check import Table
 
@@ -92,7 +92,7 @@ def find_countersink(name: str, own: Sequence[Path] = ()) -> Countersink:
     """
     known = all_countersinks(own)
     rest, standard = _split_standard(name, own)
-    size = screw_size(re.sub(r"\s*(?:-\d\d)?\s*UN[CF]$", "", rest))
+    size = screw_in(rest)
     found = [c for c in known if c.screw == size and standard in (None, c.standard)]
     if len(found) == 1 and (standard is not None or len({c.standard for c in found}) == 1):
         return found[0]
@@ -100,6 +100,11 @@ def find_countersink(name: str, own: Sequence[Path] = ()) -> Countersink:
         raise unknown("countersink", name, [c.name for c in found], "the heads of that screw differ, name the standard")
     near = [c.name for c in known if c.screw == size] or [c.name for c in known if c.standard == standard]
     raise unknown("countersink", name, near or [c.name for c in known])
+
+
+def names_head(name: str, own: Sequence[Path] = ()) -> bool:
+    """Tell whether a text names a standard of countersunk heads."""
+    return _split_standard(name, own)[1] is not None
 
 
 def _split_standard(name: str, own: Sequence[Path]) -> tuple[str, str | None]:
@@ -133,8 +138,7 @@ def find_counterbore(name: str, own: Sequence[Path] = ()) -> Counterbore:
         With the nearest known names.
     """
     known = _counterbores(tuple(own))
-    text = re.sub(r"\b(?:ISO[\s-]*4762|DIN[\s-]*912|DIN[\s-]*974(?:-1)?)\b", " ", tidy(name), flags=re.IGNORECASE)
-    found = [c for c in known if c.screw == metric_size(text)]
+    found = [c for c in known if c.screw == screw_in(name)]
     if not found:
         raise unknown("counterbore", name, [f"{c.screw} ISO 4762" for c in known])
     return found[0]

@@ -10,6 +10,9 @@ from flatprep.base.names import did_you_mean
 
 _NUMBER_SIZE = re.compile(r"^(?:no\.?\s*|nr\.?\s*|#\s*)(\d{1,2})(?=\D|$)", re.IGNORECASE)
 _TIMES = re.compile(r"\s*[x*]\s*", re.IGNORECASE)
+_STANDARD = re.compile(
+    r"\b(?:DIN|EN|ISO|ASME|ANSI|BS)(?:[\s-]*(?:EN|ISO))*[\s-]*B?\d[\d.-]*(?:/[\d.]+)*", re.IGNORECASE
+)
 _INCH_MARK = re.compile(r"(?<=\d)\s*(?:\"|''|in\b\.?|inch\b)", re.IGNORECASE)
 
 
@@ -64,6 +67,13 @@ def _fraction(size: Fraction) -> str:
 def screw_size(text: str) -> str | None:
     """Return a metric or inch screw size in one form, or None."""
     return metric_size(text) or inch_size(text)
+
+
+def screw_in(text: str) -> str | None:
+    """Return the screw size that stands in a text among standards, pitches and words, or None."""
+    bare = _STANDARD.sub(" ", tidy(text))
+    match = re.search(r"(?<![\w.])(?:[mM]\s?\d+(?:\.\d+)?|#\d{1,2}|\d+-\d+/\d+|\d+/\d+|\d?\.\d+)(?![\d/])", bare)
+    return screw_size(match[0]) if match else screw_size(bare)
 
 
 def inches(size: str) -> float:

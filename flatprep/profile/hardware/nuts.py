@@ -7,7 +7,7 @@ from functools import lru_cache
 from pathlib import Path
 
 from flatprep.base.units import MM_PER_UNIT
-from flatprep.profile.hardware.names import screw_size, tidy, unknown
+from flatprep.profile.hardware.names import screw_in, tidy, unknown
 from flatprep.profile.hardware.table import table
 
 STANDARDS = ("ISO 4032", "ASME B18.2.2", "DIN 934", "ASME B18.6.3")
@@ -65,7 +65,7 @@ def find_nut(name: str, own: Sequence[Path] = ()) -> Nut:
     for standard, pattern in _ASKED.items():
         if re.search(rf"\b(?:{pattern})\b", text, re.IGNORECASE):
             text, asked = re.sub(rf"\b(?:{pattern})\b", " ", text, flags=re.IGNORECASE), standard
-    size = screw_size(text)
+    size = screw_in(text)
     found = [n for n in known if n.screw == size and asked in (None, n.standard)]
     if not found:
         raise unknown("nut", name, [n.name for n in known if n.screw == size] or [n.name for n in known])

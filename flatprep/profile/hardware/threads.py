@@ -119,7 +119,7 @@ def find_thread(name: str, own: Sequence[Path] = ()) -> Thread:
         With the nearest known names; also for an inch size without threads per inch or series.
     """
     known = all_threads(own)
-    asked = _CLASS.sub("", re.sub(r"\s*x\s*", "x", tidy(name), flags=re.IGNORECASE)).strip(" -")
+    asked = _bare(name)
     match = _METRIC.fullmatch(asked)
     found = _find_metric(match, known) if match else _find_unified(asked, known)
     if len(found) == 1:
@@ -127,6 +127,13 @@ def find_thread(name: str, own: Sequence[Path] = ()) -> Thread:
     if found:
         raise unknown("thread", name, [t.name for t in found], "several threads have that size")
     raise unknown("thread", name, _near(asked, known))
+
+
+def _bare(name: str) -> str:
+    """Return a name without tolerance class, hand and words; the series of ``UNC 1/4-20`` goes behind."""
+    text = _CLASS.sub("", re.sub(r"\s*x\s*", "x", tidy(name), flags=re.IGNORECASE))
+    text = re.sub(r"\b(?:ISO|metric|thread|coarse)\b", " ", text, flags=re.IGNORECASE).strip(" -")
+    return re.sub(r"^(UN[CF])\s+(.+)$", r"\2 \1", text, flags=re.IGNORECASE)
 
 
 def _near(asked: str, known: Sequence[Thread]) -> list[str]:

@@ -145,7 +145,9 @@ def test_a_sink_takes_its_head(sink):
     ("text", "name"),
     [("M5 ISO 10642", "M5 ISO 10642"), ("ISO 10642 M5", "M5 ISO 10642"), ("m5 iso10642", "M5 ISO 10642"),
      ("M4 ISO 7046", "M4 ISO 2009"), ("M4 DIN 965", "M4 DIN 963"), ("M6 DIN7991", "M6 DIN 7991"),
-     ("1/4 ASME B18.3", "1/4 ASME B18.3"), ('1/4" flat socket', "1/4 ASME B18.3"), ("#10 B18.6.3", "#10 ASME B18.6.3")],
+     ("1/4 ASME B18.3", "1/4 ASME B18.3"), ("M5 (ISO 10642)", "M5 ISO 10642"), ("M4 ISO 7046-1", "M4 ISO 2009"),
+        ("M4 ISO 2009/7046", "M4 ISO 2009"), ("1/4-20 ASME B18.3 flat socket", "1/4 ASME B18.3"),
+        ('1/4" flat socket', "1/4 ASME B18.3"), ("#10 B18.6.3", "#10 ASME B18.6.3")],
 )  # fmt: skip
 def test_countersink_names(text, name):
     assert find_countersink(text).name == name
