@@ -9,6 +9,7 @@ from flatprep.rules import (
     empty_drawing,
     hole_near_bend,
     inside_corner,
+    joint_fit,
     layer_role,
     loose_island,
     lost_in_kerf,
@@ -61,6 +62,7 @@ ALL: tuple[Rule, ...] = (
     thin_web.RULE,
     narrow_slot.RULE,
     inside_corner.RULE,
+    joint_fit.RULE,
     lost_in_kerf.RULE,
     not_measured.RULE,
     # bends

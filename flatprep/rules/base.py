@@ -25,6 +25,8 @@ class Context:
     job_part : JobPart or None
         The part of the job that names this drawing, with its bench work and bends.
     tol : Tolerances
+    measured_thickness_mm : float or None
+        What the sheet measures, where somebody measured it.
     """
 
     drawing: Drawing
@@ -33,6 +35,7 @@ class Context:
     thickness_mm: float | None = None
     job_part: JobPart | None = None
     tol: Tolerances = DEFAULT
+    measured_thickness_mm: float | None = None
 
     @cached_property
     def parts(self) -> tuple[MeasuredPart, ...]:

@@ -245,3 +245,31 @@ def test_thickness_out_of_range(thickness, limit):
     told = found("thickness-out-of-range", context(part(PLATE), process=process, thickness=thickness))
     assert [f.limit for f in told] == ([limit] if limit else [])
     assert all(f.measured == thickness for f in told)
+
+
+@pytest.mark.parametrize(
+    ("width", "told"),
+    [
+        pytest.param(3.098, "jams", id="just-below"),
+        pytest.param(3.1, None, id="exactly-as-measured"),
+        pytest.param(3.1 - 1e-9, None, id="rounding-noise"),
+        pytest.param(3.15, None, id="with-clearance"),
+        pytest.param(2.7, None, id="not-drawn-for-the-sheet"),
+    ],
+)
+@pytest.mark.parametrize("notch", [False, True], ids=["slot", "notch"])
+def test_joint_fit(width, told, notch):
+    open_slot = path((0, 0), (50, 0), (50, 20), (50 + width, 20), (50 + width, 0), (100, 0), (100, 60), (0, 60))
+    plate = part(open_slot) if notch else part(PLATE, rectangle(40, 20, 20, width))
+    ctx = replace(context(plate, process=laser({})), measured_thickness_mm=3.1)
+    assert [(str(told) in f.message, f.limit) for f in found("joint-fit", ctx)] == ([(True, 3.1)] if told else [])
+    assert [f.measured for f in found("joint-fit", ctx)] == ([pytest.approx(width)] if told else [])
+
+
+def test_joint_rattles():
+    ctx = context(part(PLATE, rectangle(40, 20, 20, 3.2)), process=laser({}))
+    assert found("joint-fit", ctx) == [], "nobody measured the sheet"
+    assert found("joint-fit", replace(ctx, measured_thickness_mm=2.9)) == []
+    (finding,) = found("joint-fit", replace(ctx, measured_thickness_mm=2.89))
+    assert "rattles" in finding.message
+    assert finding.limit == pytest.approx(3.19)
