@@ -15,6 +15,7 @@ from flatprep.cost.prices import priced
 from flatprep.job.values import Job
 from flatprep.model.alternative import PartAlternatives
 from flatprep.model.finding import Severity
+from flatprep.profile.gauges import inch_stock_mm
 from flatprep.profile.material import Material
 from flatprep.profile.material_load import all_materials, load_material
 from flatprep.profile.process import Process
@@ -97,11 +98,12 @@ def _materials(job: Job, ask: WhatIf) -> tuple[Material, ...]:
 
 
 def _sold(job: Job, material: Material | None) -> Material | None:
-    """Return the material with the job's own stock thicknesses among those sold, and its price."""
+    """Return the material with the thicknesses sold in the job's unit and those of its own stock, and its price."""
     if material is None:
         return None
     own = {s.thickness_mm for s in job.stock if s.material.id == material.id}
-    return priced([replace(material, stock_mm=tuple(sorted({*material.stock_mm, *own})))], job.stock)[0]
+    usual = inch_stock_mm(material) if job.units in ("in", "ft") and material.stock_mm else material.stock_mm
+    return priced([replace(material, stock_mm=tuple(sorted({*usual, *own})))], job.stock)[0]
 
 
 def _processes(job: Job, folders: Sequence[Path]) -> tuple[Process, ...]:

@@ -11,6 +11,8 @@ from flatprep.profile.toml_check import Table, read_toml
 from flatprep.profile.where import SHIPPED
 
 _GAUGE = re.compile(r"\s*#?(\d{1,2})\s*-?\s*(?:ga|gauge|gage|swg)\.?\s*", re.IGNORECASE)
+STOCK_GAUGES = (26, 24, 22, 20, 18, 16, 14, 12, 11, 10, 7)
+STOCK_FRACTIONS = (3 / 16, 1 / 4, 5 / 16, 3 / 8, 1 / 2, 5 / 8, 3 / 4, 1.0)
 METALS = ("steel", "stainless", "aluminium", "galvanised")
 FILE = SHIPPED / "hardware" / "gauges.toml"
 _FAMILY_METAL = {"low-carbon-steel": "steel", "wear-plate": "steel", "stainless": "stainless", "aluminium": "aluminium"}
@@ -84,6 +86,17 @@ def gauge_mm(number: int, metal: str) -> float:
             f"no gauge {number} in {metal}", did_you_mean(str(number), [str(gauge) for gauge in column])
         )
     return column[number] * 25.4
+
+
+def inch_stock_mm(material: Material) -> tuple[float, ...]:
+    """Return the thicknesses that a material is usually sold in by inches, mm, rising.
+
+    Metals with a gauge table by the gauges that shops stock (the even ones from 26 to 10, and 11 and 7), others in
+    1/16 and 1/8 in; from 3/16 in on by fractions: common practice.
+    """
+    metal = material.gauge_metal
+    thin = [1 / 16, 1 / 8] if metal is None else [_table()[g][metal] for g in STOCK_GAUGES if metal in _table()[g]]
+    return tuple(sorted(inch * 25.4 for inch in {*thin, *STOCK_FRACTIONS}))
 
 
 def gauge_source() -> str:

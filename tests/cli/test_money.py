@@ -146,6 +146,18 @@ def test_alternatives_put_lint_to_work(job):
     assert same["findings"] == ["small-hole"]  # 10 mm under the warning level of 1.2 thicknesses
 
 
+def test_alternatives_of_an_inch_job_are_sold_by_inches(job):
+    text = JOB.replace('process = "fibre-laser"', 'process = "fibre-laser"\nunits = "in"').replace(
+        "= 3\n", '= "11ga"\n'
+    )
+    job.write_text(text.replace("1000", "96").replace("500", "48"))
+    done = run("alternatives", job, "--part", "leaf", "--try", "S235", "--format", "json")
+    options = json.loads(done.stdout)["parts"][0]["options"]
+    # 11 gauge aluminium is 0.0907 in; steel as stiff needs 0.0630: 14 gauge, 0.0747 in (16 gauge is 0.0598)
+    stiff = next(o for o in options if o["basis"] == "stiffness" and o["material"] == "mild-steel")
+    assert stiff["thickness_mm"] == pytest.approx(0.0747 * 25.4)
+
+
 def test_alternatives_as_text_and_csv(job):
     text = run("alternatives", job, "--layout", job.parent / "layout.json")
     assert text.exit_code == 0

@@ -3,7 +3,7 @@
 import pytest
 
 from flatprep.base.errors import FlatprepError
-from flatprep.profile.gauges import ThicknessError, gauge_mm, gauge_source, parse_thickness_mm
+from flatprep.profile.gauges import ThicknessError, gauge_mm, gauge_source, inch_stock_mm, parse_thickness_mm
 from flatprep.profile.material_load import load_material
 from tests.reference_tables import table
 
@@ -60,6 +60,28 @@ def test_no_thicknesses(text, material, words):
         parse_thickness_mm(text, "mm", load_material(material) if material else None)
     assert isinstance(caught.value, FlatprepError)
     assert caught.value.remedy
+
+
+@pytest.mark.parametrize(
+    ("material", "thin", "count"),
+    [
+        # steel from 26 gauge, 0.0179 in; 7 gauge is 0.1793, under 3/16; eleven gauges and eight fractions
+        ("mild-steel", 0.0179, 19),
+        ("al-6061-t6", 0.0159, 19),
+        # 7 gauge stainless is 3/16 itself
+        ("stainless-304", 0.0187, 18),
+        # galvanised sheet has no 7 gauge in the table
+        ("galvanised-steel", 0.0217, 18),
+        ("acrylic", 0.0625, 10),
+    ],
+)
+def test_thicknesses_sold_by_inches(material, thin, count):
+    sold = inch_stock_mm(load_material(material))
+    assert sold[0] == pytest.approx(thin * 25.4)
+    assert sold[-1] == 25.4
+    assert len(sold) == count
+    assert {4.7625, 6.35, 7.9375, 9.525, 12.7, 15.875, 19.05} <= {round(t, 6) for t in sold}
+    assert list(sold) == sorted(sold)
 
 
 def test_the_source_is_told():
