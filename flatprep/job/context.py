@@ -18,6 +18,10 @@ from flatprep.profile.process_load import load_process
 from flatprep.profile.toml_check import Table
 
 
+MOST_MONEY = 1e12
+"""No amount is larger: decimal sums then keep their cents."""
+
+
 @dataclass(frozen=True, slots=True)
 class JobOptions:
     """The command line's words, all optional.
@@ -144,6 +148,8 @@ class Context:
 def money(table: Table, key: str) -> Decimal | None:
     """Return an amount of money exactly as it is written, or None where the key is not there."""
     number = table.optional_number(key, least=0.0)
+    if number is not None and number > MOST_MONEY:
+        raise table.fail(key, f"a number from 0 to {MOST_MONEY:g}")
     return None if number is None else Decimal(str(table.get(key)))
 
 

@@ -93,6 +93,8 @@ def _span(top: Table, key: str) -> tuple[float, float] | None:
 
 def _price(top: Table) -> Decimal | None:
     price = top.optional_number("price_per_kg", least=0.0)
+    if price is not None and price > 1e12:
+        raise top.fail("price_per_kg", "a number from 0 to 1e12")
     return None if price is None else Decimal(str(price))
 
 

@@ -151,6 +151,13 @@ def test_remnants_count_with_their_holes_and_empty_sheets_not_at_all():
     assert (e.stock[0].count, e.material_cost) == (1, Decimal("100.00"))
 
 
+def test_the_largest_amounts_keep_their_cents():
+    dear = stock("dear", "999999999999.99")
+    sheets = [sheet(dear, "a", "b", "c") for _ in range(20)]
+    e = estimate([costed(i.part, 20) for i in ABC], [dear], layout(*sheets))
+    assert e.material_cost == sum(p.line_cost for p in e.parts) == Decimal("19999999999999.80")
+
+
 def test_pieces_without_a_place_are_said():
     items = [costed(rectangle("a", 20, 100), 3), costed(rectangle("b", 20, 100), 1)]
     e = estimate(items, [SHEET], layout(sheet(SHEET, "a", "a")))

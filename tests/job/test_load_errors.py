@@ -58,6 +58,7 @@ CASES = [
     ("count = 2\nprice_per_sheet", "count = 0\nprice_per_sheet", "count = 0: must be a whole number from 1"),
     ('count = "any"', 'count = "all"', 'count = "all": must be a whole number of sheets, or "any"'),
     ("price_per_sheet = 96.05", "price_per_sheet = -1", "price_per_sheet = -1: must be a number of 0 or more"),
+    ("price_per_sheet = 96.05", "price_per_sheet = 1e30", "price_per_sheet = 1e+30: must be a number from 0 to 1e+12"),
     ("price_per_sheet = 96.05", "price_per_sheet = nan", "price_per_sheet = nan: must be a number"),
     (
         "price_per_sheet = 96.05",

@@ -122,6 +122,7 @@ def test_bend_limits_in_mm_and_table():
         ({"strength_kind": "hard"}, 'strength_kind = "hard"'),
         ({"elastic_modulus": -1}, "elastic_modulus = -1"),
         ({"price_per_kg": -2}, "price_per_kg = -2"),
+        ({"price_per_kg": 1e30}, "price_per_kg = 1e+30"),
         ({"cut": {"laser": {"verdict": "yes"}}}, "cut: unknown key laser"),
         ({"cut": {"router": {"verdict": "maybe"}}}, 'cut, router: verdict = "maybe"'),
         ({"cut": {"router": {"verdict": "no"}}}, "cut, router: why is missing"),
