@@ -90,6 +90,22 @@ def test_unknown_names_get_the_nearest(kind, name, near):
     assert near in caught.value.remedy
 
 
+@pytest.mark.parametrize(
+    ("kind", "name", "title"),
+    [
+        ("thread", "M6 coarse", "M6"), ("thread", "UNC 1/4-20", "1/4-20 UNC"), ("thread", "ISO metric M8", "M8"),
+        ("clearance", "M6 medium", "M6"), ("clearance", "ISO 273 M6", "M6"), ("clearance", "1/4-20 UNC", "1/4"),
+        ("fit", "H7 22", "22 H7"), ("nut", "hex nut M8 ISO 4032", "M8 ISO 4032"), ("nut", "M8x1.25", "M8 ISO 4032"),
+        ("nut", "1/4-20", "1/4 ASME B18.2.2"), ("bearing", "DIN 625 608", "608"),
+        ("shoulder-screw", "ISO 7379 8", "8 ISO 7379"), ("countersink", "M5, ISO 10642", "M5 ISO 10642"),
+        ("counterbore", "M6 DIN 912", "M6 ISO 4762"), ("tolerance", "ISO 2768-1 m 35 mm", "ISO 2768-m 35"),
+        ("tolerance", "iso9013 class 1 20", "ISO 9013 class 1 20"), ("tolerance", "iso2768 mK 35", "ISO 2768-m 35"),
+    ],
+)  # fmt: skip
+def test_names_among_standards_and_words(kind, name, title):
+    assert lookup(kind, name, thickness_mm=1.0).title == title
+
+
 def test_kinds_may_be_written_as_people_do():
     assert lookup("Threads", "M6").kind == "thread"
     assert lookup("shoulder_screw", "1/4").kind == "shoulder-screw"

@@ -1,5 +1,7 @@
 """Threads in plate: pilots by process and material, engagement, percent, forming."""
 
+from dataclasses import replace
+
 import pytest
 
 from flatprep.practice.threads import (
@@ -14,6 +16,7 @@ from flatprep.practice.threads import (
     tap_pilot,
     taps_directly,
 )
+from flatprep.profile.hardware.rules import section
 from flatprep.profile.hardware.threads import all_threads, find_thread
 from flatprep.profile.material_load import load_material
 from flatprep.profile.process_load import load_process
@@ -86,6 +89,41 @@ def test_engagement(thread, thickness, material, fails, weak):
     found = engagement(find_thread(thread), thickness, load_material(material))
     assert (found.fails, found.weak) == (fails, weak)
     assert found.threads == pytest.approx(thickness / find_thread(thread).pitch_mm)
+
+
+@pytest.mark.parametrize(
+    ("family", "diameters"),
+    [
+        ("low-carbon-steel", 1.0), ("stainless", 1.0), ("wear-plate", 1.0), ("titanium", 1.0), ("copper-brass", 1.5),
+        ("aluminium", 1.5), ("magnesium", 2.0), ("acrylic", 2.0), ("plastic", 2.0), ("unheard-of", None),
+    ],
+)  # fmt: skip
+def test_engagement_rules(family, diameters):
+    """Length over diameter; two engineering pages and memory: steel 1.0, aluminium 1.5, plastics 2.0."""
+    found = engagement(find_thread("M10"), 30.0, replace(load_material("mild-steel"), family=family))
+    assert found.needed_mm == (None if diameters is None else 10.0 * diameters)
+
+
+@pytest.mark.parametrize(("strength", "hard"), [(300.0, False), (300.1, True), (None, False)])
+def test_steel_above_300_mpa_is_taken_to_harden(strength, hard):
+    assert hardens(replace(load_material("mild-steel"), strength_mpa=strength)) is hard
+
+
+@pytest.mark.parametrize(
+    ("family", "forms"),
+    [("aluminium", True), ("copper-brass", True), ("low-carbon-steel", True), ("stainless", True),
+    ("wear-plate", False),
+     ("acrylic", False), ("plastic", False)],
+)  # fmt: skip
+def test_which_metals_a_thread_may_be_formed_in(family, forms):
+    assert (family in section("forming").words("families")) is forms
+
+
+@pytest.mark.parametrize("family", ["wood", "cardboard", "leather", "rubber", "laminate"])
+def test_what_takes_no_machine_thread(family):
+    found = engagement(find_thread("M6"), 30.0, replace(load_material("mild-steel"), family=family))
+    assert found.fails
+    assert found.instead
 
 
 def test_without_a_material_only_the_threads_count():
