@@ -1,6 +1,5 @@
 """Everything about a job in one folder: findings, layout, bench sheets, estimate, and the page that joins them."""
 
-import hashlib
 import json
 import time
 from collections.abc import Iterator, Sequence
@@ -21,8 +20,9 @@ from flatprep.model.finding import Finding
 from flatprep.model.layout import Layout
 from flatprep.model.linted import Linted
 from flatprep.model.work import Checklist
+from flatprep.nest.offcut import offcut_of
 from flatprep.nest.problem import Budget
-from flatprep.report.bundle import Bundle, PartCard, SearchPoint
+from flatprep.report.bundle import Bundle, Offcut, PartCard, SearchPoint
 from flatprep.report.checklist_csv import checklist_csv
 from flatprep.report.checklist_json import checklist_document
 from flatprep.report.estimate_csv import estimate_csv
@@ -31,6 +31,9 @@ from flatprep.report.html import bench_sheet_html, report_html
 from flatprep.report.layout_json import sheet_name
 from flatprep.report.lint_json import lint_document
 from flatprep.report.tables_csv import findings_csv, parts_csv, sheets_csv
+
+_DIGITS = 10
+"""So many digits of a drawing's digest are shown."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -157,18 +160,26 @@ def _bundle(
         assumed=(*read.report.notes, *(nested.warnings if nested else ())),
         cautions=steps.cautions,
         search=tuple(points),
+        offcuts=_offcuts(nested) if nested else (),
         version=__version__,
     )
 
 
+def _offcuts(nested: Nested) -> tuple[Offcut, ...]:
+    """Return the largest usable rectangle left of each sheet that has one."""
+    parts = {piece.name: piece.part for piece in nested.read.pieces}
+    rests = ((n, offcut_of(sheet, parts, nested.layout.spacing_mm)) for n, sheet in enumerate(nested.layout.sheets, 1))
+    return tuple(Offcut(number, *rest.rectangle) for number, rest in rests if rest is not None)
+
+
 def _card(read: ReadJob, piece: Piece, steps: Checklist, money: Estimate) -> PartCard:
     ask, job = piece.ask, read.job
-    findings, digest = _findings(read, piece), _digest(ask.drawing)
+    findings = _findings(read, piece)
     return PartCard(
         name=piece.name,
         part=piece.drawn,
         drawing=str(ask.drawing),
-        digest=digest,
+        digest=piece.drawing.digest[:_DIGITS],
         material=ask.material.id if ask.material else "",
         material_name=ask.material.name if ask.material else "",
         thickness_mm=ask.thickness_mm,
@@ -202,10 +213,6 @@ def _assumed(piece: Piece) -> tuple[str, ...]:
     if drawing.recovered:
         out.append("the file was damaged and has been recovered while reading")
     return tuple(out)
-
-
-def _digest(path: Path) -> str:
-    return hashlib.sha256(path.read_bytes()).hexdigest()[:10]
 
 
 def _point(layout: Layout, seconds: float) -> SearchPoint:

@@ -62,5 +62,8 @@ def test_prepare_writes_documents_of_their_schemas(tmp_path):
     flatprep("prepare", JOB, "--out", str(out), "--seconds", "2")
     for kind in ("lint", "layout", "checklist", "estimate"):
         assert faults(kind, json.loads((out / f"{kind}.json").read_text(encoding="utf-8"))) == [], kind
+    page = (out / "report.html").read_text(encoding="utf-8")
+    # twelve side plates fill no full sheet: what is left of it is shown
+    assert "<dt>Offcut</dt>" in page
     for name in ("report.html", "parts.csv", "findings.csv", "steps.csv", "sheets.csv", "bench/side_plate.html"):
         assert (out / name).stat().st_size > 0
