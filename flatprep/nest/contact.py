@@ -2,8 +2,9 @@
 
 import math
 
+from flatprep.geom.bulge import Floats
 from flatprep.nest._jit import bare
-from flatprep.nest.outlines import Outlines, Rings
+from flatprep.nest.outlines import BLOCK, Outlines, Rings
 
 # Floor of the loss of a collision: this share of the larger diameter, times the smaller piece's mean side.
 FLOOR_SHARE = 0.002
@@ -28,17 +29,28 @@ def is_inside(rings: Rings, v: int, px: float, py: float) -> bool:
 
 
 @bare
-def edges_cross(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
-    """Tell whether an edge of variant a crosses one of variant b moved by (dx, dy) mm."""
-    edge, box = rings.edge, rings.box
-    for j in range(rings.at[b, 0], rings.at[b, 1]):
+def apart(one: Floats, i: int, other: Floats, j: int, shift: tuple[float, float], by: float) -> bool:
+    """Tell whether boxes one[i] and other[j], the latter shifted, are more than `by` mm apart."""
+    dx, dy = shift
+    return bool(
+        other[j, 0] + dx - one[i, 2] > by
+        or one[i, 0] - other[j, 2] - dx > by
+        or other[j, 1] + dy - one[i, 3] > by
+        or one[i, 1] - other[j, 3] - dy > by
+    )
+
+
+@bare
+def blocks_cross(edge: Floats, rows: tuple[int, int, int, int], shift: tuple[float, float]) -> bool:
+    """Tell whether an edge of rows i0 to i1 crosses one of rows j0 to j1, the latter shifted (mm)."""
+    i0, i1, j0, j1 = rows
+    dx, dy = shift
+    for j in range(j0, j1):
         cx, cy, ex, ey = edge[j, 0] + dx, edge[j, 1] + dy, edge[j, 2] + dx, edge[j, 3] + dy
         left, right = min(cx, ex), max(cx, ex)
         low, high = min(cy, ey), max(cy, ey)
-        if right < box[a, 0] or left > box[a, 2] or high < box[a, 1] or low > box[a, 3]:
-            continue
         vx, vy = ex - cx, ey - cy
-        for i in range(rings.at[a, 0], rings.at[a, 1]):
+        for i in range(i0, i1):
             x0, x1 = edge[i, 0], edge[i, 2]
             if (x0 < left and x1 < left) or (x0 > right and x1 > right):
                 continue
@@ -49,6 +61,24 @@ def edges_cross(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
                 continue
             ux, uy = x1 - x0, y1 - y0
             if (ux * (cy - y0) - uy * (cx - x0) > 0.0) != (ux * (ey - y0) - uy * (ex - x0) > 0.0):
+                return True
+    return False
+
+
+@bare
+def edges_cross(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
+    """Tell whether an edge of variant a crosses one of variant b moved by (dx, dy) mm."""
+    first_a, first_b = rings.block_at[a, 0], rings.block_at[b, 0]
+    for n in range(first_b, rings.block_at[b, 1]):
+        if apart(rings.box, a, rings.block, n, (dx, dy), 0.0):
+            continue
+        j0 = rings.at[b, 0] + (n - first_b) * BLOCK
+        j1 = min(j0 + BLOCK, rings.at[b, 1])
+        for m in range(first_a, rings.block_at[a, 1]):
+            if apart(rings.block, m, rings.block, n, (dx, dy), 0.0):
+                continue
+            i0 = rings.at[a, 0] + (m - first_a) * BLOCK
+            if blocks_cross(rings.edge, (i0, min(i0 + BLOCK, rings.at[a, 1]), j0, j1), (dx, dy)):
                 return True
     return False
 
@@ -88,29 +118,14 @@ def squared_distance(px: float, py: float, x0: float, y0: float, x1: float, y1: 
 
 
 @bare
-def _corners_from_edges(rings: Rings, a: int, b: int, dx: float, dy: float, cap: float) -> float:
-    """Least squared distance, at most cap², of the corners of b moved by (dx, dy) from the edges of a."""
-    edge = rings.edge
-    best = cap * cap
-    for j in range(rings.at[b, 0], rings.at[b, 1]):
+def _nearest_corner(edge: Floats, rows: tuple[int, int, int, int], shift: tuple[float, float], best: float) -> float:
+    """Least squared distance, at most `best`, of the corners of rows j0 to j1, shifted (mm), from rows i0 to i1."""
+    i0, i1, j0, j1 = rows
+    dx, dy = shift
+    for j in range(j0, j1):
         px, py = edge[j, 0] + dx, edge[j, 1] + dy
-        if (
-            px < rings.box[a, 0] - cap
-            or px > rings.box[a, 2] + cap
-            or py < rings.box[a, 1] - cap
-            or py > rings.box[a, 3] + cap
-        ):
-            continue
-        for i in range(rings.at[a, 0], rings.at[a, 1]):
-            x0, y0, x1, y1 = edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]
-            if (
-                (x0 - px > cap and x1 - px > cap)
-                or (px - x0 > cap and px - x1 > cap)
-                or (y0 - py > cap and y1 - py > cap)
-                or (py - y0 > cap and py - y1 > cap)
-            ):
-                continue
-            best = min(best, squared_distance(px, py, x0, y0, x1, y1))
+        for i in range(i0, i1):
+            best = min(best, squared_distance(px, py, edge[i, 0], edge[i, 1], edge[i, 2], edge[i, 3]))
     return best
 
 
@@ -123,9 +138,21 @@ def gap(rings: Rings, a: int, b: int, dx: float, dy: float, cap: float) -> float
     Where the two are free this is their distance. Where they collide it is a lower bound of the move that frees
     them: freed at last, a corner lies on an edge (the border of the Minkowski sum consists of such moves).
     """
-    one = _corners_from_edges(rings, a, b, dx, dy, cap)
-    two = _corners_from_edges(rings, b, a, -dx, -dy, cap)
-    return math.sqrt(min(one, two))
+    best, edge = cap * cap, rings.edge
+    first_a, first_b = rings.block_at[a, 0], rings.block_at[b, 0]
+    for n in range(first_b, rings.block_at[b, 1]):
+        if apart(rings.box, a, rings.block, n, (dx, dy), cap):
+            continue
+        j0 = rings.at[b, 0] + (n - first_b) * BLOCK
+        j1 = min(j0 + BLOCK, rings.at[b, 1])
+        for m in range(first_a, rings.block_at[a, 1]):
+            if apart(rings.block, m, rings.block, n, (dx, dy), math.sqrt(best)):
+                continue
+            i0 = rings.at[a, 0] + (m - first_a) * BLOCK
+            i1 = min(i0 + BLOCK, rings.at[a, 1])
+            best = _nearest_corner(edge, (i0, i1, j0, j1), (dx, dy), best)
+            best = _nearest_corner(edge, (j0, j1, i0, i1), (-dx, -dy), best)
+    return math.sqrt(best)
 
 
 @bare

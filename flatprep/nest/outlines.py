@@ -17,6 +17,8 @@ Ints = npt.NDArray[np.int64]
 HAIR_MM = 2e-7
 # The tip of a sharp corner is drawn in by at most this many hairs.
 LONGEST_MITRE = 4.0
+# Edges in a row that share a box, to be passed over together.
+BLOCK = 8
 
 
 class Rings(NamedTuple):
@@ -30,11 +32,17 @@ class Rings(NamedTuple):
     at : ndarray, shape (v, 2), int64
     box : ndarray, shape (v, 4), float64
         Least x, least y, greatest x, greatest y of the true outline, mm.
+    block : ndarray, shape (blocks, 4), float64
+        Boxes of each `BLOCK` edges in a row, the last ones of a variant maybe fewer; those of variant v are rows
+        block_at[v, 0] to block_at[v, 1].
+    block_at : ndarray, shape (v, 2), int64
     """
 
     edge: Floats
     at: Ints
     box: Floats
+    block: Floats
+    block_at: Ints
 
 
 class Outlines(NamedTuple):
@@ -164,7 +172,7 @@ def pack(shapes: Sequence[Shape], turns: Sequence[Sequence[float]]) -> Outlines:
                 flipped.append(int(mirrored))
         first.append(len(kind))
     return Outlines(
-        rings=Rings(np.ascontiguousarray(np.vstack(edges)), _starts(edges), np.array(boxes)),
+        rings=rings_in_blocks(edges, np.array(boxes)),
         pole=np.ascontiguousarray(np.vstack(poles)),
         pole_at=_starts(poles),
         turn=np.array(turn),
@@ -174,6 +182,17 @@ def pack(shapes: Sequence[Shape], turns: Sequence[Sequence[float]]) -> Outlines:
         first=np.array(first, dtype=np.int64),
         size=np.array([size_of(s) for s in shapes]),
     )
+
+
+def rings_in_blocks(edges: Sequence[Floats], boxes: Floats) -> Rings:
+    """Pack the edges of variants, and the boxes of their blocks."""
+    blocks = [np.array([_block_box(e[k : k + BLOCK]) for k in range(0, len(e), BLOCK)]) for e in edges]
+    return Rings(np.ascontiguousarray(np.vstack(edges)), _starts(edges), boxes, np.vstack(blocks), _starts(blocks))
+
+
+def _block_box(edges: Floats) -> Floats:
+    points = edges.reshape(-1, 2)
+    return np.concatenate([points.min(axis=0), points.max(axis=0)])
 
 
 def _starts(groups: Sequence[Floats]) -> Ints:

@@ -10,10 +10,11 @@ from collections.abc import Sequence
 import numpy as np
 
 from flatprep.nest._jit import bare
-from flatprep.nest.outlines import HAIR_MM, LONGEST_MITRE, Ints, Outlines, Rings
+from flatprep.nest.outlines import BLOCK, HAIR_MM, LONGEST_MITRE, Ints, Outlines, Rings
 
 # Variants to try turns in: two for each candidate that `moves` keeps.
 SCRATCH = 6
+HUGE = 1e300
 
 
 def with_own_variants(outlines: Outlines, pieces: Ints, free: Sequence[bool]) -> Outlines:
@@ -38,12 +39,16 @@ def with_own_variants(outlines: Outlines, pieces: Ints, free: Sequence[bool]) ->
     poles = np.diff(outlines.pole_at[first], axis=1).ravel() * np.array(free, dtype=np.int64)
     shape = np.concatenate([pieces, np.zeros(SCRATCH, dtype=np.int64)])
     edge_at = _room(edges[pieces], int(edges.max()), len(outlines.rings.edge))
+    blocks = -(-edges // BLOCK)
+    block_at = _room(blocks[pieces], int(blocks.max()), len(outlines.rings.block))
     pole_at = _room(poles[pieces], int(poles.max()), len(outlines.pole))
     more = len(shape)
     rings = Rings(
         np.vstack([outlines.rings.edge, np.zeros((edge_at[-1, 1] - edge_at[0, 0], 4))]),
         np.vstack([outlines.rings.at, edge_at]),
         np.vstack([outlines.rings.box, np.zeros((more, 4))]),
+        np.vstack([outlines.rings.block, np.zeros((block_at[-1, 1] - block_at[0, 0], 4))]),
+        np.vstack([outlines.rings.block_at, block_at]),
     )
     return outlines._replace(
         rings=rings,
@@ -63,24 +68,36 @@ def _room(each: Ints, most: int, start: int) -> Ints:
 
 
 @bare
+def _turn_edges(rings: Rings, base: int, target: int, c: float, s: float) -> None:
+    """Fill edges and boxes of variant `target` with those of `base`, turned by an angle of cosine c and sine s."""
+    edge, box, block = rings.edge, rings.box, rings.block
+    at, start = rings.at[target, 0], rings.at[base, 0]
+    rings.at[target, 1] = at + rings.at[base, 1] - start
+    rings.block_at[target, 1] = rings.block_at[target, 0] + rings.block_at[base, 1] - rings.block_at[base, 0]
+    for k in range(rings.at[base, 1] - start):
+        n = rings.block_at[target, 0] + k // BLOCK
+        if k % BLOCK == 0:
+            block[n, 0], block[n, 1], block[n, 2], block[n, 3] = HUGE, HUGE, -HUGE, -HUGE
+        for end in (0, 2):
+            x, y = edge[start + k, end], edge[start + k, end + 1]
+            tx, ty = c * x - s * y, s * x + c * y
+            edge[at + k, end], edge[at + k, end + 1] = tx, ty
+            block[n, 0], block[n, 1] = min(block[n, 0], tx), min(block[n, 1], ty)
+            block[n, 2], block[n, 3] = max(block[n, 2], tx), max(block[n, 3], ty)
+    box[target, 0], box[target, 1], box[target, 2], box[target, 3] = HUGE, HUGE, -HUGE, -HUGE
+    out = LONGEST_MITRE * HAIR_MM  # the true outline lies this far outside at the most
+    for n in range(rings.block_at[target, 0], rings.block_at[target, 1]):
+        box[target, 0], box[target, 1] = min(box[target, 0], block[n, 0] - out), min(box[target, 1], block[n, 1] - out)
+        box[target, 2], box[target, 3] = max(box[target, 2], block[n, 2] + out), max(box[target, 3], block[n, 3] + out)
+
+
+@bare
 def turn_into(outlines: Outlines, source: int, target: int, turn_deg: float) -> None:
     """Fill variant `target` with the shape of `source`, in its mirror state, at a turn (degrees)."""
     base = outlines.base[source]
     by = math.radians(turn_deg - outlines.turn[base, 2])
     c, s = math.cos(by), math.sin(by)
-    rings, edge, box = outlines.rings, outlines.rings.edge, outlines.rings.box
-    at, start = rings.at[target, 0], rings.at[base, 0]
-    rings.at[target, 1] = at + rings.at[base, 1] - start
-    box[target, 0], box[target, 1], box[target, 2], box[target, 3] = 1e300, 1e300, -1e300, -1e300
-    for k in range(rings.at[base, 1] - start):
-        for end in (0, 2):
-            x, y = edge[start + k, end], edge[start + k, end + 1]
-            tx, ty = c * x - s * y, s * x + c * y
-            edge[at + k, end], edge[at + k, end + 1] = tx, ty
-            box[target, 0], box[target, 1] = min(box[target, 0], tx), min(box[target, 1], ty)
-            box[target, 2], box[target, 3] = max(box[target, 2], tx), max(box[target, 3], ty)
-    for side in range(4):  # the true outline lies a hair outside
-        box[target, side] += (-1.0 if side < 2 else 1.0) * LONGEST_MITRE * HAIR_MM
+    _turn_edges(outlines.rings, base, target, c, s)
     at, start = outlines.pole_at[target, 0], outlines.pole_at[base, 0]
     outlines.pole_at[target, 1] = at + outlines.pole_at[base, 1] - start
     for k in range(outlines.pole_at[base, 1] - start):

@@ -14,8 +14,6 @@ from flatprep.nest.outlines import Ints
 LEAST_GROWTH, MORE_GROWTH, DECAY = 1.2, 0.3, 0.97
 # A gain in loss counts from this share on.
 GAIN = 0.02
-# Positions tried in one call of the kernel: some 0.05 s, so that signals are served.
-CALL = 40_000
 
 
 class Try(NamedTuple):
@@ -29,8 +27,8 @@ class Try(NamedTuple):
         As of `Board`, and the turn of each piece (degrees), at the least loss.
     loss : ndarray, shape (2,), float64
         Least loss, and the loss that the last gain reached, mm².
-    sweeps : ndarray, shape (2,), int64
-        Sweeps since the last gain; sweeps without one after which to stop.
+    sweeps : ndarray, shape (3,), int64
+        Sweeps since the last gain; sweeps without one after which to stop; places to try in one call of the kernel.
     order : ndarray, shape (n,), int64
     room : Room
         Room to work in.
@@ -46,15 +44,15 @@ class Try(NamedTuple):
     room: Room
 
 
-def new_try(pieces: int) -> Try:
-    """Return room for tries with so many pieces."""
+def new_try(pieces: int, call: int) -> Try:
+    """Return room for tries with so many pieces, and so many places in a call of the kernel."""
     return Try(
         variant=np.zeros(pieces, dtype=np.int64),
         home=np.zeros(pieces, dtype=np.int64),
         at=np.zeros((pieces, 2)),
         turn=np.zeros(pieces),
         loss=np.zeros(2),
-        sweeps=np.zeros(2, dtype=np.int64),
+        sweeps=np.array([0, 0, call], dtype=np.int64),
         order=np.zeros(pieces, dtype=np.int64),
         room=new_room(),
     )
@@ -115,7 +113,7 @@ def remember(ground: Ground, attempt: Try) -> None:
 def sweeps(ground: Ground, attempt: Try, rng: np.random.Generator) -> int:
     """Sweep until nothing collides, patience is out or the call has lasted long enough; return the places tried."""
     tried = 0
-    while tried < CALL and attempt.loss[0] > 0.0 and attempt.sweeps[0] < attempt.sweeps[1]:
+    while tried < attempt.sweeps[2] and attempt.loss[0] > 0.0 and attempt.sweeps[0] < attempt.sweeps[1]:
         tried += sweep(ground, attempt, rng)
         total = reweigh(ground.board)
         attempt.sweeps[0] += 1
