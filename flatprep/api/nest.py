@@ -12,6 +12,7 @@ from flatprep.base.errors import DrawingError, JobError
 from flatprep.base.files import make_folder, write_together
 from flatprep.base.progress import Progress, Silent
 from flatprep.base.safe_names import safe_stems
+from flatprep.bench.sides import side_bound
 from flatprep.drawing.read import ReadOptions, read
 from flatprep.drawing.remnant import outline_of
 from flatprep.drawing.write import part_drawing, sheet_drawing
@@ -182,10 +183,16 @@ def _item(job: Job, piece: Piece) -> Item:
         quantity=ask.quantity * job.sets,
         quantity_opposite=ask.quantity_opposite * job.sets,
         turns_deg=ask.turns_deg,
-        may_flip=ask.may_flip,
+        may_flip=ask.may_flip and not _keeps_its_side(piece),
         grain=ask.grain,
         filler=ask.filler,
     )
+
+
+def _keeps_its_side(piece: Piece) -> bool:
+    """Tell whether side-bound work, a bend's direction or a good face forbids turning over; handed parts may be."""
+    ask = piece.ask
+    return not ask.quantity_opposite and bool(side_bound(ask.work, ask.bends, ask.good_face))
 
 
 def _sheet(job: Job, stock: Stock) -> StockSheet:

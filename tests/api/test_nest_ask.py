@@ -68,6 +68,25 @@ def test_parts_count_for_all_sets(ask):
     assert (leaf.turns_deg, leaf.may_flip, leaf.grain, leaf.filler) == ((0.0, 180.0), True, "y", True)
 
 
+@pytest.mark.parametrize(
+    ("more", "flips"),
+    [
+        ("", True), ('good_face = "A"', False), ('good_face = "A"\nquantity_opposite = 1', True),
+        ('[[part.work]]\nat = [[50, 25]]\ncountersink = "8 x 90"\nside = "A"', False),
+        ('[[part.work]]\nat = [[50, 25]]\ntap = "M4"', True),
+        ('[[part.bend]]\nline = [[20, -5], [20, 205]]\nangle = 90\nradius = 4\ndirection = "up"', False),
+    ],
+    ids=["plain", "good-face", "handed", "sunk", "tapped", "bent-up"],
+)  # fmt: skip
+def test_what_is_done_from_one_side_is_not_turned_over(tmp_path, more, flips):
+    draw(tmp_path / "leaf.dxf", 200)
+    part = 'drawing = "leaf.dxf"\nmaterial = "5052"\nthickness = 3\nmay_flip = true\n' + more
+    stock = 'name = "al"\nmaterial = "5052"\nthickness = 3\nlength = 900\nwidth = 500'
+    (tmp_path / "job.toml").write_text(f'name = "x"\nprocess = "fibre-laser"\n[[stock]]\n{stock}\n[[part]]\n{part}\n')
+    asked = nest_ask(read_job(load_job(tmp_path / "job.toml")))
+    assert asked.items[0].may_flip is flips
+
+
 def test_sheets_open_lengths_and_remnants(ask):
     full, coil, rest = ask.stock
     assert (full.name, full.material, full.length_mm, full.width_mm) == ("al3", "al-5052-h32", 1000.0, 500.0)
