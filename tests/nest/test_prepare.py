@@ -20,7 +20,9 @@ def region(grown):
 def test_grown_disc_holds_all_within_half_the_spacing(spacing, radius):
     shape = region(grow(disc("d", radius), spacing, windows=True))
     assert shape.exterior.distance(Point(0, 0)) >= radius + spacing / 2 - 1e-9
-    most = radius + spacing / 2 * 1.01 + tolerance_for(spacing) + 0.02
+    # a curve may be simplified by half a thousandth of its size, 0.1 mm at the most
+    curved = min(0.1, np.sqrt(8.0) * (radius + spacing) / 2000.0)
+    most = radius + spacing / 2 * 1.01 + max(tolerance_for(spacing), curved) + 0.02
     assert np.hypot(*np.array(shape.exterior.coords).T).max() <= most
 
 
