@@ -126,13 +126,15 @@ def _leftmost(cuts: Cuts, bed: Bed, v: int, x: float, y: float) -> float:
 
 
 def contact_rows(cuts: Cuts, v: int, bed: Bed, seen: int) -> Floats:
-    """Heights at which variant v begins or ends at a level edge of a piece laid after the first `seen`."""
+    """Heights at which a level side of variant v meets a level edge of a piece laid after the first `seen`."""
     levels = [
         y + cuts.level[cuts.level_at[w] : cuts.level_at[w + 1]]
         for w, y in zip(bed.who[seen : bed.laid[0]], bed.at[seen : bed.laid[0], 1], strict=True)
     ]
     level = np.concatenate([np.zeros(0), *levels])
-    rows = np.concatenate([level - cuts.box[v, 1], level - cuts.box[v, 3]])
+    mine = cuts.level[cuts.level_at[v] : cuts.level_at[v + 1]]
+    sides = [side for side in (cuts.box[v, 1], cuts.box[v, 3]) if (np.abs(mine - side) <= SETTLED_MM).any()]
+    rows = np.concatenate([np.zeros(0), *(level - side for side in sides)])
     inside = (rows >= bed.room[1] - cuts.box[v, 1] - THIN_MM) & (rows <= bed.room[3] - cuts.box[v, 3] + THIN_MM)
     return np.asarray(rows[inside], dtype=np.float64)
 

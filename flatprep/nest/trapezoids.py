@@ -20,7 +20,8 @@ Span = tuple[int, int]
 THIN_MM = 1e-8
 """Levels nearer than this are one; what overlaps by no more counts as touching."""
 MOST_LEVELS = 6
-"""Level edges of an outline that others are tried at."""
+LEAST_LEVEL = 0.1
+"""Level edges of an outline that others are tried at: so many, each at least this share of the box's longer side."""
 
 
 class Cuts(NamedTuple):
@@ -35,8 +36,7 @@ class Cuts(NamedTuple):
     box : ndarray, shape (v, 4)
         Least x, least y, greatest x, greatest y, mm.
     level : ndarray, shape (k,)
-        Heights at which an outline has its box's sides and its longest level edges, mm; those of variant v are
-        level_at[v] to level_at[v + 1].
+        Heights of the longest level edges, mm; those of variant v are level_at[v] to level_at[v + 1].
     level_at : ndarray, shape (v + 1,), int64
     """
 
@@ -60,12 +60,12 @@ def cut_up(outlines: Sequence[Sequence[Floats]]) -> Cuts:
 
 
 def levels_of(rings: Sequence[Floats]) -> Floats:
-    """Heights of the box's lower and upper side and of the longest level edges, rising, none twice."""
+    """Heights of the longest level edges, rising, none twice."""
     edges = np.vstack([np.hstack([ring, np.roll(ring, -1, axis=0)]) for ring in rings])
-    flat = edges[np.abs(edges[:, 3] - edges[:, 1]) <= THIN_MM]
-    longest = flat[np.argsort(-np.abs(flat[:, 2] - flat[:, 0]), kind="stable")][:MOST_LEVELS, 1]
-    every = np.array([edges[:, 1].min(), edges[:, 1].max(), *longest])
-    return np.sort(every[np.unique(np.round(every, 7), return_index=True)[1]])
+    along, across = np.abs(edges[:, 2:] - edges[:, :2]).T
+    flat = (across <= THIN_MM) & (along >= LEAST_LEVEL * float(np.ptp(edges[:, :2], axis=0).max()))
+    longest = edges[flat][np.argsort(-along[flat], kind="stable")][:MOST_LEVELS, 1]
+    return np.sort(longest[np.unique(np.round(longest, 7), return_index=True)[1]])
 
 
 def edges_of(rings: Sequence[Floats]) -> Floats:
