@@ -12,11 +12,10 @@ from flatprep.job.values import Accept, Point
 from flatprep.model.drawing import Role
 from flatprep.profile.gauges import parse_thickness_mm
 from flatprep.profile.material import Material
-from flatprep.profile.material_load import load_material
+from flatprep.profile.material_load import density, load_material
 from flatprep.profile.process import Process
 from flatprep.profile.process_load import load_process
 from flatprep.profile.toml_check import Table
-
 
 MOST_MONEY = 1e12
 """No amount is larger: decimal sums then keep their cents."""
@@ -82,11 +81,11 @@ class Context:
         given = self.overrides.get(material.id)
         if given is None:
             return material
-        density = given.optional_number("density", above=0.0)
+        own = density(given)
         price = money(given, "price_per_kg")
         return replace(
             material,
-            density_kg_m3=material.density_kg_m3 if density is None else density,
+            density_kg_m3=material.density_kg_m3 if own is None else own,
             price_per_kg=material.price_per_kg if price is None else price,
         )
 

@@ -11,6 +11,7 @@ from flatprep.profile.toml_check import Table, read_toml
 from flatprep.profile.where import SHIPPED
 
 _GAUGE = re.compile(r"\s*#?(\d{1,2})\s*-?\s*(?:ga|gauge|gage|swg)\.?\s*", re.IGNORECASE)
+MOST_MM = 1000.0
 STOCK_GAUGES = (26, 24, 22, 20, 18, 16, 14, 12, 11, 10, 7)
 STOCK_FRACTIONS = (3 / 16, 1 / 4, 5 / 16, 3 / 8, 1 / 2, 5 / 8, 3 / 4, 1.0)
 METALS = ("steel", "stainless", "aluminium", "galvanised")
@@ -48,6 +49,8 @@ def parse_thickness_mm(value: float | str, unit: str = "mm", material: Material 
         raise ThicknessError(f"thickness {value!r} is not a length", "write 3, 3mm, 0.125in, 1/8in or 16ga") from None
     if thickness <= 0.0:
         raise ThicknessError(f"thickness {value!r} is not above 0", "write the sheet's thickness, such as 3mm")
+    if thickness > MOST_MM:
+        raise ThicknessError(f"thickness {value!r} is over a metre", "write the sheet's thickness, such as 3mm")
     return thickness
 
 

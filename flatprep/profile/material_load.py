@@ -11,6 +11,7 @@ from flatprep.profile.points import Points
 from flatprep.profile.toml_check import Table, read_toml
 from flatprep.profile.where import candidate, ids
 
+MOST_DENSITY = 30000.0
 METALS = ("steel", "stainless", "aluminium", "galvanised")
 KEYS = (
     "name", "family", "aliases", "density", "density_range", "face_grain", "source", "elastic_modulus", "strength",
@@ -60,7 +61,7 @@ def parse_material(data: Mapping[str, object], file: str, stem: str) -> Material
         id=stem,
         name=top.text("name", stem),
         family=top.choice("family", FAMILIES),
-        density_kg_m3=top.optional_number("density", above=0.0),
+        density_kg_m3=density(top),
         aliases=top.texts("aliases"),
         face_grain=top.flag("face_grain"),
         source=top.text("source", ""),
@@ -89,6 +90,14 @@ def _span(top: Table, key: str) -> tuple[float, float] | None:
     if low > high:
         raise top.fail(key, "the least and the most, such as [7830, 7870]")
     return low, high
+
+
+def density(table: Table) -> float | None:
+    """Return the density of a material's table, kg/m³, or None; nothing is heavier than osmium by much."""
+    value = table.optional_number("density", above=0.0)
+    if value is not None and value > MOST_DENSITY:
+        raise table.fail("density", f"kilograms per cubic metre, {MOST_DENSITY:g} at the most")
+    return value
 
 
 def _price(top: Table) -> Decimal | None:

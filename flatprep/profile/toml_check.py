@@ -12,6 +12,9 @@ from flatprep.base.units import MM_PER_UNIT, parse_length_mm
 
 Value = object
 
+MOST_MM = 1e7
+"""Longer lengths are slips: ten kilometres."""
+
 MOST_BYTES = 10_000_000
 """Larger files are refused: profiles and jobs are written by hand."""
 
@@ -165,12 +168,15 @@ class Table:
         self, key: str, value: Value, *, unit: str = "mm", least: float | None = None, above: float | None = None
     ) -> float:
         """Return `value` as millimetres if it is a length in range, else raise for `key`."""
-        if not isinstance(value, str):
-            return self.checked(key, self.checked(key, value) * MM_PER_UNIT[unit], least=least, above=above)
-        try:
-            length = parse_length_mm(value, unit)
-        except FlatprepError:
-            raise self.fail(key, 'a length: a number, or a text such as "3mm", "0.125in", "1/8in"') from None
+        if isinstance(value, str):
+            try:
+                length = parse_length_mm(value, unit)
+            except FlatprepError:
+                raise self.fail(key, 'a length: a number, or a text such as "3mm", "0.125in", "1/8in"') from None
+        else:
+            length = self.checked(key, value) * MM_PER_UNIT[unit]
+        if abs(length) > MOST_MM:
+            raise self.fail(key, "a length of 10 km at the most")
         return self.checked(key, length, least=least, above=above)
 
     def integer(self, key: str, default: int | None = None, *, least: int = 0, most: int = 1_000_000) -> int:

@@ -30,6 +30,8 @@ CASES = [
     ('FOLD = "bend"', 'FOLD = "fold"', 'layers: FOLD = "fold": must be one of "cut", "mark", "bend", "ignore"'),
     ("[material.mild-steel]", "[material.mildsteel]", 'material."mildsteel": unknown material id'),
     ("density = 7800", "density = 0", "material, mild-steel: density = 0: must be a number above 0"),
+    ("density = 7800", "density = 7.8e6", "density = 7800000.0: must be kilograms per cubic metre"),
+    ("length = 2500", "length = 1e300", "length = 1e+300: must be a length of 10 km at the most"),
     ("price_per_kg = 1.15", "price_per_kg = -1", "price_per_kg = -1: must be a number of 0 or more"),
     ("price_per_kg = 1.15", "price = 1.15", "material, mild-steel: unknown key price = 1.15"),
     ('share = "box-area"', 'share = "weight"', 'cost: share = "weight": must be one of "net-area"'),

@@ -47,6 +47,7 @@ def test_bare_numbers_are_in_the_given_unit():
     [
         ("-3", None, "not above 0"),
         (0, None, "not above 0"),
+        ("1.001m", None, "over a metre"),
         ("thick", None, "not a length"),
         (True, None, "not a length"),
         ("16ga", None, "another thickness in each metal"),

@@ -113,6 +113,7 @@ def test_bend_limits_in_mm_and_table():
     [
         ({"family": "metal"}, 'family = "metal": must be one of'),
         ({"density": 0}, "density = 0: must be a number above 0"),
+        ({"density": 30001}, "density = 30001: must be kilograms per cubic metre"),
         ({"density": "heavy"}, 'density = "heavy"'),
         ({"densty": 1}, "unknown key densty = 1"),
         ({"density_range": [3, 1]}, "density_range = [3, 1]"),

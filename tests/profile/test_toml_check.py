@@ -74,7 +74,9 @@ def test_defaults_where_a_key_is_not_there():
         ("3 furlongs", lambda t: t.length_mm("k"), "a length"),
         ([3], lambda t: t.length_mm("k"), "a number"),
         ("-3mm", lambda t: t.length_mm("k", least=0.0), "a number of 0 or more"),
-        (1e308, lambda t: t.length_mm("k", unit="m"), "a number"),
+        (1e308, lambda t: t.length_mm("k", unit="m"), "a length of 10 km at the most"),
+        ("1e9mm", lambda t: t.length_mm("k"), "a length of 10 km at the most"),
+        (-10001, lambda t: t.length_mm("k", unit="m"), "a length of 10 km at the most"),
     ],
 )
 def test_wrong_values(value, read, allowed):
