@@ -6,7 +6,8 @@ from random import Random
 
 NUMBERS = (b"1e300", b"-1e300", b"nan", b"inf", b"-inf", b"0", b"-0.0", b"1e-300", b"", b"9" * 400, b"1,5", b"0x10",
            b"2147483648", b"-2147483649", b"1e15", b"-7")  # fmt: skip
-WORDS = (b"<script>document.title='ran'</script>", b"../../../../tmp/noticed", b"%s%n%d{0}{x}", b"\x00", b"\xff\xfe\x80",
+WORDS = (b"<script>document.title='ran'</script>", b"../../../../tmp/noticed", b"%s%n%d{0}{x}", b"\x00",
+         b"\xff\xfe\x80",
          b"\\U+202E\\U+0000", b"^J^M", b"=1+1", b"{\\fArial|b0;", b"*" * 5000)  # fmt: skip
 KINDS = (b"LINE", b"ARC", b"CIRCLE", b"ELLIPSE", b"SPLINE", b"LWPOLYLINE", b"POLYLINE", b"VERTEX", b"INSERT", b"TEXT",
          b"MTEXT", b"HATCH", b"ENDSEC", b"SECTION", b"EOF", b"ENDBLK", b"SEQEND", b"TABLE", b"MESH")  # fmt: skip
@@ -100,7 +101,7 @@ def half_written(folder: Path) -> list[str]:
     for path in sorted(folder.rglob("*")):
         if path.name.endswith(".part"):
             bad.append(f"{path}: left over")
-        elif path.suffix in ENDS and not path.name.startswith(".") and not _whole(path):
+        elif path.is_file() and path.suffix in ENDS and not path.name.startswith(".") and not _whole(path):
             bad.append(f"{path}: half written")
     return bad
 

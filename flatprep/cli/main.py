@@ -88,6 +88,11 @@ def main() -> None:
         os.environ.setdefault(name, "1")
     try:
         root.main(prog_name="flatprep")
+    except SystemExit:
+        # CPython notes an interruption inside exec(), which dataclasses use, and would end by SIGINT whatever the
+        # status; running exec() again clears the note
+        exec("")
+        raise
     except BrokenPipeError:
         # the reader of a pipe went away: `flatprep lint ... | head`
         os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())

@@ -1,5 +1,6 @@
 """A DXF file opened by ezdxf: strictly, else with repair; and what the raw file says of its unit."""
 
+import hashlib
 import re
 from contextlib import suppress
 from dataclasses import dataclass
@@ -34,12 +35,15 @@ class Loaded:
         Whether the strict reader refused the file.
     conflicts
         Whether version-control conflict markers were taken out (the first side is kept).
+    digest
+        SHA-256 of the file's bytes, in hexadecimal.
     """
 
     document: DxfDocument
     unit_code: int | None
     recovered: bool
     conflicts: bool
+    digest: str
 
 
 def load(path: Path, limits: ReadLimits) -> Loaded:
@@ -51,11 +55,12 @@ def load(path: Path, limits: ReadLimits) -> Loaded:
         When it is missing, too large, no DXF, or so damaged that neither reader of ezdxf takes it.
     """
     data = _bytes_of(path, limits)
+    digest = hashlib.sha256(data).hexdigest()
     conflicts = len(_CONFLICT.findall(data)) >= 3
     if conflicts:
         data = _first_side(data)
     document, recovered = _parse(path, data, changed=conflicts)
-    return Loaded(document, unit_code(data), recovered, conflicts)
+    return Loaded(document, unit_code(data), recovered, conflicts, digest)
 
 
 def unit_code(data: bytes) -> int | None:

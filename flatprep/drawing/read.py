@@ -102,6 +102,7 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         loose=shapes.loose,
         crossing=tuple(c.contour for c in shapes.crossing),
         simplified=tuple(found.simplified),
+        digest=loaded.digest,
     )
 
 

@@ -238,3 +238,5 @@ class Drawing:
     crossing: tuple[Contour, ...] = ()
     """Contours that cross themselves, as they were drawn; the parts hold what they enclose by the even-odd rule."""
     simplified: tuple[Simplified, ...] = ()
+    digest: str = ""
+    """SHA-256 of the file as it was read, in hexadecimal."""

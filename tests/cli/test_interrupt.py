@@ -1,0 +1,85 @@
+"""Runs that are interrupted: what they have is written whole, what they have not leaves the folder as it was."""
+
+import json
+import signal
+import subprocess
+import sys
+import time
+
+import pytest
+
+from flatprep import api
+from flatprep.api.nest import nest_ask
+from flatprep.cli.interrupt import Stop, stoppable
+from flatprep.nest.verify import verify
+from tests.cli.test_jobs import JOB, leaf
+from tests.damage import half_written
+from tests.drawing.draw import drawn
+
+
+@pytest.fixture
+def job(tmp_path):
+    """A job of which the search is never done."""
+    drawn(tmp_path, leaf)
+    path = tmp_path / "job.toml"
+    path.write_text(
+        JOB.replace("quantity = 4", "quantity = 9")
+        .replace("length = 300", 'length = "open"')
+        .replace("per_sheet", "per_metre")
+    )
+    return path
+
+
+def started(job, *more):
+    words = ["nest", str(job), "--out", str(job.parent / "out"), "--seconds", "300", *more]
+    return subprocess.Popen([sys.executable, "-m", "flatprep", *words], stderr=subprocess.PIPE, text=True)
+
+
+@pytest.mark.parametrize(("number", "jobs"), [(signal.SIGINT, "1"), (signal.SIGTERM, "2")])
+def test_the_best_layout_so_far_is_written(job, number, jobs):
+    with started(job, "--jobs", jobs) as run:
+        time.sleep(6.0)
+        run.send_signal(number)
+        # reading ends when the last process that holds it has ended: no worker is left behind
+        _, err = run.communicate(timeout=60)
+    assert run.returncode == 128 + number, err
+    assert half_written(job.parent / "out") == []
+    if not (job.parent / "out" / "layout.json").exists():
+        pytest.skip("this machine is too slow for a first layout in 6 s")
+    layout = api.stored_layout(job.parent / "out" / "layout.json")
+    assert verify(layout, nest_ask(api.read_job(api.load_job(job)))) == ()
+
+
+def test_before_there_is_a_layout_the_folder_stays_as_it_was(job):
+    out = job.parent / "out"
+    out.mkdir()
+    (out / "layout.json").write_text(json.dumps({"old": 1}))
+    with started(job) as run:
+        time.sleep(0.3)
+        run.send_signal(signal.SIGTERM)
+        _, err = run.communicate(timeout=60)
+    assert run.returncode in (143, -signal.SIGTERM)
+    assert "Traceback" not in err
+    assert json.loads((out / "layout.json").read_text()) == {"old": 1}
+
+
+def test_nothing_to_keep_ends_at_once_and_a_result_ends_by_itself():
+    stop = Stop()
+    with pytest.raises(KeyboardInterrupt) as asked:
+        stop.ask(signal.SIGTERM, None)
+    assert asked.value.args == (signal.SIGTERM,)
+    stop = Stop()
+    stop.keep("a layout")
+    assert not stop()
+    stop.ask(signal.SIGTERM, None)
+    assert stop()
+    assert stop.exit_status == 143
+    with pytest.raises(KeyboardInterrupt):
+        stop.ask(signal.SIGINT, None)
+
+
+def test_handlers_come_back():
+    before = signal.getsignal(signal.SIGINT)
+    with stoppable() as stop:
+        assert signal.getsignal(signal.SIGINT) == stop.ask
+    assert signal.getsignal(signal.SIGINT) == before
