@@ -315,6 +315,10 @@ class Similarity:
 
 def as_circle(xyb: Floats, *, tol_mm: float = 1e-6) -> tuple[float, float, float] | None:
     """Centre x, y and radius of a closed polyline that is one full circle of arcs, else None."""
+    if len(xyb) == 2:
+        (x0, y0, b0), (x1, y1, b1) = xyb.tolist()
+        if b0 == b1 and abs(b0) == 1.0:  # as most are drawn; drawings hold thousands
+            return (x0 + x1) / 2.0, (y0 + y1) / 2.0, hypot(x1 - x0, y1 - y0) / 2.0
     if not xyb[:, 2].all():
         return None
     seg = segments(xyb, closed=True)
