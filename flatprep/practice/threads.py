@@ -158,7 +158,8 @@ def taps_directly(
     if process.kind is ProcessKind.PLASMA or material is None or thickness_mm is None or hardens(material, own):
         return False
     rules = section("pilot", own)
-    return material.family in rules.words("direct_families") and thickness_mm <= rules["direct_up_to"] + 1e-9
+    most = rules["direct_up_to"] if process.direct_tap_mm is None else process.direct_tap_mm
+    return material.family in rules.words("direct_families") and thickness_mm <= most + 1e-9
 
 
 def tap_pilot(
@@ -175,7 +176,7 @@ def tap_pilot(
     limit = process.limit("hole", family, thickness_mm)
     least = limit.error if limit else 0.0
     direct = taps_directly(process, material, thickness_mm, own)
-    under = 0.0 if direct else _under_mm(drill_mm, material, own)
+    under = 0.0 if direct else _under_mm(drill_mm, process, material, own)
     pilot = drill_mm - under
     if pilot < least - 1e-3:
         return PilotHole(
@@ -186,7 +187,8 @@ def tap_pilot(
     return PilotHole(pilot, drill_out=True, why="cut under size, the cut skin is drilled out before the tap")
 
 
-def _under_mm(drill_mm: float, material: Material | None, own: Sequence[Path]) -> float:
+def _under_mm(drill_mm: float, process: Process, material: Material | None, own: Sequence[Path]) -> float:
     rules = section("pilot", own)
     usual = max(rules["under"], rules["under_to_drill"] * drill_mm)
+    usual = usual if process.pilot_under_mm is None else process.pilot_under_mm
     return max(usual, rules["under_hard"]) if hardens(material, own) else usual

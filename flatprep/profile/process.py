@@ -109,6 +109,10 @@ class Process:
         Distance of the slats of the grate that a part may fall through.
     machine_rate : float or None
         Money per hour of cutting, in the job's currency; the user's own figure.
+    direct_tap_mm : float or None
+        Soft metals up to this thickness are cut to the tap drill and tapped directly; None: as the bench rules say.
+    pilot_under_mm : float or None
+        By how much a hole is cut under its tap drill where it is drilled out; None: as the bench rules say.
     general : Terms
         What holds for every material.
     families : mapping of str to Terms
@@ -132,6 +136,8 @@ class Process:
     caution: str = ""
     slat_pitch_mm: float | None = None
     machine_rate: float | None = None
+    direct_tap_mm: float | None = None
+    pilot_under_mm: float | None = None
     general: Terms = Terms()
     families: Mapping[str, Terms] = field(default_factory=dict)
 

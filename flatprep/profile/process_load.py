@@ -16,7 +16,7 @@ _BAND_KEYS = ("limits", "warn", "sources", "above", "upto")
 _TERM_KEYS = ("limits", "warn", "sources", "thickness", "kerf_table", "feed_mm_min", "pierce_s", "band", "source")
 KEYS = (
     "name", "kind", "beam", "power", "kerf", "tool_diameter", "spacing", "margin", "bed", "windows", "slat_pitch",
-    "machine_rate", "caution", "source", "family",
+    "machine_rate", "direct_tap_up_to", "pilot_under", "caution", "source", "family",
     "limits", "warn", "sources", "thickness", "kerf_table", "feed_mm_min", "pierce_s", "band",
 )  # fmt: skip
 """Every key that the top of a process profile may have."""
@@ -66,6 +66,8 @@ def parse_process(data: Mapping[str, object], file: str, stem: str) -> Process:
         caution=top.text("caution", ""),
         slat_pitch_mm=top.length_mm("slat_pitch", above=0.0) if top.has("slat_pitch") else None,
         machine_rate=top.optional_number("machine_rate", least=0.0),
+        direct_tap_mm=top.length_mm("direct_tap_up_to", least=0.0) if top.has("direct_tap_up_to") else None,
+        pilot_under_mm=top.length_mm("pilot_under", least=0.0) if top.has("pilot_under") else None,
         general=_terms(top, top.text("source", "")),
         families=families,
     )

@@ -49,6 +49,19 @@ def test_pilots(process, material, thickness, drill, cut):
     assert found.why
 
 
+@pytest.mark.parametrize(
+    ("own", "thickness", "cut"),
+    [
+        ({"direct_tap_mm": 0.0}, 3.0, 3.7), ({"direct_tap_mm": 10.0}, 8.0, 4.2), ({"direct_tap_mm": 3.0}, 3.001, 3.7),
+        ({"direct_tap_mm": 0.0, "pilot_under_mm": 1.0}, 3.0, 3.2),
+    ],
+)  # fmt: skip
+def test_a_shop_sets_its_own_pilots_in_the_process_profile(own, thickness, cut):
+    process = replace(load_process("fibre-laser"), **own)
+    found = tap_pilot(4.2, process, load_material("mild-steel"), thickness)
+    assert found.diameter_mm == pytest.approx(cut)
+
+
 def test_a_direct_pilot_is_not_drilled_and_an_under_size_one_is():
     assert not _pilot(4.2, "fibre-laser", "mild-steel", 3.0).drill_out
     assert _pilot(4.2, "fibre-laser", "stainless-304", 3.0).drill_out

@@ -154,6 +154,8 @@ def test_profiles_travel_to_worker_processes():
         ({"family": {"aluminium": 3}}, "aluminium = 3: must be a table"),
         ({"windows": "yes"}, "windows = \"yes\": must be true or false"),
         ({"slat_pitch": 0}, "slat_pitch = 0"),
+        ({"direct_tap_up_to": -1}, "direct_tap_up_to = -1"),
+        ({"pilot_under": "x"}, 'pilot_under = "x"'),
         ({"machine_rate": -1}, "machine_rate = -1"),
     ],
 )  # fmt: skip
@@ -200,3 +202,10 @@ def test_an_unknown_process_gets_the_nearest():
     with pytest.raises(ProfileError) as caught:
         load_process("fiber-laser")
     assert caught.value.remedy == 'did you mean "fibre-laser"?'
+
+
+def test_how_a_shop_taps_is_its_own():
+    assert (process().direct_tap_mm, process().pilot_under_mm) == (None, None)
+    own = process(direct_tap_up_to=10, pilot_under="0.02in")
+    assert own.direct_tap_mm == 10.0
+    assert own.pilot_under_mm == pytest.approx(0.508)
