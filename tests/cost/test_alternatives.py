@@ -114,6 +114,8 @@ def test_cost_only_from_the_users_price():
     dear = replace(ALU, price_per_kg=Decimal("5.00"))
     stiff = option(alternatives(PLATE, Choice((dear,), utilisation=0.75)), Basis.STIFFNESS)
     assert stiff.cost == Decimal("2.16")
+    net = option(alternatives(PLATE, Choice((dear,))), Basis.STIFFNESS)
+    assert net.cost == Decimal("1.62")  # without a nest: the net mass
     assert option(alternatives(PLATE, Choice((ALU,))), Basis.STIFFNESS).cost is None
 
 
