@@ -20,6 +20,9 @@ CHORD_MM = 0.005
 HAIR_MM = 1e-6
 """Half the width that a bend line is given to cut the part in two."""
 
+TOUCH_MM = 0.01
+"""A bend line that comes this near to a hole, or runs no further into it, touches it."""
+
 Point = tuple[float, float]
 
 
@@ -110,17 +113,22 @@ def rim_to_line(hole: Hole, line: BendLine) -> tuple[float, Point]:
     axis = shapely.LineString([line.start, line.end])
     centre = shapely.Point(hole.at)
     if hole.shape is HoleShape.CIRCLE:
-        apart = float(axis.distance(centre)) - hole.width_mm / 2.0
+        apart = _touching(float(axis.distance(centre)) - hole.width_mm / 2.0)
         foot = axis.interpolate(axis.project(centre))
         share = 0.0 if apart <= 0.0 else apart / 2.0 / (apart + hole.width_mm / 2.0)
         return apart, (foot.x + (centre.x - foot.x) * share, foot.y + (centre.y - foot.y) * share)
     rim = polygon(hole.contour.xyb, (), chord_mm=CHORD_MM)
     a, z = shapely.get_coordinates(shapely.shortest_line(axis, rim)).tolist()
-    apart = float(rim.distance(axis))
-    if apart <= 0.0:
+    apart = _touching(float(rim.distance(axis)))
+    if axis.intersection(rim).length > TOUCH_MM:
         over = _along_line(rim, line).bounds
         apart = -min(abs(float(over[1])), abs(float(over[3])))
     return apart, ((a[0] + z[0]) / 2, (a[1] + z[1]) / 2)
+
+
+def _touching(apart: float) -> float:
+    """Return 0 for a rim that the line just touches, as one does that ends on a relief: rounding must not decide."""
+    return 0.0 if abs(apart) <= TOUCH_MM else apart
 
 
 def legs_mm(part: Part, lines: Sequence[BendLine]) -> tuple[tuple[float, ...], ...]:

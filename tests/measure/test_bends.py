@@ -30,6 +30,14 @@ def test_rim_to_line(hole, apart, place):
     assert at[0] == pytest.approx(place[0], abs=10.0 if len(hole) == 4 else 1e-6)
 
 
+@pytest.mark.parametrize("noise", [0.0, 1e-12, -1e-12, 3e-3, -3e-3])
+@pytest.mark.parametrize("hole", [rectangle(100, 14, 8, 10), circle(104, 20, 4)], ids=["window", "circle"])
+def test_a_line_that_ends_on_a_relief_touches_it(hole, noise):
+    """Whether the last digit puts the line's end inside or outside must not matter."""
+    line = BendLine((0, 20), (100 + noise, 20))
+    assert rim_to_line(recognise(contour(hole, hole=True)), line)[0] == 0.0
+
+
 @pytest.mark.parametrize("turn", [0.0, 90.0, 33.0])
 def test_legs(turn):
     plate = part(moved(rectangle(0, 0, 100, 60), turn, 5, 7))
