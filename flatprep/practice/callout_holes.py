@@ -11,7 +11,7 @@ from flatprep.practice.callouts import Callout, parse_callouts
 from flatprep.practice.targets import SAME_DIA_MM, apart_mm
 from flatprep.profile.hardware.clearance import find_clearance
 from flatprep.profile.hardware.fits import parse_fit
-from flatprep.profile.hardware.heads import all_countersinks, find_countersink
+from flatprep.profile.hardware.heads import all_countersinks, find_counterbore, find_countersink
 from flatprep.profile.hardware.names import UnknownHardwareError
 from flatprep.profile.hardware.threads import find_thread
 
@@ -48,14 +48,17 @@ def drawn_work(holes: Sequence[Hole], texts: Iterable[Text], unit: str = "mm") -
     round_holes = [h for h in holes if h.shape is HoleShape.CIRCLE]
     for text in texts:
         for callout in parse_callouts(text.text, unit):
-            made, question = _work(callout, text, round_holes)
+            try:
+                made, question = _work(callout, text, round_holes)
+            except UnknownHardwareError as err:
+                made, question = [], [f"{_said(text)}: {err.message}: what is meant?"]
             work += made
             questions += question
     return DrawnWork(tuple(_joined(work)), tuple(dict.fromkeys(questions)))
 
 
 def _work(callout: Callout, text: Text, holes: Sequence[Hole]) -> tuple[list[Work], list[str]]:
-    said = f'the drawing says "{" ".join(text.text.split())}"'
+    said = _said(text)
     named = _pointed_at(text, holes)
     near = named or _nearest(text, holes, callout)
     if near is None:
@@ -77,6 +80,10 @@ def _work(callout: Callout, text: Text, holes: Sequence[Hole]) -> tuple[list[Wor
         depth_mm=callout.depth_mm if callout.kind != "counterbore" else None, note="as the drawing's callout asks",
     )  # fmt: skip
     return [one], []
+
+
+def _said(text: Text) -> str:
+    return f'the drawing says "{" ".join(text.text.split())}"'
 
 
 def _pointed_at(text: Text, holes: Sequence[Hole]) -> Hole | None:
@@ -139,6 +146,8 @@ def _through_mm(callout: Callout) -> float:
 
 def _heads_to_choose(callout: Callout) -> str:
     """Return the heads that a countersink callout may mean, with their sinks; empty where it is clear."""
+    if callout.kind == "counterbore" and " x " not in callout.size:
+        find_counterbore(callout.size)  # raises for a screw that has none
     if callout.kind != "countersink" or " x " in callout.size:
         return ""
     try:

@@ -4,11 +4,12 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
+from flatprep.bench.checklist import checklist
 from flatprep.measure.holes import recognise
 from flatprep.model.drawing import Text
 from flatprep.practice.callout_holes import drawn_work
 from flatprep.practice.callouts import Callout, parse_callouts
-from tests.bench.parts import plate
+from tests.bench.parts import bench, plate
 from tests.reference_tables import table
 
 TABLE = table("callouts")["table"]
@@ -117,6 +118,13 @@ def test_a_countersink_without_its_head_is_asked_back():
     assert "ISO 2009 (sink 9.4 mm)" in found.questions[0]
 
 
+@pytest.mark.parametrize("words", ["CSK #12 82", "CBORE FOR M7", "CSK M7 90"])
+def test_hardware_that_no_table_has_is_asked_back(words):
+    found = drawn_work(_holes((20, 20, 5.5)), [_text(words, 24, 20)])
+    assert not found.work
+    assert words in found.questions[0]
+
+
 def test_single_callouts_of_one_kind_become_one_piece_of_work():
     texts = [_text("M5", 24, 20), _text("M5", 84, 20)]
     (work,) = drawn_work(_holes((20, 20, 4.2), (80, 20, 4.2)), texts).work
@@ -129,3 +137,11 @@ def test_a_turned_text_reaches_along_its_line():
     holes = _holes((50, 45, 4.2))
     assert drawn_work(holes, [upright]).work
     assert not drawn_work(holes, [level]).work
+
+
+@pytest.mark.parametrize("drawn", [3.3, 4.2, 5.5, 8.4, 11.0, 21.0])
+@pytest.mark.parametrize("text", [c[0] for c in TABLE["callout"]] + TABLE["other"])
+def test_no_text_of_a_drawing_stops_the_checklist(text, drawn):
+    part = plate(200, 100, (20, 20, drawn), (60, 20, drawn))
+    (found,) = checklist([bench(part, texts=(_text(text, 24, 20),))]).parts
+    assert found.steps

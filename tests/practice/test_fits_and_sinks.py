@@ -59,6 +59,12 @@ def test_the_cut_of_a_thick_plate_keeps_its_spread_away():
     assert plan.cut_range_mm == pytest.approx((38.5, 39.2))
 
 
+def test_a_thick_plate_keeps_more_under_the_reamer():
+    """8 H7 in 12 mm by laser: class 1, over 10 to 15, 3 to 10 mm: ± 0.3; u 0.086 a side: 0.472 + 0.1 = 0.572 left at
+    least."""
+    assert finish_plan(limits(8.0, "H7"), LASER, STEEL, 12.0).cut_range_mm[1] == pytest.approx(7.428)
+
+
 def test_a_hole_below_the_least_is_not_cut():
     assert finish_plan(limits(4.0, "H7"), LASER, STEEL, 8.0).cut_mm is None
 
