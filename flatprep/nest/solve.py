@@ -11,6 +11,7 @@ from flatprep.model.layout import Layout, Unplaced
 from flatprep.nest.allowed import matches
 from flatprep.nest.assemble import FilledSheet, Spot, layout_of
 from flatprep.nest.clock import Clock
+from flatprep.nest.downsize import downsized
 from flatprep.nest.fill import NO_ROOM, fill
 from flatprep.nest.firstfit import Answer, first_answers
 from flatprep.nest.group import kept_spots, prepare_group, split
@@ -163,6 +164,8 @@ class _Job:
                 return
             effort = Effort(Clock(left * share, steps, stop=self._stopped), budget.seed, budget.jobs)
             improve(answer, self._ask.margin_mm, effort, partial(self._take, number))
+            for cheaper in downsized(self._answers[number], self._ask.margin_mm):
+                self._take(number, cheaper)
 
     def _take(self, number: int, answer: Answer) -> None:
         """Note a better answer of a group if it is sound, and tell of the layout."""

@@ -1,6 +1,7 @@
 """What the DXF writer writes, read back with ezdxf alone."""
 
 import io
+from itertools import pairwise
 
 import ezdxf
 import numpy as np
@@ -93,6 +94,16 @@ def test_piece_in_a_window_is_cut_first_then_small_before_large():
     places = [("frame", 60.0), ("large", 200.0), ("coin", 60.0), ("small", 130.0)]
     layout = sheet(*(Placement(n, 1, 0.0, False, x, 80.0) for n, x in places))
     assert [layout.placements[k].part for k in cutting_order(layout, parts)] == ["coin", "small", "frame", "large"]
+
+
+def test_neighbours_are_not_cut_in_a_row():
+    """Six equal discs in a line: none is cut right after the one beside it."""
+    parts = {"coin": Part("coin", Contour(circle(0, 0, 10.0)))}
+    layout = sheet(*(Placement("coin", k, 0.0, False, 20.0 + 30.0 * k, 50.0) for k in range(6)))
+    order = cutting_order(layout, parts)
+    assert sorted(order) == list(range(6))
+    assert sum(abs(a - b) == 1 for a, b in pairwise(order)) <= 1
+    assert order[:2] == [0, 4]  # the farthest of the next four by size
 
 
 def test_part_drawing_keeps_the_parts_own_coordinates():

@@ -65,6 +65,16 @@ def test_cheaper_of_two_sheets_is_taken():
     assert [s.stock for s in layout.sheets] == ["cheap"]
 
 
+def test_last_sheet_becomes_a_cheaper_one_when_its_parts_fit_there():
+    """Four plates of 140 x 90 fill a large sheet, the fifth needs but a small one."""
+    stock = [
+        sheet(300.0, 200.0, name="large", price=60.0, count=3),
+        sheet(150.0, 100.0, name="small", price=9.0, count=1),
+    ]
+    layout = solved(ask([item(rectangle("p", 140.0, 90.0), 5)], stock, 0.0, 3.0))
+    assert sorted(s.stock for s in layout.sheets) == ["large", "small"]
+
+
 def test_two_small_sheets_are_dearer_than_the_large_one():
     stock = [sheet(150.0, 100.0, name="small", price=30.0, count=4), sheet(300.0, 200.0, name="large", price=50.0)]
     layout = solved(ask([item(rectangle("tag", 140.0, 90.0), 2)], stock, 2.0, 2.0))
