@@ -27,6 +27,8 @@ class Board(NamedTuple):
         The field: rectangles x0, y0, x1, y1 that hold pieces, mm.
     movable : ndarray, shape (1,), int64
         Number of pieces that may move.
+    usable : ndarray, shape (s,), int64
+        Number of each shape's packed variants, the first ones, that may at present be chosen.
     turning : ndarray, shape (s,), int64
         1 for shapes whose pieces may at present turn to any angle, else 0.
     """
@@ -42,6 +44,7 @@ class Board(NamedTuple):
     weight: Floats
     rect: Floats
     movable: Ints
+    usable: Ints
     turning: Ints
 
 
@@ -68,6 +71,7 @@ def new_board(variants: Ints, rect: Floats, shapes: int, fixed: int = 0) -> Boar
         weight=np.ones((n, n)),
         rect=rect.copy(),
         movable=np.array([n - fixed], dtype=np.int64),
+        usable=np.ones(shapes, dtype=np.int64),
         turning=np.zeros(shapes, dtype=np.int64),
     )
 

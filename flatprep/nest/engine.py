@@ -2,6 +2,8 @@
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from enum import Enum
+from itertools import pairwise
 
 import numpy as np
 
@@ -17,6 +19,7 @@ from flatprep.nest.untangle import new_try, remember, sweeps
 # Places tried in one call of the kernel, some 0.02 s, so that signals are served; fewer where corners are many.
 CALL = 20_000
 FEW_CORNERS = 8
+QUARTERS = 4
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -51,6 +54,14 @@ class Spots:
     def cost(self) -> tuple[int, float]:
         """What is minimised."""
         return self.rects, self.length_mm
+
+
+class Turning(Enum):
+    """What pieces that may turn to any angle make of it, from fast to thorough."""
+
+    QUARTERS = "by quarter turns from the turn of the least box"
+    PACKED = "to any of the packed turns"
+    FREELY = "to any angle"
 
 
 class Engine:
@@ -92,6 +103,7 @@ class Engine:
         for i in range(int(board.movable[0]), len(start.variant)):
             put(self.outlines, board, i, int(start.variant[i]), 0.0, 0.0)
         self.lay(start)
+        self.turn(Turning.PACKED)
 
     @property
     def board(self) -> Board:
@@ -103,9 +115,13 @@ class Engine:
         """Tell whether any piece may turn to any angle."""
         return bool(self._free.any())
 
-    def turn_freely(self) -> None:
-        """From now on let pieces that may turn freely take any angle, not only the packed ones."""
-        self.board.turning[:] = self._free
+    def turn(self, how: Turning) -> None:
+        """From now on let pieces that may turn freely turn so."""
+        packed = np.diff(self.outlines.first)
+        states = np.array([len(set(self.outlines.mirrored[a:b])) for a, b in pairwise(self.outlines.first)])
+        few = np.where(self._free == 1, np.minimum(QUARTERS * states, packed), packed)
+        self.board.usable[:] = few if how is Turning.QUARTERS else packed
+        self.board.turning[:] = self._free if how is Turning.FREELY else 0
 
     @property
     def time_left(self) -> bool:

@@ -165,7 +165,7 @@ def sample(ground: Ground, i: int, kept: Floats, rng: np.random.Generator) -> in
     outlines, board = ground.outlines, ground.board
     shape = outlines.shape[board.variant[i]]
     first = outlines.first[shape]
-    variants = outlines.first[shape + 1] - first
+    variants = board.usable[shape]
     tried = 0
     for trial in range(WIDE_SAMPLES + NEAR_SAMPLES + CORNER_SAMPLES):
         v = first + int(rng.random() * variants)

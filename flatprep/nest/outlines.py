@@ -153,15 +153,15 @@ def pack(shapes: Sequence[Shape], turns: Sequence[Sequence[float]]) -> Outlines:
     shapes
         The shapes.
     turns
-        For each of them, the turns to pack (degrees).
+        For each of them, the turns to pack (degrees). A shape's variants come in this order, mirror states together.
     """
     edges, poles, boxes, turn, kind, flipped, first = [], [], [], [], [], [], [0]
     for s, (shape, angles) in enumerate(zip(shapes, turns, strict=True)):
         rings = rings_of(shape)
         inner = [drawn_in(r) for r in rings]
         circles = inner_circles(edges_of(inner))
-        for mirrored in shape.mirror:
-            for angle in angles:
+        for angle in angles:
+            for mirrored in shape.mirror:
                 outline = turned(shape.outer, angle, mirrored=mirrored)
                 moved = [turned(r, angle, mirrored=mirrored) for r in inner]
                 edges.append(edges_of([r[::-1] for r in moved] if mirrored else moved))

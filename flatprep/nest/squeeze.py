@@ -6,13 +6,15 @@ import numpy as np
 
 from flatprep.nest.board import put
 from flatprep.nest.bounds import Bounds
-from flatprep.nest.engine import Engine, Spots
+from flatprep.nest.engine import Engine, Spots, Turning
 from flatprep.nest.spots import any_spot, clamp, fits
 
 ROAM_SHARE = 0.8
-# Pieces that may turn to any angle keep to the packed turns, which are faster to look up, for this share of the time.
-TURNING_AT = 0.5
-LONGEST_STEP, SHORTEST_STEP = 0.05, 0.001
+# Until when (share of the time) to roam, and how pieces that may turn freely turn meanwhile: few turns are searched
+# faster than many, and packed ones faster than any angle.
+FIXED_STAGES = ((Turning.PACKED, ROAM_SHARE),)
+FREE_STAGES = ((Turning.QUARTERS, 0.35), (Turning.PACKED, 0.55), (Turning.FREELY, ROAM_SHARE))
+LONGEST_STEP, LATER_STEP, SHORTEST_STEP = 0.05, 0.004, 0.001
 ROAM_PATIENCE, ROAM_TRIES = 200, 3
 TIGHT_LONGEST, TIGHT_SHORTEST = 0.0005, 0.00001
 TIGHT_PATIENCE = 100
@@ -67,7 +69,7 @@ def swap_two(engine: Engine) -> None:
     middle = [(0.5 * (board.left[k] + board.right[k]), 0.5 * (board.low[k] + board.high[k])) for k in (i, j)]
     homes = int(board.home[i]), int(board.home[j])
     for k, (x, y), home in ((i, middle[1], homes[1]), (j, middle[0], homes[0])):
-        v = int(rng.integers(o.first[shape[k]], o.first[shape[k] + 1]))
+        v = int(o.first[shape[k]] + rng.integers(board.usable[shape[k]]))
         if fits(o, board, home, v):
             board.home[k] = home
             box = o.rings.box[v]
@@ -104,12 +106,12 @@ class Squeeze:
 
     def run(self) -> Spots:
         """Roam, then tighten, until the time is gone; return the best layout."""
-        if self.engine.may_turn:
-            self.engine.stop_at = TURNING_AT
-            self.roam()
-            self.engine.turn_freely()
-        self.engine.stop_at = ROAM_SHARE
-        self.roam()
+        step = LONGEST_STEP
+        for how, until in FREE_STAGES if self.engine.may_turn else FIXED_STAGES:
+            self.engine.turn(how)
+            self.engine.stop_at = until
+            self.roam(step)
+            step = LATER_STEP
         self.engine.stop_at = 1.0
         self.tighten()
         return self.best
@@ -148,9 +150,9 @@ class Squeeze:
         self.engine.lay(shelf[pick])
         swap_two(self.engine)
 
-    def roam(self) -> None:
+    def roam(self, step: float) -> None:
         """Shorten by steps that halve with each failure; at the least step, change failed layouts about."""
-        engine, step = self.engine, LONGEST_STEP
+        engine = self.engine
         shelf: list[Spots] = []
         while self._going_on:
             other = self._exchange(self.best)

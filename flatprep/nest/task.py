@@ -111,9 +111,9 @@ def _many_turns(kinds: int) -> int:
 
 
 def _even_turns(outer: Floats, many: int) -> tuple[float, ...]:
-    """Spread turns (degrees) evenly, beginning with the one in which the shape's box is least."""
-    first = least_box_turn(outer) % (360.0 / many)
-    return tuple(first + 360.0 * k / many for k in range(many))
+    """Spread turns (degrees) evenly, the four that make the shape's box least first."""
+    first = least_box_turn(outer) % 90.0
+    return tuple((first + 90.0 * q + 360.0 * k / many) % 360.0 for k in range(many // 4) for q in range(4))
 
 
 def _given(outlines: Outlines, field: Field, kinds: Ints, start: Sequence[Place]) -> Spots:

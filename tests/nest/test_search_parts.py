@@ -65,7 +65,7 @@ def test_a_free_turn_is_the_packed_one_turned(angle, state):
     kinds = shapes()
     packed = pack(kinds, [(0.0, 90.0)] * len(kinds))
     own = with_own_variants(packed, np.array([1, 0]), [True] * len(kinds))
-    source = int(packed.first[1]) + 2 * state
+    source = int(packed.first[1]) + state
     target = len(packed.shape)
     turn_into(own, source, target, angle)
     rows = own.rings.edge[slice(*own.rings.at[target])]

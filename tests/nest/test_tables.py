@@ -39,14 +39,14 @@ def look_up(tables, a, b, dx, dy):
 
 
 def test_pairs_that_differ_by_a_common_turn_share_a_grid():
-    square, wedge = int(PACKED.first[0]), int(PACKED.first[1])
-    assert TABLES.of[square, wedge] == TABLES.of[square + 1, wedge] or PACKED.turn[square + 1, 2] != 0.0
+    square, elbow = int(PACKED.first[0]), int(PACKED.first[2])
     relative = {}
     for i in range(len(ANGLES)):
         for j in range(len(ANGLES)):
             key = round((ANGLES[j] - ANGLES[i]) % 360.0)
-            relative.setdefault(key, set()).add(int(TABLES.of[square + i, wedge + j]))
+            relative.setdefault(key, set()).add(int(TABLES.of[square + i, elbow + j]))
     assert all(len(grids) == 1 for grids in relative.values())
+    assert len(set.union(*relative.values())) == len(relative)
 
 
 def test_nothing_is_computed_before_it_is_asked_for():
