@@ -1,13 +1,15 @@
 """Picture of a sheet, true to scale: ``sheet-NN.svg`` to print beside the machine."""
 
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
+from dataclasses import dataclass
 
 import numpy as np
+import shapely
 import svgwrite
 from shapely.geometry import Polygon
 
 from flatprep.geom.bulge import Floats
-from flatprep.geom.polygons import inner_point
+from flatprep.geom.polygons import polygon, valid_polygon
 from flatprep.model.drawing import Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
 from flatprep.report.figures import bare_length, length, percent, size
@@ -15,11 +17,37 @@ from flatprep.report.svg_path import joined, part_path, ring_data
 
 OKABE_ITO = ("#E69F00", "#56B4E9", "#009E73", "#F0E442", "#0072B2", "#D55E00", "#CC79A7")
 """Colours that colour-blind readers tell apart (Okabe and Ito 2008); every part is named as well."""
+Rectangle = tuple[float, float, float, float]
 INK, PALE = "#333333", "#FFFFFF"
 
 
+@dataclass(frozen=True, slots=True)
+class Extras:
+    """What else a picture may tell.
+
+    Attributes
+    ----------
+    units : str
+        Of the figures written.
+    offcut : (x0, y0, x1, y1) or None
+        Largest usable rectangle that is left, sheet coordinates, mm: hatched.
+    """
+
+    units: str = "mm"
+    offcut: Rectangle | None = None
+
+
+PLAIN = Extras()
+
+
 def sheet_svg(
-    sheet: SheetLayout, number: int, parts: Mapping[str, Part], *, margin_mm: float, job: str = "", units: str = "mm"
+    sheet: SheetLayout,
+    number: int,
+    parts: Mapping[str, Part],
+    *,
+    margin_mm: float,
+    job: str = "",
+    extras: Extras = PLAIN,
 ) -> str:
     """SVG document of a sheet with its parts, names, used length, sheet data and a scale bar.
 
@@ -34,9 +62,10 @@ def sheet_svg(
         Drawn as a dashed line where the border is a rectangle.
     job
         Name of the job, for the heading.
-    units
-        Of the figures written.
+    extras
+        Unit of the figures written, and the offcut.
     """
+    units, offcut = extras.units, extras.offcut
     x0, y0 = sheet.outline.min(axis=0)
     x1, y1 = sheet.outline.max(axis=0)
     em = float(max(x1 - x0, y1 - y0)) / 70.0
@@ -46,8 +75,12 @@ def sheet_svg(
     page.set_desc(title=f"{job} sheet {number}".strip())
     _stock(page, sheet, margin_mm, em)
     colour = {name: OKABE_ITO[k % len(OKABE_ITO)] for k, name in enumerate(sorted(_names(sheet)))}
+    if offcut is not None:
+        _offcut(page, offcut, em, units)
     for placement in sheet.placements:
         _piece(page, parts[placement.part], placement, colour[placement.part], em)
+    for placement in sheet.placements:
+        _name(page, parts[placement.part], placement, em)
     _used_length(page, sheet, em, units)
     _heading(page, sheet, number, job, em, units)
     _scale_bar(page, (float(x0), float(-y0 + 5.2 * em)), float(x1 - x0), em, units)
@@ -81,10 +114,38 @@ def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, colour: str
             page.path(d=joined([_shut(m) for m in part.marks]), fill="none", stroke_dasharray=f"{em / 4:.3f}", **thin)
         )
     page.add(group)
-    x, y = placement.motion.points(_middle(part))[0]
+
+
+def _name(page: svgwrite.Drawing, part: Part, placement: Placement, em: float) -> None:
+    """Name of a piece in the middle of its largest inscribed circle, no taller than that lets it be read."""
+    shape = valid_polygon(polygon(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1))
+    circle = shapely.maximum_inscribed_circle(shape, tolerance=0.05 * min(part.size_mm))
+    x, y = placement.motion.points(np.asarray(circle.coords)[:1])[0]
     words = f"{placement.part} {placement.copy}"
-    height = min(em, 0.3 * min(part.size_mm), 1.6 * max(part.size_mm) / max(len(words), 1))
+    height = min(em, float(circle.length), 1.6 * max(part.size_mm) / len(words))
     _text(page, words, (float(x), float(-y) + height / 3), height, anchor="middle")
+
+
+def _offcut(page: svgwrite.Drawing, offcut: Rectangle, em: float, units: str) -> None:
+    """Hatched box with its size: what may be kept for another job."""
+    x0, y0, x1, y1 = offcut
+    place, extent = (round(x0, 3), round(-y1, 3)), (round(x1 - x0, 3), round(y1 - y0, 3))
+    thin = {"stroke": INK, "stroke_width": round(em / 16, 3)}
+    page.add(page.rect(place, extent, fill="none", stroke_dasharray=f"{em:.3f} {em / 3:.3f}", class_="offcut", **thin))
+    lines = "".join(_hatch(offcut, 2.0 * em))
+    page.add(page.path(d=lines, fill="none", stroke="#888888", stroke_width=round(em / 24, 3)))
+    words = f"offcut {size(x1 - x0, y1 - y0, units)}"
+    _text(page, words, ((x0 + x1) / 2, -(y0 + y1) / 2), min(em, 1.4 * (x1 - x0) / len(words)), anchor="middle")
+
+
+def _hatch(box: Rectangle, step: float) -> Iterator[str]:
+    """Lines falling at 45 degrees, clipped to a box."""
+    x0, y0, x1, y1 = box
+    for k in range(1, int((x1 - x0 + y1 - y0) / step) + 1):
+        off = k * step  # x + y grows by it from the lower left corner
+        ax, bx = x0 + max(off - (y1 - y0), 0.0), x0 + min(off, x1 - x0)
+        ay, by = y0 + min(off, y1 - y0), y0 + max(off - (x1 - x0), 0.0)
+        yield f"M{ax:.3f} {-ay:.3f}L{bx:.3f} {-by:.3f}"
 
 
 def _matrix(*figures: float) -> str:
@@ -138,7 +199,3 @@ def _text(page: svgwrite.Drawing, words: str, at: tuple[float, float], height: f
     place = (round(at[0], 3), round(at[1], 3))
     font = {"font_size": round(height, 3), "font_family": "sans-serif", "text_anchor": anchor, "fill": INK}
     page.add(page.text(words, insert=place, **font))
-
-
-def _middle(part: Part) -> Floats:
-    return np.array([inner_point(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1)])

@@ -8,7 +8,7 @@ import pytest
 from flatprep.geom.bulge import circle
 from flatprep.model.drawing import Contour, Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
-from flatprep.report.sheet_svg import OKABE_ITO, sheet_svg
+from flatprep.report.sheet_svg import OKABE_ITO, Extras, sheet_svg
 
 SVG = "{http://www.w3.org/2000/svg}"
 MARK = Curve(np.array([[-5.0, 0, 0], [5, 0, 0]]), closed=False)
@@ -69,9 +69,21 @@ def test_sheet_data_used_length_and_scale_bar_are_written():
 
 
 def test_inch_job_is_told_in_inches():
-    words = " | ".join(texts(picture(units="in"))).replace("\u00a0", " ")
+    words = " | ".join(texts(picture(extras=Extras(units="in")))).replace("\u00a0", " ")
     assert "used length 5.827 in" in words
     assert "mm" not in words
+
+
+def test_offcut_is_hatched_within_its_box_and_its_size_written():
+    root = picture(extras=Extras(offcut=(150.0, 10.0, 290.0, 190.0)))
+    assert any("offcut 140 × 180" in (t or "").replace("\u00a0", " ") for t in texts(root))
+    (box,) = [r for r in root.iter(f"{SVG}rect") if r.get("class") == "offcut"]
+    assert [float(box.get(k)) for k in ("x", "y", "width", "height")] == [150.0, -190.0, 140.0, 180.0]
+    hatch = next(p.get("d") for p in root.iter(f"{SVG}path") if p.get("d").count("M") > 10)
+    points = np.array([[float(v) for v in pair.split()] for pair in hatch.replace("M", "L").split("L")[1:]])
+    assert points.min(axis=0) == pytest.approx([150.0, -190.0], abs=10.0)
+    assert (points >= [150.0 - 1e-3, -190.0 - 1e-3]).all()
+    assert (points <= [290.0 + 1e-3, -10.0 + 1e-3]).all()
 
 
 def test_each_part_has_a_colour_of_the_palette():
