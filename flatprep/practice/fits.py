@@ -127,7 +127,7 @@ def cut_spread_mm(diameter_mm: float, process: Process, thickness_mm: float | No
 
 def half_it_mm(diameter_mm: float, made_by: str, own: Sequence[Path] = ()) -> float:
     """Return half the width of the best IT grade that a way of making holes reaches, mm (beyond 120 mm as there)."""
-    grade = min(int(section("capability", own)[made_by]), 13)
+    grade = int(section("capability", own)[made_by])
     return it_um(min(diameter_mm, 120.0), grade, own) / 2000.0
 
 

@@ -124,7 +124,7 @@ def limits(nominal_mm: float, zone: str, own: Sequence[Path] = ()) -> Limits:
         return Limits(nominal_mm, zone, lower, upper, sheet.source())
     pair = _derived(zone, step, nominal_mm, sheet, own)
     if pair is None:
-        known = [*rows, "H5 to H13", "h5 to h13", "JS5 to JS13", "D, E, F, G 5 to 13"]
+        known = [*rows, "H5 to H16", "h5 to h16", "JS5 to JS16", "D, E, F, G 5 to 16"]
         close = nearest(zone, rows) or tuple(z for z in rows if z[0] == zone[0])
         remedy = "did you mean " + " or ".join(close) + "?" if close else "known: " + ", ".join(known)
         raise UnknownHardwareError(f"tolerance class {zone} is not known", remedy)
@@ -132,7 +132,7 @@ def limits(nominal_mm: float, zone: str, own: Sequence[Path] = ()) -> Limits:
 
 
 def it_um(nominal_mm: float, grade: int, own: Sequence[Path] = ()) -> float:
-    """Return the width of a standard tolerance grade IT5 to IT13 at a nominal size, µm.
+    """Return the width of a standard tolerance grade IT5 to IT16 at a nominal size, µm.
 
     Raises
     ------
@@ -158,7 +158,7 @@ def _derived(
     zone: str, step: int, nominal_mm: float, sheet: HardwareTable, own: Sequence[Path]
 ) -> tuple[float, float] | None:
     letter, grade = zone.rstrip("0123456789"), zone.lstrip("ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz")
-    if not grade or not 5 <= int(grade) <= 13:
+    if not grade or not 5 <= int(grade) <= 16:
         return None
     width = it_um(nominal_mm, int(grade), own)
     about = {"H": (0.0, width), "h": (-width, 0.0), "JS": (-width / 2, width / 2), "js": (-width / 2, width / 2)}

@@ -81,6 +81,13 @@ def test_every_grade_is_as_published(row):
 DERIVED = ["H5", "H10", "H12", "H13", "h7", "h11", "js6", "JS9", "F8", "E9", "D10", "G6", "f8", "n7", "p7"]
 
 
+@pytest.mark.parametrize("grade", [12, 13, 14, 15, 16])
+def test_five_grades_on_tolerances_are_ten_times_as_wide(grade):
+    """ISO 286-1: above IT11 the widths are those of five grades below, times ten."""
+    for size in (3.0, 6.0, 10.0, 18.0, 30.0, 50.0, 80.0, 120.0):
+        assert it_um(size, grade) == 10 * it_um(size, grade - 5)
+
+
 @given(size=st.floats(0.01, 120.0), zone=st.sampled_from([*ZONES, *DERIVED]))
 def test_lower_is_below_upper_and_the_width_is_the_grade(size, zone):
     found = limits(size, zone)
