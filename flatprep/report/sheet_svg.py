@@ -10,7 +10,7 @@ from shapely.geometry import Polygon
 
 from flatprep.geom.bulge import Floats
 from flatprep.geom.polygons import polygon, valid_polygon
-from flatprep.model.drawing import Curve, Part
+from flatprep.model.drawing import Contour, Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
 from flatprep.report.figures import bare_length, length, percent, size
 from flatprep.report.svg_path import joined, part_path, ring_data
@@ -123,7 +123,13 @@ def _name(page: svgwrite.Drawing, part: Part, placement: Placement, em: float) -
     x, y = placement.motion.points(np.asarray(circle.coords)[:1])[0]
     words = f"{placement.part} {placement.copy}"
     height = min(em, float(circle.length), 1.6 * max(part.size_mm) / len(words))
-    _text(page, words, (float(x), float(-y) + height / 3), height, anchor="middle")
+    x0, y0, x1, y1 = Contour(placement.motion.polyline(part.outer.xyb)).bounds
+    if y1 - y0 <= x1 - x0:
+        _text(page, words, (float(x), float(-y) + height / 3), height, anchor="middle")
+        return
+    upright = page.g(transform=f"rotate(-90 {x:.3f} {-y:.3f})")
+    _text(upright, words, (float(x), float(-y) + height / 3), height, anchor="middle")
+    page.add(upright)
 
 
 def _offcut(page: svgwrite.Drawing, offcut: Rectangle, em: float, units: str) -> None:
@@ -162,8 +168,16 @@ def _used_length(page: svgwrite.Drawing, sheet: SheetLayout, em: float, units: s
     y, right = -low + 1.2 * em, left + sheet.used_length_mm
     line = f"M{left:.3f} {y:.3f}H{right:.3f}M{left:.3f} {y - em / 2:.3f}v{em:.3f}M{right:.3f} {y - em / 2:.3f}v{em:.3f}"
     page.add(page.path(d=line, fill="none", stroke=INK, stroke_width=em / 12))
-    words = f"used length {length(sheet.used_length_mm, units)}"
+    words = f"used length {length(sheet.used_length_mm, units)}, {percent(used_share(sheet))} of it parts"
     _text(page, words, ((left + right) / 2, y + 1.5 * em), em, anchor="middle")
+
+
+def used_share(sheet: SheetLayout) -> float:
+    """Net part area over the area of the sheet as far along as it is used."""
+    whole = Polygon(sheet.outline, list(sheet.holes))
+    x0, y0, _, y1 = whole.bounds
+    used = whole.intersection(shapely.box(x0, y0, x0 + sheet.used_length_mm, y1)).area
+    return float(sheet.utilisation * whole.area / used) if used > 0.0 else 0.0
 
 
 def _heading(page: svgwrite.Drawing, sheet: SheetLayout, number: int, job: str, em: float, units: str) -> None:
@@ -195,7 +209,7 @@ def _scale_bar(page: svgwrite.Drawing, at: tuple[float, float], room: float, em:
     _text(page, f"{bare_length(bar, units)} {units}", (x + bar + em / 2, y + em / 2), em)
 
 
-def _text(page: svgwrite.Drawing, words: str, at: tuple[float, float], height: float, *, anchor: str = "start") -> None:
+def _text(onto: svgwrite.Drawing, words: str, at: tuple[float, float], height: float, *, anchor: str = "start") -> None:
     place = (round(at[0], 3), round(at[1], 3))
     font = {"font_size": round(height, 3), "font_family": "sans-serif", "text_anchor": anchor, "fill": INK}
-    page.add(page.text(words, insert=place, **font))
+    onto.add(svgwrite.text.Text(words, insert=place, debug=False, **font))

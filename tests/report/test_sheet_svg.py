@@ -68,6 +68,21 @@ def test_sheet_data_used_length_and_scale_bar_are_written():
         assert part in words.replace("\u00a0", " ")
 
 
+def test_share_of_the_used_length():
+    """4.2 % of 300 mm is 4.2 x 300 / 148 = 8.51 % of 148 mm."""
+    assert any("8.5\u00a0% of it parts" in t for t in texts(picture()))
+
+
+def test_name_stands_upright_in_an_upright_part():
+    tall = {"bar": Part("bar", Contour(np.array([[0.0, 0, 0], [10, 0, 0], [10, 90, 0], [0, 90, 0]])))}
+    outline = np.array([[0.0, 0], [300, 0], [300, 200], [0, 200]])
+    for turn, turned in ((0.0, True), (90.0, False)):
+        one = SheetLayout("s", "m", 3.0, outline, (), 148.0, 0.1, (Placement("bar", 1, turn, False, 100.0, 50.0),))
+        root = ElementTree.fromstring(sheet_svg(one, 1, tall, margin_mm=0.0))
+        groups = [g for g in root.iter(f"{SVG}g") if (g.get("transform") or "").startswith("rotate(-90")]
+        assert bool(groups) is turned
+
+
 def test_inch_job_is_told_in_inches():
     words = " | ".join(texts(picture(extras=Extras(units="in")))).replace("\u00a0", " ")
     assert "used length 5.827 in" in words
