@@ -13,7 +13,8 @@ from flatprep.bench.threads import runout_mm
 from flatprep.job.values import BendAsk, Pilots
 from flatprep.model.drawing import Text
 from flatprep.model.work import StepKind
-from flatprep.profile.hardware.threads import all_threads
+from flatprep.profile.hardware.rules import section
+from flatprep.profile.hardware.threads import all_threads, find_thread
 from tests.bench.parts import bench, line, plate, with_bends, work
 
 K = StepKind
@@ -131,6 +132,8 @@ def test_runouts(pitch, runout):
     """DIN 76-2, as quoted by a hole standards table and by the tables of an open CAD program."""
     thread = next(t for t in all_threads() if t.pitch_mm == pitch and not t.is_inch)
     assert runout_mm(thread) == runout
+    assert pitch in section("runout").numbers("pitch")
+    assert runout_mm(find_thread("1/4-28 UNF")) == 5.1  # pitch 0.907: the next larger in the table is 1
 
 
 @pytest.mark.parametrize(

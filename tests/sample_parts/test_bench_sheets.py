@@ -21,7 +21,7 @@ SHEETS = {
         ("countersink", "M5 ISO 10642", 2, 11.47, 5.5, "A"), ("deburr", "", 2, None, None, None),
         ("inspect", "", 1, None, None, None),
     ),
-    # 6 mm mild steel: five index holes 8 H7 from 7.5 (0.5 mm left), drilled 7.7; two M5, cut to 4.2 and tapped directly.
+    # 6 mm mild steel: five index holes 8 H7 from 7.5 (0.5 mm left), drilled 7.7; two M5, cut to 4.2, tapped directly.
     "depth_quadrant": (
         ("deburr", "", 1, None, None, None), ("inspect", "M8 clearance", 1, 9.0, 9.0, None),
         ("flatness", "", 1, None, None, None), ("drill", "7.7 mm", 5, 7.7, 7.5, None),
