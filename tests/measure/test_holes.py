@@ -35,6 +35,17 @@ def test_coarse_polygons_are_no_circles(sides):
     assert recognise(contour(polygon(0, 0, 5, sides), hole=True)).shape is HoleShape.OTHER
 
 
+@pytest.mark.parametrize(("sagitta", "shape"), [(0.019, HoleShape.CIRCLE), (0.03, HoleShape.OTHER)])
+def test_uneven_chords_stand_for_a_circle_within_two_hundredths(sagitta, shape):
+    # chords of two lengths, the longer ones with this sagitta: r (1 - cos half)
+    half = np.arccos(1 - sagitta / 20)
+    steps = np.tile([2 * half, half], int(2 * np.pi / (3 * half)))
+    angles = np.append(0, np.cumsum(steps))
+    points = angles[angles < 2 * np.pi - half / 2]
+    hole = recognise(contour(path(*np.column_stack([20 * np.cos(points), 20 * np.sin(points)])), hole=True))
+    assert hole.shape is shape
+
+
 def test_circle_with_one_chord_too_long_is_a_flat():
     points = chorded(circle(0, 0, 5), 0.001)
     flat = np.vstack([points[:20], points[40:]])

@@ -28,12 +28,18 @@ def notch(width_bottom, width_mouth, depth, x=50.0):
     return path((0, 0), (x - m, 0), (x - b, depth), (x + b, depth), (x + m, 0), (100, 0), (100, 60), (0, 60))
 
 
+def ellipse(a, b, chords):
+    angles = 0.05 + 2 * np.pi * np.arange(chords) / chords
+    return path(*np.column_stack([a * np.cos(angles), b * np.sin(angles)]))
+
+
 def finger(width_root, width_tip, height, x=50.0):
     """A plate with a finger on its upper edge."""
     r, t, top = width_root / 2, width_tip / 2, 40 + height
     return path((0, 0), (100, 0), (100, 40), (x + r, 40), (x + t, top), (x - t, top), (x - r, 40), (0, 40))
 
 
+OPEN_TOP = (0, 0), (100, 0), (100, 40)
 NECK = path((0, 0), (40, 0), (50, 29), (60, 0), (100, 0), (100, 60), (60, 60), (50, 31), (40, 60), (0, 60))
 SQUARES = [rectangle(20, 20, 20, 20), rectangle(43, 39, 17, 11)]
 L_HOLE = path((40, 30), (50, 30), (50, 31), (41, 31), (41, 40), (40, 40))
@@ -52,6 +58,7 @@ WEBS = [
     pytest.param(rectangle(0, 0, 80, 2), [], 2.0, (40, 1), id="strip"),
     pytest.param(PLATE, SQUARES, 3.0, (41.5, 39.5), id="short-common-run"),
     pytest.param(finger(2, 2, 8), [], 2.0, (50, 44), id="finger"),
+    pytest.param(finger(2, 2, 2), [], 2.0, (50, 41), id="finger-as-high-as-wide"),
     pytest.param(finger(3, 2.4, 12), [], 2.4, (50, 51.6), id="finger-narrowing-to-its-tip"),
     pytest.param(finger(2, 3, 10), [], 2.0, (50, 40.4), id="finger-narrowing-to-its-root"),
 ]
@@ -73,7 +80,13 @@ def test_corner_that_points_at_a_side():
     assert found[0].at == pytest.approx((41, 30), abs=1e-9)
 
 
+# sides within 8 degrees that run out in a point; a stub on a flare, its sides nearly parallel for 0.8 mm only
+POINTED = path(*OPEN_TOP, (53, 40), (51, 70), (50.4, 78.6), (50, 80), (49.6, 78.6), (49, 70), (47, 40), (0, 40))
+FLARED = path(*OPEN_TOP, (52.55, 40), (50.55, 42), (50.5, 42.8), (49.5, 42.8), (49.45, 42), (47.45, 40), (0, 40))
+
 NO_WEBS = [
+    pytest.param(POINTED, [], id="finger-that-runs-out-in-a-point"),
+    pytest.param(FLARED, [], id="low-stub-on-a-flare"),
     pytest.param(path((0, 0), (150, 0), (20, 90)), [], id="acute-corners"),
     pytest.param(path((0, 0), (120, 0), (0, 8)), [], id="needle-of-4-degrees"),
     pytest.param(path(*[(r * np.cos(a), r * np.sin(a)) for k in range(24) for r, a in
@@ -159,6 +172,34 @@ def test_curves_drawn_with_chords_measure_alike(chord_mm):
     (web,) = webs(PLATE, one, two)
     assert web.width_mm == pytest.approx(2.0, abs=1e-6)
     assert web.at == pytest.approx((35, 31), abs=0.2)
+
+
+def test_room_between_two_necks_parts_them():
+    # 12 mm of material between necks of 1 and 2 mm: nowhere wider than a few limits, yet two webs
+    wavy = path((0, 0), (100, 0), (100, 40), (66, 40), (60, 2), (50, 12), (40, 1), (34, 40), (0, 40))
+    assert [w.width_mm for w in webs(wavy)] == pytest.approx([1.0, 2.0])
+
+
+def test_a_hole_partly_in_the_way_leaves_no_third_web():
+    # two holes 8 mm apart, a third one reaches a quarter of the way into the disc between them
+    large = circle(30, 30, 10), circle(58, 30, 10)
+    found = webs(PLATE, *large, circle(44, 35, 2), most=9)
+    small = np.hypot(14, 5) - 12
+    assert [w.width_mm for w in found] == pytest.approx([small, small])
+    assert all(3 in w.contours for w in found)
+
+
+@pytest.mark.parametrize(("gap", "width"), [(0.3, 0.3), (2e-4, 2e-4), (5e-5, 0.0), (0.0, 0.0), (-5e-5, 0.0)])
+def test_nearly_touching(gap, width):
+    (web,) = webs(PLATE, path((gap, 20), (10, 15), (10, 25)))
+    assert web.width_mm == pytest.approx(width, abs=1e-9)
+
+
+def test_curves_of_coarse_chords_none_of_which_face():
+    # 25 chords: the drawn outline lies up to 1 - cos(π / 25) = 0.008 inside the ellipse on either side
+    (web,) = webs(ellipse(4, 1, 25))
+    assert web.width_mm == pytest.approx(2.0, abs=0.02)
+    assert web.at == pytest.approx((0, 0), abs=0.3)
 
 
 def test_contours_that_touch_have_a_web_of_no_width():
