@@ -227,6 +227,8 @@ def test_cutting_time_and_machine_cost():
     assert (e.parts[0].cut_time_s, e.cut_time_s) == (pytest.approx(13.0), pytest.approx(39.0))
     assert e.machine_cost == Decimal("0.65")
     assert estimate(items).machine_cost is None
+    many = [costed(rectangle("a", 20, 100), 30000, process=laser)]
+    assert estimate(many, ask=Ask(terms=CostTerms(machine_rate=Decimal(60)))).machine_cost == Decimal("6500.00")
     own = parse_process({"kind": "laser", "kerf": 0.2, "family": feeds, "machine_rate": 120}, "p.toml", "p")
     assert estimate([costed(rectangle("a", 20, 100), 3, process=own)]).machine_cost == Decimal("1.30")
 
