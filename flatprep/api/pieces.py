@@ -95,7 +95,7 @@ def read_job(job: Job, *, jobs: int = 1, progress: Progress | None = None) -> Re
 def _of_part(report: LintReport, ask: JobPart, answers: dict[str, Linted]) -> Linted | None:
     """Find the answer for a part: two parts may share a drawing, with other materials and names."""
     for one in report.linted:
-        named = {p.name.partition("#")[0] for p in one.drawing.parts}
+        named = {name for p in one.drawing.parts for name in (p.name, p.name.rpartition("#")[0])}
         if one.file == str(ask.drawing) and (ask.name in named or not named):
             return one
     found = answers.get(str(ask.drawing))

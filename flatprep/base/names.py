@@ -4,7 +4,30 @@ import difflib
 import unicodedata
 from collections.abc import Iterable
 
+_UNSEEN = {"Cc", "Cs", "Zl", "Zp"}
+"""Unicode categories: control characters, halves of characters, line and paragraph separators."""
+_TURNING = frozenset("\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069")
+"""Characters that turn the direction of what follows: a name can look like another with them."""
 _IGNORED = str.maketrans("", "", " -_./")
+
+
+def printable(text: str) -> str:
+    """Return a text as people can see it: what no page, terminal or XML may hold becomes U+FFFD.
+
+    Names and texts come from other people's drawings and jobs. Line ends and tabs stay.
+    """
+    if text.isascii() and text.isprintable():
+        return text
+    return "".join("\ufffd" if _is_unseen(c) else c for c in text)
+
+
+def one_line(text: str) -> str:
+    """Return a name as people can see it, on one line."""
+    return printable(text.replace("\r", " ").replace("\n", " ").replace("\t", " "))
+
+
+def _is_unseen(char: str) -> bool:
+    return char not in "\n\t" and (unicodedata.category(char) in _UNSEEN or char in _TURNING)
 
 
 def plain(text: str) -> str:

@@ -11,6 +11,7 @@ from flatprep.api.work import estimate_job
 from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import said_about_parts
 from flatprep.cli.progress import progress_line
+from flatprep.cli.talk import say
 from flatprep.cost.alternatives_job import job_alternatives
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
@@ -53,4 +54,4 @@ def command(
     elif form == "csv":
         click.echo(alternatives_csv(tables), nl=False)
     else:
-        click.echo(alternatives_text(tables, whole, currency=job.currency, units=job.units))
+        say(alternatives_text(tables, whole, currency=job.currency, units=job.units))

@@ -10,6 +10,7 @@ from flatprep.base.errors import ExitStatus
 from flatprep.base.files import write_whole
 from flatprep.base.units import MM_PER_UNIT
 from flatprep.cli.options import output_format, parse_roles
+from flatprep.cli.talk import say
 from flatprep.report.compare_json import compare_document
 from flatprep.report.compare_svg import compare_svg
 from flatprep.report.compare_text import compare_text
@@ -43,5 +44,5 @@ def command(
     found = compare_files(Revisions(old, new, units, new_units, parse_roles(layers)))
     if svg is not None:
         write_whole(svg, compare_svg(found))
-    click.echo(json.dumps(compare_document(found), indent=1) if form == "json" else compare_text(found))
+    say(json.dumps(compare_document(found), indent=1) if form == "json" else compare_text(found))
     ctx.exit(ExitStatus.CLEAN if found.same else ExitStatus.FINDINGS)

@@ -8,6 +8,7 @@ from flatprep.api.draft import draft_job
 from flatprep.base.errors import UsageError
 from flatprep.base.files import write_whole
 from flatprep.cli.options import said_about_parts
+from flatprep.cli.talk import say
 from flatprep.job.context import JobOptions
 from flatprep.report.draft_toml import draft_toml, unknown
 from flatprep.report.figures import counted
@@ -32,4 +33,4 @@ def command(folder: Path, out: Path | None, said: JobOptions) -> None:
         write_whole(out, draft_toml(draft))
     materials, thicknesses = unknown(draft.parts)
     drawings = counted(len(draft.parts), "drawing")
-    click.echo(f"{drawings}; {materials} without a material, {thicknesses} without a thickness: see the file", err=True)
+    say(f"{drawings}; {materials} without a material, {thicknesses} without a thickness: see the file", err=True)

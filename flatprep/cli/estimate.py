@@ -12,6 +12,7 @@ from flatprep.api.work import estimate_job
 from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
+from flatprep.cli.talk import say
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
 from flatprep.nest.problem import Budget
@@ -54,4 +55,4 @@ def command(
     elif form == "csv":
         click.echo(estimate_csv(result), nl=False)
     else:
-        click.echo(estimate_text(result, breaks, units=job.units))
+        say(estimate_text(result, breaks, units=job.units))

@@ -10,6 +10,7 @@ from flatprep.api.pictures import write_pictures
 from flatprep.base.errors import ExitStatus, UsageError
 from flatprep.cli.options import output_format, said_about_parts
 from flatprep.cli.progress import progress_line
+from flatprep.cli.talk import say
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
 from flatprep.model.linted import LintReport
@@ -47,7 +48,7 @@ def command(
             report = lint_paths(paths, said, jobs=jobs, progress=progress)
     if pictures is not None:
         write_pictures(report, pictures)
-    click.echo(json.dumps(lint_document(report), indent=1) if form == "json" else lint_text(report))
+    say(json.dumps(lint_document(report), indent=1) if form == "json" else lint_text(report))
     ctx.exit(status(report))
 
 

@@ -7,6 +7,7 @@ import click
 
 from flatprep.base.units import parse_length_mm
 from flatprep.cli.options import output_format
+from flatprep.cli.talk import say
 from flatprep.practice.lookup import KINDS, lookup
 from flatprep.profile.gauges import parse_thickness_mm
 from flatprep.profile.material_load import load_material
@@ -46,4 +47,4 @@ def command(
         material=of,
         own=folders,
     )
-    click.echo(json.dumps(lookup_document(answer), indent=1) if form == "json" else lookup_text(answer))
+    say(json.dumps(lookup_document(answer), indent=1) if form == "json" else lookup_text(answer))

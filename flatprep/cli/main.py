@@ -1,6 +1,7 @@
 """The root of the command line: commands are imported when they run; errors become two lines and a status."""
 
 import importlib
+import logging
 import os
 import signal
 import sys
@@ -54,20 +55,20 @@ class Root(click.Group):
         try:
             return super().invoke(ctx)
         except FlatprepError as err:
-            click.echo(f"error: {err.message}", err=True)
+            talk.say(f"error: {err.message}", err=True)
             if err.remedy:
-                click.echo(f"  try: {err.remedy}", err=True)
+                talk.say(f"  try: {err.remedy}", err=True)
             ctx.exit(err.exit_status)
         except KeyboardInterrupt as interruption:
-            click.echo("stopped", err=True)
+            talk.say("stopped", err=True)
             ctx.exit(status_of(interruption.args[0] if interruption.args else signal.SIGINT))
         except (click.ClickException, click.exceptions.Exit, click.Abort, BrokenPipeError):
             raise
         except Exception as err:
             if os.environ.get("FLATPREP_TRACEBACK"):
                 raise
-            click.echo(f"error: flatprep itself failed ({type(err).__name__}: {err})", err=True)
-            click.echo("  try: set FLATPREP_TRACEBACK=1, run it again, and report what it prints", err=True)
+            talk.say(f"error: flatprep itself failed ({type(err).__name__}: {err})", err=True)
+            talk.say("  try: set FLATPREP_TRACEBACK=1, run it again, and report what it prints", err=True)
             ctx.exit(ExitStatus.UNUSABLE)
 
 
@@ -83,6 +84,8 @@ def root() -> None:
 def main() -> None:
     """Run flatprep."""
     answer_interruptions()
+    # what it mends or cannot read is told by us, once a drawing and with its name
+    logging.getLogger("ezdxf").setLevel(logging.CRITICAL)
     # the arithmetic is small: a thread pool in every process only costs time and memory
     for name in ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS"):
         os.environ.setdefault(name, "1")

@@ -12,7 +12,7 @@ from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import output_format, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
-from flatprep.cli.talk import warn
+from flatprep.cli.talk import say, warn
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
 from flatprep.nest.problem import Budget
@@ -51,7 +51,7 @@ def command(
     if form == "json":
         click.echo(json.dumps(json.loads((folder / "layout.json").read_text()), indent=1))
     else:
-        click.echo(layout_text(nested.layout, folder))
+        say(layout_text(nested.layout, folder))
     ctx.exit(stop.exit_status if stop() else status(nested))
 
 

@@ -11,7 +11,7 @@ from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, read_drawings
 from flatprep.cli.options import said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
-from flatprep.cli.talk import warn
+from flatprep.cli.talk import say, warn
 from flatprep.cli.watch import inputs, wait_for_change
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
@@ -48,11 +48,11 @@ def command(
         try:
             status = _once(job_file, folder, budget, said)
         except FlatprepError as err:
-            click.echo(f"error: {err.message}", err=True)
+            say(f"error: {err.message}", err=True)
             status = err.exit_status
         if status > ExitStatus.UNUSABLE:
             ctx.exit(status)
-        click.echo("waiting for a change", err=True)
+        say("waiting for a change", err=True)
         wait_for_change(inputs(job_file, said))
 
 
@@ -65,7 +65,7 @@ def _once(job_file: Path, folder: Path, budget: Budget, said: JobOptions) -> int
             for warning in done.nested.warnings if done.nested else ():
                 warn(warning)
             write_prepared(done, folder)
-    click.echo(summary(done, folder))
+    say(summary(done, folder))
     status = ExitStatus.FINDINGS if done.loud or done.unplaced else ExitStatus.CLEAN
     return stop.exit_status if stop() else status
 

@@ -11,6 +11,7 @@ from flatprep.base.errors import ExitStatus, UsageError
 from flatprep.base.tolerances import DEFAULT
 from flatprep.base.units import parse_length_mm
 from flatprep.cli.options import output_format, said_about_parts
+from flatprep.cli.talk import say
 from flatprep.job.context import JobOptions
 from flatprep.profile.process_load import load_process
 from flatprep.repair.values import RepairOptions, RoundLimits
@@ -63,7 +64,7 @@ def command(
     if form == "json":
         click.echo(json.dumps(repair_document(done, str(out)), indent=1))
     else:
-        click.echo(repair_text(done, str(out), every=every))
+        say(repair_text(done, str(out), every=every))
     ctx.exit(ExitStatus.FINDINGS if done.left else ExitStatus.CLEAN)
 
 

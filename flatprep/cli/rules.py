@@ -7,6 +7,7 @@ import click
 
 from flatprep.api.rules import rules_in_force
 from flatprep.cli.options import output_format
+from flatprep.cli.talk import say
 from flatprep.job.context import JobOptions
 from flatprep.report.rules_text import rules_document, rules_text
 
@@ -24,4 +25,4 @@ def command(
 ) -> None:
     """List the rules: what each looks for, why, what to do, and the limits in force with their sources."""
     shown = rules_in_force(JobOptions(folders, process=process, material=material, thickness=thickness))
-    click.echo(json.dumps(rules_document(shown), indent=1) if form == "json" else rules_text(shown))
+    say(json.dumps(rules_document(shown), indent=1) if form == "json" else rules_text(shown))

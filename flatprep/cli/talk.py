@@ -5,6 +5,8 @@ from typing import Any
 
 import click
 
+from flatprep.base.names import printable
+
 _KEY = "flatprep.talk"
 
 
@@ -37,13 +39,18 @@ def level() -> Talk:
     return ctx.meta.get(_KEY, Talk.USUAL) if ctx else Talk.USUAL
 
 
+def say(words: str, *, err: bool = False) -> None:
+    """Print a text; what drawings and jobs bring along cannot drive the terminal."""
+    click.echo(printable(words), err=err)
+
+
 def warn(words: str) -> None:
     """Say a warning, unless the command is quiet."""
     if level() > Talk.QUIET:
-        click.echo(f"warning: {words}", err=True)
+        say(f"warning: {words}", err=True)
 
 
 def tell(words: str) -> None:
     """Say what is being done, if the command is verbose."""
     if level() is Talk.VERBOSE:
-        click.echo(words, err=True)
+        say(words, err=True)

@@ -10,8 +10,9 @@ import numpy as np
 from ezdxf.document import Drawing as DxfDocument
 
 from flatprep.base.errors import DrawingError
+from flatprep.base.names import printable
 from flatprep.drawing.entities import Shape, UnusableEntityError, shape_of
-from flatprep.drawing.explode import Loose, explode
+from flatprep.drawing.explode import Loose, block_fault, explode
 from flatprep.drawing.limits import ReadLimits
 from flatprep.drawing.roles import Guess, role_of
 from flatprep.model.drawing import Curve, Fault, Role, Simplified, Skipped, Text
@@ -82,6 +83,8 @@ def collect(document: DxfDocument, options: CollectOptions) -> Collected:
         kind = loose.entity.dxftype()
         if kind in _TEXTS:
             _add_text(out, loose, options)
+        elif kind == "INSERT":
+            out.skipped.append(_skip(loose, block_fault(loose.entity)))
         elif kind in NOT_CUT:
             out.skipped.append(_skip(loose, NOT_CUT[kind]))
         else:
@@ -177,7 +180,9 @@ def _add_text(out: Collected, loose: Loose, options: CollectOptions) -> None:
     x, y = insert.x * options.mm_per_unit, insert.y * options.mm_per_unit
     if isfinite(x) and isfinite(y) and words.strip():
         size = height * options.mm_per_unit
-        out.texts.append(Text(words.strip()[:500], (x, y), loose.layer, loose.handle, size, turn_deg=turn_deg))
+        out.texts.append(
+            Text(printable(words.strip()[:500]), (x, y), loose.layer, loose.handle, size, turn_deg=turn_deg)
+        )
 
 
 def _add_blocks(out: Collected, document: DxfDocument, mm_per_unit: float) -> None:

@@ -89,12 +89,23 @@ def _open(entity: Dxf, layers: _Layers, above: _Above, limits: ReadLimits) -> It
     if entity.dxftype() != "INSERT":
         yield Loose(entity, layer, above.handle, color, linetype)
         return
+    if block_fault(entity):
+        yield Loose(entity, layer, above.handle, color, linetype)
+        return
     below = _Above(layer, above.handle, color, linetype, above.depth + 1)
     for attribute in entity.attribs:
         yield Loose(attribute, layer, above.handle, color, linetype)
     for single in _singles(entity):
         for child in single.virtual_entities():
             yield from _open(child, layers, below, limits)
+
+
+def block_fault(insert: Dxf) -> str:
+    """Say why an insertion brings nothing: its block lies in another file, or is not there; else nothing."""
+    block = insert.block()
+    if block is None:
+        return "its block is not in the file"
+    return "a reference to another file: not opened" if block.block.is_xref or block.block.is_xref_overlay else ""
 
 
 def _singles(insert: Dxf) -> Iterable[Dxf]:

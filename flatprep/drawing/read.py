@@ -7,6 +7,7 @@ from pathlib import Path
 import numpy as np
 
 from flatprep.base.errors import DrawingError
+from flatprep.base.names import one_line
 from flatprep.base.tolerances import DEFAULT, Tolerances
 from flatprep.base.units import MM_PER_UNIT
 from flatprep.drawing.assign import assign
@@ -85,7 +86,7 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
     if frame is not None:
         sheet_faults = [_told_frame(contours.pop(frame))]
         nest = nesting(np.delete(shapes.shapes, frame))
-    parts = parts_of(contours, nest, name or path.stem)
+    parts = parts_of(contours, nest, one_line(name or path.stem))
     given = assign(parts, _others(found, shapes))
     if origin is not UnitsFrom.OPTION:
         faults += doubtful_units(parts, units)

@@ -6,7 +6,7 @@ from decimal import Decimal
 from pathlib import Path
 
 from flatprep.base.errors import JobError
-from flatprep.base.names import did_you_mean
+from flatprep.base.names import did_you_mean, one_line
 from flatprep.base.units import MM_PER_UNIT
 from flatprep.job.context import Context, JobOptions, accepts, money, roles
 from flatprep.job.cutlist import load_cutlist
@@ -57,7 +57,7 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
     layers = {**roles(top, "layers"), **options.layers}
     return Job(
         path=path,
-        name=top.text("name") if top.has("name") else path.stem,
+        name=one_line(top.text("name") if top.has("name") else path.stem),
         revision=_revision(top),
         process=process,
         spacing_mm=context.length_mm(top, "spacing", process.spacing_mm, least=0.0),
@@ -79,7 +79,7 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
 
 def _revision(top: Table) -> str:
     value = top.get("revision")
-    return str(value) if isinstance(value, int) and not isinstance(value, bool) else top.text("revision", "")
+    return str(value) if isinstance(value, int) and not isinstance(value, bool) else one_line(top.text("revision", ""))
 
 
 def _currency(top: Table) -> str | None:

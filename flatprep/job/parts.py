@@ -3,6 +3,7 @@
 from collections.abc import Mapping
 from pathlib import Path
 
+from flatprep.base.names import one_line, printable
 from flatprep.job.context import Context, accepts, roles
 from flatprep.job.cutlist import CutRow
 from flatprep.job.values import JobPart
@@ -26,7 +27,7 @@ def read_part(table: Table, context: Context, process: Process) -> JobPart:
     quantity, opposite = _quantities(table)
     return JobPart(
         drawing=drawing,
-        name=table.text("name") if table.has("name") else drawing.stem,
+        name=one_line(table.text("name") if table.has("name") else drawing.stem),
         material=material,
         thickness_mm=context.thickness_mm(table, "thickness", material),
         process=context.process(table, "process") if table.has("process") else process,
@@ -99,7 +100,7 @@ def part_of_row(row: CutRow, table: Table, context: Context, process: Process) -
     drawing = context.reach.file(table, "file", row.file)
     return JobPart(
         drawing=drawing,
-        name=row.name or Path(row.file).stem,
+        name=one_line(row.name or Path(row.file).stem),
         material=material,
         thickness_mm=context.thickness_mm(table, "thickness", material),
         process=process,
@@ -107,8 +108,8 @@ def part_of_row(row: CutRow, table: Table, context: Context, process: Process) -
         quantity_opposite=row.quantity_opposite,
         turns_deg=default_turns(material),
         drawing_units=context.options.units,
-        revision=row.revision,
-        note=row.note,
+        revision=printable(row.revision),
+        note=printable(row.note),
         where=table.place,
     )
 

@@ -4,6 +4,7 @@ from pathlib import Path
 
 import numpy as np
 
+from flatprep.base.names import one_line
 from flatprep.geom.bulge import signed_area
 from flatprep.geom.polygons import is_simple
 from flatprep.job.context import Context, money
@@ -20,7 +21,7 @@ KEYS = (
 def read_stock(table: Table, context: Context) -> Stock:
     """Check one ``[[stock]]``."""
     table = _titled(table).only(KEYS)
-    name = table.text("name")
+    name = one_line(table.text("name"))
     material = context.material(table, "material")
     if material is None:
         raise table.need("material", '"mild-steel" or another id')

@@ -7,7 +7,7 @@ from math import isfinite
 from pathlib import Path
 
 from flatprep.base.errors import FlatprepError, ProfileError
-from flatprep.base.names import did_you_mean, nearest
+from flatprep.base.names import did_you_mean, nearest, printable
 from flatprep.base.units import MM_PER_UNIT, parse_length_mm
 
 Value = object
@@ -111,7 +111,7 @@ class Table:
             raise self.need(key, '"..."')
         if not isinstance(value, str) or (default is None and not value.strip()):
             raise self.fail(key, 'a text in quotes, such as "..."')
-        return value
+        return printable(value)
 
     def optional_text(self, key: str) -> str | None:
         """Return a text, or None where the key is not there."""

@@ -1,7 +1,10 @@
 """A small job as values: what the report's tests look at."""
 
+import subprocess
+import sys
 from collections.abc import Callable
 from decimal import Decimal
+from pathlib import Path
 
 import numpy as np
 import pytest
@@ -13,6 +16,7 @@ from flatprep.model.finding import Finding, Severity
 from flatprep.model.layout import Layout, Placement, SheetLayout, Unplaced
 from flatprep.model.work import Checklist, JointCheck, JointReport, Outcome, PartSteps, Step, StepKind, Tool
 from flatprep.report.bundle import Bundle, Offcut, PartCard, SearchPoint
+from tests.hostile import hostile_job
 
 
 def rectangle(width: float, height: float) -> Contour:
@@ -111,3 +115,18 @@ def many(card: PartCard) -> Callable[[int], Bundle]:
         return Bundle("many", cards=cards, layout=Layout(4.0, 8.0, (sheet,)))
 
     return build
+
+
+@pytest.fixture(scope="session")
+def hostile(tmp_path_factory) -> Path:
+    """The folder that `prepare` wrote, beside the job's; what it printed stands in `said`."""
+    root = tmp_path_factory.mktemp("hostile")
+    job = hostile_job(root / "in")
+    before = set(root.rglob("*"))
+    words = [sys.executable, "-m", "flatprep", "prepare", str(job), "--out", str(root / "out"), "--steps", "1"]
+    run = subprocess.run(words, capture_output=True, check=False, cwd=root)
+    assert run.returncode == 1, run.stderr
+    (root / "said").write_bytes(run.stdout + run.stderr)
+    after = {path for path in root.rglob("*") if not path.is_relative_to(root / "out")}
+    assert after - before == {root / "said"}
+    return root / "out"

@@ -276,3 +276,23 @@ def test_an_accessibility_checker_finds_nothing(opened, bundle, scheme, kind):
     page.evaluate(Path(axe).read_text(encoding="utf-8") + ";0")
     faults = page.evaluate("axe.run().then(r => r.violations.map(v => v.impact + ' ' + v.id))")
     assert faults == []
+
+
+def test_a_job_full_of_markup_runs_nothing(hostile, chromium):
+    """The pages that `prepare` writes for hostile names: no script but ours runs, nothing is asked for."""
+    complaints: list[str] = []
+    context = chromium.new_context()
+    for file in (hostile / "report.html", *sorted((hostile / "bench").glob("*.html"))[:8]):
+        page = context.new_page()
+        page.on("dialog", lambda dialog: complaints.append(f"dialog: {dialog.message}"))
+        page.on("console", lambda message: complaints.append(f"console: {message.text}"))
+        page.on("pageerror", lambda error: complaints.append(f"error: {error}"))
+        page.on("request", lambda request: request.url.startswith("file:") or complaints.append(request.url))
+        page.goto(file.as_uri())
+        page.mouse.move(300, 300)
+        page.evaluate("document.querySelectorAll('*').forEach(e => e.dispatchEvent(new Event('mouseover')))")
+        assert page.title() != "ran"
+        assert page.url == file.as_uri()
+        page.close()
+    context.close()
+    assert complaints == []
