@@ -43,6 +43,12 @@ class Nested:
     ask: NestAsk
     warnings: tuple[str, ...] = ()
 
+    @property
+    def wanting(self) -> int:
+        """Pieces without a place; fillers only take room that is left, they are not missed."""
+        fillers = {piece.name for piece in self.read.pieces if piece.ask.filler}
+        return sum(u.count for u in self.layout.unplaced if u.part not in fillers)
+
 
 def nest_job(
     read_job: ReadJob,

@@ -53,8 +53,8 @@ class Prepared:
 
     @property
     def unplaced(self) -> int:
-        """Pieces without a place."""
-        return sum(u.count for u in self.nested.layout.unplaced) if self.nested else 0
+        """Pieces without a place, fillers left aside."""
+        return self.nested.wanting if self.nested else 0
 
 
 def prepare_job(

@@ -57,4 +57,4 @@ def command(
 
 def status(nested: Nested) -> ExitStatus:
     """Tell the exit status: 1 where a piece found no place."""
-    return ExitStatus.FINDINGS if nested.layout.unplaced else ExitStatus.CLEAN
+    return ExitStatus.FINDINGS if nested.wanting else ExitStatus.CLEAN

@@ -80,6 +80,15 @@ def test_part_larger_than_every_sheet(job, tmp_path):
     assert [(u["part"], u["count"]) for u in layout["unplaced"]] == [("leaf", 4)]
 
 
+def test_fillers_without_a_place_are_said_and_not_missed(job, tmp_path):
+    job.write_text(JOB.replace("width = 200", "width = 62").replace("quantity = 4", "quantity = 3"))
+    spare = ['drawing = "leaf.dxf"', 'name = "spare"', 'material = "mild-steel"', "thickness = 3", "quantity = 5"]
+    job.write_text("\n".join([job.read_text(), "[[part]]", *spare, "filler = true", ""]))
+    got = run("nest", job, "--out", tmp_path / "out", "--steps", "5")
+    assert got.exit_code == 0, got.output
+    assert "NOT PLACED: 5 x spare" in got.stdout
+
+
 def test_sheets_of_an_earlier_run_do_not_stay(job, tmp_path):
     job.write_text(JOB.replace("count = 1", 'count = "any"').replace("quantity = 4", "quantity = 40"))
     run("nest", job, "--out", tmp_path / "out", "--steps", "5")
