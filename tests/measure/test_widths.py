@@ -82,7 +82,7 @@ def test_corner_that_points_at_a_side():
 
 # sides within 8 degrees that run out in a point; a stub on a flare, its sides nearly parallel for 0.8 mm only
 POINTED = path(*OPEN_TOP, (53, 40), (51, 70), (50.4, 78.6), (50, 80), (49.6, 78.6), (49, 70), (47, 40), (0, 40))
-FLARED = path(*OPEN_TOP, (52.55, 40), (50.55, 42), (50.5, 42.8), (49.5, 42.8), (49.45, 42), (47.45, 40), (0, 40))
+FLARED = path(*OPEN_TOP, (51.28, 40), (50.55, 42), (50.5, 42.8), (49.5, 42.8), (49.45, 42), (48.72, 40), (0, 40))
 
 NO_WEBS = [
     pytest.param(POINTED, [], id="finger-that-runs-out-in-a-point"),

@@ -86,7 +86,10 @@ def test_fine_curves_and_straight_runs_are_no_slips():
     fine = chorded(circle(0, 0, 20), 1e-6)  # chords of 0.01 mm
     split = path((0, 0), (50, 0), (50.02, 0), (100, 0), (100, 60), (0, 60))
     uneven = path((0, 0), (50, 0), (50.03, 0.01), (50.06, 0.03), (50.07, 0.06), (50.07, 60), (0, 60))
-    for outline in (fine, split, uneven):
+    turns = ((0.06, 0.39), (0.04, 0.79), (0.06, 1.18))
+    steps = np.array([[50, 0], *((n * np.cos(a), n * np.sin(a)) for n, a in turns)])
+    corner = path((0, 0), *np.cumsum(steps, axis=0).tolist(), (50.1, 60), (0, 60))
+    for outline in (fine, split, uneven, corner):
         assert found("tiny-segment", context(part(outline))) == []
 
 
