@@ -1,6 +1,7 @@
 """What is asked of the holes of a part, by the job and by the drawing's own callouts."""
 
 from collections.abc import Iterable, Iterator, Sequence
+from functools import lru_cache
 
 from flatprep.job.values import Work
 from flatprep.measure.holes import Hole
@@ -13,6 +14,11 @@ def all_work(
     holes: Sequence[Hole], work: Sequence[Work], texts: Iterable[Text] = (), unit: str = "mm"
 ) -> tuple[Work, ...]:
     """Return the job's work and, for holes that the job says nothing of, what the drawing's callouts ask."""
+    return _all_work(tuple(holes), tuple(work), tuple(texts), unit)
+
+
+@lru_cache(maxsize=8)
+def _all_work(holes: tuple[Hole, ...], work: tuple[Work, ...], texts: tuple[Text, ...], unit: str) -> tuple[Work, ...]:
     said = {target.at for one in work for target in targets_of(holes, one)}
     drawn = [one for one in drawn_work(holes, texts, unit).work if not set(one.at) & said]
     return (*work, *drawn)

@@ -2,13 +2,16 @@
 
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
-from math import cos, hypot, radians, sin
+from math import cos, radians, sin
 
-from flatprep.job.values import Point, Work
+import numpy as np
+
+from flatprep.geom.bulge import Floats
+from flatprep.job.values import Work
 from flatprep.measure.holes import Hole, HoleShape
 from flatprep.model.drawing import Text
 from flatprep.practice.callouts import Callout, parse_callouts
-from flatprep.practice.targets import SAME_DIA_MM, apart_mm
+from flatprep.practice.targets import SAME_DIA_MM
 from flatprep.profile.hardware.clearance import find_clearance
 from flatprep.profile.hardware.fits import parse_fit
 from flatprep.profile.hardware.heads import all_countersinks, find_counterbore, find_countersink
@@ -31,6 +34,15 @@ class DrawnWork:
     questions: tuple[str, ...]
 
 
+class _RoundHoles:
+    """Round holes with their centres, shape (n, 2), and radii, shape (n,), mm."""
+
+    def __init__(self, holes: Sequence[Hole]) -> None:
+        self.holes = [hole for hole in holes if hole.shape is HoleShape.CIRCLE]
+        self.centre = np.array([hole.at for hole in self.holes]).reshape(-1, 2)
+        self.radius = np.array([hole.width_mm / 2.0 for hole in self.holes])
+
+
 def drawn_work(holes: Sequence[Hole], texts: Iterable[Text], unit: str = "mm") -> DrawnWork:
     """Return the bench work that callouts ask for; what is not certain becomes a question, not work.
 
@@ -45,7 +57,7 @@ def drawn_work(holes: Sequence[Hole], texts: Iterable[Text], unit: str = "mm") -
     """
     work: list[Work] = []
     questions: list[str] = []
-    round_holes = [h for h in holes if h.shape is HoleShape.CIRCLE]
+    round_holes = _RoundHoles(holes)
     for text in texts:
         for callout in parse_callouts(text.text, unit):
             try:
@@ -57,7 +69,7 @@ def drawn_work(holes: Sequence[Hole], texts: Iterable[Text], unit: str = "mm") -
     return DrawnWork(tuple(_joined(work)), tuple(dict.fromkeys(questions)))
 
 
-def _work(callout: Callout, text: Text, holes: Sequence[Hole]) -> tuple[list[Work], list[str]]:
+def _work(callout: Callout, text: Text, holes: _RoundHoles) -> tuple[list[Work], list[str]]:
     said = _said(text)
     named = _pointed_at(text, holes)
     near = named or _nearest(text, holes, callout)
@@ -68,7 +80,7 @@ def _work(callout: Callout, text: Text, holes: Sequence[Hole]) -> tuple[list[Wor
     unnamed = _heads_to_choose(callout)
     if unnamed:
         return [], [f"{said}: which head? {unnamed}"]
-    alike = [h for h in holes if abs(h.width_mm - near.width_mm) <= SAME_DIA_MM]
+    alike = [h for h in holes.holes if abs(h.width_mm - near.width_mm) <= SAME_DIA_MM]
     if callout.count is None:
         meant = [near]
     elif callout.count == len(alike):
@@ -86,37 +98,36 @@ def _said(text: Text) -> str:
     return f'the drawing says "{" ".join(text.text.split())}"'
 
 
-def _pointed_at(text: Text, holes: Sequence[Hole]) -> Hole | None:
+def _pointed_at(text: Text, holes: _RoundHoles) -> Hole | None:
     """Return the hole that a leader of the text points to: its tip on the rim or inside."""
-    found = [
-        (apart_mm(hole.at, tip), k)
-        for tip in text.points_to
-        for k, hole in enumerate(holes)
-        if apart_mm(hole.at, tip) <= hole.width_mm / 2.0 + LEADER_SLACK_MM
-    ]
-    return holes[min(found)[1]] if found else None
+    found: list[tuple[float, int]] = []
+    for tip in text.points_to:
+        apart = np.hypot(*(holes.centre - tip).T)
+        inside = np.nonzero(apart <= holes.radius + LEADER_SLACK_MM)[0]
+        found += [(float(apart[k]), int(k)) for k in inside]
+    return holes.holes[min(found)[1]] if found else None
 
 
-def _nearest(text: Text, holes: Sequence[Hole], callout: Callout) -> Hole | None:
+def _nearest(text: Text, holes: _RoundHoles, callout: Callout) -> Hole | None:
     """Return the nearest hole in reach that can be meant, else the nearest in reach."""
-    if text.points_to:
+    if text.points_to or not holes.holes:
         return None
     reach = max(LEAST_REACH_MM, REACH_HEIGHTS * text.height_mm)
-    rims = [(_to_text_mm(text, h.at) - h.width_mm / 2.0, k) for k, h in enumerate(holes)]
-    in_reach = sorted((max(rim, 0.0), k) for rim, k in rims if rim <= reach)
-    meant = [k for _, k in in_reach if _can_be_meant(callout, holes[k].width_mm)]
-    if meant:
-        return holes[meant[0]]
-    return holes[in_reach[0][1]] if in_reach else None
+    rim = np.maximum(_to_text_mm(text, holes.centre) - holes.radius, 0.0)
+    near = [holes.holes[k] for k in np.argsort(rim, kind="stable")[: int(np.count_nonzero(rim <= reach))]]
+    return next((hole for hole in near if _can_be_meant(callout, hole.width_mm)), near[0] if near else None)
 
 
-def _to_text_mm(text: Text, point: Point) -> float:
-    """Return the distance of a point from the box of a text that runs from its insertion point, mm."""
+def _to_text_mm(text: Text, points: Floats) -> Floats:
+    """Return the distances of points, shape (n, 2), from the box of a text that runs from its insertion point, mm."""
     turn = radians(text.turn_deg)
-    dx, dy = point[0] - text.at[0], point[1] - text.at[1]
+    dx, dy = (points - text.at).T
     along, up = dx * cos(turn) + dy * sin(turn), dy * cos(turn) - dx * sin(turn)
     long = max(len(line) for line in text.text.splitlines()) * LETTER_WIDTH * text.height_mm
-    return hypot(max(-along, 0.0, along - long), max(-up, 0.0, up - text.height_mm))
+    beside = np.maximum(np.maximum(-along, along - long), 0.0)
+    above = np.maximum(np.maximum(-up, up - text.height_mm), 0.0)
+    apart: Floats = np.hypot(beside, above)
+    return apart
 
 
 def _can_be_meant(callout: Callout, drawn_mm: float) -> bool:

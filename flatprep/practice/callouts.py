@@ -7,6 +7,7 @@ date is left alone.
 import re
 from collections.abc import Callable
 from dataclasses import dataclass, field, replace
+from functools import lru_cache
 
 from flatprep.base.units import MM_PER_UNIT
 from flatprep.practice.callout_text import plain_callout
@@ -64,6 +65,7 @@ class _NoCalloutError(Exception):
     """A word that no callout has."""
 
 
+@lru_cache(maxsize=4096)
 def parse_callouts(text: str, unit: str = "mm") -> tuple[Callout, ...]:
     """Read a text as callouts; empty where it is none.
 
