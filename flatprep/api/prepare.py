@@ -77,7 +77,8 @@ def prepare_job(
     began = time.monotonic()
 
     def better(layout: Layout) -> None:
-        points.append(_point(layout, time.monotonic() - began))
+        if budget.steps is None:  # a budget in steps gives the same page every time
+            points.append(_point(layout, time.monotonic() - began))
         if on_better is not None:
             on_better(layout)
 
