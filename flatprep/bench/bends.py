@@ -6,7 +6,7 @@ from math import hypot
 import numpy as np
 
 from flatprep.base.errors import FlatprepError, JobError
-from flatprep.bench.ops import Op, Rank
+from flatprep.bench.ops import Op, Rank, spoilt
 from flatprep.bench.part import BenchPart
 from flatprep.job.values import BendAsk, Point
 from flatprep.model.work import StepKind
@@ -87,13 +87,31 @@ def _middle(line: Line) -> Point:
 def bend_ops(bench: BenchPart, bends: tuple[BendLines, ...]) -> list[Op]:
     """Return one bending operation for each bend of the job."""
     return [
-        Op(
+        _in_alloy(bench, found.ask, Op(
             StepKind.BEND, Rank.BEND, tuple(_middle(line) for line in found.lines), _size(found.ask), side=None,
             note=_note(bench, found), count=len(found.lines),
-        )
+        ))
         for found in bends
         if found.lines
     ]  # fmt: skip
+
+
+def _in_alloy(bench: BenchPart, ask: BendAsk, op: Op) -> Op:
+    """Return the bend, marked as not possible where the alloy cracks at that radius or does not bend cold at all."""
+    rule = bench.material.bend if bench.material else None
+    if rule is None:
+        return op
+    if not rule.bendable:
+        return spoilt(op, f"{bench.material.name if bench.material else ''} does not bend cold")
+    limit = rule.limit(bench.thickness_mm) if bench.thickness_mm else None
+    if limit is None or ask.radius_mm is None:
+        return op
+    if ask.radius_mm < limit.error - 1e-3:
+        return spoilt(
+            op, f"an inside radius of {ask.radius_mm:g} mm is under the least of {limit.error:.4g} mm: it cracks"
+        )
+    tight = limit.warn is not None and ask.radius_mm < limit.warn - 1e-3
+    return op.with_note(f"tight: {limit.warn:.4g} mm is safer in this alloy") if tight else op
 
 
 def _size(ask: BendAsk) -> str:
@@ -104,7 +122,8 @@ def _size(ask: BendAsk) -> str:
 def _note(bench: BenchPart, found: BendLines) -> str:
     notes = []
     if found.figures is None:
-        notes.append("inside radius not named: ask, or bend a coupon")
+        missing = "inside radius" if not found.ask.radius_mm else "thickness"
+        notes.append(f"{missing} not named: ask, or bend a coupon")
     else:
         f = found.figures
         notes.append(

@@ -368,6 +368,28 @@ def test_springback(material, spring):
     assert f"springs back {spring}" in one(steps_of(BENT, bends=(BEND,), material=material), K.BEND).note
 
 
+@pytest.mark.parametrize(
+    ("material", "radius", "problem", "note"),
+    [
+        # low-carbon steel: refused under half the thickness and 0.8 mm, one thickness is usual (sheet metal guidelines)
+        ("mild-steel", 1.4, "under the least of 1.5 mm", ""), ("mild-steel", 1.5, "", "tight: 3 mm"),
+        ("mild-steel", 3.0, "", ""),
+        ("acrylic", 3.0, "does not bend cold", ""),
+    ],
+)  # fmt: skip
+def test_radius_by_alloy(material, radius, problem, note):
+    process = "co2-laser" if material == "acrylic" else "fibre-laser"
+    bend = one(steps_of(BENT, bends=(replace(BEND, radius_mm=radius),), material=material, process=process), K.BEND)
+    assert problem in bend.problem
+    assert bool(bend.problem) is bool(problem)
+    assert note in bend.note
+    assert ("tight" in bend.note) is bool(note)
+
+
+def test_a_bend_without_a_radius_asks_for_it():
+    assert "inside radius not named" in one(steps_of(BENT, bends=(replace(BEND, radius_mm=None),)), K.BEND).note
+
+
 def test_a_sink_near_a_bend_gets_a_word():
     """4 t + r = 15 mm from the tangent line, 3.12 mm from the bend line, and the sink's radius 5.735: 23.86 mm."""
     asked = work("countersink", "M5 ISO 10642", hole_mm=5.5, side="A")
@@ -565,3 +587,12 @@ def test_drilling_thin_sheet_and_bending_have_their_caution():
     steps = steps_of(plate(100, 50, (10, 12, 4)), work("drill", "6", hole_mm=4), thickness=1.5)
     assert "climbs the drill" in one(steps, K.DRILL).caution
     assert "bend order" in one(steps_of(BENT, bends=(BEND,)), K.BEND).caution
+
+
+@given(WORKS, st.sampled_from(list(Pilots)))
+def test_nothing_needs_a_material_or_a_thickness(works, pilots):
+    part = with_bends(plate(400, 60, *((20 + 50 * k, 20, size) for k, size in enumerate(SIZES))), line(0, 45, 400, 45))
+    asked = [work(kind, size, hole_mm=hole) for kind, size, hole in works]
+    steps = steps_of(part, *asked, material=None, thickness=None, pilots=pilots, bends=(BEND,))
+    assert steps[-1].kind is K.INSPECT
+    assert "thickness not named" in one(steps, K.BEND).note
