@@ -61,15 +61,36 @@ def regions_of_net(curves: Sequence[Curve], join_mm: float) -> Regions:
 
 
 def regions_of_rings(rings: Sequence[Chain]) -> tuple[Chain, ...]:
-    """Join closed contours that share edges; one that lies in another, flush with its edge, is cut out of it."""
+    """Join closed contours that share edges; one that lies in another, flush with its edge, is cut out of it.
+
+    What they enclose together and nobody drew, such as the middle panel of a flat pattern drawn as strips, is material.
+    """
     curves = [Curve(r.xyb, closed=True, layer=r.layers[0], handle=r.handles[0] if r.handles else "") for r in rings]
     shapes = [Polygon(points_along(r.xyb, closed=True, chord_mm=CHORD_MM)).buffer(0) for r in rings]
     shapes.sort(key=lambda s: -s.area)
     whole: BaseGeometry = Polygon()
+    cut_out: list[BaseGeometry] = []
     for shape in shapes:
         inside = whole.intersection(shape).area > 0.98 * shape.area
+        if inside and not _flush(shape, whole):
+            continue  # a panel of a flat pattern: its edges are those of the strips around it
+        cut_out += [shape] if inside else []
         whole = areal((whole.difference if inside else whole.union)(shape, grid_size=_SNAP_MM))
-    return _regions(whole, curves).rings
+    return _regions(_without_gaps(whole, cut_out), curves).rings
+
+
+def _flush(shape: BaseGeometry, whole: BaseGeometry) -> bool:
+    """Tell whether a shape inside another has a stretch of edge in common with it."""
+    along = whole.boundary.intersection(shape.boundary.buffer(5 * CHORD_MM, quad_segs=1))
+    return bool(along.length > 50 * CHORD_MM)
+
+
+def _without_gaps(whole: BaseGeometry, cut_out: Sequence[BaseGeometry]) -> BaseGeometry:
+    """Fill what is enclosed and is no contour that was cut out."""
+    gaps = [Polygon(ring) for part in get_parts(whole).tolist() for ring in part.interiors]
+    drawn = unary_union(list(cut_out))
+    filled = [gap for gap in gaps if gap.intersection(drawn).area < 0.5 * gap.area]
+    return unary_union([whole, *filled]) if filled else whole
 
 
 def areal(shape: BaseGeometry) -> BaseGeometry:

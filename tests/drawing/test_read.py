@@ -298,6 +298,27 @@ def test_two_outlines_that_cross(tmp_path):
     assert "self-crossing" in kinds(read(drawn(tmp_path, paint)))
 
 
+@pytest.mark.parametrize("panel", [False, True])
+@pytest.mark.parametrize("exploded", [False, True])
+def test_the_panel_between_flaps_is_material(tmp_path, exploded, panel):
+    """A flat pattern drawn as flaps and strips, the panel in the middle with or without a contour of its own."""
+
+    def paint(msp):
+        for x, y, w, h in ((0, 20, 20, 60), (80, 20, 20, 60), (20, 0, 60, 20), (20, 80, 60, 20)):
+            msp.add_lwpolyline([(x, y), (x + w, y), (x + w, y + h), (x, y + h)], close=True)
+        for x, y in ((20, 20), (77, 20), (20, 77), (77, 77)):
+            msp.add_lwpolyline([(x, y), (x + 3, y), (x + 3, y + 3), (x, y + 3)], close=True)
+        if panel:  # its own contour, inside a rectangle of bend lines that runs along the middle of the strips
+            msp.add_lwpolyline([(20, 20), (80, 20), (80, 80), (20, 80)], close=True)
+        msp.add_circle((50, 50), 10)
+        if exploded:
+            for line in msp.query("LWPOLYLINE"):
+                line.explode()
+
+    (part,) = read(drawn(tmp_path, paint)).parts
+    assert part.area_mm2 == pytest.approx(4 * 1200 + 3600 - CIRCLE_10)
+
+
 def test_strips_that_share_edges_are_one_part(tmp_path):
     def paint(msp):
         box(msp, 0, 0, 30, 50)
