@@ -86,23 +86,22 @@ def _middle(line: Line) -> Point:
 
 def bend_ops(bench: BenchPart, bends: tuple[BendLines, ...]) -> list[Op]:
     """Return one bending operation for each bend of the job."""
-    return [
-        _in_alloy(bench, found.ask, Op(
-            StepKind.BEND, Rank.BEND, tuple(_middle(line) for line in found.lines), _size(found.ask), side=None,
-            note=_note(bench, found), count=len(found.lines),
-        ))
-        for found in bends
-        if found.lines
-    ]  # fmt: skip
+    return [_in_alloy(bench, found.ask, _bend_op(bench, found)) for found in bends if found.lines]
+
+
+def _bend_op(bench: BenchPart, found: BendLines) -> Op:
+    places = tuple(_middle(line) for line in found.lines)
+    return Op(StepKind.BEND, Rank.BEND, places, _size(found.ask), note=_note(bench, found), count=len(places))
 
 
 def _in_alloy(bench: BenchPart, ask: BendAsk, op: Op) -> Op:
     """Return the bend, marked as not possible where the alloy cracks at that radius or does not bend cold at all."""
-    rule = bench.material.bend if bench.material else None
-    if rule is None:
+    material = bench.material
+    rule = material.bend if material else None
+    if material is None or rule is None:
         return op
     if not rule.bendable:
-        return spoilt(op, f"{bench.material.name if bench.material else ''} does not bend cold")
+        return spoilt(op, f"{material.name} does not bend cold")
     limit = rule.limit(bench.thickness_mm) if bench.thickness_mm else None
     if limit is None or ask.radius_mm is None:
         return op
