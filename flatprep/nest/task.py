@@ -16,6 +16,8 @@ from flatprep.nest.shapes import Best, Container, Place, Shape
 # Turns tried for pieces that may turn freely: so many for up to so many kinds of pieces.
 FREE_TURNS = ((12, 24), (30, 16), (60, 8))
 FEWEST_FREE_TURNS = 4
+# Turns this near are the same.
+SAME_DEG = 1e-9
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -47,7 +49,8 @@ class Task:
         """Return a layout in the containers' own coordinates."""
         o, n = self.outlines, sum(s.count for s in self.shapes)
         own = spots.at[:n] - self.field.shift[spots.home[:n]]
-        turn = spots.turn[:n] % 360.0
+        free = np.array(self.free)[o.shape[spots.variant[:n]]]
+        turn = np.where(free, spots.turn[:n] % 360.0, spots.turn[:n])  # a listed turn stays the listed number
         places = (
             Place(int(o.shape[v]), int(k), float(t), bool(o.mirrored[v]), float(x), float(y))
             for v, k, t, (x, y) in zip(spots.variant[:n], spots.home[:n], turn, own, strict=True)
@@ -99,8 +102,8 @@ def sheets_task(shapes: Sequence[Shape], containers: Sequence[Container], start:
     turns = [_even_turns(s.outer, many) if s.turns_deg is None else tuple(s.turns_deg) for s in shapes]
     outlines = pack([*shapes, *field.fixed], [*turns, *((0.0,) for _ in field.fixed)])
     kinds = np.repeat(np.arange(len(shapes)), [s.count for s in shapes])
-    spots = _given(outlines, field, kinds, start) if start else _in_columns(outlines, field, kinds)
     free = (*(s.turns_deg is None for s in shapes), *(False for _ in field.fixed))
+    spots = _given(outlines, field, kinds, start, free) if start else _in_columns(outlines, field, kinds)
     area = sum(s.count * (abs(signed_area(s.outer)) - sum(abs(signed_area(h)) for h in s.holes)) for s in shapes)
     return Task(tuple(shapes), field, outlines, free, spots, area)
 
@@ -116,7 +119,7 @@ def _even_turns(outer: Floats, many: int) -> tuple[float, ...]:
     return tuple((first + 90.0 * q + 360.0 * k / many) % 360.0 for k in range(many // 4) for q in range(4))
 
 
-def _given(outlines: Outlines, field: Field, kinds: Ints, start: Sequence[Place]) -> Spots:
+def _given(outlines: Outlines, field: Field, kinds: Ints, start: Sequence[Place], free: Sequence[bool]) -> Spots:
     """Return the layout of the given places, ordered by shape."""
     places = sorted(start, key=lambda p: p.shape)
     if [p.shape for p in places] != kinds.tolist():
@@ -124,7 +127,12 @@ def _given(outlines: Outlines, field: Field, kinds: Ints, start: Sequence[Place]
     variants = np.array([variant_of(outlines, p) for p in places], dtype=np.int64)
     home = np.array([p.container for p in places], dtype=np.int64)
     at = np.array([(p.x, p.y) for p in places]) + field.shift[home]
-    turn = np.array([p.turn_deg for p in places])
+    packed = outlines.turn[variants, 2]
+    off = (np.array([p.turn_deg for p in places]) - packed + 180.0) % 360.0 - 180.0
+    off[np.abs(off) < SAME_DEG] = 0.0
+    if off[~np.array(free)[kinds]].any():
+        raise ValueError("a piece of the start is turned as it may not be")
+    turn = np.where(off == 0.0, packed, [p.turn_deg for p in places])
     return _spots(outlines, field, variants, home, turn, at)
 
 

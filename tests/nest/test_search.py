@@ -147,11 +147,21 @@ def test_a_start_with_turned_pieces_is_kept():
     assert [(p.turn_deg, p.x) for p in told[0].places] == [(45.0, 7.08), (12.5, 17.5)]
 
 
+def test_a_listed_turn_stays_the_listed_number():
+    kinds = [Shape(ELBOW, turns_deg=(-90.0, 450.0), count=2)]
+    start = [Place(0, 0, 270.0, False, 0.0, 20.0), Place(0, 0, 90.0, False, 40.0, 0.0)]
+    told = []
+    search(strip_task(kinds, 20.0, start), Clock(steps=1), 1, told.append)
+    assert [p.turn_deg for p in told[0].places] == [-90.0, 450.0]
+    assert {p.turn_deg for p in told[-1].places} <= {-90.0, 450.0}
+
+
 @pytest.mark.parametrize(
     ("start", "says"),
     [
         pytest.param([Place(0, 0, 0.0, False, 0.0, 0.0)], "every piece", id="one-missing"),
         pytest.param([Place(0, 0, 0.0, False, 0.0, 0.0), Place(0, 0, 0.0, False, 9.0, 0.0)], "overlaps", id="overlap"),
+        pytest.param([Place(0, 0, 0.0, False, 0.0, 0.0), Place(0, 0, 45.0, False, 20.0, 0.0)], "turned", id="turn"),
     ],
 )
 def test_a_bad_start_is_refused(start, says):
@@ -181,3 +191,20 @@ def test_plain_python_finds_just_what_compiled_code_finds():
     run = subprocess.run([sys.executable, "-c", code], env=env, capture_output=True, text=True, timeout=300)
     assert run.returncode == 0, run.stderr
     assert run.stdout.strip() == str(small())
+
+
+def test_a_bar_taller_than_the_strip_lies_along_it():
+    bar = np.array([[0.0, 0.0], [60.0, 0.0], [60.0, 3.0], [0.0, 3.0]])
+    kinds = [Shape(bar, turns_deg=QUARTERS, count=2), Shape(SQUARE, turns_deg=QUARTERS, count=6)]
+    best = search(strip_task(kinds, 16.0, None), Clock(steps=100), 1, quiet)
+    assert best.length_mm == pytest.approx(60.0, abs=1e-3)
+
+
+def test_a_piece_that_fits_one_sheet_only_stays_there():
+    large = Container(np.array([[0.0, 0.0], [80.0, 0.0], [80.0, 40.0], [0.0, 40.0]]))
+    kinds = [Shape(FRAME), Shape(SQUARE, count=3)]
+    start = [Place(0, 1, 0.0, False, 30.0, 20.0), *(Place(1, 1, 0.0, False, 50.0, y) for y in (0.0, 12.0, 25.0))]
+    best = search(sheets_task(kinds, [SHEET, large], start), Clock(steps=20), 1, quiet)
+    assert best.containers == 2
+    assert best.length_mm == pytest.approx(40.0, abs=1e-3)
+    assert [p.container for p in best.places] == [1, 0, 0, 0]
