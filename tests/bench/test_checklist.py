@@ -352,6 +352,14 @@ def test_a_thread_far_from_the_bend_is_cut_before():
     assert one(steps, K.TAP).order < one(steps, K.BEND).order
 
 
+@pytest.mark.parametrize(("y", "waits"), [(12.7, False), (12.9, True)])
+def test_how_near_is_near(y, waits):
+    """17.22 mm from the bend line: half the allowance 3.12, 3 t + r 12, the drill's radius 2.1."""
+    part = with_bends(plate(100, 60, (10, y, 4.2)), line(0, 30, 100, 30))
+    steps = steps_of(part, work("tap", "M5", hole_mm=4.2), bends=(BEND,))
+    assert (one(steps, K.BEND).order < one(steps, K.TAP).order) is waits
+
+
 def test_a_bend_tells_its_figures():
     bend = one(steps_of(BENT, bends=(BEND,)), K.BEND)
     assert (bend.size, bend.count, bend.at) == ("90° r 3", 1, ((50.0, 30.0),))
@@ -563,6 +571,19 @@ def test_a_coating_masks_threads_and_rounds_edges():
     assert "leaves 5.26 mm" in next(s for s in steps if s.kind is K.INSPECT and s.at).note
     bare = steps_of(part, work("tap", "M5", hole_mm=4.2), finish="brushed")
     assert "mask" not in one(bare, K.TAP).note
+
+
+@pytest.mark.parametrize(
+    ("finish", "words"),
+    [
+        ("anodised, natural", "mask before anodise coating: it adds 5 to 15 µm a side"),
+        ("zinc plated", "mask before zinc coating: it adds 5 to 12 µm a side"), ("paint RAL 6011", "60 to 120 µm"),
+    ],
+)  # fmt: skip
+def test_what_coatings_add(finish, words):
+    """From memory: powder 60 to 120 µm, anodising grows 5 to 15, zinc 5 to 12."""
+    steps = steps_of(plate(100, 50, (10, 12, 4.2)), work("tap", "M5", hole_mm=4.2), finish=finish)
+    assert words in one(steps, K.TAP).note
 
 
 def test_the_kit_counts_every_piece():
