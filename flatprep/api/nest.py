@@ -1,7 +1,8 @@
 """Nest a job, and write its layout: sheets as DXF and SVG, changed drawings, layout.json."""
 
 import json
-from collections.abc import Callable, Iterator, Mapping
+import re
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from pathlib import Path
 
@@ -13,11 +14,12 @@ from flatprep.base.files import make_folder, write_together
 from flatprep.base.progress import Progress, Silent
 from flatprep.base.safe_names import safe_stems
 from flatprep.bench.sides import side_bound
+from flatprep.drawing.forms import FORMS, Form, with_kerf
 from flatprep.drawing.read import ReadOptions, read
 from flatprep.drawing.remnant import outline_of
 from flatprep.drawing.write import part_drawing, sheet_drawing
 from flatprep.geom.bulge import Floats
-from flatprep.job.values import Job, Stock
+from flatprep.job.values import Job, JobPart, Stock
 from flatprep.model.drawing import Part
 from flatprep.model.layout import Layout
 from flatprep.nest.problem import Budget, Item, NestAsk, StockSheet
@@ -42,6 +44,8 @@ class Nested:
     layout: Layout
     ask: NestAsk
     warnings: tuple[str, ...] = ()
+    also: tuple[Form, ...] = ()
+    """Other forms that each sheet is written in."""
 
     @property
     def wanting(self) -> int:
@@ -139,19 +143,33 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
     for number, sheet in enumerate(sheets, start=1):
         stem = sheet_name(number)
         yield folder / f"{stem}.dxf", sheet_drawing(sheet, parts, title=title)
+        for form in nested.also:
+            shapes = _with_kerf(pieces) if form is Form.KERF else parts
+            yield folder / f"{stem}-{form}.dxf", sheet_drawing(sheet, shapes, title=title, form=FORMS[form])
         yield folder / f"{stem}.svg", sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=job.name)
-    for older in _older_sheets(folder, len(sheets)):
+    for older in _older_sheets(folder, len(sheets), nested.also):
         yield older, None
     sources = [_source(job, piece, folder / copies[piece.name]) for piece in pieces]
     yield folder / "layout.json", json.dumps(layout_document(nested.layout, sources, folder), indent=1) + "\n"
 
 
-def _older_sheets(folder: Path, count: int) -> Iterator[Path]:
+def _older_sheets(folder: Path, count: int, also: Sequence[Form]) -> Iterator[Path]:
     """Sheets of an earlier run that this layout has no more: they would be cut by mistake."""
-    number = count + 1
-    while any((path := folder / f"{sheet_name(number)}{suffix}").exists() for suffix in (".dxf", ".svg")):
-        yield from (path.with_suffix(suffix) for suffix in (".dxf", ".svg"))
-        number += 1
+    kept = {"", *(f"-{form}" for form in also)}
+    for path in sorted(folder.glob("sheet-[0-9]*")):
+        found = re.fullmatch(r"sheet-(\d+)((?:-[a-z0-9-]+)?)\.(?:dxf|svg)", path.name)
+        if found and (int(found[1]) > count or found[2] not in kept):
+            yield path
+
+
+def _with_kerf(pieces: Sequence[Piece]) -> dict[str, Part]:
+    return {piece.name: with_kerf(piece.part, _kerf_mm(piece.ask)) for piece in pieces}
+
+
+def _kerf_mm(ask: JobPart) -> float:
+    if ask.material is None or ask.thickness_mm is None:
+        return ask.process.kerf_mm
+    return ask.process.kerf_at(ask.material.family, ask.thickness_mm)
 
 
 def _copy_names(pieces: tuple[Piece, ...]) -> Mapping[str, str]:

@@ -1,6 +1,7 @@
 """``flatprep nest``."""
 
 import json
+from dataclasses import replace
 from pathlib import Path
 
 import click
@@ -10,9 +11,10 @@ from flatprep.base.errors import ExitStatus
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, read_drawings
-from flatprep.cli.options import output_format, said_about_parts, search_budget
+from flatprep.cli.options import other_forms, output_format, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
 from flatprep.cli.talk import say, warn
+from flatprep.drawing.forms import Form
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
 from flatprep.nest.problem import Budget
@@ -24,6 +26,7 @@ from flatprep.report.layout_text import layout_text
 @click.option("--out", "folder", required=True, type=click.Path(path_type=Path), help="folder for layout and sheets")
 @said_about_parts
 @search_budget
+@other_forms
 @output_format
 @click.pass_context
 def command(
@@ -34,6 +37,7 @@ def command(
     budget: Budget,
     form: str,
     said: JobOptions,
+    also: tuple[Form, ...],
 ) -> None:
     """Lay a job's parts on its stock; writes layout.json and a DXF and SVG for each sheet.
 
@@ -47,7 +51,7 @@ def command(
             nested = nest_job(read, budget, progress=progress, on_better=stop.keep, stop=stop)
             for warning in nested.warnings:
                 warn(warning)
-            write_layout(nested, folder)
+            write_layout(replace(nested, also=also), folder)
     if form == "json":
         click.echo(json.dumps(json.loads((folder / "layout.json").read_text()), indent=1))
     else:

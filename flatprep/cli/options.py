@@ -9,6 +9,7 @@ import click
 
 from flatprep.base.errors import UsageError
 from flatprep.base.units import MM_PER_UNIT
+from flatprep.drawing.forms import Form
 from flatprep.job.context import JobOptions
 from flatprep.model.drawing import Role
 from flatprep.nest.problem import Budget
@@ -80,6 +81,17 @@ def _with_options(command: Callable[..., Any], *options: Callable[[Any], Any]) -
     for option in options:
         command = option(command)
     return command
+
+
+def other_forms(command: Command) -> Command:
+    """Add ``--also``; the command gets ``also``, a tuple of `Form`."""
+    return click.option(
+        "--also",
+        multiple=True,
+        type=click.Choice([str(form) for form in Form]),
+        callback=lambda _ctx, _param, words: tuple(Form(word) for word in words),
+        help="write each sheet also as contours alone, as DXF R12, or with the kerf allowed for",
+    )(command)
 
 
 def parse_roles(layers: tuple[str, ...]) -> dict[str, Role]:

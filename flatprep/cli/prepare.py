@@ -1,5 +1,6 @@
 """``flatprep prepare``."""
 
+from dataclasses import replace
 from pathlib import Path
 
 import click
@@ -9,10 +10,11 @@ from flatprep.base.errors import ExitStatus, FlatprepError
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, read_drawings
-from flatprep.cli.options import said_about_parts, search_budget
+from flatprep.cli.options import other_forms, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
 from flatprep.cli.talk import say, warn
 from flatprep.cli.watch import inputs, wait_for_change
+from flatprep.drawing.forms import Form
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
 from flatprep.model.finding import Severity
@@ -27,6 +29,7 @@ from flatprep.nest.problem import Budget
 )
 @said_about_parts
 @search_budget
+@other_forms
 @click.pass_context
 def command(
     ctx: click.Context,
@@ -36,6 +39,7 @@ def command(
     watch: bool,
     budget: Budget,
     said: JobOptions,
+    also: tuple[Form, ...],
 ) -> None:
     """Check, nest, list the bench work and estimate a job, all into one folder with report.html.
 
@@ -43,10 +47,10 @@ def command(
     and ends with 130 or 143; before there is a first one, it leaves the folder as it was.
     """
     if not watch:
-        ctx.exit(_once(job_file, folder, budget, said))
+        ctx.exit(_once(job_file, folder, budget, said, also))
     while True:
         try:
-            status = _once(job_file, folder, budget, said)
+            status = _once(job_file, folder, budget, said, also)
         except FlatprepError as err:
             say(f"error: {err.message}", err=True)
             status = err.exit_status
@@ -56,7 +60,7 @@ def command(
         wait_for_change(inputs(job_file, said))
 
 
-def _once(job_file: Path, folder: Path, budget: Budget, said: JobOptions) -> int:
+def _once(job_file: Path, folder: Path, budget: Budget, said: JobOptions, also: tuple[Form, ...]) -> int:
     job = load_job(job_file, said)
     with claimed(folder), progress_line() as progress:
         read = read_drawings(job, budget.jobs, progress)
@@ -64,6 +68,8 @@ def _once(job_file: Path, folder: Path, budget: Budget, said: JobOptions) -> int
             done = prepare_job(read, budget, progress=progress, on_better=stop.keep, stop=stop)
             for warning in done.nested.warnings if done.nested else ():
                 warn(warning)
+            if done.nested:
+                done = replace(done, nested=replace(done.nested, also=also))
             write_prepared(done, folder)
     say(summary(done, folder))
     status = ExitStatus.FINDINGS if done.loud or done.unplaced else ExitStatus.CLEAN

@@ -13,8 +13,10 @@ import numpy as np
 from ezdxf._options import options
 from ezdxf.document import Drawing as Document
 from ezdxf.enums import TextEntityAlignment
+from ezdxf.lldxf.const import DXF12
 from ezdxf.version import __version__ as ezdxf_version
 
+from flatprep.drawing.forms import USUAL, SheetForm
 from flatprep.geom.bulge import Floats, Similarity
 from flatprep.geom.polygons import inner_point
 from flatprep.model.drawing import Contour, Curve, Part, Text
@@ -40,7 +42,9 @@ LEAST_TEXT_MM, MOST_TEXT_MM, TEXT_SHARE = 1.5, 10.0, 0.12
 Box = tuple[float, float, float, float]
 
 
-def sheet_drawing(sheet: SheetLayout, parts: Mapping[str, Part], *, title: Sequence[str] = ()) -> str:
+def sheet_drawing(
+    sheet: SheetLayout, parts: Mapping[str, Part], *, title: Sequence[str] = (), form: SheetForm = USUAL
+) -> str:
     """DXF text of a sheet: its border, every part in the order of cutting, labels.
 
     Parameters
@@ -50,8 +54,12 @@ def sheet_drawing(sheet: SheetLayout, parts: Mapping[str, Part], *, title: Seque
         True shapes by the names that the placements use.
     title
         Lines written under the sheet.
+    form
+        The usual one, or one that a cutter asks for.
     """
-    doc = _document((CUT, MARK, SHEET, NOTE))
+    if form.cut_only:
+        return _contours_alone(sheet, parts, form)
+    doc = _document((CUT, MARK, SHEET, NOTE), form.version)
     for ring in (sheet.outline, *sheet.holes):
         _polyline(doc, SHEET, np.column_stack([ring, np.zeros(len(ring))]), closed=True)
     for index in cutting_order(sheet, parts):
@@ -63,6 +71,16 @@ def sheet_drawing(sheet: SheetLayout, parts: Mapping[str, Part], *, title: Seque
     left, low = (float(v) for v in sheet.outline.min(axis=0))
     for n, line in enumerate(title, start=1):
         _text(doc, line, (left, low - 2.0 * n * height), height)
+    return _written(doc)
+
+
+def _contours_alone(sheet: SheetLayout, parts: Mapping[str, Part], form: SheetForm) -> str:
+    doc = _document((CUT,), form.version)
+    for index in cutting_order(sheet, parts):
+        placement = sheet.placements[index]
+        part = parts[placement.part]
+        for contour in (*part.holes, part.outer):
+            _contour(doc, contour, placement.motion)
     return _written(doc)
 
 
@@ -176,10 +194,11 @@ def _within(box: Box, window: Box) -> bool:
     return box[0] >= window[0] and box[1] >= window[1] and box[2] <= window[2] and box[3] <= window[3]
 
 
-def _document(layers: Iterable[str]) -> Document:
-    doc = Document.new("R2010")
-    doc.header["$INSUNITS"] = MM_CODE
-    doc.header["$MEASUREMENT"] = 1
+def _document(layers: Iterable[str], version: str = USUAL.version) -> Document:
+    doc = Document.new(version)
+    if doc.dxfversion > DXF12:  # older files know no unit
+        doc.header["$INSUNITS"] = MM_CODE
+        doc.header["$MEASUREMENT"] = 1
     doc.ezdxf_metadata()["CREATED_BY_EZDXF"] = ezdxf_version  # without the time that stands there
     for name, pattern in STYLES.items():
         doc.linetypes.add(name, pattern=list(pattern), description=name)
@@ -212,7 +231,8 @@ def _curve(doc: Document, layer: str, curve: Curve, motion: Similarity) -> None:
 
 def _polyline(doc: Document, layer: str, xyb: Floats, *, closed: bool) -> None:
     points = [(float(x), float(y), float(b)) for x, y, b in xyb]
-    doc.modelspace().add_lwpolyline(points, format="xyb", close=closed, dxfattribs={"layer": layer})
+    draw = doc.modelspace().add_lwpolyline if doc.dxfversion > DXF12 else doc.modelspace().add_polyline2d
+    draw(points, format="xyb", close=closed, dxfattribs={"layer": layer})
 
 
 def _label(doc: Document, part: Part, motion: Similarity, words: str) -> None:

@@ -4,6 +4,7 @@ import json
 import os
 from pathlib import Path
 
+import ezdxf
 import pytest
 from click.testing import CliRunner
 
@@ -78,6 +79,25 @@ def test_part_larger_than_every_sheet(job, tmp_path):
     assert "NOT PLACED: 4 x leaf" in got.stdout
     layout = json.loads((tmp_path / "out" / "layout.json").read_text())
     assert [(u["part"], u["count"]) for u in layout["unplaced"]] == [("leaf", 4)]
+
+
+def test_other_forms_of_a_sheet(job, tmp_path):
+    words = ["--also", "cut-only", "--also", "r12", "--also", "kerf"]
+    assert run("nest", job, "--out", tmp_path / "out", "--steps", "5", *words).exit_code == 0
+    forms = {
+        name: ezdxf.readfile(tmp_path / "out" / f"sheet-01{name}.dxf") for name in ("", "-cut-only", "-r12", "-kerf")
+    }
+    assert all(doc.audit().errors == [] for doc in forms.values())
+    assert forms["-r12"].acad_release == "R12"
+    assert {e.dxf.layer for e in forms["-cut-only"].modelspace()} == {"CUT"}
+    assert {e.dxftype() for e in forms["-r12"].modelspace().query('*[layer=="CUT"]')} == {"POLYLINE", "CIRCLE"}
+    drawn = {name: {e.dxf.radius for e in doc.modelspace().query("CIRCLE")} for name, doc in forms.items()}
+    assert drawn[""] == drawn["-cut-only"] == drawn["-r12"] == {5.0}
+    # a hole is cut on a path half a kerf inside it: the profile's kerf table says 0.2 to 0.3 mm in 3 mm steel
+    (inside,) = drawn["-kerf"]
+    assert 5.0 - 0.15 <= inside <= 5.0 - 0.1
+    run("nest", job, "--out", tmp_path / "out", "--steps", "5")
+    assert sorted(p.name for p in (tmp_path / "out").glob("sheet-*")) == ["sheet-01.dxf", "sheet-01.svg"]
 
 
 def test_fillers_without_a_place_are_said_and_not_missed(job, tmp_path):
@@ -187,7 +207,8 @@ def test_prepare_the_sample_job(tmp_path):
     for name in ("report.html", "layout.json", "lint.json", "checklist.json", "estimate.json", "parts.csv"):
         assert (tmp_path / name).stat().st_size > 100
     cards = json.loads((tmp_path / "estimate.json").read_text())["parts"]
-    assert {p.stem for p in (tmp_path / "bench").glob("*.html")} == {p["name"] for p in cards}
+    sheets = {p.stem.removesuffix("-opposite") for p in (tmp_path / "bench").glob("*.html")}
+    assert sheets == {p["name"] for p in cards}
 
 
 def test_python_callers_have_the_same_verbs(job, tmp_path):
