@@ -98,7 +98,7 @@ class Boundary:
     @cached_property
     def tree(self) -> shapely.STRtree:
         """Search tree over the boxes."""
-        return shapely.STRtree(shapely.box(*self.boxes.T))
+        return shapely.STRtree(envelopes(self.boxes))
 
     def distance(self, rows: Ints, points: Floats) -> Floats:
         """Distance of points, shape (m, 2), from the edges `rows`, shape (m,), mm; exact on arcs."""
@@ -206,6 +206,12 @@ def of_part(b: Boundary, part: int) -> Boundary:
         next=b.next[lo:hi] - lo,
         total=b.total[first : int(b.contour[hi - 1]) + 1],
     )
+
+
+def envelopes(boxes: Floats) -> npt.NDArray[np.object_]:
+    """Return boxes x0, y0, x1, y1, shape (n, 4), for a search tree: it looks at envelopes, so a diagonal will do."""
+    found: npt.NDArray[np.object_] = shapely.linestrings(boxes.reshape(-1, 2, 2))
+    return found
 
 
 def wrap(angle: Floats) -> Floats:

@@ -3,10 +3,9 @@
 from dataclasses import dataclass
 
 import numpy as np
-import shapely
 
 from flatprep.geom.bulge import Floats
-from flatprep.measure.boundary import Bools, Boundary, Ints
+from flatprep.measure.boundary import Bools, Boundary, Ints, envelopes
 from flatprep.measure.facing import Chords, Features, take, together, unit
 
 WAY_ROUND = 3.0
@@ -94,7 +93,7 @@ def free(b: Boundary, part: Ints, p: Floats, q: Floats) -> Bools:
     for k in range(0, len(tried), CHUNK):
         some = tried[k : k + CHUNK]
         m, r = middle[some], radius[some]
-        which, row = b.tree.query(shapely.box(*np.hstack([m - r[:, None], m + r[:, None]]).T))
+        which, row = b.tree.query(envelopes(np.hstack([m - r[:, None], m + r[:, None]])))
         own = b.part[row] == part[some[which]]
         which, row = which[own], row[own]
         hit = b.distance(row, m[which]) < r[which]

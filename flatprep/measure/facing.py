@@ -15,7 +15,7 @@ import numpy as np
 import shapely
 
 from flatprep.geom.bulge import Floats
-from flatprep.measure.boundary import Bools, Boundary, Ints, wrap
+from flatprep.measure.boundary import Bools, Boundary, Ints, envelopes, wrap
 
 SMOOTH_JOINT_RAD = np.radians(12.0)
 """A turn of less is taken as a curve drawn in pieces: chords may end in it whichever way it turns."""
@@ -134,8 +134,8 @@ def facing_pairs(b: Boundary, f: Features, reach_mm: float, most: int) -> tuple[
     boxes = b.boxes[f.row]
     corner = f.kind == 2
     boxes[corner] = np.hstack([f.at[corner], f.at[corner]])
-    tree = shapely.STRtree(shapely.box(*boxes.T))
-    wide = shapely.box(*(boxes + np.array([-reach_mm, -reach_mm, reach_mm, reach_mm])).T)
+    tree = shapely.STRtree(envelopes(boxes))
+    wide = envelopes(boxes + np.array([-reach_mm, -reach_mm, reach_mm, reach_mm]))
     found: list[tuple[Ints, Ints]] = []
     seen = 0
     for k in range(0, len(wide), CHUNK):

@@ -1,9 +1,8 @@
 """Contours that touch: webs of no width at all."""
 
 import numpy as np
-import shapely
 
-from flatprep.measure.boundary import Boundary
+from flatprep.measure.boundary import Boundary, envelopes
 from flatprep.measure.facing import Chords, Features
 
 TOUCH_MM = 1e-4
@@ -16,7 +15,7 @@ def touches(b: Boundary, f: Features) -> Chords:
     edges = f.kind < 2
     feature[f.row[edges]] = np.nonzero(edges)[0]
     lo, hi = b.end - TOUCH_MM, b.end + TOUCH_MM
-    i, j = b.tree.query(shapely.box(*np.hstack([lo, hi]).T))
+    i, j = b.tree.query(envelopes(np.hstack([lo, hi])))
     other = (b.part[i] == b.part[j]) & (b.contour[i] != b.contour[j]) & (feature[i] >= 0) & (feature[j] >= 0)
     i, j = i[other], j[other]
     near = b.distance(j, b.end[i]) <= TOUCH_MM

@@ -12,6 +12,9 @@ from flatprep.model.finding import Finding, Severity
 from flatprep.profile.material import Material
 from flatprep.profile.process import Limit, Process
 
+ROUNDING_MM = 1e-6
+"""What is short by the whole allowance is short, whichever way rounding puts it."""
+
 
 @dataclass(frozen=True, eq=False)
 class Context:
@@ -58,7 +61,7 @@ class Context:
     def slack_mm(self, *, chords: bool = False) -> float:
         """By how much a size may miss its limit: more where chords or rounded inches stand for a circle."""
         rounded = chords or self.drawing.units in ("in", "ft")
-        return self.tol.limit_chord_mm if rounded else self.tol.limit_mm
+        return (self.tol.limit_chord_mm if rounded else self.tol.limit_mm) - ROUNDING_MM
 
 
 @dataclass(frozen=True, slots=True)

@@ -18,6 +18,8 @@ def four(limit, *, far, below=0.0015):
         ("size", "loud"),
         [
             pytest.param(limit - below, True, id="just-below"),
+            pytest.param(limit - 0.001, True, id="0.001-below"),
+            pytest.param(limit + 0.001, False, id="0.001-above"),
             pytest.param(limit, False, id="exactly-at-limit"),
             pytest.param(limit - 1e-9, False, id="rounding-noise"),
             pytest.param(limit - 0.0009, False, id="0.001-is-within"),
