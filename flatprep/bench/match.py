@@ -69,8 +69,8 @@ def check_counts(group: list[tuple[BenchPart, Found]]) -> None:
                 "the drawing has " + _listed([h for bench, _ in group for h in bench.holes]),
             )
         if work.count is not None and found != work.count:
-            what = "places are given" if work.at else f"holes of {work.hole_mm:g} mm are drawn"
-            raise JobError(f"{work.where}: count = {work.count}: {found} {what}", "correct count, or the drawing")
+            what = "places given" if work.at else f"holes of {work.hole_mm:g} mm drawn"
+            raise JobError(f"{work.where}: count = {work.count}: {what}: {found}", "correct count, or the drawing")
 
 
 def _listed(holes: list[Hole]) -> str:

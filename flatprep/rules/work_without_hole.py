@@ -17,7 +17,7 @@ def check(ctx: Context) -> Iterator[Finding]:
             message = f"{what} is asked for holes of a diameter that the drawing does not have"
             yield Finding(RULE.id, Severity.ERROR, message, measured=None, limit=asked.hole_mm, unit="mm")
         elif asked.count is not None and found != asked.count:
-            yield Finding(RULE.id, Severity.ERROR, _miscounted(asked, what), None, None, found, asked.count, "holes")
+            yield Finding(RULE.id, Severity.ERROR, _miscounted(asked, what), None, None, found, asked.count)
 
 
 def _miscounted(asked: Work, what: str) -> str:

@@ -467,7 +467,7 @@ PLATE = plate(100, 50, (10, 12, 4.2), (90, 12, 4.2), (50, 25, 9))
     ("asked", "words"),
     [
         (work("tap", "M5", hole_mm=4.0), r"hole = 4: no hole is drawn .* / the drawing has 2 x 4.2 mm, 1 x 9 mm"),
-        (work("tap", "M5", hole_mm=4.2, count=4), r"count = 4: 2 holes of 4.2 mm are drawn"),
+        (work("tap", "M5", hole_mm=4.2, count=4), r"count = 4: holes of 4.2 mm drawn: 2"),
         (work("tap", "M9", hole_mm=4.2), r'tap = "M9": thread "M9" is not known / nearest known: M8, M10'),
         (work("ream", "8 Q7", hole_mm=4.2), r'ream = "8 Q7": tolerance class Q7 is not known'),
         (work("bore", "22", hole_mm=9), r'bore = "22": fit "22" is not known'),

@@ -228,7 +228,7 @@ def test_work_on_another_number_of_holes_is_told():
     asked = Work("tap", "M5", hole_mm=4.2, count=4)
     job = JobPart(Path("plate.dxf"), "plate", load_material("mild-steel"), 3.0, LASER, work=(asked,))
     one = only(found("work-without-hole", context(part, process=LASER, job_part=job)))
-    assert (one.measured, one.limit, one.unit) == (2, 4, "holes")
+    assert (one.measured, one.limit, one.unit) == (2, 4, None)
 
 
 # ---------------------------------------------------------------- callouts of the drawing
