@@ -43,7 +43,7 @@ def repair_text(repaired: Repaired, out: str, *, every: bool = False) -> str:
             lines += _changes(group, units, every=every)
     if repaired.left:
         lines.append("  left as it is, for somebody to decide:")
-        lines += [line for finding in repaired.left for line in _left(finding, units)]
+        lines += _left(repaired.left, units, every=every)
     lines.append(f"{counted(len(repaired.changes), 'change')}, {_verdict(repaired)}")
     return "\n".join(lines)
 
@@ -94,10 +94,23 @@ def _fine(mm: float, units: str) -> str:
     return f"{mm:.3f} mm" if units not in ("in", "ft") else f"{mm / 25.4:.4f} in"
 
 
-def _left(finding: Finding, units: str) -> Iterator[str]:
-    loud = "ERROR" if finding.severity is Severity.ERROR else str(finding.severity)
+def _left(left: Sequence[Finding], units: str, *, every: bool) -> Iterator[str]:
+    """Tell what is left, rule by rule, the remedy once for all that have the same."""
+    for rule in dict.fromkeys(finding.rule for finding in left):
+        group = [finding for finding in left if finding.rule == rule]
+        shown = group if every or len(group) <= TOLD else group[: TOLD - 2]
+        for finding, following in zip(shown, [*shown[1:], None], strict=True):
+            yield f"    {_loud(finding)} {finding.rule}: {finding.message}{_where(finding, units)}"
+            if finding.remedy and (following is None or following.remedy != finding.remedy):
+                yield f"      → {finding.remedy}"
+        if len(shown) < len(group):
+            yield f"    and {len(group) - len(shown)} more"
+
+
+def _loud(finding: Finding) -> str:
+    return "ERROR" if finding.severity is Severity.ERROR else str(finding.severity)
+
+
+def _where(finding: Finding, units: str) -> str:
     where = f" at {place(finding.at, units)}" if finding.at is not None else ""
-    gap = f", {length(finding.measured, units)}" if finding.measured else ""
-    yield f"    {loud} {finding.rule}: {finding.message}{where}{gap}"
-    if finding.remedy:
-        yield f"      → {finding.remedy}"
+    return where + (f", {length(finding.measured, units)}" if finding.measured else "")

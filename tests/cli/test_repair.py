@@ -51,6 +51,22 @@ def test_something_left_ends_with_1_and_says_where(tmp_path):
     assert document["area_before_mm2"] == pytest.approx(document["area_after_mm2"])
 
 
+def test_many_of_a_kind_are_told_in_short_and_one_by_one_on_request(tmp_path):
+    def paint(msp):
+        plate(msp)
+        for k in range(30):
+            msp.add_line((200 + 9 * k, 0), (205 + 9 * k, 40))
+
+    path = drawn(tmp_path, paint)
+    short = call(path, "--out", tmp_path / "clean.dxf").stdout
+    assert short.count("open-contour") == 10
+    assert "and 20 more" in short
+    assert short.count("→") == 1
+    long = call(path, "--out", tmp_path / "clean.dxf", "--every").stdout
+    assert long.count("open-contour") == 30
+    assert "more" not in long
+
+
 @pytest.mark.parametrize("link", ["same", "symbolic", "hard"])
 def test_the_drawing_is_never_written_over(tmp_path, link):
     path, out = drawn(tmp_path, plate), tmp_path / "other.dxf"
