@@ -12,7 +12,7 @@ import numpy as np
 from shapely.geometry import MultiPoint, Polygon
 
 from flatprep.geom.bulge import Floats, Similarity
-from flatprep.nest.clock import Clock
+from flatprep.nest.clock import EVALUATIONS_A_STEP, Clock
 from flatprep.nest.construct import Bin, Layer
 from flatprep.nest.firstfit import Answer, answer_of
 from flatprep.nest.group import Group
@@ -83,7 +83,7 @@ def improve(answer: Answer, margin_mm: float, effort: Effort, found: Callable[[A
             continue
         task = sheets_task(portion.shapes, portion.containers, portion.start)
         track = _Track(current, portion, margin_mm, found)
-        search(task, _shared(effort.clock, len(classes) - number), effort.seed, track, effort.jobs)
+        search(task, clock_share(effort.clock, 1.0 / (len(classes) - number)), effort.seed, track, effort.jobs)
         current = track.best
 
 
@@ -182,10 +182,9 @@ def _overflow(kinds: Sequence[Bin], shapes: Sequence[Shape]) -> Container:
     return Container(np.array([[0.0, 0.0], [length, 0.0], [length, width], [0.0, width]]))
 
 
-def _shared(clock: Clock, parts: int) -> Clock:
-    """Clock of an equal share of what is left."""
-    if parts == 1:
-        return clock
+def clock_share(clock: Clock, share: float) -> Clock:
+    """Clock of a share of what is left of another."""
     if clock.steps is not None:
-        return Clock(steps=max(1, clock.steps // parts), stop=clock.stopped)
-    return Clock(max(clock.seconds - clock.elapsed_s, 0.0) / parts, stop=clock.stopped)
+        left = clock.steps - clock.evaluations // EVALUATIONS_A_STEP
+        return Clock(steps=max(1, int(left * share)), stop=clock.stopped)
+    return Clock(max(clock.seconds - clock.elapsed_s, 0.0) * share, stop=clock.stopped)

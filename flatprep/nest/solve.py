@@ -15,14 +15,17 @@ from flatprep.nest.downsize import downsized
 from flatprep.nest.fill import NO_ROOM, fill
 from flatprep.nest.firstfit import Answer, first_answers
 from flatprep.nest.group import kept_spots, prepare_group, split
-from flatprep.nest.improve import Effort, improve
+from flatprep.nest.improve import Effort, clock_share, improve
 from flatprep.nest.keep import KeepError, left_to_lay
 from flatprep.nest.problem import Budget, NestAsk
+from flatprep.nest.refill import refill, worth_refilling
 from flatprep.nest.verify import LayoutFault, verify
 
 USUAL, QUIET = Budget(), Silent()
 FIRST_SHARE = 0.2
 """Share of the time that constructive layouts may take after the first one."""
+REFILL_SHARE = 0.5
+"""Share of a group's budget for filling sheets anew, where there are several with few pieces each."""
 ENDING_S = 0.3
 """Kept back for the end."""
 
@@ -154,7 +157,7 @@ class _Job:
     def improve(self, budget: Budget) -> None:
         """Search group by group, each for its share of what is left."""
         weights = [difficulty(a) for a in self._answers]
-        for number, answer in enumerate(self._answers):
+        for number in range(len(self._answers)):
             if weights[number] == 0.0:
                 continue
             share = weights[number] / sum(weights[number:])
@@ -162,10 +165,18 @@ class _Job:
             steps = None if budget.steps is None else max(1, int(budget.steps * weights[number] / sum(weights)))
             if (left <= 0.0 and steps is None) or self._stopped():
                 return
-            effort = Effort(Clock(left * share, steps, stop=self._stopped), budget.seed, budget.jobs)
-            improve(answer, self._ask.margin_mm, effort, partial(self._take, number))
-            for cheaper in downsized(self._answers[number], self._ask.margin_mm):
-                self._take(number, cheaper)
+            self._improve_group(number, Clock(left * share, steps, stop=self._stopped), budget)
+
+    def _improve_group(self, number: int, clock: Clock, budget: Budget) -> None:
+        """Spend a clock on one group: refill sheets, search, look for cheaper sheets."""
+        take, margin = partial(self._take, number), self._ask.margin_mm
+        if worth_refilling(self._answers[number]):
+            first = clock_share(clock, REFILL_SHARE)
+            refill(self._answers[number], margin, first, budget.seed, take)
+            clock.spend(first.evaluations)
+        improve(self._answers[number], margin, Effort(clock, budget.seed, budget.jobs), take)
+        for cheaper in downsized(self._answers[number], margin):
+            take(cheaper)
 
     def _take(self, number: int, answer: Answer) -> None:
         """Note a better answer of a group if it is sound, and tell of the layout."""
