@@ -1,5 +1,6 @@
 """The holes that a drawing's callouts stand for: by their leaders, else by what is nearest and can be meant."""
 
+import re
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from math import cos, radians, sin
@@ -10,6 +11,7 @@ from flatprep.geom.bulge import Floats
 from flatprep.job.values import Work
 from flatprep.measure.holes import Hole, HoleShape
 from flatprep.model.drawing import Text
+from flatprep.practice.callout_text import plain_callout
 from flatprep.practice.callouts import Callout, parse_callouts
 from flatprep.practice.targets import SAME_DIA_MM
 from flatprep.profile.hardware.clearance import find_clearance
@@ -24,6 +26,7 @@ LEAST_REACH_MM = 10.0
 LETTER_WIDTH = 0.75
 """Width of a letter over its height, about."""
 LEADER_SLACK_MM = 1.0
+_THREAD_LIKE = re.compile(r"(?:\(?\d{1,3}\s*x\)?\s*)?(?P<thread>M\s?\d+(?:\.\d+)?(?:\s*x\s*\d*\.?\d+)?)(?:\s*-?\s*6H)?")
 
 
 @dataclass(frozen=True, slots=True)
@@ -59,7 +62,9 @@ def drawn_work(holes: Sequence[Hole], texts: Iterable[Text], unit: str = "mm") -
     questions: list[str] = []
     round_holes = _RoundHoles(holes)
     for text in texts:
-        for callout in parse_callouts(text.text, unit):
+        callouts = parse_callouts(text.text, unit)
+        questions += [] if callouts else _unknown_thread(text, round_holes)
+        for callout in callouts:
             try:
                 made, question = _work(callout, text, round_holes)
             except UnknownHardwareError as err:
@@ -94,6 +99,18 @@ def _work(callout: Callout, text: Text, holes: _RoundHoles) -> tuple[list[Work],
     return [one], []
 
 
+def _unknown_thread(text: Text, holes: _RoundHoles) -> list[str]:
+    """Ask back where a text beside a hole is written like a thread that no table has: ``M9``, ``4x M5x12``."""
+    match = _THREAD_LIKE.fullmatch(plain_callout(text.text))
+    if match is None or not (_pointed_at(text, holes) or _in_reach(text, holes)):
+        return []
+    try:
+        find_thread(match["thread"])
+    except UnknownHardwareError as err:
+        return [f"{_said(text)}: {err.message} ({err.remedy}): what is meant?"]
+    return []
+
+
 def _said(text: Text) -> str:
     return f'the drawing says "{" ".join(text.text.split())}"'
 
@@ -110,12 +127,19 @@ def _pointed_at(text: Text, holes: _RoundHoles) -> Hole | None:
 
 def _nearest(text: Text, holes: _RoundHoles, callout: Callout) -> Hole | None:
     """Return the nearest hole in reach that can be meant, else the nearest in reach."""
-    if text.points_to or not holes.holes:
+    if text.points_to:
         return None
+    near = _in_reach(text, holes)
+    return next((hole for hole in near if _can_be_meant(callout, hole.width_mm)), near[0] if near else None)
+
+
+def _in_reach(text: Text, holes: _RoundHoles) -> list[Hole]:
+    """Return the holes whose rims a text stands beside, nearest first."""
+    if not holes.holes:
+        return []
     reach = max(LEAST_REACH_MM, REACH_HEIGHTS * text.height_mm)
     rim = np.maximum(_to_text_mm(text, holes.centre) - holes.radius, 0.0)
-    near = [holes.holes[k] for k in np.argsort(rim, kind="stable")[: int(np.count_nonzero(rim <= reach))]]
-    return next((hole for hole in near if _can_be_meant(callout, hole.width_mm)), near[0] if near else None)
+    return [holes.holes[k] for k in np.argsort(rim, kind="stable")[: int(np.count_nonzero(rim <= reach))]]
 
 
 def _to_text_mm(text: Text, points: Floats) -> Floats:

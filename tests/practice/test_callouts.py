@@ -125,6 +125,14 @@ def test_hardware_that_no_table_has_is_asked_back(words):
     assert words in found.questions[0]
 
 
+@pytest.mark.parametrize(("words", "near"), [("M9", "M8, M10"), ("4x M5x12", "M5, M5x0.5"), ("M8x1.2-6H", "M8, M8x0.75, M8x1")])
+def test_a_thread_that_no_table_has_is_asked_back(words, near):
+    found = drawn_work(_holes((20, 20, 7.0)), [_text(words, 24, 20)])
+    assert not found.work
+    assert near in found.questions[0]
+    assert not drawn_work(_holes((20, 20, 7.0)), [_text(words, 150, 80)]).questions
+
+
 def test_single_callouts_of_one_kind_become_one_piece_of_work():
     texts = [_text("M5", 24, 20), _text("M5", 84, 20)]
     (work,) = drawn_work(_holes((20, 20, 4.2), (80, 20, 4.2)), texts).work
