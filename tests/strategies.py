@@ -1,5 +1,6 @@
 """Hypothesis strategies for drawings: any entity, any number, any name."""
 
+import math
 from typing import Any
 
 import ezdxf
@@ -36,7 +37,8 @@ def entities(draw: st.DrawFn) -> Made:
         case "arc":
             made |= {"radius": draw(NUMBERS), "start": draw(NUMBERS), "end": draw(NUMBERS)}
         case "ellipse":
-            made |= {"axis": (draw(NUMBERS), draw(NUMBERS)), "ratio": draw(st.floats(1e-6, 1.0))}
+            axis = (draw(NUMBERS), draw(NUMBERS))
+            made |= {"axis": axis if math.hypot(*axis) > 1e-3 else (1.0, 0.0), "ratio": draw(st.floats(1e-6, 1.0))}
         case "spline":
             made |= {"points": draw(points(4, 7)), "closed": draw(st.booleans())}
         case "lwpolyline":
