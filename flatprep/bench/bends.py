@@ -47,7 +47,7 @@ def _figures(bench: BenchPart, ask: BendAsk) -> Bend | None:
     if not ask.radius_mm or bench.thickness_mm is None:
         return None
     try:
-        return bend(bench.thickness_mm, ask.radius_mm, ask.angle_deg)
+        return bend(bench.thickness_mm, ask.radius_mm, ask.angle_deg, own=bench.own)
     except FlatprepError as err:
         raise JobError(f"{ask.where}: angle = {ask.angle_deg:g}: {err.message}", err.remedy) from None
 
@@ -129,10 +129,10 @@ def _note(bench: BenchPart, found: BendLines) -> str:
             f"allowance {f.allowance_mm:.2f} mm, deduction {f.deduction_mm:.2f} mm by DIN 6935, "
             f"k {f.k:.3g} (K {f.k_factor:.3g})"
         )
-        measured = measured_k_factor(bench.family or "")
+        measured = measured_k_factor(bench.family or "", bench.own)
         if measured:
             notes.append(f"handbooks measured K {measured[0]:g} to {measured[1]:g}: bend a coupon first")
-    spring = section("springback", file=FILE).numbers(bench.family or "")
+    spring = section("springback", bench.own, FILE).numbers(bench.family or "")
     if spring:
         notes.append(f"springs back {spring[0]:g} to {spring[1]:g}° of 90")
     notes.append("burr side inside the bend")
@@ -150,7 +150,7 @@ def near_bend(
     for found in bends:
         inside = found.ask.radius_mm or bench.thickness_mm
         half = found.figures.allowance_mm / 2.0 if found.figures else inside
-        reach = half + clear_of_bend_mm(what, bench.thickness_mm, inside) + radius_mm
+        reach = half + clear_of_bend_mm(what, bench.thickness_mm, inside, bench.own) + radius_mm
         if any(distance_mm(point, line) < reach for line in found.lines):
             return True
     return False

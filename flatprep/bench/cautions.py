@@ -18,17 +18,17 @@ THIN_MM = 2.0
 def step_caution(op: Op, bench: BenchPart, *, first: bool) -> str:
     """Return the caution of a step; `first` is the part's first step."""
     if op.kind is StepKind.DEBURR and first and bench.process.kind in THERMAL:
-        return caution("deburr")
+        return caution("deburr", bench.own)
     if op.kind is StepKind.DRILL and bench.thickness_mm is not None and bench.thickness_mm < THIN_MM:
-        return caution("drilling_thin_sheet")
+        return caution("drilling_thin_sheet", bench.own)
     if op.kind is StepKind.DRILL:
-        return caution("hot_slugs") if bench.process.kind in THERMAL else ""
-    return caution(_AT_STEP[op.kind]) if op.kind in _AT_STEP else ""
+        return caution("hot_slugs", bench.own) if bench.process.kind in THERMAL else ""
+    return caution(_AT_STEP[op.kind], bench.own) if op.kind in _AT_STEP else ""
 
 
 def job_cautions(parts: Sequence[BenchPart]) -> tuple[str, ...]:
     """Return the cautions of a whole job: what goes before this list, then those of its materials and processes."""
-    found: list[str] = [first_caution()]
+    found: list[str] = [first_caution(parts[0].own if parts else ())]
     for bench in parts:
         found += _of_part(bench)
     return tuple(dict.fromkeys(text for text in found if text))
@@ -40,5 +40,5 @@ def _of_part(bench: BenchPart) -> Iterable[str]:
     if bench.material is None:
         return
     for hazard in bench.material.hazards:
-        yield caution(hazard)
+        yield caution(hazard, bench.own)
     yield from bench.material.cautions

@@ -1,7 +1,9 @@
 """What a coating changes: threads and fits are masked, holes come out smaller, edges are broken rounder."""
 
 import re
+from collections.abc import Sequence
 from dataclasses import replace
+from pathlib import Path
 
 from flatprep.bench.ops import Op
 from flatprep.bench.part import BenchPart
@@ -14,18 +16,18 @@ TIGHT_MM = 0.15
 """A clearance hole with less play than this after coating gets a word."""
 
 
-def growth_mm(finish: str) -> tuple[str, float, float] | None:
+def growth_mm(finish: str, own: Sequence[Path] = ()) -> tuple[str, float, float] | None:
     """Return the kind of coating and what it adds a side, least and most, mm; None where it adds nothing known."""
     for kind, pattern in _WORDS.items():
         if re.search(pattern, finish, re.IGNORECASE):
-            least, most = section("finish_growth").numbers(kind)
+            least, most = section("finish_growth", own).numbers(kind)
             return kind, least, most
     return None
 
 
 def coated(op: Op, bench: BenchPart) -> Op:
     """Return the operation with what the part's finish means for it."""
-    grown = growth_mm(bench.finish)
+    grown = growth_mm(bench.finish, bench.own)
     if grown is None:
         return op
     kind, least, most = grown

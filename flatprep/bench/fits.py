@@ -32,7 +32,7 @@ def bore_ops(ask: Ask) -> list[Op]:
 def _as_cut_will_do(size: Limits, as_cut_mm: float, ask: Ask) -> bool:
     """Tell whether the hole is drawn inside wide limits that the process alone holds."""
     inside = size.least_mm - 1e-3 <= as_cut_mm <= size.most_mm + 1e-3
-    return inside and holds(ask.bench.process, size, ask.bench.thickness_mm)
+    return inside and holds(ask.bench.process, size, ask.bench.thickness_mm, ask.own)
 
 
 def _measure(finish: Op, ask: Ask) -> Op:
@@ -46,16 +46,16 @@ def _held(seat: Seat, ask: Ask) -> str:
     if (
         seat.width_mm is None
         or thickness is None
-        or thickness >= section("finishing")["seat_thickness"] * seat.width_mm
+        or thickness >= section("finishing", ask.own)["seat_thickness"] * seat.width_mm
     ):
         return ""
     return f"the plate is thin for a bearing {seat.width_mm:g} mm wide: add a retaining plate"
 
 
 def _finish(ask: Ask, kind: StepKind, rank: Rank, tool: str) -> list[Op]:
-    seat = find_seat(ask.work.size, ask.bench.material)
+    seat = find_seat(ask.work.size, ask.bench.material, ask.own)
     size, told = seat.limits, seat.what
-    plan = finish_plan(size, ask.bench.process, ask.bench.material, ask.bench.thickness_mm)
+    plan = finish_plan(size, ask.bench.process, ask.bench.material, ask.bench.thickness_mm, ask.own)
     cut = fit_cut_mm(ask, plan)
     as_cut = ask.as_cut_mm(cut)
     note = "; ".join(t for t in (f"{size.least_mm:.3f} to {size.most_mm:.3f} mm", told, _held(seat, ask)) if t)

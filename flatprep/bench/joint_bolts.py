@@ -1,6 +1,7 @@
 """Joints with bolts and screws: clearance in each plate, thread, grip, protrusion, room for head and nut."""
 
 from collections.abc import Iterator, Sequence
+from pathlib import Path
 
 from flatprep.bench.joint_layers import Layer, judged
 from flatprep.job.values import JointAsk
@@ -23,13 +24,15 @@ def work_out(joint: JointAsk, fastener: Fastener, stack: Sequence[Layer]) -> Joi
     plain = [layer for layer in stack if not layer.threaded]
     sunk = stack[0].sunk_mm if fastener.kind is FastenerKind.SOCKET else 0.0
     grip = sum(layer.thickness_mm for layer in plain) - sunk
-    nut = find_nut(joint.nut) if joint.nut else None
+    nut = find_nut(joint.nut, stack[0].own) if joint.nut else None
     checks = [passes(layer, thread.screw, thread.major_mm) for layer in plain]
     checks += list(_order(stack, nut))
     checks += list(_head(fastener, stack[0]))
     needed, holds = (nut.height_mm, _nut_holds(nut, thread)) if nut else _thread_holds(stack[-1], thread)
     checks.append(holds)
-    length = joint.length_mm or _standard(grip + needed + _stand_out_mm(nut, thread), fastener)
+    length = joint.length_mm or _standard(
+        grip + needed + _stand_out_mm(nut, thread, stack[0].own), fastener, stack[0].own
+    )
     if length is None:
         checks.append(JointCheck("length", Outcome.BAD, f"no standard length reaches {grip + needed:.1f} mm"))
         return JointReport(joint.name, fastener.title, joint.count, grip, "", tuple(checks))
@@ -44,7 +47,7 @@ def passes(layer: Layer, screw: str, major_mm: float) -> JointCheck:
     what = f"clearance in {layer.label}"
     if layer.hole_mm is None:
         return JointCheck(what, Outcome.OPEN, "the hole is not named (hole or at)")
-    hole, table = layer.hole_mm[0], find_clearance(screw)
+    hole, table = layer.hole_mm[0], find_clearance(screw, layer.own)
     shown = f"hole {hole:.4g} mm, {screw} {major_mm:.4g} mm"
     if hole < major_mm:
         return JointCheck(what, Outcome.BAD, f"{shown}: the screw does not pass")
@@ -82,9 +85,9 @@ def room(what: str, width_mm: float, major_mm: float, layer: Layer, *, spanner: 
     """Hold a head or nut against the edge of its plate and the holes beside it."""
     if layer.edge_mm is None or width_mm <= 0.0:
         return
-    rules, radius = section("joint"), width_mm / 2.0
+    rules, radius = section("joint", layer.own), width_mm / 2.0
     edge = layer.edge_mm - radius
-    bolt = section("edges")["bolt"] * major_mm
+    bolt = section("edges", layer.own)["bolt"] * major_mm
     weak = f", centre nearer to it than {bolt:.4g} mm: weak" if layer.edge_mm < bolt - SLACK_MM else ""
     yield JointCheck(f"{what} to the edge of {layer.label}", judged(fits=edge >= -SLACK_MM), f"{edge:.2f} mm{weak}")
     if layer.neighbour_mm is not None:
@@ -109,7 +112,7 @@ def _thread_holds(last: Layer, thread: Thread) -> tuple[float, JointCheck]:
     if last.thread and last.thread != thread.name:
         return last.thickness_mm, JointCheck(what, Outcome.BAD, f"{last.thread} is tapped, the screw is {thread.name}")
     material = last.bench.material if last.bench else None
-    held = engagement(thread, last.thickness_mm, material)
+    held = engagement(thread, last.thickness_mm, material, last.own)
     aim = min(last.thickness_mm, held.needed_mm or thread.major_mm)
     rule = f", {held.needed_mm:.4g} mm wanted" if held.needed_mm else ""
     text = f"{last.thickness_mm:.4g} mm, {held.threads:.1f} threads{rule}"
@@ -120,12 +123,12 @@ def _thread_holds(last: Layer, thread: Thread) -> tuple[float, JointCheck]:
     return aim, JointCheck(what, judged(fits=not held.weak), text)
 
 
-def _stand_out_mm(nut: Nut | None, thread: Thread) -> float:
-    return section("joint")["protrusion"] * thread.pitch_mm if nut else 0.0
+def _stand_out_mm(nut: Nut | None, thread: Thread, own: Sequence[Path]) -> float:
+    return section("joint", own)["protrusion"] * thread.pitch_mm if nut else 0.0
 
 
-def _standard(least_mm: float, fastener: Fastener) -> float | None:
-    return next((length for length in lengths_mm(fastener) if length >= least_mm - 1e-6), None)
+def _standard(least_mm: float, fastener: Fastener, own: Sequence[Path]) -> float | None:
+    return next((length for length in lengths_mm(fastener, own) if length >= least_mm - 1e-6), None)
 
 
 def _length(
@@ -139,7 +142,7 @@ def _length(
         text += f", {out:.4g} mm stands out behind" if out > 1e-6 else ""
         return JointCheck("length", judged(fits=behind >= needed_mm - 1e-6), text)
     out = behind - nut.height_mm
-    rules = section("joint")
+    rules = section("joint", last.own)
     text = f"{length_mm:.4g} mm: grip {grip_mm:.4g}, nut {nut.height_mm:.4g}, {out:.4g} mm stands out"
     if out > rules["protrusion_most"] * thread.pitch_mm:
         text += ": a shorter one would do"

@@ -1,7 +1,8 @@
 """The layers of a joint: each with the hole it offers, finished as the bench work leaves it."""
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
+from pathlib import Path
 
 import shapely
 
@@ -37,6 +38,8 @@ class Layer:
         Name of the countersink or counterbore here; empty where none is.
     sunk_mm : float
         Depth of a counterbore: by so much the head sits lower.
+    own : tuple of Path
+        Folders of the user's own profiles.
     edge_mm, neighbour_mm : float or None
         From the hole's centre to the part's nearest edge, and to the nearest rim of another hole.
     """
@@ -51,6 +54,7 @@ class Layer:
     edge_mm: float | None = None
     neighbour_mm: float | None = None
     bench: BenchPart | None = None
+    own: tuple[Path, ...] = ()
 
 
 def judged(*, fits: bool) -> Outcome:
@@ -66,7 +70,14 @@ def layers(asked: Iterable[JointLayer], parts: Mapping[str, BenchPart]) -> tuple
     JobError
         When a part, its thickness or its hole is not there; the message names file and key.
     """
-    return tuple(_spacer(one) if one.part is None else _plate(one, parts) for one in asked)
+    own = own_of(parts)
+    found = (_spacer(one) if one.part is None else _plate(one, parts) for one in asked)
+    return tuple(replace(layer, own=own) for layer in found)
+
+
+def own_of(parts: Mapping[str, BenchPart]) -> tuple[Path, ...]:
+    """Return the folders of own profiles, which all parts of a job share."""
+    return next((bench.own for bench in parts.values()), ())
 
 
 def _spacer(one: JointLayer) -> Layer:

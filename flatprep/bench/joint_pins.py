@@ -17,13 +17,15 @@ def work_out(joint: JointAsk, fastener: Fastener, stack: Sequence[Layer]) -> Joi
     """Return the report of a joint that a dowel locates."""
     pin = fastener.pin
     assert pin is not None
-    size = limits(pin.diameter_mm, pin.pin_class)
+    size = limits(pin.diameter_mm, pin.pin_class, stack[0].own)
     fits = [_fit(layer, size.least_mm, size.most_mm) for layer in stack]
     checks = [check for check, _ in fits]
     if not any(tight for _, tight in fits):
         checks.append(JointCheck("hold", Outcome.BAD, "no plate holds the pin: it may fall out"))
     total = sum(layer.thickness_mm for layer in stack)
-    length = joint.length_mm or max((one for one in lengths_mm(fastener) if one <= total + 1e-6), default=None)
+    length = joint.length_mm or max(
+        (one for one in lengths_mm(fastener, stack[0].own) if one <= total + 1e-6), default=None
+    )
     if length is None:
         checks.append(JointCheck("length", Outcome.BAD, f"no standard pin is as short as {total:.4g} mm"))
         return JointReport(joint.name, fastener.title, joint.count, total, "", tuple(checks))

@@ -1,6 +1,7 @@
 """Joints with shoulder screws: shoulder against the stack, axial play, the thread at its end."""
 
 from collections.abc import Iterator, Sequence
+from pathlib import Path
 
 from flatprep.bench.joint_bolts import SLACK_MM, bought, room
 from flatprep.bench.joint_layers import Layer, judged
@@ -25,23 +26,23 @@ def work_out(joint: JointAsk, fastener: Fastener, stack: Sequence[Layer]) -> Joi
     assert thread is not None
     plain = [layer for layer in stack if not layer.threaded]
     grip = sum(layer.thickness_mm for layer in plain)
-    least, most = shoulder_limits(screw)
+    least, most = shoulder_limits(screw, stack[0].own)
     checks = [_runs(layer, least, most) for layer in plain]
     checks += list(room("head", fastener.head_dia_mm, screw.shoulder_mm, stack[0], spanner=False))
-    length = joint.length_mm or _nearest(grip + section("joint")["play_least"], fastener)
+    length = joint.length_mm or _nearest(grip + section("joint", stack[0].own)["play_least"], fastener, stack[0].own)
     if length is None:
         checks.append(JointCheck("play", Outcome.BAD, f"no standard shoulder reaches {grip:.2f} mm"))
         return JointReport(joint.name, fastener.title, joint.count, grip, "", tuple(checks))
-    checks.append(_play(length, grip))
+    checks.append(_play(length, grip, stack[0].own))
     checks += list(_thread(joint, screw, thread, stack[-1]))
     return JointReport(joint.name, fastener.title, joint.count, grip, bought(fastener, length), tuple(checks))
 
 
-def shoulder_limits(screw: ShoulderScrew) -> tuple[float, float]:
+def shoulder_limits(screw: ShoulderScrew, own: Sequence[Path] = ()) -> tuple[float, float]:
     """Return the least and the greatest diameter of a shoulder, mm; f9 from the fundamental deviation of f."""
     if screw.under_mm is not None:
         return screw.shoulder_mm - screw.under_mm[0], screw.shoulder_mm - screw.under_mm[1]
-    size = limits(screw.shoulder_mm, screw.fit)
+    size = limits(screw.shoulder_mm, screw.fit, own)
     return size.least_mm, size.most_mm
 
 
@@ -59,12 +60,12 @@ def _runs(layer: Layer, least_mm: float, most_mm: float) -> JointCheck:
     return JointCheck(what, Outcome.GOOD, play)
 
 
-def _nearest(least_mm: float, fastener: Fastener) -> float | None:
-    return next((length for length in lengths_mm(fastener) if length >= least_mm - 1e-6), None)
+def _nearest(least_mm: float, fastener: Fastener, own: Sequence[Path]) -> float | None:
+    return next((length for length in lengths_mm(fastener, own) if length >= least_mm - 1e-6), None)
 
 
-def _play(length_mm: float, stack_mm: float) -> JointCheck:
-    rules, play = section("joint"), length_mm - stack_mm
+def _play(length_mm: float, stack_mm: float, own: Sequence[Path]) -> JointCheck:
+    rules, play = section("joint", own), length_mm - stack_mm
     text = f"shoulder {length_mm:.4g} mm over a stack of {stack_mm:.4g}: {play:.2f} mm of axial play"
     if play < rules["play_least"] - 1e-6:
         return JointCheck("play", Outcome.BAD, f"{text}: the plates are clamped")
@@ -80,7 +81,7 @@ def _play(length_mm: float, stack_mm: float) -> JointCheck:
 def _thread(joint: JointAsk, screw: ShoulderScrew, thread: Thread, last: Layer) -> Iterator[JointCheck]:
     long = screw.thread_length_mm
     if joint.nut:
-        nut = find_nut(joint.nut)
+        nut = find_nut(joint.nut, last.own)
         enough = nut.screw == thread.screw and (long is None or long >= nut.height_mm + thread.pitch_mm - SLACK_MM)
         yield JointCheck(
             "nut", judged(fits=enough), f"{nut.name}, {nut.height_mm:.4g} mm high, on {_shown(long)} of {thread.name}"
@@ -93,7 +94,7 @@ def _thread(joint: JointAsk, screw: ShoulderScrew, thread: Thread, last: Layer) 
         yield JointCheck(what, Outcome.BAD, f"{last.thread} is tapped, the screw has {thread.name}")
     else:
         engaged = last.thickness_mm if long is None else min(long, last.thickness_mm)
-        held = engagement(thread, engaged, last.bench.material if last.bench else None)
+        held = engagement(thread, engaged, last.bench.material if last.bench else None, last.own)
         out = "" if long is None or long <= last.thickness_mm else f", {long - last.thickness_mm:.4g} mm stands out"
         yield JointCheck(
             what,

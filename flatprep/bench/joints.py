@@ -4,7 +4,7 @@ from collections.abc import Sequence
 
 from flatprep.base.errors import FlatprepError, JobError
 from flatprep.bench import joint_bolts, joint_pins, joint_shoulders
-from flatprep.bench.joint_layers import layers
+from flatprep.bench.joint_layers import layers, own_of
 from flatprep.bench.part import BenchPart
 from flatprep.job.values import JointAsk
 from flatprep.model.work import JointReport
@@ -27,7 +27,7 @@ def check_joints(joints: Sequence[JointAsk], parts: Sequence[BenchPart]) -> tupl
 
 def _report(joint: JointAsk, by_name: dict[str, BenchPart]) -> JointReport:
     try:
-        fastener = find_fastener(joint.fastener)
+        fastener = find_fastener(joint.fastener, own_of(by_name))
     except FlatprepError as err:
         raise JobError(f'{joint.where}: fastener = "{joint.fastener}": {err.message}', err.remedy) from None
     stack = layers(joint.through, by_name)

@@ -2,6 +2,7 @@
 
 from dataclasses import dataclass, replace
 from enum import IntEnum
+from pathlib import Path
 
 from flatprep.bench.part import BenchPart
 from flatprep.job.values import Pilots, Point, Work
@@ -115,6 +116,11 @@ class Ask:
     def at(self) -> tuple[Point, ...]:
         """The places."""
         return tuple(t.at for t in self.targets)
+
+    @property
+    def own(self) -> tuple[Path, ...]:
+        """Folders of the user's own profiles."""
+        return self.bench.own
 
     def told_mm(self, advised_mm: float | None) -> float | None:
         """Return the diameter to cut beforehand that the step names: none where only the centre is marked."""

@@ -2,6 +2,7 @@
 
 from dataclasses import dataclass
 from functools import cached_property
+from pathlib import Path
 
 from flatprep.job.values import BendAsk, Job, JobPart, Pilots, Work
 from flatprep.measure.holes import Hole, recognise
@@ -31,6 +32,8 @@ class BenchPart:
         The drawing's unit, which bare numbers in its texts are in.
     inch : bool
         The job is in inches: number, letter and fractional drills are named.
+    own : tuple of Path
+        Folders of the user's own profiles, whose hardware tables and rules go first.
     where : str
         Place in the job file, for messages; parts of one drawing share it.
     """
@@ -51,6 +54,7 @@ class BenchPart:
     where: str = ""
     units: str = "mm"
     inch: bool = False
+    own: tuple[Path, ...] = ()
 
     @cached_property
     def holes(self) -> tuple[Hole, ...]:
@@ -86,5 +90,5 @@ def bench_part(ask: JobPart, part: Part, job: Job, drawing: Drawing | None = Non
         thickness_mm=ask.thickness_mm, work=ask.work, bends=ask.bends, texts=drawing.texts if drawing else (),
         pilots=job.pilots, quantity_opposite=ask.quantity_opposite * job.sets, finish=ask.finish,
         good_face=ask.good_face, where=ask.where, units=drawing.units if drawing else "mm",
-        inch=job.units in ("in", "ft"),
+        inch=job.units in ("in", "ft"), own=ask.own,
     )  # fmt: skip

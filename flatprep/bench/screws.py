@@ -3,6 +3,7 @@
 from dataclasses import replace
 
 from flatprep.bench.ops import CLOSE_MM, Ask, Op, Rank, open_up, spoilt
+from flatprep.bench.part import BenchPart
 from flatprep.model.work import StepKind
 from flatprep.practice.bits import Bit, bit_for, clearance_bit
 from flatprep.practice.sinks import Sink, find_sink, sink_room
@@ -15,7 +16,7 @@ from flatprep.profile.hardware.rules import section
 def clearance_ops(ask: Ask) -> list[Op]:
     """Return the drill, or an inspection where the hole is cut to size."""
     screw, series = split_series(ask.work.size)
-    return _clearance(ask, find_clearance(screw), series)
+    return _clearance(ask, find_clearance(screw, ask.own), series)
 
 
 def _clearance(ask: Ask, hole: Clearance, series: str = "medium") -> list[Op]:
@@ -25,7 +26,7 @@ def _clearance(ask: Ask, hole: Clearance, series: str = "medium") -> list[Op]:
 
 def drill_ops(ask: Ask) -> list[Op]:
     """Return the drill, or an inspection where the hole is cut to size."""
-    size = find_drill(ask.work.size)
+    size = find_drill(ask.work.size, ask.own)
     named = not ask.work.size.replace("mm", "").replace(".", "").replace(",", "").strip().isdigit()
     return through_ops(ask, Bit(size, ask.work.size) if named else bit_for(size, inch=ask.bench.inch))
 
@@ -54,16 +55,16 @@ def sink_ops(ask: Ask, hole_mm: float | None = None) -> list[Op]:
     hole_mm
         Finished diameter of the hole where other work makes it.
     """
-    sink = find_sink(ask.work.kind, ask.work.size, hole_mm or ask.drawn_mm, ask.work.depth_mm)
+    sink = find_sink(ask.work.kind, ask.work.size, hole_mm or ask.drawn_mm, ask.work.depth_mm, ask.own)
     holes: list[Op] = []
     cut = ask.drawn_mm
     if sink.through_mm is not None and hole_mm is None:
-        holes = _clearance(ask, find_clearance(sink.screw))
+        holes = _clearance(ask, find_clearance(sink.screw, ask.own))
         cut = _cuttable(ask, sink.through_mm)
     op = _countersink(ask, sink) if sink.angle_deg is not None else _counterbore(ask, sink)
     return [
         *holes,
-        _in_sheet(replace(op, cut_dia_mm=cut if ask.drawn_mm is not None else None), sink, ask.bench.thickness_mm),
+        _in_sheet(replace(op, cut_dia_mm=cut if ask.drawn_mm is not None else None), sink, ask.bench),
     ]
 
 
@@ -87,10 +88,11 @@ def _counterbore(ask: Ask, sink: Sink) -> Op:
     )  # fmt: skip
 
 
-def _in_sheet(op: Op, sink: Sink, thickness_mm: float | None) -> Op:
+def _in_sheet(op: Op, sink: Sink, bench: BenchPart) -> Op:
+    thickness_mm = bench.thickness_mm
     if thickness_mm is None:
         return op
-    room = sink_room(sink.depth_mm, thickness_mm)
+    room = sink_room(sink.depth_mm, thickness_mm, bench.own)
     if room.through:
         return spoilt(op, f"{sink.depth_mm:.2f} mm deep in {thickness_mm:g} mm sheet")
     return op.with_note(f"only {room.land_mm:.2f} mm of straight hole left below") if room.thin else op
@@ -98,7 +100,7 @@ def _in_sheet(op: Op, sink: Sink, thickness_mm: float | None) -> Op:
 
 def nut_pocket_ops(ask: Ask) -> list[Op]:
     """Return the inspection of a nut pocket: across flats with its clearance, corners against the tool."""
-    nut, rules = find_nut(ask.work.size), section("pocket")
+    nut, rules = find_nut(ask.work.size, ask.own), section("pocket", ask.own)
     low, high = nut.flats_mm + rules["clearance_least"], nut.flats_mm + rules["clearance_most"]
     note = f"across flats {low:.2f} to {high:.2f} mm, the nut is {nut.corners_mm:.2f} mm across corners"
     radius = ask.bench.process.tool_diameter_mm / 2.0

@@ -46,6 +46,7 @@ def read_part(table: Table, context: Context, process: Process) -> JobPart:
         finish=table.text("finish", ""),
         good_face=table.choice("good_face", ("A", "B")) if table.has("good_face") else None,
         accepts=accepts(table, context),
+        own=context.options.profile_folders,
         where=table.place,
     )
 
@@ -110,6 +111,7 @@ def part_of_row(row: CutRow, table: Table, context: Context, process: Process) -
         drawing_units=context.options.units,
         revision=printable(row.revision),
         note=printable(row.note),
+        own=context.options.profile_folders,
         where=table.place,
     )
 

@@ -142,6 +142,8 @@ class JobPart:
     finish: str = ""
     good_face: str | None = None
     accepts: tuple[Accept, ...] = ()
+    own: tuple[Path, ...] = ()
+    """Folders of the user's own profiles."""
     where: str = ""
     """File and key, for messages: ``job.toml: part 2 (leaf)``."""
 

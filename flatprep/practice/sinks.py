@@ -46,7 +46,9 @@ class Sink:
     note: str
 
 
-def find_sink(kind: str, size: str, hole_mm: float | None, depth_mm: float | None = None) -> Sink:
+def find_sink(
+    kind: str, size: str, hole_mm: float | None, depth_mm: float | None = None, own: Sequence[Path] = ()
+) -> Sink:
     """Return a ``countersink`` or ``counterbore`` by screw and standard, or by its sizes: ``11 x 90``, ``11 x 6.4``.
 
     Parameters
@@ -59,29 +61,31 @@ def find_sink(kind: str, size: str, hole_mm: float | None, depth_mm: float | Non
     UnknownHardwareError
         With the nearest known names.
     """
-    return _countersink(size, hole_mm) if kind == "countersink" else _counterbore(size, hole_mm, depth_mm)
+    if kind == "countersink":
+        return _countersink(size, hole_mm, own)
+    return _counterbore(size, hole_mm, depth_mm, own)
 
 
-def _countersink(size: str, hole_mm: float | None) -> Sink:
+def _countersink(size: str, hole_mm: float | None, own: Sequence[Path]) -> Sink:
     plain = _PLAIN_SINK.fullmatch(tidy(size))
     if plain:
         dia, angle, hole = float(plain[1]), float(plain[2]), hole_mm or 0.0
         return Sink(f"{dia:g} x {plain[2]}°", dia, sink_depth_mm(dia, hole, angle), angle, "", None, hole, "")
-    found = find_countersink(size)
-    through = find_clearance(found.screw).medium_mm
+    found = find_countersink(size, own)
+    through = find_clearance(found.screw, own).medium_mm
     hole = max(through, hole_mm or 0.0)
     depth = sink_depth_mm(found.sink_dia_mm, hole, found.angle_deg)
     note = f"head {found.head_dia_mm:.4g} mm sharp, sink by {found.sink_rule}"
     return Sink(found.name, found.sink_dia_mm, depth, found.angle_deg, found.screw, through, hole, note)
 
 
-def _counterbore(size: str, hole_mm: float | None, depth_mm: float | None) -> Sink:
+def _counterbore(size: str, hole_mm: float | None, depth_mm: float | None, own: Sequence[Path]) -> Sink:
     plain = _PLAIN_BORE.fullmatch(tidy(size))
     if plain:
         dia, depth = float(plain[1]), float(plain[2])
         return Sink(f"{dia:g} x {depth:g} deep", dia, depth, None, "", None, hole_mm or 0.0, "")
-    found = find_counterbore(size)
-    through = find_clearance(found.screw).medium_mm
+    found = find_counterbore(size, own)
+    through = find_clearance(found.screw, own).medium_mm
     depth = depth_mm or found.depth_mm
     name, hole = f"{found.screw} ISO 4762", max(through, hole_mm or 0.0)
     return Sink(name, found.bore_mm, depth, None, found.screw, through, hole, f"head {found.head_height_mm:g} mm high")

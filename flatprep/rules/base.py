@@ -3,6 +3,7 @@
 from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass, replace
 from functools import cached_property
+from pathlib import Path
 
 from flatprep.base.tolerances import DEFAULT, Tolerances
 from flatprep.job.values import JobPart
@@ -44,6 +45,11 @@ class Context:
     def parts(self) -> tuple[MeasuredPart, ...]:
         """The drawing's parts with their measured features, each computed once."""
         return measured_parts(self.drawing.parts, self.tol)
+
+    @property
+    def own(self) -> tuple[Path, ...]:
+        """Folders of the user's own profiles, where a job names them."""
+        return self.job_part.own if self.job_part else ()
 
     @property
     def family(self) -> str | None:

@@ -23,7 +23,7 @@ def check(ctx: Context) -> Iterator[Finding]:
     for part in ctx.parts:
         for asked, target in asked_at(part.holes, work, ctx.drawing, KINDS):
             try:
-                seat = find_seat(asked.size, ctx.material)
+                seat = find_seat(asked.size, ctx.material, ctx.own)
             except UnknownHardwareError as err:
                 yield Finding(RULE.id, Severity.ERROR, err.message, part.name, target.at, remedy=err.remedy)
                 continue
@@ -40,7 +40,7 @@ def _size(ctx: Context, part: MeasuredPart, target: Target, seat: Seat) -> Itera
         yield Finding(RULE.id, Severity.ERROR, f"the hole is drawn wider than the finished {size.name}", part.name,
                       hole.at, hole.width_mm, size.least_mm, "mm", handles=hole.handles)  # fmt: skip
     elif ctx.process is not None:
-        most = finish_plan(size, ctx.process, ctx.material, ctx.thickness_mm).cut_range_mm[1]
+        most = finish_plan(size, ctx.process, ctx.material, ctx.thickness_mm, ctx.own).cut_range_mm[1]
         if hole.width_mm > most + slack:
             message = f"little is left to finish {size.name}: the cut's own tolerance, taper and skin may show"
             yield Finding(RULE.id, Severity.WARNING, message, part.name, hole.at, hole.width_mm, most, "mm",
@@ -50,7 +50,7 @@ def _size(ctx: Context, part: MeasuredPart, target: Target, seat: Seat) -> Itera
 def _wall(ctx: Context, part: MeasuredPart, asked: Work, target: Target, seat: Seat) -> Iterator[Finding]:
     wall = edge_mm(part, target) - seat.limits.nominal_mm / 2.0
     web = ctx.limit("web")
-    needed = seat_wall_mm(seat, ctx.material, ctx.thickness_mm)
+    needed = seat_wall_mm(seat, ctx.material, ctx.thickness_mm, ctx.own)
     if web is not None and wall < web.error - ctx.slack_mm():
         message = f"the wall round {asked.size} is thinner than the least web"
         yield Finding(RULE.id, Severity.ERROR, message, part.name, target.at, wall, web.error, "mm", _EDGE)

@@ -23,7 +23,7 @@ def check(ctx: Context) -> Iterator[Finding]:
     for part in ctx.parts:
         for asked, target in asked_at(part.holes, work, ctx.drawing, KINDS):
             try:
-                sink = find_sink(asked.kind, asked.size, target.drawn_mm, asked.depth_mm)
+                sink = find_sink(asked.kind, asked.size, target.drawn_mm, asked.depth_mm, ctx.own)
             except UnknownHardwareError as err:
                 yield Finding(RULE.id, Severity.ERROR, err.message, part.name, target.at, remedy=err.remedy)
                 continue
@@ -35,7 +35,7 @@ def check(ctx: Context) -> Iterator[Finding]:
 def _depth(ctx: Context, part: MeasuredPart, asked: Work, target: Target, sink: Sink) -> Iterator[Finding]:
     if ctx.thickness_mm is None:
         return
-    room = sink_room(sink.depth_mm, ctx.thickness_mm)
+    room = sink_room(sink.depth_mm, ctx.thickness_mm, ctx.own)
     if room.through:
         message = f"the {asked.kind} for {asked.size} goes through the sheet"
         yield Finding(RULE.id, Severity.ERROR, message, part.name, target.at, sink.depth_mm, ctx.thickness_mm, "mm")
@@ -66,7 +66,7 @@ def _overlaps(ctx: Context, part: MeasuredPart, work: Sequence[Work]) -> Iterato
 def _sinks(ctx: Context, part: MeasuredPart, work: Sequence[Work]) -> Iterator[tuple[Work, Target, Sink]]:
     for asked, target in asked_at(part.holes, work, ctx.drawing, KINDS):
         with suppress(UnknownHardwareError):  # told above
-            yield asked, target, find_sink(asked.kind, asked.size, target.drawn_mm, asked.depth_mm)
+            yield asked, target, find_sink(asked.kind, asked.size, target.drawn_mm, asked.depth_mm, ctx.own)
 
 
 _APART = "Move the holes apart, or take smaller screws."

@@ -22,7 +22,7 @@ def check(ctx: Context) -> Iterator[Finding]:
     for part in ctx.parts:
         for asked, target in asked_at(part.holes, work, ctx.drawing, KINDS):
             try:
-                thread = find_thread(asked.size)
+                thread = find_thread(asked.size, ctx.own)
             except UnknownHardwareError as err:
                 yield Finding(RULE.id, Severity.ERROR, err.message, part.name, target.at, remedy=err.remedy)
                 continue
@@ -41,7 +41,7 @@ def check(ctx: Context) -> Iterator[Finding]:
 
 
 def _edge(ctx: Context, part: MeasuredPart, thread: Thread, target: Target) -> Iterator[Finding]:
-    least, edge = section("edges")["tap"] * thread.major_mm, edge_mm(part, target)
+    least, edge = section("edges", ctx.own)["tap"] * thread.major_mm, edge_mm(part, target)
     if edge < least - ctx.slack_mm():
         message = f"the thread {thread.name} stands near an edge: it bulges or breaks out"
         yield Finding(RULE.id, Severity.WARNING, message, part.name, target.at, edge, least, "mm", _INWARDS)
@@ -51,7 +51,7 @@ _INWARDS = "Move the hole inwards, or take a smaller thread."
 
 
 def _hard_rim(ctx: Context) -> bool:
-    return ctx.process is not None and ctx.process.kind in THERMAL and hardens(ctx.material)
+    return ctx.process is not None and ctx.process.kind in THERMAL and hardens(ctx.material, ctx.own)
 
 
 _HARD = "Draw it smaller and drill it out, so that the hard rim is gone before the tap comes."

@@ -28,10 +28,10 @@ def check(ctx: Context) -> Iterator[Finding]:
 
 def _held(ctx: Context, asked: Work, thickness_mm: float) -> Engagement | None:
     try:
-        thread = find_thread(asked.size)
+        thread = find_thread(asked.size, ctx.own)
     except UnknownHardwareError:
         return None  # tap-hole-size tells it
-    return engagement(thread, min(asked.depth_mm or thickness_mm, thickness_mm), ctx.material)
+    return engagement(thread, min(asked.depth_mm or thickness_mm, thickness_mm), ctx.material, ctx.own)
 
 
 def _finding(held: Engagement, asked: Work, part: str, at: tuple[float, float]) -> Finding:

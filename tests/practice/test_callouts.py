@@ -125,7 +125,9 @@ def test_hardware_that_no_table_has_is_asked_back(words):
     assert words in found.questions[0]
 
 
-@pytest.mark.parametrize(("words", "near"), [("M9", "M8, M10"), ("4x M5x12", "M5, M5x0.5"), ("M8x1.2-6H", "M8, M8x0.75, M8x1")])
+@pytest.mark.parametrize(
+    ("words", "near"), [("M9", "M8, M10"), ("4x M5x12", "M5, M5x0.5"), ("M8x1.2-6H", "M8, M8x0.75, M8x1")]
+)
 def test_a_thread_that_no_table_has_is_asked_back(words, near):
     found = drawn_work(_holes((20, 20, 7.0)), [_text(words, 24, 20)])
     assert not found.work
