@@ -16,6 +16,10 @@ NEAR_MM = 0.02
 """Chords this near to a circle, and corners this near to a shape, stand for it."""
 LEAST_CHORDS = 8
 """A polygon of fewer sides is no circle, however small."""
+FLAT_MM = 2e-4
+"""A vertex this near to the chord past it is no corner."""
+MANY_EDGES, THIN_MM = 1000, 0.001
+"""Contours of so many straight edges are measured with fewer, within this."""
 RIGHT = 1e-3
 """Cosine below which sides stand at a right angle."""
 LEAST_SIDES = 12
@@ -47,6 +51,8 @@ class Hole:
         Direction of the length.
     chords : bool
         Chords stand for the arcs of a circle or obround.
+    thinned : ndarray, shape (n, 3), or None
+        The same contour within `THIN_MM` with fewer vertices, where it is drawn with needlessly many.
     """
 
     shape: HoleShape
@@ -56,6 +62,7 @@ class Hole:
     length_mm: float
     angle_rad: float = 0.0
     chords: bool = False
+    thinned: Floats | None = None
 
     @property
     def diameter_mm(self) -> float | None:
@@ -76,7 +83,7 @@ class Hole:
     def exact(self) -> Floats:
         """The contour that widths are measured on: arcs where chords stand for them, run as the drawn one."""
         if not self.chords:
-            return self.contour.xyb
+            return self.contour.xyb if self.thinned is None else self.thinned
         x, y, r = *self.at, self.width_mm / 2.0
         if self.shape is HoleShape.CIRCLE:
             out = bulge.circle(x, y, r)
@@ -167,15 +174,18 @@ def _edges(xyb: Floats) -> _Edges:
     """Leave out empty edges and vertices in the middle of a straight run."""
     step = _after(xyb[:, :2]) - xyb[:, :2]
     length = np.hypot(step[:, 0], step[:, 1])
-    if length.min() <= 1e-9:
+    if length.min() <= 1e-9 < length.max():
         return _edges(xyb[length > 1e-9])
-    straight = xyb[:, 2] == 0.0
-    before, size = np.concatenate((step[-1:], step[:-1])), np.concatenate((length[-1:], length[:-1]))
-    flat = np.abs(before[:, 0] * step[:, 1] - before[:, 1] * step[:, 0]) <= 1e-4 * size * length
-    flat &= ((before * step).sum(axis=1) > 0) & straight & np.concatenate((straight[-1:], straight[:-1]))
-    if flat.any() and len(flat) - flat.sum() > 2:
-        return _edges(xyb[~flat])
-    return _Edges(xyb, step, length, straight)
+    thin = _without_flat_joints(xyb)
+    return _Edges(xyb, step, length, xyb[:, 2] == 0.0) if len(thin) == len(xyb) else _edges(thin)
+
+
+def _without_flat_joints(xyb: Floats) -> Floats:
+    for parity in range(2):
+        kept = _every_other(xyb, FLAT_MM, parity)
+        if 3 <= len(kept) < len(xyb):
+            return kept
+    return xyb
 
 
 def _middles(e: _Edges) -> Floats:
@@ -312,7 +322,32 @@ def _other(contour: Contour, e: _Edges) -> Hole:
     k = int(np.argmin(np.prod(hi - lo, axis=0)))
     (x, y), sides, angle = (lo + hi)[:, k] / 2.0, (hi - lo)[:, k], float(angles[k])
     middle = np.array([c[k] * x - s[k] * y, s[k] * x + c[k] * y])
-    return _box_hole(HoleShape.OTHER, contour, middle, angle, sides)
+    return replace(_box_hole(HoleShape.OTHER, contour, middle, angle, sides), thinned=_thinned(e))
+
+
+def _thinned(e: _Edges) -> Floats | None:
+    """Leave out every other vertex of finely drawn curves, again and again, where there are very many."""
+    if len(e.xyb) < MANY_EDGES or not e.straight.all():
+        return None
+    kept = e.xyb
+    # chords grow, and with them what leaving one out costs; all together at most `THIN_MM`
+    for share in (1 / 512, 1 / 128, 1 / 32, 1 / 8, 1 / 2):
+        kept = _every_other(kept, THIN_MM * share, 1)
+    return kept if len(kept) < 0.7 * len(e.xyb) else None
+
+
+def _every_other(xyb: Floats, most_mm: float, parity: int) -> Floats:
+    """Leave out vertices between lines, odd or even ones, that lie within `most_mm` of the chord past them."""
+    straight = xyb[:, 2] == 0.0
+    before, after = np.concatenate((xyb[-1:], xyb[:-1]))[:, :2], _after(xyb)[:, :2]
+    chord, ray = after - before, xyb[:, :2] - before
+    size = np.hypot(chord[:, 0], chord[:, 1])
+    along = (chord * ray).sum(axis=1)
+    drop = np.abs(chord[:, 0] * ray[:, 1] - chord[:, 1] * ray[:, 0]) <= most_mm * size
+    drop &= (along > 0) & (along < size * size) & straight & np.concatenate((straight[-1:], straight[:-1]))
+    drop[parity::2] = False
+    drop[-1] &= not drop[0]  # the last and the first are neighbours too
+    return xyb[~drop]
 
 
 def inscribed_diameter(contour: Contour) -> float:

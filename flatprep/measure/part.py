@@ -127,7 +127,7 @@ class MeasuredPart:
         for row in rows:
             shape = self.shapes[int(self.boundary.contour[row])]
             names = shape.contour.handles
-            each = len(names) == len(shape.contour.xyb) and not shape.chords
+            each = len(names) == len(shape.contour.xyb) and not shape.chords and shape.thinned is None
             out += [names[int(self.boundary.edge[row])]] if each else shape.handles
         return tuple(dict.fromkeys(h for h in out if h))
 

@@ -46,6 +46,26 @@ def test_uneven_chords_stand_for_a_circle_within_two_hundredths(sagitta, shape):
     assert hole.shape is shape
 
 
+def test_fine_chords_keep_their_shape():
+    # 20,000 chords of 0.04 mm: each joint turns by a three-hundredth of a degree, all together once round
+    angles = 2 * np.pi * np.arange(20_000) / 20_000
+    unit = np.column_stack([np.cos(angles), np.sin(angles)])
+    round_hole = recognise(contour(path(*(unit * 120).tolist()), hole=True))
+    assert round_hole.diameter_mm == pytest.approx(240, abs=1e-6)
+    oval = recognise(contour(path(*(unit * (120, 50)).tolist()), hole=True))
+    assert (oval.width_mm, oval.length_mm) == (pytest.approx(100, abs=1e-2), pytest.approx(240, abs=1e-2))
+    assert len(oval.exact) < 2000
+    assert -bulge.signed_area(oval.exact) == pytest.approx(np.pi * 120 * 50, rel=1e-5)
+
+
+@pytest.mark.parametrize("off", [0.0, 1e-4])
+def test_split_sides_are_one(off):
+    # coordinates in files are rounded: a vertex on a side lies a tenth of a micrometre beside it
+    split = path((-6, -2), (0, -2 - off), (1, -2), (6, -2), (6, 2), (-1, 2 + off), (-6, 2))
+    hole = recognise(contour(moved(split, 20), hole=True))
+    assert (hole.shape, hole.width_mm) == (HoleShape.RECTANGLE, pytest.approx(4, abs=1e-3))
+
+
 def test_circle_with_one_chord_too_long_is_a_flat():
     points = chorded(circle(0, 0, 5), 0.001)
     flat = np.vstack([points[:20], points[40:]])

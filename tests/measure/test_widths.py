@@ -220,6 +220,14 @@ def test_widths_move_with_the_part(turn, dx, dy, mirrored):
         assert np.array([w.at for w in found]) == pytest.approx(spots, abs=1e-3)
 
 
+def test_a_curve_of_needlessly_many_chords_is_measured_all_the_same():
+    # an ellipse of 30,000 chords, 0.008 mm each, with a hole 2 mm from its flat side
+    angles = 2 * np.pi * np.arange(30_000) / 30_000
+    outline = path(*np.column_stack([50 * np.cos(angles), 20 * np.sin(angles)]).tolist())
+    (web,) = webs(outline, circle(0, 12, 6))
+    assert web.width_mm == pytest.approx(2.0, abs=0.002)
+
+
 def test_too_many_pairs_are_not_measured(monkeypatch):
     monkeypatch.setattr(widths_module, "MOST_PAIRS", 50)
     with pytest.raises(TooFineError):
