@@ -16,10 +16,11 @@ from shapely.geometry import Polygon
 from flatprep.geom.bulge import Floats, Similarity
 from flatprep.nest.prepare import clipped, region_of, simple_ring
 from flatprep.nest.shapes import Container, Place, Shape
-from flatprep.nest.slide import Bed, best_row, contact_rows, grid_rows, settle
+from flatprep.nest.slide import Bed, best_row, rows_for, settle
 from flatprep.nest.trapezoids import Cuts, cut_up
 
-ROWS = 40
+NO_ROWS = np.zeros(0)
+SAME_SHARE = 1e-6
 MOST_TURNS = 8
 """Turns tried for one piece."""
 PLAIN_CORNERS = 24
@@ -65,6 +66,7 @@ class _Sheet:
 
     bed: Bed
     variants: dict[int, tuple[int, ...]]
+    free_mm2: float
     rows: dict[int, Floats] = field(default_factory=dict)
     since: dict[int, Floats] = field(default_factory=dict)
     seen: dict[int, int] = field(default_factory=dict)
@@ -94,6 +96,8 @@ class Layer:
         rings = [
             [move.points(ring) for ring in outlines[v.shape]] for v, move in zip(self.variants, moves, strict=True)
         ]
+        self._area = [float(Polygon(s.outer, s.holes).area) for s in self.shapes]
+        self._room = [float(region_of(b.container).area) for b in self.bins]
         self._wall_of: list[int | None] = []
         for wall in walls:
             self._wall_of.append(len(rings) if wall else None)
@@ -140,11 +144,12 @@ class Layer:
             if number == len(sheets):
                 sheets.append(self._empty(kind, sum(s.count for s in self.shapes)))
             sheet = sheets[number]
-            if shape in sheet.full_for:
+            if shape in sheet.full_for or self._area[shape] > sheet.free_mm2 * (1.0 + SAME_SHARE):
                 continue
             found = self._lay_one(shape, sheet)
             if found is not None:
                 variant, x, y = found
+                sheet.free_mm2 -= self._area[shape]
                 v = self.variants[variant]
                 return Place(shape, number, v.turn_deg, v.mirrored, x, y)
             sheet.full_for.add(shape)
@@ -158,7 +163,7 @@ class Layer:
         wall = self._wall_of[kind]
         if wall is not None:
             who[0], bed.laid[0] = wall, 1
-        return _Sheet(bed, self._of_bin[kind])
+        return _Sheet(bed, self._of_bin[kind], self._room[kind])
 
     def _lay_one(self, shape: int, sheet: _Sheet) -> tuple[int, float, float] | None:
         best: tuple[int, float, float] | None = None
@@ -180,17 +185,10 @@ class Layer:
 
     def _rows(self, v: int, sheet: _Sheet) -> tuple[Floats, Floats]:
         """Rows for a variant, those of pieces laid since it was last asked for added."""
-        bed = sheet.bed
-        rows, since = sheet.rows.get(v), sheet.since.get(v, np.zeros(0))
-        if rows is None:
-            rows = grid_rows(self._cuts, v, bed.room, ROWS)
-        every = np.concatenate([rows, contact_rows(self._cuts, v, bed, sheet.seen.get(v, 0))])
-        sheet.seen[v] = int(bed.laid[0])
-        first = np.sort(np.unique(np.round(every, 7), return_index=True)[1])
-        sheet.rows[v] = every[first]
-        start = np.full(len(sheet.rows[v]) - len(since), bed.room[0] - self._cuts.box[v, 0])
-        sheet.since[v] = np.concatenate([since, start])
-        return sheet.rows[v], sheet.since[v]
+        known = (sheet.rows.get(v, NO_ROWS), sheet.since.get(v, NO_ROWS), sheet.seen.get(v, 0))
+        rows, since = rows_for(self._cuts, sheet.bed, v, *known)
+        sheet.rows[v], sheet.since[v], sheet.seen[v] = rows, since, int(sheet.bed.laid[0])
+        return rows, since
 
 
 def _variants(shapes: Sequence[Shape], bins: Sequence[Bin]) -> tuple[list[Variant], list[dict[int, tuple[int, ...]]]]:

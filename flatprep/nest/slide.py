@@ -6,10 +6,13 @@ import numpy as np
 
 from flatprep.geom.bulge import Floats
 from flatprep.nest._jit import kernel
-from flatprep.nest.trapezoids import THIN_MM, Cuts, Ints, back, past
+from flatprep.nest.trapezoids import MOST_LEVELS, THIN_MM, Cuts, Ints, back, past
 
 SETTLED_MM = 1e-6
 MOST_SLIDES = 12
+EVEN_ROWS = 40
+"""Heights spread over a container at which a piece is tried."""
+SAME_ROW_MM = 1e-7
 
 
 class Bed(NamedTuple):
@@ -125,21 +128,50 @@ def _leftmost(cuts: Cuts, bed: Bed, v: int, x: float, y: float) -> float:
     return left
 
 
-def contact_rows(cuts: Cuts, v: int, bed: Bed, seen: int) -> Floats:
-    """Heights at which a level side of variant v meets a level edge of a piece laid after the first `seen`."""
-    levels = [
-        y + cuts.level[cuts.level_at[w] : cuts.level_at[w + 1]]
-        for w, y in zip(bed.who[seen : bed.laid[0]], bed.at[seen : bed.laid[0], 1], strict=True)
-    ]
-    level = np.concatenate([np.zeros(0), *levels])
-    mine = cuts.level[cuts.level_at[v] : cuts.level_at[v + 1]]
-    sides = [side for side in (cuts.box[v, 1], cuts.box[v, 3]) if (np.abs(mine - side) <= SETTLED_MM).any()]
-    rows = np.concatenate([np.zeros(0), *(level - side for side in sides)])
-    inside = (rows >= bed.room[1] - cuts.box[v, 1] - THIN_MM) & (rows <= bed.room[3] - cuts.box[v, 3] + THIN_MM)
-    return np.asarray(rows[inside], dtype=np.float64)
+@kernel
+def rows_for(cuts: Cuts, bed: Bed, v: int, rows: Floats, since: Floats, seen: int) -> tuple[Floats, Floats]:
+    """Heights to try for variant v, and where the search along each begins.
+
+    Parameters
+    ----------
+    rows, since : ndarray, shape (r,)
+        Those known, empty at first: then heights spread evenly over the container are put in, lowest and highest
+        among them.
+    seen
+        Pieces laid that the known rows have regarded. For each later one come the heights at which a level side of
+        the variant meets a level edge of it, each once.
+    """
+    low, high = bed.room[1] - cuts.box[v, 1], bed.room[3] - cuts.box[v, 3]
+    count = len(rows)
+    most = MOST_LEVELS * 2 * (bed.laid[0] - seen) + max(count, EVEN_ROWS)
+    every, start = np.empty(most), np.full(most, bed.room[0] - cuts.box[v, 0])
+    every[:count], start[:count] = rows, since
+    if count == 0:
+        count = EVEN_ROWS if high > low else 1
+        for r in range(count):
+            every[r] = low + (high - low) * r / max(count - 1, 1)
+    for side in (cuts.box[v, 1], cuts.box[v, 3]):
+        if not _has_level(cuts, v, side):
+            continue
+        for k in range(seen, bed.laid[0]):
+            for e in range(cuts.level_at[bed.who[k]], cuts.level_at[bed.who[k] + 1]):
+                y = bed.at[k, 1] + cuts.level[e] - side
+                if low - THIN_MM <= y <= high + THIN_MM and not _is_near(every[:count], y):
+                    every[count] = y
+                    count += 1
+    return every[:count].copy(), start[:count].copy()
 
 
-def grid_rows(cuts: Cuts, v: int, room: Floats, count: int) -> Floats:
-    """Heights spread over what the container leaves variant v, the lowest and the highest among them."""
-    low, high = float(room[1] - cuts.box[v, 1]), float(room[3] - cuts.box[v, 3])
-    return np.linspace(low, high, count) if high > low else np.array([low])
+@kernel
+def _has_level(cuts: Cuts, v: int, side: float) -> bool:
+    """Tell whether variant v has a long level edge at the height of a side of its box."""
+    return bool(_is_near(cuts.level[cuts.level_at[v] : cuts.level_at[v + 1]], side))
+
+
+@kernel
+def _is_near(known: Floats, y: float) -> bool:
+    """Tell whether a height is among those known."""
+    near = 0
+    for other in known:
+        near += abs(other - y) <= SAME_ROW_MM
+    return near > 0
