@@ -51,4 +51,4 @@ def clearance_bit(hole: Clearance, series: str, *, inch: bool) -> Bit:
     own, size = hole.drill(series), hole.series(series)
     if own.endswith("mm"):
         return bit_for(size, inch=inch)
-    return Bit(size, own if inch else f"{own} ({size:.4g} mm)")
+    return Bit(size, own if inch else f"{own} ({hole.metric_drill_mm(series):g} mm)")

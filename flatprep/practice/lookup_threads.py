@@ -55,6 +55,7 @@ def clearance(q: Question) -> Values:
     found = find_clearance(split_series(q.name)[0], q.own)
     values: dict[str, Value] = {"fine_mm": found.fine_mm, "medium_mm": found.medium_mm, "coarse_mm": found.coarse_mm}
     values |= {f"{series}_drill": found.drill(series) for series in ("fine", "medium", "coarse")}
+    values |= {f"{series}_metric_drill_mm": found.metric_drill_mm(series) for series in ("fine", "medium", "coarse")}
     return found.screw, values, found.source
 
 

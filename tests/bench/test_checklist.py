@@ -159,7 +159,7 @@ def test_thread_inserts():
         (("tap", "M1.6"), True, "drill 1.25 mm"),  # 3/64 is 1.191, under 1.221
         (("tap", "1/4-20"), False, "drill #7 (5.1 mm)"), (("tap", "1/4-20"), True, "drill #7"),
         (("clearance", "M5"), False, "drill 5.5 mm"), (("clearance", "M5"), True, "drill 7/32"),
-        (("clearance", "1/4"), False, "drill 9/32 (7.142 mm)"), (("clearance", "1/4"), True, "drill 9/32"),
+        (("clearance", "1/4"), False, "drill 9/32 (7.1 mm)"), (("clearance", "1/4"), True, "drill 9/32"),
         (("ream", "8 H7"), False, "drill 7.7 mm"), (("ream", "8 H7"), True, "drill N"),  # 0.302 in, 7.671 mm
         (("drill", "6.5"), True, "drill F"), (("drill", "#7"), False, "drill #7"),
         (("drill", "6.5"), False, "drill 6.5 mm"),

@@ -18,18 +18,23 @@ _WORDS = {"close": "fine", "normal": "medium", "free": "coarse", "loose": "coars
 
 @dataclass(frozen=True, slots=True)
 class Clearance:
-    """The three clearance holes of a screw, mm, and the drills that make them."""
+    """The three clearance holes of a screw, mm, the drills that make them, and the metric drills usually taken, mm."""
 
     screw: str
     fine_mm: float
     medium_mm: float
     coarse_mm: float
     drills: tuple[str, str, str]
+    metric_mm: tuple[float, float, float]
     source: str
 
     def series(self, name: str) -> float:
         """Return the hole of ``fine``, ``medium`` or ``coarse``."""
         return (self.fine_mm, self.medium_mm, self.coarse_mm)[SERIES.index(name)]
+
+    def metric_drill_mm(self, name: str) -> float:
+        """Return the metric drill usually taken for a series."""
+        return self.metric_mm[SERIES.index(name)]
 
     def drill(self, name: str) -> str:
         """Return the drill of a series as it is asked for."""
@@ -52,9 +57,11 @@ def _clearance(sheet: HardwareTable, row: Table) -> Clearance:
     scale = MM_PER_UNIT["in"] if row.has("medium_drill") else 1.0
     sizes = [row.number(s, above=0.0) * scale for s in SERIES]
     drills = [row.text(f"{s}_drill", f"{row.number(s):g} mm") for s in SERIES]
+    metric = [row.number(f"{s}_mm", size) for s, size in zip(SERIES, sizes, strict=True)]
     return Clearance(
-        row.text("screw"), sizes[0], sizes[1], sizes[2], (drills[0], drills[1], drills[2]), sheet.source(row)
-    )
+        row.text("screw"), sizes[0], sizes[1], sizes[2], (drills[0], drills[1], drills[2]),
+        (metric[0], metric[1], metric[2]), sheet.source(row),
+    )  # fmt: skip
 
 
 def find_clearance(name: str, own: Sequence[Path] = ()) -> Clearance:

@@ -34,6 +34,7 @@ def test_every_clearance_is_as_published(row):
     found = find_clearance(row["screw"])
     sizes = (found.fine_mm, found.medium_mm, found.coarse_mm)
     assert sizes == pytest.approx([row[s] * scale for s in ("fine", "medium", "coarse")], rel=1e-12)
+    assert found.metric_mm == tuple(row.get(f"{s}_mm", row[s]) for s in ("fine", "medium", "coarse"))
 
 
 @pytest.mark.parametrize("hole", all_clearances(), ids=lambda c: c.screw)
@@ -75,7 +76,22 @@ def test_every_deviation_is_as_published(row):
 
 @pytest.mark.parametrize("row", rows("it_grades"), ids=named)
 def test_every_grade_is_as_published(row):
-    assert it_um(row["incl_mm"], int(row["grade"][2:])) == row["width"]
+    """At the end of a step, which belongs to it, and just above its beginning."""
+    steps = {r["incl_mm"] for r in rows("it_grades")}
+    below = max((s for s in steps if s < row["incl_mm"]), default=0.0)
+    for size in (row["incl_mm"], below + 0.001):
+        assert it_um(size, int(row["grade"][2:])) == row["width"]
+
+
+@pytest.mark.parametrize(
+    ("letter", "distances"),
+    [("d", "20 30 40 50 65 80 80 100 100 120 120"), ("e", "14 20 25 32 40 50 50 60 60 72 72")],
+)
+def test_fundamental_deviations_from_memory(letter, distances):
+    """ISO 286-1, from memory: a shaft lies so far below its nominal size, a hole so far above."""
+    for size, distance in zip(STEPS, distances.split(), strict=True):
+        assert limits(size, f"{letter}9").upper_um == -float(distance)
+        assert limits(size, f"{letter.upper()}9").lower_um == float(distance)
 
 
 DERIVED = ["H5", "H10", "H12", "H13", "h7", "h11", "js6", "JS9", "F8", "E9", "D10", "G6", "f8", "n7", "p7"]
@@ -138,6 +154,8 @@ def test_every_countersink_is_as_published(row):
     assert found.angle_deg == row["angle"]
     assert found.head_dia_mm == pytest.approx(row["head"] * scale, rel=1e-12)
     assert found.sink_dia_mm == pytest.approx((row["sink"] or row["head"]) * scale, rel=1e-12)
+    assert (found.head_real_mm or 0.0) == pytest.approx(row["real"] * scale, rel=1e-12)
+    assert (found.height_mm or 0.0) == pytest.approx(row["height"] * scale, rel=1e-12)
 
 
 @pytest.mark.parametrize("sink", all_countersinks(), ids=lambda c: c.name)
