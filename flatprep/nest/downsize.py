@@ -1,6 +1,6 @@
 """After a search: put what lies on a sheet on a cheaper one that has become large enough."""
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import replace
 
 from flatprep.nest.construct import Layer
@@ -9,16 +9,23 @@ from flatprep.nest.objective import SheetUse, cost_of, is_open, price_per_area
 from flatprep.nest.shapes import Place
 
 
-def downsized(answer: Answer, margin_mm: float) -> Iterator[Answer]:
-    """Yield better answers in which one sheet is a cheaper one, the last sheet first."""
+def downsized(answer: Answer, margin_mm: float, stop: Callable[[], bool] = lambda: False) -> Iterator[Answer]:
+    """Yield better answers in which a sheet is a cheaper one, the last sheet first; `stop` is asked before each try."""
     best = answer
     for number in range(len(answer.supply) - 1, -1, -1):
         for kind in cheaper_kinds(best, number):
+            if stop():
+                return
             made = _moved(best, number, kind, margin_mm)
             if made is not None and made.value < best.value:
                 best = made
                 yield best
                 break
+
+
+def may_downsize(answer: Answer) -> bool:
+    """Tell whether a cheaper kind of sheet is at hand for any sheet of an answer."""
+    return any(cheaper_kinds(answer, n) for n in range(len(answer.supply)))
 
 
 def cheaper_kinds(answer: Answer, number: int) -> list[int]:

@@ -11,7 +11,7 @@ from flatprep.model.layout import Layout, Unplaced
 from flatprep.nest.allowed import matches
 from flatprep.nest.assemble import FilledSheet, Spot, layout_of
 from flatprep.nest.clock import Clock
-from flatprep.nest.downsize import downsized
+from flatprep.nest.downsize import downsized, may_downsize
 from flatprep.nest.fill import NO_ROOM, fill
 from flatprep.nest.firstfit import Answer, first_answers
 from flatprep.nest.group import kept_spots, prepare_group, split
@@ -26,6 +26,8 @@ FIRST_SHARE = 0.2
 """Share of the time that constructive layouts may take after the first one."""
 REFILL_SHARE = 0.5
 """Share of a group's budget for filling sheets anew, where there are several with few pieces each."""
+SEARCH_SHARE = 0.95
+"""Share of what is then left for the search, where cheaper sheets are looked at after it."""
 ENDING_S = 0.3
 """Kept back for the end."""
 
@@ -174,8 +176,9 @@ class _Job:
             first = clock_share(clock, REFILL_SHARE)
             refill(self._answers[number], margin, first, budget.seed, take)
             clock.spend(first.evaluations)
-        improve(self._answers[number], margin, Effort(clock, budget.seed, budget.jobs), take)
-        for cheaper in downsized(self._answers[number], margin):
+        search = clock_share(clock, SEARCH_SHARE) if may_downsize(self._answers[number]) else clock
+        improve(self._answers[number], margin, Effort(search, budget.seed, budget.jobs), take)
+        for cheaper in downsized(self._answers[number], margin, clock.passed):
             take(cheaper)
 
     def _take(self, number: int, answer: Answer) -> None:
