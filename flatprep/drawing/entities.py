@@ -14,6 +14,8 @@ from flatprep.geom.smooth import ellipse, nurbs
 
 # ezdxf types its DXF attributes only loosely
 Dxf = Any
+FAR = 1e12
+"""Control points and axes beyond it, or no numbers, are not even looked at: their squares lose all digits."""
 FULL_RAD = 1e-5
 """An arc that misses a full turn by less is a circle: programs write angles with five decimals."""
 
@@ -119,6 +121,8 @@ def _ellipse(e: Dxf, tol: float) -> Shape:
     major = np.array([m.x, m.y])
     if hypot(m.x, m.y) <= 0 or not 0 < abs(ratio) <= 1e3:
         raise UnusableEntityError("an axis of the ellipse is zero")
+    if not all(abs(v) <= FAR for v in (c.x, c.y, m.x, m.y, m.x * ratio, m.y * ratio)):
+        raise UnusableEntityError("the ellipse is out of all bounds")
     minor = flip * ratio * np.array([-m.y, m.x])
     start, end = e.dxf.start_param, e.dxf.end_param
     sweep = (end - start) % (2 * pi)
@@ -136,7 +140,7 @@ def _spline(e: Dxf, tol: float) -> Shape:
         tool = e.construction_tool()
         control = np.array([(p.x, p.y, p.z) for p in tool.control_points])
         knots, weights, degree = list(tool.knots()), list(tool.weights()), tool.degree
-    if not np.isfinite(control).all() or np.abs(control).max(initial=0.0) > 1e12:
+    if not np.abs(control).max(initial=0.0) <= FAR:
         raise UnusableEntityError("a control point is out of all bounds")
     if degree == 1:
         xyb = np.column_stack([control[:, :2], np.zeros(len(control))])

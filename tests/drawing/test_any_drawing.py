@@ -4,6 +4,7 @@ import math
 from pathlib import Path
 from random import Random
 
+import ezdxf
 import pytest
 from hypothesis import HealthCheck, given, settings
 
@@ -14,7 +15,7 @@ from flatprep.profile.process_load import load_process
 from flatprep.repair.clean import repair
 from flatprep.repair.values import RepairOptions
 from tests.damage import damaged
-from tests.strategies import drawings
+from tests.strategies import add, drawings
 
 OURS = sorted((Path(__file__).parents[1] / "drawings").glob("*.dxf"))
 PROCESS = load_process("fibre-laser", ())
@@ -49,6 +50,20 @@ def test_any_drawing(tmp_path, doc):
     path = tmp_path / "any.dxf"
     doc.saveas(path)
     answered(path)
+
+
+@pytest.mark.parametrize("far", [1e300, float("inf"), float("nan")])
+@pytest.mark.parametrize("kind", ["ellipse", "spline"])
+def test_curves_out_of_all_bounds_are_left_out_and_said(tmp_path, kind, far):
+    made = {"layer": "0", "at": (0.0, 0.0), "axis": (far, 5.0), "ratio": 0.5, "closed": False}
+    made["points"] = [(0.0, 0.0), (far, 1.0), (5.0, 5.0), (9.0, 0.0)]
+    doc = ezdxf.new("R2010")
+    add(doc.modelspace(), "box", {"layer": "0", "at": (0.0, 0.0), "size": (50.0, 30.0)})
+    add(doc.modelspace(), kind, made)
+    doc.saveas(tmp_path / "far.dxf")
+    got = answered(tmp_path / "far.dxf")
+    assert len(got.drawing.parts) == 1
+    assert [(s.kind, "out of all bounds" in s.reason) for s in got.drawing.skipped] == [(kind.upper(), True)]
 
 
 @pytest.mark.parametrize("seed", range(40))
