@@ -70,9 +70,9 @@ class Hub:
     """Process 0's side: the workers still at work, what they wait for, and the last word of those that are done."""
 
     def __init__(
-        self, workers: Sequence[Connection], show: Callable[[Spots], None], stopped: Callable[[], bool] = lambda: False
+        self, workers: Sequence[Connection], show: Callable[[Spots], None], clock: Clock | None = None
     ) -> None:
-        self._stopped = stopped
+        self._clock = clock or Clock(seconds=math.inf)
         self._working = list(workers)
         self._waiting: dict[Connection, Spots] = {}
         self._last: list[Spots] = []
@@ -90,7 +90,7 @@ class Hub:
             while worker in self._working and worker not in self._waiting:
                 if worker.poll(PAUSE_S):
                     self._read(worker)
-                elif self._stopped():
+                elif self._clock.stopped() or (self._clock.steps is None and self._clock.passed()):
                     return self._best_with(best)
         best = self._best_with(best)
         self._answer(best)
@@ -102,7 +102,7 @@ class Hub:
             best = self._best_with(best)
             self._answer(best)
             ready = wait(self._working, PAUSE_S)
-            if not ready and (time.monotonic() >= until or self._stopped()):
+            if not ready and (time.monotonic() >= until or self._clock.stopped()):
                 break
             for worker in self._working[:]:
                 if worker in ready:
@@ -177,7 +177,7 @@ def run_jobs(
         for worker, (_, far) in zip(workers, pipes, strict=True):
             worker.start()
             far.close()
-        hub = Hub([near for near, _ in pipes], found, clock.stopped)
+        hub = Hub([near for near, _ in pipes], found, clock)
         best = run(task, clock, seed, found, Meetings(clock, meeting_steps, hub.meet, hub.look))
         return hub.end(best, math.inf if clock.steps is not None else time.monotonic() + LAST_WORD_S)
     finally:

@@ -69,10 +69,13 @@ def test_processes_meet_and_repeat():
     assert task.best(apart[0]) != task.best(met[0])
 
 
-def test_wall_time_is_kept():
+@pytest.mark.parametrize("jobs", [1, 2])
+def test_wall_time_is_kept(jobs):
+    search(strip_task(mixed(), 30.0, None), Clock(steps=1), 1, quiet)  # compile, or fetch what was compiled
     clock = Clock(seconds=1.0)
-    search(strip_task(mixed(), 30.0, None), clock, 1, quiet)
-    assert clock.elapsed_s < 2.0
+    search(strip_task(mixed(), 30.0, None), clock, 1, quiet, jobs)
+    # 1 s is promised; the rest is for a busy machine
+    assert clock.elapsed_s < 4.0
 
 
 def test_a_jigsaw_is_solved():
