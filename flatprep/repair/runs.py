@@ -13,6 +13,9 @@ SHARPEST_RAD = 2.0 * np.pi / 12.0 + 0.02
 """Chords of one arc turn less than this from one to the next: those of a twelve-sided polygon just do."""
 UNEVEN = 2.5
 """No chord of a run is so many times longer than the usual one: a flat on a round hole is drawn on purpose."""
+LEAST_SWEEP_RAD = np.radians(20.0)
+MANY_CHORDS = 8
+"""A run of fewer chords sweeps at least `LEAST_SWEEP_RAD`."""
 LARGEST_MM = 1e5
 _TIGHT = 0.12
 """The vertices lie so much nearer to the circle than the middles of the chords: on a spline they do not."""
@@ -135,7 +138,14 @@ def _longest(points: Floats, first: int, most: int, limits: RoundLimits) -> Run 
             high = middle
         else:
             best, low = found, middle
-    return best
+    return best if _convincing(best, limits) else None
+
+
+def _convincing(run: Run, limits: RoundLimits) -> bool:
+    """Tell whether a run is an arc: no straight line, and no stretch of a spline that is round for a little while."""
+    rise = run.circle.radius * (1.0 - np.cos(min(abs(run.sweep_rad), np.pi) / 2.0))
+    bends = abs(run.sweep_rad) >= LEAST_SWEEP_RAD or run.last - run.first >= MANY_CHORDS
+    return bool(bends and rise >= _PLAIN * limits.vertex_mm)
 
 
 def _run(points: Floats, first: int, last: int, limits: RoundLimits) -> Run | None:
@@ -154,8 +164,7 @@ def _run(points: Floats, first: int, last: int, limits: RoundLimits) -> Run | No
     one_way = bool((turn * np.sign(sweep) > 0.0).all()) and float(np.abs(turn).max()) <= SHARPEST_RAD
     even = float(chord.max()) <= UNEVEN * float(np.median(chord))
     sag = circle.radius * (1.0 - np.cos(float(np.abs(turn).max()) / 2.0))
-    rise = circle.radius * (1.0 - np.cos(min(abs(sweep), np.pi) / 2.0))
     tight = off <= max(_ROUNDING_MM, _TIGHT * sag)
-    if not (tight and one_way and even and sag <= limits.deviation_mm and rise >= _PLAIN * limits.vertex_mm):
+    if not (tight and one_way and even and sag <= limits.deviation_mm):
         return None
     return Run(first, last, circle, sweep) if abs(sweep) < 2.0 * np.pi else None

@@ -225,3 +225,38 @@ def test_a_plate_with_only_round_holes_on_a_round_edge(hold):
     (change,) = hold(disc(ring), disc([*ring, (5, 5, 3)]), "turned").changes
     (pair,) = changed(change)
     assert (pair.change, pair.at) == (HoleChange.APPEARED, pytest.approx((5, 5), abs=1e-3))
+
+
+@pytest.mark.parametrize(("diameter", "possible"), [(4.94, True), (4.86, False)])
+def test_material_missing_below_the_truth_of_a_cut_edge_is_no_loss(hold, diameter, possible):
+    """0.03 mm a side is within what a cut edge is true to, 0.07 mm is not."""
+    (change,) = hold(plate, lambda msp: plate(msp, [(10, 10, diameter), *HOLES[1:]])).changes
+    assert [p.change for p in changed(change)] == [HoleChange.RESIZED]
+    assert change.rework.possible is possible
+
+
+@pytest.mark.parametrize(("far", "kinds"), [(15, ["moved"]), (70, ["appeared", "gone"])])
+def test_a_hole_far_away_is_another_one(hold, far, kinds):
+    new = [(10 + far, 10, 5), *HOLES[1:2], (90, 30, 5), HOLES[3]]
+    old = [HOLES[0], HOLES[1], (90, 30, 5), HOLES[3]]
+    (change,) = hold(lambda msp: plate(msp, old), lambda msp: plate(msp, new)).changes
+    assert sorted(p.change for p in changed(change)) == kinds
+
+
+def test_rework_may_need_another_way_of_laying_the_part(hold):
+    """In place the old hole is in the way; turned by half a turn the new, larger one lies over it."""
+
+    def symmetric(*holes):
+        def paint(msp):
+            box(msp, 0, 0, 100, 60)
+            for x, y, d in holes:
+                msp.add_circle((x, y), d / 2)
+
+        return paint
+
+    (change,) = hold(symmetric((10, 10, 5)), symmetric((90, 50, 9))).changes
+    assert change.same_place
+    assert change.rework.possible
+    assert change.rework.motion.turn_deg == pytest.approx(180) or change.rework.motion.mirrored
+    (step,) = change.rework.steps
+    assert (step.task, step.from_mm, step.to_mm) == (Task.OPEN_UP, pytest.approx(5), pytest.approx(9))

@@ -5,6 +5,7 @@ from math import cos, pi, radians, sin
 
 import ezdxf
 import pytest
+from ezdxf.math import Matrix44
 
 from flatprep.drawing.read import read
 from flatprep.model.drawing import Role
@@ -262,3 +263,17 @@ def test_texts_that_may_have_been_meant_to_be_cut(tmp_path, words, layer, left):
     assert [f.rule for f in done.left] == (["text-not-outlined"] if left else [])
     (text,) = ezdxf.readfile(out).modelspace().query("TEXT")
     assert (text.dxf.layer, text.dxf.text) == ("CUT" if left else "NOTE", words)
+
+
+def test_coordinates_are_written_to_a_nanometre(tmp_path):
+    """So that the clean drawing, read again, holds the same figures."""
+
+    def paint(msp):
+        box(msp, 0, 0, 80, 50)
+        for line in msp:
+            line.transform(Matrix44.z_rotate(radians(33)))
+
+    _, out = clean(tmp_path, paint)
+    (line,) = ezdxf.readfile(out).modelspace()
+    values = [v for point in line.get_points("xy") for v in point]
+    assert values == [round(v, 6) for v in values]

@@ -1,6 +1,6 @@
 """Chords turned back into arcs: against the circles they were made from, and left alone where they stand for none."""
 
-from math import cos, pi, radians, sin, sqrt
+from math import cos, pi, radians, sin, sqrt, tan
 
 import numpy as np
 import pytest
@@ -153,3 +153,25 @@ def test_circle_through_points():
     found = circle_through(np.array(on_circle(-3, 7, 12.5, 10, 40, 9)))
     assert (found.x, found.y, found.radius) == pytest.approx((-3, 7, 12.5))
     assert circle_through(np.array([(0.0, 0.0), (1.0, 1.0), (2.0, 2.0), (5.0, 5.0)])) is None
+
+
+def test_a_slender_curve_in_fine_chords_is_mostly_left_alone():
+    """Vertices of an ellipse lie near to circles, yet not nearer than the middles of its chords."""
+    t = np.linspace(0, 2 * pi, 120, endpoint=False)
+    drawn = contour(np.column_stack([30 * np.cos(t), 24 * np.sin(t)]).tolist())
+    assert sum(r.last - r.first for r in runs(drawn.xyb, LIMITS)) < 60
+
+
+def test_coordinates_of_three_decimals_are_no_evidence_against_an_arc():
+    points = [*on_circle(0, 0, 10, 0, 90, 60), (-20, 10), (-20, -20), (10, -20)]
+    rounded = contour([(round(x, 3), round(y, 3)) for x, y in points])
+    (run,) = runs(rounded.xyb, LIMITS)
+    assert (run.first, run.last) == (0, 60)
+
+
+def test_four_nearly_equal_arcs_become_one_circle():
+    quarter = tan(pi / 8)
+    xyb = np.array([(13, 6, quarter), (5.0004, 14.0005, quarter), (-3, 6, quarter), (5, -2, quarter)])
+    done, _ = round_contour(Contour(xyb, ("A", "B", "C", "D")), LIMITS, equal_area=False)
+    assert len(done.xyb) == 2
+    assert done.circle == pytest.approx((5, 6, 8), abs=2e-3)
