@@ -1,0 +1,82 @@
+"""The search's state: how pieces may turn, what is laid again, what no layout can be shorter than."""
+
+import numpy as np
+import pytest
+
+from flatprep.nest.bounds import Bounds
+from flatprep.nest.clock import Clock
+from flatprep.nest.engine import Engine, Turning
+from flatprep.nest.search import sheets_task, strip_task
+from flatprep.nest.shapes import Container, Place, Shape
+from flatprep.nest.squeeze import shorten, swap_two
+from tests.nest.outlines import ELBOW, QUARTERS, SQUARE, WEDGE
+
+
+def engine_of(task) -> Engine:
+    return Engine(task.outlines, task.free, task.field, task.start, Clock(steps=50), np.random.default_rng(1))
+
+
+def kinds() -> list[Shape]:
+    return [
+        Shape(ELBOW, turns_deg=None, count=2),
+        Shape(WEDGE, turns_deg=None, mirror=(False, True), count=2),
+        Shape(SQUARE, turns_deg=(0.0, 30.0)),
+    ]
+
+
+def test_free_pieces_turn_by_quarters_first_then_at_will():
+    engine = engine_of(strip_task(kinds(), 40.0, None))
+    told = {}
+    for how in Turning:
+        engine.turn(how)
+        told[how] = (engine.board.usable.tolist(), engine.board.turning.tolist())
+    assert told[Turning.QUARTERS] == ([4, 8, 2], [0, 0, 0])
+    assert told[Turning.PACKED] == ([24, 48, 2], [0, 0, 0])
+    assert told[Turning.FREELY] == ([24, 48, 2], [1, 1, 0])
+
+
+def test_the_first_four_turns_make_the_box_least():
+    task = strip_task([Shape(SQUARE @ np.array([[0.8, 0.6], [-0.6, 0.8]]), turns_deg=None)], 40.0, None)
+    sides = (task.outlines.rings.box[:, 2:] - task.outlines.rings.box[:, :2])[:4]
+    assert np.allclose(sides, 10.0, atol=1e-6)
+    assert len({round(t, 6) for t in task.outlines.turn[:, 2]}) == 24
+
+
+def test_untangling_ends_without_overlap_and_lays_its_best_again():
+    engine = engine_of(strip_task(kinds(), 40.0, None))
+    engine.turn(Turning.FREELY)
+    shorten(engine, 1, 0.8 * engine.length_mm)
+    assert engine.untangle(200, 3) == 0.0
+    assert engine.is_free()
+    kept = engine.spots()
+    assert kept.length_mm == pytest.approx(engine.reach_mm)
+    swap_two(engine)
+    engine.lay(kept)
+    again = engine.spots()
+    assert np.array_equal(again.at, kept.at)
+    assert np.array_equal(again.turn, kept.turn)
+    assert engine.is_free()
+
+
+def test_an_overlap_is_seen():
+    engine = engine_of(strip_task([Shape(SQUARE, count=2)], 10.0, None))
+    assert engine.is_free()
+    engine.board.at[1, 0] -= 1e-5
+    engine.lay(engine.spots(loss=1.0))
+    assert not engine.is_free()
+
+
+def test_bounds():
+    # five squares of 100 mm² and an elbow (20 x 15, 174 mm²) on sheets of 400 mm²; the elbow fits only the second
+    low = Container(np.array([[0.0, 0.0], [40.0, 0.0], [40.0, 10.0], [0.0, 10.0]]))
+    high = Container(np.array([[0.0, 0.0], [20.0, 0.0], [20.0, 20.0], [0.0, 20.0]]))
+    shapes = [Shape(SQUARE, count=5), Shape(ELBOW, turns_deg=QUARTERS)]
+    start = [*(Place(0, 0, 0.0, False, 10.0 * i, 0.0) for i in range(4))]
+    start += [Place(0, 2, 0.0, False, 0.0, 0.0), Place(1, 1, 0.0, False, 0.0, 0.0)]
+    task = sheets_task(shapes, [low, high, low], start)
+    assert task.area_mm2 == 500.0 + 174.0
+    bounds = Bounds.of(engine_of(task), task.area_mm2)
+    assert bounds.narrowest_mm == pytest.approx(10.0)
+    assert bounds.least_mm(1) == float("inf")
+    assert bounds.least_mm(2) == pytest.approx(15.0)
+    assert bounds.least_mm(3) <= 0.0
