@@ -131,6 +131,8 @@ def _single_arc(curve: Smooth, tol_mm: float) -> Floats | None:
 
 def _circle_through(xy: Floats) -> tuple[float, float, float] | None:
     """Circle of least algebraic distance (Kåsa 1976) through points (n, 2)."""
+    if not np.isfinite(xy).all():  # of which LAPACK would complain on stdout
+        return None
     middle = xy.mean(axis=0)
     p = xy - middle
     system = np.column_stack([2.0 * p, np.ones(len(p))])

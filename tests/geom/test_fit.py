@@ -81,3 +81,10 @@ def test_kink_at_a_full_knot_is_kept():
 def test_senseless_splines_are_refused(degree, knots, weights):
     with pytest.raises(ValueError, match=r"knots|weight|spline"):
         nurbs(degree, knots, np.zeros((4, 2)), weights)
+
+
+def test_points_that_are_no_numbers_are_passed_on_without_a_word(capfd):
+    """LAPACK complains of them on stdout, where a document may be written."""
+    curve = ellipse(np.zeros(2), np.array([np.nan, 5.0]), np.array([-5.0, 1.0]), 0.0, pi)
+    assert not np.isfinite(fit_arcs(curve, 0.001)).all()
+    assert capfd.readouterr().out == ""
