@@ -24,7 +24,7 @@ from flatprep.nest.verify import LayoutFault, verify
 USUAL, QUIET = Budget(), Silent()
 FIRST_SHARE = 0.2
 """Share of the time that constructive layouts may take after the first one."""
-REFILL_SHARE = 0.5
+REFILL_SHARE = 0.6
 """Share of a group's budget for filling sheets anew, where there are several with few pieces each."""
 SEARCH_SHARE = 0.95
 """Share of what is then left for the search, where cheaper sheets are looked at after it."""
