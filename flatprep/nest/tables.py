@@ -44,7 +44,7 @@ class Tables(NamedTuple):
     pair : ndarray, shape (t, 2), int64
         Variants a and b that stand for the grid.
     node : ndarray, shape (t, n, n, 2), float32
-        Separation (mm; 0: not yet known) and loss (mm²) of node (x, y).
+        Separation (mm) and loss (mm²) of node (x, y); 0: not yet known.
     """
 
     of: npt.NDArray[np.int32]
@@ -109,31 +109,35 @@ def _boxes_unturned(outlines: Outlines, a: Ints, b: Ints) -> Floats:
 
 
 @bare
-def fill_node(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> None:
-    """Compute one node of a grid."""
-    a, b = tables.pair[t, 0], tables.pair[t, 1]
+def node_offset(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> tuple[float, float]:
+    """Return the offset (mm) of the grid's second variant from its first at a node."""
+    a = tables.pair[t, 0]
     x = tables.origin[t, 0] + i * tables.cell[t, 0]
     y = tables.origin[t, 1] + j * tables.cell[t, 1]
     c, s = outlines.turn[a, 0], outlines.turn[a, 1]
-    dx, dy = c * x - s * y, s * x + c * y
+    return c * x - s * y, s * x + c * y
+
+
+@bare
+def fill_separation(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> None:
+    """Compute the separation at a node."""
+    a, b = tables.pair[t, 0], tables.pair[t, 1]
+    dx, dy = node_offset(outlines, tables, t, i, j)
     apart = gap(outlines.rings, a, b, dx, dy, math.hypot(tables.cell[t, 0], tables.cell[t, 1]))
     if overlap(outlines.rings, a, b, dx, dy):
         apart = -max(apart, depth(outlines, a, b, dx, dy))
-    tables.node[t, i, j, 1] = collision_loss(outlines, a, b, dx, dy)
     tables.node[t, i, j, 0] = apart if abs(apart) > LEAST_APART else LEAST_APART
 
 
-@inner
-def fill_cell(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> None:
-    """Compute those of the four nodes of a cell that are not yet known."""
-    if tables.node[t, i, j, 0] == 0.0:
-        fill_node(outlines, tables, t, i, j)
-    if tables.node[t, i + 1, j, 0] == 0.0:
-        fill_node(outlines, tables, t, i + 1, j)
-    if tables.node[t, i, j + 1, 0] == 0.0:
-        fill_node(outlines, tables, t, i, j + 1)
-    if tables.node[t, i + 1, j + 1, 0] == 0.0:
-        fill_node(outlines, tables, t, i + 1, j + 1)
+@bare
+def fill_losses(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> None:
+    """Compute those losses at the four nodes of a cell that are not yet known."""
+    a, b = tables.pair[t, 0], tables.pair[t, 1]
+    for k in range(i, i + 2):
+        for m in range(j, j + 2):
+            if tables.node[t, k, m, 1] == 0.0:
+                dx, dy = node_offset(outlines, tables, t, k, m)
+                tables.node[t, k, m, 1] = collision_loss(outlines, a, b, dx, dy)
 
 
 @inner
@@ -154,7 +158,7 @@ def pair_loss(outlines: Outlines, tables: Tables, a: int, b: int, dx: float, dy:
         return 0.0
     i, j = int(u + 0.5), int(w + 0.5)
     if tables.node[t, i, j, 0] == 0.0:
-        fill_node(outlines, tables, t, i, j)
+        fill_separation(outlines, tables, t, i, j)
     apart = float(tables.node[t, i, j, 0])
     off = math.sqrt((u - i) * (u - i) * wide * wide + (w - j) * (w - j) * tall * tall) + ROUNDING * wide
     if apart > off:
@@ -163,7 +167,9 @@ def pair_loss(outlines: Outlines, tables: Tables, a: int, b: int, dx: float, dy:
         return 0.0
     i, j = int(u), int(w)
     u, w = u - i, w - j
-    fill_cell(outlines, tables, t, i, j)
+    known = tables.node[t, i, j, 1] > 0.0 and tables.node[t, i + 1, j, 1] > 0.0
+    if not (known and tables.node[t, i, j + 1, 1] > 0.0 and tables.node[t, i + 1, j + 1, 1] > 0.0):
+        fill_losses(outlines, tables, t, i, j)
     near = tables.node[t, i, j, 1] * (1.0 - w) + tables.node[t, i, j + 1, 1] * w
     far = tables.node[t, i + 1, j, 1] * (1.0 - w) + tables.node[t, i + 1, j + 1, 1] * w
     return float(near * (1.0 - u) + far * u)
