@@ -12,6 +12,7 @@ from flatprep.base.workers import Caps, Lost, Pool
 from flatprep.drawing.read import ReadOptions, read
 from flatprep.job.context import JobOptions
 from flatprep.job.values import Job, JobPart
+from flatprep.measure.part import measured_parts
 from flatprep.model.drawing import Role
 from flatprep.model.linted import Linted, LintReport, Unreadable
 from flatprep.profile.gauges import parse_thickness_mm
@@ -20,6 +21,7 @@ from flatprep.profile.material_load import load_material
 from flatprep.profile.process import Process
 from flatprep.profile.process_load import load_process
 from flatprep.rules import run
+from flatprep.rules.across import near_misses
 from flatprep.rules.base import Context
 
 _SECONDS = 6.0
@@ -38,6 +40,7 @@ class LintTask:
     material: Material | None = None
     thickness_mm: float | None = None
     job_part: JobPart | None = None
+    measured_thickness_mm: float | None = None
 
     @property
     def tol(self) -> Tolerances:
@@ -75,10 +78,32 @@ def lint_job(job: Job, *, jobs: int = 1, progress: Progress | None = None) -> Li
             part.material,
             part.thickness_mm,
             part,
+            _calliper(job, part),
         )
         for part in job.parts
     ]
-    return replace(lint_tasks(tasks, jobs=jobs, progress=progress), notes=_unknown(tasks))
+    report = lint_tasks(tasks, jobs=jobs, progress=progress)
+    return replace(report, linted=_with_near_misses(report.linted), notes=_unknown(tasks))
+
+
+def _calliper(job: Job, part: JobPart) -> float | None:
+    """Return what the sheets for a part measure, where the stock says one thickness."""
+    measured = {
+        stock.measured_thickness_mm
+        for stock in job.stock
+        if stock.material == part.material and stock.thickness_mm == part.thickness_mm
+    }
+    return measured.pop() if len(measured) == 1 else None
+
+
+def _with_near_misses(linted: Sequence[Linted]) -> tuple[Linted, ...]:
+    """Add the findings between parts, each to the drawing of the part it names."""
+    parts = [part for one in linted for part in measured_parts(one.drawing.parts, DEFAULT)]
+    found = near_misses(parts)
+    return tuple(
+        replace(one, findings=(*one.findings, *(f for f in found if f.part in {p.name for p in one.drawing.parts})))
+        for one in linted
+    )
 
 
 def lint_tasks(tasks: Sequence[LintTask], *, jobs: int = 1, progress: Progress | None = None) -> LintReport:
@@ -106,7 +131,9 @@ def lint_one(task: LintTask) -> Linted | Unreadable:
         drawing = read(task.path, ReadOptions(task.units, task.roles, task.tol), name=name)
     except DrawingError as err:
         return Unreadable(file, err.message, err.remedy)
-    context = Context(drawing, task.process, task.material, task.thickness_mm, task.job_part, task.tol)
+    context = Context(
+        drawing, task.process, task.material, task.thickness_mm, task.job_part, task.tol, task.measured_thickness_mm
+    )
     return Linted(
         file,
         drawing,
