@@ -8,9 +8,10 @@ from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
     from flatprep.api.lint import lint_job, lint_paths
-    from flatprep.api.nest import Nested, nest_job, write_layout
+    from flatprep.api.nest import Nested, nest_job
     from flatprep.api.pieces import ReadJob, read_job
     from flatprep.api.prepare import Prepared, prepare_job, write_prepared
+    from flatprep.api.sheets import write_layout
     from flatprep.api.stored import stored_layout
     from flatprep.api.work import checklist_job, estimate_job
     from flatprep.job.load import JobOptions, load_job
@@ -33,7 +34,7 @@ _HOME = {
     "prepare_job": "flatprep.api.prepare",
     "read_job": "flatprep.api.pieces",
     "stored_layout": "flatprep.api.stored",
-    "write_layout": "flatprep.api.nest",
+    "write_layout": "flatprep.api.sheets",
     "write_prepared": "flatprep.api.prepare",
 }
 

@@ -7,8 +7,9 @@ from dataclasses import dataclass, replace
 from pathlib import Path
 
 from flatprep import __version__
-from flatprep.api.nest import Nested, OnBetter, Stop, layout_files, make_layout_folders, nest_job, never
+from flatprep.api.nest import Nested, OnBetter, Stop, nest_job, never
 from flatprep.api.pieces import Piece, ReadJob, quantity
+from flatprep.api.sheets import layout_files, make_layout_folders
 from flatprep.api.work import checklist_job, estimate_job
 from flatprep.base.files import make_folder, write_together
 from flatprep.base.progress import Progress

@@ -6,7 +6,9 @@ from pathlib import Path
 
 import click
 
-from flatprep.api.nest import Nested, nest_job, write_layout
+from flatprep.api.nest import Nested, nest_job
+from flatprep.api.sheets import write_layout
+from flatprep.api.stored import stored_layout
 from flatprep.base.errors import ExitStatus
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
@@ -24,6 +26,7 @@ from flatprep.report.layout_text import layout_text
 @click.command("nest")
 @job_argument
 @click.option("--out", "folder", required=True, type=click.Path(path_type=Path), help="folder for layout and sheets")
+@click.option("--keep", type=click.Path(path_type=Path), metavar="LAYOUT.json", help="placements that stay as they are")
 @said_about_parts
 @search_budget
 @other_forms
@@ -34,6 +37,7 @@ def command(
     /,
     job_file: Path,
     folder: Path,
+    keep: Path | None,
     budget: Budget,
     form: str,
     said: JobOptions,
@@ -45,10 +49,11 @@ def command(
     one, it leaves the folder as it was.
     """
     job = load_job(job_file, said)
+    kept = stored_layout(keep) if keep else None
     with claimed(folder), progress_line() as progress:
         read = read_drawings(job, budget.jobs, progress)
         with stoppable() as stop:
-            nested = nest_job(read, budget, progress=progress, on_better=stop.keep, stop=stop)
+            nested = nest_job(read, budget, progress=progress, on_better=stop.keep, stop=stop, keep=kept)
             for warning in nested.warnings:
                 warn(warning)
             write_layout(replace(nested, also=also), folder)

@@ -35,6 +35,9 @@ quantity = 4
 """
 
 
+SHEET_1 = ["sheet-01-rest.dxf", "sheet-01.dxf", "sheet-01.svg"]
+
+
 def leaf(msp):
     box(msp, 0, 0, 80, 50)
     msp.add_circle((20, 25), 5)
@@ -97,7 +100,42 @@ def test_other_forms_of_a_sheet(job, tmp_path):
     (inside,) = drawn["-kerf"]
     assert 5.0 - 0.15 <= inside <= 5.0 - 0.1
     run("nest", job, "--out", tmp_path / "out", "--steps", "5")
-    assert sorted(p.name for p in (tmp_path / "out").glob("sheet-*")) == ["sheet-01.dxf", "sheet-01.svg"]
+    assert sorted(p.name for p in (tmp_path / "out").glob("sheet-*")) == SHEET_1
+
+
+def test_what_is_kept_stays_and_the_rest_is_laid_around_it(job, tmp_path):
+    job.write_text(JOB.replace("quantity = 4", "quantity = 2"))
+    run("nest", job, "--out", tmp_path / "cut", "--steps", "5")
+    before = json.loads((tmp_path / "cut" / "layout.json").read_text())["sheets"][0]["placements"]
+    job.write_text(JOB)
+    got = run("nest", job, "--out", tmp_path / "out", "--steps", "5", "--keep", tmp_path / "cut" / "layout.json")
+    assert got.exit_code == 0, got.output
+    after = json.loads((tmp_path / "out" / "layout.json").read_text())["sheets"][0]["placements"]
+    where = [{k: p[k] for k in ("turn_deg", "mirrored", "dx", "dy")} for p in after]
+    assert len(after) == 4
+    assert all({k: p[k] for k in ("turn_deg", "mirrored", "dx", "dy")} in where for p in before)
+
+
+def test_kept_by_hand_onto_each_other_is_named(job, tmp_path):
+    run("nest", job, "--out", tmp_path / "out", "--steps", "5")
+    path = tmp_path / "out" / "layout.json"
+    layout = json.loads(path.read_text())
+    for placement in layout["sheets"][0]["placements"]:
+        placement.update(turn_deg=0.0, dx=20.0, dy=20.0)
+    path.write_text(json.dumps(layout))
+    got = run("nest", job, "--out", tmp_path / "again", "--steps", "5", "--keep", path)
+    assert got.exit_code == 2
+    assert "leaf" in got.stderr
+
+
+def test_what_is_left_of_a_sheet_can_be_stock_next_time(job, tmp_path):
+    run("nest", job, "--out", tmp_path / "out", "--steps", "5")
+    rest = tmp_path / "out" / "sheet-01-rest.dxf"
+    assert ezdxf.readfile(rest).audit().errors == []
+    stock = JOB.replace("length = 300\nwidth = 200\n", f'outline = "{rest.relative_to(tmp_path)}"\n')
+    job.write_text(stock.replace("quantity = 4", "quantity = 2"))
+    got = run("nest", job, "--out", tmp_path / "next", "--steps", "5")
+    assert got.exit_code == 0, got.output
 
 
 def test_fillers_without_a_place_are_said_and_not_missed(job, tmp_path):
@@ -115,7 +153,7 @@ def test_sheets_of_an_earlier_run_do_not_stay(job, tmp_path):
     assert (tmp_path / "out" / "sheet-02.dxf").exists()
     job.write_text(JOB)
     run("nest", job, "--out", tmp_path / "out", "--steps", "5")
-    assert sorted(p.name for p in (tmp_path / "out").glob("sheet-*")) == ["sheet-01.dxf", "sheet-01.svg"]
+    assert sorted(p.name for p in (tmp_path / "out").glob("sheet-*")) == SHEET_1
 
 
 def test_spacing_below_the_kerf_is_warned_of_and_kept(job, tmp_path):

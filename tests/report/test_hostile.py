@@ -41,6 +41,8 @@ def test_the_cutter_gets_only_the_parts(hostile):
     for path in files(hostile, ".dxf"):
         doc = ezdxf.readfile(path)
         assert doc.audit().errors == []
+        if path.stem.endswith("-rest"):  # what is left of a sheet, for the next job
+            continue
         assert {e.dxf.layer for e in doc.modelspace()} <= LAYERS
         cut.update((e.dxftype(), getattr(e.dxf, "radius", None)) for e in doc.modelspace().query('*[layer=="CUT"]'))
         assert {e.dxftype() for e in doc.modelspace().query('*[layer=="NOTE"]')} == {"TEXT"}
