@@ -7,13 +7,15 @@ import signal
 import threading
 import time
 from collections.abc import Callable, Iterator, Sequence
-from contextlib import suppress
+from contextlib import contextmanager, suppress
 from dataclasses import dataclass
 from multiprocessing.connection import Connection, wait
 from typing import Any, Generic, TypeVar
 
 _OBJECTS = 200_000
 """A worker looks for cycles after an item that has left more new objects than this."""
+_ASKS = (signal.SIGINT, signal.SIGTERM)
+_CAN_WAIT = hasattr(signal, "pthread_sigmask")
 Item = TypeVar("Item")
 Result = TypeVar("Result")
 
@@ -110,7 +112,8 @@ class Pool(Generic[Item, Result]):
     def _start(self) -> _Worker:
         mine, theirs = self._context.Pipe()
         process = self._context.Process(target=_serve, args=(theirs, self._work, self._caps.megabytes), daemon=True)
-        process.start()
+        with _undisturbed():
+            process.start()
         theirs.close()
         return _Worker(process, mine)
 
@@ -125,6 +128,19 @@ class Pool(Generic[Item, Result]):
         worker.process.join()
 
 
+@contextmanager
+def _undisturbed() -> Iterator[None]:
+    """Let interruptions wait: what Python itself runs around a fork swallows the exception that they raise."""
+    if not _CAN_WAIT:
+        yield
+        return
+    before = signal.pthread_sigmask(signal.SIG_BLOCK, _ASKS)
+    try:
+        yield
+    finally:
+        signal.pthread_sigmask(signal.SIG_SETMASK, before)
+
+
 def become_worker() -> None:
     """Leave interruptions to the parent of this process, and end when it ends, however it does.
 
@@ -132,6 +148,8 @@ def become_worker() -> None:
     """
     signal.signal(signal.SIGINT, signal.SIG_IGN)
     signal.signal(signal.SIGTERM, signal.SIG_DFL)
+    if _CAN_WAIT:
+        signal.pthread_sigmask(signal.SIG_UNBLOCK, _ASKS)
     parent = multiprocessing.parent_process()
     if parent is not None:
         threading.Thread(target=_end_after, args=(parent.sentinel,), daemon=True).start()

@@ -1,6 +1,7 @@
 """Workers that hang, die or eat memory cost one item."""
 
 import os
+import signal
 import subprocess
 import sys
 import time
@@ -60,3 +61,26 @@ def test_workers_end_when_their_parent_is_killed():
         began = time.monotonic()
         parent.stdout.read()
     assert time.monotonic() - began < 20
+
+
+@pytest.mark.skipif(not hasattr(signal, "pthread_sigmask"), reason="signals of POSIX")
+def test_an_interruption_while_a_worker_is_started_is_not_lost():
+    """It waits until the fork is over: what Python runs around it swallows exceptions."""
+    seen = []
+
+    def told(number, _frame):
+        seen.append(number)
+
+    def interrupted():
+        os.kill(os.getpid(), signal.SIGTERM)
+        seen.append("fork")
+
+    os.register_at_fork(before=lambda: armed and armed.pop()())
+    armed = [interrupted]
+    before = signal.signal(signal.SIGTERM, told)
+    try:
+        assert list(Pool(work, Caps(lambda item: 20.0), 1).run([1])) == [("done", 1)]
+    finally:
+        signal.signal(signal.SIGTERM, before)
+    assert armed == []
+    assert seen == ["fork", signal.SIGTERM]
