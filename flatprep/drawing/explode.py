@@ -1,8 +1,7 @@
 """Model space with its blocks taken apart, within caps: every entity once, with the layer and handle it answers to."""
 
 from collections.abc import Iterable, Iterator
-from dataclasses import dataclass
-from typing import Any
+from typing import Any, NamedTuple
 
 from ezdxf.document import Drawing as DxfDocument
 from ezdxf.entities.dxfentity import DXFEntity
@@ -13,8 +12,7 @@ from flatprep.drawing.limits import ReadLimits
 Dxf = Any
 
 
-@dataclass(frozen=True, slots=True)
-class Loose:
+class Loose(NamedTuple):
     """An entity of model space, or of a block inserted there.
 
     `layer`, `handle` and `color` are those it answers to: content on layer 0 of a block takes the layer of the
@@ -44,12 +42,14 @@ def explode(document: DxfDocument, limits: ReadLimits) -> Iterator[Loose]:
         )
     layers = _Layers(document)
     for entity in document.modelspace():
-        handle = entity.dxf.handle or ""
-        yield from _open(entity, layers, _Above("0", handle, 7, "CONTINUOUS", depth=0), limits)
+        above = _Above("0", entity.dxf.handle or "", 7, "CONTINUOUS", depth=0)
+        if entity.dxftype() == "INSERT":
+            yield from _open(entity, layers, above, limits)
+        else:
+            yield _loose(entity, layers, above)
 
 
-@dataclass(frozen=True, slots=True)
-class _Above:
+class _Above(NamedTuple):
     layer: str
     handle: str
     color: int
@@ -72,29 +72,29 @@ class _Layers:
         return self._of.get(name.lower(), (7, "CONTINUOUS"))[1]
 
 
-def _open(entity: Dxf, layers: _Layers, above: _Above, limits: ReadLimits) -> Iterator[Loose]:
+def _loose(entity: Dxf, layers: _Layers, above: _Above) -> Loose:
+    """Return an entity with what it takes from its layer and from the insertion it stands in."""
     dxf = entity.dxf
     own = dxf.get("layer", "0")
     layer = above.layer if above.depth and own == "0" else own
     color = dxf.get("color", 256)
     color = layers.color(layer) if color == 256 else above.color if color == 0 else color
     linetype = dxf.get("linetype", "BYLAYER").upper()
-    linetype = (
-        layers.linetype(layer).upper()
-        if linetype == "BYLAYER"
-        else above.linetype
-        if linetype == "BYBLOCK"
-        else linetype
-    )
-    if entity.dxftype() != "INSERT":
-        yield Loose(entity, layer, above.handle, color, linetype)
+    if linetype == "BYLAYER":
+        linetype = layers.linetype(layer).upper()
+    elif linetype == "BYBLOCK":
+        linetype = above.linetype
+    return Loose(entity, layer, above.handle, color, linetype)
+
+
+def _open(entity: Dxf, layers: _Layers, above: _Above, limits: ReadLimits) -> Iterator[Loose]:
+    whole = _loose(entity, layers, above)
+    if entity.dxftype() != "INSERT" or block_fault(entity):
+        yield whole
         return
-    if block_fault(entity):
-        yield Loose(entity, layer, above.handle, color, linetype)
-        return
-    below = _Above(layer, above.handle, color, linetype, above.depth + 1)
+    below = _Above(whole.layer, above.handle, whole.color, whole.linetype, above.depth + 1)
     for attribute in entity.attribs:
-        yield Loose(attribute, layer, above.handle, color, linetype)
+        yield whole._replace(entity=attribute)
     for single in _singles(entity):
         for child in single.virtual_entities():
             yield from _open(child, layers, below, limits)

@@ -33,8 +33,7 @@ def with_leaders(texts: Sequence[Text], document: DxfDocument, mm_per_unit: floa
 
 def _leaders(document: DxfDocument, mm_per_unit: float) -> Iterator[tuple[Point, Point, str]]:
     """Yield tip, tail and the handle of the text of each plain leader."""
-    for leader in document.modelspace().query("LEADER"):
-        entity: Any = leader
+    for entity in _of_type(document, "LEADER"):
         try:
             line = [_point(v, mm_per_unit) for v in entity.vertices]
             if len(line) >= 2:
@@ -53,8 +52,7 @@ def _owner(texts: Sequence[Text], tail: Point, handle: str) -> int | None:
 
 def _carried(document: DxfDocument, mm_per_unit: float) -> Iterator[Text]:
     """Yield the texts of leaders that hold their own."""
-    for leader in document.modelspace().query("MULTILEADER MLEADER"):
-        entity: Any = leader
+    for entity in _of_type(document, "MULTILEADER", "MLEADER"):
         try:
             content = entity.context.mtext
             words = str(plain_mtext(content.default_content)).strip() if content else ""
@@ -67,6 +65,10 @@ def _carried(document: DxfDocument, mm_per_unit: float) -> Iterator[Text]:
             yield Text(words[:500], at, entity.dxf.layer, entity.dxf.handle or "", height, tuple(tips))
         except _DAMAGED:
             continue
+
+
+def _of_type(document: DxfDocument, *kinds: str) -> list[Any]:
+    return [entity for entity in document.modelspace() if entity.dxftype() in kinds]
 
 
 def _point(vertex: Any, mm_per_unit: float) -> Point:

@@ -40,11 +40,9 @@ def told_doubles(doubles: Sequence[tuple[tuple[float, float], str]]) -> list[Fau
 
 
 def _without_zero_lengths(curves: Sequence[Curve]) -> tuple[list[Curve], list[Fault]]:
-    kept: list[Curve] = []
-    empty: list[Curve] = []
-    for curve in curves:
-        spread = float(np.ptp(curve.xyb[:, :2], axis=0).max()) if len(curve.xyb) else 0.0
-        (kept if spread > NO_LENGTH_MM else empty).append(curve)
+    sized = _spreads([c.xyb for c in curves]) > NO_LENGTH_MM
+    kept = [c for c, has_length in zip(curves, sized, strict=True) if has_length]
+    empty = [c for c, has_length in zip(curves, sized, strict=True) if not has_length]
     if not empty:
         return kept, []
     first = empty[0]
@@ -54,19 +52,31 @@ def _without_zero_lengths(curves: Sequence[Curve]) -> tuple[list[Curve], list[Fa
     return kept, [Fault("tiny-segment", at, 0.0, tuple(c.handle for c in empty[:_MANY]), what, places)]
 
 
+def _spreads(polylines: Sequence[Floats]) -> Floats:
+    """Larger side of the box of each polyline's vertices, shape (n,)."""
+    if not polylines:
+        return np.empty(0)
+    first = np.cumsum([0, *(len(p) for p in polylines[:-1])])
+    xy = np.concatenate(polylines)[:, :2]
+    return np.asarray((np.maximum.reduceat(xy, first) - np.minimum.reduceat(xy, first)).max(axis=1))
+
+
 def _without_doubles(curves: Sequence[Curve], tol: float) -> tuple[list[Curve], list[Curve]]:
     """Split off open curves whose ends and middle coincide with an earlier one's, whichever way they run."""
     kept: list[Curve] = []
     doubles: list[Curve] = []
-    signs = iter(_signatures([c.xyb for c in curves if not c.closed]))
+    signs = _signatures([c.xyb for c in curves if not c.closed])
+    # two grids, half a cell apart: neighbours share a cell of the one or the other in every coordinate but few
+    cells = [np.floor(signs / (64 * tol) + grid / 2.0) for grid in (0, 1)]
+    number = -1
     seen: dict[bytes, list[Floats]] = {}
     for curve in curves:
         if curve.closed:
             kept.append(curve)
             continue
-        sign = next(signs)
-        # two grids, half a cell apart: neighbours share a cell of the one or the other in every coordinate but few
-        keys = [bytes([grid]) + np.floor(sign / (64 * tol) + grid / 2.0).tobytes() for grid in (0, 1)]
+        number += 1
+        sign = signs[number]
+        keys = [bytes([grid]) + rows[number].tobytes() for grid, rows in enumerate(cells)]
         if any(np.abs(other - sign).max() <= tol for key in keys for other in seen.get(key, ())):
             doubles.append(curve)
             continue
@@ -82,7 +92,7 @@ def _signatures(polylines: Sequence[Floats]) -> Floats:
     if not polylines:
         return out
     single = np.array([len(p) == 2 for p in polylines])
-    pairs = np.array([p for p in polylines if len(p) == 2]).reshape(-1, 2, 3)
+    pairs = np.concatenate([np.empty((0, 3)), *(p for p in polylines if len(p) == 2)]).reshape(-1, 2, 3)
     a, z = pairs[:, 0, :2], pairs[:, 1, :2]
     # the top of an arc lies right of its chord by bulge x half the chord
     right = np.column_stack([z[:, 1] - a[:, 1], a[:, 0] - z[:, 0]])

@@ -196,6 +196,8 @@ def moments(xyb: Floats) -> Moments:
     exact for lines (degree 4), and for arcs of a half circle at the most exact to rounding (the integrands are
     trigonometric polynomials of degree 4). Taken about the first vertex, then shifted.
     """
+    if len(xyb) == 2 and abs(xyb[0, 2]) == abs(xyb[1, 2]) == 1.0:
+        return _circle_moments(xyb)
     origin = xyb[0, :2]
     local = xyb - np.array([origin[0], origin[1], 0.0])
     x, y, dy = _nodes_along(local)
@@ -216,6 +218,15 @@ def moments(xyb: Floats) -> Moments:
         yy + 2 * oy * sy + oy * oy * area,
         xy + ox * sy + oy * sx + ox * oy * area,
     )
+
+
+def _circle_moments(xyb: Floats) -> Moments:
+    """Moments of a full circle: π r², with π r⁴ / 4 about its own axes."""
+    (x0, y0, _), (x1, y1, _) = xyb.tolist()
+    x, y, squared = (x0 + x1) / 2.0, (y0 + y1) / 2.0, ((x1 - x0) ** 2 + (y1 - y0) ** 2) / 4.0
+    area = pi * squared
+    own = area * squared / 4.0
+    return Moments(area, area * x, area * y, own + area * x * x, own + area * y * y, area * x * y)
 
 
 def _nodes_along(xyb: Floats) -> tuple[Floats, Floats, Floats]:
