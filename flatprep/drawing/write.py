@@ -7,6 +7,7 @@ layout gives the same bytes: no times and no random ids are written.
 
 import io
 from collections.abc import Iterable, Mapping, Sequence
+from functools import lru_cache
 from math import hypot
 
 import numpy as np
@@ -235,8 +236,14 @@ def _polyline(doc: Document, layer: str, xyb: Floats, *, closed: bool) -> None:
     draw(points, format="xyb", close=closed, dxfattribs={"layer": layer})
 
 
+@lru_cache(maxsize=1024)
+def _middle(part: Part) -> tuple[float, float]:
+    """Point of a part that takes its label, found once for all pieces of it."""
+    return inner_point(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1)
+
+
 def _label(doc: Document, part: Part, motion: Similarity, words: str) -> None:
-    at = motion.points(np.array([inner_point(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1)]))[0]
+    at = motion.points(np.array([_middle(part)]))[0]
     height = min(MOST_TEXT_MM, max(LEAST_TEXT_MM, TEXT_SHARE * min(part.size_mm)))
     _text(doc, words, (float(at[0]), float(at[1])), height, middle=True)
 

@@ -8,6 +8,7 @@ the pair are made finer, down to the last of `CHORDS_MM`.
 from collections import Counter, defaultdict
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
+from functools import lru_cache
 from math import isfinite
 
 import numpy as np
@@ -17,6 +18,7 @@ from shapely.geometry import Polygon
 from shapely.geometry.base import BaseGeometry
 
 from flatprep.geom import bulge
+from flatprep.geom.bulge import Floats
 from flatprep.geom.outward import outside_points
 from flatprep.model.drawing import Part
 from flatprep.model.layout import Layout, Placement, SheetLayout
@@ -195,10 +197,15 @@ class _Laid:
 
 def body(part: Part, placement: Placement, chord_mm: float) -> Polygon:
     """Polygon that holds the placed part's material wholly and no more than `chord_mm` beside it."""
-    rings = [outside_points(c.xyb, chord_mm) for c in part.contours]
-    moved = [placement.motion.points(ring) for ring in rings]
+    moved = [placement.motion.points(ring) for ring in _rings(part, chord_mm)]
     shape = Polygon(moved[0], moved[1:])
     return shape if shape.is_valid else shape.buffer(0.0)
+
+
+@lru_cache(maxsize=4096)
+def _rings(part: Part, chord_mm: float) -> tuple[Floats, ...]:
+    """Rings of a part where it is drawn: pieces of it are looked at again and again."""
+    return tuple(outside_points(c.xyb, chord_mm) for c in part.contours)
 
 
 def clearance(a: BaseGeometry, b: BaseGeometry) -> float:
