@@ -237,13 +237,13 @@ def _polyline(doc: Document, layer: str, xyb: Floats, *, closed: bool) -> None:
 
 
 @lru_cache(maxsize=1024)
-def _middle(part: Part) -> tuple[float, float]:
+def _label_point(part: Part) -> tuple[float, float]:
     """Point of a part that takes its label, found once for all pieces of it."""
     return inner_point(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1)
 
 
 def _label(doc: Document, part: Part, motion: Similarity, words: str) -> None:
-    at = motion.points(np.array([_middle(part)]))[0]
+    at = motion.points(np.array([_label_point(part)]))[0]
     height = min(MOST_TEXT_MM, max(LEAST_TEXT_MM, TEXT_SHARE * min(part.size_mm)))
     _text(doc, words, (float(at[0]), float(at[1])), height, middle=True)
 
