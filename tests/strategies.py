@@ -38,7 +38,10 @@ def entities(draw: st.DrawFn) -> Made:
             made |= {"radius": draw(NUMBERS), "start": draw(NUMBERS), "end": draw(NUMBERS)}
         case "ellipse":
             axis = (draw(NUMBERS), draw(NUMBERS))
-            made |= {"axis": axis if math.hypot(*axis) > 1e-3 else (1.0, 0.0), "ratio": draw(st.floats(1e-6, 1.0))}
+            made |= {
+                "axis": axis if 1e-3 < math.hypot(*axis) < 1e100 else (1.0, 0.0),
+                "ratio": draw(st.floats(1e-6, 1.0)),
+            }
         case "spline":
             made |= {"points": draw(points(4, 7)), "closed": draw(st.booleans())}
         case "lwpolyline":
