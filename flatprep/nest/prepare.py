@@ -23,7 +23,7 @@ TOLERANCE_SHARE = 1.0 / 25.0
 CURVED_SHARE = 1.0 / 2000.0
 CORNERS = 24
 """Rings of more corners than these are curves, and are simplified by a share of their size."""
-QUARTER = 12
+QUARTER = 16
 """Chords a quarter circle of a grown corner."""
 OFFSET_EXCESS = 1.002
 """Offsets are made this much larger: GEOS takes ends of offset edges nearer than a thousandth of it for one."""
@@ -130,8 +130,11 @@ def usable_region(sheet: StockSheet, inset_mm: float) -> Polygon | MultiPolygon:
 
 
 def _offset(distance_mm: float) -> float:
-    """Return what to offset by so that chords of round corners, too, are `distance_mm` away."""
-    return OFFSET_EXCESS * distance_mm / cos(pi / (4 * QUARTER))
+    """Return what to offset by so that chords of round corners, too, are `distance_mm` away.
+
+    GEOS rounds the number of chords of a corner: one that turns by less than one and a half steps gets a single chord.
+    """
+    return OFFSET_EXCESS * distance_mm / cos(1.5 * pi / (4 * QUARTER))
 
 
 def _rectangle_points(sheet: StockSheet) -> Floats:

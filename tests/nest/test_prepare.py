@@ -104,3 +104,13 @@ def test_remnant_that_the_margin_cuts_in_two_keeps_both_pieces():
 def test_margin_that_leaves_nothing_is_told():
     with pytest.raises(ValueError, match="margin"):
         container_of(sheet(300.0, 200.0), 100.0, 0.0)
+
+
+@pytest.mark.parametrize("corners", range(24, 73, 3))
+def test_a_polygon_of_many_corners_is_grown_by_half_the_spacing(corners):
+    """Also where corners turn by a little more than one chord of the round corners that an offset makes."""
+    angle = np.arange(corners) * 2 * np.pi / corners
+    part = polygon("disc", (np.column_stack([np.cos(angle), np.sin(angle)]) * 2.25).tolist())
+    grown = grow(part, 3.0, windows=True)
+    outside = Polygon(grown.outer + np.array(grown.centre)).exterior
+    assert outside.distance(Polygon(part.outer.xyb[:, :2])) >= 1.5 - 1e-9
