@@ -88,9 +88,9 @@ def _contours_alone(sheet: SheetLayout, parts: Mapping[str, Part], form: SheetFo
 def part_drawing(parts: Part | Sequence[Part], *, notes: Sequence[str] = ()) -> str:
     """DXF text of parts at their own coordinates, mm, with `notes` written under them."""
     every = [parts] if isinstance(parts, Part) else list(parts)
-    doc = _document((CUT, MARK, NOTE))
+    doc = _document((CUT, MARK, BEND, NOTE))
     for part in every:
-        _part(doc, part, Similarity())
+        _part(doc, part, Similarity(), bends=BEND)
     if notes and every:
         left, low = (min(p.outer.bounds[k] for p in every) for k in (0, 1))
         height = min(MOST_TEXT_MM, max(LEAST_TEXT_MM, TEXT_SHARE * min(min(p.size_mm) for p in every)))
@@ -208,13 +208,14 @@ def _document(layers: Iterable[str], version: str = USUAL.version) -> Document:
     return doc
 
 
-def _part(doc: Document, part: Part, motion: Similarity) -> None:
+def _part(doc: Document, part: Part, motion: Similarity, bends: str = NOTE) -> None:
+    """Draw a part; on a sheet its bend lines are notes, for a cutter knows no layer for them."""
     for contour in (*part.holes, part.outer):
         _contour(doc, contour, motion)
     for curve in part.marks:
         _curve(doc, MARK, curve, motion)
     for curve in part.bends:
-        _curve(doc, NOTE, curve, motion)
+        _curve(doc, bends, curve, motion)
 
 
 def _contour(doc: Document, contour: Contour, motion: Similarity) -> None:
