@@ -4,7 +4,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 
-from flatprep.api.find import Found, Missing, find_drawings
+from flatprep.api.find import Found, find_drawings
 from flatprep.base.errors import DrawingError, FlatprepError
 from flatprep.base.progress import Progress, Silent
 from flatprep.base.tolerances import DEFAULT, Tolerances
@@ -181,6 +181,3 @@ def _patience(task: LintTask) -> float:
 
 def _lost(task: LintTask, answer: Lost) -> Unreadable:
     return Unreadable(str(task.path), f"{task.path}: given up, {answer.why}", "export a plainer drawing of the part")
-
-
-__all__ = ["LintTask", "Missing", "lint_job", "lint_one", "lint_paths", "lint_tasks"]
