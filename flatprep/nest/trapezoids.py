@@ -83,7 +83,6 @@ def _starts(groups: Sequence[Floats]) -> Ints:
     return np.concatenate([[0], np.cumsum([len(g) for g in groups])]).astype(np.int64)
 
 
-@kernel
 def trapezoids(edge: Floats) -> Floats:
     """Cut the region within edges that run upwards (even-odd) into trapezoids with level sides.
 
@@ -98,16 +97,23 @@ def trapezoids(edge: Floats) -> Floats:
         y from, y to, left x at both, right x at both; by rising y from. A pair of edges that runs on past corners of
         others is one trapezoid.
     """
-    levels = np.sort(np.concatenate((edge[:, 1], edge[:, 3])))
+    done = _swept(edge, np.sort(edge[:, 1::2], axis=None))
+    return done[np.argsort(done[:, 0], kind="stable")]
+
+
+@kernel
+def _swept(edge: Floats, levels: Floats) -> Floats:
+    """Trapezoids in the order in which a level line that moves up leaves them; plain loops, which compile fast."""
     out, count = np.empty((4 * len(edge) + 4, 6)), 0
     open_pairs, begun, still = np.empty((len(edge), 2), dtype=np.int64), np.empty(len(edge)), 0
+    since = np.empty(len(edge))
     for k in range(len(levels)):
         if k + 1 < len(levels) and levels[k + 1] - levels[k] <= THIN_MM:
             continue
         pairs = np.empty((0, 2), dtype=np.int64)
         if k + 1 < len(levels):
             pairs = _pairs_at(edge, 0.5 * (levels[k] + levels[k + 1]))
-        since = np.full(len(pairs), levels[k])
+        since[: len(pairs)] = levels[k]
         for j in range(still):
             goes_on = False
             for i in range(len(pairs)):
@@ -115,13 +121,23 @@ def trapezoids(edge: Floats) -> Floats:
                     since[i], goes_on = begun[j], True
             if not goes_on:
                 if count == len(out):
-                    out = np.concatenate((out, np.empty_like(out)))
+                    out = _doubled(out)
                 _between(edge, open_pairs[j], begun[j], levels[k], out[count])
                 count += 1
         still = len(pairs)
-        open_pairs[:still], begun[:still] = pairs, since
-    done = out[:count]
-    return done[np.argsort(done[:, 0])]
+        for i in range(still):
+            open_pairs[i, 0], open_pairs[i, 1], begun[i] = pairs[i, 0], pairs[i, 1], since[i]
+    return out[:count]
+
+
+@kernel
+def _doubled(rows: Floats) -> Floats:
+    """Rows with room for as many again."""
+    more = np.empty((2 * len(rows), rows.shape[1]))
+    for r in range(len(rows)):
+        for c in range(rows.shape[1]):
+            more[r, c] = rows[r, c]
+    return more
 
 
 @kernel
@@ -135,11 +151,25 @@ def _pairs_at(edge: Floats, level: float) -> Ints:
             spot[m] = edge[e, 0] + (level - edge[e, 1]) * (edge[e, 2] - edge[e, 0]) / (edge[e, 3] - edge[e, 1])
             who[m] = e
             m += 1
-    ordered = who[:m][np.argsort(spot[:m])]
+    _sort(spot, who, m)
     pairs = np.empty((m // 2, 2), dtype=np.int64)
     for i in range(m // 2):
-        pairs[i, 0], pairs[i, 1] = ordered[2 * i], ordered[2 * i + 1]
+        pairs[i, 0], pairs[i, 1] = who[2 * i], who[2 * i + 1]
     return pairs
+
+
+@kernel
+def _sort(key: Floats, value: Ints, count: int) -> None:
+    """Sort the first keys and their values in place (Shell 1959, gaps halved)."""
+    step = count // 2
+    while step > 0:
+        for i in range(step, count):
+            k, v, j = key[i], value[i], i
+            while j >= step and key[j - step] > k:
+                key[j], value[j] = key[j - step], value[j - step]
+                j -= step
+            key[j], value[j] = k, v
+        step //= 2
 
 
 @kernel
