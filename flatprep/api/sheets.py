@@ -8,6 +8,7 @@ from pathlib import Path
 
 from flatprep.api.nest import Nested
 from flatprep.api.pieces import Piece, quantity
+from flatprep.api.tabs import job_tabs, tabs_drawing
 from flatprep.base.files import make_folder, write_together
 from flatprep.base.safe_names import safe_stems
 from flatprep.drawing.forms import FORMS, Form, with_kerf
@@ -59,14 +60,18 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
             yield folder / copies[piece.name], part_drawing(piece.part)
     parts = {piece.name: piece.part for piece in pieces}
     title = (job.name, f"revision {job.revision}") if job.revision else (job.name,)
+    tabs = job_tabs(nested.read)
     for number, sheet in enumerate(sheets, start=1):
         stem = sheet_name(number)
-        yield folder / f"{stem}.dxf", sheet_drawing(sheet, parts, title=title)
+        yield folder / f"{stem}.dxf", sheet_drawing(sheet, parts, title=title, tabs=tabs)
         for form in nested.also:
             shapes = _with_kerf(pieces) if form is Form.KERF else parts
             yield folder / f"{stem}-{form}.dxf", sheet_drawing(sheet, shapes, title=title, form=FORMS[form])
         rest = offcut_of(sheet, parts, nested.layout.spacing_mm)
-        extras = Extras(job.units, rest.rectangle if rest else None)
+        gaps = tabs_drawing(sheet, nested.read, tabs)
+        if gaps is not None or (folder / f"{stem}-tabs.dxf").exists():
+            yield folder / f"{stem}-tabs.dxf", gaps
+        extras = Extras(job.units, rest.rectangle if rest else None, tabs)
         svg = sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=job.name, extras=extras)
         yield folder / f"{stem}.svg", svg
         if rest is not None:
@@ -88,7 +93,7 @@ def _label(job: Job, sheet: SheetLayout, rest: Offcut) -> tuple[str, ...]:
 
 def _older_sheets(folder: Path, count: int, also: Sequence[Form]) -> Iterator[Path]:
     """Sheets of an earlier run that this layout has no more: they would be cut by mistake."""
-    kept = {"", "-rest", *(f"-{form}" for form in also)}
+    kept = {"", "-rest", "-tabs", *(f"-{form}" for form in also)}
     for path in sorted(folder.glob("sheet-[0-9]*")):
         found = re.fullmatch(r"sheet-(\d+)((?:-[a-z0-9-]+)?)\.(?:dxf|svg)", path.name)
         if found and (int(found[1]) > count or found[2] not in kept):

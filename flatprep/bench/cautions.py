@@ -4,6 +4,7 @@ from collections.abc import Iterable, Sequence
 
 from flatprep.bench.ops import Op
 from flatprep.bench.part import BenchPart
+from flatprep.bench.tabs import tabs_of
 from flatprep.model.work import StepKind
 from flatprep.practice.threads import THERMAL
 from flatprep.profile.hardware.hazards import caution, first_caution
@@ -17,13 +18,21 @@ THIN_MM = 2.0
 
 def step_caution(op: Op, bench: BenchPart, *, first: bool) -> str:
     """Return the caution of a step; `first` is the part's first step."""
-    if op.kind is StepKind.DEBURR and first and bench.process.kind in THERMAL:
-        return caution("deburr", bench.own)
+    if op.kind is StepKind.DEBURR and first:
+        return " ".join(caution(hazard, bench.own) for hazard in _at_edges(bench))
     if op.kind is StepKind.DRILL and bench.thickness_mm is not None and bench.thickness_mm < THIN_MM:
         return caution("drilling_thin_sheet", bench.own)
     if op.kind is StepKind.DRILL:
         return caution("hot_slugs", bench.own) if bench.process.kind in THERMAL else ""
     return caution(_AT_STEP[op.kind], bench.own) if op.kind in _AT_STEP else ""
+
+
+def _at_edges(bench: BenchPart) -> Iterable[str]:
+    """Yield the hazards of dressing the edges of a part as it comes from the cutter."""
+    if bench.process.kind in THERMAL:
+        yield "deburr"
+    if tabs_of(bench):
+        yield "tab_stubs"
 
 
 def job_cautions(parts: Sequence[BenchPart]) -> tuple[str, ...]:

@@ -4,7 +4,7 @@ from dataclasses import dataclass
 from functools import cached_property
 from pathlib import Path
 
-from flatprep.job.values import BendAsk, Job, JobPart, Pilots, Work
+from flatprep.job.values import BendAsk, Job, JobPart, Pilots, Tabs, Work
 from flatprep.measure.holes import Hole, recognise
 from flatprep.model.drawing import Drawing, Part, Text
 from flatprep.profile.material import Material
@@ -34,6 +34,8 @@ class BenchPart:
         The job is in inches: number, letter and fractional drills are named.
     own : tuple of Path
         Folders of the user's own profiles, whose hardware tables and rules go first.
+    tabs : Tabs
+        Whether the job asks for holding tabs.
     where : str
         Place in the job file, for messages; parts of one drawing share it.
     """
@@ -55,6 +57,7 @@ class BenchPart:
     units: str = "mm"
     inch: bool = False
     own: tuple[Path, ...] = ()
+    tabs: Tabs = Tabs.NONE
 
     @cached_property
     def holes(self) -> tuple[Hole, ...]:
@@ -91,4 +94,5 @@ def bench_part(ask: JobPart, part: Part, job: Job, drawing: Drawing | None = Non
         pilots=job.pilots, quantity_opposite=ask.quantity_opposite * job.sets, finish=ask.finish,
         good_face=ask.good_face, where=ask.where, units=drawing.units if drawing else "mm",
         inch=job.units in ("in", "ft"), own=ask.own,
+        tabs=ask.tabs or Tabs.NONE,
     )  # fmt: skip

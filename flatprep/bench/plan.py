@@ -9,6 +9,7 @@ from flatprep.bench.bends import BendLines, bend_ops, near_bend
 from flatprep.bench.match import Found
 from flatprep.bench.ops import WHY, Ask, Op, Rank, late
 from flatprep.bench.part import BenchPart
+from flatprep.bench.tabs import dressing
 from flatprep.job.values import Point, Work
 from flatprep.model.work import StepKind
 from flatprep.practice.targets import SAME_DIA_MM, Target
@@ -126,10 +127,9 @@ def _merged(ops: list[Op]) -> list[Op]:
 
 def _frame(bench: BenchPart, ops: list[Op]) -> list[Op]:
     """Return what every part gets: edges first, flatness before work on it, burrs of holes, inspection last."""
-    out = [
-        Op(StepKind.DEBURR, Rank.DEBURR, note="hold against the drawing: side, scale, holes; off with tabs and dross; "
-           "break edges 0.2 to 0.5 mm", count=1)
-    ]  # fmt: skip
+    off = dressing(bench) or "off with tabs and dross"
+    note = f"hold against the drawing: side, scale, holes; {off}; break edges 0.2 to 0.5 mm"
+    out = [Op(StepKind.DEBURR, Rank.DEBURR, note=note, count=1)]
     if any(op.kind not in (StepKind.INSPECT, StepKind.PRESS) for op in ops):
         out.append(
             Op(StepKind.FLATNESS, Rank.FLATNESS, note="flatten before any work if it rocks on the plate", count=1)

@@ -22,6 +22,7 @@ from flatprep.geom.bulge import Floats, Similarity
 from flatprep.geom.polygons import inner_point
 from flatprep.model.drawing import Contour, Curve, Part, Text
 from flatprep.model.layout import SheetLayout
+from flatprep.model.tab import NO_TABS, Tab, tab_stroke
 
 CUT, MARK, BEND, SHEET, NOTE = "CUT", "MARK", "BEND", "SHEET", "NOTE"
 GREY = 8
@@ -44,7 +45,12 @@ Box = tuple[float, float, float, float]
 
 
 def sheet_drawing(
-    sheet: SheetLayout, parts: Mapping[str, Part], *, title: Sequence[str] = (), form: SheetForm = USUAL
+    sheet: SheetLayout,
+    parts: Mapping[str, Part],
+    *,
+    title: Sequence[str] = (),
+    form: SheetForm = USUAL,
+    tabs: Mapping[str, Sequence[Tab]] = NO_TABS,
 ) -> str:
     """DXF text of a sheet: its border, every part in the order of cutting, labels.
 
@@ -57,6 +63,8 @@ def sheet_drawing(
         Lines written under the sheet.
     form
         The usual one, or one that a cutter asks for.
+    tabs
+        Holding tabs by part: their places are noted by short strokes across the outline, the contours stay whole.
     """
     if form.cut_only:
         return _contours_alone(sheet, parts, form)
@@ -67,6 +75,8 @@ def sheet_drawing(
         placement = sheet.placements[index]
         part, motion = parts[placement.part], placement.motion
         _part(doc, part, motion)
+        for tab in tabs.get(placement.part, ()):
+            _curve(doc, NOTE, tab_stroke(tab), motion)
         _label(doc, part, motion, f"{placement.part} {placement.copy}")
     height = min(MOST_TEXT_MM, max(LEAST_TEXT_MM, float(np.ptp(sheet.outline, axis=0).max()) / 80.0))
     left, low = (float(v) for v in sheet.outline.min(axis=0))
@@ -82,6 +92,17 @@ def _contours_alone(sheet: SheetLayout, parts: Mapping[str, Part], form: SheetFo
         part = parts[placement.part]
         for contour in (*part.holes, part.outer):
             _contour(doc, contour, placement.motion)
+    return _written(doc)
+
+
+def lines_drawing(lines: Iterable[Curve]) -> str:
+    """DXF text of cut lines alone, closed or open, in the order of cutting; sheet coordinates, mm."""
+    doc = _document((CUT,))
+    for line in lines:
+        if line.closed:
+            _contour(doc, Contour(line.xyb), Similarity())
+        else:
+            _curve(doc, CUT, line, Similarity())
     return _written(doc)
 
 

@@ -22,6 +22,15 @@ class Pilots(StrEnum):
     MARK = "mark"
 
 
+class Tabs(StrEnum):
+    """Which parts holding tabs are asked for."""
+
+    NONE = "none"
+    SMALL = "small"
+    """Those too small to lie free."""
+    ALL = "all"
+
+
 @dataclass(frozen=True, slots=True)
 class Work:
     """Bench work asked for: exactly one of `hole_mm` and `at` is given.
@@ -142,6 +151,8 @@ class JobPart:
     finish: str = ""
     good_face: str | None = None
     accepts: tuple[Accept, ...] = ()
+    tabs: Tabs | None = None
+    """None: as the job says."""
     own: tuple[Path, ...] = ()
     """Folders of the user's own profiles."""
     where: str = ""

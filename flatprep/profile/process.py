@@ -3,7 +3,7 @@
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from enum import StrEnum
-from math import inf
+from math import ceil, inf
 
 from flatprep.profile.points import Points, between, clamped
 
@@ -86,6 +86,36 @@ class Terms:
 
 
 @dataclass(frozen=True, slots=True)
+class TabRule:
+    """How parts are held by tabs while they are cut.
+
+    Attributes
+    ----------
+    count : int
+        Tabs of a part at the least.
+    width_mm, width_to_thickness : float
+        Material left standing: mm, or times the thickness; the larger rules.
+    every_mm : float
+        One tab for so much of the outline; infinite: `count` is enough for any.
+    source : str
+    """
+
+    count: int = 2
+    width_mm: float = 0.5
+    width_to_thickness: float = 0.1
+    every_mm: float = inf
+    source: str = "common practice"
+
+    def width(self, thickness_mm: float | None) -> float:
+        """Return the width of a tab, mm."""
+        return max(self.width_mm, self.width_to_thickness * (thickness_mm or 0.0))
+
+    def number(self, outline_mm: float) -> int:
+        """Return how many tabs an outline of some length gets."""
+        return max(self.count, ceil(outline_mm / self.every_mm - 1e-9))
+
+
+@dataclass(frozen=True, slots=True)
 class Process:
     """A process profile.
 
@@ -113,6 +143,8 @@ class Process:
         Soft metals up to this thickness are cut to the tap drill and tapped directly; None: as the bench rules say.
     pilot_under_mm : float or None
         By how much a hole is cut under its tap drill where it is drilled out; None: as the bench rules say.
+    tabs : TabRule
+        Number and width of holding tabs.
     general : Terms
         What holds for every material.
     families : mapping of str to Terms
@@ -138,6 +170,7 @@ class Process:
     machine_rate: float | None = None
     direct_tap_mm: float | None = None
     pilot_under_mm: float | None = None
+    tabs: TabRule = TabRule()
     general: Terms = Terms()
     families: Mapping[str, Terms] = field(default_factory=dict)
 

@@ -7,7 +7,7 @@ from pathlib import Path
 from flatprep.base.errors import ProfileError
 from flatprep.base.names import did_you_mean
 from flatprep.profile.points import Points
-from flatprep.profile.process import FEATURES, SCALES, Band, Process, ProcessKind, Terms
+from flatprep.profile.process import FEATURES, SCALES, Band, Process, ProcessKind, TabRule, Terms
 from flatprep.profile.toml_check import Table, read_toml
 from flatprep.profile.where import candidate, ids
 
@@ -17,9 +17,17 @@ _TERM_KEYS = ("limits", "warn", "sources", "thickness", "kerf_table", "feed_mm_m
 KEYS = (
     "name", "kind", "beam", "power", "kerf", "tool_diameter", "spacing", "margin", "bed", "windows", "slat_pitch",
     "machine_rate", "direct_tap_up_to", "pilot_under", "caution", "source", "family",
-    "limits", "warn", "sources", "thickness", "kerf_table", "feed_mm_min", "pierce_s", "band",
+    "limits", "warn", "sources", "thickness", "kerf_table", "feed_mm_min", "pierce_s", "band", "tabs",
 )  # fmt: skip
 """Every key that the top of a process profile may have."""
+TAB_KEYS = ("count", "width", "width_to_thickness", "every", "source")
+USUAL_TABS = {
+    ProcessKind.LASER: TabRule(2, 0.3, 0.1, 300.0),
+    ProcessKind.ROUTER: TabRule(3, 5.0, 0.5, 250.0),
+    ProcessKind.PLASMA: TabRule(2, 2.0, 0.3, 400.0),
+    ProcessKind.WATERJET: TabRule(2, 1.0, 0.1, 300.0),
+}
+"""Tabs where a profile says nothing of them: common practice by kind."""
 
 
 def load_process(name_or_file: str, own: Sequence[Path] = ()) -> Process:
@@ -68,6 +76,7 @@ def parse_process(data: Mapping[str, object], file: str, stem: str) -> Process:
         machine_rate=top.optional_number("machine_rate", least=0.0),
         direct_tap_mm=top.length_mm("direct_tap_up_to", least=0.0) if top.has("direct_tap_up_to") else None,
         pilot_under_mm=top.length_mm("pilot_under", least=0.0) if top.has("pilot_under") else None,
+        tabs=_tabs(top.table("tabs"), USUAL_TABS[kind]),
         general=_terms(top, top.text("source", "")),
         families=families,
     )
@@ -81,6 +90,19 @@ def _room(kind: ProcessKind, tool_mm: float) -> tuple[float, float]:
         ProcessKind.PLASMA: (8.0, 12.0),
         ProcessKind.WATERJET: (4.0, 10.0),
     }[kind]
+
+
+def _tabs(table: Table | None, usual: TabRule) -> TabRule:
+    if table is None:
+        return usual
+    table.only(TAB_KEYS)
+    return TabRule(
+        count=table.integer("count", usual.count, least=1, most=100),
+        width_mm=table.length_mm("width", usual.width_mm, above=0.0),
+        width_to_thickness=table.number("width_to_thickness", 0.0, least=0.0),
+        every_mm=table.length_mm("every", inf, above=0.0) if table.has("every") else inf,
+        source=table.text("source", usual.source),
+    )
 
 
 def _bed(top: Table) -> tuple[float, float] | None:

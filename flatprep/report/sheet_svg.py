@@ -1,7 +1,7 @@
 """Picture of a sheet, true to scale: ``sheet-NN.svg`` to print beside the machine."""
 
-from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass, field
 
 import numpy as np
 import shapely
@@ -12,6 +12,7 @@ from flatprep.geom.bulge import Floats
 from flatprep.geom.polygons import polygon, valid_polygon
 from flatprep.model.drawing import Contour, Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
+from flatprep.model.tab import Tab, tab_stroke
 from flatprep.report.figures import bare_length, length, percent, size
 from flatprep.report.svg_path import joined, part_path, ring_data
 
@@ -31,10 +32,13 @@ class Extras:
         Of the figures written.
     offcut : (x0, y0, x1, y1) or None
         Largest usable rectangle that is left, sheet coordinates, mm: hatched.
+    tabs : mapping of str to Tab
+        Holding tabs by part: strokes across the outline.
     """
 
     units: str = "mm"
     offcut: Rectangle | None = None
+    tabs: Mapping[str, Sequence[Tab]] = field(default_factory=dict)
 
 
 PLAIN = Extras()
@@ -78,7 +82,8 @@ def sheet_svg(
     if offcut is not None:
         _offcut(page, offcut, em, units)
     for placement in sheet.placements:
-        _piece(page, parts[placement.part], placement, colour[placement.part], em)
+        strokes = [tab_stroke(tab).xyb for tab in extras.tabs.get(placement.part, ())]
+        _piece(page, parts[placement.part], placement, Look(colour[placement.part], em, strokes))
     for placement in sheet.placements:
         _name(page, parts[placement.part], placement, em)
     _used_length(page, sheet, em, units)
@@ -102,17 +107,29 @@ def _stock(page: svgwrite.Drawing, sheet: SheetLayout, margin_mm: float, em: flo
             page.add(page.path(d=line, fill="none", stroke="#888888", stroke_width=em / 16, stroke_dasharray=dash))
 
 
-def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, colour: str, em: float) -> None:
-    """One part at its place: outline, marks, name. Coordinates are the drawing's own, moved by one matrix."""
+@dataclass(frozen=True, slots=True)
+class Look:
+    """How a piece is drawn: its colour, the picture's unit of length, strokes across it."""
+
+    colour: str
+    em: float
+    strokes: Sequence[Floats]
+
+
+def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, look: Look) -> None:
+    """One part at its place: outline, marks, tabs. Coordinates are the drawing's own, moved by one matrix."""
+    em = look.em
     (a, c), (b, d) = placement.motion.matrix()
     group = page.g(class_="placed", transform=_matrix(a, -b, -c, d, placement.dx, -placement.dy))
     group.set_desc(title=f"{placement.part} {placement.copy}")
     thin = {"stroke": INK, "stroke_width": round(em / 14, 3)}
-    group.add(page.path(d=part_path(part), fill=colour, fill_opacity=0.55, fill_rule="evenodd", **thin))
+    group.add(page.path(d=part_path(part), fill=look.colour, fill_opacity=0.55, fill_rule="evenodd", **thin))
     if part.marks:
         group.add(
             page.path(d=joined([_shut(m) for m in part.marks]), fill="none", stroke_dasharray=f"{em / 4:.3f}", **thin)
         )
+    if look.strokes:
+        group.add(page.path(d=joined(look.strokes), stroke=INK, stroke_width=round(em / 5, 3), class_="tabs"))
     page.add(group)
 
 

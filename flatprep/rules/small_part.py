@@ -2,6 +2,7 @@
 
 from collections.abc import Iterator
 
+from flatprep.job.values import Tabs
 from flatprep.model.finding import Finding, Severity
 from flatprep.rules.base import Context, Rule, judge
 
@@ -17,16 +18,19 @@ def check(ctx: Context) -> Iterator[Finding]:
         if verdict is None or part.depth > 0:  # pieces in windows are the business of loose-island
             continue
         x0, y0, x1, y1 = part.outer.bounds
+        held = ctx.job_part is not None and ctx.job_part.tabs in (Tabs.SMALL, Tabs.ALL)
+        message = "the part is small enough to fall through the grate or to tip up"
         yield Finding(
             rule=RULE.id,
-            severity=verdict[0],
-            message="the part is small enough to fall through the grate or to tip up",
+            severity=Severity.NOTE if held else verdict[0],
+            message=f"{message}: the job asks for tabs that hold it" if held else message,
             part=part.name,
             at=((x0 + x1) / 2, (y0 + y1) / 2),
             measured=side,
             limit=verdict[1],
             unit="mm",
             handles=part.outer.distinct_handles,
+            remedy="See that the tabs are cut, and break them out afterwards." if held else "",
         )
 
 

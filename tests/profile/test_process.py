@@ -209,3 +209,20 @@ def test_how_a_shop_taps_is_its_own():
     own = process(direct_tap_up_to=10, pilot_under="0.02in")
     assert own.direct_tap_mm == 10.0
     assert own.pilot_under_mm == pytest.approx(0.508)
+
+
+def test_tabs_are_common_practice_where_a_profile_says_nothing_of_them():
+    assert (process().tabs.source, process().tabs.count) == ("common practice", 2)
+
+
+def test_tabs_of_a_profile():
+    rule = process(tabs={"count": 3, "width": 1.5, "every": 100, "source": "measured"}).tabs
+    assert (rule.count, rule.width(20.0), rule.number(301.0), rule.source) == (3, 1.5, 4, "measured")
+
+
+@pytest.mark.parametrize(
+    ("table", "words"), [({"count": 0}, "count = 0"), ({"width": 0}, "width = 0"), ({"depth": 1}, "unknown key depth")]
+)
+def test_mistakes_in_tabs(table, words):
+    with pytest.raises(ProfileError, match=words):
+        process(tabs=table)
