@@ -6,6 +6,7 @@ from pathlib import Path
 
 import click
 
+from flatprep.api.reliefs import relief_ask
 from flatprep.api.repair import repair_file
 from flatprep.base.errors import ExitStatus, UsageError
 from flatprep.base.tolerances import DEFAULT
@@ -13,6 +14,7 @@ from flatprep.base.units import parse_length_mm
 from flatprep.cli.options import output_format, said_about_parts
 from flatprep.cli.talk import say
 from flatprep.job.context import JobOptions
+from flatprep.job.corners import Corners, ReliefKind
 from flatprep.profile.process_load import load_process
 from flatprep.repair.values import RepairOptions, RoundLimits
 from flatprep.report.repair_json import repair_document
@@ -36,6 +38,16 @@ from flatprep.report.repair_text import repair_text
     show_default=True,
     help="chords become an arc where it stays this near to them; 0 keeps all chords",
 )
+@click.option(
+    "--relief",
+    type=click.Choice([str(kind) for kind in ReliefKind]),
+    help="open inside corners that the cutter of --process does not reach, for square mates",
+)
+@click.option(
+    "--corners",
+    type=click.Choice([str(Corners.SQUARE), str(Corners.ALL)]),
+    help="which inside corners --relief opens; default: the square ones",
+)
 @click.option("--every", is_flag=True, help="tell every change in a line of its own")
 @said_about_parts
 @output_format
@@ -46,6 +58,8 @@ def command(
     out: Path,
     gap: str,
     deviation: str,
+    relief: str | None,
+    corners: str | None,
     every: bool,
     said: JobOptions,
     form: str,
@@ -57,9 +71,12 @@ def command(
     tol = DEFAULT
     if said.process:
         tol = replace(tol, join_mm=load_process(said.process, said.profile_folders).join_gap_mm)
+    if corners and not relief:
+        raise UsageError(f"--corners {corners}: nothing is opened without --relief", "add --relief dogbone or t-bone")
     options = RepairOptions(
-        _length("--gap", gap), _rounding(_length("--deviation", deviation)), said.units, said.layers, tol
-    )
+        _length("--gap", gap), _rounding(_length("--deviation", deviation)), said.units, said.layers, tol,
+        relief_ask(ReliefKind(relief), Corners(corners or Corners.SQUARE), said) if relief else None,
+    )  # fmt: skip
     done = repair_file(file, out, options)
     if form == "json":
         click.echo(json.dumps(repair_document(done, str(out)), indent=1))

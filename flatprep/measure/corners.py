@@ -1,12 +1,17 @@
 """Inside corners: where the void turns sharper than a round tool can follow."""
 
 from dataclasses import dataclass
-from math import cos, sin
+from math import cos, pi, sin
 
 import numpy as np
 
 from flatprep.geom.bulge import Floats
 from flatprep.measure.boundary import Boundary, Ints
+
+LEAST_GAP_MM = 0.05
+"""Where a tool leaves less than this, a joint still closes (common practice for wood and plastics)."""
+SQUARE_RAD = 0.02
+"""Corners this near to a right angle are square."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -27,6 +32,8 @@ class Corner:
         0 the outer one, then the holes.
     rows : tuple of int
         Rows of the boundary's edges that form it.
+    ends : tuple of (float, float)
+        Where the walls beside it end, mm: twice the corner, or both ends of the fillet.
     """
 
     at: tuple[float, float]
@@ -35,6 +42,12 @@ class Corner:
     gap_mm: float
     contour: int
     rows: tuple[int, ...]
+    ends: tuple[tuple[float, float], tuple[float, float]]
+
+    @property
+    def is_square(self) -> bool:
+        """Whether a square mate may seat in it."""
+        return abs(self.turn_rad - pi / 2.0) <= SQUARE_RAD
 
 
 def leftover_gap_mm(tool_radius_mm: float, drawn_radius_mm: float, turn_rad: float) -> float:
@@ -72,7 +85,7 @@ def inside_corners(b: Boundary, *, tool_radius_mm: float, least_gap_mm: float) -
 
 def _sharp(b: Boundary, k: int, gap_mm: float) -> Corner:
     x, y = b.end[k].tolist()
-    return Corner((x, y), 0.0, abs(float(b.turn[k])), gap_mm, int(b.contour[k]), (k, int(b.next[k])))
+    return Corner((x, y), 0.0, abs(float(b.turn[k])), gap_mm, int(b.contour[k]), (k, int(b.next[k])), ((x, y), (x, y)))
 
 
 def _fillets(b: Boundary, small: Ints) -> list[list[int]]:
@@ -96,4 +109,5 @@ def _fillet(b: Boundary, rows: list[int], tool_radius_mm: float) -> Corner:
     centre: Floats = b.centre[first]
     at = float(centre[0]) + radius * cos(middle), float(centre[1]) + radius * sin(middle)
     gap = leftover_gap_mm(tool_radius_mm, radius, turn)
-    return Corner(at, radius, turn, gap, int(b.contour[first]), tuple(rows))
+    (x0, y0), (x1, y1) = b.start[first].tolist(), b.end[rows[-1]].tolist()
+    return Corner(at, radius, turn, gap, int(b.contour[first]), tuple(rows), ((x0, y0), (x1, y1)))

@@ -8,7 +8,7 @@ import numpy as np
 
 from flatprep.base.tolerances import DEFAULT, Tolerances
 from flatprep.measure.boundary import Boundary, boundary, of_part
-from flatprep.measure.corners import Corner, inside_corners
+from flatprep.measure.corners import LEAST_GAP_MM, Corner, inside_corners
 from flatprep.measure.facing import TooFineError
 from flatprep.measure.holes import Hole, HoleShape, recognise
 from flatprep.measure.widths import Width, widths
@@ -120,6 +120,15 @@ class MeasuredPart:
     def inside_corners(self, tool_radius_mm: float, least_gap_mm: float) -> tuple[Corner, ...]:
         """Corners that a tool cannot fill; see `flatprep.measure.corners.inside_corners`."""
         return inside_corners(self.boundary, tool_radius_mm=tool_radius_mm, least_gap_mm=least_gap_mm)
+
+    def unreached_corners(self, tool_radius_mm: float, slack_mm: float = 1e-3) -> tuple[Corner, ...]:
+        """Corners that a tool misses by more than a joint forgives, in holes and notches that it does enter."""
+        found = self.inside_corners(tool_radius_mm, LEAST_GAP_MM)
+        return tuple(c for c in found if c.radius_mm < tool_radius_mm - slack_mm and self._enters(c, tool_radius_mm))
+
+    def _enters(self, corner: Corner, radius: float) -> bool:
+        hole = self.shapes[corner.contour]
+        return hole.shape is HoleShape.OTHER or hole.width_mm >= 2.0 * radius - 1e-3
 
     def handles(self, rows: Iterable[int]) -> tuple[str, ...]:
         """Return the handles of the entities behind edges of the boundary."""

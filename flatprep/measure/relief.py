@@ -1,129 +1,202 @@
-"""Relief of inside corners, so that a square mate seats though the tool is round."""
+"""Relief of inside corners, so that a square mate seats though the tool is round: the shapes of it."""
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
-from enum import StrEnum
-from math import cos, dist, hypot, pi, tan
+from math import cos, hypot, pi, tan
 
 import numpy as np
 
 from flatprep.geom.bulge import Floats
+from flatprep.job.corners import Point, ReliefKind
+from flatprep.measure.corners import Corner
 from flatprep.model.drawing import Contour, Part
 
 ROOM = 1.03
 """The relief's circle is so much larger than the tool that its path is no single point (common practice)."""
-NEAR_MM = 0.05
-"""A place this near to a corner names it."""
-LEAST_TURN_RAD = pi / 6
-"""Flatter corners need no relief: a round tool leaves 0.035 of its radius in them."""
+MOST_TURN_RAD = 0.8 * pi
+"""Sharper corners are slits, and arcs that turn further are round ends: no circle opens them."""
+SAME_MM = 1e-6
+"""Vertices of a contour and of its boundary this near are one."""
 
-Point = tuple[float, float]
-
-
-class ReliefKind(StrEnum):
-    """Ways of opening a corner."""
-
-    DOGBONE = "dogbone"
-    T_BONE = "t-bone"
+Row = tuple[float, float, float]
 
 
 @dataclass(frozen=True, slots=True)
 class Relief:
-    """A corner that was opened, or why it was left.
+    """A corner that is to be opened, and with what; or why it cannot be.
 
     Attributes
     ----------
-    at : tuple of float
-        The corner, mm.
+    corner : Corner
+    kind : ReliefKind
+        A dogbone becomes a T-bone where the wall is too short for it.
     radius_mm : float
         Of the relief's circle.
+    centre : tuple of float
+        Of that circle, mm.
+    first, count : int
+        Vertices of the drawn contour that the rows replace.
+    rows : tuple of (x, y, bulge)
     why_not : str
-        Empty where it was opened.
+        Empty where it can be opened.
     """
 
-    at: Point
+    corner: Corner
+    kind: ReliefKind
     radius_mm: float
+    centre: Point = (0.0, 0.0)
+    first: int = 0
+    count: int = 0
+    rows: tuple[Row, ...] = ()
     why_not: str = ""
 
 
-def relieve(
-    part: Part, tool_radius_mm: float, *, kind: ReliefKind = ReliefKind.DOGBONE, at: Sequence[Point] | None = None
-) -> tuple[Part, tuple[Relief, ...]]:
-    """Open the sharp inside corners of a part.
+@dataclass(frozen=True, slots=True)
+class _Walls:
+    """A corner and the straight walls that run into it and out of it, up to the next vertex each.
 
-    Parameters
-    ----------
-    part
-    tool_radius_mm
-    kind
-        A circle through the corner on its bisector (dogbone), or on the second wall beside the corner (T-bone),
-        which opens one wall only.
-    at
-        Corners to open, mm; all of them by default.
+    `into` and `out` are unit vectors along the contour; `room` is what a relief may take of each wall, `length` what
+    there is, mm.
+    """
 
-    Returns
-    -------
-    part, reliefs
-        The opened part, and what was done at each corner.
+    apex: Floats
+    into: Floats
+    out: Floats
+    room: tuple[float, float]
+    length: tuple[float, float]
+    turn_rad: float
+
+
+def reliefs(part: Part, corners: Sequence[Corner], tool_radius_mm: float, kind: ReliefKind) -> tuple[Relief, ...]:
+    """Work out the relief of each corner.
 
     Notes
     -----
-    A circle of radius r through a corner of angle θ, centred on its bisector, meets both walls 2 r cos(θ / 2) from
-    the corner; the arc through the corner between them sweeps 2 π - 2 θ.
+    Dogbone: a circle of radius r through a corner of angle θ, centred on its bisector, meets both walls
+    2 r cos(θ / 2) from the corner; the arc through the corner between them sweeps 2 π - 2 θ. T-bone: a circle
+    through a square corner, centred on one of its walls, is a half circle in that wall. The relief of a fillet goes
+    through the corner that its walls would meet in.
     """
-    told: list[Relief] = []
-    contours = [_relieved(c, ROOM * tool_radius_mm, kind, at, told) for c in part.contours]
-    return replace(part, outer=contours[0], holes=tuple(contours[1:])), tuple(told)
+    placed = [_place(part.contours[corner.contour], corner) for corner in corners]
+    taken = [{first for c, (first, _) in zip(corners, placed, strict=True) if c.contour == k} for k in _contours(part)]
+    ends = [{last for c, (_, last) in zip(corners, placed, strict=True) if c.contour == k} for k in _contours(part)]
+    out = []
+    for corner, (first, last) in zip(corners, placed, strict=True):
+        found = Relief(corner, kind, ROOM * tool_radius_mm, first=first, count=0)
+        xyb = part.contours[corner.contour].xyb
+        walls = _walls(xyb, first, last, (ends[corner.contour], taken[corner.contour]))
+        out.append(replace(found, why_not=walls) if isinstance(walls, str) else _opened(found, walls, last, len(xyb)))
+    return tuple(out)
 
 
-def _relieved(contour: Contour, r: float, kind: ReliefKind, at: Sequence[Point] | None, told: list[Relief]) -> Contour:
-    xyb = contour.xyb
-    names = contour.handles if len(contour.handles) == len(xyb) else ("",) * len(xyb)
-    rows: list[tuple[float, float, float]] = []
-    handles: list[str] = []
-    for k in range(len(xyb)):
-        before, here, after = (xyb[(k + step) % len(xyb)] for step in (-1, 0, 1))
-        turn = _turn(before, here, after)
-        asked = at is None or any(dist(place, (here[0], here[1])) <= NEAR_MM for place in at)
-        opened: list[tuple[float, float, float]] = []
-        if turn <= -LEAST_TURN_RAD and before[2] == 0.0 and asked:
-            opened, why = _open(before, here, after, r, kind)
-            told.append(Relief((float(here[0]), float(here[1])), r, why))
-        rows += opened or [(float(here[0]), float(here[1]), float(here[2]))]
-        handles += [names[k]] * (len(opened) or 1)
-    return contour if len(rows) == len(xyb) else Contour(np.array(rows), tuple(handles), contour.layers)
+def apply(part: Part, chosen: Sequence[Relief]) -> Part:
+    """Return the part with its corners opened; reliefs that cannot be cut are passed over."""
+    every = [
+        _with_reliefs(contour, [r for r in chosen if r.corner.contour == k and not r.why_not])
+        for k, contour in enumerate(part.contours)
+    ]
+    return replace(part, outer=every[0], holes=tuple(every[1:]))
 
 
-def _turn(before: Floats, here: Floats, after: Floats) -> float:
-    """Turn between two straight edges, rad; 0 where the second is an arc."""
-    if here[2] != 0.0:
-        return 0.0
-    a, b = here[:2] - before[:2], after[:2] - here[:2]
-    return float(np.arctan2(a[0] * b[1] - a[1] * b[0], a @ b))
+def _contours(part: Part) -> range:
+    return range(len(part.contours))
 
 
-def _open(
-    before: Floats, here: Floats, after: Floats, r: float, kind: ReliefKind
-) -> tuple[list[tuple[float, float, float]], str]:
-    """Rows in place of the corner, or why there are none."""
-    turn = abs(_turn(before, here, after))
-    into, out = here[:2] - before[:2], after[:2] - here[:2]
+def _place(contour: Contour, corner: Corner) -> tuple[int, int]:
+    """First and last vertex of a corner: the same for a sharp one, both ends of a fillet's arcs; -1 if not found."""
+    xy = contour.xyb[:, :2]
+    away = [np.hypot(*(xy - end).T) for end in corner.ends]
+    first, last = (int(np.argmin(far)) for far in away)
+    found = max(float(far.min()) for far in away) <= SAME_MM
+    return (first, last) if found else (-1, -1)
+
+
+def _walls(xyb: Floats, first: int, last: int, corners: tuple[set[int], set[int]]) -> _Walls | str:
+    """Walls of a corner, or why it has none; `corners` are the last and the first vertices of all of them."""
+    n = len(xyb)
+    if first < 0:
+        return "it is drawn with too many vertices"
+    before, after = (first - 1) % n, (last + 1) % n
+    if xyb[before, 2] != 0.0 or xyb[last, 2] != 0.0:
+        return "one of its sides is an arc"
+    into, out = xyb[first, :2] - xyb[before, :2], xyb[after, :2] - xyb[last, :2]
     one, two = hypot(*into.tolist()), hypot(*out.tolist())
-    if kind is ReliefKind.T_BONE:
-        if two < 2.0 * r:
-            return [], "the wall beside it is shorter than the tool"
-        end = here[:2] + out / two * 2.0 * r
-        return [(float(here[0]), float(here[1]), -1.0), (float(end[0]), float(end[1]), 0.0)], ""
-    angle = pi - turn
-    reach = 2.0 * r * cos(angle / 2.0)
+    if min(one, two) < SAME_MM:
+        return "it is drawn with too many vertices"
+    into, out = into / one, out / two
+    turn = float(np.arctan2(into[0] * out[1] - into[1] * out[0], into @ out))
+    if not -MOST_TURN_RAD <= turn < 0.0:
+        return "it is a slit or a round end"
+    # from the fillet's start to the corner that the walls would meet in, along each wall
+    gap = xyb[last, :2] - xyb[first, :2]
+    ahead = float(gap[0] * out[1] - gap[1] * out[0]) / float(into[0] * out[1] - into[1] * out[0])
+    apex = xyb[first, :2] + ahead * into
+    back = float((xyb[last, :2] - apex) @ out)
+    lasts, firsts = corners
+    whole = one + ahead, two + back
     # the wall between two corners carries half of each relief at the most
-    if min(one, two) < 2.0 * reach:
-        return [], "the walls beside it are shorter than the relief"
-    start, end = here[:2] - into / one * reach, here[:2] + out / two * reach
+    room = whole[0] * (0.5 if before in lasts else 1.0), whole[1] * (0.5 if after in firsts else 1.0)
+    return _Walls(apex, into, out, room, whole, abs(turn))
+
+
+def _opened(found: Relief, w: _Walls, last: int, n: int) -> Relief:
+    r = found.radius_mm
+    found = replace(found, count=(last - found.first) % n + 1)
+    reach = 2.0 * r * cos((pi - w.turn_rad) / 2.0)
+    if found.kind is ReliefKind.DOGBONE and min(w.room) >= reach:
+        return _dogbone(found, w, reach)
+    if not found.corner.is_square:
+        why = "the walls beside it are shorter than the relief"
+        return replace(found, why_not=why if found.kind is ReliefKind.DOGBONE else "a T-bone needs a square corner")
+    t_bone = replace(found, kind=ReliefKind.T_BONE)
+    if max(w.room) >= 2.0 * r:
+        return _t_bone(t_bone, w, on_out=w.room[1] >= w.room[0])
+    # every corner of a small pocket takes the wall that leaves it
+    if w.length[1] >= 2.0 * r:
+        return _t_bone(t_bone, w, on_out=True)
+    return replace(found, why_not="the walls beside it are shorter than the relief")
+
+
+def _dogbone(found: Relief, w: _Walls, reach: float) -> Relief:
+    start, end = w.apex - w.into * reach, w.apex + w.out * reach
     # more than a half circle is drawn as two arcs that meet in the corner
-    half = -tan((pi - angle) / 4.0)
-    return [
-        (float(start[0]), float(start[1]), half),
-        (float(here[0]), float(here[1]), half),
-        (float(end[0]), float(end[1]), 0.0),
-    ], ""
+    half = -tan(w.turn_rad / 4.0)
+    inward = w.out - w.into
+    centre = w.apex + found.radius_mm * inward / hypot(*inward.tolist())
+    rows = (_row(start, half), _row(w.apex, half), _row(end, 0.0))
+    return replace(found, rows=rows, centre=_point(centre))
+
+
+def _t_bone(found: Relief, w: _Walls, *, on_out: bool) -> Relief:
+    far = w.apex + 2.0 * found.radius_mm * (w.out if on_out else -w.into)
+    ends = (w.apex, far) if on_out else (far, w.apex)
+    return replace(found, rows=(_row(ends[0], -1.0), _row(ends[1], 0.0)), centre=_point((w.apex + far) / 2.0))
+
+
+def _row(at: Floats, bulge: float) -> Row:
+    return float(at[0]), float(at[1]), bulge
+
+
+def _point(at: Floats) -> Point:
+    return float(at[0]), float(at[1])
+
+
+def _with_reliefs(contour: Contour, chosen: Sequence[Relief]) -> Contour:
+    if not chosen:
+        return contour
+    by_first = {relief.first: relief for relief in chosen}
+    n = len(contour.xyb)
+    gone = {(r.first + k) % n for r in chosen for k in range(r.count)}
+    names = contour.handles if len(contour.handles) == n else ("",) * n
+    rows: list[Row] = []
+    handles: list[str] = []
+    for k in range(n):
+        if k in by_first:
+            new = by_first[k]
+            rows += new.rows
+            # the arcs count as drawn by the edge before them
+            handles += [names[k - 1]] * (len(new.rows) - 1) + [names[(k + new.count - 1) % n]]
+        elif k not in gone:
+            rows.append(_row(contour.xyb[k], float(contour.xyb[k, 2])))
+            handles.append(names[k])
+    return Contour(np.array(rows), tuple(handles) if contour.handles else (), contour.layers)

@@ -16,6 +16,7 @@ from flatprep.geom.bulge import Floats, points_along
 from flatprep.model.drawing import Contour, Curve, Drawing, Part, Text
 from flatprep.model.finding import Finding
 from flatprep.repair.rearc import round_part
+from flatprep.repair.reliefs import relieve_part
 from flatprep.repair.told import changes_of, left_of, rounded_change, stands_on_part
 from flatprep.repair.values import Change, Repaired, RepairOptions
 
@@ -76,11 +77,15 @@ def _reread(text: str, name: str, options: RepairOptions) -> Drawing:
 
 def _once(drawing: Drawing, options: RepairOptions) -> Repaired:
     changes = list(changes_of(drawing, options.gap_mm))
+    left = list(left_of(drawing, options.gap_mm))
     parts = []
     for part in drawing.parts:
         rounded, told = round_part(part, options.rounding)
-        parts.append(rounded)
         changes += map(rounded_change, told)
+        if options.relief is not None:
+            rounded, opened, refused = relieve_part(rounded, options.relief, _fixed(drawing, part, options.gap_mm))
+            changes, left = changes + opened, left + refused
+        parts.append(rounded)
     lines = []
     for curves in ([c for p in parts for c in p.marks], [c for p in parts for c in p.bends]):
         single, faults = tidy(curves, options.tol)
@@ -89,13 +94,22 @@ def _once(drawing: Drawing, options: RepairOptions) -> Repaired:
     cut, loose = _cut(drawing, parts, options.gap_mm)
     texts = [_own_layer(t, drawing) for t in drawing.texts]
     text = clean_drawing(cut, [_curve_on_grid(c) for c in loose], lines[0], lines[1], texts)
-    left = tuple(left_of(drawing, options.gap_mm))
-    return Repaired(drawing.file, text, drawing.units, tuple(changes), left, drawing.parts, tuple(parts))
+    return Repaired(drawing.file, text, drawing.units, tuple(changes), tuple(left), drawing.parts, tuple(parts))
+
+
+def _fixed(drawing: Drawing, part: Part, gap_mm: float) -> set[int]:
+    """Contours of a part that are written as they were drawn: open ones, and those that cross themselves."""
+    crossing = _rings(drawing.crossing)
+    return {k for k, c in enumerate(part.contours) if _open_pieces(c, gap_mm) or _lies_on(c, crossing)}
+
+
+def _rings(contours: Sequence[Contour]) -> list[shapely.LinearRing]:
+    return [shapely.LinearRing(points_along(c.xyb, closed=True, chord_mm=0.002)) for c in contours]
 
 
 def _cut(drawing: Drawing, rounded: Sequence[Part], gap_mm: float) -> tuple[list[Contour], list[Curve]]:
     """Sort into closed contours, inner before outer, and open lines; what crosses itself stays as it was drawn."""
-    crossing = [shapely.LinearRing(points_along(c.xyb, closed=True, chord_mm=0.002)) for c in drawing.crossing]
+    crossing = _rings(drawing.crossing)
     closed: list[Contour] = []
     loose = list(drawing.loose)
     by_depth = sorted(zip(drawing.parts, rounded, strict=True), key=lambda pair: -pair[0].depth)

@@ -4,6 +4,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 
 from flatprep.base.tolerances import DEFAULT, Tolerances
+from flatprep.measure.relieved import ReliefAsk
 from flatprep.model.drawing import Part, Role
 from flatprep.model.finding import Finding
 
@@ -48,6 +49,8 @@ class RepairOptions:
         Outlines open by no more than this are closed by a straight line; wider gaps are left and told.
     units, roles
         As for reading (`flatprep.drawing.read.ReadOptions`).
+    relief
+        How inside corners are opened for square mates; None leaves them.
     """
 
     gap_mm: float = 0.1
@@ -55,6 +58,7 @@ class RepairOptions:
     units: str | None = None
     roles: Mapping[str, Role] = field(default_factory=dict)
     tol: Tolerances = DEFAULT
+    relief: ReliefAsk | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -65,7 +69,7 @@ class Change:
     ----------
     kind : str
         ``joined``, ``double``, ``no-length``, ``rounded``, ``exploded``, ``curve``, ``flattened``, ``layer``,
-        ``unit``, ``left-out``.
+        ``unit``, ``left-out``, ``relief``.
     message : str
         One sentence, no full stop.
     at : tuple of float or None

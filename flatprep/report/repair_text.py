@@ -17,6 +17,7 @@ KINDS = {
     "double": "doubles taken out",
     "no-length": "without length, taken out",
     "rounded": "chords turned into arcs and circles",
+    "relief": "inside corners opened",
     "left-out": "left out",
 }
 """Kinds of change in the order in which they are told, with their headings."""
