@@ -2,7 +2,7 @@
 
 from collections.abc import Iterator, Mapping, Sequence
 
-from flatprep.drawing.write import cutting_order
+from flatprep.drawing.order import cutting_order
 from flatprep.geom.stretch import Span, nearest, without
 from flatprep.model.drawing import Contour, Curve, Part
 from flatprep.model.layout import SheetLayout

@@ -8,7 +8,6 @@ layout gives the same bytes: no times and no random ids are written.
 import io
 from collections.abc import Iterable, Mapping, Sequence
 from functools import lru_cache
-from math import hypot
 
 import numpy as np
 from ezdxf._options import options
@@ -18,6 +17,7 @@ from ezdxf.lldxf.const import DXF12
 from ezdxf.version import __version__ as ezdxf_version
 
 from flatprep.drawing.forms import USUAL, SheetForm
+from flatprep.drawing.order import cutting_order
 from flatprep.geom.bulge import Floats, Similarity
 from flatprep.geom.polygons import inner_point
 from flatprep.model.drawing import Contour, Curve, Part, Text
@@ -36,12 +36,7 @@ STYLES: Mapping[str, tuple[float, ...]] = {
 STYLE_OF = {CUT: "CONTINUOUS", MARK: "FP_DASH", BEND: "FP_DASHDOT", SHEET: "FP_DASHDOT", NOTE: "FP_DOT"}
 MM_CODE = 4
 """$INSUNITS of millimetres."""
-NEXT_FEW = 4
-"""Pieces of the order by size from which the next one to be cut is picked."""
 LEAST_TEXT_MM, MOST_TEXT_MM, TEXT_SHARE = 1.5, 10.0, 0.12
-
-
-Box = tuple[float, float, float, float]
 
 
 def sheet_drawing(
@@ -170,50 +165,6 @@ def border_drawing(outline: Floats, holes: Sequence[Floats] = (), *, notes: Sequ
     for n, line in enumerate(notes, start=1):
         _text(doc, line, (left, low - 20.0 * n), MOST_TEXT_MM)
     return _written(doc)
-
-
-def cutting_order(sheet: SheetLayout, parts: Mapping[str, Part]) -> list[int]:
-    """Order in which the pieces of a sheet are cut: those in windows of others first, then small ones first.
-
-    A piece that lies in a window falls with it once the window is cut; a small piece may shift when its larger
-    neighbour has come loose. Among the next few by size the one farthest from the last cut comes first, so that the
-    heat of neighbours does not add up.
-    """
-    boxes = [_box(parts[p.part], p.motion) for p in sheet.placements]
-    areas = [parts[p.part].area_mm2 for p in sheet.placements]
-    hosts = [_window_boxes(parts[p.part], p.motion) for p in sheet.placements]
-    depth = [sum(_within(box, w) for n, ws in enumerate(hosts) if n != k for w in ws) for k, box in enumerate(boxes)]
-    ranked = sorted(range(len(boxes)), key=lambda k: (-depth[k], areas[k], sheet.placements[k].dx))
-    return [
-        k for level in sorted(set(depth), reverse=True) for k in _apart([k for k in ranked if depth[k] == level], boxes)
-    ]
-
-
-def _apart(ranked: Sequence[int], boxes: Sequence[Box]) -> list[int]:
-    """Order in which each piece is the one of the next few that is farthest from the piece before it."""
-    rest, done = list(ranked), list[int]()
-    while rest:
-        near = _middle(boxes[done[-1]]) if done else _middle(boxes[rest[0]])
-        pick = max(rest[:NEXT_FEW], key=lambda k: hypot(*np.subtract(_middle(boxes[k]), near))) if done else rest[0]
-        rest.remove(pick)
-        done.append(pick)
-    return done
-
-
-def _middle(box: Box) -> tuple[float, float]:
-    return (box[0] + box[2]) / 2.0, (box[1] + box[3]) / 2.0
-
-
-def _box(part: Part, motion: Similarity) -> Box:
-    return Contour(motion.polyline(part.outer.xyb)).bounds
-
-
-def _window_boxes(part: Part, motion: Similarity) -> list[Box]:
-    return [Contour(motion.polyline(h.xyb)).bounds for h in part.holes]
-
-
-def _within(box: Box, window: Box) -> bool:
-    return box[0] >= window[0] and box[1] >= window[1] and box[2] <= window[2] and box[3] <= window[3]
 
 
 def _document(layers: Iterable[str], version: str = USUAL.version) -> Document:

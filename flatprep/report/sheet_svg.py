@@ -8,6 +8,7 @@ import shapely
 import svgwrite
 from shapely.geometry import Polygon
 
+from flatprep.drawing.order import cutting_order
 from flatprep.geom.bulge import Floats
 from flatprep.geom.polygons import polygon, valid_polygon
 from flatprep.model.drawing import Contour, Curve, Part
@@ -53,7 +54,7 @@ def sheet_svg(
     job: str = "",
     extras: Extras = PLAIN,
 ) -> str:
-    """SVG document of a sheet with its parts, names, used length, sheet data and a scale bar.
+    """SVG document of a sheet with its parts, names, order of cutting, used length, sheet data and a scale bar.
 
     Parameters
     ----------
@@ -84,8 +85,9 @@ def sheet_svg(
     for placement in sheet.placements:
         strokes = [tab_stroke(tab).xyb for tab in extras.tabs.get(placement.part, ())]
         _piece(page, parts[placement.part], placement, Look(colour[placement.part], em, strokes))
-    for placement in sheet.placements:
-        _name(page, parts[placement.part], placement, em)
+    for turn, index in enumerate(cutting_order(sheet, parts), start=1):
+        placement = sheet.placements[index]
+        _name(page, parts[placement.part], placement, turn, em)
     _used_length(page, sheet, em, units)
     _heading(page, sheet, number, job, em, units)
     _scale_bar(page, (float(x0), float(-y0 + 5.2 * em)), float(x1 - x0), em, units)
@@ -133,12 +135,12 @@ def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, look: Look)
     page.add(group)
 
 
-def _name(page: svgwrite.Drawing, part: Part, placement: Placement, em: float) -> None:
-    """Name of a piece in the middle of its largest inscribed circle, no taller than that lets it be read."""
+def _name(page: svgwrite.Drawing, part: Part, placement: Placement, turn: int, em: float) -> None:
+    """Turn of cutting and name of a piece in its largest inscribed circle, no taller than that lets it be read."""
     shape = valid_polygon(polygon(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1))
     circle = shapely.maximum_inscribed_circle(shape, tolerance=0.05 * min(part.size_mm))
     x, y = placement.motion.points(np.asarray(circle.coords)[:1])[0]
-    words = f"{placement.part} {placement.copy}"
+    words = f"{turn}: {placement.part} {placement.copy}"
     height = min(em, float(circle.length), 1.6 * max(part.size_mm) / len(words))
     x0, y0, x1, y1 = Contour(placement.motion.polyline(part.outer.xyb)).bounds
     if y1 - y0 <= x1 - x0:
@@ -208,7 +210,7 @@ def _heading(page: svgwrite.Drawing, sheet: SheetLayout, number: int, job: str, 
         thick,
         size(float(extent[0]), float(extent[1]), units),
     ]
-    words += [f"{len(sheet.placements)} parts", f"{percent(sheet.utilisation)} used"]
+    words += [f"{len(sheet.placements)} parts", f"{percent(sheet.utilisation)} used", "numbered as cut"]
     at = (float(sheet.outline[:, 0].min()), float(-sheet.outline[:, 1].max() - 1.5 * em))
     _text(page, " · ".join(w for w in words if w), at, 1.2 * em)
 

@@ -1,14 +1,13 @@
 """What the DXF writer writes, read back with ezdxf alone."""
 
 import io
-from itertools import pairwise
 
 import ezdxf
 import numpy as np
 import pytest
 from ezdxf.math import bulge_to_arc
 
-from flatprep.drawing.write import border_drawing, cutting_order, part_drawing, sheet_drawing
+from flatprep.drawing.write import border_drawing, part_drawing, sheet_drawing
 from flatprep.geom.bulge import circle, reverse
 from flatprep.model.drawing import Contour, Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
@@ -83,27 +82,6 @@ def test_border_holes_and_labels_are_on_layers_of_their_own():
     styles = {layer.dxf.name: layer.dxf.linetype for layer in doc.layers}
     assert len({styles[n] for n in ("CUT", "MARK", "SHEET", "NOTE")}) == 4
     assert {doc.layers.get(n).dxf.color for n in ("CUT", "MARK", "SHEET", "NOTE")} == {8}
-
-
-def test_piece_in_a_window_is_cut_first_then_small_before_large():
-    frame = Part("frame", Contour(circle(0, 0, 50.0)), (Contour(reverse(circle(0, 0, 30.0), closed=True)),))
-    coin, large, small = (
-        Part(n, Contour(circle(0, 0, r))) for n, r in (("coin", 20.0), ("large", 40.0), ("small", 5.0))
-    )
-    parts = {p.name: p for p in (frame, coin, large, small)}
-    places = [("frame", 60.0), ("large", 200.0), ("coin", 60.0), ("small", 130.0)]
-    layout = sheet(*(Placement(n, 1, 0.0, False, x, 80.0) for n, x in places))
-    assert [layout.placements[k].part for k in cutting_order(layout, parts)] == ["coin", "small", "frame", "large"]
-
-
-def test_neighbours_are_not_cut_in_a_row():
-    """Six equal discs in a line: none is cut right after the one beside it."""
-    parts = {"coin": Part("coin", Contour(circle(0, 0, 10.0)))}
-    layout = sheet(*(Placement("coin", k, 0.0, False, 20.0 + 30.0 * k, 50.0) for k in range(6)))
-    order = cutting_order(layout, parts)
-    assert sorted(order) == list(range(6))
-    assert sum(abs(a - b) == 1 for a, b in pairwise(order)) <= 1
-    assert order[:2] == [0, 4]  # the farthest of the next four by size
 
 
 def test_part_drawing_keeps_the_parts_own_coordinates():

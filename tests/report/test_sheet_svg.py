@@ -38,7 +38,9 @@ def test_picture_is_true_to_scale():
 
 def test_every_piece_is_named_and_escaped():
     root = picture()
-    assert {"a & b 1", "wheel 1"} <= set(texts(root))
+    assert {"a & b 1", "wheel 1"} <= {words.partition(": ")[2] for words in texts(root)}
+    turns = [words.partition(": ")[0] for words in texts(root) if words.endswith(("a & b 1", "wheel 1"))]
+    assert sorted(turns) == ["1", "2"]  # numbered as cut
     titles = {t.text for t in root.iter(f"{SVG}title")}
     assert {"a & b 1", "wheel 1", "wheel hoe sheet 2"} <= titles
 

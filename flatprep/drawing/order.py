@@ -1,0 +1,113 @@
+"""In which order the pieces of a sheet are cut.
+
+Pieces in windows go before the piece around them, the deepest first: they would fall with it. Small ones go before
+large ones, to within a factor of `SAME_SIZE`: a small piece may shift when its larger neighbour has come loose. And
+pieces cut in a row lie apart, so that the heat of neighbours does not add up: of those whose turn it may be, one is
+taken that is no neighbour of the last few; among these the one with most neighbours that still wait, lest they be
+left over together at the end, then the nearest. Where all are neighbours the farthest one is taken. Two pieces are
+neighbours where nothing of the width of the smaller one fits between their boxes. The rule is greedy and our own.
+"""
+
+from collections.abc import Mapping
+
+import numpy as np
+import numpy.typing as npt
+
+from flatprep.geom.bulge import Floats
+from flatprep.model.drawing import Contour, Part
+from flatprep.model.layout import Placement, SheetLayout
+
+SAME_SIZE = 2.0
+"""Pieces up to this many times the area of the smallest one left may be cut in its place."""
+LAST_FEW = 2
+"""So many pieces back, the place is still hot."""
+HOT = 1.0, 0.5
+"""Weights of being a neighbour of the last piece and of the one before."""
+
+Box = tuple[float, float, float, float]
+Flags = npt.NDArray[np.bool_]
+
+
+def cutting_order(sheet: SheetLayout, parts: Mapping[str, Part]) -> list[int]:
+    """Return the indices of a sheet's placements in the order of cutting, by the rule above.
+
+    Parameters
+    ----------
+    parts
+        Shapes by the names that the placements use.
+    """
+    if not sheet.placements:
+        return []
+    boxes = np.array([_box(parts[p.part], p) for p in sheet.placements])
+    areas = np.array([parts[p.part].area_mm2 for p in sheet.placements])
+    depth = _depths(sheet, parts, boxes)
+    order: list[int] = []
+    for level in np.unique(depth)[::-1]:
+        rank = [int(k) for k in np.lexsort((boxes[:, 0], areas)) if depth[k] == level]
+        _append_apart(order, rank, boxes, areas)
+    return order
+
+
+def gaps_mm(boxes: Floats, one: Floats) -> Floats:
+    """Distance of each box (x0, y0, x1, y1), shape (n, 4), from one of them; 0 where they meet."""
+    apart = np.maximum(np.maximum(boxes[:, :2] - one[2:], one[:2] - boxes[:, 2:]), 0.0)
+    return np.asarray(np.hypot(apart[:, 0], apart[:, 1]))
+
+
+def _append_apart(order: list[int], rank: list[int], boxes: Floats, areas: Floats) -> None:
+    """Append pieces of one level, given by rising size, to what is cut before them."""
+    near = np.array([_neighbours(boxes, k) for k in rank])[:, rank] if rank else np.zeros((0, 0), dtype=bool)
+    waits = np.ones(len(rank), dtype=bool)
+    mine, size = boxes[rank], areas[rank]
+    for _ in rank:
+        may = waits & (size <= SAME_SIZE * size[int(np.argmax(waits))])
+        k = _next(order, may, near[:, waits].sum(axis=1), boxes, mine)
+        waits[k] = False
+        order.append(rank[k])
+
+
+def _next(order: list[int], may: Flags, waiting: npt.NDArray[np.int64], boxes: Floats, mine: Floats) -> int:
+    """Pick the next of the pieces that may be cut; `waiting` counts the neighbours of each that wait."""
+    if not order:
+        return int(np.argmax(may))
+    gap = gaps_mm(mine, boxes[order[-1]])
+    heat = sum(
+        weight * (gaps_mm(mine, boxes[k]) < _width(mine, boxes[k]))
+        for weight, k in zip(HOT, order[: -LAST_FEW - 1 : -1], strict=False)
+    )
+    hot = np.where(may, heat, np.inf)
+    coolest = hot <= hot.min()
+    if hot.min() >= HOT[0]:
+        return int(np.argmax(np.where(coolest, gap, -1.0)))
+    return int(np.lexsort((gap, -waiting, ~coolest))[0])
+
+
+def _neighbours(boxes: Floats, k: int) -> Flags:
+    found = gaps_mm(boxes, boxes[k]) < _width(boxes, boxes[k])
+    found[k] = False
+    return np.asarray(found)
+
+
+def _width(boxes: Floats, one: Floats) -> Floats:
+    """Width (shorter side) of the smaller of each box and one of them."""
+    own = np.minimum(boxes[:, 2] - boxes[:, 0], boxes[:, 3] - boxes[:, 1])
+    return np.minimum(own, min(one[2] - one[0], one[3] - one[1]))
+
+
+def _depths(sheet: SheetLayout, parts: Mapping[str, Part], boxes: Floats) -> npt.NDArray[np.int64]:
+    """In how many windows of other pieces each one lies, by boxes: never fewer than in truth, and in their order."""
+    depth = np.zeros(len(boxes), dtype=np.int64)
+    for n, placement in enumerate(sheet.placements):
+        for window in _window_boxes(parts[placement.part], placement):
+            inside = (boxes[:, :2] >= window[:2]).all(axis=1) & (boxes[:, 2:] <= window[2:]).all(axis=1)
+            inside[n] = False
+            depth += inside
+    return depth
+
+
+def _box(part: Part, placement: Placement) -> Box:
+    return Contour(placement.motion.polyline(part.outer.xyb)).bounds
+
+
+def _window_boxes(part: Part, placement: Placement) -> list[Floats]:
+    return [np.array(Contour(placement.motion.polyline(h.xyb)).bounds) for h in part.holes]
