@@ -8,11 +8,13 @@ from pathlib import Path
 
 from flatprep.api.nest import Nested
 from flatprep.api.pieces import Piece, quantity
+from flatprep.api.shared import sheet_shared
 from flatprep.api.tabs import job_tabs, tabs_drawing
 from flatprep.base.files import make_folder, write_together
 from flatprep.base.safe_names import safe_stems
 from flatprep.drawing.forms import FORMS, Form, with_kerf
-from flatprep.drawing.write import border_drawing, part_drawing, sheet_drawing
+from flatprep.drawing.label import RemnantLabel, label_lines, thickness_text
+from flatprep.drawing.write import border_drawing, lines_drawing, part_drawing, sheet_drawing
 from flatprep.job.values import Job, JobPart
 from flatprep.model.drawing import Part
 from flatprep.model.layout import SheetLayout
@@ -65,6 +67,9 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
         stem = sheet_name(number)
         yield folder / f"{stem}.dxf", sheet_drawing(sheet, parts, title=title, tabs=tabs)
         for form in nested.also:
+            if form is Form.SHARED:
+                yield folder / f"{stem}-{form}.dxf", lines_drawing(sheet_shared(sheet, nested.read).lines)
+                continue
             shapes = _with_kerf(pieces) if form is Form.KERF else parts
             yield folder / f"{stem}-{form}.dxf", sheet_drawing(sheet, shapes, title=title, form=FORMS[form])
         rest = offcut_of(sheet, parts, nested.layout.spacing_mm)

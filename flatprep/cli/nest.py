@@ -1,12 +1,12 @@
 """``flatprep nest``."""
 
 import json
-from dataclasses import replace
 from pathlib import Path
 
 import click
 
 from flatprep.api.nest import Nested, nest_job
+from flatprep.api.shared import check_forms, with_forms
 from flatprep.api.sheets import write_layout
 from flatprep.api.stored import stored_layout
 from flatprep.base.errors import ExitStatus
@@ -53,10 +53,11 @@ def command(
     with claimed(folder), progress_line() as progress:
         read = read_drawings(job, budget.jobs, progress)
         with stoppable() as stop:
+        check_forms(read, also)
             nested = nest_job(read, budget, progress=progress, on_better=stop.keep, stop=stop, keep=kept)
-            for warning in nested.warnings:
-                warn(warning)
-            write_layout(replace(nested, also=also), folder)
+            nested = with_forms(nested, also)
+            say_of_nest(nested)
+            write_layout(nested, folder)
     if form == "json":
         click.echo(json.dumps(json.loads((folder / "layout.json").read_text()), indent=1))
     else:

@@ -90,7 +90,7 @@ def other_forms(command: Command) -> Command:
         multiple=True,
         type=click.Choice([str(form) for form in Form]),
         callback=lambda _ctx, _param, words: tuple(Form(word) for word in words),
-        help="write each sheet also as contours alone, as DXF R12, or with the kerf allowed for",
+        help="write each sheet also as contours alone, as R12, with the kerf allowed for, or one cut for two parts",
     )(command)
 
 

@@ -6,6 +6,7 @@ from pathlib import Path
 import click
 
 from flatprep.api.prepare import Prepared, prepare_job, write_prepared
+from flatprep.api.shared import check_forms, with_forms
 from flatprep.base.errors import ExitStatus, FlatprepError
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
@@ -65,11 +66,13 @@ def _once(job_file: Path, folder: Path, budget: Budget, said: JobOptions, also: 
     with claimed(folder), progress_line() as progress:
         read = read_drawings(job, budget.jobs, progress)
         with stoppable() as stop:
+        check_forms(read, also)
             done = prepare_job(read, budget, progress=progress, on_better=stop.keep, stop=stop)
             for warning in done.nested.warnings if done.nested else ():
                 warn(warning)
             if done.nested:
-                done = replace(done, nested=replace(done.nested, also=also))
+                done = replace(done, nested=with_forms(done.nested, also))
+                say_of_nest(done.nested)
             write_prepared(done, folder)
     say(summary(done, folder))
     status = ExitStatus.FINDINGS if done.loud or done.unplaced else ExitStatus.CLEAN

@@ -1,4 +1,4 @@
-"""Other forms of a sheet for cutters that want them: contours alone, old DXF, or kerf already allowed for."""
+"""Other forms of a sheet for cutters that want them: contours alone, old DXF, kerf already allowed for, shared cuts."""
 
 from dataclasses import dataclass
 from enum import StrEnum
@@ -20,6 +20,7 @@ class Form(StrEnum):
     CUT_ONLY = "cut-only"
     R12 = "r12"
     KERF = "kerf"
+    SHARED = "shared"
 
 
 @dataclass(frozen=True, slots=True)
@@ -43,6 +44,7 @@ FORMS = {
     Form.CUT_ONLY: SheetForm(cut_only=True),
     Form.R12: SheetForm(version="R12"),
     Form.KERF: SheetForm(cut_only=True),
+    Form.SHARED: SheetForm(cut_only=True),
 }
 
 
@@ -84,5 +86,5 @@ def _moved(part: Part, contour: Contour, by_mm: float) -> Contour:
 def _too_small(part: Part, x: float, y: float, by_mm: float) -> OutputError:
     return OutputError(
         f"{part.name}: the contour at ({x:.2f}, {y:.2f}) does not survive a kerf of {2 * abs(by_mm):g} mm",
-        "enlarge it, or leave --also kerf out",
+        "enlarge it, or leave --also kerf and --also shared out",
     )
