@@ -6,7 +6,7 @@ from pathlib import Path
 
 import click
 
-from flatprep.api.reliefs import relief_ask
+from flatprep.api.mates import relief_ask, slot_ask
 from flatprep.api.repair import repair_file
 from flatprep.base.errors import ExitStatus, UsageError
 from flatprep.base.tolerances import DEFAULT
@@ -19,6 +19,8 @@ from flatprep.profile.process_load import load_process
 from flatprep.repair.values import RepairOptions, RoundLimits
 from flatprep.report.repair_json import repair_document
 from flatprep.report.repair_text import repair_text
+
+CLEARANCE = "0.1mm"
 
 
 @click.command("repair")
@@ -48,6 +50,14 @@ from flatprep.report.repair_text import repair_text
     type=click.Choice([str(Corners.SQUARE), str(Corners.ALL)]),
     help="which inside corners --relief opens; default: the square ones",
 )
+@click.option(
+    "--measured",
+    metavar="LENGTH",
+    help="what the calliper says of the sheet: slots drawn for --thickness are made to fit it",
+)
+@click.option(
+    "--clearance", metavar="LENGTH", help=f"those slots are so much wider than the sheet; default: {CLEARANCE}"
+)
 @click.option("--every", is_flag=True, help="tell every change in a line of its own")
 @said_about_parts
 @output_format
@@ -60,6 +70,8 @@ def command(
     deviation: str,
     relief: str | None,
     corners: str | None,
+    measured: str | None,
+    clearance: str | None,
     every: bool,
     said: JobOptions,
     form: str,
@@ -73,9 +85,12 @@ def command(
         tol = replace(tol, join_mm=load_process(said.process, said.profile_folders).join_gap_mm)
     if corners and not relief:
         raise UsageError(f"--corners {corners}: nothing is opened without --relief", "add --relief dogbone or t-bone")
+    if clearance and not measured:
+        raise UsageError(f"--clearance {clearance}: no slot is resized without --measured", "add --measured 2.9mm")
     options = RepairOptions(
         _length("--gap", gap), _rounding(_length("--deviation", deviation)), said.units, said.layers, tol,
         relief_ask(ReliefKind(relief), Corners(corners or Corners.SQUARE), said) if relief else None,
+        slot_ask(measured, _length("--clearance", clearance or CLEARANCE), said) if measured else None,
     )  # fmt: skip
     done = repair_file(file, out, options)
     if form == "json":

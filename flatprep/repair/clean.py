@@ -17,6 +17,7 @@ from flatprep.model.drawing import Contour, Curve, Drawing, Part, Text
 from flatprep.model.finding import Finding
 from flatprep.repair.rearc import round_part
 from flatprep.repair.reliefs import relieve_part
+from flatprep.repair.slots import resize_part
 from flatprep.repair.told import changes_of, left_of, rounded_change, stands_on_part
 from flatprep.repair.values import Change, Repaired, RepairOptions
 
@@ -82,10 +83,9 @@ def _once(drawing: Drawing, options: RepairOptions) -> Repaired:
     for part in drawing.parts:
         rounded, told = round_part(part, options.rounding)
         changes += map(rounded_change, told)
-        if options.relief is not None:
-            rounded, opened, refused = relieve_part(rounded, options.relief, _fixed(drawing, part, options.gap_mm))
-            changes, left = changes + opened, left + refused
-        parts.append(rounded)
+        asked, more, refused = _as_asked(rounded, options, _fixed(drawing, part, options.gap_mm))
+        changes, left = changes + more, left + refused
+        parts.append(asked)
     lines = []
     for curves in ([c for p in parts for c in p.marks], [c for p in parts for c in p.bends]):
         single, faults = tidy(curves, options.tol)
@@ -95,6 +95,18 @@ def _once(drawing: Drawing, options: RepairOptions) -> Repaired:
     texts = [_own_layer(t, drawing) for t in drawing.texts]
     text = clean_drawing(cut, [_curve_on_grid(c) for c in loose], lines[0], lines[1], texts)
     return Repaired(drawing.file, text, drawing.units, tuple(changes), tuple(left), drawing.parts, tuple(parts))
+
+
+def _as_asked(part: Part, options: RepairOptions, fixed: set[int]) -> tuple[Part, list[Change], list[Finding]]:
+    """Resize slots, then open corners, where that is asked for."""
+    changes: list[Change] = []
+    left: list[Finding] = []
+    if options.slots is not None:
+        part, changes, left = resize_part(part, options.slots, fixed)
+    if options.relief is not None:
+        part, opened, refused = relieve_part(part, options.relief, fixed)
+        changes, left = changes + opened, left + refused
+    return part, changes, left
 
 
 def _fixed(drawing: Drawing, part: Part, gap_mm: float) -> set[int]:

@@ -5,6 +5,7 @@ from dataclasses import dataclass, field
 
 from flatprep.base.tolerances import DEFAULT, Tolerances
 from flatprep.measure.relieved import ReliefAsk
+from flatprep.measure.slots import SlotAsk
 from flatprep.model.drawing import Part, Role
 from flatprep.model.finding import Finding
 
@@ -51,6 +52,8 @@ class RepairOptions:
         As for reading (`flatprep.drawing.read.ReadOptions`).
     relief
         How inside corners are opened for square mates; None leaves them.
+    slots
+        How slots for the sheet are resized; None leaves them.
     """
 
     gap_mm: float = 0.1
@@ -59,6 +62,7 @@ class RepairOptions:
     roles: Mapping[str, Role] = field(default_factory=dict)
     tol: Tolerances = DEFAULT
     relief: ReliefAsk | None = None
+    slots: SlotAsk | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -69,7 +73,7 @@ class Change:
     ----------
     kind : str
         ``joined``, ``double``, ``no-length``, ``rounded``, ``exploded``, ``curve``, ``flattened``, ``layer``,
-        ``unit``, ``left-out``, ``relief``.
+        ``unit``, ``left-out``, ``relief``, ``slot``.
     message : str
         One sentence, no full stop.
     at : tuple of float or None

@@ -17,6 +17,7 @@ KINDS = {
     "double": "doubles taken out",
     "no-length": "without length, taken out",
     "rounded": "chords turned into arcs and circles",
+    "slot": "slots made to fit the sheet",
     "relief": "inside corners opened",
     "left-out": "left out",
 }
