@@ -83,7 +83,9 @@ def improve(answer: Answer, margin_mm: float, effort: Effort, found: Callable[[A
             continue
         task = sheets_task(portion.shapes, portion.containers, portion.start)
         track = _Track(current, portion, margin_mm, found)
-        search(task, clock_share(effort.clock, 1.0 / (len(classes) - number)), effort.seed, track, effort.jobs)
+        clock = clock_share(effort.clock, 1.0 / (len(classes) - number))
+        search(task, clock, effort.seed, track, effort.jobs)
+        effort.clock.spend(clock.evaluations)
         current = track.best
 
 

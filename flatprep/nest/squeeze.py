@@ -41,18 +41,20 @@ def shorten(engine: Engine, rects: int, length_mm: float) -> None:
 
 
 def send_elsewhere(engine: Engine, i: int) -> None:
-    """Lay a piece anywhere in any rectangle that can hold it."""
+    """Lay a piece anywhere in any rectangle that can hold it; in that it fits best where none can, by a rounding."""
     board, o = engine.board, engine.outlines
     shape = o.shape[board.variant[i]]
-    choice = [
-        (k, v)
-        for k in range(len(board.rect))
-        for v in range(int(o.first[shape]), int(o.first[shape + 1]))
-        if fits(o, board, k, v)
-    ]
+    every = [(k, v) for k in range(len(board.rect)) for v in range(int(o.first[shape]), int(o.first[shape + 1]))]
+    choice = [(k, v) for k, v in every if fits(o, board, k, v)] or [min(every, key=lambda kv: lack(engine, *kv))]
     k, v = choice[int(engine.rng.integers(len(choice)))]
     board.home[i] = k
     put(o, board, i, v, *any_spot(o, board, k, v, engine.rng))
+
+
+def lack(engine: Engine, k: int, v: int) -> float:
+    """By how much variant v is too long or too wide for rectangle k, mm."""
+    box, rect = engine.outlines.rings.box[v], engine.board.rect[k]
+    return float(max(box[2] - box[0] - (rect[2] - rect[0]), box[3] - box[1] - (rect[3] - rect[1])))
 
 
 def swap_two(engine: Engine) -> None:

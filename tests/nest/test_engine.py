@@ -8,7 +8,7 @@ from flatprep.nest.clock import Clock
 from flatprep.nest.engine import Engine, Turning
 from flatprep.nest.search import sheets_task, strip_task
 from flatprep.nest.shapes import Container, Place, Shape
-from flatprep.nest.squeeze import shorten, swap_two
+from flatprep.nest.squeeze import lack, send_elsewhere, shorten, swap_two
 from tests.nest.outlines import ELBOW, QUARTERS, SQUARE, WEDGE
 
 
@@ -80,3 +80,27 @@ def test_bounds():
     assert bounds.least_mm(1) == float("inf")
     assert bounds.least_mm(2) == pytest.approx(15.0)
     assert bounds.least_mm(3) <= 0.0
+
+
+def test_a_piece_that_fits_by_a_rounding_only_goes_where_it_fits_best():
+    """The field is cut a trice shorter than the longest piece: rounding does that where lengths are equal."""
+    bar = np.array([[0.0, 0.0], [30.0, 0.0], [30.0, 5.0], [0.0, 5.0]])
+    engine = engine_of(strip_task([Shape(bar, turns_deg=(0.0,)), Shape(SQUARE, turns_deg=(0.0,), count=2)], 20.0, None))
+    shorten(engine, 1, np.nextafter(30.0, 0.0) - 1e-12)
+    send_elsewhere(engine, 0)
+    assert engine.board.home[0] == 0
+    assert lack(engine, 0, int(engine.board.variant[0])) == pytest.approx(0.0, abs=1e-9)
+    assert engine.board.left[0] == pytest.approx(engine.board.rect[0, 0], abs=1e-9)
+
+
+def test_a_sheet_is_given_up_though_one_piece_is_just_as_long_as_the_other_sheet():
+    """Lengths and borders that are no round binary numbers: what is left of the field is a rounding off the piece."""
+    for length in (0.1 + 0.2, 33.3, 100.1, 1000.7 / 3.0):
+        ring = np.array([[0.1, 0.3], [0.1 + length, 0.3], [0.1 + length, 20.3], [0.1, 20.3]])
+        bar = np.array([[0.0, 0.0], [length, 0.0], [length, 5.0], [0.0, 5.0]])
+        shapes = [Shape(bar, turns_deg=(0.0,), count=2)]
+        places = [Place(0, k, 0.0, False, 0.1, 0.3) for k in range(2)]
+        engine = engine_of(sheets_task(shapes, [Container(ring), Container(ring)], places))
+        whole = engine.field.rect[0]
+        shorten(engine, 1, float(whole[2] - whole[0]))
+        assert set(engine.board.home[:2].tolist()) == {0}
