@@ -4,12 +4,15 @@ import gc
 import multiprocessing
 import os
 import signal
+import sys
 import threading
 import time
 from collections.abc import Callable, Iterator, Sequence
-from contextlib import contextmanager, suppress
+from contextlib import contextmanager, nullcontext, suppress
 from dataclasses import dataclass
 from multiprocessing.connection import Connection, wait
+from multiprocessing.context import SpawnProcess
+from types import ModuleType
 from typing import Any, Generic, TypeVar
 
 _OBJECTS = 200_000
@@ -112,8 +115,7 @@ class Pool(Generic[Item, Result]):
     def _start(self) -> _Worker:
         mine, theirs = self._context.Pipe()
         process = self._context.Process(target=_serve, args=(theirs, self._work, self._caps.megabytes), daemon=True)
-        with _undisturbed():
-            process.start()
+        start(process)
         theirs.close()
         return _Worker(process, mine)
 
@@ -126,6 +128,32 @@ class Pool(Generic[Item, Result]):
         worker.pipe.close()
         worker.process.kill()
         worker.process.join()
+
+
+def start(process: Any) -> None:
+    """Start a worker process whose target calls `become_worker`.
+
+    A worker that begins as a Python of its own (``spawn``) does not import the caller's script, of which it needs
+    nothing: one without the usual guard would run from its beginning in every worker.
+
+    Raises
+    ------
+    OSError
+        When the system gives no process.
+    """
+    with _undisturbed(), _without_script() if isinstance(process, SpawnProcess) else nullcontext():
+        process.start()
+
+
+@contextmanager
+def _without_script() -> Iterator[None]:
+    """Let multiprocessing find a main module that is of no file, as at Python's prompt."""
+    script = sys.modules["__main__"]
+    sys.modules["__main__"] = ModuleType("__main__")
+    try:
+        yield
+    finally:
+        sys.modules["__main__"] = script
 
 
 @contextmanager

@@ -28,10 +28,10 @@ class Stop:
         self._keeping = True
 
     def ask(self, number: int, _frame: FrameType | None) -> None:
-        """Take a signal."""
-        if self.signal is not None or not self._keeping:
+        """Take a signal; noted first, for an exception may be lost in what runs just then."""
+        again, self.signal = self.signal is not None, number
+        if again or not self._keeping:
             raise KeyboardInterrupt(number)
-        self.signal = number
 
     @property
     def exit_status(self) -> int:

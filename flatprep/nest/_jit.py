@@ -16,7 +16,14 @@ from typing import Any, TypeVar, cast
 
 F = TypeVar("F", bound=Callable[..., Any])
 
+_HERE = Path(__file__).parent
 JIT = os.environ.get("FLATPREP_NO_JIT") != "1"
+
+
+def sources_digest(package: Path = _HERE) -> str:
+    """Tell the sources of all kernels apart from those of any other version."""
+    sources = [p.read_bytes() for p in sorted(package.glob("*.py"))]
+    return hashlib.sha256(b"".join(s for s in sources if b"_jit import" in s)).hexdigest()
 
 
 def drop_stale(package: Path) -> None:
@@ -24,8 +31,7 @@ def drop_stale(package: Path) -> None:
 
     numba looks at the one file a kernel stands in, though it compiles the kernels of other files into it.
     """
-    sources = [p.read_bytes() for p in sorted(package.glob("*.py"))]
-    digest = hashlib.sha256(b"".join(s for s in sources if b"_jit import" in s)).hexdigest()
+    digest = sources_digest(package)
     cache = package / "__pycache__"
     note = cache / "kernels.sha256"
     try:
@@ -78,4 +84,4 @@ def _temporary_cache() -> None:
 
 
 if JIT:
-    drop_stale(Path(__file__).parent)
+    drop_stale(_HERE)

@@ -14,7 +14,7 @@ from typing import NamedTuple
 
 import numpy as np
 
-from flatprep.base.workers import become_worker
+from flatprep.base.workers import become_worker, start
 from flatprep.nest.clock import EVALUATIONS_A_STEP, Clock
 from flatprep.nest.engine import Spots
 from flatprep.nest.solo import run
@@ -175,7 +175,7 @@ def run_jobs(
     ]
     try:
         for worker, (_, far) in zip(workers, pipes, strict=True):
-            worker.start()
+            start(worker)
             far.close()
         hub = Hub([near for near, _ in pipes], found, clock)
         best = run(task, clock, seed, found, Meetings(clock, meeting_steps, hub.meet, hub.look))

@@ -31,7 +31,7 @@ def search(task: Task, clock: Clock, seed: int, report: Callable[[Best], None], 
     report
         Called with the first layout at once, then with each better one, always in this process.
     jobs
-        Processes. More than one are started by ``spawn``: a script must guard its main part as usual.
+        Processes.
 
     Raises
     ------

@@ -144,8 +144,10 @@ def rows_for(cuts: Cuts, bed: Bed, v: int, rows: Floats, since: Floats, seen: in
     low, high = bed.room[1] - cuts.box[v, 1], bed.room[3] - cuts.box[v, 3]
     count = len(rows)
     most = MOST_LEVELS * 2 * (bed.laid[0] - seen) + max(count, EVEN_ROWS)
-    every, start = np.empty(most), np.full(most, bed.room[0] - cuts.box[v, 0])
-    every[:count], start[:count] = rows, since
+    every, start = np.empty(most), np.empty(most)
+    for r in range(most):  # plain loops compile fast
+        start[r] = since[r] if r < count else bed.room[0] - cuts.box[v, 0]
+        every[r] = rows[r] if r < count else 0.0
     if count == 0:
         count = EVEN_ROWS if high > low else 1
         for r in range(count):

@@ -3,8 +3,9 @@
 import time
 from collections import Counter
 from collections.abc import Callable, Sequence
+from dataclasses import replace
 from functools import partial
-from math import sqrt
+from math import inf, sqrt
 
 from flatprep.base.progress import Progress, Silent
 from flatprep.model.layout import Layout, Unplaced
@@ -19,7 +20,10 @@ from flatprep.nest.improve import Effort, clock_share, improve
 from flatprep.nest.keep import KeepError, left_to_lay
 from flatprep.nest.problem import Budget, NestAsk
 from flatprep.nest.refill import refill, worth_refilling
-from flatprep.nest.verify import LayoutFault, verify
+from flatprep.nest.shares import Means, share_out
+from flatprep.nest.sound import UnsoundError, sound_answer, with_more_room
+from flatprep.nest.verify import LayoutFault, SheetKey, sheet_key, verify
+from flatprep.nest.warm import ROWS, SEARCH, Compiler, compiling
 
 USUAL, QUIET = Budget(), Silent()
 FIRST_SHARE = 0.2
@@ -64,16 +68,19 @@ def nest(
     ------
     ValueError
         When spacing or margin is negative.
+    KeepError
+        When what is to be kept does not go with the job, or is not sound in itself.
+    UnsoundError
+        When the layout does not verify in the end.
     """
     if ask.spacing_mm < 0.0 or ask.margin_mm < 0.0:
         raise ValueError("spacing and margin must not be negative")
     job = _Job(ask, stop, _Reporter(progress, on_better))
-    job.lay_first(budget)
-    job.improve(budget)
+    with compiling() as compiler:
+        job.lay_first(budget, compiler)
+        job.improve(budget, compiler)
     job.fill()
-    layout = job.layout()
-    _refuse(verify(layout, ask))
-    return layout
+    return job.verified()
 
 
 class _Reporter:
@@ -119,7 +126,14 @@ class _Job:
             if s.kept and not any(s.stock is other for other in used)
         ]
         self._answers: list[Answer] = []
+        self._sound: list[frozenset[SheetKey]] = [frozenset() for _ in self._groups]
         _refuse_unsound_keep(ask)
+
+    def verified(self) -> Layout:
+        """Layout of the whole job, verified; sheets that were found sound as they came are not looked at again."""
+        layout = self.layout()
+        _refuse(verify(layout, self._ask, frozenset().union(*self._sound)))
+        return layout
 
     def layout(self) -> Layout:
         """Layout of the whole job as it is."""
@@ -134,59 +148,74 @@ class _Job:
                 if answer.supply and any(matches(group.owner[0][0], s) for s in answer.group.stock):
                     names = {item.name for item, _ in group.owner}
                     filled, left = fill(answer, group, self._ask)
-                    if _faults(self._ask, filled, left):
+                    if self._faults(number, filled, left):
                         continue
                     self._answers[number] = filled
                     self._left = [u for u in self._left if u.part not in names] + list(left)
         if self._fillers:
             self._reporter.tell(self.layout())
 
-    def lay_first(self, budget: Budget) -> None:
+    def lay_first(self, budget: Budget, compiler: Compiler) -> None:
         """Lay every group by the constructive rule; tell of the job's first full layout, then of better ones."""
+        compiler.wait(ROWS)
         until = self._started + budget.seconds * FIRST_SHARE
         groups = self._groups
         every = [first_answers(group, self._ask.margin_mm, self._stop(until, budget)) for group in groups]
-        for number, answers in enumerate(every, start=1):
-            self._reporter.progress.update("first layout", done=number, total=len(groups))
-            first = next(answers)
-            _refuse(_faults(self._ask, first, ()))
-            self._answers.append(first)
+        for number, answers in enumerate(every):
+            self._reporter.progress.update("first layout", done=number + 1, total=len(groups))
+            faults, again = partial(self._faults, number), partial(self._again, number)
+            self._answers.append(sound_answer(next(answers), faults, again, self._ask.margin_mm))
         self._reporter.tell(self.layout())
         for number, answers in enumerate(every):
             for answer in answers:
                 self._take(number, answer)
 
-    def improve(self, budget: Budget) -> None:
-        """Search group by group, each for its share of what is left."""
-        weights = [difficulty(a) for a in self._answers]
-        for number in range(len(self._answers)):
-            if weights[number] == 0.0:
-                continue
-            share = weights[number] / sum(weights[number:])
-            left = budget.seconds - ENDING_S - (time.monotonic() - self._started)
-            steps = None if budget.steps is None else max(1, int(budget.steps * weights[number] / sum(weights)))
-            if (left <= 0.0 and steps is None) or self._stopped():
-                return
-            self._improve_group(number, Clock(left * share, steps, stop=self._stopped), budget)
+    def _again(self, number: int, more_mm: float) -> Answer:
+        """Lay a group by the constructive rule with so much more room between its pieces and at the border."""
+        ask = with_more_room(self._ask, more_mm)
+        items, supplies = left_to_lay(ask)
+        main, _ = split([i for i in items if not i.filler], [s.stock for s in supplies])
+        group = prepare_group(main[number], supplies, ask)
+        margins = {s.name: s.margins_mm for s in self._ask.stock}
+        stock = tuple(replace(s, margins_mm=margins[s.name]) for s in group.stock)
+        return next(first_answers(replace(group, stock=stock), self._ask.margin_mm, self._stopped))
 
-    def _improve_group(self, number: int, clock: Clock, budget: Budget) -> None:
-        """Spend a clock on one group: refill sheets, search, look for cheaper sheets."""
-        take, margin = partial(self._take, number), self._ask.margin_mm
+    def improve(self, budget: Budget, compiler: Compiler) -> None:
+        """Search group by group, the easy ones first (`share_out`)."""
+        weights = [difficulty(a) for a in self._answers]
+        if any(weights):
+            compiler.wait(SEARCH, inf if budget.steps is not None else self._started + budget.seconds, self._stopped)
+        means = Means(self._started + budget.seconds - ENDING_S, budget.steps, self._stopped)
+        share_out(weights, means, partial(self._improve_group, budget))
+
+    def _improve_group(self, budget: Budget, number: int, clock: Clock, turn: int) -> bool:
+        """Spend a clock on one group: refill sheets, search, look for cheaper sheets; tell whether it ran out."""
+        take, margin, seed = partial(self._take, number), self._ask.margin_mm, budget.seed + turn
         if worth_refilling(self._answers[number]):
             first = clock_share(clock, REFILL_SHARE)
-            refill(self._answers[number], margin, first, budget.seed, take)
+            refill(self._answers[number], margin, first, seed, take)
             clock.spend(first.evaluations)
-        search = clock_share(clock, SEARCH_SHARE) if may_downsize(self._answers[number]) else clock
-        improve(self._answers[number], margin, Effort(search, budget.seed, budget.jobs), take)
+        search = clock_share(clock, SEARCH_SHARE if may_downsize(self._answers[number]) else 1.0)
+        improve(self._answers[number], margin, Effort(search, seed, budget.jobs), take)
+        clock.spend(search.evaluations)
         for cheaper in downsized(self._answers[number], margin, clock.passed):
             take(cheaper)
+        return search.passed()
 
     def _take(self, number: int, answer: Answer) -> None:
         """Note a better answer of a group if it is sound, and tell of the layout."""
         before = self._answers[number]
-        if answer.value < before.value and not _faults(self._ask, answer, ()):
+        if answer.value < before.value and not self._faults(number, answer):
             self._answers[number] = answer
             self._reporter.tell(self.layout())
+
+    def _faults(self, number: int, answer: Answer, fillers_left: Sequence[Unplaced] = ()) -> tuple[LayoutFault, ...]:
+        """Verify one group's sheets; whether all pieces are there only the whole layout tells."""
+        alone = layout_of(self._ask, answer.sheets, merged([*answer.unplaced, *fillers_left]))
+        faults = tuple(f for f in verify(alone, self._ask, self._sound[number]) if f.kind != "count")
+        if not faults:
+            self._sound[number] = frozenset(map(sheet_key, alone.sheets))
+        return faults
 
     def _stop(self, until: float, budget: Budget) -> Callable[[], bool]:
         """Whether the constructive rule has had its time; with a budget in steps the clock is not looked at."""
@@ -196,12 +225,16 @@ class _Job:
 
 
 def difficulty(answer: Answer) -> float:
-    """Weight by which groups share the time: pieces laid times the root of their corners; 0 for nothing to gain."""
+    """Weight by which groups share the time; 0 for a single piece, with which nothing is to be gained.
+
+    Pieces laid, each times the root of its corners, times the root of the number of kinds.
+    """
     laid = Counter(p.shape for p in answer.places)
     if laid.total() < 2:
         return 0.0
     shapes = answer.group.shapes
-    return sum(count * sqrt(len(shapes[s].outer) + sum(map(len, shapes[s].holes))) for s, count in laid.items())
+    pieces = sum(count * sqrt(len(shapes[s].outer) + sum(map(len, shapes[s].holes))) for s, count in laid.items())
+    return pieces * sqrt(len(laid))
 
 
 def merged(unplaced: Sequence[Unplaced]) -> list[Unplaced]:
@@ -214,16 +247,13 @@ def merged(unplaced: Sequence[Unplaced]) -> list[Unplaced]:
     return list(found.values())
 
 
-def _faults(ask: NestAsk, answer: Answer, fillers_left: Sequence[Unplaced]) -> tuple[LayoutFault, ...]:
-    """Verify one group's sheets; whether all pieces are there only the whole layout tells."""
-    alone = layout_of(ask, answer.sheets, merged([*answer.unplaced, *fillers_left]))
-    return tuple(f for f in verify(alone, ask) if f.kind != "count")
-
-
 def _refuse(faults: Sequence[LayoutFault]) -> None:
-    """Stop at a first layout that is not sound: a mistake of this program, never to be written out."""
+    """Stop at a layout that is not sound in the end: a mistake of this program, never to be written out."""
     if faults:
-        raise RuntimeError(f"a layout that is not sound: {faults[0].message}")
+        raise UnsoundError(
+            f"the layout is not sound, and none is written: {faults[0].message}",
+            "run it again with another --seed, and report it together with the job",
+        )
 
 
 def _refuse_unsound_keep(ask: NestAsk) -> None:

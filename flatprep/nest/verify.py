@@ -6,7 +6,7 @@ the pair are made finer, down to the last of `CHORDS_MM`.
 """
 
 from collections import Counter, defaultdict
-from collections.abc import Iterator, Sequence
+from collections.abc import Collection, Iterator, Sequence
 from dataclasses import dataclass
 from functools import lru_cache
 from math import isfinite
@@ -31,6 +31,8 @@ SLACK_MM = 1e-6
 CHORDS_MM = (0.01, 1e-4, 2e-7)
 """Chord errors tried one after the other."""
 SAME_SHARE = 1e-9
+
+SheetKey = tuple[str, float, float, tuple[tuple[str, float, bool, float, float], ...]]
 
 
 @dataclass(frozen=True, slots=True)
@@ -57,8 +59,20 @@ class LayoutFault:
     limit_mm: float | None = None
 
 
-def verify(layout: Layout, ask: NestAsk) -> tuple[LayoutFault, ...]:
-    """Return everything that is wrong with a layout: overlaps, gaps, margins, turns, counts, stock; empty if sound."""
+def sheet_key(sheet: SheetLayout) -> SheetKey:
+    """All that a sheet's soundness depends on, but for the job: stock, pieces and where they lie, stated figures."""
+    spots = tuple((p.part, p.turn_deg, p.mirrored, p.dx, p.dy) for p in sheet.placements)
+    return sheet.stock, sheet.used_length_mm, sheet.utilisation, spots
+
+
+def verify(layout: Layout, ask: NestAsk, sound: Collection[SheetKey] = frozenset()) -> tuple[LayoutFault, ...]:
+    """Return everything that is wrong with a layout: overlaps, gaps, margins, turns, counts, stock; empty if sound.
+
+    Parameters
+    ----------
+    sound
+        Keys of sheets that were verified before, for the same job: their pieces are not looked at again.
+    """
     items = {item.name: item for item in ask.items}
     faults = [*_count_faults(layout, ask), *_stock_faults(layout, ask)]
     stock = {s.name: s for s in ask.stock}
@@ -68,14 +82,15 @@ def verify(layout: Layout, ask: NestAsk) -> tuple[LayoutFault, ...]:
             what = f"part {strange[0]}" if strange else f"stock {sheet.stock}"
             faults.append(LayoutFault("count", f"sheet {number}: the job has no {what}", number))
             continue
-        faults += _sheet_faults(number, sheet, stock[sheet.stock], items, ask)
+        faults += _border_faults(number, sheet, stock[sheet.stock])
+        if sheet_key(sheet) not in sound:
+            faults += _sheet_faults(number, sheet, stock[sheet.stock], items, ask)
     return tuple(faults)
 
 
 def _sheet_faults(
     number: int, sheet: SheetLayout, stock: StockSheet, items: dict[str, Item], ask: NestAsk
 ) -> Iterator[LayoutFault]:
-    yield from _border_faults(number, sheet, stock)
     for placement in sheet.placements:
         yield from _piece_faults(number, placement, items[placement.part], stock)
     if not all(isfinite(v) for p in sheet.placements for v in (p.turn_deg, p.dx, p.dy)):

@@ -68,6 +68,7 @@ def test_nothing_to_keep_ends_at_once_and_a_result_ends_by_itself():
     with pytest.raises(KeyboardInterrupt) as asked:
         stop.ask(signal.SIGTERM, None)
     assert asked.value.args == (signal.SIGTERM,)
+    assert stop()  # where the exception was swallowed, the work still ends
     stop = Stop()
     stop.keep("a layout")
     assert not stop()

@@ -211,3 +211,20 @@ def test_a_piece_that_fits_one_sheet_only_stays_there():
     assert best.containers == 2
     assert best.length_mm == pytest.approx(40.0, abs=1e-3)
     assert [p.container for p in best.places] == [1, 0, 0, 0]
+
+
+def test_a_script_without_a_guard_may_use_several_processes(tmp_path):
+    """Workers do not run the caller's script again: it says its word once, and gets its layout."""
+    script = tmp_path / "script.py"
+    script.write_text("""
+import numpy as np
+from flatprep.nest.clock import Clock
+from flatprep.nest.search import search, strip_task
+from flatprep.nest.shapes import Shape
+print("begun", flush=True)
+wedge = np.array([[0.0, 0.0], [20.0, 0.0], [0.0, 20.0]])
+task = strip_task([Shape(wedge, turns_deg=(0.0, 180.0), count=6)], 20.0, None)
+print(len(search(task, Clock(steps=2), 1, lambda best: None, jobs=2).places))
+""")
+    run = subprocess.run([sys.executable, script], capture_output=True, text=True, timeout=240, check=False)
+    assert (run.stdout.split(), run.stderr, run.returncode) == (["begun", "6"], "", 0)

@@ -8,7 +8,7 @@ import pytest
 from flatprep.geom.bulge import Similarity
 from flatprep.model.layout import Layout, Placement, SheetLayout, Unplaced
 from flatprep.nest.assemble import FilledSheet, Spot, layout_of
-from flatprep.nest.verify import verify
+from flatprep.nest.verify import sheet_key, verify
 from tests.nest.parts import ask, disc, hook, item, rectangle, remnant, ring, sheet
 
 
@@ -192,3 +192,14 @@ def test_strange_part_strange_stock_and_no_number():
     assert "count" in of(Placement("nobody", 1, 0.0, False, 0.0, 0.0))
     assert "count" in of(Placement("square", 1, 0.0, False, 20.0, 20.0), stock="none")
     assert "figure" in of(Placement("square", 1, 0.0, False, float("nan"), 20.0))
+
+
+def test_a_sheet_found_sound_before_is_not_looked_at_again_but_counted():
+    layout, question = two_squares(-1.0, 3.0)
+    known = frozenset(map(sheet_key, layout.sheets))
+    assert kinds(layout, question) == ["overlap"]
+    assert verify(layout, question, known) == ()
+    moved, _ = two_squares(-1.001, 3.0)
+    assert [f.kind for f in verify(moved, question, known)] == ["overlap"]
+    more = ask([replace(SQUARE, quantity=3)], [sheet()], 3.0, 10.0)
+    assert [f.kind for f in verify(layout, more, known)] == ["count"]
