@@ -7,7 +7,7 @@ import shapely
 
 from flatprep.geom.bulge import Floats, Similarity
 from flatprep.model.layout import Unplaced
-from flatprep.nest.allowed import turns_on
+from flatprep.nest.allowed import turns_of
 from flatprep.nest.assemble import Spot, spot, used_length
 from flatprep.nest.construct import Bin, Layer
 from flatprep.nest.firstfit import Answer, piece_orders
@@ -58,7 +58,8 @@ def _bin_left(answer: Answer, number: int, fillers: Group, ask: NestAsk) -> Bin:
     for s in sheet.spots[len(answer.group.kept[kind]) :]:
         grown = grow(s.item.part, ask.spacing_mm, windows=ask.windows)
         rings += [s.motion.points(ring + grown.centre) for ring in (grown.outer, *grown.holes)]
-    return Bin(container, tuple(turns_on(item, stock) for item, _ in fillers.owner), tuple(rings))
+    turns = (turns_of(item, s.mirror, stock) for s, (item, _) in zip(fillers.shapes, fillers.owner, strict=True))
+    return Bin(container, tuple(turns), tuple(rings))
 
 
 def _cut_at(container: Container, x: float) -> Container:

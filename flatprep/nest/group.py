@@ -8,7 +8,7 @@ from shapely.geometry import Polygon
 
 from flatprep.geom.bulge import Similarity
 from flatprep.model.layout import Unplaced
-from flatprep.nest.allowed import hands, matches, turns_on, why_no_stock
+from flatprep.nest.allowed import hands, matches, turns_of, why_no_stock
 from flatprep.nest.assemble import FilledSheet, Spot, spot
 from flatprep.nest.construct import Bin
 from flatprep.nest.keep import Supply, room_left
@@ -80,8 +80,11 @@ def split(items: Sequence[Item], stock: Sequence[StockSheet]) -> tuple[list[tupl
     return [tuple(group) for group in groups], unplaced
 
 
-def prepare_group(items: Sequence[Item], supplies: Sequence[Supply], ask: NestAsk) -> Group:
-    """Grow the parts, shrink the stock, take kept parts off it, resolve turns against the grain."""
+def prepare_group(items: Sequence[Item], supplies: Sequence[Supply], ask: NestAsk, *, prefer: bool = False) -> Group:
+    """Grow the parts, shrink the stock, take kept parts off it, resolve turns against the grain.
+
+    With `prefer` bends lie across the grain also where the material only had better have it so.
+    """
     owner: list[tuple[Item, Grown]] = []
     shapes: list[Shape] = []
     for item in items:
@@ -103,7 +106,8 @@ def prepare_group(items: Sequence[Item], supplies: Sequence[Supply], ask: NestAs
             continue
         kinds.append(stock)
         kept.append(kept_spots(supply, ask.items))
-        bins.append(Bin(container, tuple(turns_on(item, stock) for item, _ in owner)))
+        turns = (turns_of(item, s.mirror, stock, prefer=prefer) for s, (item, _) in zip(shapes, owner, strict=True))
+        bins.append(Bin(container, tuple(turns)))
     return Group(tuple(kinds), tuple(bins), tuple(shapes), tuple(owner), tuple(kept))
 
 

@@ -23,6 +23,10 @@ class Item:
         Any piece may be mirrored to save material.
     grain : str or None
         ``x`` or ``y``: this direction of the drawing lies along the stock's grain.
+    bends_deg : tuple of float
+        Directions of bend lines in the drawing, 0 to 180, where the material minds how they lie to its grain.
+    must_cross : bool
+        They must not lie along the stock's grain; else they had better not.
     filler : bool
         Laid where room is left when all else lies; never costs a sheet, nor length of the last one.
     """
@@ -36,6 +40,19 @@ class Item:
     may_flip: bool = False
     grain: str | None = None
     filler: bool = False
+    bends_deg: tuple[float, ...] = ()
+    must_cross: bool = False
+
+    @property
+    def minds_grain(self) -> bool:
+        """Whether its bends had better lie across the stock's grain; where its own grain is named, that goes before."""
+        return bool(self.bends_deg) and self.grain is None
+
+    @property
+    def flips(self) -> bool:
+        """Whether any piece may be mirrored; not where bends askew, which then lie otherwise, must cross the grain."""
+        square = all(bend % 90.0 == 0.0 for bend in self.bends_deg)
+        return self.may_flip and (square or not (self.must_cross and self.minds_grain))
 
     @property
     def name(self) -> str:

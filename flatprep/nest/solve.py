@@ -15,9 +15,10 @@ from flatprep.nest.clock import Clock
 from flatprep.nest.downsize import downsized, may_downsize
 from flatprep.nest.fill import NO_ROOM, fill
 from flatprep.nest.firstfit import Answer, first_answers
-from flatprep.nest.group import kept_spots, prepare_group, split
+from flatprep.nest.group import Group, kept_spots, prepare_group, split
 from flatprep.nest.improve import Effort, clock_share, improve
 from flatprep.nest.keep import KeepError, left_to_lay
+from flatprep.nest.objective import Value
 from flatprep.nest.problem import Budget, NestAsk
 from flatprep.nest.refill import refill, worth_refilling
 from flatprep.nest.shares import Means, share_out
@@ -32,6 +33,8 @@ REFILL_SHARE = 0.6
 """Share of a group's budget for filling sheets anew, where there are several with few pieces each."""
 SEARCH_SHARE = 0.95
 """Share of what is then left for the search, where cheaper sheets are looked at after it."""
+ACROSS_SHARE = 0.05
+"""So much more length, or cost, is taken into the bargain where all bends then lie across the grain."""
 ENDING_S = 0.3
 """Kept back for the end."""
 
@@ -160,11 +163,18 @@ class _Job:
         compiler.wait(ROWS)
         until = self._started + budget.seconds * FIRST_SHARE
         groups = self._groups
-        every = [first_answers(group, self._ask.margin_mm, self._stop(until, budget)) for group in groups]
+        stop = self._stop(until, budget)
+        every = [first_answers(group, self._ask.margin_mm, stop) for group in groups]
         for number, answers in enumerate(every):
             self._reporter.progress.update("first layout", done=number + 1, total=len(groups))
             faults, again = partial(self._faults, number), partial(self._again, number)
-            self._answers.append(sound_answer(next(answers), faults, again, self._ask.margin_mm))
+            first = sound_answer(next(answers), faults, again, self._ask.margin_mm)
+            if prefers_across(groups[number]):
+                kinder = first_answers(self._group(number, self._ask, prefer=True), self._ask.margin_mm, stop)
+                better = sound_answer(next(kinder), faults, lambda _, first=first: first, self._ask.margin_mm)
+                if is_about_as_good(better.value, first.value):
+                    first, every[number] = better, kinder
+            self._answers.append(first)
         self._reporter.tell(self.layout())
         for number, answers in enumerate(every):
             for answer in answers:
@@ -172,13 +182,16 @@ class _Job:
 
     def _again(self, number: int, more_mm: float) -> Answer:
         """Lay a group by the constructive rule with so much more room between its pieces and at the border."""
-        ask = with_more_room(self._ask, more_mm)
-        items, supplies = left_to_lay(ask)
-        main, _ = split([i for i in items if not i.filler], [s.stock for s in supplies])
-        group = prepare_group(main[number], supplies, ask)
+        group = self._group(number, with_more_room(self._ask, more_mm))
         margins = {s.name: s.margins_mm for s in self._ask.stock}
         stock = tuple(replace(s, margins_mm=margins[s.name]) for s in group.stock)
         return next(first_answers(replace(group, stock=stock), self._ask.margin_mm, self._stopped))
+
+    def _group(self, number: int, ask: NestAsk, *, prefer: bool = False) -> Group:
+        """Prepare a group anew, with other room or turns."""
+        items, supplies = left_to_lay(ask)
+        main, _ = split([i for i in items if not i.filler], [s.stock for s in supplies])
+        return prepare_group(main[number], supplies, ask, prefer=prefer)
 
     def improve(self, budget: Budget, compiler: Compiler) -> None:
         """Search group by group, the easy ones first (`share_out`)."""
@@ -235,6 +248,19 @@ def difficulty(answer: Answer) -> float:
     shapes = answer.group.shapes
     pieces = sum(count * sqrt(len(shapes[s].outer) + sum(map(len, shapes[s].holes))) for s, count in laid.items())
     return pieces * sqrt(len(laid))
+
+
+def prefers_across(group: Group) -> bool:
+    """Tell whether bends of a group had better lie across the grain, and some sheet has one."""
+    minds = any(item.minds_grain and not item.must_cross for item, _ in group.owner)
+    return minds and any(s.grain is not None for s in group.stock)
+
+
+def is_about_as_good(one: Value, other: Value) -> bool:
+    """Tell whether a nest leaves out no more, begins no more sheets, and costs `ACROSS_SHARE` more at the most."""
+    more = 1.0 + ACROSS_SHARE
+    few = one.left_out <= other.left_out and one.sheets <= other.sheets and one.remnants <= other.remnants
+    return few and one.cost <= more * other.cost and one.length_mm <= more * other.length_mm
 
 
 def merged(unplaced: Sequence[Unplaced]) -> list[Unplaced]:

@@ -22,14 +22,17 @@ from flatprep.geom.bulge import Floats
 from flatprep.geom.outward import outside_points
 from flatprep.model.drawing import Part
 from flatprep.model.layout import Layout, Placement, SheetLayout
+from flatprep.nest.across import grain_deg, off_grain_deg
 from flatprep.nest.allowed import SAME_THICKNESS_MM, same_turn, turns_on
 from flatprep.nest.objective import is_open
 from flatprep.nest.problem import Item, NestAsk, StockSheet
+from flatprep.practice.bends import ALONG_DEG
 
 SLACK_MM = 1e-6
 """What a gap may fall short, and an overlap be deep, for rounding."""
 CHORDS_MM = (0.01, 1e-4, 2e-7)
 """Chord errors tried one after the other."""
+SLACK_DEG = 1e-6
 SAME_SHARE = 1e-9
 
 SheetKey = tuple[str, float, float, tuple[tuple[str, float, bool, float, float], ...]]
@@ -252,6 +255,11 @@ def _piece_faults(number: int, p: Placement, item: Item, stock: StockSheet) -> I
     along = turns_on(item, stock)
     if item.grain is not None and not any(same_turn(p.turn_deg, t) for t in along or ()):
         yield LayoutFault("grain", f"sheet {number}: {who[0]} does not lie along the grain", number, who)
+    if item.must_cross and item.minds_grain and stock.grain is not None:
+        off = off_grain_deg(item.bends_deg, p.turn_deg, grain_deg(stock.grain), mirrored=p.mirrored)
+        if off < ALONG_DEG - SLACK_DEG:
+            text = f"sheet {number}: {who[0]} has a bend {off:.1f} degrees off the grain, along which it cracks"
+            yield LayoutFault("grain", text, number, who)
     if p.mirrored and not item.may_flip and item.quantity_opposite == 0:
         yield LayoutFault(
             "flip", f"sheet {number}: {who[0]} is turned over, which its entry does not allow", number, who

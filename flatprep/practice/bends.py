@@ -11,6 +11,8 @@ from flatprep.profile.hardware.table import table
 
 FILE = "bending"
 MOST_DEG = 165.0
+ALONG_DEG = 30.0
+"""A bend line nearer to the rolling direction than this runs along it (common practice)."""
 _METALS = {"aluminium": "aluminium", "low-carbon-steel": "steel", "stainless": "stainless"}
 
 

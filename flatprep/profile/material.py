@@ -50,6 +50,8 @@ class BendRule:
         Least inside radius in mm whatever the thickness.
     along_grain : float
         Factor on the radius for bend lines along the rolling direction; 1.0 where it makes no difference.
+    across_only : bool
+        It cracks along the rolling direction at any usual radius: bends go across it.
     bendable : bool
         False where the material does not bend plastically when cold.
     """
@@ -60,6 +62,7 @@ class BendRule:
     prefer: Points = ()
     refuse_mm: float = 0.0
     along_grain: float = 1.0
+    across_only: bool = False
     note: str = ""
     source: str = ""
 

@@ -124,7 +124,7 @@ def _verdict(table: Table) -> Verdict:
 
 
 def _bend(table: Table) -> BendRule:
-    table.only(("bendable", "table", "refuse", "prefer", "refuse_mm", "along_grain", "note", "source"))
+    table.only(("bendable", "table", "refuse", "prefer", "refuse_mm", "along_grain", "across_only", "note", "source"))
     return BendRule(
         bendable=table.flag("bendable", default=True),
         table=_ratios(table, "table"),
@@ -132,6 +132,7 @@ def _bend(table: Table) -> BendRule:
         prefer=_ratios(table, "prefer"),
         refuse_mm=table.number("refuse_mm", 0.0, least=0.0),
         along_grain=table.number("along_grain", 1.0, least=1.0),
+        across_only=table.flag("across_only"),
         note=table.text("note", ""),
         source=table.text("source", ""),
     )

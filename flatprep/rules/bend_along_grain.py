@@ -4,10 +4,8 @@ from collections.abc import Iterator
 
 from flatprep.measure.bends import bend_lines
 from flatprep.model.finding import Finding, Severity
+from flatprep.practice.bends import ALONG_DEG
 from flatprep.rules.base import Context, Rule
-
-ALONG_DEG = 30.0
-"""A bend line nearer to the rolling direction than this runs along it (common practice)."""
 
 
 def check(ctx: Context) -> Iterator[Finding]:
