@@ -78,7 +78,7 @@ def lint_job(job: Job, *, jobs: int = 1, progress: Progress | None = None) -> Li
             part.material,
             part.thickness_mm,
             part,
-            _calliper(job, part),
+            calliper_mm(job, part),
         )
         for part in job.parts
     ]
@@ -86,7 +86,7 @@ def lint_job(job: Job, *, jobs: int = 1, progress: Progress | None = None) -> Li
     return replace(report, linted=_with_near_misses(report.linted), notes=_unknown(tasks))
 
 
-def _calliper(job: Job, part: JobPart) -> float | None:
+def calliper_mm(job: Job, part: JobPart) -> float | None:
     """Return what the sheets for a part measure, where the stock says one thickness."""
     measured = {
         stock.measured_thickness_mm

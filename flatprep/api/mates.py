@@ -1,15 +1,20 @@
-"""What makes mates fit, as it is asked for on the command line: corners opened, slots as wide as the sheet needs."""
+"""What makes mates fit: corners opened, slots as wide as the sheet needs, as the command line or a job asks for it."""
 
-from flatprep.base.errors import UsageError
+from flatprep.base.errors import JobError, UsageError
 from flatprep.job.context import JobOptions
-from flatprep.job.corners import ReliefKind, WhichCorners
+from flatprep.job.corners import Corners, ReliefKind, WhichCorners
+from flatprep.job.values import Job, JobPart
 from flatprep.measure.relieved import ReliefAsk
 from flatprep.measure.slots import SlotAsk
+from flatprep.model.drawing import Part
 from flatprep.practice.tool import least_web_mm, tool_radius_mm
 from flatprep.profile.gauges import parse_thickness_mm
 from flatprep.profile.material import Material
 from flatprep.profile.material_load import load_material
 from flatprep.profile.process_load import load_process
+from flatprep.repair.reliefs import relieve_part
+from flatprep.repair.slots import resize_part
+from flatprep.repair.values import Change
 
 FARTHEST = 0.3
 """No sheet misses its nominal thickness by more than this share of it."""
@@ -61,3 +66,50 @@ def slot_ask(measured: str, clearance_mm: float, said: JobOptions) -> SlotAsk:
 def _sheet(said: JobOptions) -> tuple[Material | None, float | None]:
     material = load_material(said.material, said.profile_folders) if said.material else None
     return material, parse_thickness_mm(said.thickness, "mm", material) if said.thickness else None
+
+
+def check_measured(job: Job) -> None:
+    """Refuse a job that wants slots as the sheet measures, where no sheet was measured.
+
+    Raises
+    ------
+    JobError
+    """
+    asked = any(part.slot_clearance_mm is not None for part in job.parts)
+    if asked and not any(stock.measured_thickness_mm for stock in job.stock):
+        raise JobError(
+            f'{job.path}: slots = "measured": no stock says what it measures', "add measured_thickness to [[stock]]"
+        )
+
+
+def as_asked(part: Part, ask: JobPart, measured_mm: float | None) -> tuple[Part, tuple[str, ...]]:
+    """Resize slots and open corners of a job's part, where the job asks for it.
+
+    Parameters
+    ----------
+    part
+    ask
+    measured_mm
+        What the sheets for it measure, None where nobody measured, or where they differ.
+
+    Returns
+    -------
+    part, changes
+        The part as it is cut (the same where nothing changes), and what was changed, in words.
+    """
+    changes: list[Change] = []
+    family = ask.material.family if ask.material else None
+    clearance, nominal, kind = ask.slot_clearance_mm, ask.thickness_mm, ask.relief
+    if clearance is not None and nominal is not None and measured_mm is not None:
+        part, changes, _ = resize_part(part, SlotAsk(nominal, measured_mm + clearance), ())
+    radius = tool_radius_mm(ask.process, family, nominal)
+    if kind is not None and radius > 0.0:
+        web = least_web_mm(ask.process, family, nominal)
+        part, opened, _ = relieve_part(part, ReliefAsk(kind, radius, web, ask.corners or Corners.SQUARE), ())
+        changes = changes + opened
+    return part, tuple(map(_said, changes))
+
+
+def _said(change: Change) -> str:
+    x, y = change.at or (0.0, 0.0)
+    return f"{change.message} at ({x:.3f}, {y:.3f})"

@@ -1,9 +1,10 @@
 """A job with its drawings read: every part of it with its shape, as it will be cut."""
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
-from flatprep.api.lint import lint_job
+from flatprep.api.lint import calliper_mm, lint_job
+from flatprep.api.mates import as_asked, check_measured
 from flatprep.base.errors import DrawingError
 from flatprep.base.progress import Progress
 from flatprep.bench.part import BenchPart, bench_part
@@ -27,7 +28,8 @@ class Piece:
     Attributes
     ----------
     part : Part
-        Its shape as it will be cut: holes that bench work opens up are changed as the job's `pilots` says.
+        Its shape as it will be cut: holes that bench work opens up are changed as the job's `pilots` says, slots and
+        corners as `slots` and `relief` say.
     drawn : Part
         Its shape as drawn.
     ask : JobPart
@@ -70,8 +72,9 @@ def read_job(job: Job, *, jobs: int = 1, progress: Progress | None = None) -> Re
     DrawingError
         When no drawing of the job can be used.
     JobError
-        When bench work names holes that are not there.
+        When bench work names holes that are not there, or slots are to fit sheets that nobody measured.
     """
+    check_measured(job)
     report = lint_job(job, jobs=jobs, progress=progress)
     answers = {one.file: one for one in report.linted}
     pieces: list[Piece] = []
@@ -111,10 +114,11 @@ def _why_lost(report: LintReport, ask: JobPart) -> str:
 
 def _piece(job: Job, ask: JobPart, drawing: Drawing, part: Part) -> Piece:
     bench = bench_part(ask, part, job, drawing)
-    done = apply_pilots(bench)
+    mated, mates = as_asked(part, ask, calliper_mm(job, ask))
+    done = apply_pilots(replace(bench, part=mated))
     faulty = any(f.kind in _FAULTS_OF_A_COPY for f in drawing.faults)
     changed = done.part is not part or faulty or bool(drawing.loose)
-    return Piece(done.part, part, ask, drawing, bench, changed, done.changes)
+    return Piece(done.part, part, ask, drawing, bench, changed, (*mates, *done.changes))
 
 
 def quantity(job: Job, ask: JobPart) -> int:

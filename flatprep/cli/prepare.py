@@ -81,6 +81,7 @@ def _once(job_file: Path, folder: Path, budget: Budget, said: JobOptions, also: 
 
 def summary(done: Prepared, folder: Path) -> str:
     """Say it in a few lines for people; the last one names what asks for a look."""
+    changes = sum(len(piece.changes) for piece in done.read.pieces)
     sheets = len(done.nested.layout.sheets) if done.nested else 0
     money, mass = done.estimate.material_cost, done.estimate.mass_kg
     lines = [
@@ -89,6 +90,7 @@ def summary(done: Prepared, folder: Path) -> str:
         "material cost: not known"
         if money is None
         else f"material cost: {money:.2f} {done.estimate.currency or ''}".rstrip(),
+        *([f"{changes} changes against the drawings, told on the parts' pages"] if changes else []),
         f"report: {folder / 'report.html'}",
     ]
     errors, warnings = done.bundle.count(Severity.ERROR), done.bundle.count(Severity.WARNING)

@@ -7,6 +7,7 @@ from pathlib import Path
 
 from flatprep.base.errors import FlatprepError
 from flatprep.base.units import MM_PER_UNIT
+from flatprep.job.corners import Corners, WhichCorners
 from flatprep.job.reach import Reach
 from flatprep.job.values import Accept, Point
 from flatprep.model.drawing import Role
@@ -167,6 +168,16 @@ def accepts(table: Table, context: Context) -> tuple[Accept, ...]:
         one.only(("rule", "reason", "at"))
         out.append(Accept(one.text("rule"), one.text("reason"), context.point_mm(one, "at") if one.has("at") else None))
     return tuple(out)
+
+
+def corners(table: Table, context: Context) -> WhichCorners | None:
+    """Return which inside corners matter: one of `Corners`, or places."""
+    value = table.get("corners")
+    if value is None:
+        return None
+    if isinstance(value, str):
+        return Corners(table.choice("corners", tuple(Corners)))
+    return context.points_mm(table, "corners")
 
 
 def _named(table: Table, key: str, value: object, err: FlatprepError) -> FlatprepError:

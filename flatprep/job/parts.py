@@ -4,7 +4,7 @@ from collections.abc import Mapping
 from pathlib import Path
 
 from flatprep.base.names import one_line, printable
-from flatprep.job.context import Context, accepts, roles
+from flatprep.job.context import Context, accepts, corners, roles
 from flatprep.job.cutlist import CutRow
 from flatprep.job.values import JobPart, Tabs
 from flatprep.job.works import read_bend, read_work
@@ -15,7 +15,7 @@ from flatprep.profile.toml_check import Table
 KEYS = (
     "drawing", "name", "drawing_units", "material", "thickness", "quantity", "quantity_opposite", "turns", "may_flip",
     "grain", "process", "work", "bend", "layers", "revision", "note", "filler", "finish", "good_face", "accept",
-    "tabs",
+    "tabs", "corners",
 )  # fmt: skip
 """Every key of a ``[[part]]``."""
 
@@ -47,6 +47,7 @@ def read_part(table: Table, context: Context, process: Process) -> JobPart:
         finish=table.text("finish", ""),
         good_face=table.choice("good_face", ("A", "B")) if table.has("good_face") else None,
         accepts=accepts(table, context),
+        corners=corners(table, context),
         tabs=(Tabs.ALL if table.flag("tabs") else Tabs.NONE) if table.has("tabs") else None,
         own=context.options.profile_folders,
         where=table.place,

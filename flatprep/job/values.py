@@ -6,6 +6,7 @@ from decimal import Decimal
 from enum import StrEnum
 from pathlib import Path
 
+from flatprep.job.corners import ReliefKind, WhichCorners
 from flatprep.job.terms import CostTerms
 from flatprep.model.drawing import Role
 from flatprep.profile.material import Material
@@ -151,6 +152,12 @@ class JobPart:
     finish: str = ""
     good_face: str | None = None
     accepts: tuple[Accept, ...] = ()
+    corners: WhichCorners | None = None
+    """Inside corners that matter; None: every one for lint, the square ones for relief."""
+    relief: ReliefKind | None = None
+    """How the job has them opened."""
+    slot_clearance_mm: float | None = None
+    """Slots for the sheet are cut so much wider than it measures; None: as drawn."""
     tabs: Tabs | None = None
     """None: as the job says."""
     own: tuple[Path, ...] = ()
@@ -182,6 +189,34 @@ class Stock:
     """File and key, for messages: ``job.toml: stock 1 (al3)``."""
     margins_mm: tuple[float, float, float, float] | None = None
     keep_out: tuple[tuple[float, float, float, float], ...] = ()
+    holes: tuple[tuple[Point, ...], ...] = ()
+    rack_file: str = ""
+    """Where it stands in the rack: ``stock.toml``, or a remnant's drawing; empty for stock of the job itself."""
+
+
+@dataclass(frozen=True, slots=True)
+class Rack:
+    """A rack.
+
+    Attributes
+    ----------
+    folder : Path
+    drawings : tuple of Path
+        Of the remnants, but for those that a table of ``stock.toml`` names as its outline.
+    remnant_price : Decimal or None
+        Of a remnant whose drawing states none.
+    sheets : tuple of Stock
+        From ``stock.toml``.
+    """
+
+    folder: Path
+    drawings: tuple[Path, ...] = ()
+    remnant_price: Decimal | None = None
+    sheets: tuple[Stock, ...] = ()
+
+    def inside(self, path: Path) -> str:
+        """Path of a drawing as the rack calls it, with forward slashes."""
+        return path.relative_to(self.folder).as_posix()
 
 
 @dataclass(frozen=True, slots=True)

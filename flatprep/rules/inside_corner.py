@@ -1,11 +1,13 @@
 """inside-corner: corners of holes and notches that a round tool cannot reach."""
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 
+from flatprep.job.corners import Corners, Point
 from flatprep.measure.corners import Corner
 from flatprep.measure.part import MeasuredPart
+from flatprep.measure.relieved import ReliefAsk, among, relieved
 from flatprep.model.finding import Finding, Severity
-from flatprep.practice.tool import tool_radius_mm
+from flatprep.practice.tool import least_web_mm, tool_radius_mm
 from flatprep.rules.base import Context, Rule
 
 
@@ -14,16 +16,33 @@ def check(ctx: Context) -> Iterator[Finding]:
     radius = tool_radius_mm(ctx.process, ctx.family, ctx.thickness_mm) if ctx.process else 0.0
     if radius <= 0.0:
         return
+    which = (ctx.job_part.corners if ctx.job_part else None) or Corners.ALL
     for part in ctx.parts:
-        for corner in part.unreached_corners(radius, ctx.slack_mm()):
-            yield _told(part, corner, radius)
+        missed = among(part.unreached_corners(radius, ctx.slack_mm()), which)
+        opened = _opened(ctx, part, missed, radius) if missed else {}
+        for corner in missed:
+            why = opened.get(corner.at)
+            if why != "":
+                yield _told(part, corner, radius, why)
 
 
-def _told(part: MeasuredPart, corner: Corner, radius: float) -> Finding:
+def _opened(ctx: Context, part: MeasuredPart, missed: Sequence[Corner], radius: float) -> dict[Point, str]:
+    """Corners that the job has relieved, by their places; with the reason where that cannot be."""
+    job = ctx.job_part
+    if job is None or job.relief is None or ctx.process is None:
+        return {}
+    web = least_web_mm(ctx.process, ctx.family, ctx.thickness_mm)
+    ask = ReliefAsk(job.relief, radius, web, job.corners or Corners.SQUARE)
+    _, told = relieved(part, ask, among(missed, ask.corners))
+    return {one.corner.at: one.why_not for one in told}
+
+
+def _told(part: MeasuredPart, corner: Corner, radius: float, why: str | None) -> Finding:
+    no_relief = f", and no relief is cut: {why}" if why else ""
     return Finding(
         rule=RULE.id,
         severity=RULE.severity,
-        message=f"the tool leaves {corner.gap_mm:.2f} mm of material in this corner",
+        message=f"the tool leaves {corner.gap_mm:.2f} mm of material in this corner{no_relief}",
         part=part.name,
         at=corner.at,
         measured=corner.radius_mm,
