@@ -1,13 +1,14 @@
 """Picture of a sheet for the page: parts are drawn once and placed by reference, so that long jobs stay small."""
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import lru_cache
 from html import escape
 
-from shapely.geometry import LineString
+from shapely.geometry import LineString, Polygon
 
 from flatprep.geom.bulge import Floats, Similarity
-from flatprep.geom.polygons import polygon, valid_polygon
+from flatprep.geom.polygons import ring, valid_polygon
 from flatprep.model.drawing import Part
 from flatprep.model.layout import Placement, SheetLayout
 from flatprep.report.bundle import Offcut
@@ -91,8 +92,8 @@ def _placed(placement: Placement, shape: Shape, unit: float) -> str:
 
 def _label(placement: Placement, shape: Shape, unit: float) -> str:
     """Return the part's name in its widest place, or its number, or nothing: what fits in readable size."""
-    outer, *inner = (placement.motion.polyline(contour.xyb) for contour in shape.part.contours)
-    x, y, across = label_place(outer, inner)
+    outer, *inner = (placement.motion.points(points) for points in _rings(shape.part))
+    x, y, across = label_place(Polygon(outer, inner))
     for words in (placement.part, str(shape.number)):
         size = min(1.5 * unit, across / (0.62 * len(words) + 0.6))
         if size >= 0.6 * unit:
@@ -100,9 +101,15 @@ def _label(placement: Placement, shape: Shape, unit: float) -> str:
     return ""
 
 
-def label_place(outer: Floats, holes: Sequence[Floats]) -> tuple[float, float, float]:
-    """Middle of a wide level run of material half way up the part, and the run's width, mm."""
-    shape = valid_polygon(polygon(outer, holes, chord_mm=0.5))
+@lru_cache(maxsize=1024)
+def _rings(part: Part) -> tuple[Floats, ...]:
+    """Contours of a part by points; it may lie on many sheets many times."""
+    return tuple(ring(contour.xyb, 0.5) for contour in part.contours)
+
+
+def label_place(region: Polygon) -> tuple[float, float, float]:
+    """Middle of a wide level run of material half way up a piece, and the run's width, mm."""
+    shape = valid_polygon(region)
     middle = shape.representative_point()  # which is the middle of the widest run at that height
     x0, _, x1, _ = shape.bounds
     run = shape.intersection(LineString([(x0 - 1, middle.y), (x1 + 1, middle.y)]))

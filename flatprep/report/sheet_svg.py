@@ -2,6 +2,7 @@
 
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
+from functools import lru_cache
 
 import numpy as np
 import shapely
@@ -137,11 +138,10 @@ def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, look: Look)
 
 def _name(page: svgwrite.Drawing, part: Part, placement: Placement, turn: int, em: float) -> None:
     """Turn of cutting and name of a piece in its largest inscribed circle, no taller than that lets it be read."""
-    shape = valid_polygon(polygon(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1))
-    circle = shapely.maximum_inscribed_circle(shape, tolerance=0.05 * min(part.size_mm))
-    x, y = placement.motion.points(np.asarray(circle.coords)[:1])[0]
+    centre, radius = _inscribed(part)
+    x, y = placement.motion.points(np.array([centre]))[0]
     words = f"{turn}: {placement.part} {placement.copy}"
-    height = min(em, float(circle.length), 1.6 * max(part.size_mm) / len(words))
+    height = min(em, radius, 1.6 * max(part.size_mm) / len(words))
     x0, y0, x1, y1 = Contour(placement.motion.polyline(part.outer.xyb)).bounds
     if y1 - y0 <= x1 - x0:
         _text(page, words, (float(x), float(-y) + height / 3), height, anchor="middle")
@@ -149,6 +149,15 @@ def _name(page: svgwrite.Drawing, part: Part, placement: Placement, turn: int, e
     upright = page.g(transform=f"rotate(-90 {x:.3f} {-y:.3f})")
     _text(upright, words, (float(x), float(-y) + height / 3), height, anchor="middle")
     page.add(upright)
+
+
+@lru_cache(maxsize=1024)
+def _inscribed(part: Part) -> tuple[tuple[float, float], float]:
+    """Centre and radius of a part's largest inscribed circle, found once for all pieces of it."""
+    shape = valid_polygon(polygon(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1))
+    circle = shapely.maximum_inscribed_circle(shape, tolerance=0.05 * min(part.size_mm))
+    x, y = circle.coords[0]
+    return (x, y), float(circle.length)
 
 
 def _offcut(page: svgwrite.Drawing, offcut: Rectangle, em: float, units: str) -> None:

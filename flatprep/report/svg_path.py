@@ -1,6 +1,7 @@
 """Bulge polylines as SVG path data with true arcs; y is turned over, as SVG counts it downwards."""
 
 from collections.abc import Iterable
+from functools import lru_cache
 
 import numpy as np
 
@@ -35,8 +36,9 @@ def path_data(xyb: Floats, *, closed: bool, decimals: int = 3) -> str:
     return "".join(words) + ("Z" if closed else "")
 
 
+@lru_cache(maxsize=1024)
 def part_path(part: Part, *, decimals: int = 3) -> str:
-    """Outer contour and holes as one path, for ``fill-rule="evenodd"``."""
+    """Outer contour and holes as one path, for ``fill-rule="evenodd"``; written once for all pieces of a part."""
     return "".join(path_data(c.xyb, closed=True, decimals=decimals) for c in part.contours)
 
 

@@ -8,6 +8,7 @@ import pytest
 
 from flatprep.geom import bulge
 from flatprep.geom.bulge import Similarity
+from flatprep.geom.polygons import polygon
 from flatprep.report.badges import MOST_BADGES, finding_badges, spread, step_badges
 from flatprep.report.bundle import Offcut
 from flatprep.report.part_figure import frame, nice_length_mm, part_figure
@@ -139,6 +140,6 @@ def test_a_name_stands_on_material():
     # a 100 mm square with a slot through the middle height: the run of material beside it is 30 mm wide
     outer = np.array([[0.0, 0, 0], [100, 0, 0], [100, 100, 0], [0, 100, 0]])
     slot = bulge.reverse(np.array([[30.0, 40, 0], [90, 40, 0], [90, 60, 0], [30, 60, 0]]), closed=True)
-    x, y, across = label_place(outer, [slot])
+    x, y, across = label_place(polygon(outer, [slot], chord_mm=0.01))
     assert 40 < y < 60
     assert (x, across) == pytest.approx((15.0, 30.0))
