@@ -211,7 +211,8 @@ class _Job:
         search = clock_share(clock, SEARCH_SHARE if may_downsize(self._answers[number]) else 1.0)
         improve(self._answers[number], margin, Effort(search, seed, budget.jobs), take)
         clock.spend(search.evaluations)
-        for cheaper in downsized(self._answers[number], margin, clock.passed):
+        late = self._stopped if budget.steps is not None else clock.passed  # it is soon done, and counts no steps
+        for cheaper in downsized(self._answers[number], margin, late):
             take(cheaper)
         return search.passed()
 
