@@ -37,5 +37,6 @@ def break_table(read: ReadJob, budget: Budget, *, progress: Progress | None = No
     done = []
     for sets in numbers:
         several = replace(read, job=replace(read.job, sets=sets, stock=bought(read.job.stock)))
-        done.append(estimate_job(several, nest_job(several, share, progress=progress).layout))
+        nested = nest_job(several, share, progress=progress)
+        done.append(estimate_job(nested.read, nested.layout))
     return quantity_breaks(done)

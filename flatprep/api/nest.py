@@ -6,7 +6,10 @@ from pathlib import Path
 
 import numpy as np
 
+from flatprep.api.grain import bends_deg, grain_notes, grain_warnings, must_cross
 from flatprep.api.pieces import Piece, ReadJob
+from flatprep.api.remnants import with_remnants
+from flatprep.api.tabs import tab_notes, tab_warnings
 from flatprep.base.errors import DrawingError, JobError
 from flatprep.base.progress import Progress, Silent
 from flatprep.bench.sides import side_bound
@@ -30,12 +33,19 @@ def never() -> bool:
 
 @dataclass(frozen=True, slots=True)
 class Nested:
-    """A layout and what it is made of."""
+    """A layout and what it is made of.
+
+    Attributes
+    ----------
+    read : ReadJob
+        The job, with the remnants of its rack that it can use among its stock.
+    """
 
     read: ReadJob
     layout: Layout
     ask: NestAsk
     warnings: tuple[str, ...] = ()
+    notes: tuple[str, ...] = ()
     also: tuple[Form, ...] = ()
     """Other forms that each sheet is written in."""
 
@@ -67,23 +77,30 @@ def nest_job(
     Raises
     ------
     JobError
-        When the job names no stock, or a remnant's outline cannot be used.
+        When the job names no stock, or an outline of its stock cannot be used; a remnant of the rack that cannot be
+        used is left out, with a warning.
     KeepError
         When what is kept does not fit the job, or is not sound; the faults are named.
     """
+    read_job, shelf = with_remnants(read_job, progress)
     ask = nest_ask(read_job)
     if keep is not None:
         ask = replace(ask, keep=tuple(KeptSheet(s.stock, s.placements) for s in keep.sheets if s.placements))
     layout = nest(ask, budget, progress or Silent(), on_better, stop)
     layout = replace(layout, unplaced=(*layout.unplaced, *read_job.lost))
-    return Nested(read_job, layout, ask, spacing_warnings(read_job.job))
+    warnings = (*spacing_warnings(read_job.job), *tab_warnings(read_job), *grain_warnings(ask), *shelf.warnings)
+    notes = (*shelf.notes, *tab_notes(read_job), *grain_notes(read_job, ask, layout))
+    return Nested(read_job, layout, ask, warnings, notes)
 
 
 def nest_ask(read_job: ReadJob) -> NestAsk:
     """Put a job into the words of the nest."""
     job = read_job.job
     if not job.stock:
-        raise JobError(f"{job.path}: no [[stock]]: nothing to lay the parts on", "add a [[stock]] table with its size")
+        rack = f" and nothing of use in the rack {job.rack.folder}" if job.rack else ""
+        raise JobError(
+            f"{job.path}: no [[stock]]{rack}: nothing to lay the parts on", "add a [[stock]] table with its size"
+        )
     windows = job.windows if job.windows is not None else job.process.windows
     items = tuple(_item(job, piece) for piece in read_job.pieces)
     stock = tuple(_sheet(job, one) for one in job.stock)
@@ -120,6 +137,8 @@ def _item(job: Job, piece: Piece) -> Item:
         may_flip=ask.may_flip and not _keeps_its_side(piece),
         grain=ask.grain,
         filler=ask.filler,
+        bends_deg=bends_deg(piece),
+        must_cross=must_cross(piece),
     )
 
 
@@ -163,4 +182,4 @@ def _remnant(job: Job, stock: Stock) -> tuple[Floats, tuple[Floats, ...]]:
             return outline_of(drawing)
         except DrawingError as err:
             raise JobError(f"{job.path}: stock {stock.name!r}: {err.message}", err.remedy) from err
-    return np.array(stock.outline, dtype=np.float64), ()
+    return np.array(stock.outline, dtype=np.float64), tuple(np.array(h, dtype=np.float64) for h in stock.holes)

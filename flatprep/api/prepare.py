@@ -84,8 +84,9 @@ def prepare_job(
             on_better(layout)
 
     nested = None
-    if read.job.stock:
+    if read.job.stock or read.job.rack:
         nested = nest_job(read, budget, progress=progress, on_better=better, stop=stop)
+        read = nested.read
     money = estimate_job(read, nested.layout if nested else None)
     return Prepared(read, steps, money, nested, _bundle(read, steps, money, nested, points))
 
@@ -159,7 +160,7 @@ def _bundle(
         checklist=steps,
         unreadable=tuple((u.file, u.message) for u in read.report.unreadable),
         files=tuple(files),
-        assumed=(*read.report.notes, *(nested.warnings if nested else ())),
+        assumed=(*read.report.notes, *((*nested.warnings, *nested.notes) if nested else ())),
         cautions=steps.cautions,
         search=tuple(points),
         offcuts=_offcuts(nested) if nested else (),

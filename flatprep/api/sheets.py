@@ -19,7 +19,7 @@ from flatprep.job.values import Job, JobPart
 from flatprep.model.drawing import Part
 from flatprep.model.layout import SheetLayout
 from flatprep.nest.offcut import Offcut, offcut_of
-from flatprep.report.layout_json import PartSource, layout_document, sheet_name
+from flatprep.report.layout_json import PartSource, RackSource, layout_document, sheet_name
 from flatprep.report.sheet_svg import Extras, sheet_svg
 
 
@@ -61,8 +61,8 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
         if piece.changed:
             yield folder / copies[piece.name], part_drawing(piece.part)
     parts = {piece.name: piece.part for piece in pieces}
-    title = (job.name, f"revision {job.revision}") if job.revision else (job.name,)
     tabs = job_tabs(nested.read)
+    title = (job.name, f"revision {job.revision}") if job.revision else (job.name,)
     for number, sheet in enumerate(sheets, start=1):
         stem = sheet_name(number)
         yield folder / f"{stem}.dxf", sheet_drawing(sheet, parts, title=title, tabs=tabs)
@@ -72,28 +72,41 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
                 continue
             shapes = _with_kerf(pieces) if form is Form.KERF else parts
             yield folder / f"{stem}-{form}.dxf", sheet_drawing(sheet, shapes, title=title, form=FORMS[form])
-        rest = offcut_of(sheet, parts, nested.layout.spacing_mm)
         gaps = tabs_drawing(sheet, nested.read, tabs)
         if gaps is not None or (folder / f"{stem}-tabs.dxf").exists():
             yield folder / f"{stem}-tabs.dxf", gaps
+        rest = offcut_of(sheet, parts, nested.layout.spacing_mm)
         extras = Extras(job.units, rest.rectangle if rest else None, tabs)
         svg = sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=job.name, extras=extras)
         yield folder / f"{stem}.svg", svg
         if rest is not None:
-            yield folder / f"{stem}-rest.dxf", border_drawing(rest.outline, rest.holes, notes=_label(job, sheet, rest))
+            written = (*label_lines(_label(job, sheet, number)), _size(rest))
+            yield folder / f"{stem}-rest.dxf", border_drawing(rest.outline, rest.holes, notes=written)
         elif (folder / f"{stem}-rest.dxf").exists():
             yield folder / f"{stem}-rest.dxf", None
     for older in _older_sheets(folder, len(sheets), nested.also):
         yield older, None
     sources = [_source(job, piece, folder / copies[piece.name]) for piece in pieces]
-    yield folder / "layout.json", json.dumps(layout_document(nested.layout, sources, folder), indent=1) + "\n"
+    document = layout_document(nested.layout, sources, folder, _rack(job))
+    yield folder / "layout.json", json.dumps(document, indent=1) + "\n"
 
 
-def _label(job: Job, sheet: SheetLayout, rest: Offcut) -> tuple[str, ...]:
-    """Say what to write on the offcut: material, thickness, largest rectangle, where it is from."""
+def _label(job: Job, sheet: SheetLayout, number: int) -> RemnantLabel:
+    """Say what is to be written on the rest of a sheet."""
+    grain = next((stock.grain for stock in job.stock if stock.name == sheet.stock), None)
+    called = f"{job.name} {job.revision}".rstrip()
+    return RemnantLabel(sheet.material, thickness_text(sheet.thickness_mm), f"{called}, rest of sheet {number}", grain)
+
+
+def _size(rest: Offcut) -> str:
     x0, y0, x1, y1 = rest.rectangle
-    what = f"{sheet.material} {sheet.thickness_mm:g} mm, rest of {sheet.stock}"
-    return what, f"largest rectangle {x1 - x0:.0f} x {y1 - y0:.0f} mm", f"after {job.name} {job.revision}".rstrip()
+    return f"largest rectangle {x1 - x0:.0f} x {y1 - y0:.0f} mm"
+
+
+def _rack(job: Job) -> RackSource | None:
+    if job.rack is None:
+        return None
+    return RackSource(job.rack.folder, {s.name: s.rack_file for s in job.stock if s.rack_file})
 
 
 def _older_sheets(folder: Path, count: int, also: Sequence[Form]) -> Iterator[Path]:

@@ -2,14 +2,17 @@
 
 from collections.abc import Callable
 from pathlib import Path
-from typing import Any, TypeVar
+from typing import TYPE_CHECKING, Any, TypeVar
 
 import click
 
 from flatprep.api.pieces import ReadJob, read_job
 from flatprep.base.progress import Progress
-from flatprep.cli.talk import tell, warn
+from flatprep.cli.talk import note, tell, warn
 from flatprep.job.values import Job
+
+if TYPE_CHECKING:  # a checklist does not pay for the search
+    from flatprep.api.nest import Nested
 
 Command = TypeVar("Command", bound=Callable[..., Any])
 
@@ -32,3 +35,11 @@ def read_drawings(job: Job, jobs: int, progress: Progress) -> ReadJob:
         mended = ", recovered" if linted.drawing.recovered else ""
         tell(f"{linted.file}: {len(linted.drawing.parts)} parts, {units}{mended}")
     return read
+
+
+def say_of_nest(nested: "Nested") -> None:
+    """Say on stderr what a nest warns of, and what is worth knowing of it."""
+    for warning in nested.warnings:
+        warn(warning)
+    for words in nested.notes:
+        note(words)

@@ -12,10 +12,10 @@ from flatprep.api.stored import stored_layout
 from flatprep.base.errors import ExitStatus
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
-from flatprep.cli.jobs import job_argument, read_drawings
-from flatprep.cli.options import other_forms, output_format, said_about_parts, search_budget
+from flatprep.cli.jobs import job_argument, read_drawings, say_of_nest
+from flatprep.cli.options import other_forms, output_format, rack_option, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
-from flatprep.cli.talk import say, warn
+from flatprep.cli.talk import say
 from flatprep.drawing.forms import Form
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
@@ -27,6 +27,7 @@ from flatprep.report.layout_text import layout_text
 @job_argument
 @click.option("--out", "folder", required=True, type=click.Path(path_type=Path), help="folder for layout and sheets")
 @click.option("--keep", type=click.Path(path_type=Path), metavar="LAYOUT.json", help="placements that stay as they are")
+@rack_option
 @said_about_parts
 @search_budget
 @other_forms
@@ -52,8 +53,8 @@ def command(
     kept = stored_layout(keep) if keep else None
     with claimed(folder), progress_line() as progress:
         read = read_drawings(job, budget.jobs, progress)
-        with stoppable() as stop:
         check_forms(read, also)
+        with stoppable() as stop:
             nested = nest_job(read, budget, progress=progress, on_better=stop.keep, stop=stop, keep=kept)
             nested = with_forms(nested, also)
             say_of_nest(nested)

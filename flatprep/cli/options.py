@@ -40,6 +40,7 @@ def said_about_parts(command: Callable[..., Any]) -> Any:
             profile_folders=words.pop("folders"),
             layers=parse_roles(words.pop("layers")),
             anywhere=words.pop("anywhere", False),
+            rack=words.pop("rack", None),
             **{key: words.pop(key) for key in ("process", "material", "thickness", "units")},
         )
         return command(*args, said=said, **words)
@@ -56,6 +57,13 @@ def said_about_parts(command: Callable[..., Any]) -> Any:
         click.option("--material", metavar="ID", help="material id or designation"),
         click.option("--process", metavar="ID|FILE", help="process id or profile file"),
     )  # fmt: skip
+
+
+def rack_option(command: Command) -> Command:
+    """Add ``--rack``, for a command that has `said_about_parts`; stands above it."""
+    return click.option(
+        "--rack", metavar="DIR", type=click.Path(path_type=Path), help="sheets and remnants of the workshop, as stock"
+    )(command)
 
 
 def search_budget(command: Callable[..., Any]) -> Any:

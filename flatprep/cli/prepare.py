@@ -10,10 +10,10 @@ from flatprep.api.shared import check_forms, with_forms
 from flatprep.base.errors import ExitStatus, FlatprepError
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
-from flatprep.cli.jobs import job_argument, read_drawings
-from flatprep.cli.options import other_forms, said_about_parts, search_budget
+from flatprep.cli.jobs import job_argument, read_drawings, say_of_nest
+from flatprep.cli.options import other_forms, rack_option, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
-from flatprep.cli.talk import say, warn
+from flatprep.cli.talk import say
 from flatprep.cli.watch import inputs, wait_for_change
 from flatprep.drawing.forms import Form
 from flatprep.job.context import JobOptions
@@ -28,6 +28,7 @@ from flatprep.nest.problem import Budget
 @click.option(
     "--watch", is_flag=True, help="run again whenever the job or one of its drawings changes; ends with Ctrl-C"
 )
+@rack_option
 @said_about_parts
 @search_budget
 @other_forms
@@ -65,14 +66,13 @@ def _once(job_file: Path, folder: Path, budget: Budget, said: JobOptions, also: 
     job = load_job(job_file, said)
     with claimed(folder), progress_line() as progress:
         read = read_drawings(job, budget.jobs, progress)
-        with stoppable() as stop:
         check_forms(read, also)
+        with stoppable() as stop:
             done = prepare_job(read, budget, progress=progress, on_better=stop.keep, stop=stop)
-            for warning in done.nested.warnings if done.nested else ():
-                warn(warning)
             if done.nested:
-                done = replace(done, nested=with_forms(done.nested, also))
-                say_of_nest(done.nested)
+                nested = with_forms(done.nested, also)
+                say_of_nest(nested)
+                done = replace(done, nested=nested)
             write_prepared(done, folder)
     say(summary(done, folder))
     status = ExitStatus.FINDINGS if done.loud or done.unplaced else ExitStatus.CLEAN

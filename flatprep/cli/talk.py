@@ -50,6 +50,12 @@ def warn(words: str) -> None:
         say(f"warning: {words}", err=True)
 
 
+def note(words: str) -> None:
+    """Say something worth knowing, unless the command is quiet."""
+    if level() > Talk.QUIET:
+        say(words, err=True)
+
+
 def tell(words: str) -> None:
     """Say what is being done, if the command is verbose."""
     if level() is Talk.VERBOSE:

@@ -8,6 +8,7 @@ from pathlib import Path
 from flatprep.base.errors import FlatprepError
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
+from flatprep.job.rack import LIST
 
 _EVERY_S = 0.5
 
@@ -18,6 +19,7 @@ def inputs(job_file: Path, said: JobOptions) -> tuple[Path, ...]:
     with suppress(FlatprepError):
         job = load_job(job_file, said)
         files += [part.drawing for part in job.parts]
+        files += [*job.rack.drawings, job.rack.folder / LIST, job.rack.folder] if job.rack else []
         files += [stock.outline for stock in job.stock if isinstance(stock.outline, Path)]
     return tuple(dict.fromkeys(files))
 

@@ -40,6 +40,8 @@ class JobOptions:
         Before the job's own.
     anywhere : bool
         Lets the job read files that lie neither under its folder nor beside it.
+    rack : Path or None
+        Instead of the job's.
     """
 
     profile_folders: tuple[Path, ...] = ()
@@ -49,6 +51,7 @@ class JobOptions:
     units: str | None = None
     layers: Mapping[str, Role] = field(default_factory=dict)
     anywhere: bool = False
+    rack: Path | None = None
 
 
 @dataclass(frozen=True, slots=True)

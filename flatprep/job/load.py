@@ -11,10 +11,11 @@ from flatprep.base.units import MM_PER_UNIT
 from flatprep.job.context import Context, JobOptions, accepts, money, roles
 from flatprep.job.cutlist import load_cutlist
 from flatprep.job.parts import cells, part_of_row, read_part
+from flatprep.job.rack import load_rack
 from flatprep.job.reach import Reach
 from flatprep.job.stocks import read_stock
 from flatprep.job.terms import CostTerms, Discount, Share
-from flatprep.job.values import Job, JobPart, Pilots, Stock
+from flatprep.job.values import Job, JobPart, Pilots, Rack, Stock, Tabs
 from flatprep.job.works import read_joint
 from flatprep.profile.material_load import all_materials
 from flatprep.profile.process import Process
@@ -23,7 +24,8 @@ from flatprep.profile.toml_check import Table, read_toml
 
 KEYS = (
     "name", "revision", "units", "process", "spacing", "margin", "sets", "mass_limit", "pilots", "parts", "currency",
-    "windows", "layers", "accept", "cost", "material", "stock", "part", "joint",
+    "windows", "layers", "accept", "cost", "material", "stock", "rack", "part", "joint",
+    "tabs",
 )  # fmt: skip
 """Every key at the top of a job file."""
 
@@ -53,8 +55,12 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
     context = Context(unit, Reach(path.parent, options.anywhere), options, _overrides(top, options))
     process = _process(top, context, options)
     everywhere = accepts(top, context)
-    parts = tuple(replace(p, accepts=(*p.accepts, *everywhere)) for p in _parts(top, context, process))
+    usual = Tabs.SMALL if top.flag("tabs") else Tabs.NONE
+    parts = tuple(
+        replace(p, accepts=(*p.accepts, *everywhere), tabs=p.tabs or usual) for p in _parts(top, context, process)
+    )
     layers = {**roles(top, "layers"), **options.layers}
+    rack = _rack(top, context)
     return Job(
         path=path,
         name=one_line(top.text("name") if top.has("name") else path.stem),
@@ -63,7 +69,8 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
         spacing_mm=context.length_mm(top, "spacing", process.spacing_mm, least=0.0),
         margin_mm=context.length_mm(top, "margin", process.margin_mm, least=0.0),
         parts=parts,
-        stock=_stock(top, context),
+        stock=_stock(top, context, rack),
+        rack=rack,
         sets=top.integer("sets", 1, least=1),
         mass_limit_kg=top.optional_number("mass_limit", above=0.0),
         pilots=Pilots(top.choice("pilots", tuple(Pilots), Pilots.AS_DRAWN)),
@@ -135,11 +142,22 @@ def _listed(top: Table, context: Context, process: Process) -> list[JobPart]:
     return out
 
 
-def _stock(top: Table, context: Context) -> tuple[Stock, ...]:
-    stock = tuple(read_stock(one, context) for one in top.tables("stock"))
+def _rack(top: Table, context: Context) -> Rack | None:
+    """Return the rack that the command line names, else the job's, else None."""
+    if context.options.rack is not None:
+        return load_rack(context.options.rack, context)
+    if not top.has("rack"):
+        return None
+    return load_rack(context.reach.directory(top, "rack", top.text("rack")), context)
+
+
+def _stock(top: Table, context: Context, rack: Rack | None) -> tuple[Stock, ...]:
+    """Return the job's own stock and the sheets of the rack; each name once."""
+    stock = (*(read_stock(one, context) for one in top.tables("stock")), *(rack.sheets if rack else ()))
     for name, times in Counter(s.name for s in stock).items():
         if times > 1:
-            raise JobError(f'{top.place}: {times} stocks are called "{name}"', "give each its own name")
+            places = ", ".join(s.where for s in stock if s.name == name)
+            raise JobError(f'{top.place}: {times} stocks are called "{name}": {places}', "give each its own name")
     return stock
 
 

@@ -18,8 +18,8 @@ KEYS = (
 """Every key of a ``[[stock]]``."""
 
 
-def read_stock(table: Table, context: Context) -> Stock:
-    """Check one ``[[stock]]``."""
+def read_stock(table: Table, context: Context, *, fewest: int = 1) -> Stock:
+    """Check one ``[[stock]]``; `fewest` is the least count that makes sense."""
     table = _titled(table).only(KEYS)
     name = one_line(table.text("name"))
     material = context.material(table, "material")
@@ -38,7 +38,7 @@ def read_stock(table: Table, context: Context) -> Stock:
         length_mm=length,
         width_mm=width,
         outline=outline,
-        count=_count(table),
+        count=_count(table, fewest),
         price_per_sheet=money(table, "price_per_sheet"),
         price_per_metre=money(table, "price_per_metre"),
         grain=table.choice("grain", ("length", "width")) if table.has("grain") else None,
@@ -121,12 +121,12 @@ def _four(table: Table, key: str, value: object, context: Context, shape: str) -
     return a, b, c, d
 
 
-def _count(table: Table) -> int | None:
+def _count(table: Table, fewest: int) -> int | None:
     if table.get("count") == "any":
         return None
     if isinstance(table.get("count"), str):
         raise table.fail("count", 'a whole number of sheets, or "any"')
-    return table.integer("count", 1, least=1)
+    return table.integer("count", 1, least=fewest)
 
 
 def _check_prices(table: Table, *, is_open: bool) -> None:

@@ -170,6 +170,8 @@ class JobPart:
 class Stock:
     """Sheets or a remnant; `length_mm` None with `outline` None means open length, `count` None any number.
 
+    `outline` is a drawing, or points with `holes`, mm.
+
     `margins_mm` is left, right, bottom and top where they differ from the job's margin; `keep_out` are boxes
     (x0, y0, x1, y1), mm, for clamps and screws.
     """
@@ -243,3 +245,5 @@ class Job:
     """What holds for every part; each part has these among its own."""
     cost: CostTerms = field(default_factory=CostTerms)
     joints: tuple[JointAsk, ...] = ()
+    rack: Rack | None = None
+    """Where more stock lies; its sheets are among `stock`, its remnants join them once their drawings are read."""

@@ -1,7 +1,7 @@
 """The document ``layout.json``: everything that is needed to check or redo a nest, in plain numbers."""
 
 import os
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -35,19 +35,37 @@ class PartSource:
     quantity: int
 
 
+@dataclass(frozen=True, slots=True)
+class RackSource:
+    """The rack that sheets of a layout come from.
+
+    Attributes
+    ----------
+    folder : Path
+    files : mapping of str to str
+        Where stock stands in the rack, by its name; without that of the job itself.
+    """
+
+    folder: Path
+    files: Mapping[str, str]
+
+
 def sheet_name(number: int) -> str:
     """Name of a sheet's files without suffix, numbered from 1: ``sheet-01``."""
     return f"sheet-{number:02d}"
 
 
-def layout_document(layout: Layout, sources: Sequence[PartSource], folder: Path) -> dict[str, object]:
+def layout_document(
+    layout: Layout, sources: Sequence[PartSource], folder: Path, rack: RackSource | None = None
+) -> dict[str, object]:
     """Document of a layout that is written into `folder`; paths in it are relative to that folder."""
     return {
         "schema": SCHEMA,
+        **({"rack": relative(rack.folder, folder)} if rack else {}),
         "spacing_mm": layout.spacing_mm,
         "margin_mm": layout.margin_mm,
         "parts": [_part(source, folder) for source in sources],
-        "sheets": [_sheet(sheet, n) for n, sheet in enumerate(layout.sheets, start=1)],
+        "sheets": [_sheet(sheet, n, rack) for n, sheet in enumerate(layout.sheets, start=1)],
         "unplaced": [{"part": u.part, "count": u.count, "why": u.why} for u in layout.unplaced],
     }
 
@@ -69,10 +87,12 @@ def relative(file: Path, folder: Path) -> str:
     return Path(os.path.relpath(file, folder)).as_posix()
 
 
-def _sheet(sheet: SheetLayout, number: int) -> dict[str, object]:
+def _sheet(sheet: SheetLayout, number: int, rack: RackSource | None) -> dict[str, object]:
+    taken_from = rack.files.get(sheet.stock) if rack else None
     return {
         "file": f"{sheet_name(number)}.dxf",
         "stock": sheet.stock,
+        **({"rack_file": taken_from} if taken_from else {}),
         "material": sheet.material,
         "thickness_mm": sheet.thickness_mm,
         "outline": _points(sheet.outline),

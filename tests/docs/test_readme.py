@@ -13,7 +13,7 @@ import pytest
 from click import Context
 
 from flatprep.cli.main import Root
-from flatprep.job import load, parts, stocks, works
+from flatprep.job import load, parts, rack, stocks, works
 from flatprep.profile import material_load, process_load
 from flatprep.profile.process import FEATURES
 
@@ -101,6 +101,7 @@ def test_every_key_of_a_profile_is_explained(keys):
         works.BEND_KEYS,
         works.JOINT_KEYS,
         works.LAYER_KEYS,
+        rack.KEYS,
     ],
 )
 def test_every_key_of_a_job_is_explained(keys):

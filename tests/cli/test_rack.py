@@ -1,0 +1,57 @@
+"""A rack of sheets and remnants, as a user works with it."""
+
+import json
+
+import jsonschema
+import pytest
+
+from flatprep.report.schema import schema
+from tests.api.test_remnants import JOB, SAID, remnant
+from tests.cli.test_jobs import run
+from tests.cli.test_money import draw
+
+
+@pytest.fixture
+def job(tmp_path):
+    (tmp_path / "rack").mkdir()
+    draw(tmp_path / "leaf.dxf", 100)
+    remnant(tmp_path / "rack", "a.dxf", *SAID, "label: R7")
+    remnant(tmp_path / "rack", "wood.dxf", "material: birch-ply", "thickness: 6 mm")
+    remnant(tmp_path / "rack", "bare.dxf")
+    path = tmp_path / "job.toml"
+    path.write_text(JOB.replace('rack = "rack"\n', ""))
+    return path
+
+
+def test_nest_takes_a_rack_and_says_what_it_left_out(job, tmp_path):
+    got = run("nest", job, "--out", tmp_path / "out", "--steps", "3", "--rack", tmp_path / "rack")
+    assert got.exit_code == 0, got.output
+    assert "sheet-01: R7, mild-steel 3 mm" in got.stdout
+    assert "warning: " in got.stderr
+    assert "bare.dxf: does not say its material or thickness; left out" in got.stderr
+    assert "1 remnant of materials or thicknesses that no part of this job has" in got.stderr
+    layout = json.loads((tmp_path / "out" / "layout.json").read_text())
+    jsonschema.validate(layout, schema("layout"))
+    assert layout["rack"] == "../rack"
+    assert [(s["stock"], s["rack_file"]) for s in layout["sheets"]] == [("R7", "a.dxf")]
+
+
+def test_the_job_names_its_rack_for_every_verb(job, tmp_path):
+    job.write_text(JOB)
+    got = run("prepare", job, "--out", tmp_path / "out", "--steps", "3")
+    assert got.exit_code in (0, 1), got.output
+    page = (tmp_path / "out" / "report.html").read_text()
+    assert "bare.dxf: does not say its material or thickness" in page
+    assert json.loads((tmp_path / "out" / "layout.json").read_text())["sheets"][0]["stock"] == "R7"
+    for words in (("--steps", "3"), ("--layout", tmp_path / "out" / "layout.json")):
+        got = run("estimate", job, "--format", "json", *words)
+        assert [s["name"] for s in json.loads(got.stdout)["stock"]] == ["R7"]
+    (tmp_path / "rack" / "stock.toml").write_text("remnant_price = 0\n")
+    assert json.loads(run("estimate", job, "--format", "json", "--steps", "3").stdout)["material_cost"] == 0.0
+
+
+def test_without_a_rack_the_layout_names_none(job, tmp_path):
+    run("nest", job, "--out", tmp_path / "out", "--steps", "3")
+    layout = json.loads((tmp_path / "out" / "layout.json").read_text())
+    assert "rack" not in layout
+    assert "rack_file" not in layout["sheets"][0]
