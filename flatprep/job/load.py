@@ -4,11 +4,13 @@ from collections import Counter
 from dataclasses import replace
 from decimal import Decimal
 from pathlib import Path
+from typing import Any
 
 from flatprep.base.errors import JobError
 from flatprep.base.names import did_you_mean, one_line
 from flatprep.base.units import MM_PER_UNIT
 from flatprep.job.context import Context, JobOptions, accepts, money, roles
+from flatprep.job.corners import ReliefKind
 from flatprep.job.cutlist import load_cutlist
 from flatprep.job.parts import cells, part_of_row, read_part
 from flatprep.job.rack import load_rack
@@ -24,10 +26,15 @@ from flatprep.profile.toml_check import Table, read_toml
 
 KEYS = (
     "name", "revision", "units", "process", "spacing", "margin", "sets", "mass_limit", "pilots", "parts", "currency",
-    "windows", "layers", "accept", "cost", "material", "stock", "rack", "part", "joint",
-    "tabs",
+    "windows", "layers", "accept", "cost", "material", "stock", "rack", "part", "joint", "tabs", "relief", "slots",
+    "slot_clearance",
 )  # fmt: skip
 """Every key at the top of a job file."""
+
+AS_DRAWN, MEASURED = "as-drawn", "measured"
+"""Words of ``relief`` and ``slots``."""
+SLOT_CLEARANCE_MM = 0.1
+"""What a joint of sheets needs to go together by hand (common practice)."""
 
 COST_KEYS = ("share", "machine_rate", "offcut_credit", "offcut_least", "scrap_per_kg", "discount", "breaks")
 
@@ -56,8 +63,10 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
     process = _process(top, context, options)
     everywhere = accepts(top, context)
     usual = Tabs.SMALL if top.flag("tabs") else Tabs.NONE
+    mates = _mates(top, context)
     parts = tuple(
-        replace(p, accepts=(*p.accepts, *everywhere), tabs=p.tabs or usual) for p in _parts(top, context, process)
+        replace(p, accepts=(*p.accepts, *everywhere), tabs=p.tabs or usual, **mates)
+        for p in _parts(top, context, process)
     )
     layers = {**roles(top, "layers"), **options.layers}
     rack = _rack(top, context)
@@ -82,6 +91,19 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
         cost=_cost(top, context),
         joints=tuple(read_joint(one, context, tuple(p.name for p in parts)) for one in top.tables("joint")),
     )
+
+
+def _mates(top: Table, context: Context) -> dict[str, Any]:
+    """Return what is done in every part so that its mates fit, as fields of `JobPart`."""
+    relief = top.choice("relief", (AS_DRAWN, *ReliefKind), AS_DRAWN)
+    fitted = top.choice("slots", (AS_DRAWN, MEASURED), AS_DRAWN) == MEASURED
+    if top.has("slot_clearance") and not fitted:
+        raise top.fail("slot_clearance", f'left out, unless slots = "{MEASURED}"')
+    clearance = context.length_mm(top, "slot_clearance", SLOT_CLEARANCE_MM, least=0.0)
+    return {
+        "relief": None if relief == AS_DRAWN else ReliefKind(relief),
+        "slot_clearance_mm": clearance if fitted else None,
+    }
 
 
 def _revision(top: Table) -> str:
