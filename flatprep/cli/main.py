@@ -17,6 +17,7 @@ _COMMANDS = {
     "alternatives": "what else parts could be made of: thickness, mass, cost, and whether it can be cut",
     "checklist": "the bench work per part: drill, ream, countersink, tap, bend, deburr, in order",
     "compare": "what changed between two revisions of a drawing",
+    "coupon": "draw sample cuts of a job's slots and bores, to be tried first",
     "draft": "write a job file from a folder of drawings",
     "estimate": "mass, cut length, pierces and material cost",
     "lint": "check drawings against material, thickness and process",

@@ -7,7 +7,6 @@ from pathlib import Path
 from flatprep.model.layout import Layout, SheetLayout
 from flatprep.report.layout_json import sheet_name
 
-
 TOLD = 12
 """So many changes of a part are told one by one."""
 

@@ -3,7 +3,7 @@
 import json
 from importlib.resources import files
 
-KINDS = ("lint", "layout", "checklist", "estimate", "lookup", "alternatives", "repair", "compare")
+KINDS = ("lint", "layout", "checklist", "estimate", "lookup", "alternatives", "repair", "compare", "coupon")
 """The documents that have a schema."""
 
 

@@ -57,6 +57,11 @@ def test_repair_keeps_its_schema(name, tmp_path):
     assert faults("repair", json.loads(flatprep(*words))) == []
 
 
+def test_coupon_keeps_its_schema(tmp_path):
+    words = ("coupon", JOB, "--out", str(tmp_path), "--format", "json")
+    assert faults("coupon", json.loads(flatprep(*words))) == []
+
+
 def test_prepare_writes_documents_of_their_schemas(tmp_path):
     out = tmp_path / "out"
     flatprep("prepare", JOB, "--out", str(out), "--seconds", "2")
