@@ -5,10 +5,12 @@
 SIGKILL: every file in the folder is whole afterwards (JSON parses, DXF ends with EOF, SVG and HTML close), and no
 worker outlives the run by more than a second. SIGINT and SIGTERM: the run ends within `--patience` seconds with status
 130 or 143, or with its usual one when it was done by then; nothing is half written; a layout that is there passes the
-verifier. Every run uses one or two processes. The last line sums up.
+verifier. Every run uses one or two processes; the moments are spread over the time of a run that is left alone. The
+last line sums up, with the load of the machine (processes that want a processor, mean of the last minute).
 """
 
 import argparse
+import os
 import random
 import signal
 import subprocess
@@ -22,10 +24,11 @@ from flatprep import api
 from flatprep.api.nest import nest_ask
 from flatprep.nest.problem import NestAsk
 from flatprep.nest.verify import verify
+from flatprep.nest.warm import SEARCH, compiling
 from tests.damage import half_written
 
 SAMPLE = Path(__file__).parents[2] / "sample_parts" / "job.toml"
-SECONDS, LATEST_S = 4, 9.0
+SECONDS = 5
 
 
 @dataclass
@@ -45,7 +48,7 @@ class Outcome:
 class Run:
     """A run that is interrupted; its workers hold its stderr, so reading that ends when the last of them does."""
 
-    def __init__(self, folder: Path, rng: random.Random) -> None:
+    def __init__(self, folder: Path, rng: random.Random, latest_s: float) -> None:
         command, jobs = rng.choice(["nest", "prepare"]), rng.choice(["1", "2"])
         words = [command, str(SAMPLE), "--out", str(folder), "--seconds", str(SECONDS), "--jobs", jobs]
         self.name = f"{command} --jobs {jobs}"
@@ -55,7 +58,7 @@ class Run:
             stderr=subprocess.PIPE,
             text=True,
         )
-        time.sleep(rng.uniform(0.1, LATEST_S))
+        time.sleep(rng.uniform(0.1, latest_s))
 
     def end(self, number: signal.Signals, outcome: Outcome, patience_s: float) -> str:
         """Send a signal, wait for the end of the run and of its workers."""
@@ -69,16 +72,28 @@ class Run:
         return err
 
 
-def kill_once(outcome: Outcome, folder: Path, rng: random.Random) -> None:
-    Run(folder, rng).end(signal.SIGKILL, outcome, 1.0)
+def time_alone(folder: Path) -> float:
+    """Seconds of a run that is left alone, everything compiled."""
+    with compiling() as compiler:
+        compiler.wait(SEARCH)
+    words = ["prepare", str(SAMPLE), "--out", str(folder), "--seconds", str(SECONDS)]
+    began = time.monotonic()
+    subprocess.run([sys.executable, "-m", "flatprep", *words], stdout=subprocess.DEVNULL, check=False)
+    return time.monotonic() - began
+
+
+def kill_once(outcome: Outcome, folder: Path, rng: random.Random, latest_s: float) -> None:
+    Run(folder, rng, latest_s).end(signal.SIGKILL, outcome, 1.0)
     outcome.kills += 1
     # a hidden piece may be left of the file that was being written; the next run clears it away
     outcome.half += [line for line in half_written(folder) if "left over" not in line]
 
 
-def stop_once(outcome: Outcome, folder: Path, rng: random.Random, ask: NestAsk, patience_s: float) -> None:
+def stop_once(
+    outcome: Outcome, folder: Path, rng: random.Random, latest_s: float, ask: NestAsk, patience_s: float
+) -> None:
     number = rng.choice([signal.SIGINT, signal.SIGTERM])
-    run = Run(folder, rng)
+    run = Run(folder, rng, latest_s)
     err = run.end(number, outcome, patience_s)
     status = run.process.returncode
     outcome.stops += 1
@@ -101,17 +116,18 @@ def main() -> None:
     rng, outcome = random.Random(o.seed), Outcome()
     ask = nest_ask(api.read_job(api.load_job(SAMPLE)))
     with tempfile.TemporaryDirectory() as root:
+        latest_s = time_alone(Path(root) / "alone")
         for k in range(o.kills):
-            kill_once(outcome, Path(root) / f"kill{k % 4}", rng)
+            kill_once(outcome, Path(root) / f"kill{k % 4}", rng, latest_s)
         for k in range(o.stops):
-            stop_once(outcome, Path(root) / f"stop{k}", rng, ask, o.patience)
+            stop_once(outcome, Path(root) / f"stop{k}", rng, latest_s, ask, o.patience)
     for name in ("half", "late", "unsound", "odd"):
         for line in getattr(outcome, name)[:10]:
             print(f"{name}: {line}")
     print(
         f"{outcome.kills} kills, {outcome.stops} stops, slowest end {outcome.slowest_s:.1f} s, "
         f"{outcome.layouts} layouts verified: {len(outcome.half)} half-written files, {len(outcome.late)} late, "
-        f"{len(outcome.unsound)} faults in layouts, {len(outcome.odd)} odd ends"
+        f"{len(outcome.unsound)} faults in layouts, {len(outcome.odd)} odd ends; load {os.getloadavg()[0]:.1f}"
     )
     sys.exit(bool(outcome.half or outcome.late or outcome.unsound or outcome.odd))
 
