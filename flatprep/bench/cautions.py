@@ -9,9 +9,7 @@ from flatprep.model.work import StepKind
 from flatprep.practice.threads import THERMAL
 from flatprep.profile.hardware.hazards import caution, first_caution
 
-_AT_STEP = {
-    StepKind.TAP: "tapping", StepKind.THREAD_INSERT: "tapping", StepKind.BEND: "press_brake",
-}  # fmt: skip
+_TAPPED = (StepKind.TAP, StepKind.THREAD_INSERT)
 THIN_MM = 2.0
 """Sheet that climbs the drill at break-through."""
 
@@ -24,7 +22,16 @@ def step_caution(op: Op, bench: BenchPart, *, first: bool) -> str:
         return caution("drilling_thin_sheet", bench.own)
     if op.kind is StepKind.DRILL:
         return caution("hot_slugs", bench.own) if bench.process.kind in THERMAL else ""
-    return caution(_AT_STEP[op.kind], bench.own) if op.kind in _AT_STEP else ""
+    if op.kind in _TAPPED:
+        return " ".join(caution(hazard, bench.own) for hazard in _at_taps(bench))
+    return caution("press_brake", bench.own) if op.kind is StepKind.BEND else ""
+
+
+def _at_taps(bench: BenchPart) -> Iterable[str]:
+    """Yield the hazards of tapping."""
+    yield "tapping"
+    if bench.family == "wear-plate":
+        yield "tapping_wear_plate"
 
 
 def _at_edges(bench: BenchPart) -> Iterable[str]:

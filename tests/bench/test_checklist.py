@@ -604,6 +604,14 @@ def test_cautions_defer_to_local_codes_and_stand_at_the_step():
     assert routed.parts[0].steps[0].caution == ""
 
 
+@pytest.mark.parametrize(("material", "told"), [("mild-steel", False), ("wear-plate-400", True)])
+def test_what_a_broken_tap_means_is_told_of_wear_plate_alone(material, told):
+    steps = steps_of(plate(100, 50, (30, 25, 8.5)), work("tap", "M10", hole_mm=8.5), material=material, thickness=8.0)
+    caution = one(steps, K.TAP).caution
+    assert "eye protection" in caution
+    assert ("cannot be drilled out" in caution) is told
+
+
 def test_drilling_thin_sheet_and_bending_have_their_caution():
     steps = steps_of(plate(100, 50, (10, 12, 4)), work("drill", "6", hole_mm=4), thickness=1.5)
     assert "climbs the drill" in one(steps, K.DRILL).caution
