@@ -12,6 +12,7 @@ from flatprep.api.pieces import Piece, ReadJob, quantity
 from flatprep.api.sheets import layout_files, make_layout_folders
 from flatprep.api.work import checklist_job, estimate_job
 from flatprep.base.files import make_folder, write_together
+from flatprep.base.manifest import with_manifest
 from flatprep.base.progress import Progress
 from flatprep.base.safe_names import safe_stems
 from flatprep.bench.opposite import opposite_part, opposite_steps
@@ -92,7 +93,7 @@ def prepare_job(
 
 
 def write_prepared(done: Prepared, folder: Path) -> None:
-    """Write everything into `folder`, all together or not at all.
+    """Write everything into `folder`, all together or not at all; what an earlier run left there and is no more goes.
 
     Raises
     ------
@@ -102,7 +103,7 @@ def write_prepared(done: Prepared, folder: Path) -> None:
     if done.nested:
         make_layout_folders(done.nested, folder)
     make_folder(folder / "bench")
-    write_together(_files(done, folder))
+    write_together(with_manifest(folder, _files(done, folder)))
 
 
 def _files(done: Prepared, folder: Path) -> Iterator[tuple[Path, str | None]]:

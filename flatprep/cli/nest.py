@@ -15,7 +15,7 @@ from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, read_drawings, say_of_nest
 from flatprep.cli.options import other_forms, output_format, rack_option, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
-from flatprep.cli.talk import say
+from flatprep.cli.talk import say, warn
 from flatprep.drawing.forms import Form
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
@@ -59,6 +59,8 @@ def command(
             nested = with_forms(nested, also)
             say_of_nest(nested)
             write_layout(nested, folder)
+    if (folder / "report.html").exists():
+        warn(f"{folder / 'report.html'} is of an earlier run: its sheets are no longer these; prepare makes it anew")
     if form == "json":
         click.echo(json.dumps(json.loads((folder / "layout.json").read_text()), indent=1))
     else:

@@ -156,6 +156,19 @@ def test_sheets_of_an_earlier_run_do_not_stay(job, tmp_path):
     assert sorted(p.name for p in (tmp_path / "out").glob("sheet-*")) == SHEET_1
 
 
+def test_bench_sheets_of_parts_that_are_gone_do_not_stay(job, tmp_path):
+    out, spare = tmp_path / "out", '[[part]]\nname = "spare"\n' + JOB[JOB.index("drawing") :]
+    job.write_text(JOB + spare)
+    assert run("prepare", job, "--out", out, "--steps", "1").exit_code == 0
+    (out / "bench" / "notes.txt").write_text("my own")
+    assert sorted(p.name for p in (out / "bench").iterdir()) == ["leaf.html", "notes.txt", "spare.html"]
+    job.write_text(JOB)
+    assert run("prepare", job, "--out", out, "--steps", "1").exit_code == 0
+    assert sorted(p.name for p in (out / "bench").iterdir()) == ["leaf.html", "notes.txt"]
+    got = run("nest", job, "--out", out, "--steps", "1")
+    assert "report.html is of an earlier run" in got.stderr
+
+
 def test_spacing_below_the_kerf_is_warned_of_and_kept(job, tmp_path):
     job.write_text(JOB.replace("spacing = 3.0", "spacing = 0.0"))
     got = run("nest", job, "--out", tmp_path / "out", "--steps", "5")
