@@ -19,6 +19,8 @@ _FAULTS_OF_A_COPY = {"self-crossing", "duplicate-line", "off-plane", "open-conto
 """A drawing with one of these is not what is cut: a clean copy stands in for it."""
 
 _CHORD_MM = 0.01
+_DIGITS = 10
+"""So many digits of a drawing's digest are shown."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -52,6 +54,11 @@ class Piece:
     def name(self) -> str:
         """The part's name."""
         return self.part.name
+
+    @property
+    def digest(self) -> str:
+        """Tell this content of the drawing apart from any other, in a few digits."""
+        return self.drawing.digest[:_DIGITS]
 
 
 @dataclass(frozen=True, slots=True)
@@ -124,6 +131,11 @@ def _piece(job: Job, ask: JobPart, drawing: Drawing, part: Part) -> Piece:
 def quantity(job: Job, ask: JobPart) -> int:
     """Pieces of a part, all sets and both hands."""
     return (ask.quantity + ask.quantity_opposite) * job.sets
+
+
+def revision(job: Job, ask: JobPart) -> str:
+    """Return the revision of a part: its own, else that of the job; empty where neither has one."""
+    return ask.revision or job.revision
 
 
 def bench_parts(read: ReadJob) -> Sequence[BenchPart]:

@@ -8,7 +8,7 @@ from pathlib import Path
 
 from flatprep import __version__
 from flatprep.api.nest import Nested, OnBetter, Stop, nest_job, never
-from flatprep.api.pieces import Piece, ReadJob, quantity
+from flatprep.api.pieces import Piece, ReadJob, quantity, revision
 from flatprep.api.sheets import layout_files, make_layout_folders
 from flatprep.api.work import checklist_job, estimate_job
 from flatprep.base.files import make_folder, write_together
@@ -33,9 +33,6 @@ from flatprep.report.html import bench_sheet_html, report_html
 from flatprep.report.layout_json import sheet_name
 from flatprep.report.lint_json import lint_document
 from flatprep.report.tables_csv import findings_csv, parts_csv, sheets_csv
-
-_DIGITS = 10
-"""So many digits of a drawing's digest are shown."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -183,14 +180,14 @@ def _card(read: ReadJob, piece: Piece, steps: Checklist, money: Estimate) -> Par
         name=piece.name,
         part=piece.drawn,
         drawing=str(ask.drawing),
-        digest=piece.drawing.digest[:_DIGITS],
+        digest=piece.digest,
         material=ask.material.id if ask.material else "",
         material_name=ask.material.name if ask.material else "",
         thickness_mm=ask.thickness_mm,
         process=ask.process.id,
         quantity=ask.quantity * job.sets,
         quantity_opposite=quantity(job, ask) - ask.quantity * job.sets,
-        revision=ask.revision or job.revision,
+        revision=revision(job, ask),
         note=ask.note,
         findings=findings,
         steps=next((p.steps for p in steps.parts if p.name == piece.name), ()),

@@ -7,13 +7,14 @@ from dataclasses import replace
 from pathlib import Path
 
 from flatprep.api.nest import Nested
-from flatprep.api.pieces import Piece, quantity
+from flatprep.api.pieces import Piece, quantity, revision
 from flatprep.api.shared import sheet_shared
 from flatprep.api.tabs import job_tabs, tabs_drawing
 from flatprep.base.files import make_folder, write_together
 from flatprep.base.safe_names import safe_stems
 from flatprep.drawing.forms import FORMS, Form, with_kerf
 from flatprep.drawing.label import RemnantLabel, label_lines, thickness_text
+from flatprep.drawing.words import Words
 from flatprep.drawing.write import border_drawing, lines_drawing, part_drawing, sheet_drawing
 from flatprep.job.values import Job, JobPart
 from flatprep.model.drawing import Part
@@ -63,21 +64,24 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
     parts = {piece.name: piece.part for piece in pieces}
     tabs = job_tabs(nested.read)
     title = (job.name, f"revision {job.revision}") if job.revision else (job.name,)
+    known = {piece.name: _identity(job, piece) for piece in pieces}
     for number, sheet in enumerate(sheets, start=1):
         stem = sheet_name(number)
-        yield folder / f"{stem}.dxf", sheet_drawing(sheet, parts, title=title, tabs=tabs)
+        words = Words((*title, f"sheet {number}"), known)
+        yield folder / f"{stem}.dxf", sheet_drawing(sheet, parts, words=words, tabs=tabs)
         for form in nested.also:
             if form is Form.SHARED:
                 yield folder / f"{stem}-{form}.dxf", lines_drawing(sheet_shared(sheet, nested.read).lines)
                 continue
             shapes = _with_kerf(pieces) if form is Form.KERF else parts
-            yield folder / f"{stem}-{form}.dxf", sheet_drawing(sheet, shapes, title=title, form=FORMS[form])
+            yield folder / f"{stem}-{form}.dxf", sheet_drawing(sheet, shapes, words=words, form=FORMS[form])
         gaps = tabs_drawing(sheet, nested.read, tabs)
         if gaps is not None or (folder / f"{stem}-tabs.dxf").exists():
             yield folder / f"{stem}-tabs.dxf", gaps
         rest = offcut_of(sheet, parts, nested.layout.spacing_mm)
-        extras = Extras(job.units, rest.rectangle if rest else None, tabs)
-        svg = sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=job.name, extras=extras)
+        extras = Extras(job.units, rest.rectangle if rest else None, tabs, known)
+        called = f"{job.name} {job.revision}".rstrip()
+        svg = sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=called, extras=extras)
         yield folder / f"{stem}.svg", svg
         if rest is not None:
             written = (*label_lines(_label(job, sheet, number)), _size(rest))
@@ -107,6 +111,12 @@ def _rack(job: Job) -> RackSource | None:
     if job.rack is None:
         return None
     return RackSource(job.rack.folder, {s.name: s.rack_file for s in job.stock if s.rack_file})
+
+
+def _identity(job: Job, piece: Piece) -> str:
+    """Tell which drawing a piece is of: its revision, and the first digits of the digest of its content."""
+    known = revision(job, piece.ask)
+    return f"rev. {known} {piece.digest}" if known else piece.digest
 
 
 def _older_sheets(folder: Path, count: int, also: Sequence[Form]) -> Iterator[Path]:

@@ -18,6 +18,7 @@ from ezdxf.version import __version__ as ezdxf_version
 
 from flatprep.drawing.forms import USUAL, SheetForm
 from flatprep.drawing.order import cutting_order
+from flatprep.drawing.words import NO_WORDS, Words, identity_lines
 from flatprep.geom.bulge import Floats, Similarity
 from flatprep.geom.polygons import inner_point
 from flatprep.model.drawing import Contour, Curve, Part, Text
@@ -37,13 +38,15 @@ STYLE_OF = {CUT: "CONTINUOUS", MARK: "FP_DASH", BEND: "FP_DASHDOT", SHEET: "FP_D
 MM_CODE = 4
 """$INSUNITS of millimetres."""
 LEAST_TEXT_MM, MOST_TEXT_MM, TEXT_SHARE = 1.5, 10.0, 0.12
+SMALL_TEXT = 0.5
+"""Height of the second line of a label over that of the first."""
 
 
 def sheet_drawing(
     sheet: SheetLayout,
     parts: Mapping[str, Part],
     *,
-    title: Sequence[str] = (),
+    words: Words = NO_WORDS,
     form: SheetForm = USUAL,
     tabs: Mapping[str, Sequence[Tab]] = NO_TABS,
 ) -> str:
@@ -54,8 +57,8 @@ def sheet_drawing(
     sheet
     parts
         True shapes by the names that the placements use.
-    title
-        Lines written under the sheet.
+    words
+        What is written beside the parts' names.
     form
         The usual one, or one that a cutter asks for.
     tabs
@@ -72,10 +75,10 @@ def sheet_drawing(
         _part(doc, part, motion)
         for tab in tabs.get(placement.part, ()):
             _curve(doc, NOTE, tab_stroke(tab), motion)
-        _label(doc, part, motion, f"{placement.part} {placement.copy}")
+        _label(doc, part, motion, (f"{placement.part} {placement.copy}", words.identity.get(placement.part, "")))
     height = min(MOST_TEXT_MM, max(LEAST_TEXT_MM, float(np.ptp(sheet.outline, axis=0).max()) / 80.0))
     left, low = (float(v) for v in sheet.outline.min(axis=0))
-    for n, line in enumerate(title, start=1):
+    for n, line in enumerate((*words.title, *identity_lines(sheet, words.identity)), start=1):
         _text(doc, line, (left, low - 2.0 * n * height), height)
     return _written(doc)
 
@@ -215,10 +218,13 @@ def _label_point(part: Part) -> tuple[float, float]:
     return inner_point(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1)
 
 
-def _label(doc: Document, part: Part, motion: Similarity, words: str) -> None:
-    at = motion.points(np.array([_label_point(part)]))[0]
+def _label(doc: Document, part: Part, motion: Similarity, lines: tuple[str, str]) -> None:
+    """Write a piece's name, and in small letters under it which drawing it is of."""
+    (x, y) = (float(v) for v in motion.points(np.array([_label_point(part)]))[0])
     height = min(MOST_TEXT_MM, max(LEAST_TEXT_MM, TEXT_SHARE * min(part.size_mm)))
-    _text(doc, words, (float(at[0]), float(at[1])), height, middle=True)
+    _text(doc, lines[0], (x, y), height, middle=True)
+    if lines[1]:
+        _text(doc, lines[1], (x, y - height), SMALL_TEXT * height, middle=True)
 
 
 def _text(doc: Document, words: str, at: tuple[float, float], height: float, *, middle: bool = False) -> None:

@@ -10,6 +10,7 @@ import svgwrite
 from shapely.geometry import Polygon
 
 from flatprep.drawing.order import cutting_order
+from flatprep.drawing.words import identity_lines
 from flatprep.geom.bulge import Floats
 from flatprep.geom.polygons import polygon, valid_polygon
 from flatprep.model.drawing import Contour, Curve, Part
@@ -22,6 +23,8 @@ OKABE_ITO = ("#E69F00", "#56B4E9", "#009E73", "#F0E442", "#0072B2", "#D55E00", "
 """Colours that colour-blind readers tell apart (Okabe and Ito 2008); every part is named as well."""
 Rectangle = tuple[float, float, float, float]
 INK, PALE = "#333333", "#FFFFFF"
+LINE = 1.3
+"""Distance of lines of text, in units of the picture's em."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,11 +39,14 @@ class Extras:
         Largest usable rectangle that is left, sheet coordinates, mm: hatched.
     tabs : mapping of str to Tab
         Holding tabs by part: strokes across the outline.
+    identity : mapping of str to str
+        By part, which revision and content of its drawing is cut: in a list under the sheet.
     """
 
     units: str = "mm"
     offcut: Rectangle | None = None
     tabs: Mapping[str, Sequence[Tab]] = field(default_factory=dict)
+    identity: Mapping[str, str] = field(default_factory=dict)
 
 
 PLAIN = Extras()
@@ -75,7 +81,9 @@ def sheet_svg(
     x0, y0 = sheet.outline.min(axis=0)
     x1, y1 = sheet.outline.max(axis=0)
     em = float(max(x1 - x0, y1 - y0)) / 70.0
-    left, top, width, height = x0 - 3 * em, -y1 - 4 * em, x1 - x0 + 6 * em, y1 - y0 + 10 * em
+    lines = list(identity_lines(sheet, extras.identity))
+    left, top, width = x0 - 3 * em, -y1 - 4 * em, x1 - x0 + 6 * em
+    height = y1 - y0 + (10 + LINE * (len(lines) + bool(lines))) * em
     page = svgwrite.Drawing(size=(f"{width:.3f}mm", f"{height:.3f}mm"), debug=False)
     page.viewbox(round(float(left), 3), round(float(top), 3), round(float(width), 3), round(float(height), 3))
     page.set_desc(title=f"{job} sheet {number}".strip())
@@ -92,6 +100,8 @@ def sheet_svg(
     _used_length(page, sheet, em, units)
     _heading(page, sheet, number, job, em, units)
     _scale_bar(page, (float(x0), float(-y0 + 5.2 * em)), float(x1 - x0), em, units)
+    for n, line in enumerate(lines):
+        _text(page, line, (float(x0), float(-y0) + (7.5 + LINE * n) * em), 0.8 * em)
     return str(page.tostring())
 
 

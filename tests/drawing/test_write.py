@@ -7,6 +7,7 @@ import numpy as np
 import pytest
 from ezdxf.math import bulge_to_arc
 
+from flatprep.drawing.words import Words
 from flatprep.drawing.write import border_drawing, part_drawing, sheet_drawing
 from flatprep.geom.bulge import circle, reverse
 from flatprep.model.drawing import Contour, Curve, Part
@@ -76,12 +77,23 @@ def test_marks_are_marked_and_bend_lines_only_noted():
 def test_border_holes_and_labels_are_on_layers_of_their_own():
     hole = np.array([[200.0, 100], [220, 100], [220, 120], [200, 120]])
     layout = sheet(Placement("plate", 7, 0.0, False, 0.0, 0.0), holes=(hole,))
-    doc = read(sheet_drawing(layout, {"plate": part()}, title=("wheel hoe", "revision B")))
+    doc = read(sheet_drawing(layout, {"plate": part()}, words=Words(("wheel hoe", "revision B"))))
     assert len(on(doc, "SHEET")) == 2
     assert {e.dxf.text for e in on(doc, "NOTE") if e.dxftype() == "TEXT"} == {"plate 7", "wheel hoe", "revision B"}
     styles = {layer.dxf.name: layer.dxf.linetype for layer in doc.layers}
     assert len({styles[n] for n in ("CUT", "MARK", "SHEET", "NOTE")}) == 4
     assert {doc.layers.get(n).dxf.color for n in ("CUT", "MARK", "SHEET", "NOTE")} == {8}
+
+
+def test_every_label_and_a_list_under_the_sheet_say_which_drawing_was_cut():
+    layout = sheet(*(Placement("plate", k, 0.0, False, 60.0 * k, 0.0) for k in (1, 2)))
+    doc = read(sheet_drawing(layout, {"plate": part()}, words=Words(("wheel hoe",), {"plate": "rev. B c6cf1a719c"})))
+    texts = [e for e in on(doc, "NOTE") if e.dxftype() == "TEXT"]
+    assert [t.dxf.text for t in texts] == [
+        "plate 1", "rev. B c6cf1a719c", "plate 2", "rev. B c6cf1a719c", "wheel hoe", "2 x plate  rev. B c6cf1a719c",
+    ]  # fmt: skip
+    assert texts[1].dxf.height < texts[0].dxf.height
+    assert all(t.dxf.insert.y < 0.0 for t in texts[4:])
 
 
 def test_part_drawing_keeps_the_parts_own_coordinates():

@@ -45,6 +45,15 @@ def test_every_piece_is_named_and_escaped():
     assert {"a & b 1", "wheel 1", "wheel hoe sheet 2"} <= titles
 
 
+def test_a_list_under_the_sheet_says_which_drawings_were_cut():
+    plain, told = picture(), picture(extras=Extras(identity={"a & b": "rev. C 98f7e42cdd"}))
+    assert [words for words in texts(told) if "98f7" in words] == ["1 x a & b  rev. C 98f7e42cdd"]
+    assert len(texts(told)) == len(texts(plain)) + 1
+    at = next(float(t.get("y")) for t in told.iter(f"{SVG}text") if "98f7" in t.text)
+    top, height = (float(v) for v in told.get("viewBox").replace(",", " ").split()[1::2])
+    assert 0.0 < at < top + height
+
+
 def test_piece_is_moved_by_its_placement_with_y_turned_over():
     """Mirrored, turned by 30 degrees, moved to (60, 50): the part's origin comes to (60, -50) on the page."""
     group = next(g for g in picture().iter(f"{SVG}g") if g.find(f"{SVG}title") is not None)
