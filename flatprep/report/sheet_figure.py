@@ -92,7 +92,7 @@ def _placed(placement: Placement, shape: Shape, unit: float) -> str:
 
 def _label(placement: Placement, shape: Shape, unit: float) -> str:
     """Return the part's name in its widest place, or its number, or nothing: what fits in readable size."""
-    outer, *inner = (placement.motion.points(points) for points in _rings(shape.part))
+    outer, *inner = (placement.motion.points(points) for points in rings_of(shape.part))
     x, y, across = label_place(Polygon(outer, inner))
     for words in (placement.part, str(shape.number)):
         size = min(1.5 * unit, across / (0.62 * len(words) + 0.6))
@@ -102,7 +102,7 @@ def _label(placement: Placement, shape: Shape, unit: float) -> str:
 
 
 @lru_cache(maxsize=1024)
-def _rings(part: Part) -> tuple[Floats, ...]:
+def rings_of(part: Part) -> tuple[Floats, ...]:
     """Contours of a part by points; it may lie on many sheets many times."""
     return tuple(ring(contour.xyb, 0.5) for contour in part.contours)
 

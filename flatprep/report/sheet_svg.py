@@ -2,7 +2,6 @@
 
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
-from functools import lru_cache
 
 import numpy as np
 import shapely
@@ -12,11 +11,11 @@ from shapely.geometry import Polygon
 from flatprep.drawing.order import cutting_order
 from flatprep.drawing.words import identity_lines
 from flatprep.geom.bulge import Floats
-from flatprep.geom.polygons import polygon, valid_polygon
-from flatprep.model.drawing import Contour, Curve, Part
+from flatprep.model.drawing import Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
 from flatprep.model.tab import Tab, tab_stroke
 from flatprep.report.figures import bare_length, length, percent, size
+from flatprep.report.sheet_figure import label_place, rings_of
 from flatprep.report.svg_path import joined, part_path, ring_data
 
 OKABE_ITO = ("#E69F00", "#56B4E9", "#009E73", "#F0E442", "#0072B2", "#D55E00", "#CC79A7")
@@ -25,6 +24,8 @@ Rectangle = tuple[float, float, float, float]
 INK, PALE = "#333333", "#FFFFFF"
 LINE = 1.3
 """Distance of lines of text, in units of the picture's em."""
+WIDE, LEAST_NAME = 0.62, 0.3
+"""Width of a letter over its height; least height of a name, in the picture's em."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -147,27 +148,15 @@ def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, look: Look)
 
 
 def _name(page: svgwrite.Drawing, part: Part, placement: Placement, turn: int, em: float) -> None:
-    """Turn of cutting and name of a piece in its largest inscribed circle, no taller than that lets it be read."""
-    centre, radius = _inscribed(part)
-    x, y = placement.motion.points(np.array([centre]))[0]
-    words = f"{turn}: {placement.part} {placement.copy}"
-    height = min(em, radius, 1.6 * max(part.size_mm) / len(words))
-    x0, y0, x1, y1 = Contour(placement.motion.polyline(part.outer.xyb)).bounds
-    if y1 - y0 <= x1 - x0:
-        _text(page, words, (float(x), float(-y) + height / 3), height, anchor="middle")
-        return
-    upright = page.g(transform=f"rotate(-90 {x:.3f} {-y:.3f})")
-    _text(upright, words, (float(x), float(-y) + height / 3), height, anchor="middle")
-    page.add(upright)
-
-
-@lru_cache(maxsize=1024)
-def _inscribed(part: Part) -> tuple[tuple[float, float], float]:
-    """Centre and radius of a part's largest inscribed circle, found once for all pieces of it."""
-    shape = valid_polygon(polygon(part.outer.xyb, [h.xyb for h in part.holes], chord_mm=0.1))
-    circle = shapely.maximum_inscribed_circle(shape, tolerance=0.05 * min(part.size_mm))
-    x, y = circle.coords[0]
-    return (x, y), float(circle.length)
+    """Turn of cutting and name across a piece, level or upright, where it has more room; as tall as fits."""
+    ring, words = placement.motion.points(rings_of(part)[0]), f"{turn}: {placement.part} {placement.copy}"
+    level, upright = (label_place(Polygon(points)) for points in (ring, ring[:, ::-1]))
+    x, y, across = level if level[2] >= upright[2] else (upright[1], upright[0], upright[2])
+    size = max(LEAST_NAME * em, min(em, across / (WIDE * len(words))))
+    onto = page if level[2] >= upright[2] else page.g(transform=f"rotate(-90 {x:.3f} {-y:.3f})")
+    _text(onto, words, (x, -y + size / 3), size, anchor="middle")
+    if onto is not page:
+        page.add(onto)
 
 
 def _offcut(page: svgwrite.Drawing, offcut: Rectangle, em: float, units: str) -> None:
@@ -207,7 +196,8 @@ def _used_length(page: svgwrite.Drawing, sheet: SheetLayout, em: float, units: s
     line = f"M{left:.3f} {y:.3f}H{right:.3f}M{left:.3f} {y - em / 2:.3f}v{em:.3f}M{right:.3f} {y - em / 2:.3f}v{em:.3f}"
     page.add(page.path(d=line, fill="none", stroke=INK, stroke_width=em / 12))
     words = f"used length {length(sheet.used_length_mm, units)}, {percent(used_share(sheet))} of it parts"
-    _text(page, words, ((left + right) / 2, y + 1.5 * em), em, anchor="middle")
+    middle = max((left + right) / 2, left + WIDE * em * len(words) / 2)
+    _text(page, words, (middle, y + 1.5 * em), em, anchor="middle")
 
 
 def used_share(sheet: SheetLayout) -> float:

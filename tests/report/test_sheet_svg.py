@@ -45,6 +45,20 @@ def test_every_piece_is_named_and_escaped():
     assert {"a & b 1", "wheel 1", "wheel hoe sheet 2"} <= titles
 
 
+@pytest.mark.parametrize(("size", "upright"), [((90.0, 30.0), False), ((30.0, 90.0), True)])
+def test_a_name_lies_along_the_piece_and_within_it(size, upright):
+    """The run is 90 mm; with letters 0.62 as wide as tall, "1: long name of a bar 1" of 23 letters is 6.3 mm tall."""
+    w, h = size
+    bar = Part("long name of a bar", Contour(np.array([[0.0, 0, 0], [w, 0, 0], [w, h, 0], [0, h, 0]])))
+    outline = np.array([[0.0, 0], [900, 0], [900, 200], [0, 200]])
+    one = SheetLayout("al3", "al", 3.0, outline, (), 98.0, 0.1, (Placement(bar.name, 1, 0.0, False, 10.0, 10.0),))
+    root = ElementTree.fromstring(sheet_svg(one, 1, {bar.name: bar}, margin_mm=0.0))
+    (name,) = [t for t in root.iter(f"{SVG}text") if t.text.startswith("1: long")]
+    assert float(name.get("font-size")) == pytest.approx(90.0 / (0.62 * 23), abs=0.01)
+    turned = [g for g in root.iter(f"{SVG}g") if "rotate" in (g.get("transform") or "")]
+    assert bool(turned) is upright
+
+
 def test_a_list_under_the_sheet_says_which_drawings_were_cut():
     plain, told = picture(), picture(extras=Extras(identity={"a & b": "rev. C 98f7e42cdd"}))
     assert [words for words in texts(told) if "98f7" in words] == ["1 x a & b  rev. C 98f7e42cdd"]
