@@ -15,6 +15,7 @@ from flatprep.job.values import Job, JobPart
 from flatprep.measure.part import measured_parts
 from flatprep.model.drawing import Role
 from flatprep.model.linted import Linted, LintReport, Unreadable
+from flatprep.practice.tool import tool_radius_mm
 from flatprep.profile.gauges import parse_thickness_mm
 from flatprep.profile.material import Material
 from flatprep.profile.material_load import load_material
@@ -142,6 +143,7 @@ def lint_one(task: LintTask) -> Linted | Unreadable:
         material=task.material.id if task.material else None,
         thickness_mm=task.thickness_mm,
         density_kg_m3=task.material.density_kg_m3 if task.material else None,
+        tool_radius_mm=tool_radius_mm(task.process, context.family, task.thickness_mm) if task.process else 0.0,
     )
 
 

@@ -19,6 +19,8 @@ class Linted:
     material, process : str or None
         Ids; None where nothing was said.
     thickness_mm, density_kg_m3 : float or None
+    tool_radius_mm : float
+        Of the process's tool; 0 for a beam.
     """
 
     file: str
@@ -28,6 +30,7 @@ class Linted:
     material: str | None = None
     thickness_mm: float | None = None
     density_kg_m3: float | None = None
+    tool_radius_mm: float = 0.0
 
     @property
     def loud(self) -> bool:

@@ -3,36 +3,51 @@
 Colours are Okabe and Ito's (2008), which colour-blind people tell apart, and each kind has its own shape and word.
 """
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
 from html import escape
 
+from flatprep.geom.bulge import Floats
 from flatprep.model.drawing import Part
 from flatprep.model.finding import Finding
 from flatprep.model.linted import Linted
 from flatprep.report.badges import Badge, Point, finding_badges, spread
-from flatprep.report.figures import measure, number, place
+from flatprep.report.figures import counted, length, measure, number, place
 from flatprep.report.part_figure import badge_shape, frame, scale_bar
-from flatprep.report.svg_path import joined, part_path
+from flatprep.report.svg_path import joined, part_path, ring_data
 from flatprep.report.svg_tag import picture, tag, text
 
 FILLS = {"error": "#D55E00", "warning": "#E69F00", "note": "#56B4E9"}
 INK = {"error": "#FFFFFF", "warning": "#000000", "note": "#000000"}
-MATERIAL, LINE, BEND = "#E6E6E6", "#000000", "#0072B2"
+MATERIAL, LINE, BEND, HATCH = "#E6E6E6", "#000000", "#0072B2", "#CC79A7"
 MOST_LINES = 40
 """More findings than this are counted, not listed."""
 LETTERS_A_LINE = 92
 
 
-def part_pictures(one: Linted) -> tuple[tuple[str, str], ...]:
-    """Return (part's name, SVG document) for each part of a drawing; findings of the whole drawing stand in each."""
-    units = one.drawing.units
+@dataclass(frozen=True, slots=True)
+class Unreached:
+    """What a round tool does not enter: its diameter, the area, mm², and the rings of each region, mm."""
+
+    tool_mm: float
+    area_mm2: float
+    regions: tuple[tuple[Floats, ...], ...]
+
+
+def part_pictures(one: Linted, unreached: Mapping[str, Unreached] | None = None) -> tuple[tuple[str, str], ...]:
+    """Return (part's name, SVG document) for each part of a drawing; findings of the whole drawing stand in each.
+
+    `unreached` is by the part's name.
+    """
+    units, lost = one.drawing.units, unreached or {}
     return tuple(
-        (part.name, part_svg(part, [f for f in one.findings if f.part in (part.name, None)], units=units))
-        for part in one.drawing.parts
-    )
+        (p.name, part_svg(p, [f for f in one.findings if f.part in (p.name, None)], units=units,
+                          unreached=lost.get(p.name)))
+        for p in one.drawing.parts
+    )  # fmt: skip
 
 
-def part_svg(part: Part, findings: Sequence[Finding], *, units: str = "mm") -> str:
+def part_svg(part: Part, findings: Sequence[Finding], *, units: str = "mm", unreached: Unreached | None = None) -> str:
     """SVG document of a part.
 
     Parameters
@@ -43,16 +58,19 @@ def part_svg(part: Part, findings: Sequence[Finding], *, units: str = "mm") -> s
         Numbered in this order; those without a place, or whose place is off the picture, are only listed.
     units
         Of the figures.
+    unreached
+        Drawn hatched, with a line that says what it is.
     """
     unit, box = frame(part)
     x0, y0, x1, y1 = box
     seen = [b for b in finding_badges(findings) if x0 <= b.at[0] <= x1 and y0 <= b.at[1] <= y1]
-    lines = _lines_of(findings, units)
+    lines = [*_lines_of(findings, units), *_hatched_line(unreached, units)]
     step = 3.2 * unit
     body = [
         tag("title", escape(part.name)),
         tag("rect", x=x0, y=-y1, width=x1 - x0, height=y1 - y0 + (len(lines) + 3) * step, fill="#FFFFFF"),
         tag("path", fill=MATERIAL, stroke=LINE, stroke_width=0.25 * unit, fill_rule="evenodd", d=part_path(part)),
+        *_hatched(unreached, unit),
         *_drawn_on(part, unit),
         *(_mark(b, c, unit) for b, c in zip(seen, spread(seen, 2.6 * unit, box), strict=True)),
         _scale(x0 + 3 * unit, -y0 + 3 * unit, unit, units),
@@ -61,6 +79,29 @@ def part_svg(part: Part, findings: Sequence[Finding], *, units: str = "mm") -> s
     view = (x0, -y1, x1 - x0, y1 - y0 + (len(lines) + 3) * step)
     drawn = picture("".join(body), view, css="part", label=f"{part.name}: {len(findings)} findings")
     return f'<?xml version="1.0" encoding="UTF-8"?>\n{drawn}\n'
+
+
+def _hatched(unreached: Unreached | None, unit: float) -> list[str]:
+    if unreached is None or not unreached.regions:
+        return []
+    stroke = tag("path", stroke=HATCH, stroke_width=0.25 * unit, d=f"M0 0V{number(unit, 3)}")
+    pattern = tag(
+        "pattern", stroke, id="unreached", width=0.5 * unit, height=unit, patternUnits="userSpaceOnUse",
+        patternTransform="rotate(45)",
+    )  # fmt: skip
+    d = "".join(ring_data(ring, decimals=3) for rings in unreached.regions for ring in rings)
+    region = tag("path", class_="unreached", fill="url(#unreached)", fill_rule="evenodd", stroke=HATCH,
+                 stroke_width=0.1 * unit, d=d)  # fmt: skip
+    return [tag("defs", pattern), region]
+
+
+def _hatched_line(unreached: Unreached | None, units: str) -> list[tuple[str, str]]:
+    if unreached is None or not unreached.regions:
+        return []
+    places = counted(len(unreached.regions), "place")
+    size = f"{unreached.area_mm2:.3g} mm²" if units not in ("in", "ft") else f"{unreached.area_mm2 / 645.16:.3g} in²"
+    words = f"hatched: what a tool of {length(unreached.tool_mm, units)} does not enter, {size} in {places}"
+    return [("note", words)]
 
 
 def _scale(x: float, y: float, unit: float, units: str) -> str:

@@ -1,14 +1,17 @@
 """inside-corner: corners of holes and notches that a round tool cannot reach."""
 
 from collections.abc import Iterator, Sequence
+from math import dist
 
 from flatprep.job.corners import Corners, Point
 from flatprep.measure.corners import Corner
 from flatprep.measure.part import MeasuredPart
 from flatprep.measure.relieved import ReliefAsk, among, relieved
+from flatprep.measure.widths import Width
 from flatprep.model.finding import Finding, Severity
 from flatprep.practice.tool import least_web_mm, tool_radius_mm
 from flatprep.rules.base import Context, Rule
+from flatprep.rules.narrow_slot import gaps_under
 
 
 def check(ctx: Context) -> Iterator[Finding]:
@@ -18,12 +21,27 @@ def check(ctx: Context) -> Iterator[Finding]:
         return
     which = (ctx.job_part.corners if ctx.job_part else None) or Corners.ALL
     for part in ctx.parts:
-        missed = among(part.unreached_corners(radius, ctx.slack_mm()), which)
+        missed = among(missed_corners(ctx, part, radius), which)
         opened = _opened(ctx, part, missed, radius) if missed else {}
         for corner in missed:
             why = opened.get(corner.at)
             if why != "":
                 yield _told(part, corner, radius, why)
+
+
+def missed_corners(ctx: Context, part: MeasuredPart, radius: float) -> tuple[Corner, ...]:
+    """Corners that the tool misses in places that it does enter: of others narrow-slot and tool-reach tell."""
+    found = part.unreached_corners(radius, ctx.slack_mm())
+    if not found:
+        return ()
+    gaps = gaps_under(ctx, part, 2.0 * radius)
+    return tuple(corner for corner in found if not any(_ends(gap, corner) for gap in gaps))
+
+
+def _ends(gap: Width, corner: Corner) -> bool:
+    """Tell whether a corner is one of a gap's own."""
+    near = dist(gap.at, corner.at) <= gap.extent_mm / 2.0 + gap.width_mm
+    return near and not set(gap.rows).isdisjoint(corner.rows)
 
 
 def _opened(ctx: Context, part: MeasuredPart, missed: Sequence[Corner], radius: float) -> dict[Point, str]:

@@ -5,6 +5,7 @@ from collections.abc import Iterator
 from flatprep.measure.facing import TooFineError
 from flatprep.measure.holes import HoleShape
 from flatprep.measure.part import MeasuredPart
+from flatprep.measure.widths import Width
 from flatprep.model.finding import Finding, Severity
 from flatprep.profile.process import Limit
 from flatprep.rules.base import Context, Rule, judge, reach_mm
@@ -18,6 +19,15 @@ def check(ctx: Context) -> Iterator[Finding]:
     for part in ctx.parts:
         yield from _long_holes(ctx, part, limit)
         yield from _gaps(ctx, part, limit)
+
+
+def gaps_under(ctx: Context, part: MeasuredPart, tool_mm: float) -> tuple[Width, ...]:
+    """Gaps of a part that a tool of that diameter does not enter; none where they cannot be measured."""
+    try:
+        found = part.slots(max(reach_mm(ctx.limit("slot")), tool_mm))
+    except TooFineError:
+        return ()
+    return tuple(gap for gap in found if gap.width_mm < tool_mm - ctx.slack_mm())
 
 
 def _long_holes(ctx: Context, part: MeasuredPart, limit: Limit) -> Iterator[Finding]:

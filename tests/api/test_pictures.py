@@ -7,6 +7,7 @@ from pathlib import Path
 from click.testing import CliRunner
 
 from flatprep.cli.main import root
+from tests.drawing.draw import box, drawn
 
 DRAWINGS = Path(__file__).parents[2] / "sample_parts" / "drawings"
 
@@ -36,3 +37,21 @@ def test_a_folder_that_cannot_be_written_is_one_message(tmp_path):
     done = CliRunner().invoke(root, words)
     assert done.exit_code == 2
     assert "taken: cannot be written into" in done.stderr
+
+
+def test_what_the_cutter_does_not_enter_is_hatched(tmp_path):
+    """A square window's four corners leave 4 r² (1 - π / 4) = 1.931 mm² to a cutter of 3 mm."""
+    path = drawn(tmp_path, lambda msp: (box(msp, 0, 0, 80, 60), box(msp, 30, 20, 20, 20)))
+    words = ["lint", str(path), "--process", "router", "--svg", str(tmp_path / "pictures")]
+    CliRunner().invoke(root, words)
+    tree = ET.parse(tmp_path / "pictures" / "leaf.svg")
+    paths = [e.get("d") for e in tree.iter("{http://www.w3.org/2000/svg}path") if e.get("class") == "unreached"]
+    assert [d.count("Z") for d in paths] == [4]
+    said = [e.text for e in tree.iter("{http://www.w3.org/2000/svg}text")][-1].replace("\u00a0", " ")
+    assert said == "hatched: what a tool of 3 mm does not enter, 1.93 mm² in 4 places"
+
+
+def test_a_beam_enters_everywhere(tmp_path):
+    path = drawn(tmp_path, lambda msp: (box(msp, 0, 0, 80, 60), box(msp, 30, 20, 20, 20)))
+    CliRunner().invoke(root, ["lint", str(path), "--process", "co2-laser", "--svg", str(tmp_path / "pictures")])
+    assert "hatched" not in (tmp_path / "pictures" / "leaf.svg").read_text()

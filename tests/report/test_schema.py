@@ -56,6 +56,21 @@ GOOD = {
                                 "deflection_ratio": 0.9, "strength_ratio": None, "process": None, "caution": "",
                                 "findings": None, "note": ""}]}],
     },
+    "book": {
+        "schema": "flatprep-book/1", "rack": "rack",
+        "sheets": [
+            {"sheet": 1, "stock": "al3", "taken": "counted", "left": 0,
+             "offcut": {"label": "R0001", "drawing": "R0001.dxf", "material": "al", "thickness_mm": 3.0,
+                        "rectangle_mm": [200.0, 100.0]}},
+            {"sheet": 2, "stock": "R0007", "taken": "remnant", "left": None, "offcut": None},
+        ],
+    },
+    "coupon": {
+        "schema": "flatprep-coupon/1", "cautions": [],
+        "coupons": [{"file": "coupon.dxf", "material": "al", "thickness_mm": 3.0, "process": "router", "left_out": [],
+                     "trials": [{"kind": "slot", "mate": "a sheet", "wanted_mm": 3.0, "sizes_mm": [2.9, 3.0],
+                                 "parts": ["leaf"]}]}],
+    },
     "repair": {
         "schema": "flatprep-repair/1", "file": "a.dxf", "out": "b.dxf", "units_before": "mm",
         "parts": [{"name": "leaf", "area_mm2": 1.0, "cut_length_mm": 4.0, "holes": 0, "size_mm": [1.0, 1.0]}],
@@ -96,6 +111,11 @@ BAD = [
     ("estimate", ("parts", 0, "mass_kg"), "heavy"),
     ("alternatives", ("parts", 0, "options", 0, "basis"), "colour"),
     ("alternatives", ("parts", 0, "options", 0, "mass_kg"), -1.0),
+    ("book", ("sheets", 0, "left"), -1),
+    ("book", ("sheets", 1, "taken"), "stolen"),
+    ("book", ("sheets", 0, "offcut", "rectangle_mm"), [1.0]),
+    ("coupon", ("coupons", 0, "trials", 0, "sizes_mm"), []),
+    ("coupon", ("coupons", 0, "trials", 0, "kind"), "tooth"),
     ("repair", ("changes", 0, "message"), ""),
     ("repair", ("parts", 0, "holes"), 0.5),
     ("compare", ("parts", 0, "holes", 0, "change"), "vanished"),
