@@ -92,7 +92,9 @@ def _of_contour(part: MeasuredPart, contour: int, radius: float) -> Iterator[Reg
         return
     # a hair less, so that a slot as wide as the tool is one that it enters
     entered = void.buffer(-(radius - CHORD_MM), quad_segs=QUARTER).buffer(radius - CHORD_MM, quad_segs=QUARTER)
-    for piece in shapely.get_parts(void.difference(entered)):
+    # slivers along the walls are rounding
+    left = void.difference(entered).buffer(-CHORD_MM).buffer(CHORD_MM, join_style="mitre")
+    for piece in shapely.get_parts(left):
         if isinstance(piece, shapely.Polygon) and piece.area > 0.0:
             depth = _depth_mm(piece, entered)
             if depth > LEAST_GAP_MM:
