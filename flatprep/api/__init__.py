@@ -7,6 +7,7 @@ from importlib import import_module
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
+    from flatprep.api.book import BookAsk, book
     from flatprep.api.lint import lint_job, lint_paths
     from flatprep.api.nest import Nested, nest_job
     from flatprep.api.pieces import ReadJob, read_job
@@ -19,11 +20,13 @@ if TYPE_CHECKING:
     from flatprep.practice.lookup import lookup
 
 _HOME = {
+    "BookAsk": "flatprep.api.book",
     "Budget": "flatprep.nest.problem",
     "JobOptions": "flatprep.job.load",
     "Nested": "flatprep.api.nest",
     "Prepared": "flatprep.api.prepare",
     "ReadJob": "flatprep.api.pieces",
+    "book": "flatprep.api.book",
     "checklist_job": "flatprep.api.work",
     "estimate_job": "flatprep.api.work",
     "lint_job": "flatprep.api.lint",
@@ -50,6 +53,8 @@ __all__ = [  # noqa: RUF022 - in the order of use
     "Nested",
     "write_layout",
     "stored_layout",
+    "BookAsk",
+    "book",
     "checklist_job",
     "estimate_job",
     "prepare_job",

@@ -56,8 +56,13 @@ class _Remnant:
     stock: Stock
 
 
-def with_remnants(read_job: ReadJob, progress: Progress | None = None) -> tuple[ReadJob, Shelf]:
+def with_remnants(read_job: ReadJob, progress: Progress | None = None, *, gone: bool = False) -> tuple[ReadJob, Shelf]:
     """Return the job with the remnants of its rack that it can use among its stock, and what is to be said of them.
+
+    Parameters
+    ----------
+    gone
+        Those that are used up are taken, too: for a layout that has been booked.
 
     Notes
     -----
@@ -66,7 +71,8 @@ def with_remnants(read_job: ReadJob, progress: Progress | None = None) -> tuple[
     job = read_job.job
     if job.rack is None:
         return read_job, Shelf()
-    shelf = remnants_of(job, job.rack, progress or Silent())
+    drawings = (*job.rack.drawings, *job.rack.gone) if gone else job.rack.drawings
+    shelf = remnants_of(job, replace(job.rack, drawings=drawings), progress or Silent())
     return replace(read_job, job=replace(job, stock=(*job.stock, *shelf.stock))), shelf
 
 

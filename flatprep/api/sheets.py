@@ -20,7 +20,7 @@ from flatprep.job.values import Job, JobPart
 from flatprep.model.drawing import Part
 from flatprep.model.layout import SheetLayout
 from flatprep.nest.offcut import Offcut, offcut_of
-from flatprep.report.layout_json import PartSource, RackSource, layout_document, sheet_name
+from flatprep.report.layout_json import LayoutSource, PartSource, StockSource, layout_document, sheet_name
 from flatprep.report.sheet_svg import Extras, sheet_svg
 
 
@@ -80,8 +80,7 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
             yield folder / f"{stem}-tabs.dxf", gaps
         rest = offcut_of(sheet, parts, nested.layout.spacing_mm)
         extras = Extras(job.units, rest.rectangle if rest else None, tabs, known)
-        called = f"{job.name} {job.revision}".rstrip()
-        svg = sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=called, extras=extras)
+        svg = sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=_called(job), extras=extras)
         yield folder / f"{stem}.svg", svg
         if rest is not None:
             written = (*label_lines(_label(job, sheet, number)), _size(rest))
@@ -91,15 +90,15 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
     for older in _older_sheets(folder, len(sheets), nested.also):
         yield older, None
     sources = [_source(job, piece, folder / copies[piece.name]) for piece in pieces]
-    document = layout_document(nested.layout, sources, folder, _rack(job))
+    document = layout_document(nested.layout, sources, folder, _origin(job))
     yield folder / "layout.json", json.dumps(document, indent=1) + "\n"
 
 
 def _label(job: Job, sheet: SheetLayout, number: int) -> RemnantLabel:
     """Say what is to be written on the rest of a sheet."""
     grain = next((stock.grain for stock in job.stock if stock.name == sheet.stock), None)
-    called = f"{job.name} {job.revision}".rstrip()
-    return RemnantLabel(sheet.material, thickness_text(sheet.thickness_mm), f"{called}, rest of sheet {number}", grain)
+    label = f"{_called(job)}, rest of sheet {number}"
+    return RemnantLabel(sheet.material, thickness_text(sheet.thickness_mm), label, grain)
 
 
 def _size(rest: Offcut) -> str:
@@ -107,10 +106,14 @@ def _size(rest: Offcut) -> str:
     return f"largest rectangle {x1 - x0:.0f} x {y1 - y0:.0f} mm"
 
 
-def _rack(job: Job) -> RackSource | None:
-    if job.rack is None:
-        return None
-    return RackSource(job.rack.folder, {s.name: s.rack_file for s in job.stock if s.rack_file})
+def _origin(job: Job) -> LayoutSource:
+    stock = {s.name: StockSource(s.rack_file, s.grain, s.margins_mm, s.keep_out) for s in job.stock}
+    rack, bookings = (job.rack.folder, job.rack.bookings) if job.rack else (None, 0)
+    return LayoutSource(_called(job), rack, bookings, stock)
+
+
+def _called(job: Job) -> str:
+    return f"{job.name} {job.revision}".rstrip()
 
 
 def _identity(job: Job, piece: Piece) -> str:

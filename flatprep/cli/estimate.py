@@ -47,7 +47,7 @@ def command(
         layout = None
         if layout_file is not None:
             layout = stored_layout(layout_file)
-            read, _ = with_remnants(read, progress)
+            read, _ = with_remnants(read, progress, gone=True)
         elif job.stock or job.rack:
             nested = nest_job(read, budget, progress=progress)
             say_of_nest(nested)

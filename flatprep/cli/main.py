@@ -15,6 +15,7 @@ from flatprep.cli.interrupt import answer_interruptions, status_of
 
 _COMMANDS = {
     "alternatives": "what else parts could be made of: thickness, mass, cost, and whether it can be cut",
+    "book": "book the sheets of a layout as cut: counts and remnants out of the rack, offcuts into it",
     "checklist": "the bench work per part: drill, ream, countersink, tap, bend, deburr, in order",
     "compare": "what changed between two revisions of a drawing",
     "coupon": "draw sample cuts of a job's slots and bores, to be tried first",

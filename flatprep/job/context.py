@@ -139,6 +139,13 @@ class Context:
             raise table.fail(key, "a point, such as [10, 20]")
         return self._mm(table, key, value[0]), self._mm(table, key, value[1])
 
+    def sides_mm(self, table: Table, key: str) -> tuple[float, float]:
+        """Return the two sides of something, both above 0."""
+        a, b = self.point_mm(table, key)
+        if min(a, b) <= 0.0:
+            raise table.fail(key, "two lengths above 0, such as [300, 300]")
+        return a, b
+
     def _mm(self, table: Table, key: str, value: object) -> float:
         return table.checked_length_mm(key, value, unit=self.unit)
 

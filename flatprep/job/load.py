@@ -196,18 +196,11 @@ def _cost(top: Table, context: Context) -> CostTerms:
         share=Share(table.choice("share", tuple(Share), plain.share)),
         machine_rate=money(table, "machine_rate"),
         offcut_credit=credit,
-        offcut_least_mm=_sides(table, context) if table.has("offcut_least") else plain.offcut_least_mm,
+        offcut_least_mm=context.sides_mm(table, "offcut_least") if table.has("offcut_least") else plain.offcut_least_mm,
         scrap_per_kg=money(table, "scrap_per_kg") or Decimal(0),
         discounts=_discounts(table),
         breaks=_breaks(table) if table.has("breaks") else plain.breaks,
     )
-
-
-def _sides(table: Table, context: Context) -> tuple[float, float]:
-    a, b = context.point_mm(table, "offcut_least")
-    if min(a, b) <= 0.0:
-        raise table.fail("offcut_least", "two lengths above 0, such as [300, 300]")
-    return a, b
 
 
 def _discounts(table: Table) -> tuple[Discount, ...]:

@@ -209,12 +209,18 @@ class Rack:
         Of a remnant whose drawing states none.
     sheets : tuple of Stock
         From ``stock.toml``.
+    gone : tuple of Path
+        Drawings of remnants that are used up.
+    bookings : int
+        Sheets that have been booked out of it.
     """
 
     folder: Path
     drawings: tuple[Path, ...] = ()
     remnant_price: Decimal | None = None
     sheets: tuple[Stock, ...] = ()
+    gone: tuple[Path, ...] = ()
+    bookings: int = 0
 
     def inside(self, path: Path) -> str:
         """Path of a drawing as the rack calls it, with forward slashes."""

@@ -2,7 +2,7 @@
 
 import os
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from pathlib import Path
 
 from flatprep.geom.bulge import Floats
@@ -11,6 +11,7 @@ from flatprep.model.drawing import Part
 from flatprep.model.layout import Layout, Placement, SheetLayout
 
 SCHEMA = "flatprep-layout/1"
+Box = tuple[float, float, float, float]
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,18 +37,46 @@ class PartSource:
 
 
 @dataclass(frozen=True, slots=True)
-class RackSource:
-    """The rack that sheets of a layout come from.
+class StockSource:
+    """What a kind of stock is besides its size.
 
     Attributes
     ----------
-    folder : Path
-    files : mapping of str to str
-        Where stock stands in the rack, by its name; without that of the job itself.
+    rack_file : str
+        Where it stands in the rack; empty for the job's own.
+    grain : str or None
+    margins_mm, keep_out
+        As in `flatprep.job.values.Stock`.
     """
 
-    folder: Path
-    files: Mapping[str, str]
+    rack_file: str = ""
+    grain: str | None = None
+    margins_mm: Box | None = None
+    keep_out: tuple[Box, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class LayoutSource:
+    """What a layout was made for, and from.
+
+    Attributes
+    ----------
+    job : str
+        Name and revision.
+    rack : Path or None
+    bookings : int
+        How much had been booked out of the rack before.
+    stock : mapping of str to StockSource
+        By name.
+    """
+
+    job: str = ""
+    rack: Path | None = None
+    bookings: int = 0
+    stock: Mapping[str, StockSource] = field(default_factory=dict)
+
+
+NOWHERE = LayoutSource()
 
 
 def sheet_name(number: int) -> str:
@@ -56,16 +85,20 @@ def sheet_name(number: int) -> str:
 
 
 def layout_document(
-    layout: Layout, sources: Sequence[PartSource], folder: Path, rack: RackSource | None = None
+    layout: Layout, sources: Sequence[PartSource], folder: Path, origin: LayoutSource = NOWHERE
 ) -> dict[str, object]:
     """Document of a layout that is written into `folder`; paths in it are relative to that folder."""
+    rack = {"rack": relative(origin.rack, folder), "rack_bookings": origin.bookings} if origin.rack else {}
     return {
         "schema": SCHEMA,
-        **({"rack": relative(rack.folder, folder)} if rack else {}),
+        **({"job": origin.job} if origin.job else {}),
+        **rack,
         "spacing_mm": layout.spacing_mm,
         "margin_mm": layout.margin_mm,
         "parts": [_part(source, folder) for source in sources],
-        "sheets": [_sheet(sheet, n, rack) for n, sheet in enumerate(layout.sheets, start=1)],
+        "sheets": [
+            _sheet(sheet, n, origin.stock.get(sheet.stock, StockSource())) for n, sheet in enumerate(layout.sheets, 1)
+        ],
         "unplaced": [{"part": u.part, "count": u.count, "why": u.why} for u in layout.unplaced],
     }
 
@@ -87,14 +120,19 @@ def relative(file: Path, folder: Path) -> str:
     return Path(os.path.relpath(file, folder)).as_posix()
 
 
-def _sheet(sheet: SheetLayout, number: int, rack: RackSource | None) -> dict[str, object]:
-    taken_from = rack.files.get(sheet.stock) if rack else None
+def _sheet(sheet: SheetLayout, number: int, stock: StockSource) -> dict[str, object]:
+    said = {
+        "rack_file": stock.rack_file,
+        "grain": stock.grain,
+        "margins_mm": stock.margins_mm and list(stock.margins_mm),
+        "keep_out": [list(one) for one in stock.keep_out],
+    }
     return {
         "file": f"{sheet_name(number)}.dxf",
         "stock": sheet.stock,
-        **({"rack_file": taken_from} if taken_from else {}),
         "material": sheet.material,
         "thickness_mm": sheet.thickness_mm,
+        **{key: value for key, value in said.items() if value},
         "outline": _points(sheet.outline),
         "holes": [_points(hole) for hole in sheet.holes],
         "used_length_mm": sheet.used_length_mm,

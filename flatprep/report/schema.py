@@ -3,7 +3,7 @@
 import json
 from importlib.resources import files
 
-KINDS = ("lint", "layout", "checklist", "estimate", "lookup", "alternatives", "repair", "compare", "coupon")
+KINDS = ("lint", "layout", "checklist", "estimate", "lookup", "alternatives", "repair", "compare", "coupon", "book")
 """The documents that have a schema."""
 
 

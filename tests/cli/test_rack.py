@@ -5,6 +5,7 @@ import json
 import jsonschema
 import pytest
 
+from flatprep.base.journal import NAME
 from flatprep.report.schema import schema
 from tests.api.test_remnants import JOB, SAID, remnant
 from tests.cli.test_jobs import run
@@ -55,3 +56,66 @@ def test_without_a_rack_the_layout_names_none(job, tmp_path):
     layout = json.loads((tmp_path / "out" / "layout.json").read_text())
     assert "rack" not in layout
     assert "rack_file" not in layout["sheets"][0]
+
+
+def test_a_layout_is_booked_once(job, tmp_path):
+    """From the layout alone: it names its rack; the job file stays as it is."""
+    job.write_text(JOB)
+    run("nest", job, "--out", tmp_path / "out", "--steps", "3")
+    got = run("book", tmp_path / "out" / "layout.json")
+    assert got.exit_code == 0, got.output
+    assert "sheet-01: R7: used up; offcut R0008" in got.stdout
+    assert "  R0008  mild-steel 3 mm, holds " in got.stdout
+    assert job.read_text() == JOB
+    again = run("book", tmp_path / "out" / "layout.json")
+    assert again.exit_code == 2
+    assert "booked already: sheet-01" in again.stderr
+    priced = run("estimate", job, "--format", "json", "--layout", tmp_path / "out" / "layout.json")
+    assert [s["name"] for s in json.loads(priced.stdout)["stock"]] == ["R7"]  # gone, but what it cost is known
+
+
+def test_booking_as_a_document(job, tmp_path):
+    run("nest", job, "--out", tmp_path / "out", "--steps", "3")
+    layout = tmp_path / "out" / "layout.json"
+    lost = run("book", layout)
+    assert (lost.exit_code, lost.stdout) == (2, "")
+    assert "made without a rack" in lost.stderr
+    got = run("book", layout, "--rack", tmp_path / "new", "--format", "json")
+    document = json.loads(got.stdout)
+    jsonschema.validate(document, schema("book"))
+    (sheet,) = document["sheets"]
+    assert (sheet["stock"], sheet["taken"], sheet["offcut"]["label"]) == ("full", "own", "R0001")
+    assert (tmp_path / "new" / sheet["offcut"]["drawing"]).exists()
+
+
+@pytest.mark.parametrize(
+    ("words", "said"),
+    [
+        (("none.json",), "No such file"),
+        (("job.toml",), "no JSON"),
+        (("out/layout.json", "--sheet", "2"), "no sheet 2"),
+        (("out/layout.json", "--rack", "job.toml"), "cannot be written into"),
+    ],
+)
+def test_bad_bookings(job, tmp_path, words, said):
+    job.write_text(JOB)
+    run("nest", job, "--out", tmp_path / "out", "--steps", "3")
+    before = sorted(p.name for p in (tmp_path / "rack").rglob("*"))
+    got = run("book", *(tmp_path / word if "." in word else word for word in words))
+    assert got.exit_code == 2
+    assert said in got.stderr
+    assert "Traceback" not in got.output
+    assert sorted(p.name for p in (tmp_path / "rack").rglob("*")) == before
+
+
+def test_a_booking_that_was_broken_off_is_finished_first(job, tmp_path):
+    job.write_text(JOB)
+    run("nest", job, "--out", tmp_path / "out", "--steps", "3")
+    (tmp_path / "rack" / NAME).write_text(json.dumps({"write": {"R0009.dxf": "x"}, "move": [["a.dxf", "used.dxf"]]}))
+    got = run("nest", job, "--out", tmp_path / "out2", "--steps", "3")
+    assert got.exit_code == 2
+    assert "a booking was broken off half way" in got.stderr
+    got = run("book", tmp_path / "out" / "layout.json")
+    assert "a.dxf: not in the rack any more" in got.stderr
+    assert not (tmp_path / "rack" / NAME).exists()
+    assert (tmp_path / "rack" / "used.dxf").exists()
