@@ -65,7 +65,7 @@ def lint_paths(
     tasks = [_task(one, said, process) for one in found]
     report = lint_tasks(tasks, jobs=jobs, progress=progress)
     lost = tuple(Unreadable(str(m.path), f"{m.path}: {m.why}", m.remedy) for m in missing)
-    return replace(report, unreadable=(*report.unreadable, *lost), notes=_unknown(tasks))
+    return replace(report, unreadable=(*report.unreadable, *lost), notes=(*_unknown(tasks), *_kerf(tasks)))
 
 
 def lint_job(job: Job, *, jobs: int = 1, progress: Progress | None = None) -> LintReport:
@@ -84,7 +84,7 @@ def lint_job(job: Job, *, jobs: int = 1, progress: Progress | None = None) -> Li
         for part in job.parts
     ]
     report = lint_tasks(tasks, jobs=jobs, progress=progress)
-    return replace(report, linted=_with_near_misses(report.linted), notes=_unknown(tasks))
+    return replace(report, linted=_with_near_misses(report.linted), notes=(*_unknown(tasks), *_kerf(tasks)))
 
 
 def calliper_mm(job: Job, part: JobPart) -> float | None:
@@ -171,6 +171,27 @@ def _unknown(tasks: Sequence[LintTask]) -> tuple[str, ...]:
     if not missing:
         return ()
     return (f"not said: {', '.join(missing)}; rules that need it did not run",)
+
+
+def _kerf(tasks: Sequence[LintTask]) -> tuple[str, ...]:
+    """One line on how sizes change where the cut runs on the line, with the kerfs of each process."""
+    kerfs: dict[str, set[float]] = {}
+    for t in tasks:
+        if t.process is not None:
+            kerf = t.process.kerf_at(t.material.family if t.material else None, t.thickness_mm)
+            kerfs.setdefault(t.process.id, set()).add(kerf)
+    said = ", ".join(f"{name} {_range(sizes)} mm" for name, sizes in kerfs.items() if max(sizes) > 0.0)
+    if not said:
+        return ()
+    return (
+        "a cut that runs on the line makes holes wider and parts smaller than drawn by its kerf "
+        f"({said}): have the machine offset the path, or nest with --also kerf",
+    )
+
+
+def _range(sizes: set[float]) -> str:
+    least, most = min(sizes), max(sizes)
+    return f"{least:.3g}" if most - least < 0.005 else f"{least:.3g} to {most:.3g}"
 
 
 def _patience(task: LintTask) -> float:

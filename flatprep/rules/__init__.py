@@ -4,9 +4,11 @@ from flatprep.model.finding import Finding, Severity
 from flatprep.rules import (
     bend_along_grain,
     bore_size,
+    chord_density,
     countersink_too_deep,
     duplicate_line,
     empty_drawing,
+    flat_length,
     hole_near_bend,
     inside_corner,
     joint_fit,
@@ -40,6 +42,7 @@ from flatprep.rules import (
 )
 from flatprep.rules.accept import accepted
 from flatprep.rules.base import Context, Rule, findings
+from flatprep.rules.lettering import gathered
 
 ALL: tuple[Rule, ...] = (
     # the drawing itself
@@ -49,6 +52,7 @@ ALL: tuple[Rule, ...] = (
     duplicate_line.RULE,
     self_crossing.RULE,
     tiny_segment.RULE,
+    chord_density.RULE,
     unsupported_entity.RULE,
     text_not_outlined.RULE,
     off_plane.RULE,
@@ -72,6 +76,7 @@ ALL: tuple[Rule, ...] = (
     short_flange.RULE,
     tight_bend.RULE,
     bend_along_grain.RULE,
+    flat_length.RULE,
     # bench work
     work_without_hole.RULE,
     tap_hole_size.RULE,
@@ -89,7 +94,10 @@ _LOUDNESS = {Severity.ERROR: 0, Severity.WARNING: 1, Severity.NOTE: 2}
 
 
 def run(context: Context) -> tuple[Finding, ...]:
-    """Ask every rule; the worst findings first, then in the order of `ALL`; accepted ones are notes."""
+    """Ask every rule; the worst findings first, then in the order of `ALL`; accepted ones are notes.
+
+    What is wrong with the letters of a word is one finding a rule.
+    """
     accepts = context.job_part.accepts if context.job_part else ()
-    told = (accepted(finding, accepts) for finding in findings(ALL, context))
+    told = (accepted(finding, accepts) for finding in gathered(findings(ALL, context), context.parts))
     return tuple(sorted(told, key=lambda f: _LOUDNESS[f.severity]))

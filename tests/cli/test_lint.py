@@ -199,3 +199,12 @@ def test_a_failure_of_flatprep_itself_is_told_without_a_traceback(run, tmp_path,
     assert got.exit_code == 2
     assert "a bug" in got.stderr
     assert "Traceback" not in got.output
+
+
+def test_the_kerf_is_told_once_a_run(run, tmp_path):
+    for name in ("a.dxf", "b.dxf"):
+        drawn(tmp_path, plate(8), name=name)
+    words = run("lint", tmp_path, *options(tmp_path)).stdout
+    line = "note: a cut that runs on the line makes holes wider and parts smaller than drawn by its kerf (laser 0.2 mm)"
+    assert words.count(line) == 1
+    assert "by its kerf" not in run("lint", tmp_path).stdout
