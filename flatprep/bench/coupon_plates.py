@@ -76,10 +76,11 @@ def plates(
     """
     slots = _rows([t for t in trials if t.kind is TrialKind.SLOT], room)
     bores = _rows([t for t in trials if t.kind is TrialKind.BORE], room)
-    parts, texts = [], []
+    parts: list[Part] = []
+    texts: list[Text] = []
     y = 0.0
-    for number, (notched, bored) in enumerate(zip_longest(slots, bores, fillvalue=[]), start=1):
-        plate = _plate(notched, bored, room, inch=inch)
+    for number, (notched, bored) in enumerate(zip_longest(slots, bores), start=1):
+        plate = _plate(notched or (), bored or (), room, inch=inch)
         title = name if len(parts) == 0 and max(len(slots), len(bores)) == 1 else f"{name}-{number}"
         parts.append(Part(title, _outline(plate, y), tuple(_hole(x, y - down, d) for x, down, d in plate.holes)))
         texts += [Text(words, (x, y - down), layer, "", TEXT_MM) for words, (x, down) in plate.labels]
