@@ -30,13 +30,6 @@ class FilledSheet:
     spots: tuple[Spot, ...]
 
 
-def spot(item: Item, centre: tuple[float, float], motion: Similarity) -> Spot:
-    """Piece whose outline was laid about `centre` of the drawing instead of its origin."""
-    turned = Similarity(turn_deg=motion.turn_deg, mirrored=motion.mirrored).points(np.array([centre]))[0]
-    dx, dy = motion.dx - float(turned[0]), motion.dy - float(turned[1])
-    return Spot(item, Similarity(turn_deg=motion.turn_deg, dx=dx, dy=dy, mirrored=motion.mirrored))
-
-
 def layout_of(ask: NestAsk, sheets: Sequence[FilledSheet], unplaced: Sequence[Unplaced]) -> Layout:
     """Layout of filled sheets, in their order; copies are numbered as they lie, part by part."""
     copies: Counter[str] = Counter()

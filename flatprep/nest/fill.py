@@ -5,10 +5,10 @@ from dataclasses import replace
 import numpy as np
 import shapely
 
-from flatprep.geom.bulge import Floats, Similarity
+from flatprep.geom.bulge import Floats
 from flatprep.model.layout import Unplaced
 from flatprep.nest.allowed import turns_of
-from flatprep.nest.assemble import Spot, spot, used_length
+from flatprep.nest.assemble import Spot, used_length
 from flatprep.nest.construct import Bin, Layer
 from flatprep.nest.firstfit import Answer, piece_orders
 from flatprep.nest.group import Group
@@ -38,11 +38,10 @@ def fill(answer: Answer, fillers: Group, ask: NestAsk) -> tuple[Answer, tuple[Un
     order = piece_orders(fillers.shapes, [True] * len(fillers.shapes))[0]
     laid = layer.lay(order, range(len(bins)))
     more: list[list[Spot]] = [[] for _ in bins]
-    for p in laid.places:
-        item, grown = fillers.owner[p.shape]
-        motion = Similarity(turn_deg=p.turn_deg, dx=p.x, dy=p.y, mirrored=p.mirrored)
-        more[p.container].append(spot(item, grown.centre, motion))
-    left = tuple(Unplaced(fillers.owner[s][0].name, count, NO_ROOM) for s, count in enumerate(laid.left_out) if count)
+    for p, one in zip(laid.places, fillers.spots(laid.places), strict=True):
+        more[p.container].append(one)
+    late = [one for s, count in enumerate(laid.left_out) for one in fillers.without_place(s, count)]
+    left = tuple(Unplaced(item.name, count, NO_ROOM) for item, count in late)
     return replace(answer, fillers=tuple(tuple(spots) for spots in more)), left
 
 
@@ -58,7 +57,8 @@ def _bin_left(answer: Answer, number: int, fillers: Group, ask: NestAsk) -> Bin:
     for s in sheet.spots[len(answer.group.kept[kind]) :]:
         grown = grow(s.item.part, ask.spacing_mm, windows=ask.windows)
         rings += [s.motion.points(ring + grown.centre) for ring in (grown.outer, *grown.holes)]
-    turns = (turns_of(item, s.mirror, stock) for s, (item, _) in zip(fillers.shapes, fillers.owner, strict=True))
+    mine = zip(fillers.shapes, fillers.owners, strict=True)
+    turns = (turns_of(owners[0].item, s.mirror, stock) for s, owners in mine)
     return Bin(container, tuple(turns), tuple(rings))
 
 

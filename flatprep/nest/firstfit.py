@@ -98,7 +98,7 @@ def answer_of(group: Group, places: Sequence[Place], supply: Sequence[int], marg
     counts = [s.count for s in group.shapes]
     for p in kept:
         counts[p.shape] -= 1
-    unplaced = tuple(why_unplaced(group, shape, left) for shape, left in enumerate(counts) if left)
+    unplaced = tuple(u for shape, left in enumerate(counts) if left for u in why_unplaced(group, shape, left))
     return Answer(group, kept, kinds, unplaced, value(uses, sum(counts), group.stock))
 
 
@@ -133,7 +133,7 @@ def _with_extra_turns(group: Group) -> Group:
             extra_turn(s, t, kind.container) if t is None else t for s, t in zip(group.shapes, kind.turns, strict=True)
         ]
         bins.append(Bin(kind.container, tuple(turns)))
-    return Group(group.stock, tuple(bins), group.shapes, group.owner, group.kept)
+    return Group(group.stock, tuple(bins), group.shapes, group.owners, group.kept)
 
 
 __all__ = ["Answer", "Laid", "answer_of", "first_answers", "piece_orders"]

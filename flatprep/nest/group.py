@@ -6,16 +6,16 @@ from dataclasses import dataclass
 import numpy as np
 from shapely.geometry import Polygon
 
-from flatprep.geom.bulge import Similarity
 from flatprep.model.layout import Unplaced
 from flatprep.nest.allowed import hands, matches, turns_of, why_no_stock
-from flatprep.nest.assemble import FilledSheet, Spot, spot
+from flatprep.nest.assemble import FilledSheet, Spot
 from flatprep.nest.construct import Bin
 from flatprep.nest.keep import Supply, room_left
 from flatprep.nest.objective import is_open
-from flatprep.nest.prepare import Grown, container_of, grow
+from flatprep.nest.prepare import container_of, grow
 from flatprep.nest.problem import Item, NestAsk, StockSheet
-from flatprep.nest.shapes import Place, Shape
+from flatprep.nest.shapes import Container, Place, Shape
+from flatprep.nest.twins import Owner, kinds_of
 
 
 @dataclass(frozen=True, slots=True)
@@ -28,9 +28,9 @@ class Group:
         The kinds that the margin leaves something of; `bins` go with them.
     items : tuple of Item
     shapes : tuple of Shape
-        One for each item and hand.
-    owner : tuple of (Item, Grown)
-        What each shape stands for.
+        One for each outline and hand.
+    owners : tuple of tuple of Owner
+        Whose pieces each shape stands for: one item's, or those of several with the same outline.
     kept : tuple of tuple of Spot
         What already lies on each kind of stock.
     """
@@ -38,7 +38,7 @@ class Group:
     stock: tuple[StockSheet, ...]
     bins: tuple[Bin, ...]
     shapes: tuple[Shape, ...]
-    owner: tuple[tuple[Item, Grown], ...]
+    owners: tuple[tuple[Owner, ...], ...]
     kept: tuple[tuple[Spot, ...], ...]
 
     @property
@@ -46,13 +46,27 @@ class Group:
         """Pieces to lay."""
         return sum(s.count for s in self.shapes)
 
+    @property
+    def items(self) -> tuple[Item, ...]:
+        """Items of the group, each once."""
+        return tuple({o.item.name: o.item for owners in self.owners for o in owners}.values())
+
+    def spots(self, places: Sequence[Place]) -> list[Spot]:
+        """Return the true part at each place: of a shape's owners, the first ones' pieces go to its first places."""
+        turn = [iter([o for o in owners for _ in range(o.pieces)]) for owners in self.owners]
+        taken = ((next(turn[p.shape]), p) for p in places)
+        return [Spot(owner.item, owner.motion(p)) for owner, p in taken]
+
+    def without_place(self, shape: int, count: int) -> list[tuple[Item, int]]:
+        """Items, and how many pieces of each, of the last `count` pieces of a shape: those that have no place."""
+        late = [o.item.name for o in self.owners[shape] for _ in range(o.pieces)]
+        return [(item, n) for item in self.items if (n := late[len(late) - count :].count(item.name))]
+
     def filled(self, places: Sequence[Place], supply: Sequence[int]) -> tuple[FilledSheet, ...]:
         """Sheets of `supply` with true parts on them, in its order."""
         spots: dict[int, list[Spot]] = {}
-        for p in places:
-            item, grown = self.owner[p.shape]
-            motion = Similarity(turn_deg=p.turn_deg, dx=p.x, dy=p.y, mirrored=p.mirrored)
-            spots.setdefault(p.container, []).append(spot(item, grown.centre, motion))
+        for p, one in zip(places, self.spots(places), strict=True):
+            spots.setdefault(p.container, []).append(one)
         return tuple(
             FilledSheet(self.stock[kind], (*self.kept[kind], *spots.get(n, ()))) for n, kind in enumerate(supply)
         )
@@ -85,30 +99,40 @@ def prepare_group(items: Sequence[Item], supplies: Sequence[Supply], ask: NestAs
 
     With `prefer` bends lie across the grain also where the material only had better have it so.
     """
-    owner: list[tuple[Item, Grown]] = []
-    shapes: list[Shape] = []
-    for item in items:
-        grown = grow(item.part, ask.spacing_mm, windows=ask.windows)
-        for count, states in hands(item):
-            owner.append((item, grown))
-            shapes.append(Shape(grown.outer, grown.holes, item.turns_deg, states, count))
-    shapes = [_useful_windows(s, shapes) for s in shapes]
-    longest = sum(s.count * float(np.hypot(*np.ptp(s.outer, axis=0))) for s in shapes) + 2.0 * ask.margin_mm
-    kinds, bins, kept = [], [], []
-    for supply in supplies:
-        stock = supply.stock
-        if stock.count == 0 or not any(matches(item, stock) for item in items):
-            continue
-        try:
-            container = container_of(stock, ask.margin_mm, ask.spacing_mm, longest if is_open(stock) else None)
-            container = room_left(container, supply, ask.items, ask.spacing_mm)
-        except ValueError:
-            continue
-        kinds.append(stock)
-        kept.append(kept_spots(supply, ask.items))
-        turns = (turns_of(item, s.mirror, stock, prefer=prefer) for s, (item, _) in zip(shapes, owner, strict=True))
-        bins.append(Bin(container, tuple(turns)))
-    return Group(tuple(kinds), tuple(bins), tuple(shapes), tuple(owner), tuple(kept))
+    grown = [(item, grow(item.part, ask.spacing_mm, windows=ask.windows)) for item in items]
+    pieces = [(item, outline, count, states) for item, outline in grown for count, states in hands(item)]
+    across = (count * float(np.hypot(*np.ptp(outline.outer, axis=0))) for _, outline, count, _ in pieces)
+    longest = sum(across) + 2.0 * ask.margin_mm
+    usable = [
+        (supply, container)
+        for supply in supplies
+        if supply.stock.count != 0 and any(matches(item, supply.stock) for item in items)
+        if (container := _container(supply, ask, longest)) is not None
+    ]
+    room = min((float(np.ptp(c.outer, axis=0).min()) for _, c in usable), default=0.0)
+    kinds = kinds_of(pieces, room)
+    shapes = [Shape(k.grown.outer, k.grown.holes, k.owners[0].item.turns_deg, k.states, k.pieces) for k in kinds]
+    bins = [
+        Bin(c, tuple(turns_of(k.owners[0].item, k.states, supply.stock, prefer=prefer) for k in kinds))
+        for supply, c in usable
+    ]
+    return Group(
+        tuple(supply.stock for supply, _ in usable),
+        tuple(bins),
+        tuple(_useful_windows(s, shapes) for s in shapes),
+        tuple(k.owners for k in kinds),
+        tuple(kept_spots(supply, ask.items) for supply, _ in usable),
+    )
+
+
+def _container(supply: Supply, ask: NestAsk, longest_mm: float) -> Container | None:
+    """Room that is left of a sheet, open ones being as long as could be needed; None where there is none."""
+    stock = supply.stock
+    try:
+        container = container_of(stock, ask.margin_mm, ask.spacing_mm, longest_mm if is_open(stock) else None)
+        return room_left(container, supply, ask.items, ask.spacing_mm)
+    except ValueError:
+        return None
 
 
 def kept_spots(supply: Supply, items: Sequence[Item]) -> tuple[Spot, ...]:

@@ -7,6 +7,7 @@ from flatprep.model.layout import Unplaced
 from flatprep.nest.allowed import turns_on
 from flatprep.nest.construct import Bin, Layer
 from flatprep.nest.group import Group
+from flatprep.nest.problem import Item
 from flatprep.nest.shapes import Container, Shape
 
 EVERY_DEG = 2.0
@@ -27,14 +28,12 @@ def extra_turn(shape: Shape, turns: tuple[float, ...] | None, container: Contain
     return (0.0, 90.0, 180.0, 270.0, angle, (angle + 180.0) % 360.0)
 
 
-def why_unplaced(group: Group, shape: int, count: int) -> Unplaced:
-    """Return the entry for pieces that are left out: what would have to change for them to fit."""
-    item = group.owner[shape][0]
-    return Unplaced(item.name, count, _why(group, shape))
+def why_unplaced(group: Group, shape: int, count: int) -> list[Unplaced]:
+    """Entries for pieces of a shape that are left out: what would have to change for them to fit."""
+    return [Unplaced(item.name, many, _why(group, shape, item)) for item, many in group.without_place(shape, count)]
 
 
-def _why(group: Group, shape: int) -> str:
-    item, _ = group.owner[shape]
+def _why(group: Group, shape: int, item: Item) -> str:
     names = ", ".join(dict.fromkeys(s.name for s in group.stock))
     if not group.stock:
         return "the margin leaves nothing of any sheet"

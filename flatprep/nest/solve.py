@@ -22,7 +22,7 @@ from flatprep.nest.objective import Value
 from flatprep.nest.problem import Budget, NestAsk
 from flatprep.nest.refill import refill, worth_refilling
 from flatprep.nest.shares import Means, share_out
-from flatprep.nest.sound import UnsoundError, sound_answer, with_more_room
+from flatprep.nest.sound import UnsoundError, sound_answer, with_more_room, without_faults
 from flatprep.nest.verify import LayoutFault, SheetKey, sheet_key, verify
 from flatprep.nest.warm import ROWS, SEARCH, Compiler, compiling
 
@@ -148,8 +148,8 @@ class _Job:
         """Lay the fillers, at the very end."""
         for group in self._fillers:
             for number, answer in enumerate(self._answers):
-                if answer.supply and any(matches(group.owner[0][0], s) for s in answer.group.stock):
-                    names = {item.name for item, _ in group.owner}
+                if answer.supply and any(matches(group.items[0], s) for s in answer.group.stock):
+                    names = {item.name for item in group.items}
                     filled, left = fill(answer, group, self._ask)
                     if self._faults(number, filled, left):
                         continue
@@ -171,7 +171,7 @@ class _Job:
             first = sound_answer(next(answers), faults, again, self._ask.margin_mm)
             if prefers_across(groups[number]):
                 kinder = first_answers(self._group(number, self._ask, prefer=True), self._ask.margin_mm, stop)
-                better = sound_answer(next(kinder), faults, lambda _, first=first: first, self._ask.margin_mm)
+                better = without_faults(next(kinder), faults, self._ask.margin_mm)
                 if is_about_as_good(better.value, first.value):
                     first, every[number] = better, kinder
             self._answers.append(first)
@@ -253,7 +253,7 @@ def difficulty(answer: Answer) -> float:
 
 def prefers_across(group: Group) -> bool:
     """Tell whether bends of a group had better lie across the grain, and some sheet has one."""
-    minds = any(item.minds_grain and not item.must_cross for item, _ in group.owner)
+    minds = any(item.minds_grain and not item.must_cross for item in group.items)
     return minds and any(s.grain is not None for s in group.stock)
 
 

@@ -10,7 +10,7 @@ from dataclasses import replace
 
 from flatprep.base.errors import FlatprepError
 from flatprep.nest.firstfit import Answer, answer_of
-from flatprep.nest.problem import NestAsk
+from flatprep.nest.problem import NestAsk, StockSheet
 from flatprep.nest.verify import LayoutFault
 
 SAFETIES_MM = (0.02, 0.2, 1.0)
@@ -26,10 +26,15 @@ class UnsoundError(FlatprepError):
 
 def with_more_room(ask: NestAsk, by_mm: float) -> NestAsk:
     """Return what is asked with so much more spacing and margin."""
-    stock = tuple(
-        s if s.margins_mm is None else replace(s, margins_mm=tuple(m + by_mm for m in s.margins_mm)) for s in ask.stock
-    )
+    stock = tuple(_with_margins(s, by_mm) for s in ask.stock)
     return replace(ask, spacing_mm=ask.spacing_mm + by_mm, margin_mm=ask.margin_mm + by_mm, stock=stock)
+
+
+def _with_margins(stock: StockSheet, by_mm: float) -> StockSheet:
+    if stock.margins_mm is None:
+        return stock
+    left, right, bottom, top = (margin + by_mm for margin in stock.margins_mm)
+    return replace(stock, margins_mm=(left, right, bottom, top))
 
 
 def sound_answer(answer: Answer, faults: Faults, again: Callable[[float], Answer], margin_mm: float) -> Answer:
@@ -58,8 +63,9 @@ def without_faults(answer: Answer, faults: Faults, margin_mm: float) -> Answer:
     while answer.places and (found := faults(answer)):
         bad = _places_of(answer, found)
         told = bad or dict.fromkeys(range(len(answer.places)), found[0].message)
+        lying = answer.group.spots(answer.places)
         for index, message in told.items():
-            why.setdefault(answer.group.owner[answer.places[index].shape][0].name, message)
+            why.setdefault(lying[index].item.name, message)
         kept = [p for index, p in enumerate(answer.places) if index not in told]
         answer = answer_of(answer.group, kept, answer.supply, margin_mm)
     unplaced = (replace(u, why=f"found no sound place: {why[u.part]}") if u.part in why else u for u in answer.unplaced)

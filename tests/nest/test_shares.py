@@ -75,7 +75,7 @@ def test_a_trivial_group_leaves_the_hard_one_nearly_everything(monkeypatch):
     asked = {}
 
     def searched(answer, margin_mm, effort, found):
-        asked[answer.group.owner[0][0].material] = effort.clock.steps
+        asked[answer.group.items[0].material] = effort.clock.steps
 
     monkeypatch.setattr(solve, "improve", searched)
     hard = [item(hook(f"hook{k}", 60 + 7 * k, 40 + 5 * k), 8, material="steel") for k in range(5)]
