@@ -221,9 +221,15 @@ def past(trap: Floats, a: Span, b: Span, across: float, along: float) -> float:
     while moved:
         moved = False
         for j in range(b[0], b[1]):
+            low, high = trap[j, 0] + across + THIN_MM, trap[j, 1] + across
+            left, right = min(trap[j, 2], trap[j, 3]), max(trap[j, 4], trap[j, 5])
             for i in range(a[0], a[1]):
-                if trap[i, 0] >= trap[j, 1] + across:
+                if trap[i, 0] >= high:
                     break
+                if trap[i, 1] <= low or max(trap[i, 4], trap[i, 5]) - left <= along + THIN_MM:
+                    continue  # no level shared, or the offsets that it forbids lie behind
+                if min(trap[i, 2], trap[i, 3]) - right >= along - THIN_MM:
+                    continue  # or ahead
                 first, last = forbidden(trap, i, j, across)
                 if first < along - THIN_MM and last > along + THIN_MM:
                     along = last
