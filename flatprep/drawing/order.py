@@ -19,10 +19,8 @@ from flatprep.model.layout import Placement, SheetLayout
 
 SAME_SIZE = 2.0
 """Pieces up to this many times the area of the smallest one left may be cut in its place."""
-LAST_FEW = 2
-"""So many pieces back, the place is still hot."""
 HOT = 1.0, 0.5
-"""Weights of being a neighbour of the last piece and of the one before."""
+"""Weights of being a neighbour of the last piece and of the one before: so many pieces back, the place is still hot."""
 
 Box = tuple[float, float, float, float]
 Flags = npt.NDArray[np.bool_]
@@ -56,13 +54,14 @@ def gaps_mm(boxes: Floats, one: Floats) -> Floats:
 
 def _append_apart(order: list[int], rank: list[int], boxes: Floats, areas: Floats) -> None:
     """Append pieces of one level, given by rising size, to what is cut before them."""
-    near = np.array([_neighbours(boxes, k) for k in rank])[:, rank] if rank else np.zeros((0, 0), dtype=bool)
-    waits = np.ones(len(rank), dtype=bool)
     mine, size = boxes[rank], areas[rank]
+    near = np.array([_near(mine, box) for box in mine])  # each of itself, too, which changes no order
+    waiting, waits = near.sum(axis=1), np.ones(len(rank), dtype=bool)
     for _ in rank:
         may = waits & (size <= SAME_SIZE * size[int(np.argmax(waits))])
-        k = _next(order, may, near[:, waits].sum(axis=1), boxes, mine)
+        k = _next(order, may, waiting, boxes, mine)
         waits[k] = False
+        waiting = waiting - near[k]
         order.append(rank[k])
 
 
@@ -71,27 +70,19 @@ def _next(order: list[int], may: Flags, waiting: npt.NDArray[np.int64], boxes: F
     if not order:
         return int(np.argmax(may))
     gap = gaps_mm(mine, boxes[order[-1]])
-    heat = sum(
-        weight * (gaps_mm(mine, boxes[k]) < _width(mine, boxes[k]))
-        for weight, k in zip(HOT, order[: -LAST_FEW - 1 : -1], strict=False)
-    )
-    hot = np.where(may, heat, np.inf)
+    hot = np.where(may, 0.0, np.inf)
+    for weight, k in zip(HOT, reversed(order), strict=False):
+        hot = hot + weight * _near(mine, boxes[k])
     coolest = hot <= hot.min()
     if hot.min() >= HOT[0]:
         return int(np.argmax(np.where(coolest, gap, -1.0)))
     return int(np.lexsort((gap, -waiting, ~coolest))[0])
 
 
-def _neighbours(boxes: Floats, k: int) -> Flags:
-    found = gaps_mm(boxes, boxes[k]) < _width(boxes, boxes[k])
-    found[k] = False
-    return np.asarray(found)
-
-
-def _width(boxes: Floats, one: Floats) -> Floats:
-    """Width (shorter side) of the smaller of each box and one of them."""
+def _near(boxes: Floats, one: Floats) -> Flags:
+    """Which boxes are neighbours of one: nothing of the width (shorter side) of the smaller of both fits between."""
     own = np.minimum(boxes[:, 2] - boxes[:, 0], boxes[:, 3] - boxes[:, 1])
-    return np.minimum(own, min(one[2] - one[0], one[3] - one[1]))
+    return np.asarray(gaps_mm(boxes, one) < np.minimum(own, min(one[2] - one[0], one[3] - one[1])))
 
 
 def _depths(sheet: SheetLayout, parts: Mapping[str, Part], boxes: Floats) -> npt.NDArray[np.int64]:

@@ -86,7 +86,7 @@ def _place(size: Floats, s_mm: float) -> tuple[int, float]:
 
 def _point(seg: Segments, k: int, share: float) -> Floats:
     if share <= 0.0 or share >= 1.0:
-        return seg.start[k] if share <= 0.0 else seg.end[k]
+        return np.asarray(seg.start[k] if share <= 0.0 else seg.end[k])
     if not seg.is_arc[k]:
         return np.asarray(seg.start[k] + share * (seg.end[k] - seg.start[k]))
     angle = seg.angle[k] + share * seg.sweep[k]
