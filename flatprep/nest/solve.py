@@ -20,7 +20,8 @@ from flatprep.nest.improve import Effort, clock_share, improve
 from flatprep.nest.keep import KeepError, left_to_lay
 from flatprep.nest.objective import Value
 from flatprep.nest.problem import Budget, NestAsk
-from flatprep.nest.refill import refill, worth_refilling
+from flatprep.nest.refill import worth_refilling
+from flatprep.nest.refill_jobs import refill_with
 from flatprep.nest.shares import Means, share_out
 from flatprep.nest.sound import UnsoundError, sound_answer, with_more_room, without_faults
 from flatprep.nest.verify import LayoutFault, SheetKey, sheet_key, verify
@@ -206,7 +207,7 @@ class _Job:
         take, margin, seed = partial(self._take, number), self._ask.margin_mm, budget.seed + turn
         if worth_refilling(self._answers[number]):
             first = clock_share(clock, REFILL_SHARE)
-            refill(self._answers[number], margin, first, seed, take)
+            refill_with(self._answers[number], margin, first, seed, take, budget.jobs)
             clock.spend(first.evaluations)
         search = clock_share(clock, SEARCH_SHARE if may_downsize(self._answers[number]) else 1.0)
         improve(self._answers[number], margin, Effort(search, seed, budget.jobs), take)
