@@ -88,11 +88,9 @@ def _near(boxes: Floats, one: Floats) -> Flags:
 def _depths(sheet: SheetLayout, parts: Mapping[str, Part], boxes: Floats) -> npt.NDArray[np.int64]:
     """In how many windows of other pieces each one lies, by boxes: never fewer than in truth, and in their order."""
     depth = np.zeros(len(boxes), dtype=np.int64)
-    for n, placement in enumerate(sheet.placements):
+    for placement in sheet.placements:
         for window in _window_boxes(parts[placement.part], placement):
-            inside = (boxes[:, :2] >= window[:2]).all(axis=1) & (boxes[:, 2:] <= window[2:]).all(axis=1)
-            inside[n] = False
-            depth += inside
+            depth += (boxes[:, :2] >= window[:2]).all(axis=1) & (boxes[:, 2:] <= window[2:]).all(axis=1)  # never itself
     return depth
 
 
