@@ -347,7 +347,8 @@ def as_circle(xyb: Floats, *, tol_mm: float = 1e-6) -> tuple[float, float, float
 def points_along(xyb: Floats, *, closed: bool, chord_mm: float) -> Floats:
     """Points of the curve so close that no chord is further than `chord_mm` from it, shape (m, 2).
 
-    The vertices are among them; a closed polyline does not repeat its first point.
+    The vertices are among them; a closed polyline does not repeat its first point, and has three at least if it has
+    an arc, however small that is.
     """
     if not xyb[:, 2].any():
         return xyb[:, :2].copy()
@@ -355,6 +356,8 @@ def points_along(xyb: Floats, *, closed: bool, chord_mm: float) -> Floats:
     ratio = np.clip(1.0 - chord_mm / np.where(seg.is_arc, seg.radius, 1.0), -1.0, 1.0)
     step = np.maximum(2.0 * np.arccos(ratio), 1e-4)
     counts = np.where(seg.is_arc, np.maximum(1, np.ceil(np.abs(seg.sweep) / step - 1e-9)), 1).astype(np.int64)
+    if closed and counts.sum() < 3:
+        counts[seg.is_arc] *= 2
     which = np.repeat(np.arange(len(seg)), counts)
     offset = np.arange(len(which)) - np.repeat(np.cumsum(counts) - counts, counts)
     t = offset / counts[which]
