@@ -8,6 +8,7 @@ import shapely
 
 from flatprep.geom.bulge import Floats
 from flatprep.geom.polygons import polygon, valid_polygon
+from flatprep.measure.boundary import Bools, Boundary
 from flatprep.measure.corners import LEAST_GAP_MM
 from flatprep.measure.holes import HoleShape
 from flatprep.measure.part import MeasuredPart
@@ -79,11 +80,26 @@ def unreached_regions(
 def suspects(part: MeasuredPart, tool_radius_mm: float) -> tuple[int, ...]:
     """Contours whose void is narrow for a tool, or turns sharper than it somewhere."""
     b = part.boundary
-    sharp = (b.turn < -1e-6) | ((b.sweep < 0) & (b.radius < tool_radius_mm - 1e-3))
-    turning = {int(k) for k in np.unique(b.contour[sharp])}
+    turning = {int(k) for k in np.unique(b.contour[tight_turns(b, tool_radius_mm)])}
     narrow = {k for k, hole in enumerate(part.holes, start=1) if hole.width_mm < 2.0 * tool_radius_mm - 1e-3}
     round_ones = {k for k, shape in enumerate(part.shapes) if shape.shape is HoleShape.CIRCLE}
     return tuple(sorted((turning - round_ones) | narrow))
+
+
+def tight_turns(b: Boundary, tool_radius_mm: float) -> Bools:
+    """Edges that turn sharper into the void than a tool, as arcs or with the edge that follows, shape (n,).
+
+    Notes
+    -----
+    Chords of length c that turn by φ stand for a curve of radius c / (2 tan(φ / 2)).
+    """
+    inwards = np.clip(-b.turn, 0.0, 3.0)
+    reach = np.minimum(b.length, b.length[b.next])
+    with np.errstate(divide="ignore"):
+        curve = reach / (2.0 * np.tan(inwards / 2.0))
+    sharp = tool_radius_mm * (1.0 / np.cos(inwards / 2.0) - 1.0) > LEAST_GAP_MM
+    small = (b.sweep < 0) & (b.radius < tool_radius_mm - 1e-3)
+    return np.asarray((curve < tool_radius_mm) | sharp | small)
 
 
 def _of_contour(part: MeasuredPart, contour: int, radius: float) -> Iterator[Region]:
@@ -94,11 +110,12 @@ def _of_contour(part: MeasuredPart, contour: int, radius: float) -> Iterator[Reg
     entered = void.buffer(-(radius - CHORD_MM), quad_segs=QUARTER).buffer(radius - CHORD_MM, quad_segs=QUARTER)
     # slivers along the walls are rounding
     left = void.difference(entered).buffer(-CHORD_MM).buffer(CHORD_MM, join_style="mitre")
-    for piece in shapely.get_parts(left):
-        if isinstance(piece, shapely.Polygon) and piece.area > 0.0:
-            depth = _depth_mm(piece, entered)
-            if depth > LEAST_GAP_MM:
-                yield Region(piece, contour, depth)
+    if left.is_empty:
+        return
+    pieces, near = shapely.get_parts(left), entered.buffer(LEAST_GAP_MM)
+    shapely.prepare(near)
+    for piece in pieces[~shapely.covers(near, pieces)]:
+        yield Region(piece, contour, _depth_mm(piece, entered))
 
 
 def _void(xyb: Floats, radius: float, *, outline: bool) -> shapely.Geometry:

@@ -6,7 +6,7 @@ import numpy as np
 
 from flatprep.measure.corners import Corner
 from flatprep.measure.part import MeasuredPart
-from flatprep.measure.reach import Region, suspects, unreached_regions
+from flatprep.measure.reach import Region, suspects, tight_turns, unreached_regions
 from flatprep.model.finding import Finding, Severity
 from flatprep.practice.tool import tool_radius_mm
 from flatprep.rules import lost_in_kerf, narrow_slot, small_hole
@@ -37,7 +37,7 @@ def check(ctx: Context) -> Iterator[Finding]:
 def _worth_a_look(part: MeasuredPart, radius: float, corners: tuple[Corner, ...], narrow: set[int]) -> tuple[int, ...]:
     """Contours that turn sharper than the tool elsewhere than in the corners told, or are narrow for it."""
     b = part.boundary
-    left = (b.turn < -1e-6) | ((b.sweep < 0) & (b.radius < radius - 1e-3))
+    left = tight_turns(b, radius)
     left[[row for corner in corners for row in corner.rows[:1] if corner.radius_mm == 0.0]] = False
     left[[row for corner in corners for row in corner.rows if corner.radius_mm > 0.0]] = False
     turning = {int(k) for k in np.unique(b.contour[left])}
