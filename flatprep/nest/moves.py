@@ -208,7 +208,7 @@ def move_piece(ground: Ground, i: int, room: Room, rng: np.random.Generator) -> 
                 best = row
     if kept[best, 0] > 0.0:
         room.contacts.within[0] = SNAP_REACH * side
-        tried += snap(ground, i, kept, best, room.contacts)
+        tried += snap(ground, i, kept, best, room.contacts, rng)
         tried += walk(ground, i, kept, best, FINE_STEP * side, rng)
     if kept[best, 0] < here:
         take(ground, i, kept, best)

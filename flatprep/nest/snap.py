@@ -29,8 +29,8 @@ class Contacts(NamedTuple):
     ----------
     line : ndarray, shape (MOST_LINES, 3), float64
         Unit normal n and d, mm.
-    many : ndarray, shape (1,), int64
-        Number of lines found.
+    many : ndarray, shape (2,), int64
+        Number of lines kept, and of lines found: of too many, chance keeps some.
     within : ndarray, shape (2,), float64
         How far around the piece contacts are looked for, mm; and 1.0, or -1.0 while the moves of the other piece are
         added, turned round.
@@ -43,27 +43,35 @@ class Contacts(NamedTuple):
 
 def room_for_contacts() -> Contacts:
     """Return empty contacts, to be used again and again."""
-    return Contacts(np.zeros((MOST_LINES, 3)), np.zeros(1, dtype=np.int64), np.ones(2))
+    return Contacts(np.zeros((MOST_LINES, 3)), np.zeros(2, dtype=np.int64), np.ones(2))
 
 
 @bare
-def add_line(contacts: Contacts, nx: float, ny: float, off: float) -> None:
-    """Add the line of moves t with (nx, ny) · t = off, unless it is there or there is no room."""
+def add_line(contacts: Contacts, nx: float, ny: float, off: float, rng: np.random.Generator) -> None:
+    """Add the line of moves t with (nx, ny) · t = off, unless it is there; where no room is left, maybe for another.
+
+    Each line found has the same chance to be kept (reservoir sampling, Vitter 1985).
+    """
     lines, many = contacts.line, contacts.many[0]
     for k in range(many):
         cross = lines[k, 0] * ny - lines[k, 1] * nx
         same = lines[k, 0] * nx + lines[k, 1] * ny > 0.0
         if abs(cross) < SAME_WAY and abs(lines[k, 2] - (off if same else -off)) < SAME_MM:
             return
-    if many < MOST_LINES:
-        lines[many, 0], lines[many, 1], lines[many, 2] = nx, ny, off
-        contacts.many[0] += 1
+    contacts.many[1] += 1
+    row = many if many < MOST_LINES else int(rng.random() * contacts.many[1])
+    if row < MOST_LINES:
+        lines[row, 0], lines[row, 1], lines[row, 2] = nx, ny, off
+        contacts.many[0] = max(many, row + 1)
 
 
 @bare
-def corner_lines(rings: Rings, a: int, b: int, dx: float, dy: float, contacts: Contacts) -> None:
-    """Add the moves of b, at (dx, dy) mm from a, that bring its corners onto edges of a."""
+def corner_lines(
+    rings: Rings, a: int, b: int, shift: tuple[float, float], contacts: Contacts, rng: np.random.Generator
+) -> None:
+    """Add the moves of b, its origin shifted from that of a (mm), that bring its corners onto edges of a."""
     edge, box = rings.edge, rings.box
+    dx, dy = shift
     reach, sign = contacts.within[0], contacts.within[1]
     for j in range(rings.at[b, 0], rings.at[b, 1]):
         px, py = edge[j, 0] + dx, edge[j, 1] + dy
@@ -79,24 +87,24 @@ def corner_lines(rings: Rings, a: int, b: int, dx: float, dy: float, contacts: C
             along = (ux * wx + uy * wy) / length
             if along < -reach or along > length + reach:
                 continue
-            add_line(contacts, -uy / length, ux / length, -sign * (inside + 2.0 * HAIR_MM))
+            add_line(contacts, -uy / length, ux / length, -sign * (inside + 2.0 * HAIR_MM), rng)
 
 
 @bare
-def contact_lines(ground: Ground, i: int, kept: Floats, row: int, contacts: Contacts) -> None:
+def contact_lines(ground: Ground, i: int, kept: Floats, row: int, contacts: Contacts, rng: np.random.Generator) -> None:
     """Collect the moves that bring piece i, laid as a row of `moves.keep_best` says, into contact."""
     board, rings = ground.board, ground.outlines.rings
     box, rect, reach = rings.box, board.rect, contacts.within[0]
     v, k, x, y = int(kept[row, 1]), int(kept[row, 2]), kept[row, 3], kept[row, 4]
     left, low = x + box[v, 0], y + box[v, 1]
     right, high = x + box[v, 2], y + box[v, 3]
-    contacts.many[0] = 0
+    contacts.many[0] = contacts.many[1] = 0
     for off in (rect[k, 0] - left, rect[k, 2] - right):
         if abs(off) <= reach:
-            add_line(contacts, 1.0, 0.0, off)
+            add_line(contacts, 1.0, 0.0, off, rng)
     for off in (rect[k, 1] - low, rect[k, 3] - high):
         if abs(off) <= reach:
-            add_line(contacts, 0.0, 1.0, off)
+            add_line(contacts, 0.0, 1.0, off, rng)
     for j in range(len(board.variant)):
         if (
             board.left[j] < right + reach
@@ -107,15 +115,15 @@ def contact_lines(ground: Ground, i: int, kept: Floats, row: int, contacts: Cont
         ):
             w, dx, dy = board.variant[j], board.at[j, 0] - x, board.at[j, 1] - y
             contacts.within[1] = -1.0
-            corner_lines(rings, v, w, dx, dy, contacts)
+            corner_lines(rings, v, w, (dx, dy), contacts, rng)
             contacts.within[1] = 1.0
-            corner_lines(rings, w, v, -dx, -dy, contacts)
+            corner_lines(rings, w, v, (-dx, -dy), contacts, rng)
 
 
 @bare
-def snap(ground: Ground, i: int, kept: Floats, row: int, contacts: Contacts) -> int:
+def snap(ground: Ground, i: int, kept: Floats, row: int, contacts: Contacts, rng: np.random.Generator) -> int:
     """Try the crossings of contact lines near a row of `moves.keep_best`, in place; return the places tried."""
-    contact_lines(ground, i, kept, row, contacts)
+    contact_lines(ground, i, kept, row, contacts, rng)
     lines, reach = contacts.line, contacts.within[0]
     v, k, x, y = int(kept[row, 1]), int(kept[row, 2]), kept[row, 3], kept[row, 4]
     tried = 0

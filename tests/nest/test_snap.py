@@ -27,7 +27,7 @@ def snapped(ground, i, reach):
     kept[0, :5] = weighted_loss(ground, i, i, x, y, HUGE), i, 0, x, y
     contacts = room_for_contacts()
     contacts.within[0] = reach
-    tried = snap(ground, i, kept, 0, contacts)
+    tried = snap(ground, i, kept, 0, contacts, np.random.default_rng(1))
     return kept[0], tried
 
 
