@@ -3,9 +3,11 @@
 from collections import Counter
 from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass, replace
+from itertools import pairwise
 
 import shapely
 
+from flatprep.geom.bulge import points_along
 from flatprep.measure.holes import Hole, HoleShape
 from flatprep.measure.part import MeasuredPart
 from flatprep.model.finding import Finding, Severity
@@ -16,6 +18,13 @@ ALIKE = 3.0
 """The tallest letter of a word is no more than so many times as tall as the smallest."""
 NEAR = 0.6
 """Letters of a word are no further apart than this share of their height."""
+SAME = 0.03
+"""Areas that differ by no more than this share are of one shape."""
+HOLLOW, LEAST_HOLLOW = 0.85, 2
+"""Letters that fill less of their hull, and how many of those a word has at least."""
+ROOM = 0.3
+"""Dots and accents lie within this share of the height around the letters."""
+CHORD_MM = 0.05
 _HANDLES = 20
 _LOUDNESS = {Severity.ERROR: 0, Severity.WARNING: 1, Severity.NOTE: 2}
 
@@ -66,11 +75,12 @@ def words_of(part: MeasuredPart) -> tuple[Word, ...]:
     if sum(hole.shape is HoleShape.OTHER for hole in part.holes) < LEAST_LETTERS:
         return ()
     small = [hole for hole in part.holes if _tall_mm(hole) <= MOST_TALL_MM]
-    return tuple(
-        Word(len(group), shapely.union_all([_box(hole) for hole in group]).convex_hull)
-        for group in _neighbours(small)
-        if _is_lettering(group)
-    )
+    return tuple(Word(len(group), _around(group)) for group in _neighbours(small) if _is_lettering(group))
+
+
+def _around(group: Sequence[Hole]) -> shapely.Geometry:
+    hull = shapely.union_all([_box(hole) for hole in group]).convex_hull
+    return hull.buffer(ROOM * max(map(_tall_mm, group)))
 
 
 def _tall_mm(hole: Hole) -> float:
@@ -98,7 +108,16 @@ def _neighbours(holes: Sequence[Hole]) -> list[list[Hole]]:
 
 
 def _is_lettering(group: Sequence[Hole]) -> bool:
-    """Tell letters from a grille: most are of no simple shape, and most differ."""
+    """Tell letters from slots and grilles: most are of no simple shape, most differ, and some are hollow."""
     free = [hole for hole in group if hole.shape is HoleShape.OTHER]
-    shapes = {round(hole.contour.area_mm2, 1) for hole in free}
-    return len(free) >= LEAST_LETTERS and 2 * len(free) >= len(group) and 2 * len(shapes) > len(free)
+    if len(free) < LEAST_LETTERS or 2 * len(free) < len(group):
+        return False
+    areas = sorted(hole.contour.area_mm2 for hole in free)
+    kinds = 1 + sum(large > (1.0 + SAME) * small for small, large in pairwise(areas))
+    return 2 * kinds > len(free) and sum(map(_is_hollow, free)) >= LEAST_HOLLOW
+
+
+def _is_hollow(hole: Hole) -> bool:
+    """Tell whether a shape fills its hull badly, as L, T and s do and windows do not."""
+    shape = shapely.Polygon(points_along(hole.contour.xyb, closed=True, chord_mm=CHORD_MM))
+    return bool(shape.area < HOLLOW * shape.convex_hull.area)
