@@ -126,6 +126,12 @@ def rim_to_line(hole: Hole, line: BendLine) -> tuple[float, Point]:
     return apart, ((a[0] + z[0]) / 2, (a[1] + z[1]) / 2)
 
 
+def stops_at(hole: Hole, line: BendLine) -> bool:
+    """Tell whether a bend line ends at a hole, or in it: the bend stops there, and the hole relieves it."""
+    rim = polygon(hole.contour.xyb, (), chord_mm=CHORD_MM)
+    return any(rim.distance(shapely.Point(end)) <= TOUCH_MM for end in (line.start, line.end))
+
+
 def _touching(apart: float) -> float:
     """Return 0 for a rim that the line just touches, as one does that ends on a relief: rounding must not decide."""
     return 0.0 if abs(apart) <= TOUCH_MM else apart

@@ -2,7 +2,7 @@
 
 from collections.abc import Iterator
 
-from flatprep.measure.bends import BendLine, bend_lines, rim_to_line
+from flatprep.measure.bends import BendLine, bend_lines, rim_to_line, stops_at
 from flatprep.measure.holes import Hole
 from flatprep.model.finding import Finding, Severity
 from flatprep.practice.bends import MOST_DEG, clear_of_bend_mm, tangent_mm
@@ -30,6 +30,8 @@ def _told(ctx: Context, part: str, hole: Hole, line: BendLine) -> Iterator[Findi
     least, safe = (clear_of_bend_mm(key, thickness, radius) for key in ("hole_error", "hole_warn"))
     limit = Limit(least, safe, SOURCE)
     apart, place = rim_to_line(hole, line)
+    if apart <= 0.0 and stops_at(hole, line):
+        return
     clear = apart - tangent_mm(radius, thickness, min(line.angle_deg, MOST_DEG))
     verdict = judge(clear, limit, ctx.slack_mm(chords=hole.chords))
     if verdict is None:

@@ -1,7 +1,9 @@
 """narrow-slot: slots, notches and long holes too narrow to cut."""
 
 from collections.abc import Iterator
+from math import dist
 
+from flatprep.measure.bends import bend_lines
 from flatprep.measure.facing import TooFineError
 from flatprep.measure.holes import HoleShape
 from flatprep.measure.part import MeasuredPart
@@ -56,7 +58,7 @@ def _gaps(ctx: Context, part: MeasuredPart, limit: Limit) -> Iterator[Finding]:
         return
     for width in found:
         verdict = judge(width.width_mm, limit, ctx.slack_mm())
-        if verdict is not None:
+        if verdict is not None and not (verdict[0] is Severity.WARNING and _relieves_a_bend(ctx, part, width)):
             yield Finding(
                 rule=RULE.id,
                 severity=verdict[0],
@@ -68,6 +70,15 @@ def _gaps(ctx: Context, part: MeasuredPart, limit: Limit) -> Iterator[Finding]:
                 unit="mm",
                 handles=part.handles(width.rows),
             )
+
+
+def _relieves_a_bend(ctx: Context, part: MeasuredPart, gap: Width) -> bool:
+    """Tell whether a bend ends at a gap in the edge: a relief is as narrow as can be cut, and holds nothing."""
+    if gap.contours != (0, 0):
+        return False
+    lines = bend_lines(part.part, ctx.job_part.bends if ctx.job_part else ())
+    near = gap.extent_mm / 2.0 + gap.width_mm
+    return any(dist(gap.at, end) <= near for line in lines for end in (line.start, line.end))
 
 
 RULE = Rule(

@@ -5,6 +5,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
+from flatprep.job.values import BendAsk
 from flatprep.model.finding import Severity
 from tests.measure.shapes import circle, obround, part, path, polygon, rectangle
 from tests.rules.setting import BENDS, PLATE, asked, bend_at, context, found, laser, router, steel
@@ -190,6 +191,38 @@ TANGENT = np.pi / 2 * (2 + 0.65 * 2 / 2) / 2
 def test_hole_near_bend_warns_below_two_and_a_half_thicknesses(size, loud):
     hole = circle(50, 20 + TANGENT + size + 4, 4)
     one("hole-near-bend", bent(bend_at(20), holes=[hole]), size, 7.0, loud, WARNING)
+
+
+@pytest.mark.parametrize(
+    ("x0", "x1", "told"),
+    [
+        pytest.param(0.0, 40.0, 0, id="ends-at-its-edge"),
+        pytest.param(0.0, 45.0, 0, id="ends-in-it"),
+        pytest.param(0.0, 100.0, 1, id="runs-through"),
+        pytest.param(0.0, 39.0, 1, id="ends-before-it"),
+    ],
+)
+def test_a_bend_that_stops_at_a_window_is_relieved_by_it(x0, x1, told):
+    bend = BendAsk(90.0, 2.0, line=((x0, 20.0), (x1, 20.0)))
+    assert len(found("hole-near-bend", bent(bend, holes=[rectangle(40, 15, 30, 15)]))) == told
+
+
+@pytest.mark.parametrize(
+    ("width", "bends", "told"),
+    [
+        pytest.param(2.0, [(0.0, 40.0), (42.0, 100.0)], [], id="relief"),
+        pytest.param(2.0, [], [WARNING], id="no-bend"),
+        pytest.param(2.0, [(0.0, 30.0)], [WARNING], id="bend-elsewhere"),
+        pytest.param(1.4, [(0.0, 40.0), (41.4, 100.0)], [ERROR], id="cannot-be-cut"),
+    ],
+)
+def test_a_bend_relief_may_be_narrow_but_not_too_narrow_to_cut(width, bends, told):
+    """A slit of 12 mm in the edge, 3 mm warned of, 1.5 mm the least; the bend line ends at its sides, 10 mm in."""
+    outer = path((0, 0), (40, 0), (40, 12), (40 + width, 12), (40 + width, 0), (100, 0), (100, 60), (0, 60))
+    process = laser({"slot_min": 1.5}, {"slot_min": 3.0})
+    lines = [BendAsk(90.0, 2.0, line=((x0, 10.0), (x1, 10.0))) for x0, x1 in bends]
+    ctx = context(part(outer), process=process, job_part=asked(process, steel(), *lines))
+    assert [f.severity for f in found("narrow-slot", ctx)] == told
 
 
 def test_hole_near_bend_is_an_error_below_two_thicknesses():
