@@ -1,11 +1,12 @@
 """Nest a job: its parts and stock in the words of the search, and what may stay as it is."""
 
 from collections.abc import Callable
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 
 import numpy as np
 
+from flatprep.api.etch import etched_labels
 from flatprep.api.grain import bends_deg, grain_notes, grain_warnings, must_cross
 from flatprep.api.pieces import Piece, ReadJob
 from flatprep.api.remnants import with_remnants
@@ -16,6 +17,7 @@ from flatprep.bench.sides import side_bound
 from flatprep.drawing.forms import Form
 from flatprep.drawing.read import ReadOptions, read
 from flatprep.drawing.remnant import outline_of
+from flatprep.drawing.words import Etched
 from flatprep.geom.bulge import Floats
 from flatprep.job.values import Job, Stock
 from flatprep.model.layout import Layout
@@ -48,6 +50,8 @@ class Nested:
     notes: tuple[str, ...] = ()
     also: tuple[Form, ...] = ()
     """Other forms that each sheet is written in."""
+    etched: Etched = field(default_factory=dict)
+    """Labels that the job wants etched on its parts."""
 
     @property
     def wanting(self) -> int:
@@ -89,8 +93,9 @@ def nest_job(
     layout = nest(ask, budget, progress or Silent(), on_better, stop)
     layout = replace(layout, unplaced=(*layout.unplaced, *read_job.lost))
     warnings = (*spacing_warnings(read_job.job), *tab_warnings(read_job), *grain_warnings(ask), *shelf.warnings)
-    notes = (*shelf.notes, *tab_notes(read_job), *grain_notes(read_job, ask, layout))
-    return Nested(read_job, layout, ask, warnings, notes)
+    labels = etched_labels(read_job, layout)
+    notes = (*shelf.notes, *tab_notes(read_job), *grain_notes(read_job, ask, layout), *labels.notes)
+    return Nested(read_job, layout, ask, warnings, notes, etched=labels.etched)
 
 
 def nest_ask(read_job: ReadJob) -> NestAsk:

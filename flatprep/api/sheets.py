@@ -67,7 +67,7 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
     known = {piece.name: _identity(job, piece) for piece in pieces}
     for number, sheet in enumerate(sheets, start=1):
         stem = sheet_name(number)
-        words = Words((*title, f"sheet {number}"), known)
+        words = Words((*title, f"sheet {number}"), known, nested.etched)
         yield folder / f"{stem}.dxf", sheet_drawing(sheet, parts, words=words, tabs=tabs)
         for form in nested.also:
             if form is Form.SHARED:
@@ -79,7 +79,7 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
         if gaps is not None or (folder / f"{stem}-tabs.dxf").exists():
             yield folder / f"{stem}-tabs.dxf", gaps
         rest = offcut_of(sheet, parts, nested.layout.spacing_mm)
-        extras = Extras(job.units, rest.rectangle if rest else None, tabs, known)
+        extras = Extras(job.units, rest.rectangle if rest else None, tabs, known, nested.etched)
         svg = sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=_called(job), extras=extras)
         yield folder / f"{stem}.svg", svg
         if rest is not None:

@@ -41,6 +41,7 @@ def said_about_parts(command: Callable[..., Any]) -> Any:
             layers=parse_roles(words.pop("layers")),
             anywhere=words.pop("anywhere", False),
             rack=words.pop("rack", None),
+            etch=words.pop("etch", False),
             **{key: words.pop(key) for key in ("process", "material", "thickness", "units")},
         )
         return command(*args, said=said, **words)
@@ -64,6 +65,11 @@ def rack_option(command: Command) -> Command:
     return click.option(
         "--rack", metavar="DIR", type=click.Path(path_type=Path), help="sheets and remnants of the workshop, as stock"
     )(command)
+
+
+def etch_option(command: Command) -> Command:
+    """Add ``--etch``, for a command that has `said_about_parts`; stands above it."""
+    return click.option("--etch", is_flag=True, help="etch each part's name and revision on it (layer MARK)")(command)
 
 
 def search_budget(command: Callable[..., Any]) -> Any:

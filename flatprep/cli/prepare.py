@@ -11,7 +11,7 @@ from flatprep.base.errors import ExitStatus, FlatprepError
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, read_drawings, say_of_nest
-from flatprep.cli.options import other_forms, rack_option, said_about_parts, search_budget
+from flatprep.cli.options import etch_option, other_forms, rack_option, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
 from flatprep.cli.talk import say
 from flatprep.cli.watch import inputs, wait_for_change
@@ -20,6 +20,10 @@ from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
 from flatprep.model.finding import Severity
 from flatprep.nest.problem import Budget
+from flatprep.report.figures import counted
+
+_NAMED = 5
+"""So many parts without a place are named."""
 
 
 @click.command("prepare")
@@ -29,6 +33,7 @@ from flatprep.nest.problem import Budget
     "--watch", is_flag=True, help="run again whenever the job or one of its drawings changes; ends with Ctrl-C"
 )
 @rack_option
+@etch_option
 @said_about_parts
 @search_budget
 @other_forms
@@ -85,16 +90,25 @@ def summary(done: Prepared, folder: Path) -> str:
     sheets = len(done.nested.layout.sheets) if done.nested else 0
     money, mass = done.estimate.material_cost, done.estimate.mass_kg
     lines = [
-        f"{len(done.bundle.cards)} parts on {sheets} sheets",
+        f"{counted(len(done.bundle.cards), 'part')} on {counted(sheets, 'sheet')}",
         "mass of a set: not known" if mass is None else f"mass of a set: {mass:.3g} kg",
         "material cost: not known"
         if money is None
         else f"material cost: {money:.2f} {done.estimate.currency or ''}".rstrip(),
-        *([f"{changes} changes against the drawings, told on the parts' pages"] if changes else []),
+        *([f"{counted(changes, 'change')} against the drawings, told on the parts' pages"] if changes else []),
+        *_left_out(done),
         f"report: {folder / 'report.html'}",
     ]
     errors, warnings = done.bundle.count(Severity.ERROR), done.bundle.count(Severity.WARNING)
-    said = [f"{errors} errors, {warnings} warnings"] if errors or warnings else []
-    said += [f"{len(done.read.report.unreadable)} drawings not readable"] if done.read.report.unreadable else []
-    said += [f"{done.unplaced} pieces not placed"] if done.unplaced else []
+    unreadable = len(done.read.report.unreadable)
+    said = [f"{counted(errors, 'error')}, {counted(warnings, 'warning')}"] if errors or warnings else []
+    said += [f"{counted(unreadable, 'drawing')} not readable"] if unreadable else []
+    said += [f"{counted(done.unplaced, 'piece')} not placed"] if done.unplaced else []
     return "\n".join([*lines, "to look at: " + "; ".join(said) if said else "nothing to look at"])
+
+
+def _left_out(done: Prepared) -> list[str]:
+    """Name the first parts without a place, and why."""
+    unplaced = done.nested.layout.unplaced if done.nested else ()
+    lines = [f"NOT PLACED: {u.count} x {u.part}: {u.why}" for u in unplaced[:_NAMED]]
+    return [*lines, f"NOT PLACED: {len(unplaced) - _NAMED} more parts"] if len(unplaced) > _NAMED else lines

@@ -42,6 +42,8 @@ class JobOptions:
         Lets the job read files that lie neither under its folder nor beside it.
     rack : Path or None
         Instead of the job's.
+    etch : bool
+        Labels are etched, whatever the job says.
     """
 
     profile_folders: tuple[Path, ...] = ()
@@ -52,6 +54,7 @@ class JobOptions:
     layers: Mapping[str, Role] = field(default_factory=dict)
     anywhere: bool = False
     rack: Path | None = None
+    etch: bool = False
 
 
 @dataclass(frozen=True, slots=True)

@@ -27,7 +27,7 @@ from flatprep.profile.toml_check import Table, read_toml
 KEYS = (
     "name", "revision", "units", "process", "spacing", "margin", "sets", "mass_limit", "pilots", "parts", "currency",
     "windows", "layers", "accept", "cost", "material", "stock", "rack", "part", "joint", "tabs", "relief", "slots",
-    "slot_clearance",
+    "slot_clearance", "etch_labels", "etch_height",
 )  # fmt: skip
 """Every key at the top of a job file."""
 
@@ -35,6 +35,9 @@ AS_DRAWN, MEASURED = "as-drawn", "measured"
 """Words of ``relief`` and ``slots``."""
 SLOT_CLEARANCE_MM = 0.1
 """What a joint of sheets needs to go together by hand (common practice)."""
+
+ETCH_HEIGHT_MM = (3.0, 10.0)
+"""Height of etched letters that are read at arm's length (common practice)."""
 
 COST_KEYS = ("share", "machine_rate", "offcut_credit", "offcut_least", "scrap_per_kg", "discount", "breaks")
 
@@ -80,6 +83,8 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
         parts=parts,
         stock=_stock(top, context, rack),
         rack=rack,
+        etch_labels=top.flag("etch_labels") or options.etch,
+        etch_height_mm=_heights(top, context),
         sets=top.integer("sets", 1, least=1),
         mass_limit_kg=top.optional_number("mass_limit", above=0.0),
         pilots=Pilots(top.choice("pilots", tuple(Pilots), Pilots.AS_DRAWN)),
@@ -201,6 +206,15 @@ def _cost(top: Table, context: Context) -> CostTerms:
         discounts=_discounts(table),
         breaks=_breaks(table) if table.has("breaks") else plain.breaks,
     )
+
+
+def _heights(top: Table, context: Context) -> tuple[float, float]:
+    if not top.has("etch_height"):
+        return ETCH_HEIGHT_MM
+    least, most = context.sides_mm(top, "etch_height")
+    if least > most:
+        raise top.fail("etch_height", "the least and the largest height, such as [3, 10]")
+    return least, most
 
 
 def _discounts(table: Table) -> tuple[Discount, ...]:

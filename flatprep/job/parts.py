@@ -15,7 +15,7 @@ from flatprep.profile.toml_check import Table
 KEYS = (
     "drawing", "name", "drawing_units", "material", "thickness", "quantity", "quantity_opposite", "turns", "may_flip",
     "grain", "process", "work", "bend", "layers", "revision", "note", "filler", "finish", "good_face", "accept",
-    "tabs", "corners",
+    "tabs", "corners", "etch_label",
 )  # fmt: skip
 """Every key of a ``[[part]]``."""
 
@@ -48,6 +48,7 @@ def read_part(table: Table, context: Context, process: Process) -> JobPart:
         good_face=table.choice("good_face", ("A", "B")) if table.has("good_face") else None,
         accepts=accepts(table, context),
         corners=corners(table, context),
+        etch_label=table.optional_flag("etch_label"),
         tabs=(Tabs.ALL if table.flag("tabs") else Tabs.NONE) if table.has("tabs") else None,
         own=context.options.profile_folders,
         where=table.place,

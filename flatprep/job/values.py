@@ -159,6 +159,8 @@ class JobPart:
     slot_clearance_mm: float | None = None
     """Slots for the sheet are cut so much wider than it measures; None: as drawn."""
     tabs: Tabs | None = None
+    etch_label: bool | None = None
+    """Whether its label is etched on it; None: as the job has it."""
     """None: as the job says."""
     own: tuple[Path, ...] = ()
     """Folders of the user's own profiles."""
@@ -251,5 +253,8 @@ class Job:
     """What holds for every part; each part has these among its own."""
     cost: CostTerms = field(default_factory=CostTerms)
     joints: tuple[JointAsk, ...] = ()
+    etch_labels: bool = False
+    etch_height_mm: tuple[float, float] = (3.0, 10.0)
+    """Least and largest height of etched letters."""
     rack: Rack | None = None
     """Where more stock lies; its sheets are among `stock`, its remnants join them once their drawings are read."""

@@ -9,7 +9,7 @@ import svgwrite
 from shapely.geometry import Polygon
 
 from flatprep.drawing.order import cutting_order
-from flatprep.drawing.words import identity_lines
+from flatprep.drawing.words import Etched, identity_lines
 from flatprep.geom.bulge import Floats
 from flatprep.model.drawing import Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
@@ -42,12 +42,15 @@ class Extras:
         Holding tabs by part: strokes across the outline.
     identity : mapping of str to str
         By part, which revision and content of its drawing is cut: in a list under the sheet.
+    etched : mapping
+        Lines etched on a part, by its name and whether it lies mirrored.
     """
 
     units: str = "mm"
     offcut: Rectangle | None = None
     tabs: Mapping[str, Sequence[Tab]] = field(default_factory=dict)
     identity: Mapping[str, str] = field(default_factory=dict)
+    etched: Etched = field(default_factory=dict)
 
 
 PLAIN = Extras()
@@ -94,7 +97,8 @@ def sheet_svg(
         _offcut(page, offcut, em, units)
     for placement in sheet.placements:
         strokes = [tab_stroke(tab).xyb for tab in extras.tabs.get(placement.part, ())]
-        _piece(page, parts[placement.part], placement, Look(colour[placement.part], em, strokes))
+        etched = [line.xyb for line in extras.etched.get((placement.part, placement.mirrored), ())]
+        _piece(page, parts[placement.part], placement, Look(colour[placement.part], em, strokes, etched))
     for turn, index in enumerate(cutting_order(sheet, parts), start=1):
         placement = sheet.placements[index]
         _name(page, parts[placement.part], placement, turn, em)
@@ -123,11 +127,12 @@ def _stock(page: svgwrite.Drawing, sheet: SheetLayout, margin_mm: float, em: flo
 
 @dataclass(frozen=True, slots=True)
 class Look:
-    """How a piece is drawn: its colour, the picture's unit of length, strokes across it."""
+    """How a piece is drawn: its colour, the picture's unit of length, strokes across it, lines etched on it."""
 
     colour: str
     em: float
     strokes: Sequence[Floats]
+    etched: Sequence[Floats] = ()
 
 
 def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, look: Look) -> None:
@@ -142,6 +147,9 @@ def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, look: Look)
         group.add(
             page.path(d=joined([_shut(m) for m in part.marks]), fill="none", stroke_dasharray=f"{em / 4:.3f}", **thin)
         )
+    if look.etched:
+        fine = round(em / 30, 3)
+        group.add(page.path(d=joined(look.etched), fill="none", stroke=INK, stroke_width=fine, class_="etched"))
     if look.strokes:
         group.add(page.path(d=joined(look.strokes), stroke=INK, stroke_width=round(em / 5, 3), class_="tabs"))
     page.add(group)
