@@ -1,5 +1,6 @@
 """``flatprep draft``."""
 
+import shlex
 from pathlib import Path
 
 import click
@@ -33,4 +34,8 @@ def command(folder: Path, out: Path | None, said: JobOptions) -> None:
         write_whole(out, draft_toml(draft))
     materials, thicknesses = unknown(draft.parts)
     drawings = counted(len(draft.parts), "drawing")
-    say(f"{drawings}; {materials} without a material, {thicknesses} without a thickness: see the file", err=True)
+    if out is None:
+        say(f"{drawings}; {materials} without a material, {thicknesses} without a thickness", err=True)
+        return
+    say(f"{out}: {drawings}; {materials} without a material, {thicknesses} without a thickness", err=True)
+    say(f"next: mend what is marked there, then flatprep prepare {shlex.quote(str(out))} --out out", err=True)

@@ -23,6 +23,7 @@ from flatprep.profile.material_load import all_materials
 from flatprep.profile.process import Process
 from flatprep.profile.process_load import load_process
 from flatprep.profile.toml_check import Table, read_toml
+from flatprep.profile.where import ids
 
 KEYS = (
     "name", "revision", "units", "process", "spacing", "margin", "sets", "mass_limit", "pilots", "parts", "currency",
@@ -139,6 +140,9 @@ def _overrides(top: Table, options: JobOptions) -> dict[str, Table]:
 def _process(top: Table, context: Context, options: JobOptions) -> Process:
     if options.process:
         return load_process(options.process, options.profile_folders)
+    if not top.has("process"):
+        known = ", ".join(f'"{name}"' for name in ids("processes", options.profile_folders))
+        raise top.need("process", f"one of {known}; or give --process")
     return context.process(top, "process")
 
 

@@ -70,7 +70,7 @@ def _head(draft: Draft) -> str:
         _line("name", draft.name),
         'units = "mm"',
         _line("process", draft.process) if draft.process else '# process = "fibre-laser"   # not said: needed',
-        "sets = 1",
+        "sets = 1   # machines to build; quantities are for one",
     ]
     if draft.cutlist:
         lines.append(_line("parts", draft.cutlist))

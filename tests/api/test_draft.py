@@ -45,6 +45,16 @@ def test_guesses_and_gaps_are_marked(folder, tmp_path):
     assert "not said: needed" in text
 
 
+def test_what_to_do_next_is_said(folder, tmp_path):
+    """And the next command's first complaint names what may be filled in."""
+    job_file = tmp_path / "my job.toml"
+    got = CliRunner().invoke(root, ["draft", str(folder), "--out", str(job_file)])
+    assert f"next: mend what is marked there, then flatprep prepare '{job_file}' --out out" in got.stderr
+    got = CliRunner().invoke(root, ["prepare", str(job_file), "--out", str(tmp_path / "out")])
+    assert "process is missing" in got.stderr
+    assert '"fibre-laser"' in got.stderr
+
+
 def test_a_cut_list_goes_before_names(folder, tmp_path):
     (folder / "cutlist.csv").write_text("file,material,thickness,quantity\nring_3mm_steel_x4.dxf,acrylic,5mm,7\n")
     draft = draft_job(folder, tmp_path)
