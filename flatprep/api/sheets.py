@@ -64,6 +64,7 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
     parts = {piece.name: piece.part for piece in pieces}
     tabs = job_tabs(nested.read)
     title = (job.name, f"revision {job.revision}") if job.revision else (job.name,)
+    origin = _origin(job)
     known = {piece.name: _identity(job, piece) for piece in pieces}
     for number, sheet in enumerate(sheets, start=1):
         stem = sheet_name(number)
@@ -79,7 +80,10 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
         if gaps is not None or (folder / f"{stem}-tabs.dxf").exists():
             yield folder / f"{stem}-tabs.dxf", gaps
         rest = offcut_of(sheet, parts, nested.layout.spacing_mm)
-        extras = Extras(job.units, rest.rectangle if rest else None, tabs, known, nested.etched)
+        stock = origin.stock.get(sheet.stock, StockSource())
+        extras = Extras(
+            job.units, rest.rectangle if rest else None, tabs, known, nested.etched, stock.margins_mm, stock.keep_out
+        )
         svg = sheet_svg(sheet, number, parts, margin_mm=job.margin_mm, job=_called(job), extras=extras)
         yield folder / f"{stem}.svg", svg
         if rest is not None:
@@ -90,7 +94,7 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
     for older in _older_sheets(folder, len(sheets), nested.also):
         yield older, None
     sources = [_source(job, piece, folder / copies[piece.name]) for piece in pieces]
-    document = layout_document(nested.layout, sources, folder, _origin(job))
+    document = layout_document(nested.layout, sources, folder, origin)
     yield folder / "layout.json", json.dumps(document, indent=1) + "\n"
 
 

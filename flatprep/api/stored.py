@@ -165,7 +165,7 @@ def _source(data: Any) -> StockSource:
         rack_file=str(data.get("rack_file", "")),
         grain=data.get("grain"),
         margins_mm=_four(margins) if margins else None,
-        keep_out=tuple(_four(one) for one in data.get("keep_out", ())),
+        keep_out=tuple(tuple(float(v) for v in one) for one in data.get("keep_out", ())),
     )
 
 

@@ -73,8 +73,8 @@ def sheet_drawing(
         placement = sheet.placements[index]
         part, motion = parts[placement.part], placement.motion
         _part(doc, part, motion)
-        for line in words.etched.get((placement.part, placement.mirrored), ()):
-            _curve(doc, MARK, line, motion)
+        for etched in words.etched.get((placement.part, placement.mirrored), ()):
+            _curve(doc, MARK, etched, motion)
         for tab in tabs.get(placement.part, ()):
             _curve(doc, NOTE, tab_stroke(tab), motion)
         _label(doc, part, motion, (f"{placement.part} {placement.copy}", words.identity.get(placement.part, "")))

@@ -103,21 +103,28 @@ def _margins(table: Table, context: Context) -> Box:
     return left, right, bottom, top
 
 
-def _keep_out(table: Table, context: Context) -> tuple[Box, ...]:
-    shape = "a list of boxes [x0, y0, x1, y1], such as [[0, 600, 60, 660]]"
+def _keep_out(table: Table, context: Context) -> tuple[tuple[float, ...], ...]:
+    shape = "a list of boxes [x0, y0, x1, y1] and circles [x, y, radius], such as [[0, 600, 60, 660], [500, 300, 15]]"
     value = table.get("keep_out")
-    if not isinstance(value, list):
+    if not isinstance(value, list) or not all(isinstance(one, list) and len(one) in (3, 4) for one in value):
         raise table.fail("keep_out", shape)
-    boxes = tuple(_four(table, "keep_out", one, context, shape) for one in value)
+    found = tuple(tuple(_mm(table, "keep_out", v, context) for v in one) for one in value)
+    boxes, circles = ([one for one in found if len(one) == size] for size in (4, 3))
     if any(x0 >= x1 or y0 >= y1 for x0, y0, x1, y1 in boxes):
         raise table.fail("keep_out", f"{shape}, with x0 below x1 and y0 below y1")
-    return boxes
+    if any(radius <= 0.0 for _, _, radius in circles):
+        raise table.fail("keep_out", f"{shape}, with a radius above 0")
+    return found
+
+
+def _mm(table: Table, key: str, value: object, context: Context) -> float:
+    return table.checked_length_mm(key, value, unit=context.unit)
 
 
 def _four(table: Table, key: str, value: object, context: Context, shape: str) -> Box:
     if not isinstance(value, list) or len(value) != 4:
         raise table.fail(key, shape)
-    a, b, c, d = (table.checked_length_mm(key, item, unit=context.unit) for item in value)
+    a, b, c, d = (_mm(table, key, item, context) for item in value)
     return a, b, c, d
 
 

@@ -174,8 +174,8 @@ class Stock:
 
     `outline` is a drawing, or points with `holes`, mm.
 
-    `margins_mm` is left, right, bottom and top where they differ from the job's margin; `keep_out` are boxes
-    (x0, y0, x1, y1), mm, for clamps and screws.
+    `margins_mm` is left, right, bottom and top where they differ from the job's margin; in `keep_out` (clamps, screws)
+    are boxes (x0, y0, x1, y1) and circles (x, y, radius), mm.
     """
 
     name: str
@@ -192,7 +192,7 @@ class Stock:
     where: str = ""
     """File and key, for messages: ``job.toml: stock 1 (al3)``."""
     margins_mm: tuple[float, float, float, float] | None = None
-    keep_out: tuple[tuple[float, float, float, float], ...] = ()
+    keep_out: tuple[tuple[float, ...], ...] = ()
     holes: tuple[tuple[Point, ...], ...] = ()
     rack_file: str = ""
     """Where it stands in the rack: ``stock.toml``, or a remnant's drawing; empty for stock of the job itself."""

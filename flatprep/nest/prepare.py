@@ -105,9 +105,17 @@ def container_of(sheet: StockSheet, margin_mm: float, spacing_mm: float, length_
     return Container(np.array([[x0, y0], [x1, y0], [x1, y1], [x0, y1]]))
 
 
-def _without(region: Polygon | MultiPolygon, boxes: Sequence[Sequence[float]]) -> Polygon | MultiPolygon:
-    """Region without the boxes that nothing may lie in."""
-    return region.difference(shapely.union_all([shapely.box(*b) for b in boxes])) if boxes else region
+def _without(region: Polygon | MultiPolygon, keep_out: Sequence[Sequence[float]]) -> Polygon | MultiPolygon:
+    """Region without what nothing may lie in."""
+    return region.difference(shapely.union_all([_kept_out(one) for one in keep_out])) if keep_out else region
+
+
+def _kept_out(one: Sequence[float]) -> Polygon:
+    """Box, or a polygon around a circle."""
+    if len(one) == 4:
+        return shapely.box(*one)
+    x, y, radius = one
+    return shapely.Point(x, y).buffer(radius / cos(pi / (4 * QUARTER)), quad_segs=QUARTER)
 
 
 def rectangle_of(sheet: StockSheet, length_mm: float | None = None) -> tuple[float, float, float, float] | None:

@@ -75,8 +75,8 @@ class StockSheet:
         None for any number.
     margins_mm : (float, float, float, float) or None
         Left, right, bottom, top, where they differ from the job's margin; for rectangles and open length.
-    keep_out : tuple of (x0, y0, x1, y1)
-        Boxes (clamps, screws) that nothing may lie in, mm.
+    keep_out : tuple of tuple of float
+        Boxes (x0, y0, x1, y1) and circles (x, y, radius) that nothing may lie in (clamps, screws), mm.
     """
 
     name: str
@@ -91,7 +91,7 @@ class StockSheet:
     price_per_metre: float | None = None
     grain: str | None = None
     margins_mm: tuple[float, float, float, float] | None = None
-    keep_out: tuple[tuple[float, float, float, float], ...] = ()
+    keep_out: tuple[tuple[float, ...], ...] = ()
 
     def margins(self, margin_mm: float) -> tuple[float, float, float, float]:
         """Return the margins in force (left, right, bottom, top) where the job's is `margin_mm`."""

@@ -152,16 +152,13 @@ class _Laid:
                     text = f"sheet {number}: {who[0]} is {gap:.3f} mm from the {side} side, the margin is {margin:g} mm"
                     yield LayoutFault("margin", text, number, who, gap, margin)
 
-    def keep_out_faults(self, number: int, boxes: Sequence[tuple[float, float, float, float]]) -> Iterator[LayoutFault]:
-        """Pieces that lie in a box where nothing may lie."""
+    def keep_out_faults(self, number: int, keep_out: Sequence[tuple[float, ...]]) -> Iterator[LayoutFault]:
+        """Pieces that reach into a box or a circle where nothing may lie."""
         for k, piece in enumerate(self.bodies):
-            for box in boxes:
-                if (
-                    clearance(piece, shapely.box(*box)) < 0.0
-                    and clearance(self._body(k, CHORDS_MM[-1]), shapely.box(*box)) < 0.0
-                ):
+            for one in keep_out:
+                if _reaches_into(piece, one) and _reaches_into(self._body(k, CHORDS_MM[-1]), one):
                     who = self._names(k)
-                    text = f"sheet {number}: {who[0]} lies where nothing may lie ({box[0]:g}, {box[1]:g})"
+                    text = f"sheet {number}: {who[0]} lies where nothing may lie ({one[0]:g}, {one[1]:g})"
                     yield LayoutFault("keep-out", text, number, who)
 
     def gap_faults(self, number: int, spacing_mm: float) -> Iterator[LayoutFault]:
@@ -233,6 +230,14 @@ def clearance(a: BaseGeometry, b: BaseGeometry) -> float:
         return gap
     common = a.intersection(b)
     return -SLACK_MM * 2.0 if not common.buffer(-SLACK_MM / 2.0).is_empty else 0.0
+
+
+def _reaches_into(piece: BaseGeometry, keep_out: tuple[float, ...]) -> bool:
+    """Tell whether a piece lies in a box (x0, y0, x1, y1) or a circle (x, y, radius) in part."""
+    if len(keep_out) == 4:
+        return clearance(piece, shapely.box(*keep_out)) < 0.0
+    x, y, radius = keep_out
+    return float(piece.distance(shapely.Point(x, y))) < radius - SLACK_MM
 
 
 def _inside_gap(stock: Polygon, piece: Polygon) -> float:

@@ -52,7 +52,7 @@ class StockSource:
     rack_file: str = ""
     grain: str | None = None
     margins_mm: Box | None = None
-    keep_out: tuple[Box, ...] = ()
+    keep_out: tuple[tuple[float, ...], ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

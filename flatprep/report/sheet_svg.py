@@ -6,7 +6,7 @@ from dataclasses import dataclass, field
 import numpy as np
 import shapely
 import svgwrite
-from shapely.geometry import Polygon
+from shapely.geometry import MultiPolygon, Polygon
 
 from flatprep.drawing.order import cutting_order
 from flatprep.drawing.words import Etched, identity_lines
@@ -44,6 +44,8 @@ class Extras:
         By part, which revision and content of its drawing is cut: in a list under the sheet.
     etched : mapping
         Lines etched on a part, by its name and whether it lies mirrored.
+    margins_mm, keep_out
+        Of the sheet's stock, as in `flatprep.job.values.Stock`.
     """
 
     units: str = "mm"
@@ -51,6 +53,8 @@ class Extras:
     tabs: Mapping[str, Sequence[Tab]] = field(default_factory=dict)
     identity: Mapping[str, str] = field(default_factory=dict)
     etched: Etched = field(default_factory=dict)
+    margins_mm: Rectangle | None = None
+    keep_out: Sequence[tuple[float, ...]] = ()
 
 
 PLAIN = Extras()
@@ -91,7 +95,8 @@ def sheet_svg(
     page = svgwrite.Drawing(size=(f"{width:.3f}mm", f"{height:.3f}mm"), debug=False)
     page.viewbox(round(float(left), 3), round(float(top), 3), round(float(width), 3), round(float(height), 3))
     page.set_desc(title=f"{job} sheet {number}".strip())
-    _stock(page, sheet, margin_mm, em)
+    _stock(page, sheet, _room(sheet, margin_mm, extras.margins_mm), em)
+    _keep_out(page, extras.keep_out, em)
     colour = {name: OKABE_ITO[k % len(OKABE_ITO)] for k, name in enumerate(sorted(_names(sheet)))}
     if offcut is not None:
         _offcut(page, offcut, em, units)
@@ -114,15 +119,38 @@ def _names(sheet: SheetLayout) -> set[str]:
     return {p.part for p in sheet.placements}
 
 
-def _stock(page: svgwrite.Drawing, sheet: SheetLayout, margin_mm: float, em: float) -> None:
+def _room(sheet: SheetLayout, margin_mm: float, margins_mm: Rectangle | None) -> Polygon | MultiPolygon:
+    """Return what the margins leave of a sheet; empty where there are none."""
+    whole = Polygon(sheet.outline, list(sheet.holes))
+    if margins_mm is not None:
+        (x0, y0, x1, y1), (left, right, bottom, top) = whole.bounds, margins_mm
+        return shapely.box(x0 + left, y0 + bottom, x1 - right, y1 - top)
+    return whole.buffer(-margin_mm, join_style="mitre") if margin_mm > 0.0 else Polygon()
+
+
+def _stock(page: svgwrite.Drawing, sheet: SheetLayout, room: Polygon | MultiPolygon, em: float) -> None:
     border = "".join(ring_data(r) for r in (sheet.outline, *sheet.holes))
     page.add(page.path(d=border, fill="#EEEEEE", fill_rule="evenodd", stroke=INK, stroke_width=em / 8, class_="sheet"))
-    inner = Polygon(sheet.outline, list(sheet.holes)).buffer(-margin_mm, join_style="mitre") if margin_mm > 0 else None
-    for piece in getattr(inner, "geoms", [inner] if inner is not None else []):
+    for piece in getattr(room, "geoms", [room]):
         if not piece.is_empty:
             dash = f"{em / 2:.3f} {em / 2:.3f}"
             line = ring_data(np.asarray(piece.exterior.coords)[:-1])
             page.add(page.path(d=line, fill="none", stroke="#888888", stroke_width=em / 16, stroke_dasharray=dash))
+
+
+def _keep_out(page: svgwrite.Drawing, keep_out: Sequence[tuple[float, ...]], em: float) -> None:
+    """Draw clamps and screws, crossed out."""
+    look = {"fill": "#BBBBBB", "stroke": INK, "stroke_width": round(em / 16, 3), "class_": "keep-out"}
+    for one in keep_out:
+        if len(one) == 3:
+            x, y, r = one
+            page.add(page.circle((x, -y), r, **look))
+            x0, y0, x1, y1 = x - 0.7 * r, y - 0.7 * r, x + 0.7 * r, y + 0.7 * r
+        else:
+            x0, y0, x1, y1 = one
+            page.add(page.rect((x0, -y1), (x1 - x0, y1 - y0), **look))
+        cross = f"M{x0:.3f} {-y0:.3f}L{x1:.3f} {-y1:.3f}M{x0:.3f} {-y1:.3f}L{x1:.3f} {-y0:.3f}"
+        page.add(page.path(d=cross, fill="none", stroke=INK, stroke_width=round(em / 16, 3)))
 
 
 @dataclass(frozen=True, slots=True)

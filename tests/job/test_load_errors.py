@@ -81,6 +81,13 @@ CASES = [
     ("keep_out = [[0, 600, 60, 660]]", "keep_out = [0, 600, 60, 660]", "must be a list of boxes"),
     ("keep_out = [[0, 600, 60, 660]]", "keep_out = 3", "keep_out = 3: must be a list of boxes"),
     ("keep_out = [[0, 600, 60, 660]]", "keep_out = [[60, 600, 60, 660]]", "with x0 below x1 and y0 below y1"),
+    ("keep_out = [[0, 600, 60, 660]]", "keep_out = [[60, 600, 0]]", "with a radius above 0"),
+    (
+        "keep_out = [[0, 600, 60, 660]]",
+        "keep_out = [[60, 600]]",
+        "must be a list of boxes [x0, y0, x1, y1] and circles",
+    ),
+    ("keep_out = [[0, 600, 60, 660]]", 'keep_out = [[60, 600, "wide"]]', "a length"),
     (
         'outline = "rest-07.dxf"',
         'outline = "rest-07.dxf"\nmargins = [1, 1, 1, 1]',

@@ -5,6 +5,7 @@ from dataclasses import replace
 
 import numpy as np
 import pytest
+from shapely.geometry import Point, Polygon
 
 from flatprep.model.layout import Placement
 from flatprep.nest.keep import KeepError
@@ -114,6 +115,29 @@ def test_nothing_lies_where_a_clamp_sits():
         low, high = xy.min(axis=0), xy.max(axis=0)
         for x0, y0, x1, y1 in clamps:
             assert high[0] <= x0 + 1e-6 or low[0] >= x1 - 1e-6 or high[1] <= y0 + 1e-6 or low[1] >= y1 - 1e-6
+
+
+def test_nothing_lies_on_a_screw():
+    """Two screws in the sheet, circles of 12 and 20 mm; distance of the rectangles' material from their middles."""
+    screws = ((100.0, 100.0, 12.0), (220.0, 60.0, 20.0))
+    question = ask([item(rectangle("r", 60.0, 40.0), 12)], [sheet(keep_out=screws)], 2.0, 2.0)
+    layout = solved(question)
+    assert sum(len(s.placements) for s in layout.sheets) >= 8
+    for _, xy in bounds(layout, question):
+        for x, y, radius in screws:
+            assert Polygon(xy).distance(Point(x, y)) >= radius - 1e-6
+
+
+@pytest.mark.parametrize(
+    ("x", "wrong"), [(0.0, True), (39.99, True), (40.0, False), (40.0 + 1e-9, False), (90.0, False)]
+)
+def test_verifier_measures_from_a_screw(x, wrong):
+    """A disc of 30 mm at (x, 0) and a screw's circle of 10 mm at (0, 0) touch at 40 mm."""
+    plain = ask([item(disc("d", 30.0), 1)], [sheet(length=400.0, width=400.0)], 0.0, 0.0)
+    layout = nest(plain, FEW)
+    spot = layout.sheets[0].placements[0]
+    screwed = replace(plain, stock=(sheet(length=400.0, width=400.0, keep_out=((spot.dx - x, spot.dy, 10.0),)),))
+    assert [f.kind for f in verify(layout, screwed)] == (["keep-out"] if wrong else [])
 
 
 def test_verifier_names_what_lies_under_a_clamp_or_too_near_one_side():

@@ -129,3 +129,27 @@ def test_offcut_is_hatched_within_its_box_and_its_size_written():
 def test_each_part_has_a_colour_of_the_palette():
     fills = {p.get("fill") for p in picture().iter(f"{SVG}path")} & set(OKABE_ITO)
     assert len(fills) == 2
+
+
+def test_clamps_and_screws_are_crossed_out_and_margins_drawn_side_by_side():
+    """On 300 x 200: margins 20, 10, 5, 0; a clamp 40 x 30 in the corner, a screw of 15 mm at (150, 100)."""
+    root = picture(
+        extras=Extras(margins_mm=(20.0, 10.0, 5.0, 0.0), keep_out=((0.0, 0.0, 40.0, 30.0), (150.0, 100.0, 15.0)))
+    )
+    (clamp,) = [r for r in root.iter(f"{SVG}rect") if r.get("class") == "keep-out"]
+    assert [float(clamp.get(k)) for k in ("x", "y", "width", "height")] == [0.0, -30.0, 40.0, 30.0]
+    (screw,) = [c for c in root.iter(f"{SVG}circle") if c.get("class") == "keep-out"]
+    assert [float(screw.get(k)) for k in ("cx", "cy", "r")] == [150.0, -100.0, 15.0]
+    (dashed,) = [
+        p.get("d") for p in root.iter(f"{SVG}path") if p.get("stroke-dasharray") and p.get("stroke") == "#888888"
+    ]
+    figures = [float(v) for v in dashed.replace("M", " ").replace("L", " ").replace("Z", " ").replace(",", " ").split()]
+    assert sorted(set(figures[0::2])) == [20.0, 290.0]
+    assert sorted(set(figures[1::2])) == [-200.0, -5.0]
+
+
+def test_etched_labels_are_drawn_on_their_pieces():
+    line = Curve(np.array([[1.0, 2, 0], [3.0, 4, 0]]), closed=False)
+    drawn = picture(extras=Extras(etched={("a & b", True): (line,)}))
+    (path,) = [p for p in drawn.iter(f"{SVG}path") if p.get("class") == "etched"]
+    assert path.get("d").startswith("M1")
