@@ -80,7 +80,7 @@ def nest(
     if ask.spacing_mm < 0.0 or ask.margin_mm < 0.0:
         raise ValueError("spacing and margin must not be negative")
     job = _Job(ask, stop, _Reporter(progress, on_better))
-    with compiling() as compiler:
+    with compiling(progress) as compiler:
         job.lay_first(budget, compiler)
         job.improve(budget, compiler)
     job.fill()

@@ -16,6 +16,7 @@ from typing import Any
 
 import numpy as np
 
+from flatprep.base.progress import Progress, Silent
 from flatprep.base.workers import become_worker, start
 from flatprep.nest import _jit
 from flatprep.nest.board import settle_all
@@ -34,8 +35,8 @@ ROWS, SEARCH = "rows", "search"
 class Compiler:
     """Waits for compiled code; none is waited for where all of it is there or none can be made aside."""
 
-    def __init__(self, process: Any = None) -> None:
-        self._process = process
+    def __init__(self, process: Any = None, progress: Progress | None = None) -> None:
+        self._process, self._progress = process, progress or Silent()
 
     def wait(self, stage: str, until: float = inf, stop: Callable[[], bool] = lambda: False) -> None:
         """Wait for the code of a stage, until a time (monotonic s) at most or until asked to stop."""
@@ -43,12 +44,13 @@ class Compiler:
             return
         note = _state()
         while self._process.is_alive() and not _is_noted(stage, note) and time.monotonic() < until and not stop():
+            self._progress.update("compiling for this machine, the first time only")
             self._process.join(PAUSE_S)
 
 
 @contextmanager
-def compiling() -> Iterator[Compiler]:
-    """Begin to compile what is not compiled yet.
+def compiling(progress: Progress | None = None) -> Iterator[Compiler]:
+    """Begin to compile what is not compiled yet; `progress` is told while somebody waits.
 
     The process that compiles ends with the block; what it has compiled by then is kept. Whoever does not wait for it
     compiles for himself.
@@ -63,7 +65,7 @@ def compiling() -> Iterator[Compiler]:
         yield Compiler()
         return
     try:
-        yield Compiler(process)
+        yield Compiler(process, progress)
     finally:
         process.kill()
         process.join()

@@ -59,12 +59,15 @@ def test_whoever_waits_can_be_stopped(tmp_path):
 import time
 from flatprep.nest import warm
 assert not warm.is_compiled(warm.ROWS)
-began = time.monotonic()
-with warm.compiling() as compiler:
+class Told(set):
+    def update(self, what, **_): self.add(what)
+told, began = Told(), time.monotonic()
+with warm.compiling(told) as compiler:
     compiler.wait(warm.ROWS, began + 60.0, lambda: time.monotonic() > began + 0.5)
     print(time.monotonic() - began)
     compiler.wait(warm.SEARCH, time.monotonic() + 0.2)
 print(time.monotonic() - began)
+assert told == {"compiling for this machine, the first time only"}, told
 """,
         NUMBA_CACHE_DIR=str(tmp_path),
     )
