@@ -36,7 +36,7 @@ class Compiler:
     """Waits for compiled code; none is waited for where all of it is there or none can be made aside."""
 
     def __init__(self, process: Any = None, progress: Progress | None = None) -> None:
-        self._process, self._progress = process, progress or Silent()
+        self._process, self._progress = process, Silent() if progress is None else progress
 
     def wait(self, stage: str, until: float = inf, stop: Callable[[], bool] = lambda: False) -> None:
         """Wait for the code of a stage, until a time (monotonic s) at most or until asked to stop."""
