@@ -14,7 +14,7 @@ from flatprep.cli.jobs import job_argument, read_drawings, say_of_nest
 from flatprep.cli.options import etch_option, other_forms, rack_option, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
 from flatprep.cli.talk import say
-from flatprep.cli.watch import inputs, wait_for_change
+from flatprep.cli.watch import inputs, stamps, wait_for_change
 from flatprep.drawing.forms import Form
 from flatprep.job.context import JobOptions
 from flatprep.job.load import load_job
@@ -56,6 +56,7 @@ def command(
     if not watch:
         ctx.exit(_once(job_file, folder, budget, said, also))
     while True:
+        before = stamps(inputs(job_file, said))  # what is saved while a run lasts counts for the next one
         try:
             status = _once(job_file, folder, budget, said, also)
         except FlatprepError as err:
@@ -64,7 +65,7 @@ def command(
         if status > ExitStatus.UNUSABLE:
             ctx.exit(status)
         say("waiting for a change", err=True)
-        wait_for_change(inputs(job_file, said))
+        wait_for_change(before)
 
 
 def _once(job_file: Path, folder: Path, budget: Budget, said: JobOptions, also: tuple[Form, ...]) -> int:

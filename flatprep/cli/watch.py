@@ -1,7 +1,7 @@
 """Wait until one of a job's files changes."""
 
 import time
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 from contextlib import suppress
 from pathlib import Path
 
@@ -11,6 +11,7 @@ from flatprep.job.load import load_job
 from flatprep.job.rack import LIST
 
 _EVERY_S = 0.5
+Stamps = Mapping[Path, tuple[int, int] | None]
 
 
 def inputs(job_file: Path, said: JobOptions) -> tuple[Path, ...]:
@@ -24,25 +25,24 @@ def inputs(job_file: Path, said: JobOptions) -> tuple[Path, ...]:
     return tuple(dict.fromkeys(files))
 
 
-def wait_for_change(files: Iterable[Path], *, every_s: float = _EVERY_S) -> None:
-    """Return once a file has changed, come or gone, and has then been left alone for a moment.
+def stamps(files: Iterable[Path]) -> Stamps:
+    """Return what tells a file from its next version: time and size; None where there is no such file."""
+    return {path: _stamp(path) for path in files}
+
+
+def wait_for_change(before: Stamps, *, every_s: float = _EVERY_S) -> None:
+    """Return once a file is no longer as it was, has come or gone, and has then been left alone for a moment.
 
     A program that saves a drawing writes it in pieces: half a file is not to be read.
     """
-    watched = tuple(files)
-    before = _stamps(watched)
-    while (now := _stamps(watched)) == before:
+    while (now := stamps(before)) == before:
         time.sleep(every_s)
     while True:
         time.sleep(every_s)
-        later = _stamps(watched)
+        later = stamps(before)
         if later == now:
             return
         now = later
-
-
-def _stamps(files: Iterable[Path]) -> tuple[tuple[int, int] | None, ...]:
-    return tuple(_stamp(path) for path in files)
 
 
 def _stamp(path: Path) -> tuple[int, int] | None:

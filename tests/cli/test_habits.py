@@ -1,6 +1,7 @@
 """What a command says, and when."""
 
 import os
+import signal
 import subprocess
 import sys
 import threading
@@ -10,10 +11,10 @@ import pytest
 from click.testing import CliRunner
 
 from flatprep.cli.main import root
-from flatprep.cli.watch import inputs, wait_for_change
+from flatprep.cli.watch import inputs, stamps, wait_for_change
 from flatprep.job.context import JobOptions
 from tests.cli.test_jobs import JOB, leaf
-from tests.drawing.draw import drawn
+from tests.drawing.draw import box, drawn
 
 
 @pytest.fixture
@@ -68,10 +69,43 @@ def test_inputs_of_a_job(job, tmp_path):
 def test_a_change_ends_the_wait(tmp_path):
     file = tmp_path / "leaf.dxf"
     file.write_text("one")
-    waiter = threading.Thread(target=wait_for_change, args=([file],), kwargs={"every_s": 0.02})
+    waiter = threading.Thread(target=wait_for_change, args=(stamps([file]),), kwargs={"every_s": 0.02})
     waiter.start()
     time.sleep(0.1)
     assert waiter.is_alive()
     file.write_text("another")
     waiter.join(timeout=10)
     assert not waiter.is_alive()
+
+
+def test_what_changed_before_the_wait_ends_it_at_once(tmp_path):
+    file = tmp_path / "leaf.dxf"
+    file.write_text("one")
+    before = stamps([file])
+    file.write_text("another")
+    began = time.monotonic()
+    wait_for_change(before, every_s=0.02)
+    assert time.monotonic() - began < 2.0
+
+
+def test_prepare_runs_again_when_a_drawing_changes_and_ends_when_asked(job, tmp_path):
+    """Without stock there is nothing to nest, and a run is short; a mistake in the job is told and waited out."""
+    text = JOB[: JOB.index("[[stock]]")] + JOB[JOB.index("[[part]]") :]
+    job.write_text(text)
+    table = tmp_path / "out" / "parts.csv"
+    words = [sys.executable, "-m", "flatprep", "prepare", str(job), "--out", str(tmp_path / "out"), "--watch"]
+    with subprocess.Popen(words, stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True) as process:
+        said = iter(process.stderr.readline, "")
+        assert "waiting for a change" in next(said)
+        assert ",80.0,50.0," in table.read_text()
+        drawn(tmp_path, lambda msp: box(msp, 0, 0, 70, 40))
+        assert "waiting for a change" in next(said)
+        assert ",70.0,40.0," in table.read_text()
+        job.write_text("mistake")
+        assert "error" in next(said)
+        assert "waiting" in next(line for line in said if "try" not in line)
+        job.write_text(text)
+        assert "waiting" in next(said)
+        process.send_signal(signal.SIGINT)
+        process.communicate(timeout=60)
+    assert process.returncode == 130
