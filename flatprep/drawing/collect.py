@@ -14,6 +14,7 @@ from flatprep.base.names import printable
 from flatprep.drawing.entities import Shape, UnusableEntityError, shape_of
 from flatprep.drawing.explode import Loose, block_fault, explode
 from flatprep.drawing.limits import ReadLimits
+from flatprep.drawing.load import Loaded
 from flatprep.drawing.roles import Guess, role_of
 from flatprep.model.drawing import Curve, Fault, Role, Simplified, Skipped, Text
 
@@ -67,7 +68,7 @@ class CollectOptions:
     limits: ReadLimits
 
 
-def collect(document: DxfDocument, options: CollectOptions) -> Collected:
+def collect(loaded: Loaded, options: CollectOptions) -> Collected:
     """Walk through model space.
 
     Raises
@@ -76,11 +77,12 @@ def collect(document: DxfDocument, options: CollectOptions) -> Collected:
         When a cap is passed, or a coordinate is out of all bounds.
     """
     out = Collected()
+    document = loaded.document
     off = {layer.dxf.name.lower() for layer in document.layers if layer.is_off() or layer.is_frozen()}
     guesses: dict[tuple[str, str], Guess] = {}
     vertices = 0
-    for loose in explode(document, options.limits):
-        kind = loose.entity.dxftype()
+    for loose in explode(loaded, options.limits):
+        kind = loose.kind
         if kind in _TEXTS:
             _add_text(out, loose, options)
         elif kind == "INSERT":
@@ -119,7 +121,7 @@ def _add_curve(out: Collected, loose: Loose, options: CollectOptions, guess: Gue
         out.vertical += 1
     else:
         out.heights[round(shape.z_low * k, 3)] += 1
-        kind = loose.entity.dxftype()
+        kind = loose.kind
         curve = Curve(xyb, shape.closed, loose.layer, loose.handle, kind, loose.linetype, loose.color)
         out.curves.append((curve, guess.role))
         if kind in ("SPLINE", "ELLIPSE"):
@@ -204,4 +206,4 @@ def _add_paper_space(out: Collected, document: DxfDocument) -> None:
 
 
 def _skip(loose: Loose, reason: str) -> Skipped:
-    return Skipped(loose.entity.dxftype(), loose.layer, loose.handle, reason)
+    return Skipped(loose.kind, loose.layer, loose.handle, reason)

@@ -1,12 +1,11 @@
 """DXF entities as bulge polylines in world coordinates, still in drawing units."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass
 from math import cos, hypot, isfinite, pi, radians, sin, tan
 from typing import Any
 
 import numpy as np
-from ezdxf.entities.dxfentity import DXFEntity
 
 from flatprep.geom.bulge import Floats, split_arcs
 from flatprep.geom.fit import fit_arcs
@@ -34,13 +33,23 @@ class Shape:
     z_high: float
 
 
-def shape_of(entity: DXFEntity, tol: float) -> Shape | None:
+@dataclass(frozen=True, slots=True, eq=False)
+class SplineData:
+    """Control points (n, 3), knots, weights (none: all alike) and degree of a spline."""
+
+    control: Floats
+    knots: Sequence[float]
+    weights: Sequence[float]
+    degree: int
+
+
+def shape_of(entity: Dxf, tol: float) -> Shape | None:
     """Return the curve of an entity, None for one that is no curve.
 
     Parameters
     ----------
     entity
-        LINE, ARC, CIRCLE, ELLIPSE, SPLINE, LWPOLYLINE or POLYLINE.
+        LINE, ARC, CIRCLE, ELLIPSE, SPLINE, LWPOLYLINE or POLYLINE, or a `Shape` or `SplineData` that was read before.
     tol
         Largest distance of the arcs that stand for a spline or ellipse, drawing units.
 
@@ -50,7 +59,7 @@ def shape_of(entity: DXFEntity, tol: float) -> Shape | None:
         When its numbers make no curve. Coordinates that are no numbers are left to the caller, who checks them
         for all curves at once.
     """
-    make = _MAKERS.get(entity.dxftype())
+    make = _MADE.get(type(entity)) or _MAKERS.get(entity.dxftype())
     if make is None:
         return None
     try:
@@ -62,12 +71,16 @@ def shape_of(entity: DXFEntity, tol: float) -> Shape | None:
     return shape
 
 
+def _as_it_is(shape: Shape, _tol: float) -> Shape:
+    return shape
+
+
 def _line(e: Dxf, _tol: float) -> Shape:
     a, b = e.dxf.start, e.dxf.end
     return Shape(np.array([[a.x, a.y, 0.0], [b.x, b.y, 0.0]]), closed=False, z_low=min(a.z, b.z), z_high=max(a.z, b.z))
 
 
-def _flat(extrusion: Dxf) -> float:
+def flat(extrusion: Iterable[float]) -> float:
     """+1 or -1 for an extrusion along z; the mirrored plane is what many programs write after a flip.
 
     Raises
@@ -82,41 +95,40 @@ def _flat(extrusion: Dxf) -> float:
 
 
 def _circle(e: Dxf, _tol: float) -> Shape:
-    flip = _flat(e.dxf.extrusion)
-    c, r = e.dxf.center, e.dxf.radius
-    if not r > 0:
-        raise UnusableEntityError(f"its radius is {r:g}")
-    x = flip * c.x
+    return circle_shape(e.dxf.center.xyz, e.dxf.radius, flat(e.dxf.extrusion))
+
+
+def circle_shape(centre: tuple[float, float, float], radius: float, flip: float) -> Shape:
+    """Full circle in a plane that looks up (`flip` 1) or down (-1)."""
+    if not radius > 0:
+        raise UnusableEntityError(f"its radius is {radius:g}")
+    x, y, z = flip * centre[0], centre[1], flip * centre[2]
     # it starts at OCS angle 0 and runs anticlockwise whichever way the plane looks: a full circle has no direction
-    return Shape(np.array([[x + r, c.y, 1.0], [x - r, c.y, 1.0]]), closed=True, z_low=flip * c.z, z_high=flip * c.z)
+    return Shape(np.array([[x + radius, y, 1.0], [x - radius, y, 1.0]]), closed=True, z_low=z, z_high=z)
 
 
 def _arc(e: Dxf, _tol: float) -> Shape:
-    flip = _flat(e.dxf.extrusion)
-    c, r = e.dxf.center, e.dxf.radius
-    if not r > 0:
-        raise UnusableEntityError(f"its radius is {r:g}")
-    start, end = radians(e.dxf.start_angle), radians(e.dxf.end_angle)
+    return arc_shape(e.dxf.center.xyz, e.dxf.radius, e.dxf.start_angle, e.dxf.end_angle, flat(e.dxf.extrusion))
+
+
+def arc_shape(centre: tuple[float, float, float], r: float, start_deg: float, end_deg: float, flip: float) -> Shape:
+    """Arc that runs anticlockwise in a plane that looks up (`flip` 1) or down (-1)."""
+    start, end = radians(start_deg), radians(end_deg)
     sweep = (end - start) % (2 * pi)
-    full = sweep < 1e-9 or sweep > 2 * pi - FULL_RAD
-    if full:
-        return Shape(
-            np.array([[flip * c.x + r, c.y, 1.0], [flip * c.x - r, c.y, 1.0]]),
-            closed=True,
-            z_low=flip * c.z,
-            z_high=flip * c.z,
-        )
+    if sweep < 1e-9 or sweep > 2 * pi - FULL_RAD or not r > 0:
+        return circle_shape(centre, r, flip)
+    x, y, z = centre
     pieces = 1 if sweep <= pi + 1e-9 else 2
     bulge = tan(sweep / pieces / 4.0)
     rows = []
     for k in range(pieces + 1):
         a = start + sweep * k / pieces
-        rows.append((flip * (c.x + r * cos(a)), c.y + r * sin(a), flip * bulge if k < pieces else 0.0))
-    return Shape(np.array(rows), closed=False, z_low=flip * c.z, z_high=flip * c.z)
+        rows.append((flip * (x + r * cos(a)), y + r * sin(a), flip * bulge if k < pieces else 0.0))
+    return Shape(np.array(rows), closed=False, z_low=flip * z, z_high=flip * z)
 
 
 def _ellipse(e: Dxf, tol: float) -> Shape:
-    flip = _flat(e.dxf.extrusion)
+    flip = flat(e.dxf.extrusion)
     c, m, ratio = e.dxf.center, e.dxf.major_axis, e.dxf.ratio
     major = np.array([m.x, m.y])
     if hypot(m.x, m.y) <= 0 or not 0 < abs(ratio) <= 1e3:
@@ -135,17 +147,22 @@ def _ellipse(e: Dxf, tol: float) -> Shape:
 def _spline(e: Dxf, tol: float) -> Shape:
     control = np.asarray(e.control_points, dtype=np.float64)
     if len(control):
-        knots, weights, degree = list(e.knots), list(e.weights), e.dxf.degree
+        data = SplineData(control, e.knots, e.weights, e.dxf.degree)
     else:
         tool = e.construction_tool()
         control = np.array([(p.x, p.y, p.z) for p in tool.control_points])
-        knots, weights, degree = list(tool.knots()), list(tool.weights()), tool.degree
+        data = SplineData(control, tool.knots(), tool.weights(), tool.degree)
+    return _spline_shape(data, tol)
+
+
+def _spline_shape(data: SplineData, tol: float) -> Shape:
+    control = data.control
     if not np.abs(control).max(initial=0.0) <= FAR:
         raise UnusableEntityError("a control point is out of all bounds")
-    if degree == 1:
+    if data.degree == 1:
         xyb = np.column_stack([control[:, :2], np.zeros(len(control))])
     else:
-        xyb = fit_arcs(nurbs(degree, knots, control[:, :2], weights), tol)
+        xyb = fit_arcs(nurbs(data.degree, data.knots, control[:, :2], data.weights), tol)
     if len(xyb) < 2:
         raise UnusableEntityError("the spline is a single point")
     z = control[:, 2]
@@ -154,10 +171,14 @@ def _spline(e: Dxf, tol: float) -> Shape:
 
 
 def _lwpolyline(e: Dxf, _tol: float) -> Shape:
-    flip = _flat(e.dxf.extrusion)
     rows = np.array(e.get_points("xyb"), dtype=np.float64).reshape(-1, 3)
-    z = flip * e.dxf.elevation
-    return _from_rows(rows * np.array([flip, 1.0, flip]), closed=bool(e.closed), z=(z, z))
+    return polyline_shape(rows, e.dxf.flags, e.dxf.elevation, flat(e.dxf.extrusion))
+
+
+def polyline_shape(rows: Floats, flags: int, height: float, flip: float) -> Shape:
+    """Polyline of x, y and bulge, in a plane that looks up (`flip` 1) or down (-1); closed where bit 1 is set."""
+    z = flip * height
+    return _from_rows(rows * np.array([flip, 1.0, flip]), closed=bool(flags & 1), z=(z, z))
 
 
 def _polyline(e: Dxf, _tol: float) -> Shape:
@@ -166,15 +187,20 @@ def _polyline(e: Dxf, _tol: float) -> Shape:
     # flag 16: a control point of the spline frame, beside the vertices that draw the curve
     vertices = [v for v in e.vertices if not v.dxf.flags & 16]
     rows = np.array([(*v.dxf.location, v.dxf.get("bulge", 0.0)) for v in vertices], dtype=np.float64).reshape(-1, 4)
+    height = float(e.dxf.elevation.z) if e.dxf.hasattr("elevation") else None
+    return old_polyline_shape(rows, e.dxf.flags, height, e.dxf.extrusion)
+
+
+def old_polyline_shape(rows: Floats, flags: int, height: float | None, extrusion: Iterable[float]) -> Shape:
+    """Polyline of vertices x, y, z and bulge; closed where flag 1 is set, and in space where 8 is."""
     if len(rows) == 0:
         raise UnusableEntityError("it has no vertices")
-    low, high = float(rows[:, 2].min()), float(rows[:, 2].max())
-    if e.is_3d_polyline:
-        flat = np.column_stack([rows[:, :2], np.zeros(len(rows))])
-        return _from_rows(flat, closed=bool(e.is_closed), z=(low, high))
-    flip = _flat(e.dxf.extrusion)
-    height = flip * (float(e.dxf.elevation.z) if e.dxf.hasattr("elevation") else low)
-    return _from_rows(rows[:, [0, 1, 3]] * np.array([flip, 1.0, flip]), closed=bool(e.is_closed), z=(height, height))
+    closed, z = bool(flags & 1), (float(rows[:, 2].min()), float(rows[:, 2].max()))
+    if flags & 8:
+        return _from_rows(np.column_stack([rows[:, :2], np.zeros(len(rows))]), closed=closed, z=z)
+    flip = flat(extrusion)
+    height = flip * (z[0] if height is None else height)
+    return _from_rows(rows[:, [0, 1, 3]] * np.array([flip, 1.0, flip]), closed=closed, z=(height, height))
 
 
 def _from_rows(rows: Floats, *, closed: bool, z: tuple[float, float]) -> Shape:
@@ -208,3 +234,4 @@ _MAKERS: dict[str, Callable[[Dxf, float], Shape]] = {
     "LWPOLYLINE": _lwpolyline,
     "POLYLINE": _polyline,
 }
+_MADE: dict[type, Callable[[Dxf, float], Shape]] = {Shape: _as_it_is, SplineData: _spline_shape}

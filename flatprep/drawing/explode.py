@@ -1,13 +1,16 @@
 """Model space with its blocks taken apart, within caps: every entity once, with the layer and handle it answers to."""
 
 from collections.abc import Iterable, Iterator
+from functools import cache, partial
+from operator import itemgetter
 from typing import Any, NamedTuple
 
 from ezdxf.document import Drawing as DxfDocument
-from ezdxf.entities.dxfentity import DXFEntity
 
 from flatprep.base.errors import DrawingError
 from flatprep.drawing.limits import ReadLimits
+from flatprep.drawing.load import Loaded
+from flatprep.drawing.plain import Plain
 
 Dxf = Any
 
@@ -19,14 +22,15 @@ class Loose(NamedTuple):
     insertion, content of a block has the handle of the outermost insertion.
     """
 
-    entity: DXFEntity
+    entity: Dxf
+    kind: str
     layer: str
     handle: str
     color: int
     linetype: str
 
 
-def explode(document: DxfDocument, limits: ReadLimits) -> Iterator[Loose]:
+def explode(loaded: Loaded, limits: ReadLimits) -> Iterator[Loose]:
     """Yield what model space holds, blocks taken apart.
 
     Raises
@@ -34,19 +38,35 @@ def explode(document: DxfDocument, limits: ReadLimits) -> Iterator[Loose]:
     DrawingError
         When that would be more entities, or blocks deeper inside each other, than the limits allow.
     """
-    total = _count(document, limits)
+    document = loaded.document
+    total = _count(document, limits) + len(loaded.plain)
     if total > limits.entities:
         raise DrawingError(
             f"{total:.3g} entities once its blocks are taken apart, more than the {limits.entities} that are read",
             "export only the outlines of the part",
         )
     layers = _Layers(document)
-    for entity in document.modelspace():
-        above = _Above("0", entity.dxf.handle or "", 7, "CONTINUOUS", depth=0)
+    nothing = _Above("0", "", 7, "CONTINUOUS", depth=0)
+    looks_of = cache(partial(layers.looks, above=nothing))
+    for entity in _in_order(loaded):
+        if isinstance(entity, Plain):
+            layer, color, linetype = looks_of((entity.layer, entity.color, entity.linetype))
+            yield Loose(entity.drawn, entity.kind, layer, entity.handle, color, linetype)
+            continue
+        above = nothing._replace(handle=entity.dxf.handle or "")
         if entity.dxftype() == "INSERT":
             yield from _open(entity, layers, above, limits)
         else:
             yield _loose(entity, layers, above)
+
+
+def _in_order(loaded: Loaded) -> Iterable[Dxf | Plain]:
+    """Return what model space holds, as it stands in the file."""
+    whole = loaded.document.modelspace()
+    if not loaded.plain:
+        return whole
+    others = [(loaded.places[e.dxf.handle], e) for e in whole]
+    return [e for _, e in sorted([*others, *((p.place, p) for p in loaded.plain)], key=itemgetter(0))]
 
 
 class _Above(NamedTuple):
@@ -65,26 +85,26 @@ class _Layers:
             layer.dxf.name.lower(): (abs(int(layer.dxf.color)), str(layer.dxf.linetype)) for layer in document.layers
         }
 
-    def color(self, name: str) -> int:
-        return self._of.get(name.lower(), (7, ""))[0]
-
-    def linetype(self, name: str) -> str:
-        return self._of.get(name.lower(), (7, "CONTINUOUS"))[1]
+    def looks(self, own: tuple[str, int, str], above: _Above) -> tuple[str, int, str]:
+        """Layer, colour and linetype of an entity after BYLAYER and BYBLOCK, and layer 0 of a block, are resolved."""
+        layer, color, linetype = own
+        layer = above.layer if above.depth and layer == "0" else layer
+        own_color, own_linetype = self._of.get(layer.lower(), (7, "CONTINUOUS"))
+        color = own_color if color == 256 else above.color if color == 0 else color
+        linetype = linetype.upper()
+        if linetype == "BYLAYER":
+            linetype = own_linetype.upper()
+        elif linetype == "BYBLOCK":
+            linetype = above.linetype
+        return layer, color, linetype
 
 
 def _loose(entity: Dxf, layers: _Layers, above: _Above) -> Loose:
     """Return an entity with what it takes from its layer and from the insertion it stands in."""
     dxf = entity.dxf
-    own = dxf.get("layer", "0")
-    layer = above.layer if above.depth and own == "0" else own
-    color = dxf.get("color", 256)
-    color = layers.color(layer) if color == 256 else above.color if color == 0 else color
-    linetype = dxf.get("linetype", "BYLAYER").upper()
-    if linetype == "BYLAYER":
-        linetype = layers.linetype(layer).upper()
-    elif linetype == "BYBLOCK":
-        linetype = above.linetype
-    return Loose(entity, layer, above.handle, color, linetype)
+    own = dxf.get("layer", "0"), dxf.get("color", 256), dxf.get("linetype", "BYLAYER")
+    layer, color, linetype = layers.looks(own, above)
+    return Loose(entity, entity.dxftype(), layer, above.handle, color, linetype)
 
 
 def _open(entity: Dxf, layers: _Layers, above: _Above, limits: ReadLimits) -> Iterator[Loose]:
@@ -94,7 +114,7 @@ def _open(entity: Dxf, layers: _Layers, above: _Above, limits: ReadLimits) -> It
         return
     below = _Above(whole.layer, above.handle, whole.color, whole.linetype, above.depth + 1)
     for attribute in entity.attribs:
-        yield whole._replace(entity=attribute)
+        yield whole._replace(entity=attribute, kind=attribute.dxftype())
     for single in _singles(entity):
         for child in single.virtual_entities():
             yield from _open(child, layers, below, limits)

@@ -2,21 +2,26 @@
 
 import hashlib
 import re
+from collections.abc import Mapping
 from contextlib import suppress
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from io import BytesIO
 from pathlib import Path
+from typing import NamedTuple
 
 from ezdxf import recover
 from ezdxf.document import Drawing as DxfDocument
-from ezdxf.filemanagement import readfile
+from ezdxf.filemanagement import dxf_file_info, readfile
 
 from flatprep.base.errors import DrawingError
 from flatprep.drawing.limits import ReadLimits
+from flatprep.drawing.plain import Plain
+from flatprep.drawing.sift import Sifted, sift
 
 _UNIT = re.compile(rb"\$INSUNITS\s+70\s+(\d+)")
 _BINARY_HEAD = b"AutoCAD Binary DXF\r\n\x1a\x00"
 _BINARY_UNIT = re.compile(rb"\$INSUNITS\x00\x46\x00(..)", re.DOTALL)
+_BYTES = "surrogateescape"
 _CONFLICT = re.compile(rb"^(<{7}|={7}|>{7})(?: .*)?\r?$", re.MULTILINE)
 
 UNIT_OF_CODE = {1: "in", 2: "ft", 4: "mm", 5: "cm", 6: "m"}
@@ -37,6 +42,10 @@ class Loaded:
         Whether version-control conflict markers were taken out (the first side is kept).
     digest
         SHA-256 of the file's bytes, in hexadecimal.
+    plain
+        Entities of model space that are not in the document: they were read beside it.
+    places
+        Handle -> place among all entities of model space, for those in the document; the others know their own.
     """
 
     document: DxfDocument
@@ -44,6 +53,8 @@ class Loaded:
     recovered: bool
     conflicts: bool
     digest: str
+    plain: tuple[Plain, ...] = ()
+    places: Mapping[str, int] = field(default_factory=dict)
 
 
 def load(path: Path, limits: ReadLimits) -> Loaded:
@@ -56,11 +67,12 @@ def load(path: Path, limits: ReadLimits) -> Loaded:
     """
     data = _bytes_of(path, limits)
     digest = hashlib.sha256(data).hexdigest()
-    conflicts = len(_CONFLICT.findall(data)) >= 3
+    conflicts = b"<<<<<<<" in data and len(_CONFLICT.findall(data)) >= 3
     if conflicts:
         data = _first_side(data)
-    document, recovered = _parse(path, data, changed=conflicts)
-    return Loaded(document, unit_code(data), recovered, conflicts, digest)
+    opened = _open(path, data, changed=conflicts)
+    document, sifted = opened.document, opened.sifted
+    return Loaded(document, unit_code(data), opened.recovered, conflicts, digest, sifted.plain, sifted.places)
 
 
 def unit_code(data: bytes) -> int | None:
@@ -106,16 +118,43 @@ def _first_side(data: bytes) -> bytes:
     return b"\n".join(kept)
 
 
-def _parse(path: Path, data: bytes, *, changed: bool) -> tuple[DxfDocument, bool]:
+class _Opened(NamedTuple):
+    document: DxfDocument
+    recovered: bool
+    sifted: Sifted = Sifted()
+
+
+def _open(path: Path, data: bytes, *, changed: bool) -> _Opened:
     # ezdxf and what lies under it raise more than DXFError on damaged files (struct, Unicode, index errors):
     # whatever a reader trips over is one damaged file, told to the person below
     if not changed:
-        with suppress(Exception):
-            return readfile(path), False
+        for read in (_beside, _strictly):
+            with suppress(Exception):
+                return read(path, data)
     try:
-        return (recover.read(BytesIO(data)) if changed else recover.readfile(path))[0], True
+        return _Opened(_mended(data), recovered=True)
     except Exception as err:
         reason = str(err).splitlines()[0][:160] if str(err) else type(err).__name__
         raise DrawingError(
             f"{path}: not readable as DXF ({reason})", "export the drawing again, as DXF R2000 or later"
         ) from err
+
+
+def _mended(data: bytes) -> DxfDocument:
+    return recover.read(BytesIO(data))[0]
+
+
+def _strictly(path: Path, _data: bytes) -> _Opened:
+    return _Opened(readfile(path), recovered=False)
+
+
+def _beside(path: Path, data: bytes) -> _Opened:
+    """Read plain entities ourselves, and let ezdxf read the rest."""
+    about = dxf_file_info(path)
+    text = data.decode(about.encoding, _BYTES).replace("\r\n", "\n").replace("\r", "\n")
+    sifted = sift(text, old=about.version <= "AC1009")
+    if sifted.reordered:
+        document = _mended(sifted.rest.text.encode(about.encoding, _BYTES))
+    else:
+        document = DxfDocument.load(sifted.rest.compiled)
+    return _Opened(document, sifted.reordered, sifted.fitted(document))

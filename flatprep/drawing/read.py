@@ -67,7 +67,7 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
     units, origin, faults = _units(loaded, options.units)
     ask = CollectOptions(MM_PER_UNIT[units], options.roles, options.tol.curve_mm, options.limits)
     try:
-        found = collect(loaded.document, ask)
+        found = collect(loaded, ask)
     except DrawingError as err:
         raise DrawingError(f"{path}: {err.message}", err.remedy) from err
     except (ArithmeticError, AttributeError, LookupError, RecursionError, TypeError, ValueError) as err:
