@@ -5,8 +5,7 @@ from math import atan2, degrees, hypot, pi, sqrt
 
 import numpy as np
 
-from flatprep.geom import bulge
-from flatprep.geom.bulge import Moments
+from flatprep.geom.moments import region_moments
 from flatprep.model.drawing import Part
 from flatprep.model.estimate import MassProperties
 from flatprep.model.work import Step, StepKind
@@ -32,12 +31,13 @@ def mass_properties(part: Part, mass: float | None) -> MassProperties:
 
     Notes
     -----
-    Exact on lines and arcs (`flatprep.geom.bulge.moments`), taken about the middle of the part's box, so that a
+    Exact on lines and arcs (`flatprep.geom.moments`), taken about the middle of the part's box, so that a
     drawing far from its origin costs no digits. Principal axes: tan 2α = -2 Ixy / (Ixx - Iyy).
     """
     x0, y0, x1, y1 = part.outer.bounds
     ox, oy = (x0 + x1) / 2.0, (y0 + y1) / 2.0
-    local = _moments_about(part, ox, oy)
+    shift = np.array([ox, oy, 0.0])
+    local = region_moments(part.outer.xyb - shift, [hole.xyb - shift for hole in part.holes])
     cx, cy = local.centroid
     iyy, ixx, ixy = local.about_centroid()
     middle, radius = (ixx + iyy) / 2.0, hypot((ixx - iyy) / 2.0, ixy)
@@ -58,14 +58,6 @@ def mass_properties(part: Part, mass: float | None) -> MassProperties:
 def _axis_deg(difference: float, ixy: float) -> float:
     angle = degrees(atan2(-2.0 * ixy, difference)) / 2.0
     return angle + 180.0 if angle <= -90.0 + 1e-9 else angle
-
-
-def _moments_about(part: Part, x: float, y: float) -> Moments:
-    shift = np.array([x, y, 0.0])
-    total = bulge.moments(part.outer.xyb - shift)
-    for hole in part.holes:
-        total = total + -bulge.moments(hole.xyb - shift)
-    return total
 
 
 def bench_removed_mm3(part: Part, steps: Sequence[Step], thickness_mm: float) -> float:

@@ -8,10 +8,9 @@ import numpy.typing as npt
 import shapely
 from shapely import STRtree
 
-from flatprep.geom import bulge
 from flatprep.geom.bulge import Floats
-from flatprep.geom.polygons import ring
-from flatprep.model.drawing import Contour, Part
+from flatprep.geom.rings import Rings
+from flatprep.model.drawing import Contour, Part, measure
 
 Polygons = npt.NDArray[np.object_]
 CHORD_MM = 0.01
@@ -20,13 +19,15 @@ CHORD_MM = 0.01
 
 def polygons_of(closed: Sequence[Floats], chord_mm: float) -> Polygons:
     """Return one polygon a closed polyline, without holes, shape (n,)."""
-    rings = [ring(xyb, chord_mm) for xyb in closed]
-    if not rings:
+    if not closed:
         return np.array([], dtype=object)
-    padded = [r if len(r) >= 3 else np.vstack([r, r[:1]]) for r in rings]
-    sizes = np.array([len(r) for r in padded])
-    lines = shapely.linearrings(np.vstack(padded), indices=np.repeat(np.arange(len(padded)), sizes))
-    return np.asarray(shapely.polygons(lines))
+    xy, owner = Rings.of(closed).points(chord_mm)
+    counts = np.bincount(owner)
+    # shapely asks for three points of a ring, however thin
+    short = np.flatnonzero(counts == 2)
+    last = np.cumsum(counts)[short]
+    xy, owner = np.insert(xy, last, xy[last - 2], axis=0), np.insert(owner, last, short)
+    return np.asarray(shapely.polygons(shapely.linearrings(xy, indices=owner)))
 
 
 @dataclass(frozen=True, slots=True)
@@ -56,25 +57,20 @@ def nesting(shapes: Polygons) -> Nesting:
 
 def parts_of(contours: Sequence[Contour], nest: Nesting, stem: str) -> tuple[Part, ...]:
     """Parts out of nested contours, named after the drawing; left to right, then upwards."""
+    signed = measure(contours)
+
+    def run(i: int, *, left: bool) -> Contour:
+        return contours[i] if (signed[i] > 0) == left else contours[i].reversed
+
     outers = [i for i in range(len(contours)) if nest.depth[i] % 2 == 0]
     outers.sort(key=lambda i: (round(contours[i].bounds[0], 3), round(contours[i].bounds[1], 3), -contours[i].area_mm2))
     parts = []
     for number, i in enumerate(outers, start=1):
         holes = sorted(
-            (contours[j] for j in np.flatnonzero(nest.parent == i).tolist()),
-            key=lambda c: (round(c.bounds[0], 3), round(c.bounds[1], 3)),
+            np.flatnonzero(nest.parent == i).tolist(),
+            key=lambda j: (round(contours[j].bounds[0], 3), round(contours[j].bounds[1], 3)),
         )
         name = stem if len(outers) == 1 else f"{stem}#{number}"
-        depth = int(nest.depth[i])
-        parts.append(
-            Part(name, turned(contours[i], left=True), tuple(turned(h, left=False) for h in holes), depth=depth)
-        )
+        outer = run(i, left=True)
+        parts.append(Part(name, outer, tuple(run(j, left=False) for j in holes), depth=int(nest.depth[i])))
     return tuple(parts)
-
-
-def turned(contour: Contour, *, left: bool) -> Contour:
-    """Return the contour run anticlockwise (`left`) or clockwise."""
-    if (bulge.signed_area(contour.xyb) > 0) == left:
-        return contour
-    # reversing keeps vertex 0, so the first segment becomes the last
-    return Contour(bulge.reverse(contour.xyb, closed=True), contour.handles[::-1], contour.layers)

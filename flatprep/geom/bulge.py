@@ -13,6 +13,7 @@ import numpy as np
 import numpy.typing as npt
 
 Floats = npt.NDArray[np.float64]
+Ints = npt.NDArray[np.intp]
 STRAIGHT = 1e-12
 """A bulge below this is straight: over a chord of 100 m its sagitta is 0.05 nm, and its radius would overflow."""
 
@@ -47,8 +48,48 @@ class Segments:
         """Which segments are arcs, shape (n,)."""
         return np.not_equal(self.bulge, 0.0)
 
+    @property
+    def length(self) -> Floats:
+        """Lengths along the arcs, shape (n,), mm."""
+        chord = np.hypot(*(self.end - self.start).T)
+        curved = self.is_arc
+        return np.asarray(np.where(curved, np.where(curved, self.radius, 0.0) * np.abs(self.sweep), chord))
+
+    @property
+    def area(self) -> Floats:
+        """Areas between arcs and their chords, shape (n,), mm², positive for arcs that turn left."""
+        theta = self.sweep
+        r = np.where(self.is_arc, self.radius, 0.0)
+        # θ - sin θ loses digits for flat arcs: its series is exact there
+        flat = np.abs(theta) < 1e-2
+        series = theta**3 / 6.0 * (1.0 - theta**2 / 20.0 * (1.0 - theta**2 / 42.0))
+        return np.asarray(r * r / 2.0 * np.where(flat, series, theta - np.sin(theta)))
+
+    @property
+    def boxes(self) -> Floats:
+        """Least boxes x0, y0, x1, y1, arcs as they run, shape (n, 4), mm."""
+        return boxes(self.start, self.end, self.centre, self.radius, self.angle, self.sweep)
+
     def __len__(self) -> int:
         return len(self.bulge)
+
+
+def boxes(start: Floats, end: Floats, centre: Floats, radius: Floats, angle: Floats, sweep: Floats) -> Floats:
+    """Least boxes x0, y0, x1, y1 of segments: arcs reach their quadrant points; columns as in `Segments`."""
+    lo, hi = np.minimum(start, end), np.maximum(start, end)
+    k = np.flatnonzero(sweep)
+    if len(k):
+        sign, far = np.sign(sweep[k]), np.abs(sweep[k])
+        # the radius of a nearly straight arc has no digits left: it rises over its chord as far as its bulge says
+        rise = np.zeros(len(sweep))
+        rise[k] = np.hypot(*(end[k] - start[k]).T) * np.abs(np.tan(sweep[k] / 4.0)) * (0.5 + 1e-9)
+        least, most = lo - rise[:, None], hi + rise[:, None]
+        for quarter, (ux, uy) in enumerate(((1, 0), (0, 1), (-1, 0), (0, -1))):
+            rows = k[np.mod((quarter * np.pi / 2 - angle[k]) * sign, 2 * np.pi) <= far]
+            point = centre[rows] + radius[rows, None] * np.array([ux, uy], dtype=np.float64)
+            point = np.clip(point, least[rows], most[rows])
+            lo[rows], hi[rows] = np.minimum(lo[rows], point), np.maximum(hi[rows], point)
+    return np.hstack([lo, hi])
 
 
 def segments(xyb: Floats, *, closed: bool) -> Segments:
@@ -60,8 +101,13 @@ def segments(xyb: Floats, *, closed: bool) -> Segments:
     by |c| (1 - b²) / (4 b).
     """
     start = xyb[:, :2] if closed else xyb[:-1, :2]
-    end = np.roll(xyb[:, :2], -1, axis=0) if closed else xyb[1:, :2]
-    bulge = np.where(np.abs(xyb[: len(start), 2]) < STRAIGHT, 0.0, xyb[: len(start), 2])
+    end = np.concatenate([xyb[1:, :2], xyb[:1, :2]]) if closed else xyb[1:, :2]
+    return segments_between(start, end, xyb[: len(start), 2])
+
+
+def segments_between(start: Floats, end: Floats, bulge: Floats) -> Segments:
+    """Lines and arcs between points, shape (n, 2) each, of these bulges, shape (n,)."""
+    bulge = np.where(np.abs(bulge) < STRAIGHT, 0.0, bulge)
     chord = end - start
     length = np.hypot(chord[:, 0], chord[:, 1])
     arc = bulge != 0.0
@@ -122,17 +168,7 @@ def signed_area(xyb: Floats) -> float:
     xy = xyb[:, :2] - xyb[0, :2]
     x, y = xy[:, 0], xy[:, 1]
     chords = np.sum(x * np.roll(y, -1) - np.roll(x, -1) * y) / 2.0
-    return float(chords + np.sum(_segment_area(xyb))) if xyb[:, 2].any() else float(chords)
-
-
-def _segment_area(xyb: Floats) -> Floats:
-    seg = segments(xyb, closed=True)
-    theta = seg.sweep
-    r = np.where(seg.is_arc, seg.radius, 0.0)
-    # θ - sin θ loses digits for flat arcs: its series is exact there
-    flat = np.abs(theta) < 1e-2
-    series = theta**3 / 6.0 * (1.0 - theta**2 / 20.0 * (1.0 - theta**2 / 42.0))
-    return r * r / 2.0 * np.where(flat, series, theta - np.sin(theta))
+    return float(chords + np.sum(segments(xyb, closed=True).area)) if xyb[:, 2].any() else float(chords)
 
 
 def length(xyb: Floats, *, closed: bool) -> float:
@@ -140,134 +176,23 @@ def length(xyb: Floats, *, closed: bool) -> float:
     if not xyb[:, 2].any():
         xy = np.vstack([xyb[:, :2], xyb[:1, :2]]) if closed else xyb[:, :2]
         return float(np.sum(np.hypot(*np.diff(xy, axis=0).T)))
-    seg = segments(xyb, closed=closed)
-    chord = np.hypot(*(seg.end - seg.start).T)
-    curved = np.where(seg.is_arc, np.where(seg.is_arc, seg.radius, 0.0) * np.abs(seg.sweep), chord)
-    return float(np.sum(curved))
-
-
-@dataclass(frozen=True, slots=True)
-class Moments:
-    """Area moments of a closed region about the origin of its drawing.
-
-    Attributes
-    ----------
-    area : float
-        mm², positive.
-    sx, sy : float
-        First moments ∫x dA and ∫y dA, mm³.
-    xx, yy, xy : float
-        Second moments ∫x² dA, ∫y² dA and ∫xy dA, mm⁴.
-    """
-
-    area: float
-    sx: float
-    sy: float
-    xx: float
-    yy: float
-    xy: float
-
-    def __add__(self, other: "Moments") -> "Moments":
-        return Moments(*(getattr(self, k) + getattr(other, k) for k in self.__slots__))
-
-    def __neg__(self) -> "Moments":
-        return Moments(*(-getattr(self, k) for k in self.__slots__))
-
-    @property
-    def centroid(self) -> tuple[float, float]:
-        """Centre of area, mm."""
-        return self.sx / self.area, self.sy / self.area
-
-    def about_centroid(self) -> tuple[float, float, float]:
-        """Second moments (∫x², ∫y², ∫xy) about the centroid, mm⁴ (parallel axes)."""
-        cx, cy = self.centroid
-        return self.xx - cx * self.sx, self.yy - cy * self.sy, self.xy - cx * self.sy
-
-
-_NODES, _WEIGHTS = np.polynomial.legendre.leggauss(20)
-
-
-def moments(xyb: Floats) -> Moments:
-    """Area moments of a closed polyline, whatever its direction; area positive.
-
-    Notes
-    -----
-    Green's theorem, ∫xᵖ yᵠ dA = ∮ xᵖ⁺¹ yᵠ / (p + 1) dy, integrated along each segment by 20-point Gauss-Legendre:
-    exact for lines (degree 4), and for arcs of a half circle at the most exact to rounding (the integrands are
-    trigonometric polynomials of degree 4). Taken about the first vertex, then shifted.
-    """
-    if len(xyb) == 2 and abs(xyb[0, 2]) == abs(xyb[1, 2]) == 1.0:
-        return _circle_moments(xyb)
-    origin = xyb[0, :2]
-    local = xyb - np.array([origin[0], origin[1], 0.0])
-    x, y, dy = _nodes_along(local)
-    w = _WEIGHTS / 2.0
-
-    def integral(f: Floats) -> float:
-        return float(np.sum((f * dy) @ w))
-
-    sign = 1.0 if signed_area(local) >= 0.0 else -1.0
-    area, sx, sy = (sign * integral(f) for f in (x, x * x / 2.0, x * y))
-    xx, yy, xy = (sign * integral(f) for f in (x**3 / 3.0, x * y * y, x * x * y / 2.0))
-    ox, oy = float(origin[0]), float(origin[1])
-    return Moments(
-        area,
-        sx + ox * area,
-        sy + oy * area,
-        xx + 2 * ox * sx + ox * ox * area,
-        yy + 2 * oy * sy + oy * oy * area,
-        xy + ox * sy + oy * sx + ox * oy * area,
-    )
-
-
-def _circle_moments(xyb: Floats) -> Moments:
-    """Moments of a full circle: π r², with π r⁴ / 4 about its own axes."""
-    (x0, y0, _), (x1, y1, _) = xyb.tolist()
-    x, y, squared = (x0 + x1) / 2.0, (y0 + y1) / 2.0, ((x1 - x0) ** 2 + (y1 - y0) ** 2) / 4.0
-    area = pi * squared
-    own = area * squared / 4.0
-    return Moments(area, area * x, area * y, own + area * x * x, own + area * y * y, area * x * y)
-
-
-def _nodes_along(xyb: Floats) -> tuple[Floats, Floats, Floats]:
-    """x, y and dy/dt at the integration nodes of every segment, t from 0 to 1, shape (n, 20) each.
-
-    Written from the chord, with half the sweep h and the angle φ from the arc's top: no radius occurs, so that
-    nearly straight arcs keep their digits.
-    """
-    start, end = xyb[:, :2], np.roll(xyb[:, :2], -1, axis=0)
-    chord, middle = end - start, (start + end) / 2.0
-    h = 2.0 * np.arctan(np.where(np.abs(xyb[:, 2]) < STRAIGHT, 0.0, xyb[:, 2]))[:, None]
-    phi = h * _NODES
-    straight = h == 0.0
-    sine = np.where(straight, 1.0, np.sin(h))
-    along = np.where(straight, _NODES, np.sin(phi) / sine) / 2.0
-    lift = np.where(straight, 0.0, np.sin((h + phi) / 2.0) * np.sin((h - phi) / 2.0) / sine)
-    speed = np.where(straight, 1.0, h / sine)
-    # an arc of positive bulge lies right of its chord
-    x = middle[:, :1] + chord[:, :1] * along + chord[:, 1:] * lift
-    y = middle[:, 1:] + chord[:, 1:] * along - chord[:, :1] * lift
-    return x, y, speed * (chord[:, 1:] * np.cos(phi) + chord[:, :1] * np.sin(phi))
+    return float(np.sum(segments(xyb, closed=closed).length))
 
 
 def bounds(xyb: Floats, *, closed: bool) -> tuple[float, float, float, float]:
     """Least box (x0, y0, x1, y1) of the true curve, mm: arcs reach their quadrant points."""
     if closed and len(xyb) == 2 and abs(xyb[0, 2]) == abs(xyb[1, 2]) == 1.0:
-        return _circle_bounds(xyb)
-    lo, hi = xyb[:, :2].min(axis=0), xyb[:, :2].max(axis=0)
+        return circle_bounds(xyb)
     if xyb[:, 2].any():
-        seg = segments(xyb, closed=closed)
-        k = seg.is_arc
-        for quarter, (ux, uy) in enumerate(((1, 0), (0, 1), (-1, 0), (0, -1))):
-            turned = np.mod((quarter * np.pi / 2 - seg.angle[k]) * np.sign(seg.sweep[k]), 2 * np.pi)
-            hit = turned <= np.abs(seg.sweep[k])
-            if hit.any():
-                p = seg.centre[k][hit] + seg.radius[k][hit, None] * np.array([ux, uy], dtype=np.float64)
-                lo, hi = np.minimum(lo, p.min(axis=0)), np.maximum(hi, p.max(axis=0))
+        reach = segments(xyb, closed=closed).boxes
+        lo, hi = reach[:, :2].min(axis=0), reach[:, 2:].max(axis=0)
+    else:
+        lo, hi = xyb[:, :2].min(axis=0), xyb[:, :2].max(axis=0)
     return float(lo[0]), float(lo[1]), float(hi[0]), float(hi[1])
 
 
-def _circle_bounds(xyb: Floats) -> tuple[float, float, float, float]:
+def circle_bounds(xyb: Floats) -> tuple[float, float, float, float]:
+    """Least box of a full circle of two half circles."""
     (x0, y0, _), (x1, y1, _) = xyb.tolist()
     x, y, r = (x0 + x1) / 2.0, (y0 + y1) / 2.0, hypot(x1 - x0, y1 - y0) / 2.0
     return x - r, y - r, x + r, y + r
@@ -353,19 +278,28 @@ def points_along(xyb: Floats, *, closed: bool, chord_mm: float) -> Floats:
     if not xyb[:, 2].any():
         return xyb[:, :2].copy()
     seg = segments(xyb, closed=closed)
-    ratio = np.clip(1.0 - chord_mm / np.where(seg.is_arc, seg.radius, 1.0), -1.0, 1.0)
-    step = np.maximum(2.0 * np.arccos(ratio), 1e-4)
-    counts = np.where(seg.is_arc, np.maximum(1, np.ceil(np.abs(seg.sweep) / step - 1e-9)), 1).astype(np.int64)
+    counts = chord_counts(seg, chord_mm)
     if closed and counts.sum() < 3:
         counts[seg.is_arc] *= 2
+    out = chord_starts(seg, counts)[0]
+    return out if closed else np.vstack([out, xyb[-1:, :2]])
+
+
+def chord_counts(seg: Segments, chord_mm: float) -> Ints:
+    """How many chords each segment needs so that none is further than `chord_mm` from its arc, shape (n,)."""
+    ratio = np.clip(1.0 - chord_mm / np.where(seg.is_arc, seg.radius, 1.0), -1.0, 1.0)
+    step = np.maximum(2.0 * np.arccos(ratio), 1e-4)
+    return np.where(seg.is_arc, np.maximum(1, np.ceil(np.abs(seg.sweep) / step - 1e-9)), 1).astype(np.intp)
+
+
+def chord_starts(seg: Segments, counts: Ints) -> tuple[Floats, Ints]:
+    """Where the chords of segments begin, so many of each, shape (m, 2), and the segment that each stands for."""
     which = np.repeat(np.arange(len(seg)), counts)
     offset = np.arange(len(which)) - np.repeat(np.cumsum(counts) - counts, counts)
-    t = offset / counts[which]
-    angle = seg.angle[which] + seg.sweep[which] * t
-    radius = np.where(seg.is_arc, seg.radius, 0.0)[which]
-    out = np.column_stack(
-        [seg.centre[which, 0] + radius * np.cos(angle), seg.centre[which, 1] + radius * np.sin(angle)]
-    )
-    first = offset == 0
-    out[first] = seg.start[which[first]]
-    return out if closed else np.vstack([out, xyb[-1:, :2]])
+    out = seg.start[which]
+    inner = np.flatnonzero(offset)
+    arc = which[inner]
+    angle = seg.angle[arc] + seg.sweep[arc] * (offset[inner] / counts[arc])
+    out[inner, 0] = seg.centre[arc, 0] + seg.radius[arc] * np.cos(angle)
+    out[inner, 1] = seg.centre[arc, 1] + seg.radius[arc] * np.sin(angle)
+    return out, which

@@ -8,7 +8,7 @@ import numpy as np
 import numpy.typing as npt
 import shapely
 
-from flatprep.geom.bulge import Floats, segments
+from flatprep.geom.bulge import Floats, boxes, segments
 
 NO_RISE_MM = 1e-7
 """An arc that rises no higher over its chord is a line."""
@@ -85,15 +85,7 @@ class Boundary:
     @cached_property
     def boxes(self) -> Floats:
         """Least boxes x0, y0, x1, y1 of the edges, arcs as they run, shape (n, 4)."""
-        lo, hi = np.minimum(self.start, self.end), np.maximum(self.start, self.end)
-        k = np.nonzero(self.is_arc)[0]
-        sign = np.sign(self.sweep[k])
-        for quarter, (ux, uy) in enumerate(((1, 0), (0, 1), (-1, 0), (0, -1))):
-            reached = np.mod((quarter * np.pi / 2 - self.angle[k]) * sign, 2 * np.pi) <= np.abs(self.sweep[k])
-            rows = k[reached]
-            far = self.centre[rows] + self.radius[rows, None] * np.array([ux, uy], dtype=np.float64)
-            lo[rows], hi[rows] = np.minimum(lo[rows], far), np.maximum(hi[rows], far)
-        return np.hstack([lo, hi])
+        return boxes(self.start, self.end, self.centre, self.radius, self.angle, self.sweep)
 
     @cached_property
     def tree(self) -> shapely.STRtree:

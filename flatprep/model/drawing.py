@@ -1,11 +1,14 @@
 """What a drawing holds once it is read: curves, contours, parts, and what was noticed on the way."""
 
+from collections.abc import Sequence
 from dataclasses import dataclass, field
 from enum import StrEnum
 from functools import cached_property
 
 from flatprep.geom import bulge
-from flatprep.geom.bulge import Floats, Moments
+from flatprep.geom.bulge import Floats
+from flatprep.geom.moments import Moments, region_moments
+from flatprep.geom.rings import Rings
 
 
 class Role(StrEnum):
@@ -49,6 +52,10 @@ class Curve:
     color: int = 7
 
 
+_EITHER_WAY = ("area_mm2", "length_mm", "bounds", "circle")
+"""What is the same whichever way a contour runs."""
+
+
 @dataclass(frozen=True, eq=False)
 class Contour:
     """A closed chain in mm.
@@ -88,9 +95,28 @@ class Contour:
         return bulge.as_circle(self.xyb)
 
     @property
+    def reversed(self) -> "Contour":
+        """The contour run the other way, with what is known of it; it starts at the same vertex."""
+        # the first segment becomes the last
+        out = Contour(bulge.reverse(self.xyb, closed=True), self.handles[::-1], self.layers)
+        vars(out).update({k: v for k, v in vars(self).items() if k in _EITHER_WAY})
+        return out
+
+    @property
     def distinct_handles(self) -> tuple[str, ...]:
         """The handles without repeats, in order."""
         return tuple(dict.fromkeys(h for h in self.handles if h))
+
+
+def measure(contours: Sequence[Contour]) -> Floats:
+    """Work out area, length and box of many contours at once, and return their signed areas, shape (n,), mm²."""
+    rings = Rings.of([c.xyb for c in contours])
+    areas = rings.signed_areas
+    columns = zip(contours, areas.tolist(), rings.lengths.tolist(), rings.bounds.tolist(), strict=True)
+    for contour, area, length, box in columns:
+        # what is worked out once is kept where the properties keep it
+        vars(contour).update(area_mm2=abs(area), length_mm=length, bounds=tuple(box))
+    return areas
 
 
 @dataclass(frozen=True, eq=False)
@@ -124,10 +150,7 @@ class Part:
     @cached_property
     def moments(self) -> Moments:
         """Area moments of the material about the drawing's origin, on the exact arcs."""
-        total = bulge.moments(self.outer.xyb)
-        for hole in self.holes:
-            total = total + -bulge.moments(hole.xyb)
-        return total
+        return region_moments(self.outer.xyb, [hole.xyb for hole in self.holes])
 
     @property
     def area_mm2(self) -> float:
