@@ -1,12 +1,12 @@
 """Open curves chained into closed contours where just two ends meet at every point."""
 
-from collections import defaultdict
 from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
 
-from flatprep.drawing.ends import SAME_POINT_MM, Ints, dangling_pairs, node_ids
+from flatprep.drawing.ends import SAME_POINT_MM, Ints, dangling_pairs, groups, node_ids
+from flatprep.drawing.walk import Laid, Walk, walks
 from flatprep.geom import bulge
 from flatprep.geom.bulge import Floats
 from flatprep.model.drawing import Contour, Curve
@@ -68,18 +68,36 @@ def chain(curves: Sequence[Curve], join_mm: float) -> Chained:
     open_curves = [c for c in curves if not c.closed]
     if not open_curves:
         return Chained(tuple(rings), (), ())
-    ends = np.array([p for c in open_curves for p in (c.xyb[0, :2], c.xyb[-1, :2])])
-    nodes = node_ids(ends, lambda i: bulge.length(open_curves[i].xyb, closed=False), join_mm)
-    degree = np.bincount(nodes)
-    loose: list[Chain] = []
-    branched: list[Curve] = []
-    for members in _components(nodes):
-        if max(degree[nodes[2 * i]] for i in members) > 2 or max(degree[nodes[2 * i + 1]] for i in members) > 2:
-            branched += [open_curves[i] for i in members]
-            continue
-        walked = _walk(members, open_curves, nodes)
-        (rings if walked.closed else loose).append(walked)
-    return Chained(tuple(rings), tuple(loose), tuple(branched), _joined(ends, nodes))
+    laid = Laid.of([c.xyb for c in open_curves])
+    nodes = node_ids(laid.ends, lambda i: bulge.length(open_curves[i].xyb, closed=False), join_mm)
+    tangled = _tangled(nodes)
+    plain = np.ones(len(open_curves), dtype=bool)
+    plain[tangled] = False
+    ways = list(walks(np.flatnonzero(plain).tolist(), nodes))
+    chains = [_chain(way, xyb, open_curves) for way, xyb in zip(ways, laid.along(ways), strict=True)]
+    rings += [c for c in chains if c.closed]
+    loose = [c for c in chains if not c.closed]
+    branched = [open_curves[i] for i in tangled.tolist()]
+    return Chained(tuple(rings), tuple(loose), tuple(branched), _joined(laid.ends, nodes))
+
+
+def _chain(way: Walk, xyb: Floats, curves: Sequence[Curve]) -> Chain:
+    members = [curves[i] for i in way.curves]
+    handles = tuple(c.handle for c in members for _ in range(len(c.xyb) - 1))
+    layers = tuple(sorted({c.layer for c in members}))
+    return Chain(xyb, handles, layers, way.closed, pieces=len(members))
+
+
+def _tangled(nodes: Ints) -> Ints:
+    """Curves that hang together with a point where more than two ends meet: net by net, in order in each."""
+    branches = np.bincount(nodes) > 2
+    if not branches.any():
+        return np.empty(0, dtype=np.int64)
+    net = groups(len(branches), nodes[0::2], nodes[1::2])
+    own = net[nodes[0::2]]
+    rows = np.flatnonzero(np.isin(own, net[branches]))
+    first = np.unique(own, return_index=True)[1]
+    return rows[np.lexsort((rows, first[own[rows]]))]
 
 
 def bridge(chains: Sequence[Chain], reach_mm: float) -> tuple[list[Chain], list[Chain]]:
@@ -162,65 +180,3 @@ def _reversed(c: Chain) -> Chain:
 
 def _ring_of(c: Curve) -> Chain:
     return Chain(c.xyb, (c.handle,) * len(c.xyb), (c.layer,), closed=True)
-
-
-def _components(nodes: Ints) -> list[list[int]]:
-    """Curves that hang together, each list ascending, in order of their first curve."""
-    at_node = defaultdict(list)
-    for end, node in enumerate(nodes.tolist()):
-        at_node[node].append(end // 2)
-    seen: set[int] = set()
-    out = []
-    for first in range(len(nodes) // 2):
-        if first in seen:
-            continue
-        seen.add(first)
-        members, todo = [], [first]
-        while todo:
-            i = todo.pop()
-            members.append(i)
-            for end in (2 * i, 2 * i + 1):
-                fresh = [j for j in at_node[int(nodes[end])] if j not in seen]
-                seen.update(fresh)
-                todo += fresh
-        out.append(sorted(members))
-    return out
-
-
-def _walk(members: list[int], curves: Sequence[Curve], nodes: Ints) -> Chain:
-    """Run through a component in which no node has more than two ends."""
-    at_node = defaultdict(list)
-    for i in members:
-        at_node[int(nodes[2 * i])].append(2 * i)
-        at_node[int(nodes[2 * i + 1])].append(2 * i + 1)
-    dangling = [ends[0] for _, ends in sorted(at_node.items()) if len(ends) == 1]
-    at = dangling[0] if dangling else 2 * members[0]
-    pieces: list[Floats] = []
-    handles: list[str] = []
-    layers: set[str] = set()
-    left = set(members)
-    while at // 2 in left:
-        i = at // 2
-        left.remove(i)
-        xyb = curves[i].xyb if at % 2 == 0 else bulge.reverse(curves[i].xyb, closed=False)
-        pieces.append(xyb)
-        handles += [curves[i].handle] * (len(xyb) - 1)
-        layers.add(curves[i].layer)
-        onward = [e for e in at_node[int(nodes[at ^ 1])] if e // 2 in left]
-        if not onward:
-            break
-        at = onward[0]
-    closed = not dangling
-    return Chain(_end_to_end(pieces, closed=closed), tuple(handles), tuple(sorted(layers)), closed, (), len(members))
-
-
-def _end_to_end(pieces: Sequence[Floats], *, closed: bool) -> Floats:
-    """One polyline out of pieces that follow each other; they meet midway, whichever of them was drawn first."""
-    body = np.vstack([p[:-1] for p in pieces] + ([] if closed else [pieces[-1][-1:]]))
-    first = np.cumsum([0, *(len(p) - 1 for p in pieces[:-1])])
-    ends = np.array([p[-1, :2] for p in pieces])
-    if closed:
-        body[first, :2] = (body[first, :2] + np.roll(ends, 1, axis=0)) / 2.0
-    else:
-        body[first[1:], :2] = (body[first[1:], :2] + ends[:-1]) / 2.0
-    return body

@@ -1,6 +1,6 @@
 """Which ends of open curves are one point."""
 
-from collections.abc import Callable, Iterable
+from collections.abc import Callable
 
 import numpy as np
 import numpy.typing as npt
@@ -33,62 +33,52 @@ def node_ids(ends: Floats, length_mm: Callable[[int], float], join_mm: float) ->
     ndarray, shape (n,)
         Node of each end, numbered from 0.
     """
-    groups = _Groups(len(ends))
-    for i, j, _ in _near_pairs(ends, min(SAME_POINT_MM, join_mm)):
-        groups.join(i, j)
-    _join_dangling(groups, ends, length_mm, join_mm)
-    return groups.numbered()
+    a, b, _ = _near_pairs(ends, min(SAME_POINT_MM, join_mm))
+    nodes = groups(len(ends), a, b)
+    alone = np.flatnonzero(np.bincount(nodes)[nodes] == 1)
+    joined = [
+        (i, j)
+        for i, j, gap in dangling_pairs(ends, alone, join_mm)
+        if i // 2 != j // 2 or length_mm(i // 2) >= 4.0 * gap  # else it is a stray dash
+    ]
+    if not joined:
+        return nodes
+    i, j = np.array(joined, dtype=np.int64).T
+    return groups(len(ends), np.concatenate([a, i]), np.concatenate([b, j]))
 
 
 def dangling_pairs(ends: Floats, dangling: Ints, reach_mm: float) -> list[tuple[int, int, float]]:
     """Pairs of dangling ends (indices into `ends`) within `reach_mm`, nearest first, each end once."""
     taken: set[int] = set()
     pairs = []
-    for a, b, gap in _near_pairs(ends[dangling], reach_mm):
-        i, j = int(dangling[a]), int(dangling[b])
+    a, b, gaps = _near_pairs(ends[dangling], reach_mm)
+    for i, j, gap in zip(dangling[a].tolist(), dangling[b].tolist(), gaps.tolist(), strict=True):
         if i not in taken and j not in taken:
             taken |= {i, j}
             pairs.append((i, j, gap))
     return pairs
 
 
-def _join_dangling(groups: "_Groups", ends: Floats, length_mm: Callable[[int], float], join_mm: float) -> None:
-    ids = groups.numbered()
-    alone = np.flatnonzero(np.bincount(ids)[ids] == 1)
-    for i, j, gap in dangling_pairs(ends, alone, join_mm):
-        stray_dash = i // 2 == j // 2 and length_mm(i // 2) < 4.0 * gap
-        if not stray_dash:
-            groups.join(i, j)
-
-
-def _near_pairs(xy: Floats, reach: float) -> Iterable[tuple[int, int, float]]:
+def _near_pairs(xy: Floats, reach: float) -> tuple[Ints, Ints, Floats]:
+    """Pairs of points within `reach`, the nearest first, with their distances."""
     if len(xy) < 2:
-        return []
+        return np.empty(0, dtype=np.int64), np.empty(0, dtype=np.int64), np.empty(0)
     shapes = points(xy)
     a, b = STRtree(shapes).query(shapes, predicate="dwithin", distance=reach)
     first = a < b
     a, b = a[first], b[first]
     gap = np.hypot(*(xy[a] - xy[b]).T)
     order = np.lexsort((b, a, gap))
-    return list(zip(a[order].tolist(), b[order].tolist(), gap[order].tolist(), strict=True))
+    return a[order], b[order], gap[order]
 
 
-class _Groups:
-    """Disjoint sets."""
-
-    def __init__(self, size: int) -> None:
-        self._parent = list(range(size))
-
-    def root(self, i: int) -> int:
-        while self._parent[i] != i:
-            self._parent[i] = self._parent[self._parent[i]]
-            i = self._parent[i]
-        return i
-
-    def join(self, i: int, j: int) -> None:
-        a, b = self.root(i), self.root(j)
-        self._parent[max(a, b)] = min(a, b)
-
-    def numbered(self) -> Ints:
-        roots = np.array([self.root(i) for i in range(len(self._parent))], dtype=np.int64)
-        return np.unique(roots, return_inverse=True)[1].astype(np.int64)
+def groups(size: int, a: Ints, b: Ints) -> Ints:
+    """Give what hangs together by the pairs a, b the same number, in order of the first members."""
+    least = np.arange(size)
+    while True:
+        low = np.minimum(least[a], least[b])
+        if np.array_equal(least[a], low) and np.array_equal(least[b], low):
+            return np.unique(least, return_inverse=True)[1].astype(np.int64)
+        np.minimum.at(least, a, low)
+        np.minimum.at(least, b, low)
+        least = least[least]

@@ -1,6 +1,7 @@
 """Entities without length and entities drawn twice: taken out before chaining, and told."""
 
-from collections.abc import Sequence
+from collections import Counter
+from collections.abc import Iterator, Sequence
 
 import numpy as np
 
@@ -63,27 +64,31 @@ def _spreads(polylines: Sequence[Floats]) -> Floats:
 
 def _without_doubles(curves: Sequence[Curve], tol: float) -> tuple[list[Curve], list[Curve]]:
     """Split off open curves whose ends and middle coincide with an earlier one's, whichever way they run."""
-    kept: list[Curve] = []
-    doubles: list[Curve] = []
-    signs = _signatures([c.xyb for c in curves if not c.closed])
-    # two grids, half a cell apart: neighbours share a cell of the one or the other in every coordinate but few
-    cells = [np.floor(signs / (64 * tol) + grid / 2.0) for grid in (0, 1)]
-    number = -1
+    lines = [k for k, c in enumerate(curves) if not c.closed]
+    signs = _signatures([curves[k].xyb for k in lines])
+    doubles: set[int] = set()
     seen: dict[bytes, list[Floats]] = {}
-    for curve in curves:
-        if curve.closed:
-            kept.append(curve)
-            continue
-        number += 1
+    for number, keys in _neighbours(signs, tol):
         sign = signs[number]
-        keys = [bytes([grid]) + rows[number].tobytes() for grid, rows in enumerate(cells)]
         if any(np.abs(other - sign).max() <= tol for key in keys for other in seen.get(key, ())):
-            doubles.append(curve)
+            doubles.add(lines[number])
             continue
-        kept.append(curve)
         for key in keys:
             seen.setdefault(key, []).append(sign)
-    return kept, doubles
+    return [c for k, c in enumerate(curves) if k not in doubles], [curves[k] for k in sorted(doubles)]
+
+
+def _neighbours(signs: Floats, tol: float) -> Iterator[tuple[int, tuple[bytes, bytes]]]:
+    """Yield the rows that share a cell of a grid with another row, each with its cells.
+
+    Of two grids, half a cell apart: neighbours share a cell of the one or the other in every coordinate but few.
+    """
+    cells = [np.floor(signs / (64 * tol) + grid / 2.0) for grid in (0, 1)]
+    names = [rows.view(f"V{rows.dtype.itemsize * rows.shape[1]}").ravel().tolist() for rows in cells]
+    crowded = [Counter(column) for column in names]
+    for number, (first, second) in enumerate(zip(*names, strict=True)):
+        if crowded[0][first] > 1 or crowded[1][second] > 1:
+            yield number, (b"0" + first, b"1" + second)
 
 
 def _signatures(polylines: Sequence[Floats]) -> Floats:
