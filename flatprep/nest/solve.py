@@ -36,6 +36,8 @@ SEARCH_SHARE = 0.95
 """Share of what is then left for the search, where cheaper sheets are looked at after it."""
 ACROSS_SHARE = 0.05
 """So much more length, or cost, is taken into the bargain where all bends then lie across the grain."""
+TICK_S = 0.5
+"""The time that is left is told as often."""
 ENDING_S = 0.3
 """Kept back for the end."""
 
@@ -79,7 +81,8 @@ def nest(
     """
     if ask.spacing_mm < 0.0 or ask.margin_mm < 0.0:
         raise ValueError("spacing and margin must not be negative")
-    job = _Job(ask, stop, _Reporter(progress, on_better))
+    reporter = _Reporter(progress, on_better, None if budget.steps is not None else budget.seconds)
+    job = _Job(ask, reporter.watched(stop), reporter)
     with compiling(progress) as compiler:
         job.lay_first(budget, compiler)
         job.improve(budget, compiler)
@@ -88,20 +91,45 @@ def nest(
 
 
 class _Reporter:
-    """Tells of better layouts: a line for people, the layout for whoever asked for it."""
+    """Tells of better layouts: a line for people, the layout for whoever asked for it.
 
-    def __init__(self, progress: Progress, on_better: Callable[[Layout], None] | None) -> None:
+    Parameters
+    ----------
+    seconds
+        Wall time that there is; None where it does not count.
+    """
+
+    def __init__(
+        self, progress: Progress, on_better: Callable[[Layout], None] | None, seconds: float | None = None
+    ) -> None:
         self.progress, self._on_better = progress, on_better
-        self._started = time.monotonic()
+        self._started = self._said = time.monotonic()
+        self._seconds, self._words = seconds, ""
 
     def tell(self, layout: Layout) -> None:
         """Tell of a layout."""
         used = len(layout.sheets)
         last = f", the last used to {layout.sheets[-1].used_length_mm:.0f} mm" if used else ""
-        elapsed = time.monotonic() - self._started
-        self.progress.update(f"{used} sheet{'s' if used != 1 else ''}{last}", done=elapsed)
+        self._words = f"{used} sheet{'s' if used != 1 else ''}{last}"
+        self._say()
         if self._on_better is not None:
             self._on_better(layout)
+
+    def watched(self, stop: Callable[[], bool]) -> Callable[[], bool]:
+        """Return a stop that, whenever it is asked, also keeps the time that is left on the screen."""
+
+        def asked() -> bool:
+            if self._words and time.monotonic() > self._said + TICK_S:
+                self._say()
+            return stop()
+
+        return asked
+
+    def _say(self) -> None:
+        self._said = time.monotonic()
+        elapsed = self._said - self._started
+        left = "" if self._seconds is None else f", {max(self._seconds - elapsed, 0.0):.0f} s left"
+        self.progress.update(self._words + left, done=elapsed)
 
 
 class _Job:

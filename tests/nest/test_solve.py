@@ -184,3 +184,26 @@ def test_quantity_nought_is_passed_over():
 def test_part_far_from_its_origin_lands_on_the_sheet():
     layout = solved(ask([item(rectangle("far", 50.0, 30.0, x=1e5, y=-2e5), 3)], [sheet()], 1.0, 1.0))
     assert names(layout) == {"far": 3}
+
+
+class Line:
+    """A progress that keeps what it is told."""
+
+    def __init__(self):
+        self.said = []
+
+    def update(self, what, *, done=None, total=None):
+        self.said.append(what)
+
+
+def test_progress_tells_the_time_that_is_left_where_time_counts():
+    question = ask([item(hook("hook", 70.0, 50.0, 12.0), 14)], [sheet(None, 150.0)], 2.0, 4.0)
+    timed, counted = Line(), Line()
+    solved(question, Budget(seconds=3.0), progress=timed)
+    left = [int(line.split(", ")[-1].removesuffix(" s left")) for line in timed.said if "left" in line]
+    assert len(left) > 1
+    assert left == sorted(left, reverse=True)
+    assert left[0] <= 3
+    assert all(line.startswith("1 sheet, the last used to ") for line in timed.said if "left" in line)
+    solved(question, FEW, progress=counted)
+    assert not [line for line in counted.said if "left" in line]
