@@ -9,7 +9,7 @@ from pathlib import Path
 from flatprep import __version__
 from flatprep.api.nest import Nested, OnBetter, Stop, nest_job, never
 from flatprep.api.pieces import Piece, ReadJob, quantity, revision
-from flatprep.api.sheets import layout_files, make_layout_folders
+from flatprep.api.sheets import layout_files, make_layout_folders, rests_of
 from flatprep.api.work import checklist_job, estimate_job
 from flatprep.base.files import make_folder, write_together
 from flatprep.base.manifest import with_manifest
@@ -22,7 +22,7 @@ from flatprep.model.finding import Finding
 from flatprep.model.layout import Layout
 from flatprep.model.linted import Linted
 from flatprep.model.work import Checklist
-from flatprep.nest.offcut import offcut_of
+from flatprep.nest.offcut import Offcut as Rest
 from flatprep.nest.problem import Budget
 from flatprep.report.bundle import Bundle, Offcut, PartCard, SearchPoint
 from flatprep.report.checklist_csv import checklist_csv
@@ -37,13 +37,14 @@ from flatprep.report.tables_csv import findings_csv, parts_csv, sheets_csv
 
 @dataclass(frozen=True, slots=True)
 class Prepared:
-    """All results of a job."""
+    """All results of a job; `rests` are what is left of each sheet, None where nothing worth keeping is."""
 
     read: ReadJob
     checklist: Checklist
     estimate: Estimate
     nested: Nested | None
     bundle: Bundle
+    rests: tuple[Rest | None, ...] = ()
 
     @property
     def loud(self) -> bool:
@@ -86,7 +87,9 @@ def prepare_job(
         nested = nest_job(read, budget, progress=progress, on_better=better, stop=stop)
         read = nested.read
     money = estimate_job(read, nested.layout if nested else None)
-    return Prepared(read, steps, money, nested, _bundle(read, steps, money, nested, points))
+    rests = rests_of(nested) if nested else ()
+    bundle = replace(_bundle(read, steps, money, nested, points), offcuts=_offcuts(rests))
+    return Prepared(read, steps, money, nested, bundle, rests)
 
 
 def write_prepared(done: Prepared, folder: Path) -> None:
@@ -106,7 +109,7 @@ def write_prepared(done: Prepared, folder: Path) -> None:
 def _files(done: Prepared, folder: Path) -> Iterator[tuple[Path, str | None]]:
     """Yield every file with its text; report.html comes last."""
     if done.nested:
-        yield from layout_files(done.nested, folder)
+        yield from layout_files(done.nested, folder, done.rests)
     documents = {
         "lint.json": lint_document(done.read.report),
         "checklist.json": checklist_document(done.checklist),
@@ -161,16 +164,13 @@ def _bundle(
         assumed=(*read.report.notes, *((*nested.warnings, *nested.notes) if nested else ())),
         cautions=steps.cautions,
         search=tuple(points),
-        offcuts=_offcuts(nested) if nested else (),
         version=__version__,
     )
 
 
-def _offcuts(nested: Nested) -> tuple[Offcut, ...]:
+def _offcuts(rests: Sequence[Rest | None]) -> tuple[Offcut, ...]:
     """Return the largest usable rectangle left of each sheet that has one."""
-    parts = {piece.name: piece.part for piece in nested.read.pieces}
-    rests = ((n, offcut_of(sheet, parts, nested.layout.spacing_mm)) for n, sheet in enumerate(nested.layout.sheets, 1))
-    return tuple(Offcut(number, *rest.rectangle) for number, rest in rests if rest is not None)
+    return tuple(Offcut(number, *rest.rectangle) for number, rest in enumerate(rests, start=1) if rest is not None)
 
 
 def _card(read: ReadJob, piece: Piece, steps: Checklist, money: Estimate) -> PartCard:

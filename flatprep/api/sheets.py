@@ -54,8 +54,22 @@ def make_layout_folders(nested: Nested, folder: Path) -> None:
         make_folder(folder / "parts")
 
 
-def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | None]]:
-    """Yield the files of a layout with their text, layout.json last; None where an older sheet is to go."""
+def rests_of(nested: Nested) -> tuple[Offcut | None, ...]:
+    """Return the usable rest of each sheet, None where nothing worth keeping is left."""
+    parts = {piece.name: piece.part for piece in nested.read.pieces}
+    return tuple(offcut_of(sheet, parts, nested.layout.spacing_mm) for sheet in nested.layout.sheets)
+
+
+def layout_files(
+    nested: Nested, folder: Path, rests: Sequence[Offcut | None] | None = None
+) -> Iterator[tuple[Path, str | None]]:
+    """Yield the files of a layout with their text, layout.json last; None where an older sheet is to go.
+
+    Parameters
+    ----------
+    rests
+        Of `rests_of`, where they are known already.
+    """
     job, pieces, sheets = nested.read.job, nested.read.pieces, nested.layout.sheets
     copies = _copy_names(pieces)
     for piece in pieces:
@@ -66,7 +80,8 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
     title = (job.name, f"revision {job.revision}") if job.revision else (job.name,)
     origin = _origin(job)
     known = {piece.name: _identity(job, piece) for piece in pieces}
-    for number, sheet in enumerate(sheets, start=1):
+    rests = rests_of(nested) if rests is None else rests
+    for number, (sheet, rest) in enumerate(zip(sheets, rests, strict=True), start=1):
         stem = sheet_name(number)
         words = Words((*title, f"sheet {number}"), known, nested.etched)
         yield folder / f"{stem}.dxf", sheet_drawing(sheet, parts, words=words, tabs=tabs)
@@ -79,7 +94,6 @@ def layout_files(nested: Nested, folder: Path) -> Iterator[tuple[Path, str | Non
         gaps = tabs_drawing(sheet, nested.read, tabs)
         if gaps is not None or (folder / f"{stem}-tabs.dxf").exists():
             yield folder / f"{stem}-tabs.dxf", gaps
-        rest = offcut_of(sheet, parts, nested.layout.spacing_mm)
         stock = origin.stock.get(sheet.stock, StockSource())
         extras = Extras(
             job.units, rest.rectangle if rest else None, tabs, known, nested.etched, stock.margins_mm, stock.keep_out

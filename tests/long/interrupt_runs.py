@@ -6,7 +6,8 @@ SIGKILL: every file in the folder is whole afterwards (JSON parses, DXF ends wit
 worker outlives the run by more than a second. SIGINT and SIGTERM: the run ends within `--patience` seconds with status
 130 or 143, or with its usual one when it was done by then; nothing is half written; a layout that is there passes the
 verifier. Every run uses one or two processes; the moments are spread over the time of a run that is left alone. The
-last line sums up, with the load of the machine (processes that want a processor, mean of the last minute).
+last line sums up, with the load of the machine (processes that want a processor, mean of the last minute) and the most
+processor time that a run took after it was asked to end, which does not depend on that load (on Linux; else 0).
 """
 
 import argparse
@@ -17,6 +18,7 @@ import subprocess
 import sys
 import tempfile
 import time
+from contextlib import suppress
 from dataclasses import dataclass, field
 from pathlib import Path
 
@@ -39,6 +41,7 @@ class Outcome:
     stops: int = 0
     layouts: int = 0
     slowest_s: float = 0.0
+    most_cpu_s: float = 0.0
     half: list[str] = field(default_factory=list)
     late: list[str] = field(default_factory=list)
     unsound: list[str] = field(default_factory=list)
@@ -62,14 +65,34 @@ class Run:
 
     def end(self, number: signal.Signals, outcome: Outcome, patience_s: float) -> str:
         """Send a signal, wait for the end of the run and of its workers."""
-        asked = time.monotonic()
+        waited, asked, spent = waited_cpu_s(), time.monotonic(), cpu_s(self.process.pid)
         self.process.send_signal(number)
         _, err = self.process.communicate(timeout=120)
         took = time.monotonic() - asked
         outcome.slowest_s = max(outcome.slowest_s, took)
+        if spent is not None and number is not signal.SIGKILL:  # which workers outlive: who waits for them is unknown
+            outcome.most_cpu_s = max(outcome.most_cpu_s, waited_cpu_s() - waited - spent)
         if took > patience_s:
             outcome.late.append(f"{self.name} {number.name}: {took:.1f} s")
         return err
+
+
+def waited_cpu_s() -> float:
+    """Processor time of all processes that this one has waited for, and of those that they have waited for."""
+    used = os.times()
+    return used.children_user + used.children_system
+
+
+def cpu_s(pid: int) -> float | None:
+    """Processor time of a process so far, its children's included; None where the system does not tell."""
+    found: dict[int, tuple[int, float]] = {}
+    for stat in Path("/proc").glob("[0-9]*/stat"):
+        with suppress(OSError):  # ended meanwhile
+            fields = stat.read_text().rpartition(")")[2].split()
+            found[int(stat.parent.name)] = int(fields[1]), sum(map(int, fields[11:15])) / os.sysconf("SC_CLK_TCK")
+    if pid not in found:
+        return None
+    return found[pid][1] + sum(used for parent, used in found.values() if parent == pid)
 
 
 def time_alone(folder: Path) -> float:
@@ -125,7 +148,8 @@ def main() -> None:
         for line in getattr(outcome, name)[:10]:
             print(f"{name}: {line}")
     print(
-        f"{outcome.kills} kills, {outcome.stops} stops, slowest end {outcome.slowest_s:.1f} s, "
+        f"{outcome.kills} kills, {outcome.stops} stops, slowest end {outcome.slowest_s:.1f} s, most processor time "
+        f"after a stop {outcome.most_cpu_s:.1f} s, "
         f"{outcome.layouts} layouts verified: {len(outcome.half)} half-written files, {len(outcome.late)} late, "
         f"{len(outcome.unsound)} faults in layouts, {len(outcome.odd)} odd ends; load {os.getloadavg()[0]:.1f}"
     )
