@@ -21,6 +21,7 @@ from flatprep.drawing.words import Etched
 from flatprep.geom.bulge import Floats
 from flatprep.job.values import Job, Stock
 from flatprep.model.layout import Layout
+from flatprep.nest.first_article import late_kinds, nest_first_articles
 from flatprep.nest.problem import Budget, Item, KeptSheet, NestAsk, StockSheet
 from flatprep.nest.solve import nest
 
@@ -90,11 +91,13 @@ def nest_job(
     ask = nest_ask(read_job)
     if keep is not None:
         ask = replace(ask, keep=tuple(KeptSheet(s.stock, s.placements) for s in keep.sheets if s.placements))
-    layout = nest(ask, budget, progress or Silent(), on_better, stop)
+    lay = nest_first_articles if read_job.job.first_article else nest
+    layout = lay(ask, budget, progress or Silent(), on_better, stop)
     layout = replace(layout, unplaced=(*layout.unplaced, *read_job.lost))
     warnings = (*spacing_warnings(read_job.job), *tab_warnings(read_job), *grain_warnings(ask), *shelf.warnings)
     labels = etched_labels(read_job, layout)
     notes = (*shelf.notes, *tab_notes(read_job), *grain_notes(read_job, ask, layout), *labels.notes)
+    notes += late_articles(layout, ask) if read_job.job.first_article else ()
     return Nested(read_job, layout, ask, warnings, notes, etched=labels.etched)
 
 
@@ -110,6 +113,14 @@ def nest_ask(read_job: ReadJob) -> NestAsk:
     items = tuple(_item(job, piece) for piece in read_job.pieces)
     stock = tuple(_sheet(job, one) for one in job.stock)
     return NestAsk(items, stock, job.spacing_mm, job.margin_mm, windows)
+
+
+def late_articles(layout: Layout, ask: NestAsk) -> tuple[str, ...]:
+    """Say which first articles are not on the first sheet of their material."""
+    late = [f"{name}{' (turned over)' if over else ''}" for name, over in late_kinds(layout, ask)]
+    if not late:
+        return ()
+    return (f"first articles that find no place on the first sheet without more stock: {', '.join(late)}",)
 
 
 def spacing_warnings(job: Job) -> tuple[str, ...]:

@@ -141,6 +141,7 @@ def _sheet(data: Any) -> SheetLayout:
                 bool(p["mirrored"]),
                 float(p["dx"]),
                 float(p["dy"]),
+                bool(p.get("first_article", False)),
             )
             for p in data["placements"]
         ),

@@ -13,7 +13,14 @@ from flatprep.base.errors import ExitStatus
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, read_drawings, say_of_nest
-from flatprep.cli.options import etch_option, other_forms, output_format, rack_option, said_about_parts, search_budget
+from flatprep.cli.options import (
+    cutting_wishes,
+    other_forms,
+    output_format,
+    rack_option,
+    said_about_parts,
+    search_budget,
+)
 from flatprep.cli.progress import progress_line
 from flatprep.cli.talk import say, warn
 from flatprep.drawing.forms import Form
@@ -28,7 +35,7 @@ from flatprep.report.layout_text import layout_text
 @click.option("--out", "folder", required=True, type=click.Path(path_type=Path), help="folder for layout and sheets")
 @click.option("--keep", type=click.Path(path_type=Path), metavar="LAYOUT.json", help="placements that stay as they are")
 @rack_option
-@etch_option
+@cutting_wishes
 @said_about_parts
 @search_budget
 @other_forms

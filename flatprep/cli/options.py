@@ -42,6 +42,7 @@ def said_about_parts(command: Callable[..., Any]) -> Any:
             anywhere=words.pop("anywhere", False),
             rack=words.pop("rack", None),
             etch=words.pop("etch", False),
+            first_article=words.pop("first_article", False),
             **{key: words.pop(key) for key in ("process", "material", "thickness", "units")},
         )
         return command(*args, said=said, **words)
@@ -67,9 +68,14 @@ def rack_option(command: Command) -> Command:
     )(command)
 
 
-def etch_option(command: Command) -> Command:
-    """Add ``--etch``, for a command that has `said_about_parts`; stands above it."""
-    return click.option("--etch", is_flag=True, help="etch each part's name and revision on it (layer MARK)")(command)
+def cutting_wishes(command: Command) -> Command:
+    """Add ``--etch`` and ``--first-article``, for a command that has `said_about_parts`; stands above it."""
+    command = click.option("--etch", is_flag=True, help="etch each part's name and revision on it (layer MARK)")(
+        command
+    )
+    return click.option(
+        "--first-article", is_flag=True, help="one piece of each kind on the first sheet, and cut first, to be measured"
+    )(command)
 
 
 def search_budget(command: Callable[..., Any]) -> Any:

@@ -11,7 +11,7 @@ from flatprep.base.errors import ExitStatus, FlatprepError
 from flatprep.base.files import claimed
 from flatprep.cli.interrupt import stoppable
 from flatprep.cli.jobs import job_argument, read_drawings, say_of_nest
-from flatprep.cli.options import etch_option, other_forms, rack_option, said_about_parts, search_budget
+from flatprep.cli.options import cutting_wishes, other_forms, rack_option, said_about_parts, search_budget
 from flatprep.cli.progress import progress_line
 from flatprep.cli.talk import say
 from flatprep.cli.watch import inputs, stamps, wait_for_change
@@ -33,7 +33,7 @@ _NAMED = 5
     "--watch", is_flag=True, help="run again whenever the job or one of its drawings changes; ends with Ctrl-C"
 )
 @rack_option
-@etch_option
+@cutting_wishes
 @said_about_parts
 @search_budget
 @other_forms

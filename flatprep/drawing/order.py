@@ -1,11 +1,12 @@
 """In which order the pieces of a sheet are cut.
 
-Pieces in windows go before the piece around them, the deepest first: they would fall with it. Small ones go before
-large ones, to within a factor of `SAME_SIZE`: a small piece may shift when its larger neighbour has come loose. And
-pieces cut in a row lie apart, so that the heat of neighbours does not add up: of those whose turn it may be, one is
-taken that is no neighbour of the last few; among these the one with most neighbours that still wait, lest they be
-left over together at the end, then the nearest. Where all are neighbours the farthest one is taken. Two pieces are
-neighbours where nothing of the width of the smaller one fits between their boxes. The rule is greedy and our own.
+First articles go before all others, with what lies in their windows. Pieces in windows go before the piece around
+them, the deepest first: they would fall with it. Small ones go before large ones, to within a factor of `SAME_SIZE`: a
+small piece may shift when its larger neighbour has come loose. And pieces cut in a row lie apart, so that the heat of
+neighbours does not add up: of those whose turn it may be, one is taken that is no neighbour of the last few; among
+these the one with most neighbours that still wait, lest they be left over together at the end, then the nearest. Where
+all are neighbours the farthest one is taken. Two pieces are neighbours where nothing of the width of the smaller one
+fits between their boxes. The rule is greedy and our own.
 """
 
 from collections.abc import Mapping
@@ -39,10 +40,13 @@ def cutting_order(sheet: SheetLayout, parts: Mapping[str, Part]) -> list[int]:
     boxes = np.array([_box(parts[p.part], p) for p in sheet.placements])
     areas = np.array([parts[p.part].area_mm2 for p in sheet.placements])
     depth = _depths(sheet, parts, boxes)
+    early = _early(sheet, parts, boxes)
     order: list[int] = []
-    for level in np.unique(depth)[::-1]:
-        rank = [int(k) for k in np.lexsort((boxes[:, 0], areas)) if depth[k] == level]
-        _append_apart(order, rank, boxes, areas)
+    for first in (True, False):
+        for level in np.unique(depth)[::-1]:
+            rank = [int(k) for k in np.lexsort((boxes[:, 0], areas)) if depth[k] == level and early[k] == first]
+            if rank:
+                _append_apart(order, rank, boxes, areas)
     return order
 
 
@@ -90,8 +94,22 @@ def _depths(sheet: SheetLayout, parts: Mapping[str, Part], boxes: Floats) -> npt
     depth = np.zeros(len(boxes), dtype=np.int64)
     for placement in sheet.placements:
         for window in _window_boxes(parts[placement.part], placement):
-            depth += (boxes[:, :2] >= window[:2]).all(axis=1) & (boxes[:, 2:] <= window[2:]).all(axis=1)  # never itself
+            depth += _within(boxes, window)  # never itself
     return depth
+
+
+def _early(sheet: SheetLayout, parts: Mapping[str, Part], boxes: Floats) -> Flags:
+    """Which pieces are first articles, or lie in the windows of one."""
+    early = np.array([p.first for p in sheet.placements])
+    for placement in sheet.placements:
+        for window in _window_boxes(parts[placement.part], placement) if placement.first else ():
+            early |= _within(boxes, window)
+    return early
+
+
+def _within(boxes: Floats, window: Floats) -> Flags:
+    inside = (boxes[:, :2] >= window[:2]).all(axis=1) & (boxes[:, 2:] <= window[2:]).all(axis=1)
+    return np.asarray(inside, dtype=np.bool_)
 
 
 def _box(part: Part, placement: Placement) -> Box:

@@ -42,8 +42,8 @@ class JobOptions:
         Lets the job read files that lie neither under its folder nor beside it.
     rack : Path or None
         Instead of the job's.
-    etch : bool
-        Labels are etched, whatever the job says.
+    etch, first_article : bool
+        As the job's, whatever it says.
     """
 
     profile_folders: tuple[Path, ...] = ()
@@ -55,6 +55,7 @@ class JobOptions:
     anywhere: bool = False
     rack: Path | None = None
     etch: bool = False
+    first_article: bool = False
 
 
 @dataclass(frozen=True, slots=True)

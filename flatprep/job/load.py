@@ -28,7 +28,7 @@ from flatprep.profile.where import ids
 KEYS = (
     "name", "revision", "units", "process", "spacing", "margin", "sets", "mass_limit", "pilots", "parts", "currency",
     "windows", "layers", "accept", "cost", "material", "stock", "rack", "part", "joint", "tabs", "relief", "slots",
-    "slot_clearance", "etch_labels", "etch_height",
+    "slot_clearance", "etch_labels", "etch_height", "first_article",
 )  # fmt: skip
 """Every key at the top of a job file."""
 
@@ -86,6 +86,7 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
         rack=rack,
         etch_labels=top.flag("etch_labels") or options.etch,
         etch_height_mm=_heights(top, context),
+        first_article=top.flag("first_article") or options.first_article,
         sets=top.integer("sets", 1, least=1),
         mass_limit_kg=top.optional_number("mass_limit", above=0.0),
         pilots=Pilots(top.choice("pilots", tuple(Pilots), Pilots.AS_DRAWN)),

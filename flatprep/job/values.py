@@ -253,6 +253,8 @@ class Job:
     """What holds for every part; each part has these among its own."""
     cost: CostTerms = field(default_factory=CostTerms)
     joints: tuple[JointAsk, ...] = ()
+    first_article: bool = False
+    """Whether one piece of each kind lies on the first sheet where it may, and is cut first."""
     etch_labels: bool = False
     etch_height_mm: tuple[float, float] = (3.0, 10.0)
     """Least and largest height of etched letters."""

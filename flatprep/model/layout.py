@@ -7,7 +7,10 @@ from flatprep.geom.bulge import Floats, Similarity
 
 @dataclass(frozen=True, slots=True)
 class Placement:
-    """One piece on a sheet: mirrored (x -> -x) if asked, turned anticlockwise about the drawing's origin, moved."""
+    """One piece on a sheet: mirrored (x -> -x) if asked, turned anticlockwise about the drawing's origin, moved.
+
+    `first` marks a first article: cut before the others, and measured before the rest is cut.
+    """
 
     part: str
     copy: int
@@ -15,6 +18,7 @@ class Placement:
     mirrored: bool
     dx: float
     dy: float
+    first: bool = False
 
     @property
     def motion(self) -> Similarity:

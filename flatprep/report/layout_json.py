@@ -149,6 +149,7 @@ def _placement(p: Placement) -> dict[str, object]:
         "mirrored": p.mirrored,
         "dx": p.dx + 0.0,  # never -0.0
         "dy": p.dy + 0.0,
+        **({"first_article": True} if p.first else {}),
     }
 
 

@@ -54,7 +54,9 @@ def _sheet(number: int, sheet: SheetLayout) -> list[str]:
     held = ", ".join(f"{n} x {name}" for name, n in sorted(counts.items()))
     what = f"{sheet_name(number)}: {sheet.stock}, {sheet.material} {sheet.thickness_mm:g} mm"
     share = f"used length {sheet.used_length_mm:.2f} mm, {100 * sheet.utilisation:.1f} % of it parts"
-    return [f"{what}, {length:.2f} x {width:.2f} mm, {share}", f"  {held}"]
+    first = [f"{p.part} {p.copy}{' (turned over)' if p.mirrored else ''}" for p in sheet.placements if p.first]
+    told = [f"  first articles, cut first: {', '.join(first)}"] if first else []
+    return [f"{what}, {length:.2f} x {width:.2f} mm, {share}", f"  {held}", *told]
 
 
 def _count(n: int, what: str) -> str:

@@ -5,6 +5,7 @@ import os
 from pathlib import Path
 
 import ezdxf
+import numpy as np
 import pytest
 from click.testing import CliRunner
 
@@ -271,3 +272,16 @@ def test_python_callers_have_the_same_verbs(job, tmp_path):
     assert "nest_job" in dir(api)
     with pytest.raises(AttributeError, match="cut_job"):
         api.cut_job  # noqa: B018
+
+
+@pytest.mark.parametrize("by", ["option", "key"])
+def test_first_articles_are_told_and_kept_in_the_layout(job, tmp_path, by):
+    job.write_text("first_article = true\n" + JOB if by == "key" else JOB)
+    got = run("nest", job, "--out", tmp_path / "out", "--steps", "5", *(["--first-article"] if by == "option" else []))
+    assert "  first articles, cut first: leaf " in got.stdout
+    layout = api.stored_layout(tmp_path / "out" / "layout.json")
+    first = [p for p in layout.sheets[0].placements if p.first]
+    assert len(first) == 1
+    entities = ezdxf.readfile(tmp_path / "out" / "sheet-01.dxf").modelspace().query('CIRCLE[layer=="CUT"]')
+    hole = first[0].motion.points(np.array([[20.0, 25.0]]))[0]
+    assert (entities[0].dxf.center.x, entities[0].dxf.center.y) == pytest.approx(tuple(hole))

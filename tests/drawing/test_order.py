@@ -1,5 +1,6 @@
 """The order of cutting: windows first, small first, and no neighbours in a row where it can be helped."""
 
+from dataclasses import replace
 from itertools import pairwise
 
 import numpy as np
@@ -105,3 +106,14 @@ def test_small_ones_first_to_within_a_factor(places):
     assert sorted(order) == list(range(len(places)))
     size = [parts[layout.placements[k].part].area_mm2 for k in order]
     assert all(a <= SAME_SIZE * min(size[n:]) for n, a in enumerate(size))
+
+
+def test_first_articles_go_first_with_what_lies_in_their_windows():
+    """The large frame is a first article: the washer in it goes before it, the small slats after both."""
+    frame, washer, slat = disc("frame", 200.0, 150.0), disc("washer", 20.0), rectangle("slat", 50.0, 10.0)
+    layout, parts = sheet((slat, 700, 10), (frame, 300, 300), (slat, 900, 10), (washer, 300, 300), (washer, 1200, 300))
+    assert cutting_order(layout, parts)[-1] == 1  # usually the largest goes last
+    marked = replace(layout, placements=tuple(replace(p, first=p.part == "frame") for p in layout.placements))
+    order = cutting_order(marked, parts)
+    assert order[:2] == [3, 1]
+    assert sorted(order) == [0, 1, 2, 3, 4]
