@@ -98,7 +98,7 @@ def _planned(
         taken, left = counts.take(sheet, source.rack_file)
         if taken is Taken.REMNANT:
             moves.append((source.rack_file, _retired(ask.rack, sheet, source, number)))
-        rest = offcut_of(sheet, parts, found.layout.spacing_mm)
+        rest = offcut_of(sheet, parts, found.layout.spacing_mm, source.keep_out)
         offcut = _offcut(next(labels), sheet, rest) if rest and _worth(rest, kept.offcut_least_mm) else None
         if rest and offcut:
             writes[f"{offcut.label}.dxf"] = _drawing(rest, offcut, source, f"rest of sheet {number} of {found.job}")

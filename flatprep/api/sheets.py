@@ -57,7 +57,10 @@ def make_layout_folders(nested: Nested, folder: Path) -> None:
 def rests_of(nested: Nested) -> tuple[Offcut | None, ...]:
     """Return the usable rest of each sheet, None where nothing worth keeping is left."""
     parts = {piece.name: piece.part for piece in nested.read.pieces}
-    return tuple(offcut_of(sheet, parts, nested.layout.spacing_mm) for sheet in nested.layout.sheets)
+    keep_out = {stock.name: stock.keep_out for stock in nested.read.job.stock}
+    return tuple(
+        offcut_of(sheet, parts, nested.layout.spacing_mm, keep_out[sheet.stock]) for sheet in nested.layout.sheets
+    )
 
 
 def layout_files(

@@ -1,13 +1,13 @@
 """What is left of a sheet: the largest usable rectangle, and the border of the remnant for next time."""
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from math import cos, pi
 
 import numpy as np
 import numpy.typing as npt
 import shapely
-from shapely.geometry import MultiPolygon, Polygon
+from shapely.geometry import MultiPolygon, Point, Polygon
 from shapely.geometry.base import BaseGeometry
 
 from flatprep.geom.bulge import Floats
@@ -21,9 +21,13 @@ NECK_MM = 20.0
 """Narrower tongues of a remnant are not counted: they bend and tip."""
 CHORD_MM = 0.05
 LIGHT_MM = 0.5
-QUARTER = 4
-ROUND = 1.002 / cos(pi / (4 * QUARTER))
-"""What the distance is multiplied by so that chords of round corners keep it, too."""
+QUARTER = 16
+ROUND = 1.002 / cos(1.5 * pi / (4 * QUARTER))
+"""What the distance is multiplied by so that chords of round corners keep it, too.
+
+GEOS gives a corner that turns by less than one and a half steps a single chord, and takes ends of offset edges nearer
+than a thousandth of the offset for one.
+"""
 CELLS = 100
 """Cells along the longer side of a sheet, when a first rectangle is looked for."""
 
@@ -52,7 +56,9 @@ class Offcut:
         return float(Polygon(self.outline, self.holes).area)
 
 
-def offcut_of(sheet: SheetLayout, parts: Mapping[str, Part], spacing_mm: float) -> Offcut | None:
+def offcut_of(
+    sheet: SheetLayout, parts: Mapping[str, Part], spacing_mm: float, keep_out: Sequence[Sequence[float]] = ()
+) -> Offcut | None:
     """Return the usable rest of a sheet, or None where no rectangle of `LEAST_MM` is left.
 
     Parameters
@@ -63,13 +69,15 @@ def offcut_of(sheet: SheetLayout, parts: Mapping[str, Part], spacing_mm: float) 
         True shapes by the names that the placements use.
     spacing_mm
         The rest keeps this much away from the parts: the cut lies between.
+    keep_out
+        The sheet's clamps and screws: boxes (x0, y0, x1, y1) leave no trace, circles (x, y, radius) a hole.
 
     Notes
     -----
     What lies in a part's window is scrap, not part of the rest. The rectangle is the largest one on a raster of the
     sheet (maximal rectangle under a histogram, row by row), then widened side by side until it touches.
     """
-    rest = _rest(sheet, parts, spacing_mm)
+    rest = _rest(sheet, parts, spacing_mm).difference(_screw_holes(keep_out))
     box = _largest_rectangle(rest)
     if box is None or min(box[2] - box[0], box[3] - box[1]) < LEAST_MM:
         return None
@@ -92,6 +100,11 @@ def _rest(sheet: SheetLayout, parts: Mapping[str, Part], spacing_mm: float) -> P
         ring = p.motion.points(outside_points(parts[p.part].outer.xyb, CHORD_MM))
         taken.append(Polygon(ring).buffer(spacing_mm * ROUND, quad_segs=QUARTER))
     return Polygon(sheet.outline, list(sheet.holes)).difference(shapely.union_all(taken))
+
+
+def _screw_holes(keep_out: Sequence[Sequence[float]]) -> BaseGeometry:
+    screws = [one for one in keep_out if len(one) == 3]
+    return shapely.union_all([Point(x, y).buffer(radius * ROUND, quad_segs=QUARTER) for x, y, radius in screws])
 
 
 def _largest_rectangle(region: Polygon | MultiPolygon) -> tuple[float, float, float, float] | None:

@@ -1,15 +1,19 @@
 """What is left of a sheet."""
 
+import io
+
+import ezdxf
 import numpy as np
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 from shapely import box
-from shapely.geometry import Polygon
+from shapely.geometry import Point, Polygon
 
+from flatprep.drawing.write import border_drawing
 from flatprep.model.layout import Placement, SheetLayout
 from flatprep.nest.offcut import offcut_of
-from tests.nest.parts import rectangle, ring
+from tests.nest.parts import disc, polygon, rectangle, ring
 
 OUTLINE = np.array([[0.0, 0], [600, 0], [600, 400], [0, 400]])
 
@@ -63,3 +67,54 @@ def test_nothing_cut_reaches_into_the_rest(seed):
     assert Polygon(OUTLINE).buffer(1e-6).covers(left)
     for p in placements:
         assert left.distance(Polygon(p.motion.points(part.outer.xyb[:, :2]))) >= 5.0 - 1e-6
+
+
+@pytest.mark.parametrize("corners", [7, 9, 11, 13, 16, 17, 24])
+@pytest.mark.parametrize("spacing", [0.5, 6.0])
+def test_corners_of_any_turn_keep_their_distance(corners, spacing):
+    """A regular polygon's corners turn by 360 / n degrees, here by less and by more than chords of round corners do.
+
+    One of them points at the rectangle, whose side comes as near as the rest lets it.
+    """
+    turn = 2.0 * np.pi * np.arange(corners) / corners
+    part = polygon("p", 80.0 * np.column_stack([np.cos(turn), np.sin(turn)]))
+    layout = sheet(Placement("p", 1, 0.0, False, 200.0, 200.0))
+    rest = offcut_of(layout, {"p": part}, spacing)
+    body = Polygon(layout.placements[0].motion.points(part.outer.xyb[:, :2]))
+    assert rest.rectangle[0] == pytest.approx(280.0 + spacing, rel=0.01)
+    assert box(*rest.rectangle).distance(body) >= spacing - 1e-9
+    assert Polygon(rest.outline, rest.holes).distance(body) >= spacing - 1e-9
+
+
+@pytest.mark.parametrize("radius", [3.0, 40.0, 150.0])
+def test_round_parts_keep_their_distance(radius):
+    layout = sheet(Placement("d", 1, 0.0, False, 200.0, 200.0))
+    rest = offcut_of(layout, {"d": disc("d", radius)}, 4.0)
+    assert Polygon(rest.outline, rest.holes).distance(Point(200.0, 200.0)) >= radius + 4.0 - 1e-9
+
+
+def test_what_is_written_lies_within_what_is_free():
+    """The drawing of a rest, read back as stock: nothing of it reaches into the parts and their spacing, nor out."""
+    rng = np.random.default_rng(5)
+    parts = {"d": disc("d", 31.0), "r": rectangle("r", 90.0, 40.0)}
+    spots = [(90, 90), (200, 120), (300, 260), (120, 300)]
+    placements = [
+        Placement(name, 1, float(rng.uniform(0, 360)), False, x, y) for name, (x, y) in zip("drdr", spots, strict=True)
+    ]
+    layout = sheet(*placements)
+    rest = offcut_of(layout, parts, 5.0)
+    file = io.StringIO(border_drawing(rest.outline, rest.holes))
+    rings = [np.array(e.get_points("xy")) for e in ezdxf.read(file).modelspace().query("LWPOLYLINE")]
+    written = Polygon(rings[-1], rings[:-1])
+    assert written.is_valid
+    assert Polygon(OUTLINE).buffer(1e-9).covers(written)
+    for p in placements:
+        true = p.motion.points(parts[p.part].outer.xyb[:, :2])
+        body = Polygon(true) if p.part == "r" else Point(p.dx, p.dy).buffer(31.0, 256)
+        assert written.distance(body) >= 5.0 - 1e-6
+
+
+def test_a_screw_leaves_a_hole_in_the_rest_a_clamp_does_not():
+    screwed = offcut_of(sheet(), {}, 0.0, keep_out=((500.0, 200.0, 10.0), (0.0, 0.0, 40.0, 40.0)))
+    assert screwed.rectangle == pytest.approx((0.0, 0.0, 490.0, 400.0), abs=0.2)
+    assert Polygon(screwed.outline, screwed.holes).distance(Point(500.0, 200.0)) >= 10.0 - 1e-9
