@@ -9,6 +9,8 @@ from hypothesis import settings
 # a failure of flatprep itself is to be seen whole in a test
 os.environ["FLATPREP_TRACEBACK"] = "1"
 settings.register_profile("house", deadline=None, max_examples=60, derandomize=True)
+# pytest --hypothesis-profile long: other examples each time, and many of them
+settings.register_profile("long", deadline=None, max_examples=3000, derandomize=False, print_blob=True)
 settings.load_profile("house")
 
 

@@ -14,7 +14,7 @@ from flatprep.geom.bulge import Floats
 from flatprep.model.drawing import Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
 from flatprep.model.tab import Tab, tab_stroke
-from flatprep.report.figures import bare_length, length, percent, size
+from flatprep.report.figures import bare_length, counted, length, percent, size
 from flatprep.report.sheet_figure import label_place, rings_of
 from flatprep.report.svg_path import joined, part_path, ring_data
 
@@ -245,19 +245,14 @@ def used_share(sheet: SheetLayout) -> float:
 
 
 def _heading(page: svgwrite.Drawing, sheet: SheetLayout, number: int, job: str, em: float, units: str) -> None:
-    extent = np.ptp(sheet.outline, axis=0)
-    thick = length(sheet.thickness_mm, units)
-    words = [
-        job,
-        f"sheet {number}",
-        sheet.stock,
-        sheet.material,
-        thick,
-        size(float(extent[0]), float(extent[1]), units),
-    ]
-    words += [f"{len(sheet.placements)} parts", f"{percent(sheet.utilisation)} used", "numbered as cut"]
+    """Say over the sheet what it is, in letters that let it stand on one line."""
+    wide, high = (float(v) for v in np.ptp(sheet.outline, axis=0))
+    thick, pieces = length(sheet.thickness_mm, units), counted(len(sheet.placements), "part")
+    words = [job, f"sheet {number}", sheet.stock, sheet.material, thick, size(wide, high, units)]
+    words += [pieces, f"{percent(sheet.utilisation)} used", "numbered as cut"]
+    line = " · ".join(w for w in words if w)
     at = (float(sheet.outline[:, 0].min()), float(-sheet.outline[:, 1].max() - 1.5 * em))
-    _text(page, " · ".join(w for w in words if w), at, 1.2 * em)
+    _text(page, line, at, min(1.2 * em, (wide + 2 * em) / (WIDE * len(line))))
 
 
 def _scale_bar(page: svgwrite.Drawing, at: tuple[float, float], room: float, em: float, units: str) -> None:

@@ -20,7 +20,7 @@ from tests.strategies import add, drawings
 OURS = sorted((Path(__file__).parents[1] / "drawings").glob("*.dxf"))
 PROCESS = load_process("fibre-laser", ())
 HOUSE = settings(
-    max_examples=80,
+    max_examples=max(80, settings.default.max_examples),
     suppress_health_check=[HealthCheck.function_scoped_fixture, HealthCheck.too_slow, HealthCheck.data_too_large],
 )
 
