@@ -22,6 +22,7 @@ from flatprep.geom.bulge import Floats
 from flatprep.job.values import Job, Stock
 from flatprep.model.layout import Layout
 from flatprep.nest.first_article import late_kinds, nest_first_articles
+from flatprep.nest.objective import is_open
 from flatprep.nest.problem import Budget, Item, KeptSheet, NestAsk, StockSheet
 from flatprep.nest.solve import nest
 
@@ -94,7 +95,13 @@ def nest_job(
     lay = nest_first_articles if read_job.job.first_article else nest
     layout = lay(ask, budget, progress or Silent(), on_better, stop)
     layout = replace(layout, unplaced=(*layout.unplaced, *read_job.lost))
-    warnings = (*spacing_warnings(read_job.job), *tab_warnings(read_job), *grain_warnings(ask), *shelf.warnings)
+    warnings = (
+        *spacing_warnings(read_job.job),
+        *wide_spacing(ask),
+        *tab_warnings(read_job),
+        *grain_warnings(ask),
+        *shelf.warnings,
+    )
     labels = etched_labels(read_job, layout)
     notes = (*shelf.notes, *tab_notes(read_job), *grain_notes(read_job, ask, layout), *labels.notes)
     notes += late_articles(layout, ask) if read_job.job.first_article else ()
@@ -134,6 +141,23 @@ def spacing_warnings(job: Job) -> tuple[str, ...]:
                 "neighbouring parts will be cut into; the job's spacing is kept as it is"
             )
     return tuple(out)
+
+
+def wide_spacing(ask: NestAsk) -> tuple[str, ...]:
+    """Say on which sheets no two pieces can lie, for the spacing is larger than they are."""
+    small = [s.name for s in ask.stock if not is_open(s) and _diagonal_mm(s) <= ask.spacing_mm]
+    if not small:
+        return ()
+    return (
+        f"spacing {ask.spacing_mm:g} mm is larger than {', '.join(small)}: no two pieces go on one such sheet; "
+        "give the spacing between parts, in the job's unit",
+    )
+
+
+def _diagonal_mm(stock: StockSheet) -> float:
+    if stock.outline is not None:
+        return float(np.hypot(*np.ptp(stock.outline, axis=0)))
+    return float(np.hypot(stock.length_mm or 0.0, stock.width_mm))
 
 
 def _item(job: Job, piece: Piece) -> Item:

@@ -5,7 +5,7 @@ from pathlib import Path
 import numpy as np
 
 from flatprep.base.names import one_line
-from flatprep.geom.bulge import signed_area
+from flatprep.geom.bulge import Floats
 from flatprep.geom.polygons import is_simple
 from flatprep.job.context import Context, money
 from flatprep.job.values import Point, Stock
@@ -85,11 +85,18 @@ def _outline(table: Table, context: Context) -> Outline:
     points = context.points_mm(table, "outline")
     points = points[:-1] if len(points) > 1 and points[0] == points[-1] else points
     ring = np.array([(x, y, 0.0) for x, y in points], dtype=np.float64)
-    if len(points) < 3 or abs(signed_area(ring)) < 1e-6:
+    if len(points) < 3 or _on_a_line(ring):
         raise table.fail("outline", "three points or more that enclose an area")
     if not is_simple(ring, chord_mm=0.01):
         raise table.fail("outline", "an outline that does not cross or touch itself")
     return points
+
+
+def _on_a_line(ring: Floats) -> bool:
+    """Tell whether points enclose nothing, whatever their order."""
+    off = ring[:, :2] - ring[0, :2]
+    far = off[int(np.argmax(np.hypot(*off.T)))]
+    return bool(np.abs(off[:, 0] * far[1] - off[:, 1] * far[0]).max() < 1e-6)
 
 
 def _margins(table: Table, context: Context) -> Box:

@@ -85,5 +85,8 @@ def why_no_stock(item: Item, stock: Sequence[StockSheet]) -> str | None:
         return f"no turn that it may have lays its bends across the grain, along which {item.material} cracks"
     bare = [s.name for s in same if s.grain is None]
     if bare:
-        return f"its grain is to lie along the stock's, but {', '.join(bare)} states no grain"
+        return (
+            f"its grain is to lie along the stock's, but {', '.join(bare)} states no grain: "
+            'grain = "length" or "width" in the stock says it'
+        )
     return "none of its allowed turns lays its grain along the stock's"

@@ -36,7 +36,7 @@ def why_unplaced(group: Group, shape: int, count: int) -> list[Unplaced]:
 def _why(group: Group, shape: int, item: Item) -> str:
     names = ", ".join(dict.fromkeys(s.name for s in group.stock))
     if not group.stock:
-        return "the margin leaves nothing of any sheet"
+        return "margin and keep-outs leave nothing of any sheet"
     mine = group.shapes[shape]
     allowed = [b for b, s in zip(group.bins, group.stock, strict=True) if turns_on(item, s) != ()]
     if _fits(Shape(mine.outer, (), None, mine.mirror), allowed, [b.turns[shape] for b in allowed]):

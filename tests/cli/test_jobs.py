@@ -285,3 +285,52 @@ def test_first_articles_are_told_and_kept_in_the_layout(job, tmp_path, by):
     entities = ezdxf.readfile(tmp_path / "out" / "sheet-01.dxf").modelspace().query('CIRCLE[layer=="CUT"]')
     hole = first[0].motion.points(np.array([[20.0, 25.0]]))[0]
     assert (entities[0].dxf.center.x, entities[0].dxf.center.y) == pytest.approx(tuple(hole))
+
+
+SIZE = "length = 300\nwidth = 200\n"
+L_TURNED_OVER = "outline = [[-3, -3], [93, -3], [93, 73], [57, 73], [57, 33], [-3, 33]]\n"
+BAD_ASKS = {
+    "spacing over the sheet": (
+        JOB.replace("spacing = 3.0", "spacing = 400"),
+        1,
+        ["spacing 400 mm is larger than steel: no two pieces go on one such sheet", "3 x leaf: no room left on steel"],
+    ),
+    "outline across itself": (
+        JOB.replace(SIZE, 'outline = "bow.dxf"\n'),
+        2,
+        ["stock 'steel': ", "bow.dxf: the remnant's outline crosses itself at (150.00, 100.00)", "one closed outline"],
+    ),
+    "points across themselves": (
+        JOB.replace(SIZE, "outline = [[0, 0], [300, 200], [300, 0], [0, 200]]\n"),
+        2,
+        ["stock 1 (steel): outline = ", "an outline that does not cross or touch itself"],
+    ),
+    "grain of a stock without": (
+        JOB + 'grain = "x"\n',
+        1,
+        ["4 x leaf: its grain is to lie along the stock's, but steel states no grain: grain = "],
+    ),
+    "only turned over": (
+        JOB.replace(SIZE, L_TURNED_OVER).replace("leaf.dxf", "hook.dxf")
+        .replace("margin = 5.0", "margin = 2.0").replace("quantity = 4", "quantity = 1"),
+        1,
+        ["1 x hook: fits steel only turned over, which may_flip = true would allow"],
+    ),
+    "margin over the sheet": (
+        JOB.replace("margin = 5.0", "margin = 150"), 1, ["4 x leaf: margin and keep-outs leave nothing of any sheet"]
+    ),
+}  # fmt: skip
+
+
+@pytest.mark.parametrize(("text", "status", "said"), BAD_ASKS.values(), ids=BAD_ASKS)
+def test_asks_that_cannot_be_met_are_answered_in_clear_words(job, tmp_path, text, status, said):
+    drawn(
+        tmp_path, lambda msp: msp.add_lwpolyline([(0, 0), (300, 0), (0, 200), (300, 200)], close=True), name="bow.dxf"
+    )
+    hook = [(0, 0), (90, 0), (90, 30), (30, 30), (30, 70), (0, 70)]
+    drawn(tmp_path, lambda msp: msp.add_lwpolyline(hook, close=True), name="hook.dxf")
+    job.write_text(text)
+    got = run("nest", job, "--out", tmp_path / "out", "--steps", "3")
+    assert got.exit_code == status, got.output
+    for words in said:
+        assert words in got.stdout + got.stderr

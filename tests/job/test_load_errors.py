@@ -96,6 +96,9 @@ CASES = [
     ("measured_thickness = 2.9", "measured = 2.9", "stock 1 (al3): unknown key measured = 2.9"),
     ("[[0, 0], [900, 0], [700, 400], [0, 0]]", "[[0, 0], [9, 0]]", "must be three points or more that enclose an area"),
     ("[[0, 0], [900, 0], [700, 400], [0, 0]]", "[[0, 0], [9, 9], [9, 0], [0, 8]]", "does not cross or touch itself"),
+    # both lobes of a bow are as large: its signed area is nothing, and it crosses itself
+    ("[[0, 0], [900, 0], [700, 400], [0, 0]]", "[[0, 0], [9, 9], [9, 0], [0, 9]]", "does not cross or touch itself"),
+    ("[[0, 0], [900, 0], [700, 400], [0, 0]]", "[[0, 0], [9, 9], [4, 4]]", "three points or more that enclose an area"),
     ("[[0, 0], [900, 0], [700, 400], [0, 0]]", "[1, 2, 3]", "must be a list of points"),
     ("[[0, 0], [900, 0], [700, 400], [0, 0]]", "7", "outline = 7: must be a drawing's file, or a list of points"),
     ('outline = "rest-07.dxf"', 'outline = "rest-08.dxf"', 'outline = "rest-08.dxf": no such file'),

@@ -155,7 +155,9 @@ def test_spacing_larger_than_the_sheet_allows_one_piece_only():
 
 def test_margin_that_leaves_nothing():
     layout = solved(ask([item(disc("d", 20.0))], [sheet()], 1.0, 150.0))
-    assert "margin leaves nothing" in whys(layout)["d"]
+    assert whys(layout)["d"] == "margin and keep-outs leave nothing of any sheet"
+    covered = solved(ask([item(disc("d", 20.0))], [sheet(keep_out=((-1.0, -1.0, 400.0, 300.0),))], 1.0, 5.0))
+    assert whys(covered)["d"] == "margin and keep-outs leave nothing of any sheet"
 
 
 def test_negative_spacing_is_refused():
