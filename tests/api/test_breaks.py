@@ -26,6 +26,7 @@ count = 2
 class Nest:
     """What the stand-in for the search answers."""
 
+    read: object
     layout: object
 
 
@@ -44,7 +45,7 @@ def test_one_nest_for_each_number_of_sets(read, monkeypatch):
         asked.append((job.job.sets, [s.count for s in job.job.stock], budget.seconds))
         full = [sheet(job.job.stock[0], *["leaf", "plate"] * 2) for _ in range(job.job.sets // 2)]
         rest = [sheet(job.job.stock[0], "leaf", "plate")] if job.job.sets % 2 else []
-        return Nest(layout(*full, *rest))
+        return Nest(job, layout(*full, *rest))
 
     monkeypatch.setattr(module, "nest_job", two_sets_a_sheet)
     one, two, four = module.break_table(read, Budget(seconds=9.0))
@@ -57,7 +58,7 @@ def test_one_nest_for_each_number_of_sets(read, monkeypatch):
 
 def test_pieces_without_a_place_leave_the_cost_open(read, monkeypatch):
     def only_one(job, budget, progress=None):
-        return Nest(layout(sheet(job.job.stock[0], "leaf", "plate")))
+        return Nest(job, layout(sheet(job.job.stock[0], "leaf", "plate")))
 
     monkeypatch.setattr(module, "nest_job", only_one)
     one, two, four = module.break_table(read, Budget())
