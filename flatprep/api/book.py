@@ -208,6 +208,8 @@ class _Counts:
 def _retired(rack: Path, sheet: SheetLayout, source: StockSource, number: int) -> str:
     """Return where the drawing of a remnant goes; it must be there, and be what the layout was made on."""
     path = rack / source.rack_file
+    if not path.resolve().is_relative_to(rack.resolve()):
+        raise UsageError(f"{path}: lies outside the rack", "nest anew from the rack as it is")
     if not path.is_file():
         raise UsageError(
             f"{path}: not in the rack any more; {sheet_name(number)} was laid on it", "nest anew from the rack as it is"

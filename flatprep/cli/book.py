@@ -31,12 +31,19 @@ def command(layout_file: Path, folder: Path | None, sheets: tuple[int, ...], aga
 
     All of it happens or nothing. The job file is never touched.
     """
-    rack = folder or stored(layout_file).rack
-    if rack is None:
-        raise UsageError(f"{layout_file}: made without a rack", "say with --rack which rack its offcuts go into")
+    rack = folder or _own_rack(layout_file)
     with claimed(rack):
         done = book(BookAsk(layout_file, rack, date.today(), sheets, again))
     if form == "json":
         click.echo(json.dumps(book_document(done), indent=1))
     else:
         say(book_text(done))
+
+
+def _own_rack(layout_file: Path) -> Path:
+    rack = stored(layout_file).rack
+    if rack is None:
+        raise UsageError(f"{layout_file}: made without a rack", "say with --rack which rack its offcuts go into")
+    if not rack.is_dir():
+        raise UsageError(f"{layout_file}: its rack {rack} is not there", "say with --rack where the rack is now")
+    return rack

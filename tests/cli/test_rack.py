@@ -108,6 +108,22 @@ def test_bad_bookings(job, tmp_path, words, said):
     assert sorted(p.name for p in (tmp_path / "rack").rglob("*")) == before
 
 
+def test_a_layout_that_was_carried_elsewhere(job, tmp_path):
+    """Its rack is found from where it lies: none is made up there, nothing outside a rack is touched."""
+    job.write_text(JOB)
+    run("nest", job, "--out", tmp_path / "out", "--steps", "3")
+    text = (tmp_path / "out" / "layout.json").read_text()
+    (tmp_path / "far" / "off").mkdir(parents=True)
+    (tmp_path / "far" / "off" / "layout.json").write_text(text)
+    got = run("book", tmp_path / "far" / "off" / "layout.json")
+    assert (got.exit_code, "is not there" in got.stderr) == (2, True)
+    assert not (tmp_path / "far" / "rack").exists()
+    (tmp_path / "out" / "layout.json").write_text(text.replace('"a.dxf"', '"../leaf.dxf"'))
+    got = run("book", tmp_path / "out" / "layout.json")
+    assert (got.exit_code, "lies outside the rack" in got.stderr) == (2, True)
+    assert (tmp_path / "leaf.dxf").exists()
+
+
 def test_a_booking_that_was_broken_off_is_finished_first(job, tmp_path):
     job.write_text(JOB)
     run("nest", job, "--out", tmp_path / "out", "--steps", "3")
