@@ -199,13 +199,11 @@ def move_piece(ground: Ground, i: int, room: Room, rng: np.random.Generator) -> 
     keep_best(kept, v, board.home[i], x, y, here)
     tried = sample(ground, i, kept, rng) + 1
     side = outlines.size[outlines.shape[v], 3]
-    best = 0
     for row in range(KEPT):
         if kept[row, 0] < HUGE:
             kept[row, 5] = FIRST_STEP * side
             tried += walk(ground, i, kept, row, ROUGH_STEP * side, rng)
-            if kept[row, 0] < kept[best, 0]:
-                best = row
+    best = best_row(kept)
     if kept[best, 0] > 0.0:
         room.contacts.within[0] = SNAP_REACH * side
         tried += snap(ground, i, kept, best, room.contacts, rng)
@@ -213,6 +211,16 @@ def move_piece(ground: Ground, i: int, room: Room, rng: np.random.Generator) -> 
     if kept[best, 0] < here:
         take(ground, i, kept, best)
     return tried
+
+
+@bare
+def best_row(kept: Floats) -> int:
+    """Row of least loss; a function of its own, else all that takes a row is compiled twice, once for the number 0."""
+    best = 0
+    for row in range(1, KEPT):
+        if kept[row, 0] < kept[best, 0]:
+            best = row
+    return best
 
 
 @bare
