@@ -235,7 +235,9 @@ def _text(doc: Document, words: str, at: tuple[float, float], height: float, *, 
 
 
 def _written(doc: Document) -> str:
-    """Text of the document with a fixed date and no random ids."""
+    """Text of the document with a fixed date, no random ids, and nothing in the order of a set."""
+    doc.classes.add_required_classes(doc.dxfversion)
+    doc.classes.classes = dict(sorted(doc.classes.classes.items()))
     stream = io.StringIO()
     before = options.write_fixed_meta_data_for_testing
     options.write_fixed_meta_data_for_testing = True

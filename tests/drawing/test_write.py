@@ -1,6 +1,7 @@
 """What the DXF writer writes, read back with ezdxf alone."""
 
 import io
+import re
 
 import ezdxf
 import numpy as np
@@ -107,3 +108,12 @@ def test_border_drawing_can_be_read_as_an_outline():
     doc = read(border_drawing(PLATE, (HOLE,), notes=("rest",)))
     assert [e.dxftype() for e in on(doc, "CUT")] == ["LWPOLYLINE", "LWPOLYLINE"]
     assert all(e.closed for e in on(doc, "CUT"))
+
+
+def test_classes_stand_in_an_order_that_no_hash_seed_changes():
+    """What is in use is a set of names in ezdxf, and would be written as it happens to be kept."""
+    text = sheet_drawing(sheet(Placement("plate", 1, 0.0, False, 20.0, 30.0)), {"plate": part()})
+    section = text.split("CLASSES\n")[1].split("ENDSEC")[0]
+    names = re.findall(r"^ *0\nCLASS\n *1\n(.*)$", section, re.MULTILINE)
+    assert len(names) > 10
+    assert names == sorted(names)
