@@ -287,7 +287,8 @@ def points_along(xyb: Floats, *, closed: bool, chord_mm: float) -> Floats:
 
 def chord_counts(seg: Segments, chord_mm: float) -> Ints:
     """How many chords each segment needs so that none is further than `chord_mm` from its arc, shape (n,)."""
-    ratio = np.clip(1.0 - chord_mm / np.where(seg.is_arc, seg.radius, 1.0), -1.0, 1.0)
+    # arcs smaller than the chord error, down to no radius at all, are one chord
+    ratio = 1.0 - chord_mm / np.maximum(np.where(seg.is_arc, seg.radius, 1.0), chord_mm / 2.0)
     step = np.maximum(2.0 * np.arccos(ratio), 1e-4)
     return np.where(seg.is_arc, np.maximum(1, np.ceil(np.abs(seg.sweep) / step - 1e-9)), 1).astype(np.intp)
 

@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from flatprep.geom.bulge import circle
+from flatprep.geom.bulge import circle, points_along
 from flatprep.geom.polygons import polygon, ring
 
 SEGMENT = np.array([[0.0, 0, 0], [0.1, 0, 0.2]])
@@ -20,6 +20,10 @@ def test_what_is_smaller_than_the_chord_error_is_a_ring_all_the_same(hole):
     shape = polygon(SQUARE, [hole], chord_mm=0.5)
     assert shape.is_valid
     assert 99.5 < shape.area < 100.0
+
+
+def test_an_arc_without_any_size_is_a_point():
+    assert points_along(np.array([[3.0, 4, 0.5], [3, 4, 0]]), closed=False, chord_mm=0.05).tolist() == [[3, 4], [3, 4]]
 
 
 def test_points_without_arcs_are_left_alone():
