@@ -22,7 +22,7 @@ def write_whole(path: Path, data: str | bytes) -> None:
 
 
 def write_together(files: Iterable[tuple[Path, str | bytes | None]]) -> tuple[Path, ...]:
-    """Write every file beside its place and flush it to the disk; once all of them are there, rename them in order.
+    """Write every file beside its place, then flush all to the disk; once they are there, rename them in order.
 
     Parameters
     ----------
@@ -44,6 +44,10 @@ def write_together(files: Iterable[tuple[Path, str | bytes | None]]) -> tuple[Pa
         for path, data in files:
             with _told(path):
                 asides.append((None if data is None else _aside(path, data), path))
+        for aside, path in asides:
+            if aside is not None:
+                with _told(path):
+                    _flush(aside)
         for number, (aside, path) in enumerate(asides):
             with _told(path):
                 _put(aside, path)
@@ -61,13 +65,17 @@ def _aside(path: Path, data: str | bytes) -> str:
     try:
         with os.fdopen(handle, "wb") as out:
             out.write(data.encode("utf-8", "replace") if isinstance(data, str) else data)
-            out.flush()
-            os.fsync(out.fileno())
         os.chmod(aside, 0o666 & ~_umask())
     except BaseException:
         _drop(aside)
         raise
     return aside
+
+
+def _flush(aside: str) -> None:
+    """Wait until a file is on the disk; done for all of them at the end, most wait for nothing."""
+    with open(aside, "rb+") as out:
+        os.fsync(out.fileno())
 
 
 def _put(aside: str | None, path: Path) -> None:

@@ -10,6 +10,7 @@ fits between their boxes. The rule is greedy and our own.
 """
 
 from collections.abc import Mapping
+from functools import lru_cache
 
 import numpy as np
 import numpy.typing as npt
@@ -35,8 +36,15 @@ def cutting_order(sheet: SheetLayout, parts: Mapping[str, Part]) -> list[int]:
     parts
         Shapes by the names that the placements use.
     """
+    return list(_order(sheet, tuple((name, parts[name]) for name in dict.fromkeys(p.part for p in sheet.placements))))
+
+
+@lru_cache(maxsize=16)
+def _order(sheet: SheetLayout, named: tuple[tuple[str, Part], ...]) -> list[int]:
+    """Return the order of one sheet: its drawing and its picture ask one after the other."""
     if not sheet.placements:
         return []
+    parts = dict(named)
     boxes = np.array([_box(parts[p.part], p) for p in sheet.placements])
     areas = np.array([parts[p.part].area_mm2 for p in sheet.placements])
     depth = _depths(sheet, parts, boxes)

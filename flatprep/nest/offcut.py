@@ -118,7 +118,9 @@ def _largest_rectangle(region: Polygon | MultiPolygon) -> tuple[float, float, fl
         return None
     shapely.prepare(region)
     grid_x, grid_y = np.meshgrid(xs, ys)
-    free = shapely.covers(region, shapely.box(grid_x, grid_y, grid_x + step, grid_y + step))
+    free = shapely.contains_xy(region, grid_x + step / 2, grid_y + step / 2)  # boxes are made of few cells then
+    low_x, low_y = grid_x[free], grid_y[free]
+    free[free] = shapely.covers(region, shapely.box(low_x, low_y, low_x + step, low_y + step))
     found = _largest_of_raster(free)
     if found is None:
         return None
@@ -129,14 +131,13 @@ def _largest_rectangle(region: Polygon | MultiPolygon) -> tuple[float, float, fl
 def _largest_of_raster(free: npt.NDArray[np.bool_]) -> tuple[int, int, int, int] | None:
     """First row and column, last row and column of the largest all-true rectangle."""
     best, found = 0, None
-    height = np.zeros(free.shape[1], dtype=np.int64)
+    heights = np.zeros(free.shape[1], dtype=np.int64)
     for row in range(free.shape[0]):
-        height = np.where(free[row], height + 1, 0)
-        stack: list[int] = []
-        for column in range(len(height) + 1):
-            now = int(height[column]) if column < len(height) else 0
-            while stack and int(height[stack[-1]]) >= now:
-                tall = int(height[stack.pop()])
+        heights = np.where(free[row], heights + 1, 0)
+        height, stack = [*heights.tolist(), 0], list[int]()
+        for column, now in enumerate(height):
+            while stack and height[stack[-1]] >= now:
+                tall = height[stack.pop()]
                 first = stack[-1] + 1 if stack else 0
                 if tall * (column - first) > best:
                     best, found = tall * (column - first), (row - tall + 1, first, row, column - 1)
