@@ -1,8 +1,8 @@
 """Everything a document holds, sorted: curves in mm with their roles, texts, and what was left out."""
 
-from collections import Counter
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
+from itertools import islice
 from math import isfinite
 from typing import Any
 
@@ -11,7 +11,7 @@ from ezdxf.document import Drawing as DxfDocument
 
 from flatprep.base.errors import DrawingError
 from flatprep.base.names import printable
-from flatprep.drawing.entities import Shape, UnusableEntityError, shape_of
+from flatprep.drawing.entities import Shape, UnusableEntityError, shapes_of
 from flatprep.drawing.explode import Loose, block_fault, explode
 from flatprep.drawing.limits import ReadLimits
 from flatprep.drawing.load import Loaded
@@ -42,6 +42,9 @@ NOT_CUT = {
     "DGNUNDERLAY": "an underlay: not opened",
 }
 """Kinds that draw no outline, and what they are."""
+_AT_ONCE = 10_000
+"""So many entities are taken apart before their curves are made, together."""
+_OTHERS = frozenset(_TEXTS | {"INSERT"} | set(NOT_CUT))
 
 
 @dataclass(slots=True)
@@ -53,7 +56,8 @@ class Collected:
     skipped: list[Skipped] = field(default_factory=list)
     faults: list[Fault] = field(default_factory=list)
     roles: dict[str, Guess] = field(default_factory=dict)
-    heights: Counter[float] = field(default_factory=Counter)
+    heights: set[float] = field(default_factory=set)
+    """In drawing units."""
     vertical: int = 0
     simplified: list[Simplified] = field(default_factory=list)
 
@@ -78,54 +82,68 @@ def collect(loaded: Loaded, options: CollectOptions) -> Collected:
     """
     out = Collected()
     document = loaded.document
-    off = {layer.dxf.name.lower() for layer in document.layers if layer.is_off() or layer.is_frozen()}
-    guesses: dict[tuple[str, str], Guess] = {}
+    role = _Roles(document, options)
     vertices = 0
-    for loose in explode(loaded, options.limits):
-        kind = loose.kind
-        if kind in _TEXTS:
-            _add_text(out, loose, options)
-        elif kind == "INSERT":
-            out.skipped.append(_skip(loose, block_fault(loose.entity)))
-        elif kind in NOT_CUT:
-            out.skipped.append(_skip(loose, NOT_CUT[kind]))
-        else:
-            key = (loose.layer, loose.linetype)
-            if key not in guesses:
-                guesses[key] = role_of(*key, options.roles, off=loose.layer.lower() in off)
-            vertices += _add_curve(out, loose, options, guesses[key])
-            if vertices > options.limits.vertices:
-                raise DrawingError(
-                    f"more than {options.limits.vertices} vertices", "export splines and curves as arcs, or coarser"
-                )
+    walk = explode(loaded, options.limits)
+    while some := list(islice(walk, _AT_ONCE)):
+        vertices += _add(out, some, options, role)
+        if vertices > options.limits.vertices:
+            raise DrawingError(
+                f"more than {options.limits.vertices} vertices", "export splines and curves as arcs, or coarser"
+            )
     _drop_unbounded(out, options)
     _add_blocks(out, document, options.mm_per_unit)
     _add_paper_space(out, document)
-    _tell_heights(out)
+    _tell_heights(out, options.mm_per_unit)
     return out
 
 
-def _add_curve(out: Collected, loose: Loose, options: CollectOptions, guess: Guess) -> int:
-    try:
-        shape = shape_of(loose.entity, options.curve_mm / options.mm_per_unit)
-    except UnusableEntityError as err:
-        out.skipped.append(_skip(loose, f"unusable: {err}"))
+class _Roles:
+    """Roles of layers and linetypes, each guessed once."""
+
+    def __init__(self, document: DxfDocument, options: CollectOptions) -> None:
+        self._off = {layer.dxf.name.lower() for layer in document.layers if layer.is_off() or layer.is_frozen()}
+        self._said = options.roles
+        self._known: dict[tuple[str, str], Guess] = {}
+
+    def __call__(self, layer: str, linetype: str) -> Guess:
+        key = layer, linetype
+        if key not in self._known:
+            self._known[key] = role_of(*key, self._said, off=layer.lower() in self._off)
+        return self._known[key]
+
+
+def _add(out: Collected, walked: Sequence[Loose], options: CollectOptions, role: _Roles) -> int:
+    """Sort entities; returns how many vertices their curves have."""
+    tol = options.curve_mm / options.mm_per_unit
+    shapes = iter(shapes_of((loose.entity for loose in walked if loose.kind not in _OTHERS), tol))
+    vertices = 0
+    for loose in walked:
+        if loose.kind not in _OTHERS:
+            vertices += _add_curve(out, loose, next(shapes), options.mm_per_unit, role(loose.layer, loose.linetype))
+        elif loose.kind in _TEXTS:
+            _add_text(out, loose, options)
+        elif loose.kind == "INSERT":
+            out.skipped.append(_skip(loose, block_fault(loose.entity)))
+        else:
+            out.skipped.append(_skip(loose, NOT_CUT[loose.kind]))
+    return vertices
+
+
+def _add_curve(out: Collected, loose: Loose, shape: Shape | UnusableEntityError | None, k: float, guess: Guess) -> int:
+    if not isinstance(shape, Shape):
+        out.skipped.append(_skip(loose, "no line, arc or curve" if shape is None else f"unusable: {shape}"))
         return 0
-    if shape is None:
-        out.skipped.append(_skip(loose, "no line, arc or curve"))
-        return 0
-    k = options.mm_per_unit
     xyb = shape.xyb if k == 1.0 else shape.xyb * np.array([k, k, 1.0])
     out.roles.setdefault(loose.layer, guess)
     if _stands_up(shape):
         out.vertical += 1
-    else:
-        out.heights[round(shape.z_low * k, 3)] += 1
-        kind = loose.kind
-        curve = Curve(xyb, shape.closed, loose.layer, loose.handle, kind, loose.linetype, loose.color)
-        out.curves.append((curve, guess.role))
-        if kind in ("SPLINE", "ELLIPSE"):
-            out.simplified.append(Simplified(kind, (float(xyb[0, 0]), float(xyb[0, 1])), loose.handle))
+        return len(xyb)
+    out.heights.add(shape.z_low)
+    curve = Curve(xyb, shape.closed, loose.layer, loose.handle, loose.kind, loose.linetype, loose.color)
+    out.curves.append((curve, guess.role))
+    if loose.kind in ("SPLINE", "ELLIPSE"):
+        out.simplified.append(Simplified(loose.kind, (float(xyb[0, 0]), float(xyb[0, 1])), loose.handle))
     return len(xyb)
 
 
@@ -154,8 +172,8 @@ def _stands_up(shape: Shape) -> bool:
     return rise > 1e-6 and float(np.ptp(shape.xyb[:, :2], axis=0).max()) < 0.01 * rise
 
 
-def _tell_heights(out: Collected) -> None:
-    levels = sorted(out.heights)
+def _tell_heights(out: Collected, mm_per_unit: float) -> None:
+    levels = sorted({round(z * mm_per_unit, 3) for z in out.heights})
     if out.vertical:
         detail = f"{out.vertical} upright edges: a body drawn as wires; its outline seen from above is taken"
     elif len(levels) > 1:

@@ -8,8 +8,8 @@ from typing import Any
 import numpy as np
 
 from flatprep.geom.bulge import Floats, split_arcs
-from flatprep.geom.fit import fit_arcs
-from flatprep.geom.smooth import ellipse, nurbs
+from flatprep.geom.fit import fit_all
+from flatprep.geom.smooth import Smooth, ellipse, nurbs
 
 # ezdxf types its DXF attributes only loosely
 Dxf = Any
@@ -43,39 +43,69 @@ class SplineData:
     degree: int
 
 
-def shape_of(entity: Dxf, tol: float) -> Shape | None:
-    """Return the curve of an entity, None for one that is no curve.
+@dataclass(frozen=True, slots=True, eq=False)
+class _Smooth:
+    """A curve that arcs are to be fitted to, and the heights it spans; `closed` is None where its ends tell."""
+
+    curve: Smooth
+    z_low: float
+    z_high: float
+    closed: bool | None
+
+
+def shapes_of(entities: Iterable[Dxf], tol: float) -> list[Shape | UnusableEntityError | None]:
+    """Return the curve of each entity, None for one that is no curve, the error for one whose numbers make none.
 
     Parameters
     ----------
-    entity
-        LINE, ARC, CIRCLE, ELLIPSE, SPLINE, LWPOLYLINE or POLYLINE, or a `Shape` or `SplineData` that was read before.
+    entities
+        LINE, ARC, CIRCLE, ELLIPSE, SPLINE, LWPOLYLINE and POLYLINE, or a `Shape` or `SplineData` that was read before.
     tol
         Largest distance of the arcs that stand for a spline or ellipse, drawing units.
 
-    Raises
-    ------
-    UnusableEntityError
-        When its numbers make no curve. Coordinates that are no numbers are left to the caller, who checks them
-        for all curves at once.
+    Notes
+    -----
+    Coordinates that are no numbers are left to the caller, who checks them for all curves at once.
     """
-    make = _MADE.get(type(entity)) or _MAKERS.get(entity.dxftype())
+    made = [_made(entity) for entity in entities]
+    smooth = [one.curve for one in made if isinstance(one, _Smooth)]
+    rows = iter(fit_all(smooth, tol))
+    return [
+        _drawn(next(rows), one.z_low, one.z_high, closed=one.closed) if isinstance(one, _Smooth) else one
+        for one in made
+    ]
+
+
+def _made(entity: Dxf) -> Shape | _Smooth | UnusableEntityError | None:
+    made = entity if isinstance(entity, Shape) else _read(entity)
+    if isinstance(made, Shape | _Smooth) and not (isfinite(made.z_low) and isfinite(made.z_high)):
+        return UnusableEntityError("a height is not a finite number")
+    return made
+
+
+def _read(entity: Dxf) -> Shape | _Smooth | UnusableEntityError | None:
+    make = _of_spline if isinstance(entity, SplineData) else _MAKERS.get(entity.dxftype())
     if make is None:
         return None
     try:
-        shape = make(entity, tol)
+        return make(entity)
+    except UnusableEntityError as err:
+        return err
     except (ValueError, ZeroDivisionError, OverflowError, IndexError, TypeError, AttributeError) as err:
-        raise UnusableEntityError(str(err) or type(err).__name__) from err
-    if not isfinite(shape.z_low) or not isfinite(shape.z_high):
-        raise UnusableEntityError("a height is not a finite number")
-    return shape
+        return UnusableEntityError(str(err) or type(err).__name__)
 
 
-def _as_it_is(shape: Shape, _tol: float) -> Shape:
-    return shape
+def _drawn(xyb: Floats, z_low: float, z_high: float, *, closed: bool | None) -> Shape | UnusableEntityError:
+    """Curve of rows from its start to its end, without the last one where it closes."""
+    if len(xyb) < 2:
+        return UnusableEntityError("the spline is a single point")
+    if closed is None:
+        size = max(1.0, float(np.abs(xyb[:, :2]).max()))
+        closed = len(xyb) > 2 and hypot(*(xyb[0, :2] - xyb[-1, :2])) <= 1e-9 * size
+    return Shape(xyb[:-1] if closed else xyb, closed, z_low, z_high)
 
 
-def _line(e: Dxf, _tol: float) -> Shape:
+def _line(e: Dxf) -> Shape:
     a, b = e.dxf.start, e.dxf.end
     return Shape(np.array([[a.x, a.y, 0.0], [b.x, b.y, 0.0]]), closed=False, z_low=min(a.z, b.z), z_high=max(a.z, b.z))
 
@@ -94,7 +124,7 @@ def flat(extrusion: Iterable[float]) -> float:
     return 1.0 if z > 0 else -1.0
 
 
-def _circle(e: Dxf, _tol: float) -> Shape:
+def _circle(e: Dxf) -> Shape:
     return circle_shape(e.dxf.center.xyz, e.dxf.radius, flat(e.dxf.extrusion))
 
 
@@ -107,7 +137,7 @@ def circle_shape(centre: tuple[float, float, float], radius: float, flip: float)
     return Shape(np.array([[x + radius, y, 1.0], [x - radius, y, 1.0]]), closed=True, z_low=z, z_high=z)
 
 
-def _arc(e: Dxf, _tol: float) -> Shape:
+def _arc(e: Dxf) -> Shape:
     return arc_shape(e.dxf.center.xyz, e.dxf.radius, e.dxf.start_angle, e.dxf.end_angle, flat(e.dxf.extrusion))
 
 
@@ -127,7 +157,7 @@ def arc_shape(centre: tuple[float, float, float], r: float, start_deg: float, en
     return Shape(np.array(rows), closed=False, z_low=flip * z, z_high=flip * z)
 
 
-def _ellipse(e: Dxf, tol: float) -> Shape:
+def _ellipse(e: Dxf) -> _Smooth:
     flip = flat(e.dxf.extrusion)
     c, m, ratio = e.dxf.center, e.dxf.major_axis, e.dxf.ratio
     major = np.array([m.x, m.y])
@@ -140,37 +170,29 @@ def _ellipse(e: Dxf, tol: float) -> Shape:
     sweep = (end - start) % (2 * pi)
     full = sweep < 1e-6 or sweep > 2 * pi - FULL_RAD
     start, sweep = (0.0, 2 * pi) if full else (start % (2 * pi), sweep)
-    xyb = fit_arcs(ellipse(np.array([c.x, c.y]), major, minor, start, start + sweep), tol)
-    return Shape(xyb[:-1] if full else xyb, full, c.z, c.z)
+    return _Smooth(ellipse(np.array([c.x, c.y]), major, minor, start, start + sweep), c.z, c.z, full)
 
 
-def _spline(e: Dxf, tol: float) -> Shape:
+def _spline(e: Dxf) -> Shape | _Smooth | UnusableEntityError:
     control = np.asarray(e.control_points, dtype=np.float64)
     if len(control):
-        data = SplineData(control, e.knots, e.weights, e.dxf.degree)
-    else:
-        tool = e.construction_tool()
-        control = np.array([(p.x, p.y, p.z) for p in tool.control_points])
-        data = SplineData(control, tool.knots(), tool.weights(), tool.degree)
-    return _spline_shape(data, tol)
+        return _of_spline(SplineData(control, e.knots, e.weights, e.dxf.degree))
+    tool = e.construction_tool()
+    control = np.array([(p.x, p.y, p.z) for p in tool.control_points])
+    return _of_spline(SplineData(control, tool.knots(), tool.weights(), tool.degree))
 
 
-def _spline_shape(data: SplineData, tol: float) -> Shape:
+def _of_spline(data: SplineData) -> Shape | _Smooth | UnusableEntityError:
     control = data.control
     if not np.abs(control).max(initial=0.0) <= FAR:
         raise UnusableEntityError("a control point is out of all bounds")
+    low, high = float(control[:, 2].min()), float(control[:, 2].max())
     if data.degree == 1:
-        xyb = np.column_stack([control[:, :2], np.zeros(len(control))])
-    else:
-        xyb = fit_arcs(nurbs(data.degree, data.knots, control[:, :2], data.weights), tol)
-    if len(xyb) < 2:
-        raise UnusableEntityError("the spline is a single point")
-    z = control[:, 2]
-    shut = len(xyb) > 2 and hypot(*(xyb[0, :2] - xyb[-1, :2])) <= 1e-9 * max(1.0, float(np.abs(xyb[:, :2]).max()))
-    return Shape(xyb[:-1] if shut else xyb, shut, float(z.min()), float(z.max()))
+        return _drawn(np.column_stack([control[:, :2], np.zeros(len(control))]), low, high, closed=None)
+    return _Smooth(nurbs(data.degree, data.knots, control[:, :2], data.weights), low, high, closed=None)
 
 
-def _lwpolyline(e: Dxf, _tol: float) -> Shape:
+def _lwpolyline(e: Dxf) -> Shape:
     rows = np.array(e.get_points("xyb"), dtype=np.float64).reshape(-1, 3)
     return polyline_shape(rows, e.dxf.flags, e.dxf.elevation, flat(e.dxf.extrusion))
 
@@ -181,7 +203,7 @@ def polyline_shape(rows: Floats, flags: int, height: float, flip: float) -> Shap
     return _from_rows(rows * np.array([flip, 1.0, flip]), closed=bool(flags & 1), z=(z, z))
 
 
-def _polyline(e: Dxf, _tol: float) -> Shape:
+def _polyline(e: Dxf) -> Shape:
     if e.is_poly_face_mesh or e.is_polygon_mesh:
         raise UnusableEntityError("it is a mesh")
     # flag 16: a control point of the spline frame, beside the vertices that draw the curve
@@ -225,7 +247,7 @@ def _from_rows(rows: Floats, *, closed: bool, z: tuple[float, float]) -> Shape:
     return Shape(split_arcs(rows, closed=closed), closed, *z)
 
 
-_MAKERS: dict[str, Callable[[Dxf, float], Shape]] = {
+_MAKERS: dict[str, Callable[[Dxf], Shape | _Smooth | UnusableEntityError]] = {
     "LINE": _line,
     "ARC": _arc,
     "CIRCLE": _circle,
@@ -234,4 +256,3 @@ _MAKERS: dict[str, Callable[[Dxf, float], Shape]] = {
     "LWPOLYLINE": _lwpolyline,
     "POLYLINE": _polyline,
 }
-_MADE: dict[type, Callable[[Dxf, float], Shape]] = {Shape: _as_it_is, SplineData: _spline_shape}

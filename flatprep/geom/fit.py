@@ -1,9 +1,14 @@
 """Arcs in place of smooth curves: biarcs that meet the curve's points and tangents."""
 
-import numpy as np
+from collections.abc import Sequence
 
-from flatprep.geom.bulge import Floats, arc
-from flatprep.geom.smooth import Smooth
+import numpy as np
+import numpy.typing as npt
+
+from flatprep.geom.bulge import Floats, Ints, arc
+from flatprep.geom.smooth import Evaluate, Smooth
+
+Bools = npt.NDArray[np.bool_]
 
 _INNER = np.arange(1, 8) / 8.0
 """Where between its ends a biarc is held against the curve."""
@@ -25,35 +30,69 @@ def fit_arcs(curve: Smooth, tol_mm: float) -> Floats:
     ndarray, shape (n, 3)
         A single arc or line where one is enough (a spline that draws a circle comes out as the circle).
     """
-    whole = _single_arc(curve, tol_mm)
-    if whole is not None:
-        return whole
-    lo, hi = curve.breaks[:-1], curve.breaks[1:]
-    pieces: list[tuple[Floats, Floats]] = []
+    return fit_all([curve], tol_mm)[0]
+
+
+def fit_all(curves: Sequence[Smooth], tol_mm: float) -> list[Floats]:
+    """Fit arcs to many curves at once; see `fit_arcs`."""
+    kinds: dict[tuple[str, int], list[int]] = {}
+    for k, curve in enumerate(curves):
+        kinds.setdefault(curve.kind, []).append(k)
+    out = [np.empty((0, 3))] * len(curves)
+    for members in kinds.values():
+        alike = [curves[k] for k in members]
+        fitted = _fit_alike(alike, alike[0].together(alike), tol_mm)
+        for k, xyb in zip(members, fitted, strict=True):
+            out[k] = xyb
+    return out
+
+
+def _fit_alike(curves: Sequence[Smooth], evaluate: Evaluate, tol_mm: float) -> list[Floats]:
+    singles = _single_arcs([curve.breaks for curve in curves], evaluate, tol_mm)
+    left = [k for k, single in enumerate(singles) if single is None]
+    breaks = [curves[k].breaks for k in left]
+    which = np.repeat(np.array(left, dtype=np.intp), [len(u) - 1 for u in breaks])
+    pieces = iter(_rows(evaluate, which, breaks, tol_mm) if left else ())
+    return [next(pieces) if single is None else single for single in singles]
+
+
+def _rows(evaluate: Evaluate, which: Ints, breaks: Sequence[Floats], tol_mm: float) -> list[Floats]:
+    """Biarcs, halved until they are near enough: one polyline for each curve."""
+    lo, hi = np.concatenate([u[:-1] for u in breaks]), np.concatenate([u[1:] for u in breaks])
+    pieces: list[tuple[Ints, Floats, Floats]] = []
     for halving in range(_MOST_HALVINGS + 1):
-        joints, bulges, error = _biarcs(curve, lo, hi)
+        joints, bulges, error = _biarcs(evaluate, which, lo, hi)
         good = (error <= tol_mm) | (halving == _MOST_HALVINGS)
-        pieces.append((lo[good], np.hstack([joints[good], bulges[good]])))
+        pieces.append((which[good], lo[good], np.hstack([joints[good], bulges[good]])))
         if good.all():
             break
-        middle = (lo[~good] + hi[~good]) / 2.0
+        which, middle = which[~good], (lo[~good] + hi[~good]) / 2.0
         lo, hi = np.concatenate([lo[~good], middle]), np.concatenate([middle, hi[~good]])
-    at = np.concatenate([p[0] for p in pieces])
-    rows = np.concatenate([p[1] for p in pieces])[np.argsort(at, kind="stable")]
-    end = curve.evaluate(curve.breaks[-1:])[0]
-    out = np.empty((2 * len(rows) + 1, 3))
-    out[0:-1:2] = rows[:, [0, 1, 4]]
-    out[1::2] = rows[:, [2, 3, 5]]
-    out[-1] = (end[0, 0], end[0, 1], 0.0)
-    return _without_empty(out)
+        which = np.concatenate([which, which])
+    owner, at, rows = (np.concatenate(column) for column in zip(*pieces, strict=True))
+    order = np.lexsort((at, owner))
+    owner, rows = owner[order], rows[order]
+    curves, counts = np.unique(owner, return_counts=True)
+    ends = evaluate(curves, np.array([u[-1] for u in breaks]))[0]
+    sizes = 2 * counts + 1
+    last = np.cumsum(sizes) - 1
+    joint = np.ones(last[-1] + 1, dtype=bool)
+    joint[last] = False
+    out = np.empty((len(joint), 3))
+    out[last] = np.column_stack([ends, np.zeros(len(ends))])
+    out[joint] = rows[:, [0, 1, 4, 2, 3, 5]].reshape(-1, 3)
+    # a piece without length, between two points that are one
+    keep = np.append(np.hypot(*np.diff(out[:, :2], axis=0).T) > 1e-9, True) | ~joint
+    return np.split(out[keep], np.cumsum(np.add.reduceat(keep.astype(np.intp), last - sizes + 1))[:-1])
 
 
-def _biarcs(curve: Smooth, lo: Floats, hi: Floats) -> tuple[Floats, Floats, Floats]:
+def _biarcs(evaluate: Evaluate, which: Ints, lo: Floats, hi: Floats) -> tuple[Floats, Floats, Floats]:
     """Start and joint (n, 4), the two bulges (n, 2), and the largest distance (n,) of each piece's biarc."""
     inward = (hi - lo) * 1e-9  # tangents are taken just inside: at a kink each side has its own
     n = len(lo)
     inner = (lo[:, None] + (hi - lo)[:, None] * _INNER[None, :]).ravel()
-    xy, slope = curve.evaluate(np.concatenate([lo, hi, lo + inward, hi - inward, inner]))
+    of = np.concatenate([which, which, which, which, np.repeat(which, len(_INNER))])
+    xy, slope = evaluate(of, np.concatenate([lo, hi, lo + inward, hi - inward, inner]))
     p0, p1, sample = xy[:n], xy[n : 2 * n], xy[4 * n :].reshape(n, len(_INNER), 2)
     t0, t1 = _unit(slope[2 * n : 3 * n]), _unit(slope[3 * n : 4 * n])
     chord = p1 - p0
@@ -94,22 +133,68 @@ def _off(points: Floats, start: Floats, end: Floats, bulge: Floats) -> Floats:
     return np.where(length[:, None] > 0, inside, np.hypot(local[..., 0], local[..., 1]))
 
 
-def _single_arc(curve: Smooth, tol_mm: float) -> Floats | None:
-    """Return the whole curve as one line or one arc, where it is one within the tolerance."""
+def _single_arcs(breaks: Sequence[Floats], evaluate: Evaluate, tol_mm: float) -> list[Floats | None]:
+    """Return whole curves as one line or one arc each, where they are one within the tolerance."""
     steps = np.linspace(0.0, 1.0, 9)[:-1]
-    t = np.append((curve.breaks[:-1, None] + np.diff(curve.breaks)[:, None] * steps).ravel(), curve.breaks[-1])
-    xy, _ = curve.evaluate(t)
+    params = [np.append((u[:-1, None] + np.diff(u)[:, None] * steps).ravel(), u[-1]) for u in breaks]
+    counts = np.array([len(t) for t in params])
+    which = np.repeat(np.arange(len(params)), counts)
+    xy, _ = evaluate(which, np.concatenate(params))
+    first = np.cumsum(counts) - counts
+    a, z = xy[first], xy[first + counts - 1]
+    straight = _straight(xy, which, first, tol_mm)
+    hopeless = _far_from_circles(xy, which, counts, tol_mm)
+    out: list[Floats | None] = []
+    for k, points in enumerate(np.split(xy, first[1:])):
+        if straight[k]:
+            out.append(np.array([[*a[k], 0.0], [*z[k], 0.0]]))
+        else:
+            out.append(None if hopeless[k] else _one_arc(points, tol_mm))
+    return out
+
+
+def _straight(xy: Floats, which: Ints, first: Ints, tol_mm: float) -> Bools:
+    """Whether the points of each curve lie along the line between its ends, one after the other."""
+    last = np.append(first[1:], len(xy)) - 1
+    chord = xy[last] - xy[first]
+    length = np.hypot(chord[:, 0], chord[:, 1])
+    size = (np.maximum.reduceat(xy, first) - np.minimum.reduceat(xy, first)).max(axis=1)
+    ray, way = xy - xy[first][which], chord[which]
+    aside = np.maximum.reduceat(np.abs(ray[:, 1] * way[:, 0] - ray[:, 0] * way[:, 1]), first)
+    step = np.append(np.diff(np.sum(ray * way, axis=1)), 0.0)
+    step[last] = 0.0
+    back = np.minimum.reduceat(step, first)
+    sound = (length > 0.5 * size) & (size > 0.0) & (aside <= tol_mm * length)
+    return np.asarray(sound & (back >= -1e-9 * length * length))
+
+
+def _far_from_circles(xy: Floats, which: Ints, counts: Ints, tol_mm: float) -> Bools:
+    """Which curves are surely no arcs: the circle of least algebraic distance (Kåsa 1976) is far from a point.
+
+    It is worked out here by its normal equations, which tell nothing of points that lie nearly in line.
+    """
+    first = np.cumsum(counts) - counts
+
+    def mean(v: Floats) -> Floats:
+        return np.asarray(np.add.reduceat(v, first) / counts)
+
+    x, y = (v - mean(v)[which] for v in xy.T)
+    squares = x * x + y * y
+    a, b, d, e, f = (mean(v) for v in (x * x, x * y, y * y, x * squares / 2.0, y * squares / 2.0))
+    det = a * d - b * b
+    told = det > 1e-6 * np.maximum(a, d) ** 2
+    safe = np.where(told, det, 1.0)
+    cx, cy = (e * d - b * f) / safe, (a * f - e * b) / safe
+    r = np.sqrt(cx * cx + cy * cy + mean(squares))
+    off = np.abs(np.hypot(x - cx[which], y - cy[which]) - r[which])
+    return np.asarray(told & (np.maximum.reduceat(off, first) > 2.0 * tol_mm))
+
+
+def _one_arc(xy: Floats, tol_mm: float) -> Floats | None:
+    """Return points, shape (n, 2), as one arc through the first and the last, where they lie on one."""
     a, z = xy[0], xy[-1]
-    chord = z - a
-    length = float(np.hypot(*chord))
-    size = float(np.ptp(xy, axis=0).max())
-    if size == 0.0:
+    if not np.ptp(xy, axis=0).any():
         return None
-    if length > 0.5 * size:
-        off = (xy - a) @ np.array([-chord[1], chord[0]]) / length
-        forward = np.diff((xy - a) @ chord)
-        if np.abs(off).max() <= tol_mm and (forward >= -1e-9 * length * length).all():
-            return np.array([[a[0], a[1], 0.0], [z[0], z[1], 0.0]])
     fitted = _circle_through(xy)
     if fitted is None:
         return None
@@ -143,11 +228,6 @@ def _circle_through(xy: Floats) -> tuple[float, float, float] | None:
     if squared <= 0.0:
         return None
     return float(middle[0] + solution[0]), float(middle[1] + solution[1]), float(np.sqrt(squared))
-
-
-def _without_empty(xyb: Floats) -> Floats:
-    keep = np.append(np.hypot(*np.diff(xyb[:, :2], axis=0).T) > 1e-9, True)
-    return np.asarray(xyb[keep], dtype=np.float64)
 
 
 def _unit(v: Floats) -> Floats:

@@ -7,7 +7,7 @@ import pytest
 from ezdxf.math import BSpline
 
 from flatprep.geom import bulge
-from flatprep.geom.fit import fit_arcs
+from flatprep.geom.fit import fit_all, fit_arcs
 from flatprep.geom.smooth import ellipse, nurbs
 
 
@@ -88,3 +88,46 @@ def test_points_that_are_no_numbers_are_passed_on_without_a_word(capfd):
     curve = ellipse(np.zeros(2), np.array([np.nan, 5.0]), np.array([-5.0, 1.0]), 0.0, pi)
     assert not np.isfinite(fit_arcs(curve, 0.001)).all()
     assert capfd.readouterr().out == ""
+
+
+def test_many_curves_at_once_as_each_by_itself():
+    rng = np.random.default_rng(7)
+    curves = [
+        whole_ellipse(40, 8),
+        whole_ellipse(50, 50),
+        ellipse(np.zeros(2), np.array([9.0, 2]), np.array([-1.0, 4]), 0.3, 2),
+    ]
+    for degree in (2, 3, 3, 5):
+        n = degree + 1 + int(rng.integers(0, 6))
+        knots = [0.0] * degree + np.arange(n - degree + 1.0).tolist() + [float(n - degree)] * degree
+        curves.append(nurbs(degree, knots, rng.uniform(0, 60, (n, 2)), rng.uniform(0.5, 2, n).tolist()))
+    line = np.column_stack([np.linspace(0, 30, 4), np.linspace(5, 1, 4)])
+    curves.insert(4, nurbs(3, [0, 0, 0, 0, 1, 1, 1, 1], line))
+    curves.append(nurbs(2, [0, 0, 0, 1, 1, 1], np.array([[10.0, 0], [10, 10], [0, 10]]), [1, np.sqrt(0.5), 1]))
+    together = fit_all(curves, 0.001)
+    assert [len(xyb) for xyb in together] == [len(fit_arcs(curve, 0.001)) for curve in curves]
+    for xyb, curve in zip(together, curves, strict=True):
+        assert xyb == pytest.approx(fit_arcs(curve, 0.001), abs=1e-12)
+
+
+def test_no_curves():
+    assert fit_all([], 0.001) == []
+
+
+@pytest.mark.parametrize("sweep", [0.004, 0.05, 1.0, 3.0, 6.0])
+@pytest.mark.parametrize("off", [0.0, 0.0008, 0.003])
+def test_arcs_are_told_from_what_is_nearly_one(sweep, off):
+    """Points on a circle of radius 100, every other one `off` outside: within 0.001 only while half of `off` is.
+
+    The chords between them rise by 100 (6 / 2000)^2 / 8 = 0.0001 at the most.
+    """
+    n = 2001
+    angle = np.linspace(0.0, sweep, n)
+    radius = 100.0 + off * (np.arange(n) % 2)
+    xy = np.column_stack([radius * np.cos(angle), radius * np.sin(angle)])
+    knots = [0.0, *np.arange(float(n)).tolist(), n - 1.0]
+    made = fit_arcs(nurbs(1, knots, xy), 0.001)
+    if off <= 0.0008:
+        assert len(made) == (2 if sweep <= pi else 3)
+    else:
+        assert len(made) > 3
