@@ -51,16 +51,12 @@ def crossings(rings: Sequence[Chain], shapes: Polygons) -> Crossings:
     for i in sorted(selfish):
         faults.append(Fault("self-crossing", _where(shapes[i]), None, _handles(rings[i]), "the outline crosses itself"))
     sound = np.array([i for i in range(len(rings)) if i not in selfish], dtype=np.int64)
-    shared: list[tuple[int, int]] = []
-    crossed: list[tuple[int, int]] = []
     borders = shapely.boundary(shapes[sound])
     a, b = STRtree(borders).query(borders, predicate="dwithin", distance=_TOUCH_MM)
-    for i, j in sorted((int(sound[p]), int(sound[q])) for p, q in zip(a, b, strict=True) if p < q):
-        edge = _common_edge(shapes[i], shapes[j])
-        if edge is not None:
-            shared.append((i, j))
-        elif _overlap(shapes[i], shapes[j]):
-            crossed.append((i, j))
+    near = sorted((int(sound[p]), int(sound[q])) for p, q in zip(a, b, strict=True) if p < q)
+    edges = _common_edges(shapes, near)
+    shared = [pair for pair, edge in zip(near, edges, strict=True) if edge is not None]
+    crossed = _overlapping(shapes, [pair for pair, edge in zip(near, edges, strict=True) if edge is None])
     in_strips = {i for pair in shared for i in pair}
     # a strip that shares an edge with one neighbour and overlaps another belongs to the same outline
     clusters = _clusters([*shared, *(pair for pair in crossed if in_strips & set(pair))])
@@ -68,30 +64,40 @@ def crossings(rings: Sequence[Chain], shapes: Polygons) -> Crossings:
         place = shapely.intersection(shapely.boundary(shapes[i]), shapely.boundary(shapes[j])).representative_point()
         both = _handles(rings[i]) + _handles(rings[j])
         faults.append(Fault("self-crossing", (place.x, place.y), None, both, "two outlines cross each other"))
-    for i, j in shared:
-        place = _common_edge(shapes[i], shapes[j])
-        at = None if place is None else (place.x, place.y)
-        both = _handles(rings[i]) + _handles(rings[j])
-        faults.append(Fault("duplicate-line", at, None, both, "two outlines share an edge: taken as one"))
+    for (i, j), place in zip(near, edges, strict=True):
+        if place is not None:
+            both = _handles(rings[i]) + _handles(rings[j])
+            what = "two outlines share an edge: taken as one"
+            faults.append(Fault("duplicate-line", (place.x, place.y), None, both, what))
     return Crossings(selfish, clusters, tuple(faults))
 
 
-def _common_edge(a: shapely.Polygon, b: shapely.Polygon) -> shapely.Point | None:
+def _common_edges(shapes: Polygons, pairs: Sequence[tuple[int, int]]) -> list[shapely.Point | None]:
     """Middle of the stretch along which two borders run together, None where they only meet at points or cross."""
-    near = shapely.intersection(shapely.boundary(a), shapely.buffer(shapely.boundary(b), _TOUCH_MM, quad_segs=1))
-    pieces = [g for g in shapely.get_parts(near).tolist() if g.length > _EDGE_MM]
-    if not pieces:
-        return None
-    longest = max(pieces, key=lambda g: float(g.length))
-    return longest.interpolate(0.5, normalized=True)
+    if not pairs:
+        return []
+    first, second = np.array(pairs).T
+    belts, own = np.unique(second, return_inverse=True)
+    around = shapely.buffer(shapely.boundary(shapes[belts]), _TOUCH_MM, quad_segs=1)
+    near = shapely.intersection(shapely.boundary(shapes[first]), around[own])
+    out: list[shapely.Point | None] = []
+    for stretch in near:
+        pieces = shapely.get_parts(stretch)
+        lengths = shapely.length(pieces)
+        k = int(np.argmax(lengths)) if len(pieces) else -1
+        out.append(pieces[k].interpolate(0.5, normalized=True) if k >= 0 and lengths[k] > _EDGE_MM else None)
+    return out
 
 
-def _overlap(a: shapely.Polygon, b: shapely.Polygon) -> bool:
-    """Tell whether both have area of their own and area in common."""
-    common = shapely.intersection(a, b).area
-    return bool(
-        common > _TOUCH_AREA_MM2 and min(a.area, b.area) - common > max(_TOUCH_AREA_MM2, 1e-4 * min(a.area, b.area))
-    )
+def _overlapping(shapes: Polygons, pairs: Sequence[tuple[int, int]]) -> list[tuple[int, int]]:
+    """Pairs that both have area of their own and area in common."""
+    if not pairs:
+        return []
+    a, b = shapes[np.array(pairs)].T
+    common = shapely.area(shapely.intersection(a, b))
+    least = np.minimum(shapely.area(a), shapely.area(b))
+    cross = (common > _TOUCH_AREA_MM2) & (least - common > np.maximum(_TOUCH_AREA_MM2, 1e-4 * least))
+    return [pair for pair, one in zip(pairs, cross.tolist(), strict=True) if one]
 
 
 def _clusters(pairs: Sequence[tuple[int, int]]) -> tuple[tuple[int, ...], ...]:

@@ -81,7 +81,8 @@ def _sound(rings: Sequence[Chain], shapes: Polygons, found: Crossings) -> tuple[
     """Contours that neither cross themselves nor share edges."""
     if not found.selfish and not found.clusters:
         return list(rings), shapes
-    out = [r for i, r in enumerate(rings) if i not in found.selfish and i not in found.touching]
+    unsound = found.selfish | found.touching
+    out = [r for i, r in enumerate(rings) if i not in unsound]
     for i in sorted(found.selfish):
         out += even_odd(rings[i])
     for cluster in found.clusters:

@@ -9,13 +9,22 @@ from dataclasses import dataclass
 
 import numpy as np
 import numpy.typing as npt
-from shapely import STRtree, get_parts, linestrings, points, polygonize, unary_union
+from shapely import STRtree, distance, get_parts, linestrings, points, polygonize, unary_union
 from shapely.geometry import LineString, Polygon
 from shapely.geometry.base import BaseGeometry
 
 from flatprep.drawing.chain import Chain
 from flatprep.drawing.ends import node_ids
-from flatprep.geom.bulge import Floats, Segments, length, points_along, segments, split_arcs
+from flatprep.geom.bulge import (
+    Floats,
+    Segments,
+    chord_counts,
+    chord_starts,
+    length,
+    points_along,
+    segments,
+    split_arcs,
+)
 from flatprep.geom.polygons import polygon
 from flatprep.model.drawing import Curve
 
@@ -54,7 +63,7 @@ def regions_of_net(curves: Sequence[Curve], join_mm: float) -> Regions:
         An end this near to another curve is taken to touch it.
     """
     lines = _with_common_ends(curves, join_mm)
-    lines = [_onto_neighbours(line, lines, join_mm) for line in lines]
+    lines = _onto_neighbours(lines, join_mm)
     faces = polygonize(get_parts(unary_union(lines, grid_size=_GRID_MM)).tolist())
     whole = unary_union(get_parts(faces).tolist())
     return _regions(whole, curves)
@@ -138,17 +147,22 @@ def _with_common_ends(curves: Sequence[Curve], join_mm: float) -> list[LineStrin
     return [LineString(xy) for xy in chords]
 
 
-def _onto_neighbours(line: LineString, lines: Sequence[LineString], reach: float) -> LineString:
-    """Move dangling ends that stop just short of another line onto it."""
-    coords = np.asarray(line.coords).copy()
-    for k in (0, -1):
-        end = points(coords[k])
-        near = [other for other in lines if other is not line and 0.0 < other.distance(end) <= reach]
-        touched = any(other is not line and other.distance(end) == 0.0 for other in lines)
-        if near and not touched:
-            best = min(near, key=lambda other: float(other.distance(end)))
-            coords[k] = np.asarray(best.interpolate(best.project(end)).coords[0])
-    return LineString(coords)
+def _onto_neighbours(lines: Sequence[LineString], reach: float) -> list[LineString]:
+    """Move dangling ends that stop just short of another line onto the nearest one."""
+    chords = [np.asarray(line.coords).copy() for line in lines]
+    ends = points(np.array([xy[k] for xy in chords for k in (0, -1)]))
+    end, other = STRtree(lines).query(ends, predicate="dwithin", distance=reach)
+    foreign = end // 2 != other
+    end, other = end[foreign], other[foreign]
+    gap = distance(ends[end], np.array(lines, dtype=object)[other])
+    touching = set(end[gap == 0.0].tolist())
+    order = np.lexsort((other, gap, end))
+    nearest = order[np.unique(end[order], return_index=True)[1]]
+    for e, k in zip(end[nearest].tolist(), other[nearest].tolist(), strict=True):
+        if e not in touching:
+            line = lines[k]
+            chords[e // 2][-(e % 2)] = np.asarray(line.interpolate(line.project(ends[e])).coords[0])
+    return [LineString(xy) for xy in chords]
 
 
 class _Source:
@@ -158,18 +172,13 @@ class _Source:
         per_curve = [segments(c.xyb, closed=c.closed) for c in curves]
         self._handles = [c.handle for c, s in zip(curves, per_curve, strict=True) for _ in range(len(s))]
         names = Segments.__dataclass_fields__
-        self._seg = Segments(*(np.concatenate([getattr(s, k) for s in per_curve]) for k in names))
-        chords, owner = [], []
-        offset = 0
-        for seg in per_curve:
-            for k in range(len(seg)):
-                row = np.array([[*seg.start[k], seg.bulge[k]], [*seg.end[k], 0.0]])
-                p = points_along(row, closed=False, chord_mm=CHORD_MM)
-                chords.append(np.stack([p[:-1], p[1:]], axis=1))
-                owner += [offset + k] * (len(p) - 1)
-            offset += len(seg)
-        self._owner = np.array(owner)
-        self._tree = STRtree(linestrings(np.concatenate(chords)))
+        seg = self._seg = Segments(*(np.concatenate([getattr(s, k) for s in per_curve]) for k in names))
+        start, self._owner = chord_starts(seg, chord_counts(seg, CHORD_MM))
+        # a segment's last chord runs to its end
+        end = np.vstack([start[1:], start[:1]])
+        last = np.append(np.diff(self._owner) > 0, True)
+        end[last] = seg.end
+        self._tree = STRtree(linestrings(np.stack([start, end], axis=1)))
         self._vertices = np.vstack([self._seg.start, self._seg.end])
         self._corners = STRtree(points(self._vertices))
 

@@ -1,5 +1,6 @@
 """What a hole is, however it was drawn: circle, obround, rectangle, hexagon, or some other shape."""
 
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from enum import StrEnum
 from math import atan2, cos, hypot, pi, sin
@@ -9,8 +10,11 @@ import numpy.typing as npt
 import shapely
 
 from flatprep.geom import bulge
-from flatprep.geom.bulge import Floats
+from flatprep.geom.bulge import Floats, Ints
+from flatprep.geom.rings import Rings
 from flatprep.model.drawing import Contour
+
+Bools = npt.NDArray[np.bool_]
 
 NEAR_MM = 0.02
 """Chords this near to a circle, and corners this near to a shape, stand for it."""
@@ -111,10 +115,17 @@ class _Edges:
 
 def recognise(contour: Contour) -> Hole:
     """Name the shape of a closed contour and measure it."""
-    found = _two_halves(contour) or _four_edges(contour) or _drawn_circle(contour)
-    if found is not None:
-        return found
-    edges = _edges(contour.xyb)
+    return recognise_all([contour])[0]
+
+
+def recognise_all(contours: Sequence[Contour]) -> tuple[Hole, ...]:
+    """Name and measure many contours; what asks for numpy is asked of all of them at once."""
+    found = [_two_halves(c) or _four_edges(c) or _drawn_circle(c) for c in contours]
+    edges = iter(_edges_of([c.xyb for c, hole in zip(contours, found, strict=True) if hole is None]))
+    return tuple(_looked_at(c, next(edges)) if hole is None else hole for c, hole in zip(contours, found, strict=True))
+
+
+def _looked_at(contour: Contour, edges: _Edges) -> Hole:
     for look in (_chord_circle, _hexagon, _rectangle, _obround):
         found = look(contour, edges)
         if found is not None:
@@ -170,22 +181,48 @@ def _after(rows: Floats) -> Floats:
     return np.concatenate((rows[1:], rows[:1]))
 
 
-def _edges(xyb: Floats) -> _Edges:
+def _edges_of(polylines: Sequence[Floats]) -> list[_Edges]:
     """Leave out empty edges and vertices in the middle of a straight run."""
-    step = _after(xyb[:, :2]) - xyb[:, :2]
+    plain = list(polylines)
+    todo = list(range(len(plain)))
+    while todo:
+        rings = Rings.of([plain[k] for k in todo])
+        keep = _joints(rings)
+        thinner = np.split(rings.rows[keep], np.cumsum(np.add.reduceat(keep.astype(np.intp), rings.first))[:-1])
+        again = [(k, xyb) for k, xyb in zip(todo, thinner, strict=True) if len(xyb) < len(plain[k])]
+        for k, xyb in again:
+            plain[k] = xyb
+        todo = [k for k, _ in again]
+    rings = Rings.of(plain)
+    step = rings.rows[rings.following, :2] - rings.rows[:, :2]
     length = np.hypot(step[:, 0], step[:, 1])
-    if length.min() <= 1e-9 < length.max():
-        return _edges(xyb[length > 1e-9])
-    thin = _without_flat_joints(xyb)
-    return _Edges(xyb, step, length, xyb[:, 2] == 0.0) if len(thin) == len(xyb) else _edges(thin)
+    ends = (rings.first + rings.counts).tolist()
+    return [
+        _Edges(xyb, step[a:z], length[a:z], xyb[:, 2] == 0.0)
+        for xyb, a, z in zip(plain, rings.first.tolist(), ends, strict=True)
+    ]
 
 
-def _without_flat_joints(xyb: Floats) -> Floats:
+def _joints(rings: Rings) -> Bools:
+    """Vertices that stay: all but those of empty edges, or where none is empty every other one of a straight run."""
+    nxt, first, owner = rings.following, rings.first, rings.owner
+    length = np.hypot(*(rings.rows[nxt, :2] - rings.rows[:, :2]).T)
+    empties = (np.minimum.reduceat(length, first) <= 1e-9) & (np.maximum.reduceat(length, first) > 1e-9)
+    keep = ~empties[owner] | (length > 1e-9)
+    settled = empties
+    before = np.empty_like(nxt)
+    before[nxt] = np.arange(len(nxt))
+    flat = _between(rings.rows, before, nxt, FLAT_MM)
+    number = np.arange(len(nxt)) - first[owner]
+    last = first + rings.counts - 1
     for parity in range(2):
-        kept = _every_other(xyb, FLAT_MM, parity)
-        if 3 <= len(kept) < len(xyb):
-            return kept
-    return xyb
+        drop = flat & (number % 2 != parity)
+        drop[last] &= ~drop[first]  # the last and the first are neighbours too
+        left = rings.counts - np.add.reduceat(drop.astype(np.intp), first)
+        use = ~settled & (left >= 3) & (left < rings.counts)
+        keep &= ~(drop & use[owner])
+        settled = settled | use
+    return np.asarray(keep)
 
 
 def _middles(e: _Edges) -> Floats:
@@ -332,22 +369,28 @@ def _thinned(e: _Edges) -> Floats | None:
     kept = e.xyb
     # chords grow, and with them what leaving one out costs; all together at most `THIN_MM`
     for share in (1 / 512, 1 / 128, 1 / 32, 1 / 8, 1 / 2):
-        kept = _every_other(kept, THIN_MM * share, 1)
+        kept = _every_other(kept, THIN_MM * share)
     return kept if len(kept) < 0.7 * len(e.xyb) else None
 
 
-def _every_other(xyb: Floats, most_mm: float, parity: int) -> Floats:
-    """Leave out vertices between lines, odd or even ones, that lie within `most_mm` of the chord past them."""
-    straight = xyb[:, 2] == 0.0
-    before, after = np.concatenate((xyb[-1:], xyb[:-1]))[:, :2], _after(xyb)[:, :2]
-    chord, ray = after - before, xyb[:, :2] - before
-    size = np.hypot(chord[:, 0], chord[:, 1])
-    along = (chord * ray).sum(axis=1)
-    drop = np.abs(chord[:, 0] * ray[:, 1] - chord[:, 1] * ray[:, 0]) <= most_mm * size
-    drop &= (along > 0) & (along < size * size) & straight & np.concatenate((straight[-1:], straight[:-1]))
-    drop[parity::2] = False
+def _every_other(xyb: Floats, most_mm: float) -> Floats:
+    """Leave out every other vertex, where it lies between lines within `most_mm` of the chord past it."""
+    rows = np.arange(len(xyb))
+    drop = _between(xyb, np.roll(rows, 1), np.roll(rows, -1), most_mm)
+    drop[1::2] = False
     drop[-1] &= not drop[0]  # the last and the first are neighbours too
     return xyb[~drop]
+
+
+def _between(xyb: Floats, before: Ints, after: Ints, most_mm: float) -> Bools:
+    """Which vertices lie between lines, within `most_mm` of the chord from the vertex before to the one after."""
+    straight = xyb[:, 2] == 0.0
+    start = xyb[before, :2]
+    chord, ray = xyb[after, :2] - start, xyb[:, :2] - start
+    size = np.hypot(chord[:, 0], chord[:, 1])
+    along = (chord * ray).sum(axis=1)
+    near = np.abs(chord[:, 0] * ray[:, 1] - chord[:, 1] * ray[:, 0]) <= most_mm * size
+    return np.asarray(near & (along > 0) & (along < size * size) & straight & straight[before])
 
 
 def inscribed_diameter(contour: Contour) -> float:

@@ -3,6 +3,7 @@
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field, replace
 from functools import cached_property
+from itertools import islice
 
 import numpy as np
 
@@ -10,7 +11,7 @@ from flatprep.base.tolerances import DEFAULT, Tolerances
 from flatprep.measure.boundary import Boundary, boundary, of_part
 from flatprep.measure.corners import LEAST_GAP_MM, Corner, inside_corners
 from flatprep.measure.facing import TooFineError
-from flatprep.measure.holes import Hole, HoleShape, recognise
+from flatprep.measure.holes import Hole, HoleShape, recognise_all
 from flatprep.measure.widths import Width, widths
 from flatprep.model.drawing import Part
 
@@ -77,7 +78,7 @@ class MeasuredPart:
 
     @cached_property
     def _together(self) -> _Together:
-        return self.others or _Together((_shapes(self.part),))
+        return self.others or _Together(_shapes([self.part]))
 
     @property
     def shapes(self) -> tuple[Hole, ...]:
@@ -149,9 +150,11 @@ class MeasuredPart:
 
 def measured_parts(parts: Sequence[Part], tol: Tolerances = DEFAULT) -> tuple[MeasuredPart, ...]:
     """Return the parts of a drawing, to be measured together."""
-    together = _Together(tuple(_shapes(part) for part in parts))
+    together = _Together(_shapes(parts))
     return tuple(MeasuredPart(part, tol, k, together) for k, part in enumerate(parts))
 
 
-def _shapes(part: Part) -> tuple[Hole, ...]:
-    return tuple(recognise(contour) for contour in part.contours)
+def _shapes(parts: Sequence[Part]) -> tuple[tuple[Hole, ...], ...]:
+    """Return the contours of each part by their shapes."""
+    found = iter(recognise_all([contour for part in parts for contour in part.contours]))
+    return tuple(tuple(islice(found, part.pierces)) for part in parts)

@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 
 from flatprep.geom import bulge
-from flatprep.measure.holes import HoleShape, inscribed_diameter, recognise
+from flatprep.measure.holes import HoleShape, inscribed_diameter, recognise, recognise_all
 from tests.measure.shapes import chorded, circle, contour, moved, obround, path, polygon, rectangle
 
 ARCS_OF_4 = path(*((x, y, np.tan(np.pi / 8)) for x, y in ((25, 0), (20, 5), (15, 0), (20, -5))))
@@ -133,3 +133,28 @@ def test_inscribed_circle():
     # the largest circle in a right triangle with legs 6 and 8 has radius (6 + 8 - 10) / 2 = 2
     assert inscribed_diameter(contour(path((0, 0), (8, 0), (0, 6)), hole=True)) == pytest.approx(4.0, abs=0.01)
     assert inscribed_diameter(contour(KEYHOLE, hole=True)) == pytest.approx(2.0, abs=0.01)
+
+
+def test_many_contours_at_once_as_each_by_itself():
+    shapes = [circle(20, 0, 5), polygon(20, 0, 5, 96), KEYHOLE, ARCS_OF_4, obround(3, 2, 30, 4), rectangle(1, 2, 9, 5)]
+    shapes += [polygon(3, 4, 8, 6), chorded(obround(0, 0, 30, 4), 0.01), polygon(0, 0, 5, 9)]
+    # a vertex drawn twice, and straight sides in many pieces
+    shapes.append(path((0, 0), (5, 0), (5, 0), (9, 0), (9, 7)))
+    sides = np.linspace(0.0, 1.0, 17)[:-1]
+    square = np.array([[0.0, 0], [40, 0], [40, 10], [0, 10]])
+    run = [tuple(a + (z - a) * s) for a, z in zip(square, np.roll(square, -1, axis=0), strict=True) for s in sides]
+    shapes.append(path(*run))
+    contours = [contour(xyb, hole=True) for xyb in shapes]
+    together = recognise_all(contours)
+    assert together[-1].shape is HoleShape.RECTANGLE
+    assert (together[-1].width_mm, together[-1].length_mm) == pytest.approx((10, 40))
+    for hole, one in zip(together, contours, strict=True):
+        alone = recognise(one)
+        assert hole.contour is one
+        assert (hole.shape, hole.chords) == (alone.shape, alone.chords)
+        figures = [(*h.at, h.width_mm, h.length_mm, h.angle_rad) for h in (hole, alone)]
+        assert figures[0] == pytest.approx(figures[1], abs=1e-12)
+
+
+def test_no_contours():
+    assert recognise_all([]) == ()
