@@ -1,6 +1,7 @@
 """Everything about a job in one folder: findings, layout, bench sheets, estimate, and the page that joins them."""
 
 import json
+import re
 import time
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
@@ -16,6 +17,7 @@ from flatprep.base.manifest import with_manifest
 from flatprep.base.progress import Progress
 from flatprep.base.safe_names import safe_stems
 from flatprep.bench.opposite import opposite_part, opposite_steps
+from flatprep.drawing.forms import Form
 from flatprep.model.drawing import Part
 from flatprep.model.estimate import Estimate
 from flatprep.model.finding import Finding
@@ -30,9 +32,26 @@ from flatprep.report.checklist_json import checklist_document
 from flatprep.report.estimate_csv import estimate_csv
 from flatprep.report.estimate_json import estimate_document
 from flatprep.report.html import bench_sheet_html, report_html
-from flatprep.report.layout_json import sheet_name
 from flatprep.report.lint_json import lint_document
 from flatprep.report.tables_csv import findings_csv, parts_csv, sheets_csv
+
+_TABLES = {
+    "parts.csv": "parts",
+    "findings.csv": "findings",
+    "steps.csv": "bench work",
+    "sheets.csv": "sheets",
+    "estimate.csv": "mass and cost",
+}
+_SHEETS = {
+    None: "for the cutter",
+    "tabs": "with the gaps of its tabs, the kerf allowed for",
+    "rest": "what is left of it",
+    str(Form.CUT_ONLY): "contours alone",
+    str(Form.R12): "as DXF R12",
+    str(Form.KERF): "the kerf allowed for",
+    str(Form.SHARED): "one cut for two parts",
+}
+"""What the sheet's drawings are, by the ends of their names."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -76,9 +95,12 @@ def prepare_job(
     points: list[SearchPoint] = []
     began = time.monotonic()
 
-    def better(layout: Layout) -> None:
+    def note(layout: Layout) -> None:
         if budget.steps is None:  # a budget in steps gives the same page every time
             points.append(_point(layout, time.monotonic() - began))
+
+    def better(layout: Layout) -> None:
+        note(layout)
         if on_better is not None:
             on_better(layout)
 
@@ -86,6 +108,7 @@ def prepare_job(
     if read.job.stock or read.job.rack:
         nested = nest_job(read, budget, progress=progress, on_better=better, stop=stop)
         read = nested.read
+        note(nested.layout)
     money = estimate_job(read, nested.layout if nested else None)
     rests = rests_of(nested) if nested else ()
     bundle = replace(_bundle(read, steps, money, nested, points), offcuts=_offcuts(rests))
@@ -107,7 +130,17 @@ def write_prepared(done: Prepared, folder: Path) -> None:
 
 
 def _files(done: Prepared, folder: Path) -> Iterator[tuple[Path, str | None]]:
-    """Yield every file with its text; report.html comes last."""
+    """Yield every file with its text; report.html comes last and names those before it."""
+    listed: list[tuple[str, str]] = []
+    for path, text in _results(done, folder):
+        yield path, text
+        what = _told(path.name) if path.parent == folder and text is not None else ""
+        listed += [(path.name, what)] if what else []
+    yield folder / "report.html", report_html(replace(done.bundle, files=tuple(listed)))
+
+
+def _results(done: Prepared, folder: Path) -> Iterator[tuple[Path, str | None]]:
+    """Yield all but the page."""
     if done.nested:
         yield from layout_files(done.nested, folder, done.rests)
     documents = {
@@ -127,7 +160,14 @@ def _files(done: Prepared, folder: Path) -> Iterator[tuple[Path, str | None]]:
         yield folder / "bench" / f"{stem}.html", bench_sheet_html(done.bundle, card)
         if card.part and card.quantity_opposite:
             yield folder / "bench" / f"{stem}-opposite.html", bench_sheet_html(done.bundle, _opposite(card, card.part))
-    yield folder / "report.html", report_html(done.bundle)
+
+
+def _told(name: str) -> str:
+    """Say what a file is for; empty for those that people do not open from the page."""
+    if name in _TABLES:
+        return _TABLES[name]
+    found = re.fullmatch(r"sheet-(\d+)(?:-([a-z0-9-]+))?\.dxf", name)
+    return f"sheet {int(found[1])}, {_SHEETS[found[2]]}" if found else ""
 
 
 def _opposite(card: PartCard, part: Part) -> PartCard:
@@ -142,14 +182,6 @@ def _bundle(
     read: ReadJob, steps: Checklist, money: Estimate, nested: Nested | None, points: Sequence[SearchPoint]
 ) -> Bundle:
     job = read.job
-    sheets = len(nested.layout.sheets) if nested else 0
-    files = [(f"{sheet_name(n)}.dxf", f"sheet {n}, for the cutter") for n in range(1, sheets + 1)]
-    files += [
-        ("parts.csv", "parts"),
-        ("findings.csv", "findings"),
-        ("steps.csv", "bench work"),
-        ("sheets.csv", "sheets"),
-    ]
     return Bundle(
         name=job.name,
         revision=job.revision,
@@ -160,7 +192,6 @@ def _bundle(
         estimate=money,
         checklist=steps,
         unreadable=tuple((u.file, u.message) for u in read.report.unreadable),
-        files=tuple(files),
         assumed=(*read.report.notes, *((*nested.warnings, *nested.notes) if nested else ())),
         cautions=steps.cautions,
         search=tuple(points),
@@ -217,6 +248,4 @@ def _assumed(piece: Piece) -> tuple[str, ...]:
 
 
 def _point(layout: Layout, seconds: float) -> SearchPoint:
-    last = layout.sheets[-1].used_length_mm if layout.sheets else 0.0
-    shares = [s.utilisation for s in layout.sheets]
-    return SearchPoint(seconds, len(layout.sheets), last, sum(shares) / len(shares) if shares else None)
+    return SearchPoint(seconds, len(layout.sheets), sum(sheet.used_length_mm for sheet in layout.sheets))

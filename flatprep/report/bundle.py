@@ -53,12 +53,11 @@ class PartCard:
 
 @dataclass(frozen=True, slots=True)
 class SearchPoint:
-    """An improvement of the nest: `length_mm` is the used length of the last sheet."""
+    """A state of the nest while it was searched: `length_mm` is the used length of all sheets together."""
 
     seconds: float
     sheets: int
     length_mm: float
-    utilisation: float | None = None
 
 
 @dataclass(frozen=True, slots=True)

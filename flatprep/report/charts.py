@@ -1,13 +1,13 @@
-"""Small pictures of figures: a share as a bar, the search's progress as a line."""
+"""Small pictures of figures: a share as a bar, the search's progress as lines."""
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 
 from flatprep.report.bundle import SearchPoint
-from flatprep.report.figures import duration, number
+from flatprep.report.figures import duration, length, number
 from flatprep.report.svg_tag import picture, tag, text
 
 _WIDTH, _HEIGHT = 640.0, 220.0
-_LEFT, _RIGHT, _TOP, _BOTTOM = 70.0, 12.0, 14.0, 34.0
+_LEFT, _RIGHT, _TOP, _BOTTOM = 110.0, 12.0, 14.0, 34.0
 
 
 def share_bar(share: float, label: str, *, limit: float | None = None) -> str:
@@ -22,43 +22,40 @@ def share_bar(share: float, label: str, *, limit: float | None = None) -> str:
     return svg.replace("<svg ", '<svg preserveAspectRatio="none" ', 1)
 
 
-def search_plot(points: Sequence[SearchPoint]) -> str:
-    """SVG of the best result so far against time; empty with fewer than two points."""
-    if len(points) < 2:
-        return ""
-    name, values = _plotted(points)
-    low, high = min(values), max(values)
-    room = (high - low) * 0.08 or max(abs(high) * 0.05, 0.5)
-    low, high = low - room, high + room
-    last = max(points[-1].seconds, 1e-9)
+def search_plot(points: Sequence[SearchPoint], units: str = "mm") -> str:
+    """SVG elements of sheets and of used length against time, each only where it changed; else empty."""
+    counts = [float(point.sheets) for point in points]
+    lengths = [point.length_mm for point in points]
+    seconds = [point.seconds for point in points]
+    series = (("Sheets", counts, lambda v: number(v, 0)), ("Used length", lengths, lambda v: length(v, units)))
+    return "".join(_plot(name, seconds, values, shown) for name, values, shown in series if len(set(values)) > 1)
 
-    def x_of(seconds: float) -> float:
-        return _LEFT + (_WIDTH - _LEFT - _RIGHT) * seconds / last
+
+def _plot(name: str, seconds: Sequence[float], values: Sequence[float], shown: Callable[[float], str]) -> str:
+    """Draw steps from one value to the next; `shown` writes a value with its unit."""
+    low, high = min(values), max(values)
+    room = (high - low) * 0.08
+    low, high = low - room, high + room
+    last = max(seconds[-1], 1e-9)
+
+    def x_of(second: float) -> float:
+        return _LEFT + (_WIDTH - _LEFT - _RIGHT) * second / last
 
     def y_of(value: float) -> float:
         return _TOP + (_HEIGHT - _TOP - _BOTTOM) * (high - value) / (high - low)
 
-    path = f"M{number(x_of(points[0].seconds), 2)} {number(y_of(values[0]), 2)}"
-    for point, value in zip(points[1:], values[1:], strict=True):
-        path += f"H{number(x_of(point.seconds), 2)}V{number(y_of(value), 2)}"
+    path = f"M{number(x_of(seconds[0]), 2)} {number(y_of(values[0]), 2)}"
+    for second, value in zip(seconds[1:], values[1:], strict=True):
+        path += f"H{number(x_of(second), 2)}V{number(y_of(value), 2)}"
     axis = f"M{_LEFT} {_TOP}V{_HEIGHT - _BOTTOM}H{_WIDTH - _RIGHT}"
+    ends = dict.fromkeys((values[0], values[-1]))
     body = [
         tag("path", class_="axis", d=axis),
         tag("path", class_="curve", d=path),
-        *(text(number(v, 1), _LEFT - 8, y_of(v) + 5, 14, class_="end") for v in dict.fromkeys((values[0], values[-1]))),
+        *(text(shown(v), _LEFT - 8, y_of(v) + 5, 14, class_="end") for v in ends),
         text("0 s", _LEFT, _HEIGHT - 14, 14),
         text(duration(last), _WIDTH - _RIGHT, _HEIGHT - 14, 14, class_="end"),
         text(f"{name} of the best layout against time", (_WIDTH + _LEFT) / 2, _HEIGHT - 14, 14, class_="middle"),
     ]
-    label = f"{name}: from {number(values[0], 1)} to {number(values[-1], 1)} in {duration(last)}"
+    label = f"{name}: from {shown(values[0])} to {shown(values[-1])} in {duration(last)}"
     return picture("".join(body), (0, 0, _WIDTH, _HEIGHT), css="plot", label=label)
-
-
-def _plotted(points: Sequence[SearchPoint]) -> tuple[str, list[float]]:
-    """Sheets where their number fell, else utilisation where it is known, else the used length."""
-    if len({p.sheets for p in points}) > 1:
-        return "Sheets", [float(p.sheets) for p in points]
-    shares = [p.utilisation for p in points if p.utilisation is not None]
-    if len(shares) == len(points):
-        return "Utilisation, %,", [100 * share for share in shares]
-    return "Used length, mm,", [p.length_mm for p in points]

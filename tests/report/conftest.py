@@ -97,7 +97,7 @@ def bundle(card: PartCard) -> Bundle:
             (JOINT,),
         ), (("bad.dxf", "no entity"),), (("sheet-01.dxf", "sheet 1"),),
         ("spacing 4 mm",), ("Local rules come first.",),
-        (SearchPoint(0.5, 2, 600.0, 0.5), SearchPoint(3.0, 1, 520.0, 0.6)),
+        (SearchPoint(0.5, 2, 600.0), SearchPoint(3.0, 1, 520.0)),
         (Offcut(1, 520.0, 8.0, 592.0, 292.0),), "0.1.0",
     )  # fmt: skip
 

@@ -64,12 +64,16 @@ def test_a_bar_is_as_long_as_its_share():
     assert 'width="100" height="8"/></svg>' in share_bar(1.7, "too much")
 
 
-def test_the_plot_shows_sheets_where_their_number_fell_else_utilisation():
-    fell = (SearchPoint(0.5, 3, 100.0, 0.5), SearchPoint(4.0, 2, 900.0, 0.7))
-    assert search_plot(fell).count("Sheets") == 2
-    assert "Utilisation" in search_plot((SearchPoint(0.5, 1, 100.0, 0.5), SearchPoint(4.0, 1, 90.0, 0.7)))
-    assert "Used length" in search_plot((SearchPoint(0.5, 1, 100.0), SearchPoint(4.0, 1, 90.0)))
-    assert search_plot(fell[:1]) == ""
+def test_the_plot_shows_sheets_and_length_where_they_changed():
+    both = search_plot((SearchPoint(0.5, 3, 1000.0), SearchPoint(4.0, 2, 900.0)))
+    assert both.count("<svg") == 2
+    assert "Sheets: from 3 to 2 in 4\u00a0s" in both
+    assert "Used length: from 1000\u00a0mm to 900\u00a0mm in 4\u00a0s" in both
+    shorter = (SearchPoint(0.5, 1, 100.0), SearchPoint(4.0, 1, 76.2))
+    assert "Sheets" not in search_plot(shorter)
+    assert "to 3\u00a0in in 4" in search_plot(shorter, "in")  # 76.2 / 25.4
+    assert search_plot((SearchPoint(0.5, 1, 100.0), SearchPoint(4.0, 1, 100.0))) == ""
+    assert search_plot(()) == ""
 
 
 def test_the_curve_of_the_plot_goes_down_the_page_as_the_value_falls():
