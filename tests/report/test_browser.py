@@ -10,10 +10,12 @@ import shutil
 import time
 from collections.abc import Iterator
 from dataclasses import replace
+from decimal import Decimal
 from pathlib import Path
 
 import pytest
 
+from flatprep.model.estimate import StockUse
 from flatprep.report.html import bench_sheet_html, report_html
 
 # the driver's own loop and pipes are closed by its garbage collection on some versions
@@ -140,9 +142,31 @@ def test_a_sheet_is_zoomed_and_moved_and_names_its_parts(opened, bundle):
 @pytest.mark.parametrize("width", [360, 768, 1440])
 @pytest.mark.parametrize("scheme", ["light", "dark"])
 def test_the_page_is_never_wider_than_the_screen(opened, bundle, width, scheme):
-    page = opened(report_html(bundle), width=width)
+    many_columns = tuple(
+        StockUse(name, 12, None, 12345.67, Decimal("11381.50"), utilisation=0.586) for name in ("aluminium-5052-3-coil", "x" * 80)
+    )
+    full = replace(bundle, estimate=replace(bundle.estimate, stock=many_columns))
+    page = opened(report_html(full), width=width)
     page.emulate_media(color_scheme=scheme)
     assert page.evaluate("document.documentElement.scrollWidth") <= width
+
+
+def test_words_in_tables_are_not_broken_on_a_phone(opened, bundle):
+    """A cell is at least as wide as its longest word, which would overflow it else; the table scrolls in its box."""
+    page = opened(report_html(bundle), width=360)
+    narrow = page.eval_on_selector_all(
+        ".scroll td",
+        """all => all.filter(cell => {
+            const range = document.createRange();
+            return [...cell.childNodes].some(node => node.nodeType === Node.TEXT_NODE &&
+                [...node.data.matchAll(/\\S+/g)].some(word => {
+                    range.setStart(node, word.index);
+                    range.setEnd(node, word.index + word[0].length);
+                    return range.getClientRects().length > 1;
+                }));
+        }).map(cell => cell.textContent)""",
+    )
+    assert narrow == []
 
 
 def luminance(page, selector: str, what: str) -> float:

@@ -52,7 +52,7 @@ def test_every_part_finding_step_and_sheet_is_there(bundle):
         "wheel hoe",
         "Clamp the part.",
         "Local rules come first.",
-        "no feeds known",
+        "No feeds known",
     ):
         assert words in text
 
