@@ -74,7 +74,7 @@ def _cuttable(ask: Ask, diameter_mm: float) -> float | None:
 
 def _countersink(ask: Ask, sink: Sink) -> Op:
     note = f"to {sink.dia_mm:.2f} mm at the face, {sink.angle_deg:g}°"
-    tool = f"countersink {sink.angle_deg:g}°, {sink.dia_mm:.4g} mm up"
+    tool = f"countersink {sink.angle_deg:g}°, {sink.dia_mm:.4g} mm or larger"
     return Op(
         StepKind.COUNTERSINK, Rank.COUNTERSINK, ask.at, sink.name, sink.dia_mm, tool, sink.depth_mm,
         side=ask.work.side, note="; ".join(t for t in (note, sink.note) if t),

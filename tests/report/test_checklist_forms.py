@@ -36,7 +36,7 @@ def test_the_document_has_what_is_promised():
     assert (tap["size"], tap["tool_dia_mm"], tap["count"], tap["at"]) == ("M5", 4.2, 2, [[10.0, 12.0], [90.0, 12.0]])
     assert tap["side"] is None
     assert document["cautions"]
-    assert {tool["tool"] for tool in document["tools"]} == {"tap M5", "countersink 90°, 11.47 mm up"}
+    assert {tool["tool"] for tool in document["tools"]} == {"tap M5", "countersink 90°, 11.47 mm or larger"}
 
 
 def test_joints_are_in_the_document():
@@ -48,7 +48,7 @@ def test_joints_are_in_the_document():
 def test_the_text_has_boxes_cautions_kit_and_joints():
     text = checklist_text(LIST)
     assert "plate: 2 pieces and 1 turned over" in text
-    assert "[ ]  4  countersink M5 ISO 10642: countersink 90°, 11.47 mm up" in text
+    assert "[ ]  4  countersink M5 ISO 10642: countersink 90°, 11.47 mm or larger" in text
     assert "side A" in text
     assert "kit for the job" in text
     assert "tap M5  (6 x: plate)" in text

@@ -87,5 +87,5 @@ def test_the_kit_counts_all_pieces(bench):
     uses = {tool.name: tool.uses for tool in bench.tools}
     assert uses["tap M5"] == 48
     assert uses["reamer 12 H7"] == 48
-    assert uses["countersink 90°, 11.47 mm up"] == 24
+    assert uses["countersink 90°, 11.47 mm or larger"] == 24
     assert uses["boring head, set to 22 N7"] == 12
