@@ -143,7 +143,8 @@ def test_a_sheet_is_zoomed_and_moved_and_names_its_parts(opened, bundle):
 @pytest.mark.parametrize("scheme", ["light", "dark"])
 def test_the_page_is_never_wider_than_the_screen(opened, bundle, width, scheme):
     many_columns = tuple(
-        StockUse(name, 12, None, 12345.67, Decimal("11381.50"), utilisation=0.586) for name in ("aluminium-5052-3-coil", "x" * 80)
+        StockUse(name, 12, None, 12345.67, Decimal("11381.50"), utilisation=0.586)
+        for name in ("aluminium-5052-3-coil", "x" * 80)
     )
     full = replace(bundle, estimate=replace(bundle.estimate, stock=many_columns))
     page = opened(report_html(full), width=width)
