@@ -6,6 +6,7 @@ from flatprep.rules import (
     bore_size,
     chord_density,
     countersink_too_deep,
+    doubtful_units,
     duplicate_line,
     empty_drawing,
     flat_length,
@@ -48,6 +49,7 @@ ALL: tuple[Rule, ...] = (
     # the drawing itself
     empty_drawing.RULE,
     unknown_units.RULE,
+    doubtful_units.RULE,
     open_contour.RULE,
     duplicate_line.RULE,
     self_crossing.RULE,

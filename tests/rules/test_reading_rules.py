@@ -36,7 +36,7 @@ def test_open_contour_is_an_error_where_the_line_stays_loose_however_small():
 @pytest.mark.parametrize(
     ("rule", "severity"),
     [("duplicate-line", ERROR), ("self-crossing", ERROR), ("unknown-units", WARNING), ("tiny-segment", NOTE),
-     ("layer-role", NOTE), ("unsupported-entity", WARNING)],
+     ("layer-role", NOTE), ("unsupported-entity", WARNING), ("doubtful-units", WARNING)],
 )  # fmt: skip
 def test_faults_are_passed_on(rule, severity):
     assert told(rule, faults=(Fault(rule, (1.0, 2.0), None, ("2A",), "a few words"),)) == [(severity, (1.0, 2.0), None)]

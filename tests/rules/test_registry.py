@@ -2,9 +2,12 @@
 
 import importlib
 import pkgutil
+import re
+from pathlib import Path
 
 import pytest
 
+import flatprep.drawing
 import flatprep.rules
 from flatprep.model.finding import Finding, Severity
 from flatprep.profile.process import Limit
@@ -42,6 +45,13 @@ def test_a_module_is_named_as_its_rule():
 
 def test_every_rule_of_the_interface_is_there():
     assert {rule.id for rule in flatprep.rules.ALL} >= CONTRACT
+
+
+def test_a_rule_answers_for_everything_that_the_reader_notices():
+    sources = Path(flatprep.drawing.__path__[0]).glob("*.py")
+    noticed = {kind for path in sources for kind in re.findall(r"Fault\(\s*\"([a-z-]+)\"", path.read_text())}
+    assert len(noticed) > 5
+    assert noticed <= {rule.id for rule in flatprep.rules.ALL}
 
 
 @pytest.mark.parametrize("rule", flatprep.rules.ALL, ids=lambda r: r.id)
