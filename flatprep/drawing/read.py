@@ -4,21 +4,19 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
 
-import numpy as np
-
 from flatprep.base.errors import DrawingError
 from flatprep.base.names import one_line
 from flatprep.base.tolerances import DEFAULT, Tolerances
 from flatprep.base.units import MM_PER_UNIT
 from flatprep.drawing.assign import assign
 from flatprep.drawing.collect import Collected, CollectOptions, collect
-from flatprep.drawing.frame import frame_index
+from flatprep.drawing.frame import without_frames
 from flatprep.drawing.leaders import with_leaders
 from flatprep.drawing.limits import LIMITS, ReadLimits
 from flatprep.drawing.load import UNIT_OF_CODE, Loaded, load
 from flatprep.drawing.outline import Outlines, outlines
 from flatprep.drawing.plausible import doubtful_units
-from flatprep.drawing.tree import nesting, parts_of
+from flatprep.drawing.tree import parts_of
 from flatprep.model.drawing import Contour, Curve, Drawing, Fault, Role, UnitsFrom
 
 
@@ -79,13 +77,7 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         faults.append(Fault("unsupported-entity", detail="version-control conflict markers: the first side was read"))
     cut, roles = _cut_curves(found)
     shapes = outlines(cut, options.tol)
-    contours = [c.contour for c in shapes.rings]
-    nest = nesting(shapes.shapes)
-    frame = frame_index(contours, nest)
-    sheet_faults = []
-    if frame is not None:
-        sheet_faults = [_told_frame(contours.pop(frame))]
-        nest = nesting(np.delete(shapes.shapes, frame))
+    contours, nest, frames = without_frames([c.contour for c in shapes.rings], shapes.shapes)
     parts = parts_of(contours, nest, one_line(name or path.stem))
     given = assign(parts, _others(found, shapes))
     if origin is not UnitsFrom.OPTION:
@@ -95,7 +87,7 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         units=units,
         units_from=origin,
         parts=given.parts,
-        faults=(*faults, *found.faults, *_guesses(found), *shapes.faults, *sheet_faults, *given.faults),
+        faults=(*faults, *found.faults, *_guesses(found), *shapes.faults, *map(_told_frame, frames), *given.faults),
         skipped=tuple(found.skipped),
         texts=with_leaders(found.texts, loaded.document, MM_PER_UNIT[units]),
         roles=roles,

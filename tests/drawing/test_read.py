@@ -403,6 +403,40 @@ def test_sheet_border_around_parts_is_not_cut(tmp_path, turn_deg):
     assert "sheet's border" in drawing.faults[0].detail
 
 
+def test_a_plate_with_counterbores_is_no_border(tmp_path):
+    def paint(msp):
+        box(msp, 0, 0, 100, 60)
+        for x, y in ((10, 10), (90, 10), (90, 50), (10, 50)):
+            msp.add_circle((x, y), 5)
+            msp.add_circle((x, y), 3)
+
+    drawing = read(drawn(tmp_path, paint))
+    assert "layer-role" not in kinds(drawing)
+    whole = max(p.area_mm2 for p in drawing.parts)
+    assert whole == pytest.approx(100 * 60 - 4 * pi * 25)
+
+
+@pytest.mark.parametrize(
+    ("borders", "layer", "hole"),
+    [
+        pytest.param([(-60, -70, 297, 210), (-50, -60, 277, 190)], "0", 10, id="A4 and the frame on it"),
+        pytest.param([(-60, -70, 250, 180)], "SHEET_1", 0, id="called a sheet"),
+    ],
+)
+def test_paper_around_one_part_is_not_cut(tmp_path, borders, layer, hole):
+    def paint(msp):
+        box(msp, 0, 0, 80, 50)
+        if hole:
+            msp.add_circle((40, 25), hole)
+        for border in borders:
+            box(msp, *border, layer=layer)
+
+    drawing = read(drawn(tmp_path, paint))
+    (part,) = drawing.parts
+    assert part.area_mm2 == pytest.approx(80 * 50 - pi * hole**2)
+    assert kinds(drawing) == ["layer-role"] * len(borders)
+
+
 @pytest.mark.parametrize(
     ("layer", "role"),
     [
