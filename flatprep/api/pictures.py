@@ -14,8 +14,10 @@ from flatprep.model.linted import LintReport
 from flatprep.report.part_svg import Unreached, part_pictures
 
 
-def write_pictures(report: LintReport, folder: Path) -> tuple[Path, ...]:
+def write_pictures(report: LintReport, folder: Path, units: str | None = None) -> tuple[Path, ...]:
     """Draw every part with its findings into `folder`, named after the part; a name that is taken gets a number.
+
+    Lengths are shown in `units`, else in each drawing's own.
 
     Returns
     -------
@@ -32,7 +34,7 @@ def write_pictures(report: LintReport, folder: Path) -> tuple[Path, ...]:
     for one in report.linted:
         radius_mm = one.tool_radius_mm
         unreached = {part.name: _unreached(part, radius_mm) for part in one.drawing.parts} if radius_mm > 0.0 else {}
-        for name, svg in part_pictures(one, unreached):
+        for name, svg in part_pictures(one, unreached, units):
             file = _free(folder / f"{safe_stem(name)}.svg", written)
             write_whole(file, svg)
             written[file] = None

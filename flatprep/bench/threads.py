@@ -45,9 +45,8 @@ def tap_ops(ask: Ask) -> list[Op]:
         ask.told_mm(cut), ask.work.side, _tap_note(ask, thread), limits_mm=(thread.minor_min_mm, thread.minor_max_mm),
     )  # fmt: skip
     if as_cut is not None and as_cut > thread.minor_max_mm + 0.001:
-        return [
-            spoilt(tap, f"the hole of {as_cut:.4g} mm is above the greatest minor diameter {thread.minor_max_mm:.4g}")
-        ]
+        most = f"{thread.minor_max_mm:.4g} mm"
+        return [spoilt(tap, f"the hole of {as_cut:.4g} mm is above the greatest minor diameter {most}")]
     if as_cut is not None and thread.admits(as_cut):
         return [
             tap if taps_directly(ask.bench.process, ask.bench.material, ask.bench.thickness_mm, ask.own) else _skin(tap)

@@ -36,6 +36,7 @@ def command(
     form: str,
 ) -> None:
     """Check drawings (files, folders or a job's) against material, thickness and process."""
+    units: str | None = None
     jobs_given = [p for p in paths if p.suffix.lower() == ".toml"]
     with progress_line() as progress:
         if jobs_given:
@@ -43,12 +44,13 @@ def command(
                 raise UsageError(
                     f"{jobs_given[0]}: a job is checked alone", "give one job file, or drawings and folders"
                 )
-            report = lint_job(load_job(paths[0], said), jobs=jobs, progress=progress)
+            job = load_job(paths[0], said)
+            report, units = lint_job(job, jobs=jobs, progress=progress), job.units
         else:
             report = lint_paths(paths, said, jobs=jobs, progress=progress)
     if pictures is not None:
-        write_pictures(report, pictures)
-    say(json.dumps(lint_document(report), indent=1) if form == "json" else lint_text(report))
+        write_pictures(report, pictures, units)
+    say(json.dumps(lint_document(report), indent=1) if form == "json" else lint_text(report, units))
     ctx.exit(status(report))
 
 

@@ -72,7 +72,7 @@ def command(
     if form == "json":
         click.echo(json.dumps(json.loads((folder / "layout.json").read_text()), indent=1))
     else:
-        say(layout_text(nested.layout, folder, {piece.name: piece.changes for piece in read.pieces}))
+        say(layout_text(nested.layout, folder, {piece.name: piece.changes for piece in read.pieces}, job.units))
     ctx.exit(stop.exit_status if stop() else status(nested))
 
 

@@ -19,6 +19,7 @@ from flatprep.report.overview import figures, verdict
 from flatprep.report.part_figure import sign
 from flatprep.report.sheet_figure import shape_defs
 from flatprep.report.views import part_view, part_views, shapes_of, sheet_views
+from flatprep.report.words import lengths_in
 
 
 def report_html(bundle: Bundle) -> str:
@@ -91,8 +92,9 @@ def _environment(units: str, currency: str | None) -> Environment:
         "percent": show.percent,
         "counted": show.counted,
         "duration": show.duration,
-        "capital": show.capital,
-        "sentence": show.sentence,
+        "capital": lambda words: lengths_in(show.capital(words), units),
+        "sentence": lambda words: lengths_in(show.sentence(words), units),
+        "words": lambda words: lengths_in(words, units),
         "sign": lambda kind, words: Markup(sign(kind, str(words))),
         "relative": lambda file: "./" + quote(file),
     }

@@ -9,6 +9,7 @@ from flatprep.model.drawing import Part
 from flatprep.model.finding import Finding, Severity
 from flatprep.model.linted import Linted, LintReport
 from flatprep.report.figures import area, counted, length, mass, measure, place, size
+from flatprep.report.words import lengths_in
 
 ONCE_A_FOLDER = "unknown-units"
 """Told once for all drawings of a folder, for it has one cause."""
@@ -17,21 +18,24 @@ ALIKE = 4
 WIDTH = 110
 
 
-def lint_text(report: LintReport) -> str:
-    """Return the text of a whole run."""
-    blocks = [_block(one) for one in report.linted]
+def lint_text(report: LintReport, units: str | None = None) -> str:
+    """Return the text of a whole run; lengths in `units`, else in each drawing's own."""
+    blocks = [_block(one, units or one.drawing.units) for one in report.linted]
     blocks += [_unreadable(one.message, one.remedy) for one in report.unreadable]
-    tail = [*_units_lines(report.linted), *(f"note: {note}" for note in report.notes), _summary(report)]
+    tail = [
+        *_units_lines(report.linted),
+        *(f"note: {lengths_in(note, units or 'mm')}" for note in report.notes),
+        _summary(report),
+    ]
     return "\n\n".join([*blocks, "\n".join(tail)])
 
 
-def _block(one: Linted) -> str:
-    units = one.drawing.units
+def _block(one: Linted, units: str) -> str:
     told = [f for f in one.findings if f.rule != ONCE_A_FOLDER]
     held = [one.material, length(one.thickness_mm, units) if one.thickness_mm else None, one.process]
     against = ", ".join(word for word in held if word)
     lines = [one.file + (f"  ({against})" if against else "")]
-    lines += [f"  {_part_line(one, part)}" for part in one.drawing.parts]
+    lines += [f"  {_part_line(one, part, units)}" for part in one.drawing.parts]
     for group in _alike(told):
         lines += _findings(group, units)
     if not told:
@@ -39,8 +43,7 @@ def _block(one: Linted) -> str:
     return "\n".join(lines)
 
 
-def _part_line(one: Linted, part: Part) -> str:
-    units = one.drawing.units
+def _part_line(one: Linted, part: Part, units: str) -> str:
     weight = one.mass_kg(part)
     figures = [
         size(*part.size_mm, units),
@@ -63,15 +66,16 @@ def _alike(findings: Sequence[Finding]) -> list[list[Finding]]:
 def _findings(group: list[Finding], units: str) -> Iterator[str]:
     if len(group) <= ALIKE:
         for finding in group:
-            yield f"  {_head(finding)}: {finding.message}{_where(finding, units)}"
+            yield f"  {_head(finding)}: {lengths_in(finding.message, units)}{_where(finding, units)}"
     else:
         worst = min(group, key=lambda f: f.measured if f.measured is not None else 0.0)
-        yield f"  {_head(worst)}, {len(group)} times; the worst: {worst.message}{_where(worst, units)}"
+        message = lengths_in(worst.message, units)
+        yield f"  {_head(worst)}, {len(group)} times; the worst: {message}{_where(worst, units)}"
         places = [place(f.at, units) for f in group if f.at is not None and f is not worst]
         if places:
             yield from _folded("also at " + " ".join(places))
     if group[0].remedy and group[0].severity is not Severity.NOTE:
-        yield from _folded(group[0].remedy)
+        yield from _folded(lengths_in(group[0].remedy, units))
 
 
 def _head(finding: Finding) -> str:

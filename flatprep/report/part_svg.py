@@ -16,6 +16,7 @@ from flatprep.report.figures import counted, length, measure, number, place
 from flatprep.report.part_figure import badge_shape, frame, scale_bar
 from flatprep.report.svg_path import joined, part_path, ring_data
 from flatprep.report.svg_tag import picture, tag, text
+from flatprep.report.words import lengths_in
 
 FILLS = {"error": "#D55E00", "warning": "#E69F00", "note": "#56B4E9"}
 INK = {"error": "#FFFFFF", "warning": "#000000", "note": "#000000"}
@@ -34,14 +35,16 @@ class Unreached:
     regions: tuple[tuple[Floats, ...], ...]
 
 
-def part_pictures(one: Linted, unreached: Mapping[str, Unreached] | None = None) -> tuple[tuple[str, str], ...]:
+def part_pictures(
+    one: Linted, unreached: Mapping[str, Unreached] | None = None, units: str | None = None
+) -> tuple[tuple[str, str], ...]:
     """Return (part's name, SVG document) for each part of a drawing; findings of the whole drawing stand in each.
 
-    `unreached` is by the part's name.
+    `unreached` is by the part's name; lengths are shown in `units`, else in the drawing's own.
     """
-    units, lost = one.drawing.units, unreached or {}
+    lost = unreached or {}
     return tuple(
-        (p.name, part_svg(p, [f for f in one.findings if f.part in (p.name, None)], units=units,
+        (p.name, part_svg(p, [f for f in one.findings if f.part in (p.name, None)], units=units or one.drawing.units,
                           unreached=lost.get(p.name)))
         for p in one.drawing.parts
     )  # fmt: skip
@@ -143,7 +146,9 @@ def _lines_of(findings: Sequence[Finding], units: str) -> list[tuple[str, str]]:
         size = "" if f.measured is None else f"{measure(f.measured, f.unit, units)}"
         limit = "" if f.limit is None else f", limit {measure(f.limit, f.unit, units)}"
         where = "" if f.at is None else f" at {place(f.at, units)}"
-        words = f"{n}  {f.severity} {f.rule}{where}" + (f": {size}{limit}" if size else f": {f.message}")
+        words = f"{n}  {f.severity} {f.rule}{where}" + (
+            f": {size}{limit}" if size else f": {lengths_in(f.message, units)}"
+        )
         out.append((str(f.severity), words if len(words) <= LETTERS_A_LINE else words[: LETTERS_A_LINE - 1] + "…"))
     if len(findings) > MOST_LINES:
         out.append(("note", f"and {len(findings) - MOST_LINES} more"))

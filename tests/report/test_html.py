@@ -151,6 +151,28 @@ def test_lengths_follow_the_job_s_unit(bundle):
     text = report_html(replace(bundle, units="in"))
     assert "0.197\u00a0in" in text  # 5 mm
     assert "limit 0.236\u00a0in" in text  # 6 mm
+    leaf = bundle.cards[0]
+    spoilt = replace(leaf.steps[1], note="outside 100 x 50 mm", problem="over 25.4 mm", caution="no nearer than 5 mm")
+    found = replace(leaf.findings[0], message="the allowance is 12.7 mm", remedy="leave 6.35 mm")
+    full = replace(
+        bundle,
+        units="in",
+        cards=(replace(leaf, steps=(spoilt,), findings=(found,), assumed=("a kerf of 0.254 mm",)),),
+        assumed=("gaps up to 0.05 mm are joined",),
+        cautions=("keep 300 mm away",),
+    )
+    words = " ".join(Page(report_html(full)).words).partition("flat parts")[2]
+    for said in (
+        "3.937 x 1.969 in",
+        "1.000 in",
+        "0.197 in",
+        "0.500 in",
+        "0.250 in",
+        "0.0100 in",
+        "0.002 in",
+        "11.811 in",
+    ):
+        assert said in words, said
 
 
 def test_the_same_bundle_gives_the_same_page(bundle):

@@ -32,8 +32,8 @@ UNITS = Finding("unknown-units", Severity.WARNING, "no header says which unit", 
 NOTE = Finding("several-parts", Severity.NOTE, "the drawing holds 2 parts", remedy="Nothing to do.")
 
 
-def lint_text(report):
-    return _lint_text(report).replace("\u00a0", " ")
+def lint_text(report, units=None):
+    return _lint_text(report, units).replace("\u00a0", " ")
 
 
 def linted(*findings, file="parts/leaf.dxf", units="mm"):
@@ -104,6 +104,18 @@ def test_text_folds_many_alike_and_names_the_worst():
 def test_text_in_inches():
     assert "2.4" not in (text := lint_text(LintReport((linted(HOLE, units="in"),))))
     assert "0.094 in, limit 0.118 in" in text  # 2.4 and 3 mm
+
+
+def test_a_job_in_inches_is_told_in_inches_whatever_the_drawing_is_in():
+    sized = replace(NOTE, message="the allowance is 25.4 mm")
+    text = lint_text(LintReport((linted(HOLE, sized),), notes=("the kerf is 2.54 mm",)), "in")
+    assert "leaf: 3.937 × 2.362 in" in text  # 100 and 60 mm over 25.4
+    assert "0.094 in, limit 0.118 in" in text  # 2.4 and 3 mm
+    assert "the allowance is 1.000 in" in text
+    assert "note: the kerf is 0.100 in" in text
+    assert " mm" not in text
+    ((_, svg),) = part_pictures(linted(HOLE), None, "in")
+    assert "0.094\u00a0in" in svg
 
 
 def test_picture_numbers_what_it_lists():
