@@ -37,7 +37,7 @@ def _block(one: Linted, units: str) -> str:
     lines = [one.file + (f"  ({against})" if against else "")]
     lines += [f"  {_part_line(one, part, units)}" for part in one.drawing.parts]
     for group in _alike(told):
-        lines += _findings(group, units)
+        lines += _findings(group, units, several=len(one.drawing.parts) > 1)
     if not told:
         lines.append("  nothing to find fault with")
     return "\n".join(lines)
@@ -63,14 +63,14 @@ def _alike(findings: Sequence[Finding]) -> list[list[Finding]]:
     return list(groups.values())
 
 
-def _findings(group: list[Finding], units: str) -> Iterator[str]:
+def _findings(group: list[Finding], units: str, *, several: bool) -> Iterator[str]:
     if len(group) <= ALIKE:
         for finding in group:
-            yield f"  {_head(finding)}: {lengths_in(finding.message, units)}{_where(finding, units)}"
+            yield f"  {_head(finding)}: {lengths_in(finding.message, units)}{_where(finding, units, several=several)}"
     else:
         worst = min(group, key=lambda f: f.measured if f.measured is not None else 0.0)
         message = lengths_in(worst.message, units)
-        yield f"  {_head(worst)}, {len(group)} times; the worst: {message}{_where(worst, units)}"
+        yield f"  {_head(worst)}, {len(group)} times; the worst: {message}{_where(worst, units, several=several)}"
         places = [place(f.at, units) for f in group if f.at is not None and f is not worst]
         if places:
             yield from _folded("also at " + " ".join(places))
@@ -82,9 +82,10 @@ def _head(finding: Finding) -> str:
     return f"{str(finding.severity).upper() if finding.severity is Severity.ERROR else finding.severity} {finding.rule}"
 
 
-def _where(finding: Finding, units: str) -> str:
+def _where(finding: Finding, units: str, *, several: bool) -> str:
+    """Say part, place and measure; where a drawing holds `several` parts, a place alone is hard to find."""
     words = []
-    if finding.part is not None and finding.at is None:
+    if finding.part is not None and (several or finding.at is None):
         words.append(f"in {finding.part}")
     if finding.at is not None:
         words.append(f"at {place(finding.at, units)}")

@@ -106,6 +106,13 @@ def test_text_in_inches():
     assert "0.094 in, limit 0.118 in" in text  # 2.4 and 3 mm
 
 
+def test_a_finding_names_its_part_where_the_drawing_holds_several():
+    one = linted(HOLE)
+    assert "[at (30, 30);" in lint_text(LintReport((one,)))
+    two = replace(one, drawing=replace(one.drawing, parts=(LEAF, replace(LEAF, name="stem"))))
+    assert "[in leaf; at (30, 30);" in lint_text(LintReport((two,)))
+
+
 def test_a_job_in_inches_is_told_in_inches_whatever_the_drawing_is_in():
     sized = replace(NOTE, message="the allowance is 25.4 mm")
     text = lint_text(LintReport((linted(HOLE, sized),), notes=("the kerf is 2.54 mm",)), "in")
