@@ -11,6 +11,11 @@ from flatprep.geom import bulge
 from flatprep.geom.bulge import Floats
 from flatprep.model.drawing import Contour, Curve
 
+GAPS_SHARE = 0.05
+"""Gaps of a bridged ring together, over its length."""
+WIDTH_OVER_GAP = 4.0
+"""Mean width of a ring of straight strokes over its widest gap."""
+
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Chain:
@@ -103,17 +108,23 @@ def _tangled(nodes: Ints) -> Ints:
 def bridge(chains: Sequence[Chain], reach_mm: float) -> tuple[list[Chain], list[Chain]]:
     """Close open chains over gaps up to `reach_mm`, nearest ends first.
 
-    Only chains that are no single straight stroke take part, and a ring is taken only when its gaps are a small
-    part of it (5 %): bend lines that lie side by side are no outline.
+    A ring is taken only when its gaps are a small part of it (`GAPS_SHARE`). First those chains are tried that are no
+    single straight stroke, then all that are left; where strokes take part the ring must be wide for its gaps
+    (`WIDTH_OVER_GAP`), too: bend lines that lie side by side are no outline.
 
     Returns
     -------
     closed, rest
     """
-    rest = [c for c in chains if _is_stroke(c)]
-    able = [c for c in chains if not _is_stroke(c)]
+    closed, rest = _bridged([c for c in chains if not _is_stroke(c)], reach_mm)
+    rest += [c for c in chains if _is_stroke(c)]
+    wide, rest = _bridged(rest, reach_mm, WIDTH_OVER_GAP)
+    return closed + wide, rest
+
+
+def _bridged(able: Sequence[Chain], reach_mm: float, width_over_gap: float = 0.0) -> tuple[list[Chain], list[Chain]]:
     if not able:
-        return [], rest
+        return [], []
     ends = np.array([p for c in able for p in (c.xyb[0, :2], c.xyb[-1, :2])])
     pairs = dangling_pairs(ends, np.arange(len(ends)), reach_mm)
     partner = {i: (j, gap) for i, j, gap in pairs} | {j: (i, gap) for i, j, gap in pairs}
@@ -122,10 +133,15 @@ def bridge(chains: Sequence[Chain], reach_mm: float) -> tuple[list[Chain], list[
         if start in used:
             continue
         ring = _follow(start, able, ends, partner)
-        if ring is not None:
+        if ring is not None and _width(ring[0]) >= width_over_gap * max(gap for _, gap in ring[0].gaps):
             closed.append(ring[0])
             used |= ring[1]
-    return closed, rest + [c for i, c in enumerate(able) if i not in used]
+    return closed, [c for i, c in enumerate(able) if i not in used]
+
+
+def _width(ring: Chain) -> float:
+    """Mean width of what a ring encloses: that of a strip as long as half its border."""
+    return 2.0 * abs(bulge.signed_area(ring.xyb)) / bulge.length(ring.xyb, closed=True)
 
 
 def _joined(ends: Floats, nodes: Ints) -> tuple[tuple[tuple[float, float], float], ...]:
@@ -159,7 +175,7 @@ def _follow(
     if at // 2 != start:
         return None
     total = sum(bulge.length(p.xyb, closed=False) for p in pieces)
-    if sum(g for _, g in gaps) > 0.05 * total:
+    if sum(g for _, g in gaps) > GAPS_SHARE * total:
         return None
     # the gap is bridged by a straight line from end to end
     rows = np.vstack([p.xyb for p in pieces])

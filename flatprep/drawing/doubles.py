@@ -3,6 +3,7 @@
 from collections.abc import Sequence
 
 import numpy as np
+import numpy.typing as npt
 import shapely
 from shapely import STRtree
 
@@ -10,9 +11,13 @@ from flatprep.drawing.chain import Chain
 from flatprep.drawing.tidy import told_doubles
 from flatprep.drawing.tree import CHORD_MM, Polygons
 from flatprep.geom.bulge import Floats, points_along
-from flatprep.model.drawing import Fault
+from flatprep.model.drawing import Curve, Fault
+
+Lines = npt.NDArray[np.object_]
 
 _FINE_MM = 0.002
+_ALONG_MM = 2.0
+"""Lines that stay within `_FINE_MM` of each other for less than this touch, or are tangent (radius under 1 m)."""
 
 
 def without_double_rings(rings: Sequence[Chain], shapes: Polygons, same_mm: float) -> tuple[list[int], list[Fault]]:
@@ -54,6 +59,28 @@ def without_overlapped(
         else:
             kept.append(c)
     return kept, told_doubles(places)
+
+
+def overlaps(curves: Sequence[Curve]) -> tuple[list[Fault], float]:
+    """Tell where open curves run along each other, and how much length is there twice, mm."""
+    lines = lines_of([c.xyb for c in curves])
+    a, b = STRtree(lines).query(lines, predicate="dwithin", distance=_FINE_MM)
+    a, b = a[a < b], b[a < b]
+    belts = shapely.buffer(lines[a], _FINE_MM, cap_style="flat")
+    stretches = shapely.intersection(lines[b], belts)
+    size = shapely.length(stretches)
+    along = np.flatnonzero(size > _ALONG_MM)
+    middles = shapely.line_interpolate_point(shapely.line_merge(stretches[along]), 0.5, normalized=True)
+    places = [
+        ((at.x, at.y), curves[k].handle) for at, k in zip(middles, b[along].tolist(), strict=True) if not at.is_empty
+    ]
+    return told_doubles(places), float(size[along].sum())
+
+
+def lines_of(polylines: Sequence[Floats]) -> Lines:
+    """Return open polylines as shapely's lines, chords within `_FINE_MM`, shape (n,)."""
+    lines = [shapely.linestrings(points_along(xyb, closed=False, chord_mm=_FINE_MM)) for xyb in polylines]
+    return np.array(lines, dtype=object)
 
 
 def _fine(c: Chain) -> Floats:

@@ -8,7 +8,8 @@ import numpy as np
 from flatprep.base.tolerances import Tolerances
 from flatprep.drawing.chain import Chain, Chained, bridge, chain
 from flatprep.drawing.crossing import Crossings, crossings
-from flatprep.drawing.doubles import without_double_rings, without_overlapped
+from flatprep.drawing.doubles import overlaps, without_double_rings, without_overlapped
+from flatprep.drawing.overrun import without_overruns
 from flatprep.drawing.planar import even_odd, regions_of_net, regions_of_rings
 from flatprep.drawing.tidy import tidy
 from flatprep.drawing.tree import CHORD_MM, Polygons, polygons_of
@@ -59,14 +60,16 @@ def outlines(curves: Sequence[Curve], tol: Tolerances) -> Outlines:
         rings += net.rings
         inner += net.inner
         loose += [Chain(c.xyb, (c.handle,) * (len(c.xyb) - 1), (c.layer,), closed=False) for c in net.rest]
-        faults += _told_inner(net.inner)
+        faults += [*_told_inner(net.inner), *overlaps(chained.branched)[0]]
     loose, overlapped = without_overlapped(loose, rings, tol.same_mm)
     faults += overlapped
+    overrun, loose, told = without_overruns(loose, tol.join_mm)
+    faults += told
     bridged, loose = bridge(loose, BRIDGE_MM)
-    rings += bridged
+    rings += [*overrun, *bridged]
     faults += [_gap(at, gap, ring) for ring in bridged for at, gap in ring.gaps]
     shapes = polygons_of([r.xyb for r in rings], CHORD_MM)
-    single_rings, doubles = without_double_rings(rings, shapes, tol.same_mm)
+    single_rings, doubles = without_double_rings(rings, shapes, max(tol.same_mm, tol.join_mm))
     rings, shapes = [rings[k] for k in single_rings], shapes[single_rings]
     crossed = crossings(rings, shapes)
     crossing = tuple(rings[i] for i in sorted(crossed.selfish))
