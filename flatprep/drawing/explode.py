@@ -6,6 +6,7 @@ from operator import itemgetter
 from typing import Any, NamedTuple
 
 from ezdxf.document import Drawing as DxfDocument
+from ezdxf.entities import DXFTagStorage
 
 from flatprep.base.errors import DrawingError
 from flatprep.drawing.limits import ReadLimits
@@ -101,10 +102,16 @@ class _Layers:
 
 def _loose(entity: Dxf, layers: _Layers, above: _Above) -> Loose:
     """Return an entity with what it takes from its layer and from the insertion it stands in."""
-    dxf = entity.dxf
-    own = dxf.get("layer", "0"), dxf.get("color", 256), dxf.get("linetype", "BYLAYER")
-    layer, color, linetype = layers.looks(own, above)
+    layer, color, linetype = layers.looks(_own_looks(entity), above)
     return Loose(entity, entity.dxftype(), layer, above.handle, color, linetype)
+
+
+def _own_looks(entity: Dxf) -> tuple[str, int, str]:
+    if isinstance(entity, DXFTagStorage):  # a kind that ezdxf does not know: its tags are all there is
+        first = entity.xtags.get_subclass("AcDbEntity") if entity.is_graphic_entity else entity.base_class
+        return str(first.get_first_value(8, "0")), 256, "BYLAYER"
+    dxf = entity.dxf
+    return dxf.get("layer", "0"), dxf.get("color", 256), dxf.get("linetype", "BYLAYER")
 
 
 def _open(entity: Dxf, layers: _Layers, above: _Above, limits: ReadLimits) -> Iterator[Loose]:
@@ -116,15 +123,20 @@ def _open(entity: Dxf, layers: _Layers, above: _Above, limits: ReadLimits) -> It
     for attribute in entity.attribs:
         yield whole._replace(entity=attribute, kind=attribute.dxftype())
     for single in _singles(entity):
-        for child in single.virtual_entities():
+        unknown: list[Dxf] = []
+        for child in single.virtual_entities(skipped_entity_callback=lambda e, _: unknown.append(e)):  # noqa: B023
             yield from _open(child, layers, below, limits)
+        for child in unknown:
+            yield _loose(child, layers, below)
 
 
 def block_fault(insert: Dxf) -> str:
-    """Say why an insertion brings nothing: its block lies in another file, or is not there; else nothing."""
+    """Say why an insertion brings nothing: its block lies elsewhere, is not there or has no size; else nothing."""
     block = insert.block()
     if block is None:
         return "its block is not in the file"
+    if 0.0 in (insert.dxf.get("xscale", 1.0), insert.dxf.get("yscale", 1.0)):
+        return "its scale is zero"
     return "a reference to another file: not opened" if block.block.is_xref or block.block.is_xref_overlay else ""
 
 

@@ -566,6 +566,31 @@ def test_block_that_inserts_itself_is_refused(tmp_path):
         read(save(doc, tmp_path))
 
 
+def test_kinds_that_nobody_knows_cost_themselves(tmp_path):
+    file = drawn(tmp_path, plate, "R12")
+    whole = file.read_text()
+    stranger = "  0\nSTRANGER\n  5\nFFF\n  8\nX\n 10\n1.0\n 20\n2.0\n  0\nCIRCLE\n"
+    assert whole.count("  0\nCIRCLE\n") == 1
+    file.write_text(whole.replace("  0\nCIRCLE\n", stranger))
+    drawing = read(file)
+    assert [p.area_mm2 for p in drawing.parts] == pytest.approx([PLATE])
+    assert [(s.kind, s.layer) for s in drawing.skipped] == [("STRANGER", "X")]
+
+
+def test_a_block_of_no_size_costs_itself(tmp_path):
+    doc = new()
+    plate(doc.modelspace())
+    plate(doc.blocks.new("NIL"))
+    doc.modelspace().add_blockref("NIL", (0, 0), dxfattribs={"xscale": 0.5})
+    file = save(doc, tmp_path)
+    whole = file.read_text()
+    assert whole.count(" 41\n0.5\n") == 1
+    file.write_text(whole.replace(" 41\n0.5\n", " 41\n0.0\n"))
+    drawing = read(file)
+    assert [p.area_mm2 for p in drawing.parts] == pytest.approx([PLATE])
+    assert [s.kind for s in drawing.skipped] == ["INSERT"]
+
+
 def test_a_million_copies_are_refused_before_they_are_made(tmp_path):
     doc = new()
     doc.blocks.new("C").add_circle((0, 0), 1)
