@@ -2,17 +2,16 @@
 
 from collections.abc import Mapping
 from dataclasses import dataclass
-from functools import lru_cache
 from html import escape
 
-from shapely.geometry import LineString, Polygon
+from shapely.geometry import Polygon
 
-from flatprep.geom.bulge import Floats, Similarity
-from flatprep.geom.polygons import ring, valid_polygon
+from flatprep.geom.bulge import Similarity
 from flatprep.model.drawing import Part
 from flatprep.model.layout import Placement, SheetLayout
 from flatprep.report.bundle import Offcut
 from flatprep.report.figures import bare_length, number
+from flatprep.report.label_spot import rings_of, spot_on_material
 from flatprep.report.part_figure import Box, scale_bar
 from flatprep.report.svg_path import joined, part_path, ring_data
 from flatprep.report.svg_tag import picture, tag, text
@@ -91,30 +90,14 @@ def _placed(placement: Placement, shape: Shape, unit: float) -> str:
 
 
 def _label(placement: Placement, shape: Shape, unit: float) -> str:
-    """Return the part's name in its widest place, or its number, or nothing: what fits in readable size."""
+    """Return the part's name, or its number, on the piece's material, or nothing: what fits in readable size."""
     outer, *inner = (placement.motion.points(points) for points in rings_of(shape.part))
-    x, y, across = label_place(Polygon(outer, inner))
+    region = Polygon(outer, inner)
     for words in (placement.part, str(shape.number)):
-        size = min(1.5 * unit, across / (0.62 * len(words) + 0.6))
-        if size >= 0.6 * unit:
-            return text(words, x, size / 3 - y, size)
+        spot = spot_on_material(region, len(words), 1.5 * unit)
+        if spot and spot.size >= 0.6 * unit:
+            return text(words, spot.x, spot.size / 3 - spot.y, spot.size)
     return ""
-
-
-@lru_cache(maxsize=1024)
-def rings_of(part: Part) -> tuple[Floats, ...]:
-    """Contours of a part by points; it may lie on many sheets many times."""
-    return tuple(ring(contour.xyb, 0.5) for contour in part.contours)
-
-
-def label_place(region: Polygon) -> tuple[float, float, float]:
-    """Middle of a wide level run of material half way up a piece, and the run's width, mm."""
-    shape = valid_polygon(region)
-    middle = shape.representative_point()  # which is the middle of the widest run at that height
-    x0, _, x1, _ = shape.bounds
-    run = shape.intersection(LineString([(x0 - 1, middle.y), (x1 + 1, middle.y)]))
-    runs = [piece for piece in getattr(run, "geoms", [run]) if piece.distance(middle) < 1e-6]
-    return float(middle.x), float(middle.y), float(max((piece.length for piece in runs), default=0.0))
 
 
 def _offcut(offcut: Offcut, unit: float, units: str) -> str:

@@ -1,7 +1,7 @@
 """Picture of a sheet, true to scale: ``sheet-NN.svg`` to print beside the machine."""
 
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 import shapely
@@ -15,7 +15,7 @@ from flatprep.model.drawing import Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
 from flatprep.model.tab import Tab, tab_stroke
 from flatprep.report.figures import bare_length, counted, length, percent, size
-from flatprep.report.sheet_figure import label_place, rings_of
+from flatprep.report.label_spot import WIDE, Spot, rings_of, spot_anywhere, spot_on_material
 from flatprep.report.svg_path import joined, part_path, ring_data
 
 OKABE_ITO = ("#E69F00", "#56B4E9", "#009E73", "#F0E442", "#0072B2", "#D55E00", "#CC79A7")
@@ -24,8 +24,8 @@ Rectangle = tuple[float, float, float, float]
 INK, PALE = "#333333", "#FFFFFF"
 LINE = 1.3
 """Distance of lines of text, in units of the picture's em."""
-WIDE, LEAST_NAME = 0.62, 0.3
-"""Width of a letter over its height; least height of a name, in the picture's em."""
+READABLE, LEAST_NAME = 0.5, 0.3
+"""Height of a name that is read well, and the least one, in the picture's em."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -95,6 +95,12 @@ def sheet_svg(
     page = svgwrite.Drawing(size=(f"{width:.3f}mm", f"{height:.3f}mm"), debug=False)
     page.viewbox(round(float(left), 3), round(float(top), 3), round(float(width), 3), round(float(height), 3))
     page.set_desc(title=f"{job} sheet {number}".strip())
+    ground = {"fill": PALE, "class_": "ground"}  # dark ink is lost on a dark page
+    page.add(
+        page.rect(
+            (round(float(left), 3), round(float(top), 3)), (round(float(width), 3), round(float(height), 3)), **ground
+        )
+    )
     _stock(page, sheet, _room(sheet, margin_mm, extras.margins_mm), em)
     _keep_out(page, extras.keep_out, em)
     colour = {name: OKABE_ITO[k % len(OKABE_ITO)] for k, name in enumerate(sorted(_names(sheet)))}
@@ -184,15 +190,24 @@ def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, look: Look)
 
 
 def _name(page: svgwrite.Drawing, part: Part, placement: Placement, turn: int, em: float) -> None:
-    """Turn of cutting and name across a piece, level or upright, where it has more room; as tall as fits."""
-    ring, words = placement.motion.points(rings_of(part)[0]), f"{turn}: {placement.part} {placement.copy}"
-    level, upright = (label_place(Polygon(points)) for points in (ring, ring[:, ::-1]))
-    x, y, across = level if level[2] >= upright[2] else (upright[1], upright[0], upright[2])
-    size = max(LEAST_NAME * em, min(em, across / (WIDE * len(words))))
-    onto = page if level[2] >= upright[2] else page.g(transform=f"rotate(-90 {x:.3f} {-y:.3f})")
-    _text(onto, words, (x, -y + size / 3), size, anchor="middle")
+    """Turn of cutting and name on a piece, level or upright, where it is larger; across its holes where it must."""
+    words = f"{turn}: {placement.part} {placement.copy}"
+    outer, *inner = (placement.motion.points(points) for points in rings_of(part))
+    level, upright = Polygon(outer, inner), Polygon(outer[:, ::-1], [hole[:, ::-1] for hole in inner])
+    along, up = (_spot(region, len(words), em) for region in (level, upright))
+    spot = along if along.size >= up.size else Spot(up.y, up.x, up.size)
+    onto = page if along.size >= up.size else page.g(transform=f"rotate(-90 {spot.x:.3f} {-spot.y:.3f})")
+    _text(onto, words, (spot.x, -spot.y + spot.size / 3), spot.size, anchor="middle")
     if onto is not page:
         page.add(onto)
+
+
+def _spot(region: Polygon, letters: int, em: float) -> Spot:
+    """Return a spot on the material where letters can be read there, else across holes."""
+    spot = spot_on_material(region, letters, em)
+    if spot is None or spot.size < READABLE * em:
+        spot = spot_anywhere(Polygon(region.exterior), letters, em)
+    return replace(spot, size=max(LEAST_NAME * em, spot.size))
 
 
 def _offcut(page: svgwrite.Drawing, offcut: Rectangle, em: float, units: str) -> None:

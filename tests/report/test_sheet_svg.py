@@ -54,9 +54,18 @@ def test_a_name_lies_along_the_piece_and_within_it(size, upright):
     one = SheetLayout("al3", "al", 3.0, outline, (), 98.0, 0.1, (Placement(bar.name, 1, 0.0, False, 10.0, 10.0),))
     root = ElementTree.fromstring(sheet_svg(one, 1, {bar.name: bar}, margin_mm=0.0))
     (name,) = [t for t in root.iter(f"{SVG}text") if t.text.startswith("1: long")]
-    assert float(name.get("font-size")) == pytest.approx(90.0 / (0.62 * 23), abs=0.01)
+    assert float(name.get("font-size")) == pytest.approx(90.0 / (0.62 * 23 + 0.6), abs=0.01)
     turned = [g for g in root.iter(f"{SVG}g") if "rotate" in (g.get("transform") or "")]
     assert bool(turned) is upright
+
+
+def test_the_picture_is_white_to_its_edges():
+    """Dark ink would be lost where a viewer's ground is dark."""
+    root = picture()
+    ground = next(root.iter(f"{SVG}rect"))
+    assert ground.get("fill") == "#FFFFFF"
+    box = [float(v) for v in root.get("viewBox").replace(",", " ").split()]
+    assert [float(ground.get(key)) for key in ("x", "y", "width", "height")] == box
 
 
 def test_a_list_under_the_sheet_says_which_drawings_were_cut():

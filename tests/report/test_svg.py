@@ -5,14 +5,16 @@ import xml.etree.ElementTree as ET
 
 import numpy as np
 import pytest
+from shapely.geometry import box
 
 from flatprep.geom import bulge
 from flatprep.geom.bulge import Similarity
 from flatprep.geom.polygons import polygon
 from flatprep.report.badges import MOST_BADGES, finding_badges, spread, step_badges
 from flatprep.report.bundle import Offcut
+from flatprep.report.label_spot import Spot, spot_anywhere, spot_on_material
 from flatprep.report.part_figure import frame, nice_length_mm, part_figure
-from flatprep.report.sheet_figure import Shape, hatch, label_place, shape_defs, sheet_figure, svg_matrix
+from flatprep.report.sheet_figure import Shape, hatch, shape_defs, sheet_figure, svg_matrix
 from flatprep.report.svg_path import path_data
 from flatprep.report.svg_tag import tag, text
 
@@ -136,10 +138,37 @@ def test_an_offcut_is_hatched_at_45_degrees_and_no_line_leaves_it():
         assert -120 <= y1 <= y0 <= -20
 
 
-def test_a_name_stands_on_material():
-    # a 100 mm square with a slot through the middle height: the run of material beside it is 30 mm wide
-    outer = np.array([[0.0, 0, 0], [100, 0, 0], [100, 100, 0], [0, 100, 0]])
-    slot = bulge.reverse(np.array([[30.0, 40, 0], [90, 40, 0], [90, 60, 0], [30, 60, 0]]), closed=True)
-    x, y, across = label_place(polygon(outer, [slot], chord_mm=0.01))
-    assert 40 < y < 60
-    assert (x, across) == pytest.approx((15.0, 30.0))
+# a 100 mm square with a slot at middle height, from x = 30 to 90 and y = 40 to 60
+SLOTTED = polygon(
+    np.array([[0.0, 0, 0], [100, 0, 0], [100, 100, 0], [0, 100, 0]]),
+    [bulge.reverse(np.array([[30.0, 40, 0], [90, 40, 0], [90, 60, 0], [30, 60, 0]]), closed=True)],
+    chord_mm=0.01,
+)
+
+
+def test_a_name_stands_on_material_where_it_is_largest():
+    # small letters: in the middle, on the run of 30 mm beside the slot
+    assert spot_on_material(SLOTTED, 4, 3.0) == Spot(15.0, 50.0, 3.0)
+    # large ones: a quarter up, where a line 20 mm high ends 5 mm below the slot
+    assert spot_on_material(SLOTTED, 4, 20.0) == Spot(50.0, 25.0, 20.0)
+    # no room for letters of 1 mm a thousand in a line
+    assert spot_on_material(SLOTTED, 1000, 20.0).size == pytest.approx(100 / 620.6)
+
+
+def test_no_edge_crosses_a_name():
+    rng = np.random.default_rng(3)
+    for _ in range(40):
+        outer = np.array([[0.0, 0, 0], [80, 0, 0], [80, 50, 0], [0, 50, 0]])
+        holes = [bulge.reverse(bulge.circle(*rng.uniform(10, 40, 2), rng.uniform(1, 9)), closed=True)]
+        region = polygon(outer, holes, chord_mm=0.01)
+        letters = int(rng.integers(3, 20))
+        spot = spot_on_material(region, letters, 12.0)
+        half = 0.62 * letters * spot.size / 2
+        text = box(spot.x - half, spot.y - spot.size / 2, spot.x + half, spot.y + spot.size / 2)
+        assert text.difference(region).area < 1e-9
+
+
+def test_where_nothing_else_serves_a_name_goes_half_way_up():
+    spot = spot_anywhere(SLOTTED, 4, 100.0)
+    assert (spot.x, spot.y) == pytest.approx((15.0, 50.0))
+    assert spot.size == pytest.approx(30.0 / (4 * 0.62 + 0.6))

@@ -1,0 +1,81 @@
+"""Where the name of a piece is written: on its own material, level, as large as fits."""
+
+from dataclasses import dataclass
+from functools import lru_cache
+
+import shapely
+from shapely.geometry import LineString, Polygon
+
+from flatprep.geom.bulge import Floats
+from flatprep.geom.polygons import ring, valid_polygon
+from flatprep.model.drawing import Part
+
+WIDE = 0.62
+"""Width of a letter over its height."""
+_HEIGHTS = (0.5, 0.38, 0.62, 0.25, 0.75, 0.13, 0.87)
+"""Where a line of text is tried, as shares of the piece's height; the middle first."""
+_ROOM = 0.6
+"""What a run of material keeps free beside the text, in letter heights."""
+
+
+@dataclass(frozen=True, slots=True)
+class Spot:
+    """Middle of a line of text and its letters' height, mm."""
+
+    x: float
+    y: float
+    size: float
+
+
+@lru_cache(maxsize=1024)
+def rings_of(part: Part) -> tuple[Floats, ...]:
+    """Contours of a part by points; it may lie on many sheets many times."""
+    return tuple(ring(contour.xyb, 0.5) for contour in part.contours)
+
+
+def spot_on_material(region: Polygon, letters: int, most: float) -> Spot | None:
+    """Return the spot for the largest line of so many letters that no edge crosses; None where none was found.
+
+    Parameters
+    ----------
+    region
+        The piece as it lies, holes and all.
+    letters
+    most
+        Largest height of a letter, mm.
+    """
+    shape = valid_polygon(region)
+    x0, y0, x1, y1 = shape.bounds
+    levels = [y0 + share * (y1 - y0) for share in _HEIGHTS]
+    across = shapely.linestrings([[(x0 - 1.0, y), (x1 + 1.0, y)] for y in levels])
+    runs = shapely.get_parts(shapely.intersection(shape, across))
+    spots = [_within(run.bounds, letters, most) for run in runs if run.length > 0.0]
+    shapely.prepare(shape)
+    free = [spot for spot in spots if shape.covers(_box(spot, letters))]
+    return max(free, key=lambda spot: spot.size, default=None)
+
+
+def _within(run: tuple[float, float, float, float], letters: int, most: float) -> Spot:
+    """Return the middle of a level run, with letters as large as it has room for."""
+    x0, y, x1, _ = run
+    return Spot((x0 + x1) / 2.0, y, _letter(x1 - x0, letters, most))
+
+
+def _letter(across: float, letters: int, most: float) -> float:
+    return min(most, across / (WIDE * letters + _ROOM))
+
+
+def _box(spot: Spot, letters: int) -> Polygon:
+    half = WIDE * letters * spot.size / 2.0
+    return shapely.box(spot.x - half, spot.y - spot.size / 2.0, spot.x + half, spot.y + spot.size / 2.0)
+
+
+def spot_anywhere(region: Polygon, letters: int, most: float) -> Spot:
+    """Return the middle of a wide level run of material half way up a piece, whatever edges the text crosses there."""
+    shape = valid_polygon(region)
+    middle = shape.representative_point()  # which is the middle of the widest run at that height
+    x0, _, x1, _ = shape.bounds
+    run = shape.intersection(LineString([(x0 - 1, middle.y), (x1 + 1, middle.y)]))
+    runs = [piece for piece in getattr(run, "geoms", [run]) if piece.distance(middle) < 1e-6]
+    across = max((piece.length for piece in runs), default=0.0)
+    return Spot(float(middle.x), float(middle.y), _letter(float(across), letters, most))
