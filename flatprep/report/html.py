@@ -6,11 +6,12 @@ style and script by their hashes, so that markup in a drawing's names could not 
 
 import base64
 import hashlib
+import re
 from functools import cache
 from urllib.parse import quote
 
 from jinja2 import Environment, PackageLoader, StrictUndefined
-from markupsafe import Markup
+from markupsafe import Markup, escape
 
 from flatprep.report import figures as show
 from flatprep.report.bundle import Bundle, PartCard
@@ -96,9 +97,15 @@ def _environment(units: str, currency: str | None) -> Environment:
         "sentence": lambda words: lengths_in(show.sentence(words), units),
         "words": lambda words: lengths_in(words, units),
         "sign": lambda kind, words: Markup(sign(kind, str(words))),
+        "foldable": foldable,
         "relative": lambda file: "./" + quote(file),
     }
     return environment
+
+
+def foldable(name: str) -> Markup:
+    """Return a name that may be broken after its underscores, dashes, points, strokes and number signs."""
+    return Markup("<wbr>").join(escape(piece) for piece in re.findall(r"[^_/#.-]*[_/#.-]+|[^_/#.-]+", name))
 
 
 def _csp_hash(text: str) -> str:

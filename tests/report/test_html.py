@@ -7,7 +7,7 @@ from dataclasses import replace
 from html.parser import HTMLParser
 
 from flatprep.model.finding import Finding, Severity
-from flatprep.report.html import bench_sheet_html, report_html
+from flatprep.report.html import bench_sheet_html, foldable, report_html
 
 
 class Page(HTMLParser):
@@ -173,6 +173,12 @@ def test_lengths_follow_the_job_s_unit(bundle):
         "11.811 in",
     ):
         assert said in words, said
+
+
+def test_long_names_may_be_broken_where_their_words_end():
+    assert foldable("a_long-name/of.dxf#1") == "a_<wbr>long-<wbr>name/<wbr>of.<wbr>dxf#<wbr>1"
+    assert foldable("<b>__x") == "&lt;b&gt;__<wbr>x"
+    assert foldable("") == ""
 
 
 def test_the_same_bundle_gives_the_same_page(bundle):
