@@ -82,7 +82,7 @@ def add(space: Any, kind: str, made: dict[str, Any]) -> None:
 
 
 @st.composite
-def drawings(draw: st.DrawFn) -> DxfDocument:
+def drawings(draw: st.DrawFn, most_rows: int = 400) -> DxfDocument:
     """A drawing: entities in model space and in blocks that are inserted anyhow, also into each other."""
     doc = ezdxf.new(draw(st.sampled_from(["R12", "R2000", "R2010"])))
     doc.header["$INSUNITS"] = draw(st.sampled_from([0, 1, 4, 5, 6, 99]))
@@ -93,6 +93,6 @@ def drawings(draw: st.DrawFn) -> DxfDocument:
                 add(space, kind, made)
         for _ in range(draw(st.integers(0, 2)) if blocks else 0):
             attribs = {"xscale": draw(NUMBERS), "yscale": draw(NUMBERS), "rotation": draw(NUMBERS)}
-            attribs |= {"row_count": draw(st.sampled_from([1, 2, 400])), "row_spacing": draw(NUMBERS)}
+            attribs |= {"row_count": draw(st.sampled_from([1, 2, most_rows])), "row_spacing": draw(NUMBERS)}
             space.add_blockref(draw(st.sampled_from(blocks)).name, (draw(NUMBERS), draw(NUMBERS)), dxfattribs=attribs)
     return doc

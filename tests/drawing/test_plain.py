@@ -279,7 +279,7 @@ def test_records():
 
 
 @HOUSE
-@given(doc=drawings())
+@given(doc=drawings(most_rows=5))
 def test_any_drawing(tmp_path, doc):
     path = tmp_path / "any.dxf"
     doc.saveas(path)
