@@ -2,6 +2,7 @@
 
 import hashlib
 import re
+from codecs import BOM_UTF16_BE, BOM_UTF16_LE
 from collections.abc import Mapping
 from contextlib import suppress
 from dataclasses import dataclass, field
@@ -15,13 +16,17 @@ from ezdxf.filemanagement import dxf_file_info, readfile
 
 from flatprep.base.errors import DrawingError
 from flatprep.drawing.limits import ReadLimits
+from flatprep.drawing.mend import mended
 from flatprep.drawing.plain import Plain
+from flatprep.drawing.records import OddFileError
 from flatprep.drawing.sift import Sifted, sift
 
 _UNIT = re.compile(rb"\$INSUNITS\s+70\s+(\d+)")
 _BINARY_HEAD = b"AutoCAD Binary DXF\r\n\x1a\x00"
 _BINARY_UNIT = re.compile(rb"\$INSUNITS\x00\x46\x00(..)", re.DOTALL)
 _BYTES = "surrogateescape"
+_USUAL_ENCODING = "cp1252"
+_VERSION = re.compile(r"^\s*9\n\$ACADVER *\n\s*1\n *(\S*)", re.MULTILINE)
 _CONFLICT = re.compile(rb"^(<{7}|={7}|>{7})(?: .*)?\r?$", re.MULTILINE)
 
 UNIT_OF_CODE = {1: "in", 2: "ft", 4: "mm", 5: "cm", 6: "m"}
@@ -40,6 +45,8 @@ class Loaded:
         Whether the strict reader refused the file.
     conflicts
         Whether version-control conflict markers were taken out (the first side is kept).
+    cut_short
+        Whether the file ends within a section: what stood behind that is missing.
     digest
         SHA-256 of the file's bytes, in hexadecimal.
     plain
@@ -52,6 +59,7 @@ class Loaded:
     unit_code: int | None
     recovered: bool
     conflicts: bool
+    cut_short: bool
     digest: str
     plain: tuple[Plain, ...] = ()
     places: Mapping[str, int] = field(default_factory=dict)
@@ -72,7 +80,8 @@ def load(path: Path, limits: ReadLimits) -> Loaded:
         data = _first_side(data)
     opened = _open(path, data, changed=conflicts)
     document, sifted = opened.document, opened.sifted
-    return Loaded(document, unit_code(data), opened.recovered, conflicts, digest, sifted.plain, sifted.places)
+    flags = opened.recovered, conflicts, opened.cut_short
+    return Loaded(document, unit_code(data), *flags, digest, sifted.plain, sifted.places)
 
 
 def unit_code(data: bytes) -> int | None:
@@ -122,15 +131,22 @@ class _Opened(NamedTuple):
     document: DxfDocument
     recovered: bool
     sifted: Sifted = Sifted()
+    cut_short: bool = False
 
 
 def _open(path: Path, data: bytes, *, changed: bool) -> _Opened:
     # ezdxf and what lies under it raise more than DXFError on damaged files (struct, Unicode, index errors):
     # whatever a reader trips over is one damaged file, told to the person below
     if not changed:
-        for read in (_beside, _strictly):
+        try:
+            return _beside(*_decoded(path, data))
+        except OddFileError:
+            pass
+        except Exception:
             with suppress(Exception):
-                return read(path, data)
+                return _strictly(path)
+    with suppress(Exception):
+        return _put_right(*_decoded(path, data))
     try:
         return _Opened(_mended(data), recovered=True)
     except Exception as err:
@@ -144,17 +160,45 @@ def _mended(data: bytes) -> DxfDocument:
     return recover.read(BytesIO(data))[0]
 
 
-def _strictly(path: Path, _data: bytes) -> _Opened:
+def _strictly(path: Path) -> _Opened:
     return _Opened(readfile(path), recovered=False)
 
 
-def _beside(path: Path, data: bytes) -> _Opened:
+def _decoded(path: Path, data: bytes) -> tuple[str, str]:
+    """Return a file's text, its lines ended by line feeds, and the encoding it is in."""
+    if data.startswith((BOM_UTF16_LE, BOM_UTF16_BE)):
+        encoding, text = "utf-16", data.decode("utf-16", "replace")
+    else:
+        encoding = _encoding(path)
+        text = data.decode(encoding, _BYTES)
+    return text.replace("\r\n", "\n").replace("\r", "\n"), encoding
+
+
+def _encoding(path: Path) -> str:
+    try:
+        return dxf_file_info(path).encoding
+    except Exception:  # its first lines are no tags
+        return _USUAL_ENCODING
+
+
+def _beside(text: str, encoding: str) -> _Opened:
     """Read plain entities ourselves, and let ezdxf read the rest."""
-    about = dxf_file_info(path)
-    text = data.decode(about.encoding, _BYTES).replace("\r\n", "\n").replace("\r", "\n")
-    sifted = sift(text, old=about.version <= "AC1009")
+    found = _VERSION.search(text)
+    sifted = sift(text, old=found is None or found[1] <= "AC1009")
     if sifted.reordered:
-        document = _mended(sifted.rest.text.encode(about.encoding, _BYTES))
+        document = _mended(sifted.rest.text.encode(encoding, _BYTES))
     else:
         document = DxfDocument.load(sifted.rest.compiled)
     return _Opened(document, sifted.reordered, sifted.fitted(document))
+
+
+def _put_right(text: str, encoding: str) -> _Opened:
+    """Read a file whose tags have to be put right first."""
+    right = mended(text)
+    for read in (
+        lambda: _beside(right.tags.text, encoding),
+        lambda: _Opened(DxfDocument.load(right.tags.compiled), recovered=True),
+    ):
+        with suppress(Exception):
+            return read()._replace(recovered=True, cut_short=right.cut_short)
+    return _Opened(_mended(right.tags.text.encode(encoding, _BYTES)), recovered=True, cut_short=right.cut_short)

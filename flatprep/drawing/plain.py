@@ -111,6 +111,11 @@ def is_bare(codes: Codes) -> bool:
     return _BARE.issuperset(codes)
 
 
+def is_whole(kind: str, codes: Codes) -> bool:
+    """Whether an entity has all codes that its kind must have."""
+    return kind not in _MAKES or _MAKES[kind].needed.issubset(codes)
+
+
 def _checked(kind: str, columns: Columns) -> Columns:
     """Refuse codes that are unknown, missing, there twice or out of their place, and numbers that are none."""
     make, codes = _MAKES[kind], columns.codes

@@ -75,6 +75,8 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         ) from err
     if loaded.conflicts:
         faults.append(Fault("unsupported-entity", detail="version-control conflict markers: the first side was read"))
+    if loaded.cut_short:
+        faults.append(Fault("unsupported-entity", detail="the file ends too early: what stood at its end is missing"))
     cut, roles = _cut_curves(found)
     shapes = outlines(cut, options.tol)
     contours, nest, frames = without_frames([c.contour for c in shapes.rings], shapes.shapes)

@@ -8,14 +8,18 @@ from ezdxf.lldxf.types import DXFTag
 
 from flatprep.drawing.columns import Codes
 
-_COMMENT = 999
+COMMENT = 999
 _HANDLE = 5
-_HANDLES = {"DIMSTYLE": 105}
+HANDLES = {"DIMSTYLE": 105}
 """Codes of handles where they are others: there 5 is the name of an arrow."""
 
 
 class NotSiftedError(Exception):
     """A file that is not built as files are."""
+
+
+class OddFileError(NotSiftedError):
+    """A file whose tags have to be put right (`flatprep.drawing.mend`) before anyone reads it: some would be lost."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -76,7 +80,7 @@ class Records(Tags):
     def has_handles(self, *sections: str) -> bool:
         """Whether anything in these sections has a handle."""
         records = (k for name in sections for k in self.section(name))
-        return any(_HANDLES.get(self.kinds[k], _HANDLE) in self.tags(k).codes for k in records)
+        return any(HANDLES.get(self.kinds[k], _HANDLE) in self.tags(k).codes for k in records)
 
     def tags(self, k: int) -> Tags:
         """All tags of a record."""
@@ -101,21 +105,25 @@ def records_of(text: str) -> Records:
 
     Raises
     ------
+    OddFileError
+        When it does not end with its end, a section is there twice, or names are padded with blanks.
     NotSiftedError, ValueError, LookupError
-        When it does not begin with a section and end with its end, a group code is no number, or a section is there
-        twice.
+        When it does not begin with a section, or a group code is no number.
     """
     lines = text.rstrip().split("\n")
     codes, values = list(map(int, lines[0::2])), lines[1::2]
     if len(codes) != len(values) or codes[-1] != 0 or values[-1] != "EOF":
-        raise NotSiftedError
-    if _COMMENT in codes:
-        values = [value for code, value in zip(codes, values, strict=True) if code != _COMMENT]
-        codes = [code for code in codes if code != _COMMENT]
+        raise OddFileError
+    if COMMENT in codes:
+        values = [value for code, value in zip(codes, values, strict=True) if code != COMMENT]
+        codes = [code for code in codes if code != COMMENT]
     starts = [k for k, code in enumerate(codes) if code == 0]
     kinds = [values[k].strip() for k in starts]
     heads = [k for k, kind in enumerate(kinds) if kind == "SECTION"]
     sections = {values[starts[k] + 1]: k for k in heads}
-    if starts[0] != 0 or kinds[0] != "SECTION" or kinds.count("EOF") != 1 or len(sections) != len(heads):
+    padded = any(name != name.strip() for name in sections) or kinds != [values[k] for k in starts]
+    if padded or len(sections) != len(heads) or kinds.count("ENDSEC") < len(heads):
+        raise OddFileError
+    if starts[0] != 0 or kinds[0] != "SECTION" or kinds.count("EOF") != 1:
         raise NotSiftedError
     return Records(codes, values, starts, kinds, sections)

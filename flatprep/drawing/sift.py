@@ -7,8 +7,9 @@ from dataclasses import dataclass, field, replace
 from ezdxf.document import Drawing as DxfDocument
 
 from flatprep.drawing.columns import Codes, in_order
+from flatprep.drawing.mend import NEWER
 from flatprep.drawing.plain import BY_CLASSES, KINDS, Plain, is_bare, plain_entities
-from flatprep.drawing.records import NotSiftedError, Records, Tags, records_of
+from flatprep.drawing.records import NotSiftedError, OddFileError, Records, Tags, records_of
 from flatprep.drawing.unread import unread
 
 _LINKED = {"VERTEX", "ATTRIB", "SEQEND"}
@@ -69,10 +70,14 @@ def sift(text: str, *, old: bool) -> Sifted:
 
     Raises
     ------
+    OddFileError
+        When something would be lost in it that can be put right.
     NotSiftedError, ValueError, LookupError
         When the file is not built as files are: ezdxf is to read it whole, and to say what is wrong.
     """
     f = records_of(text)
+    if old and not NEWER.isdisjoint(f.kinds):
+        raise OddFileError  # ezdxf reads them as it reads what R12 knows, and misses their flags
     entities = f.section("ENTITIES")
     alike = _alike(f, entities, KINDS - BY_CLASSES if old else KINDS)
     plain = _plain(f, alike)
