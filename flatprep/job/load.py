@@ -7,8 +7,10 @@ from pathlib import Path
 from typing import Any
 
 from flatprep.base.errors import JobError
+from flatprep.base.keys import keys_of
 from flatprep.base.names import did_you_mean, one_line
 from flatprep.base.units import MM_PER_UNIT
+from flatprep.job import reference
 from flatprep.job.context import Context, JobOptions, accepts, money, roles
 from flatprep.job.corners import ReliefKind
 from flatprep.job.cutlist import load_cutlist
@@ -25,11 +27,7 @@ from flatprep.profile.process_load import load_process
 from flatprep.profile.toml_check import Table, read_toml
 from flatprep.profile.where import ids
 
-KEYS = (
-    "name", "revision", "units", "process", "spacing", "margin", "sets", "mass_limit", "pilots", "parts", "currency",
-    "windows", "layers", "accept", "cost", "material", "stock", "rack", "part", "joint", "tabs", "relief", "slots",
-    "slot_clearance", "etch_labels", "etch_height", "first_article",
-)  # fmt: skip
+KEYS = keys_of(reference.TOP)
 """Every key at the top of a job file."""
 
 AS_DRAWN, MEASURED = "as-drawn", "measured"
@@ -40,7 +38,7 @@ SLOT_CLEARANCE_MM = 0.1
 ETCH_HEIGHT_MM = (3.0, 10.0)
 """Height of etched letters that are read at arm's length (common practice)."""
 
-COST_KEYS = ("share", "machine_rate", "offcut_credit", "offcut_least", "scrap_per_kg", "discount", "breaks")
+COST_KEYS = keys_of(reference.COST)
 
 
 def load_job(path: Path, options: JobOptions | None = None) -> Job:

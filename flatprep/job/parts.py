@@ -3,7 +3,9 @@
 from collections.abc import Mapping
 from pathlib import Path
 
+from flatprep.base.keys import keys_of
 from flatprep.base.names import one_line, printable
+from flatprep.job import reference
 from flatprep.job.context import Context, accepts, corners, roles
 from flatprep.job.cutlist import CutRow
 from flatprep.job.values import JobPart, Tabs
@@ -12,11 +14,7 @@ from flatprep.profile.material import Material
 from flatprep.profile.process import Process
 from flatprep.profile.toml_check import Table
 
-KEYS = (
-    "drawing", "name", "drawing_units", "material", "thickness", "quantity", "quantity_opposite", "turns", "may_flip",
-    "grain", "process", "work", "bend", "layers", "revision", "note", "filler", "finish", "good_face", "accept",
-    "tabs", "corners", "etch_label",
-)  # fmt: skip
+KEYS = keys_of(reference.PART)
 """Every key of a ``[[part]]``."""
 
 

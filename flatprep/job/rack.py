@@ -5,7 +5,9 @@ from pathlib import Path
 
 from flatprep.base.errors import JobError
 from flatprep.base.journal import is_unfinished
+from flatprep.base.keys import keys_of
 from flatprep.base.units import MM_PER_UNIT
+from flatprep.job import reference
 from flatprep.job.booked import load_bookings
 from flatprep.job.context import Context, money
 from flatprep.job.reach import Reach
@@ -17,7 +19,7 @@ LIST = "stock.toml"
 """Sheets of the rack, as ``[[stock]]`` tables."""
 USED = "used"
 """Folder in the rack for drawings of remnants that are gone."""
-KEYS = ("units", "remnant_price", "offcut_least", "stock")
+KEYS = keys_of(reference.RACK)
 """Every key at the top of a rack's ``stock.toml``."""
 
 

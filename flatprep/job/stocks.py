@@ -4,17 +4,16 @@ from pathlib import Path
 
 import numpy as np
 
+from flatprep.base.keys import keys_of
 from flatprep.base.names import one_line
 from flatprep.geom.bulge import Floats
 from flatprep.geom.polygons import is_simple
+from flatprep.job import reference
 from flatprep.job.context import Context, money
 from flatprep.job.values import Point, Stock
 from flatprep.profile.toml_check import Table
 
-KEYS = (
-    "name", "material", "thickness", "length", "width", "outline", "count", "price_per_sheet", "price_per_metre",
-    "grain", "measured_thickness", "margins", "keep_out",
-)  # fmt: skip
+KEYS = keys_of(reference.STOCK)
 """Every key of a ``[[stock]]``."""
 
 

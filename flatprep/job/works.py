@@ -1,18 +1,18 @@
 """Bench work, bends and joints of a job file."""
 
+from flatprep.base.keys import keys_of
+from flatprep.job import reference
 from flatprep.job.context import Context
 from flatprep.job.values import BendAsk, JointAsk, JointLayer, Point, Work
 from flatprep.profile.toml_check import Table
 
-KINDS = (
-    "tap", "ream", "bore", "countersink", "counterbore", "clearance", "drill", "thread_insert", "press", "nut_pocket",
-)  # fmt: skip
+KINDS = reference.WORK[0].keys
 """The kinds of bench work; exactly one of them is the key of a ``[[part.work]]``."""
 
-WORK_KEYS = (*KINDS, "hole", "at", "count", "side", "depth", "note")
-BEND_KEYS = ("line", "layer", "angle", "radius", "direction")
-JOINT_KEYS = ("name", "fastener", "length", "nut", "count", "through")
-LAYER_KEYS = ("part", "spacer", "thickness", "hole", "at", "threaded")
+WORK_KEYS = keys_of(reference.WORK)
+BEND_KEYS = keys_of(reference.BEND)
+JOINT_KEYS = keys_of(reference.JOINT)
+LAYER_KEYS = keys_of(reference.LAYER)
 
 
 def read_work(table: Table, context: Context) -> Work:

@@ -5,7 +5,9 @@ from decimal import Decimal
 from pathlib import Path
 
 from flatprep.base.errors import ProfileError
+from flatprep.base.keys import keys_of
 from flatprep.base.names import did_you_mean, nearest, plain
+from flatprep.profile import reference
 from flatprep.profile.material import FAMILIES, LEVELS, TECHNOLOGIES, BendRule, Material, Verdict
 from flatprep.profile.points import Points
 from flatprep.profile.toml_check import Table, read_toml
@@ -13,11 +15,7 @@ from flatprep.profile.where import candidate, ids
 
 MOST_DENSITY = 30000.0
 METALS = ("steel", "stainless", "aluminium", "galvanised")
-KEYS = (
-    "name", "family", "aliases", "density", "density_range", "face_grain", "source", "elastic_modulus", "strength",
-    "strength_kind", "mechanical_source", "hardness", "gauge", "stock", "stock_source", "tap", "tap_note",
-    "cautions", "hazards", "bend", "cut", "price_per_kg",
-)  # fmt: skip
+KEYS = keys_of(reference.MATERIAL)
 """Every key that a material profile may have."""
 
 

@@ -5,7 +5,9 @@ from math import inf
 from pathlib import Path
 
 from flatprep.base.errors import ProfileError
+from flatprep.base.keys import keys_of
 from flatprep.base.names import did_you_mean
+from flatprep.profile import reference
 from flatprep.profile.points import Points
 from flatprep.profile.process import FEATURES, SCALES, Band, Process, ProcessKind, TabRule, Terms
 from flatprep.profile.toml_check import Table, read_toml
@@ -14,11 +16,7 @@ from flatprep.profile.where import candidate, ids
 LIMIT_KEYS = tuple(f"{feature}_{scale}" for feature in FEATURES for scale in SCALES)
 _BAND_KEYS = ("limits", "warn", "sources", "above", "upto")
 _TERM_KEYS = ("limits", "warn", "sources", "thickness", "kerf_table", "feed_mm_min", "pierce_s", "band", "source")
-KEYS = (
-    "name", "kind", "beam", "power", "kerf", "tool_diameter", "spacing", "margin", "bed", "windows", "slat_pitch",
-    "machine_rate", "direct_tap_up_to", "pilot_under", "caution", "source", "family",
-    "limits", "warn", "sources", "thickness", "kerf_table", "feed_mm_min", "pierce_s", "band", "tabs",
-)  # fmt: skip
+KEYS = keys_of(reference.PROCESS)
 """Every key that the top of a process profile may have."""
 TAB_KEYS = ("count", "width", "width_to_thickness", "every", "source")
 USUAL_TABS = {

@@ -12,10 +12,12 @@ from pathlib import Path
 import pytest
 from click import Context
 
+from flatprep.base.keys import keys_of
 from flatprep.cli.main import Root
 from flatprep.job import load, parts, rack, stocks, works
 from flatprep.profile import material_load, process_load
 from flatprep.profile.process import FEATURES
+from tests.docs import reference
 
 ROOT = Path(__file__).parents[2]
 README = (ROOT / "README.md").read_text(encoding="utf-8")
@@ -84,29 +86,35 @@ def test_every_command_has_an_example():
         assert f"flatprep {name}" in README, name
 
 
-@pytest.mark.parametrize("keys", [process_load.KEYS, material_load.KEYS, FEATURES])
-def test_every_key_of_a_profile_is_explained(keys):
-    reference = README.partition("## Profiles")[2].partition("\n## ")[0]
-    assert [key for key in keys if f"`{key}`" not in reference] == []
+def test_the_tables_of_keys_are_those_of_the_code():
+    assert sorted(reference.named(README)) == sorted(reference.TABLES)
+    assert reference.made_anew(README) == README, "make them anew: python -m tests.docs.reference"
 
 
-@pytest.mark.parametrize(
-    "keys",
-    [
-        load.KEYS,
-        load.COST_KEYS,
-        parts.KEYS,
-        stocks.KEYS,
-        works.WORK_KEYS,
-        works.BEND_KEYS,
-        works.JOINT_KEYS,
-        works.LAYER_KEYS,
-        rack.KEYS,
-    ],
-)
-def test_every_key_of_a_job_is_explained(keys):
-    reference = README.partition("## The job file")[2].partition("\n## ")[0]
-    assert [key for key in keys if f"`{key}`" not in reference] == []
+@pytest.mark.parametrize("rows", reference.TABLES.values(), ids=reference.TABLES)
+def test_every_key_is_explained_once(rows):
+    keys = keys_of(rows)
+    assert len(set(keys)) == len(keys)
+    assert [row.keys for row in rows if not row.meaning and not row.default] == []
+
+
+def test_every_reader_takes_its_keys_from_a_table():
+    """A list of keys in a reader that no table has would be read and not explained."""
+    explained = {keys_of(rows) for rows in reference.TABLES.values()}
+    readers = (load, parts, rack, stocks, works, process_load, material_load)
+    taken = {
+        f"{reader.__name__}.{name}": value for reader in readers for name, value in vars(reader).items()
+        if name.endswith("KEYS") and not name.startswith("_")
+    }  # fmt: skip
+    inner = {"flatprep.profile.process_load.LIMIT_KEYS", "flatprep.profile.process_load.TAB_KEYS"}
+    assert inner <= set(taken)
+    assert [name for name, keys in taken.items() if name not in inner and keys not in explained] == []
+
+
+@pytest.mark.parametrize("keys", [FEATURES, process_load.TAB_KEYS])
+def test_the_inner_keys_of_a_process_are_explained(keys):
+    section = README.partition("## Profiles")[2].partition("\n## ")[0]
+    assert [key for key in keys if f"`{key}`" not in section] == []
 
 
 def test_every_toml_example_is_toml():
