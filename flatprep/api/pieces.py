@@ -19,8 +19,6 @@ _FAULTS_OF_A_COPY = {"self-crossing", "duplicate-line", "off-plane", "open-conto
 """A drawing with one of these is not what is cut: a clean copy stands in for it."""
 
 _CHORD_MM = 0.01
-_DIGITS = 10
-"""So many digits of a drawing's digest are shown."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -58,7 +56,7 @@ class Piece:
     @property
     def digest(self) -> str:
         """Tell this content of the drawing apart from any other, in a few digits."""
-        return self.drawing.digest[:_DIGITS]
+        return self.drawing.short_digest
 
 
 @dataclass(frozen=True, slots=True)

@@ -263,3 +263,8 @@ class Drawing:
     simplified: tuple[Simplified, ...] = ()
     digest: str = ""
     """SHA-256 of the file as it was read, in hexadecimal."""
+
+    @property
+    def short_digest(self) -> str:
+        """The digits of the digest that people are shown: enough to tell one content from another."""
+        return self.digest[:10]

@@ -86,13 +86,19 @@ def _where(finding: Finding, units: str, *, several: bool) -> str:
     """Say part, place and measure; where a drawing holds `several` parts, a place alone is hard to find."""
     words = []
     if finding.part is not None and (several or finding.at is None):
-        words.append(f"in {finding.part}")
+        words.append(f"in {_short(finding.part)}")
     if finding.at is not None:
         words.append(f"at {place(finding.at, units)}")
     if finding.measured is not None:
         limit = "" if finding.limit is None else f", limit {measure(finding.limit, finding.unit, units)}"
         words.append(f"{measure(finding.measured, finding.unit, units)}{limit}")
     return f" [{'; '.join(words)}]" if words else ""
+
+
+def _short(name: str) -> str:
+    """Return ``#3`` for the third part of a drawing: the drawing's own name stands over it."""
+    stem, sign, number = name.rpartition("#")
+    return sign + number if stem and number.isdecimal() else name
 
 
 def _folded(text: str) -> Iterator[str]:

@@ -45,13 +45,15 @@ def part_pictures(
     lost = unreached or {}
     return tuple(
         (p.name, part_svg(p, [f for f in one.findings if f.part in (p.name, None)], units=units or one.drawing.units,
-                          unreached=lost.get(p.name)))
+                          unreached=lost.get(p.name), digest=one.drawing.short_digest))
         for p in one.drawing.parts
     )  # fmt: skip
 
 
-def part_svg(part: Part, findings: Sequence[Finding], *, units: str = "mm", unreached: Unreached | None = None) -> str:
-    """SVG document of a part.
+def part_svg(
+    part: Part, findings: Sequence[Finding], *, units: str = "mm", unreached: Unreached | None = None, digest: str = ""
+) -> str:
+    """SVG document of a part, true to scale.
 
     Parameters
     ----------
@@ -63,15 +65,19 @@ def part_svg(part: Part, findings: Sequence[Finding], *, units: str = "mm", unre
         Of the figures.
     unreached
         Drawn hatched, with a line that says what it is.
+    digest
+        Of the drawing's content, shown beside the part's name.
     """
     unit, box = frame(part)
     x0, y0, x1, y1 = box
     seen = [b for b in finding_badges(findings) if x0 <= b.at[0] <= x1 and y0 <= b.at[1] <= y1]
-    lines = [*_lines_of(findings, units), *_hatched_line(unreached, units)]
+    named = ("name", f"{part.name}, drawing {digest}" if digest else part.name)
+    lines = [named, *_lines_of(findings, units), *_hatched_line(unreached, units)]
     step = 3.2 * unit
+    high = y1 - y0 + (len(lines) + 3) * step
     body = [
         tag("title", escape(part.name)),
-        tag("rect", x=x0, y=-y1, width=x1 - x0, height=y1 - y0 + (len(lines) + 3) * step, fill="#FFFFFF"),
+        tag("rect", x=x0, y=-y1, width=x1 - x0, height=high, fill="#FFFFFF"),
         tag("path", fill=MATERIAL, stroke=LINE, stroke_width=0.25 * unit, fill_rule="evenodd", d=part_path(part)),
         *_hatched(unreached, unit),
         *_drawn_on(part, unit),
@@ -79,9 +85,10 @@ def part_svg(part: Part, findings: Sequence[Finding], *, units: str = "mm", unre
         _scale(x0 + 3 * unit, -y0 + 3 * unit, unit, units),
         *_list(lines, x0 + 3 * unit, -y0 + 3 * step, step),
     ]
-    view = (x0, -y1, x1 - x0, y1 - y0 + (len(lines) + 3) * step)
+    view = (x0, -y1, x1 - x0, high)
     drawn = picture("".join(body), view, css="part", label=f"{part.name}: {len(findings)} findings")
-    return f'<?xml version="1.0" encoding="UTF-8"?>\n{drawn}\n'
+    scaled = drawn.replace("<svg ", f'<svg width="{number(x1 - x0, 3)}mm" height="{number(high, 3)}mm" ', 1)
+    return f'<?xml version="1.0" encoding="UTF-8"?>\n{scaled}\n'
 
 
 def _hatched(unreached: Unreached | None, unit: float) -> list[str]:

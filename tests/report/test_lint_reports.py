@@ -1,6 +1,7 @@
 """Lint as JSON and as text, from values made up here."""
 
 import json
+import re
 from dataclasses import replace
 
 import jsonschema
@@ -111,6 +112,8 @@ def test_a_finding_names_its_part_where_the_drawing_holds_several():
     assert "[at (30, 30);" in lint_text(LintReport((one,)))
     two = replace(one, drawing=replace(one.drawing, parts=(LEAF, replace(LEAF, name="stem"))))
     assert "[in leaf; at (30, 30);" in lint_text(LintReport((two,)))
+    counted = replace(two, findings=(replace(HOLE, part="leaf#12"),))
+    assert "[in #12; at (30, 30);" in lint_text(LintReport((counted,)))
 
 
 def test_a_job_in_inches_is_told_in_inches_whatever_the_drawing_is_in():
@@ -134,6 +137,14 @@ def test_picture_numbers_what_it_lists():
     assert ">2  warning unknown-units: no header says which unit<" in svg
     assert 'fill="#D55E00"' in svg
     assert "<polygon" in svg, "kinds differ in shape too"
+
+
+def test_picture_says_whose_it_is_and_is_true_to_scale():
+    one = linted(HOLE)
+    ((_, svg),) = part_pictures(replace(one, drawing=replace(one.drawing, digest="0123456789abcdef")))
+    assert ">leaf, drawing 0123456789<" in svg
+    width, height, box = re.search(r'width="([\d.]+)mm" height="([\d.]+)mm" .*?viewBox="([^"]+)"', svg).groups()
+    assert [float(width), float(height)] == pytest.approx([float(v) for v in box.split()[2:]], abs=0.01)
 
 
 def test_picture_counts_what_it_does_not_list():
