@@ -6,6 +6,7 @@ from math import cos, hypot, isfinite, pi, radians, sin, tan
 from typing import Any
 
 import numpy as np
+from ezdxf.math import BSpline, Vec3, fit_points_to_cad_cv
 
 from flatprep.geom.bulge import Floats, split_arcs
 from flatprep.geom.fit import fit_all
@@ -17,6 +18,8 @@ FAR = 1e12
 """Control points and axes beyond it, or no numbers, are not even looked at: their squares lose all digits."""
 FULL_RAD = 1e-5
 """An arc that misses a full turn by less is a circle: programs write angles with five decimals."""
+PAST_FULL_RAD = 1e-4
+"""One that runs past a full turn by less is no short arc but a circle: 2 pi is 6.2832 in four decimals."""
 
 
 class UnusableEntityError(Exception):
@@ -145,7 +148,7 @@ def arc_shape(centre: tuple[float, float, float], r: float, start_deg: float, en
     """Arc that runs anticlockwise in a plane that looks up (`flip` 1) or down (-1)."""
     start, end = radians(start_deg), radians(end_deg)
     sweep = (end - start) % (2 * pi)
-    if sweep < 1e-9 or sweep > 2 * pi - FULL_RAD or not r > 0:
+    if _is_full(start, end) or not r > 0:
         return circle_shape(centre, r, flip)
     x, y, z = centre
     pieces = 1 if sweep <= pi + 1e-9 else 2
@@ -155,6 +158,12 @@ def arc_shape(centre: tuple[float, float, float], r: float, start_deg: float, en
         a = start + sweep * k / pieces
         rows.append((flip * (x + r * cos(a)), y + r * sin(a), flip * bulge if k < pieces else 0.0))
     return Shape(np.array(rows), closed=False, z_low=flip * z, z_high=flip * z)
+
+
+def _is_full(start: float, end: float) -> bool:
+    """Tell whether an arc between two angles (radians) is a full turn, or one that rounding made a hair longer."""
+    sweep = (end - start) % (2 * pi)
+    return sweep < 1e-9 or sweep > 2 * pi - FULL_RAD or (sweep < PAST_FULL_RAD and abs(end - start) > pi)
 
 
 def _ellipse(e: Dxf) -> _Smooth:
@@ -168,7 +177,7 @@ def _ellipse(e: Dxf) -> _Smooth:
     minor = flip * ratio * np.array([-m.y, m.x])
     start, end = e.dxf.start_param, e.dxf.end_param
     sweep = (end - start) % (2 * pi)
-    full = sweep < 1e-6 or sweep > 2 * pi - FULL_RAD
+    full = _is_full(start, end) or sweep < 1e-6
     start, sweep = (0.0, 2 * pi) if full else (start % (2 * pi), sweep)
     return _Smooth(ellipse(np.array([c.x, c.y]), major, minor, start, start + sweep), c.z, c.z, full)
 
@@ -177,9 +186,17 @@ def _spline(e: Dxf) -> Shape | _Smooth | UnusableEntityError:
     control = np.asarray(e.control_points, dtype=np.float64)
     if len(control):
         return _of_spline(SplineData(control, e.knots, e.weights, e.dxf.degree))
-    tool = e.construction_tool()
+    tool = _through(e) if e.closed and len(e.fit_points) > 2 else e.construction_tool()
     control = np.array([(p.x, p.y, p.z) for p in tool.control_points])
     return _of_spline(SplineData(control, tool.knots(), tool.weights(), tool.degree))
+
+
+def _through(e: Dxf) -> BSpline:
+    """Lay a closed curve through the fit points of a spline; where it closes it runs along its neighbours' chord."""
+    points = [Vec3(p) for p in e.fit_points]
+    points = points if points[0].isclose(points[-1]) else [*points, points[0]]
+    along = points[1] - points[-2]
+    return fit_points_to_cad_cv(points, tangents=[along, along])
 
 
 def _of_spline(data: SplineData) -> Shape | _Smooth | UnusableEntityError:

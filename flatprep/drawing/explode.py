@@ -6,7 +6,7 @@ from operator import itemgetter
 from typing import Any, NamedTuple
 
 from ezdxf.document import Drawing as DxfDocument
-from ezdxf.entities import DXFTagStorage
+from ezdxf.entities.dxfentity import DXFTagStorage
 
 from flatprep.base.errors import DrawingError
 from flatprep.drawing.limits import ReadLimits

@@ -195,10 +195,8 @@ def _beside(text: str, encoding: str) -> _Opened:
 def _put_right(text: str, encoding: str) -> _Opened:
     """Read a file whose tags have to be put right first."""
     right = mended(text)
-    for read in (
-        lambda: _beside(right.tags.text, encoding),
-        lambda: _Opened(DxfDocument.load(right.tags.compiled), recovered=True),
-    ):
-        with suppress(Exception):
-            return read()._replace(recovered=True, cut_short=right.cut_short)
+    with suppress(Exception):
+        return _beside(right.tags.text, encoding)._replace(recovered=True, cut_short=right.cut_short)
+    with suppress(Exception):
+        return _Opened(DxfDocument.load(right.tags.compiled), recovered=True, cut_short=right.cut_short)
     return _Opened(_mended(right.tags.text.encode(encoding, _BYTES)), recovered=True, cut_short=right.cut_short)

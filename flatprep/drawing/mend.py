@@ -6,6 +6,7 @@ polyline, a section or the file. Others pad names with blanks, write a section t
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
+from math import pi
 
 from flatprep.drawing.columns import CLASS, GROUP
 from flatprep.drawing.plain import is_whole
@@ -50,7 +51,7 @@ def mended(text: str) -> Mended:
     for name, records in sections.items():
         _extend(out, Tags([0, _NAME], ["SECTION", name]))
         for record in _headed(records) if name == "HEADER" and newer else records:
-            _extend(out, _with_classes(_with_good_handle(record)))
+            _extend(out, _with_classes(_with_long_axis(_with_good_handle(record))))
         _extend(out, Tags([0], ["ENDSEC"]))
     if newer and "HEADER" not in sections:
         header = Tags([0, _NAME, 9, 1, 0], ["SECTION", "HEADER", "$ACADVER", _R2000, "ENDSEC"])
@@ -126,6 +127,27 @@ def _is_handle(value: str) -> bool:
         return int(value, 16) > 0
     except ValueError:
         return False
+
+
+def stands_on_edge(codes: Sequence[int], values: Sequence[str]) -> bool:
+    """Whether an ellipse names its shorter axis as the longer one: ezdxf would make a circle of it."""
+    return float(values[codes.index(40)]) > 1.0 if 40 in codes else False
+
+
+def _with_long_axis(record: Tags) -> Tags:
+    """Turn the axes of an ellipse that names the shorter one first: its parameters then count from the other one."""
+    if record.values[0] != "ELLIPSE" or not stands_on_edge(record.codes, record.values):
+        return record
+    values = {c: float(v) for c, v in zip(record.codes, record.values, strict=True) if c in (11, 21, 40, 41, 42, 230)}
+    ratio, up = values[40], -1.0 if values.get(230, 1.0) < 0 else 1.0
+    new = {
+        11: -up * ratio * values[21],
+        21: up * ratio * values[11],
+        40: 1.0 / ratio,
+        41: values.get(41, 0.0) - pi / 2,
+        42: values.get(42, 2 * pi) - pi / 2,
+    }
+    return Tags(record.codes, [str(new.get(c, v)) for c, v in zip(record.codes, record.values, strict=True)])
 
 
 def _with_classes(record: Tags) -> Tags:

@@ -7,7 +7,7 @@ from dataclasses import dataclass, field, replace
 from ezdxf.document import Drawing as DxfDocument
 
 from flatprep.drawing.columns import Codes, in_order
-from flatprep.drawing.mend import NEWER
+from flatprep.drawing.mend import NEWER, stands_on_edge
 from flatprep.drawing.plain import BY_CLASSES, KINDS, Plain, is_bare, plain_entities
 from flatprep.drawing.records import NotSiftedError, OddFileError, Records, Tags, records_of
 from flatprep.drawing.unread import unread
@@ -78,6 +78,8 @@ def sift(text: str, *, old: bool) -> Sifted:
     f = records_of(text)
     if old and not NEWER.isdisjoint(f.kinds):
         raise OddFileError  # ezdxf reads them as it reads what R12 knows, and misses their flags
+    if any(stands_on_edge(t.codes, t.values) for t in map(f.tags, _of_kind(f, "ELLIPSE"))):
+        raise OddFileError
     entities = f.section("ENTITIES")
     alike = _alike(f, entities, KINDS - BY_CLASSES if old else KINDS)
     plain = _plain(f, alike)
@@ -100,6 +102,10 @@ def sift(text: str, *, old: bool) -> Sifted:
     if numbered and plain:
         gone[plain[0].place] = _STAND_IN
     return Sifted(tuple(plain), f.replaced(gone), places, reordered)
+
+
+def _of_kind(f: Records, kind: str) -> list[int]:
+    return [k for k, own in enumerate(f.kinds) if own == kind] if kind in f.kinds else []
 
 
 def _unit(f: Records, k: int) -> range:

@@ -1,5 +1,7 @@
 """Files that are nearly DXF: nothing in them is lost or misread. Each holds a plate of 80 x 50 with a hole of 20."""
 
+from math import pi
+
 import pytest
 
 from flatprep.drawing.mend import mended
@@ -84,6 +86,18 @@ def test_nothing_is_lost(tmp_path, content):
     drawing = read(file(tmp_path, content))
     assert [p.area_mm2 for p in drawing.parts] == pytest.approx([PLATE])
     assert [f.kind for f in drawing.faults] == ["unknown-units"]
+
+
+@pytest.mark.parametrize("up", [1.0, -1.0])
+def test_an_ellipse_that_names_its_shorter_axis_first(tmp_path, up):
+    """Half of an ellipse of 20 x 40, from the end of one long axis to the other, and the chord between them."""
+    half = [(0, "ELLIPSE"), (5, "FF"), (100, "AcDbEntity"), (8, "0"), (100, "AcDbEllipse"), (10, 40.0), (20, 25.0)]
+    half += [(11, 10.0), (21, 0.0), (210, 0.0), (220, 0.0), (230, up), (40, 2.0), (41, pi / 2), (42, 3 * pi / 2)]
+    chord = [(0, "LINE"), (8, "0"), (10, 40.0), (20, 5.0), (11, 40.0), (21, 45.0)]
+    (part,) = read(file(tmp_path, text([*header("AC1015"), *OPEN, *EDGES, *half, *chord, *SHUT]))).parts
+    (hole,) = part.holes
+    assert hole.area_mm2 == pytest.approx(pi * 10 * 20 / 2, rel=1e-4)
+    assert hole.bounds == pytest.approx((30, 5, 40, 45), abs=0.002)
 
 
 def test_a_file_that_ends_early_is_read_and_told(tmp_path):

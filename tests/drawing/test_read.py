@@ -56,6 +56,16 @@ def full_turn_arc_in_four_decimals(msp):
     msp.add_arc((40, 25), 10, 0.0, 359.9999)
 
 
+def full_ellipse_a_hair_too_long(msp):
+    box(msp, 0, 0, 80, 50)
+    msp.add_ellipse((40, 25), (10, 0), 1.0, 0, 6.2832)
+
+
+def full_turn_arc_a_hair_too_long(msp):
+    box(msp, 0, 0, 80, 50)
+    msp.add_arc((40, 25), 10, 0, 360.001)
+
+
 def full_ellipse(msp):
     box(msp, 0, 0, 80, 50)
     msp.add_ellipse((40, 25), (0, 10), 1.0)
@@ -94,6 +104,8 @@ def mirrored_plane(msp):
         full_ellipse,
         full_ellipse_in_five_decimals,
         full_turn_arc_in_four_decimals,
+        full_ellipse_a_hair_too_long,
+        full_turn_arc_a_hair_too_long,
         half_ellipses,
         rational_spline,
         mirrored_plane,
@@ -133,6 +145,17 @@ def test_blocks_nested_turned_mirrored_scaled(tmp_path, flip, turn, scale):
     t = radians(turn)
     expected = (x * cos(t) - y * sin(t) + 300, x * sin(t) + y * cos(t) - 40, 10 * scale)
     assert part.holes[0].circle == pytest.approx(expected, abs=1e-6)
+
+
+def test_closed_spline_of_fit_points_alone(tmp_path):
+    """Twelve points of a circle, the first not said again: a smooth curve through them has its area to 0.5 %."""
+
+    def paint(msp):
+        at = [(10 * cos(k * pi / 6), 10 * sin(k * pi / 6), 0) for k in range(12)]
+        msp.add_spline(at).closed = True
+
+    (part,) = read(drawn(tmp_path, paint)).parts
+    assert part.area_mm2 == pytest.approx(CIRCLE_10, rel=5e-3)
 
 
 def test_array_of_blocks(tmp_path):
