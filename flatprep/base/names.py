@@ -46,11 +46,11 @@ def nearest(word: str, known: Iterable[str], count: int = 3) -> tuple[str, ...]:
     return tuple(by_plain[p] for p in [*close, *holding][:count])
 
 
-def did_you_mean(word: str, known: Iterable[str]) -> str:
-    """Return a remedy: the nearest known names, else the known ones (the first dozen)."""
+def did_you_mean(word: str, known: Iterable[str], most: int = 12) -> str:
+    """Return a remedy: the nearest known names, else the first known ones, `most` of them."""
     names = list(known)
     close = nearest(word, names)
     if close:
         return "did you mean " + " or ".join(f'"{name}"' for name in close) + "?"
-    shown = ", ".join(sorted(names)[:12]) + (", ..." if len(names) > 12 else "")
+    shown = ", ".join(sorted(names)[:most]) + (", ..." if len(names) > most else "")
     return f"known: {shown}" if names else "none is known"

@@ -10,6 +10,7 @@ from flatprep.api.pieces import ReadJob, read_job
 from flatprep.base.progress import Progress
 from flatprep.cli.talk import note, tell, warn
 from flatprep.job.values import Job
+from flatprep.report.figures import counted
 
 if TYPE_CHECKING:  # a checklist does not pay for the search
     from flatprep.api.nest import Nested
@@ -33,7 +34,7 @@ def read_drawings(job: Job, jobs: int, progress: Progress) -> ReadJob:
     for linted in read.report.linted:
         units = f"{linted.drawing.units} ({linted.drawing.units_from})"
         mended = ", recovered" if linted.drawing.recovered else ""
-        tell(f"{linted.file}: {len(linted.drawing.parts)} parts, {units}{mended}")
+        tell(f"{linted.file}: {counted(len(linted.drawing.parts), 'part')}, {units}{mended}")
     return read
 
 

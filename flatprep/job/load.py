@@ -59,6 +59,11 @@ def load_job(path: Path, options: JobOptions | None = None) -> Job:
         When a profile that the job names is missing or wrong.
     """
     options = options or JobOptions()
+    if path.is_dir():
+        raise JobError(
+            f"{path}: is a folder, not a job file",
+            f"flatprep draft {path} --out {path / 'job.toml'} writes one from its drawings",
+        )
     top = Table(read_toml(path, JobError), str(path), "", JobError).only(KEYS)
     unit = top.choice("units", tuple(MM_PER_UNIT), "mm")
     context = Context(unit, Reach(path.parent, options.anywhere), options, _overrides(top, options))

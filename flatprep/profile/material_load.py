@@ -36,8 +36,10 @@ def load_material(name: str, own: Sequence[Path] = ()) -> Material:
         if asked in {plain(word) for word in (material.id, material.name, *material.aliases)}:
             return material
     names = [word for material in known for word in (material.id, material.name, *material.aliases)]
-    shown = names if nearest(name, names) else [material.id for material in known]
-    raise ProfileError(f'unknown material "{name}"', did_you_mean(name, shown))
+    if nearest(name, names):
+        raise ProfileError(f'unknown material "{name}"', did_you_mean(name, names))
+    all_ids = did_you_mean(name, [material.id for material in known], most=len(known))
+    raise ProfileError(f'unknown material "{name}"', f"{all_ids}; one of your own is a file under --profiles DIR")
 
 
 def all_materials(own: Sequence[Path] = ()) -> tuple[Material, ...]:

@@ -35,7 +35,7 @@ def test_quiet_says_no_warning_and_verbose_says_what_is_read(job, tmp_path):
     )
     assert "less than the kerf" in usual.stderr
     assert quiet.stderr == ""
-    assert "leaf.dxf: 1 parts, mm (header)" in verbose.stderr
+    assert "leaf.dxf: 1 part, mm (header)" in verbose.stderr
     assert usual.stdout == quiet.stdout == verbose.stdout
 
 

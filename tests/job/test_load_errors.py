@@ -167,6 +167,12 @@ def test_mistake(tmp_path, good, bad, words):
     assert words in caught.value.message
 
 
+def test_a_folder_in_place_of_a_job_is_told_how_to_get_one(tmp_path):
+    with pytest.raises(JobError, match="is a folder") as caught:
+        load_job(tmp_path)
+    assert caught.value.remedy == f"flatprep draft {tmp_path} --out {tmp_path}/job.toml writes one from its drawings"
+
+
 def test_a_job_without_parts(tmp_path):
     with pytest.raises(JobError, match="has no part"):
         load_job(write_job(tmp_path, 'process = "router"\n'))

@@ -76,6 +76,13 @@ def test_a_bare_laser(material, level):
     assert load_material(material).verdict(bare).level == level
 
 
+def test_where_no_name_is_near_all_ids_are_told_and_how_to_add_one():
+    with pytest.raises(ProfileError) as caught:
+        load_material("qqqq")
+    assert "abs, acrylic" in caught.value.remedy
+    assert "wear-plate-500; one of your own is a file under --profiles DIR" in caught.value.remedy
+
+
 def test_a_material_that_says_nothing_is_unknown_to_every_process():
     mine = parse_material(GOOD, "m.toml", "m")
     bare = parse_process({"kind": "laser", "kerf": 0.2}, "p.toml", "p")
