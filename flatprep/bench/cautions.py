@@ -37,7 +37,7 @@ def _at_taps(bench: BenchPart) -> Iterable[str]:
 def _at_edges(bench: BenchPart) -> Iterable[str]:
     """Yield the hazards of dressing the edges of a part as it comes from the cutter."""
     if bench.process.kind in THERMAL:
-        yield "deburr"
+        yield "deburr" if bench.is_metal else "cut_edges"
     if tabs_of(bench):
         yield "tab_stubs"
 

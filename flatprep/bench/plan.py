@@ -13,6 +13,7 @@ from flatprep.bench.tabs import dressing
 from flatprep.job.values import Point, Work
 from flatprep.model.work import StepKind
 from flatprep.practice.targets import SAME_DIA_MM, Target
+from flatprep.practice.threads import THERMAL
 
 OPS: Mapping[str, Callable[[Ask], list[Op]]] = {
     "tap": threads.tap_ops,
@@ -127,7 +128,7 @@ def _merged(ops: list[Op]) -> list[Op]:
 
 def _frame(bench: BenchPart, ops: list[Op]) -> list[Op]:
     """Return what every part gets: edges first, flatness before work on it, burrs of holes, inspection last."""
-    off = dressing(bench) or "off with tabs and dross"
+    off = dressing(bench) or f"off with tabs and {_left_by_the_cut(bench)}"
     note = f"hold against the drawing: side, scale, holes; {off}; break edges 0.2 to 0.5 mm"
     out = [Op(StepKind.DEBURR, Rank.DEBURR, note=note, count=1)]
     if any(op.kind not in (StepKind.INSPECT, StepKind.PRESS) for op in ops):
@@ -141,6 +142,13 @@ def _frame(bench: BenchPart, ops: list[Op]) -> list[Op]:
         out.append(Op(StepKind.DEBURR, rank, drilled, note="both rims of every hole that was worked on"))
     out.append(Op(StepKind.INSPECT, Rank.INSPECT, note=_inspection(bench, ops), count=1))
     return out
+
+
+def _left_by_the_cut(bench: BenchPart) -> str:
+    """Name what a cut leaves on its edges."""
+    if bench.process.kind not in THERMAL:
+        return "burrs"
+    return "dross" if bench.is_metal else "soot"
 
 
 def _inspection(bench: BenchPart, ops: list[Op]) -> str:

@@ -11,9 +11,7 @@ from flatprep.geom.bulge import Floats
 from flatprep.job.terms import CostTerms, Discount
 from flatprep.job.values import Stock
 from flatprep.model.layout import SheetLayout
-
-METALS = ("low-carbon-steel", "stainless", "aluminium", "wear-plate", "titanium", "magnesium", "copper-brass")
-"""Families whose skeleton is worth something as scrap."""
+from flatprep.profile.material import METALS
 
 
 @dataclass(frozen=True, slots=True)

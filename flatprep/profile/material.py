@@ -12,6 +12,8 @@ FAMILIES = (
     "acrylic", "plastic", "laminate", "wood", "leather", "cardboard", "rubber",
 )  # fmt: skip
 """The keys that a process's limits may be given for."""
+METALS = FAMILIES[:7]
+"""The families that are metals."""
 
 TECHNOLOGIES = ("fibre-laser", "co2-laser", "router", "plasma", "waterjet")
 LEVELS = ("yes", "care", "unknown", "no", "never")

@@ -604,6 +604,23 @@ def test_cautions_defer_to_local_codes_and_stand_at_the_step():
     assert routed.parts[0].steps[0].caution == ""
 
 
+@pytest.mark.parametrize(
+    ("process", "material", "left", "caution"),
+    [
+        ("fibre-laser", "mild-steel", "dross", "spatter"),
+        ("co2-laser", "acrylic", "soot", "soot and fume"),
+        ("co2-laser", "birch-ply", "soot", "soot and fume"),
+        ("router", "hdpe", "burrs", ""),
+        ("waterjet", "mild-steel", "burrs", ""),
+    ],
+)
+def test_the_first_step_says_what_this_cut_leaves_on_its_edges(process, material, left, caution):
+    first = steps_of(PLATE, process=process, material=material)[0]
+    assert f"off with tabs and {left};" in first.note
+    assert caution in first.caution
+    assert bool(first.caution) is bool(caution)
+
+
 @pytest.mark.parametrize(("material", "told"), [("mild-steel", False), ("wear-plate-400", True)])
 def test_what_a_broken_tap_means_is_told_of_wear_plate_alone(material, told):
     steps = steps_of(plate(100, 50, (30, 25, 8.5)), work("tap", "M10", hole_mm=8.5), material=material, thickness=8.0)
