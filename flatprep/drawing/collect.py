@@ -42,6 +42,7 @@ NOT_CUT = {
     "DGNUNDERLAY": "an underlay: not opened",
 }
 """Kinds that draw no outline, and what they are."""
+_DASH = 49
 _AT_ONCE = 10_000
 """So many entities are taken apart before their curves are made, together."""
 _OTHERS = frozenset(_TEXTS | {"INSERT"} | set(NOT_CUT))
@@ -56,6 +57,9 @@ class Collected:
     skipped: list[Skipped] = field(default_factory=list)
     faults: list[Fault] = field(default_factory=list)
     roles: dict[str, Guess] = field(default_factory=dict)
+    """Of layers: what is cut of one goes before what is not."""
+    linetypes: dict[tuple[str, str], Guess] = field(default_factory=dict)
+    """Layer and linetype -> what its lines are for, where they are not cut."""
     heights: set[float] = field(default_factory=set)
     """In drawing units."""
     vertical: int = 0
@@ -104,12 +108,17 @@ class _Roles:
     def __init__(self, document: DxfDocument, options: CollectOptions) -> None:
         self._off = {layer.dxf.name.lower() for layer in document.layers if layer.is_off() or layer.is_frozen()}
         self._said = options.roles
+        self._patterns = {
+            one.dxf.name.upper(): [tag.value for tag in one.pattern_tags.tags if tag.code == _DASH]
+            for one in document.linetypes
+        }
         self._known: dict[tuple[str, str], Guess] = {}
 
     def __call__(self, layer: str, linetype: str) -> Guess:
         key = layer, linetype
         if key not in self._known:
-            self._known[key] = role_of(*key, self._said, off=layer.lower() in self._off)
+            off, pattern = layer.lower() in self._off, self._patterns.get(linetype, ())
+            self._known[key] = role_of(*key, self._said, off=off, pattern=pattern)
         return self._known[key]
 
 
@@ -135,7 +144,10 @@ def _add_curve(out: Collected, loose: Loose, shape: Shape | UnusableEntityError 
         out.skipped.append(_skip(loose, "no line, arc or curve" if shape is None else f"unusable: {shape}"))
         return 0
     xyb = shape.xyb if k == 1.0 else shape.xyb * np.array([k, k, 1.0])
-    out.roles.setdefault(loose.layer, guess)
+    if out.roles.setdefault(loose.layer, guess).role is not Role.CUT:
+        out.roles[loose.layer] = guess
+    if guess.role is not Role.CUT:
+        out.linetypes.setdefault((loose.layer, loose.linetype), guess)
     if _stands_up(shape):
         out.vertical += 1
         return len(xyb)

@@ -93,6 +93,7 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         skipped=tuple(found.skipped),
         texts=with_leaders(found.texts, loaded.document, MM_PER_UNIT[units]),
         roles=roles,
+        linetypes=_linetypes(found),
         recovered=loaded.recovered,
         loose=shapes.loose,
         crossing=tuple(c.contour for c in shapes.crossing),
@@ -117,7 +118,7 @@ def _units(loaded: Loaded, said: str | None) -> tuple[str, UnitsFrom, list[Fault
 def _cut_curves(found: Collected) -> tuple[list[Curve], tuple[tuple[str, Role, str], ...]]:
     """Curves to cut, and the role of every layer.
 
-    Where guesses leave nothing closed to cut, those guesses were wrong: everything on guessed layers is cut.
+    Where guesses leave nothing to cut, those guesses were wrong: everything on guessed layers is cut.
     """
     cut = [c for c, role in found.curves if role is Role.CUT]
     if not cut and found.curves:
@@ -126,6 +127,7 @@ def _cut_curves(found: Collected) -> tuple[list[Curve], tuple[tuple[str, Role, s
             n: g if g.why == "as said" else type(g)(Role.CUT, "no other layer is cut") for n, g in found.roles.items()
         }
         found.roles.update(roles)
+        found.linetypes.clear()
         found.curves[:] = [(c, found.roles[c.layer].role) for c, _ in found.curves]
     return cut, tuple((n, g.role, g.why) for n, g in sorted(found.roles.items()))
 
@@ -136,13 +138,26 @@ def _told_frame(frame: Contour) -> Fault:
     return Fault("layer-role", (x0, y0), None, frame.distinct_handles, detail)
 
 
+def _linetypes(found: Collected) -> tuple[tuple[str, str, Role, str], ...]:
+    """Linetypes whose lines are not cut on layers that are."""
+    return tuple(
+        (layer, kind, guess.role, guess.why)
+        for (layer, kind), guess in sorted(found.linetypes.items())
+        if found.roles[layer].role is Role.CUT
+    )
+
+
 def _guesses(found: Collected) -> list[Fault]:
-    """Every layer that is not cut because of a guess, said once with the way to overrule it."""
-    return [
-        Fault("layer-role", detail=f"layer “{name}” is taken as {guess.role}: {guess.why}")
+    """Every layer that is not cut because of a guess, and every linetype on others, said once each."""
+    told = [
+        f"layer “{name}” is taken as {guess.role}: {guess.why}"
         for name, guess in sorted(found.roles.items())
         if guess.role is not Role.CUT and guess.why != "as said"
     ]
+    told += [
+        f"{kind} lines on layer “{name}” are taken as {role}: {why}" for name, kind, role, why in _linetypes(found)
+    ]
+    return [Fault("layer-role", detail=words) for words in told]
 
 
 def _others(found: Collected, shapes: Outlines) -> list[tuple[Curve, Role]]:

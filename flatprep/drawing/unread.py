@@ -25,8 +25,8 @@ _LAYOUTS = ("*model_space", "*paper_space", "$model_space", "$paper_space")
 
 _VARIABLES = frozenset({"$ACADVER", "$DWGCODEPAGE", "$HANDSEED", "$INSUNITS"})
 """What ezdxf asks the header for when it reads."""
-_OF_LINETYPE = frozenset({0, 2, 5, 70, 100, 102, 330, 360})
-"""Codes of a linetype beside its pattern."""
+_OF_LINETYPE = frozenset({0, 2, 5, 49, 70, 100, 102, 330, 360})
+"""Codes of a linetype: its name and its dashes."""
 
 
 def unread(f: Records) -> dict[int, Tags]:
@@ -34,14 +34,14 @@ def unread(f: Records) -> dict[int, Tags]:
     objects = f.section("OBJECTS")
     out = {k: Tags() for k in (*f.section("CLASSES"), *objects) if f.kinds[k] in _LOOKS}
     out |= dict.fromkeys(_dictionaries(f, objects) | _blocks(f), Tags())
-    out |= {k: _name_only(f.tags(k)) for k in f.section("TABLES") if f.kinds[k] == "LTYPE"}
+    out |= {k: _name_and_dashes(f.tags(k)) for k in f.section("TABLES") if f.kinds[k] == "LTYPE"}
     if "HEADER" in f.sections:
         head = f.sections["HEADER"]
         out[head] = _short_header(f.tags(head))
     return out
 
 
-def _name_only(linetype: Tags) -> Tags:
+def _name_and_dashes(linetype: Tags) -> Tags:
     kept = [(c, v) for c, v in zip(linetype.codes, linetype.values, strict=True) if c in _OF_LINETYPE]
     return Tags([c for c, _ in kept], [v for _, v in kept])
 

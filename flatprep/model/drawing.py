@@ -255,6 +255,8 @@ class Drawing:
     texts: tuple[Text, ...] = ()
     roles: tuple[tuple[str, Role, str], ...] = ()
     """(layer, role, why) for every layer that holds geometry."""
+    linetypes: tuple[tuple[str, str, Role, str], ...] = ()
+    """(layer, linetype, role, why) for lines that are not cut though others of their layer are."""
     recovered: bool = False
     loose: tuple[Curve, ...] = field(default=())
     """Cut lines that close no contour."""

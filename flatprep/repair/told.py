@@ -41,6 +41,9 @@ def changes_of(drawing: Drawing, gap_mm: float) -> Iterator[Change]:
     for name, role, why in drawing.roles:
         if name not in OWN_LAYERS and role != "ignore":
             yield Change("layer", f"layer “{name}” written to {str(role).upper()}{_because(why)}")
+    for name, kind, role, why in drawing.linetypes:
+        if role != "ignore":
+            yield Change("layer", f"{kind} lines on layer “{name}” written to {str(role).upper()}: {why}")
     yield from _left_out(drawing)
 
 
@@ -79,6 +82,9 @@ def _left_out(drawing: Drawing) -> Iterator[Change]:
     for name, role, why in drawing.roles:
         if role == "ignore":
             yield Change("left-out", f"layer “{name}”: {why}")
+    for name, linetype, role, why in drawing.linetypes:
+        if role == "ignore":
+            yield Change("left-out", f"{linetype} lines on layer “{name}”: {why}")
     for kind, layer, reason, group in _alike(drawing):
         if kind in NOT_CUT or kind == "LAYOUT":
             handles = tuple(s.handle for s in group if s.handle)

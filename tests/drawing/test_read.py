@@ -473,6 +473,23 @@ def test_paper_around_one_part_is_not_cut(tmp_path, borders, layer, hole):
         ("0", Role.CUT),
         ("Cut", Role.CUT),
         ("Bracket", Role.CUT),  # no word within another
+        ("Kanten", Role.CUT),
+        ("X-Axis guide", Role.CUT),
+        ("GIĘCIE", Role.BEND),
+        ("Línea de doblez", Role.BEND),
+        ("Piegature", Role.BEND),
+        ("laserfold", Role.BEND),
+        ("折弯", Role.BEND),
+        ("Gravírování", Role.MARK),
+        ("GRAVAÇÃO", Role.MARK),
+        ("Гравировка", Role.MARK),
+        ("half-cut", Role.MARK),
+        ("2_RASTER", Role.MARK),
+        ("COUNTERBORE", Role.MARK),
+        ("Text", Role.MARK),
+        ("Bemaßung", Role.IGNORE),
+        ("COTES", Role.IGNORE),
+        ("Cięcie", Role.CUT),
     ],
 )
 def test_roles_by_layer_name(tmp_path, layer, role):
@@ -484,6 +501,33 @@ def test_roles_by_layer_name(tmp_path, layer, role):
     assert {n: r for n, r, _ in drawing.roles}[layer] is role
     told = [f.detail for f in drawing.faults if f.kind == "layer-role"]
     assert len(told) == (role is not Role.CUT)
+
+
+@pytest.mark.parametrize(
+    ("name", "dashes", "role"),
+    [
+        ("CENTER2", [1.0, 0.75, -0.125, 0.0, -0.125], Role.IGNORE),
+        ("Strich", [1.0, 0.5, -0.5], Role.MARK),  # dashed, ISO 128-2 line 02
+        ("Punkt", [0.2, 0.0, -0.2], Role.MARK),  # dotted, line 07
+        ("Strichpunkt", [2.0, 1.5, -0.2, 0.1, -0.2], Role.IGNORE),  # long-dashed short-dashed, line 08
+        ("Zweipunkt", [2.0, 1.2, -0.2, 0.0, -0.2, 0.0, -0.2], Role.BEND),  # long-dashed double-dotted, line 05
+        ("Voll", [0.0], Role.CUT),
+    ],
+)
+def test_linetypes_on_a_layer_that_is_cut(tmp_path, name, dashes, role):
+    """Named or not: what is not cut is told, and stays with the part."""
+    doc = new()
+    doc.linetypes.add(name, dashes)
+    plate(doc.modelspace())
+    box(doc.modelspace(), 5, 5, 10, 10, linetype=name)
+    drawing = read(save(doc, tmp_path))
+    assert [p.area_mm2 for p in drawing.parts] == pytest.approx([PLATE - (100 if role is Role.CUT else 0)])
+    assert len(drawing.parts[0].marks) == 4 * (role is Role.MARK)
+    assert len(drawing.parts[0].bends) == 4 * (role is Role.BEND)
+    told = [f.detail for f in drawing.faults if f.kind == "layer-role"]
+    assert len(told) == (role is not Role.CUT)
+    assert all(f"{name.upper()} lines on layer “0” are taken as {role}" in words for words in told)
+    assert {n: r for n, r, _ in drawing.roles} == {"0": Role.CUT}
 
 
 def test_said_roles_go_before_guesses(tmp_path):

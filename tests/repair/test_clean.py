@@ -277,3 +277,16 @@ def test_coordinates_are_written_to_a_nanometre(tmp_path):
     (line,) = ezdxf.readfile(out).modelspace()
     values = [v for point in line.get_points("xy") for v in point]
     assert values == [round(v, 6) for v in values]
+
+
+@pytest.mark.parametrize(("linetype", "kind", "layer"), [("CENTER", "left-out", None), ("PHANTOM", "layer", "BEND")])
+def test_lines_that_are_not_cut_for_their_linetype_are_told(tmp_path, linetype, kind, layer):
+    def paint(msp):
+        msp.doc.linetypes.add(linetype, [1.0, 0.75, -0.25])
+        plate(msp)
+        msp.add_line((10, 5), (70, 5), dxfattribs={"linetype": linetype})
+
+    done, out = clean(tmp_path, paint)
+    assert [c.kind for c in done.changes if linetype in c.message] == [kind]
+    lines = ezdxf.readfile(out).modelspace().query("LINE LWPOLYLINE")
+    assert sorted({e.dxf.layer for e in lines} - {"CUT"}) == ([layer] if layer else [])
