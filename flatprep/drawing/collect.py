@@ -12,7 +12,7 @@ from ezdxf.document import Drawing as DxfDocument
 from flatprep.base.errors import DrawingError
 from flatprep.base.names import printable
 from flatprep.drawing.entities import Shape, UnusableEntityError, shapes_of
-from flatprep.drawing.explode import Loose, block_fault, explode
+from flatprep.drawing.explode import INVISIBLE, Loose, block_fault, explode
 from flatprep.drawing.limits import ReadLimits
 from flatprep.drawing.load import Loaded
 from flatprep.drawing.roles import Guess, role_of
@@ -40,6 +40,7 @@ NOT_CUT = {
     "PDFUNDERLAY": "an underlay: not opened",
     "DWFUNDERLAY": "an underlay: not opened",
     "DGNUNDERLAY": "an underlay: not opened",
+    INVISIBLE: "in the drawing, but not shown",
 }
 """Kinds that draw no outline, and what they are."""
 _DASH = 49

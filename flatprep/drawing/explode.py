@@ -14,6 +14,8 @@ from flatprep.drawing.load import Loaded
 from flatprep.drawing.plain import Plain
 
 Dxf = Any
+INVISIBLE = "INVISIBLE"
+"""Kind of what is in the drawing and is not shown, such as the other states of a block that has several."""
 
 
 class Loose(NamedTuple):
@@ -85,11 +87,16 @@ class _Layers:
         self._of = {
             layer.dxf.name.lower(): (abs(int(layer.dxf.color)), str(layer.dxf.linetype)) for layer in document.layers
         }
+        self._frozen = {layer.dxf.name.lower() for layer in document.layers if layer.is_frozen()}
 
     def looks(self, own: tuple[str, int, str], above: _Above) -> tuple[str, int, str]:
-        """Layer, colour and linetype of an entity after BYLAYER and BYBLOCK, and layer 0 of a block, are resolved."""
+        """Layer, colour and linetype of an entity after BYLAYER and BYBLOCK, and layer 0 of a block, are resolved.
+
+        What stands in an insertion on a frozen layer is frozen with it, whatever layer it is drawn on.
+        """
         layer, color, linetype = own
-        layer = above.layer if above.depth and layer == "0" else layer
+        if above.depth and (layer == "0" or above.layer.lower() in self._frozen):
+            layer = above.layer
         own_color, own_linetype = self._of.get(layer.lower(), (7, "CONTINUOUS"))
         color = own_color if color == 256 else above.color if color == 0 else color
         linetype = linetype.upper()
@@ -103,7 +110,8 @@ class _Layers:
 def _loose(entity: Dxf, layers: _Layers, above: _Above) -> Loose:
     """Return an entity with what it takes from its layer and from the insertion it stands in."""
     layer, color, linetype = layers.looks(_own_looks(entity), above)
-    return Loose(entity, entity.dxftype(), layer, above.handle, color, linetype)
+    hidden = not isinstance(entity, DXFTagStorage) and entity.dxf.get("invisible", 0)
+    return Loose(entity, INVISIBLE if hidden else entity.dxftype(), layer, above.handle, color, linetype)
 
 
 def _own_looks(entity: Dxf) -> tuple[str, int, str]:
@@ -116,7 +124,7 @@ def _own_looks(entity: Dxf) -> tuple[str, int, str]:
 
 def _open(entity: Dxf, layers: _Layers, above: _Above, limits: ReadLimits) -> Iterator[Loose]:
     whole = _loose(entity, layers, above)
-    if entity.dxftype() != "INSERT" or block_fault(entity):
+    if whole.kind != "INSERT" or block_fault(entity):
         yield whole
         return
     below = _Above(whole.layer, above.handle, whole.color, whole.linetype, above.depth + 1)

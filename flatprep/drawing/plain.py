@@ -98,8 +98,8 @@ def plain_entities(
         columns = Columns(codes, starts, values)
         drawn = _old_polylines(columns) if kind == "POLYLINE" else _DRAWN[kind](_checked(kind, columns))
         own = columns.part(0, (*codes[1:], 0).index(0) + 1)
-        if any(own.numbers(67)):
-            return []  # it lies in paper space
+        if any(own.numbers(67)) or any(own.numbers(60)):
+            return []  # it lies in paper space, or is not shown
         looks = own.texts(8, "0"), map(int, own.numbers(62, 256.0)), own.texts(6, "BYLAYER")
         return list(map(Plain, places, repeat(kind), drawn, own.texts(5, ""), *looks, own.texts(330, "")))
     except (NotPlainError, UnusableEntityError, ValueError, OverflowError):

@@ -10,7 +10,7 @@ from flatprep.rules.base import Context, Rule, told
 NEVER_CUT = frozenset((
     "DIMENSION", "LEADER", "MULTILEADER", "MLEADER", "HATCH", "POINT", "VIEWPORT", "IMAGE", "XLINE", "RAY", "ATTDEF",
     "TOLERANCE", "ACAD_TABLE", "WIPEOUT", "OLE2FRAME", "OLEFRAME", "PDFUNDERLAY", "DWFUNDERLAY", "DGNUNDERLAY",
-    "LAYOUT",
+    "LAYOUT", "INVISIBLE",
 ))
 # fmt: on
 """Kinds that draw no outline: leaving them out is noted, not warned of."""

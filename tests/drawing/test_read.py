@@ -554,6 +554,27 @@ def test_layer_switched_off_is_not_cut(tmp_path):
     assert len(read(save(doc, tmp_path)).parts[0].holes) == 1
 
 
+def test_what_is_not_shown_is_not_cut(tmp_path):
+    """An invisible entity, in model space and in a block, and a block inserted on a frozen layer."""
+    doc = new()
+    doc.layers.add("old").freeze()
+    block = doc.blocks.new("ALL")
+    plate(block)
+    block.add_circle((10, 10), 3, dxfattribs={"invisible": 1, "layer": "A"})
+    msp = doc.modelspace()
+    msp.add_blockref("ALL", (0, 0))
+    msp.add_blockref("ALL", (200, 0), dxfattribs={"layer": "old"})
+    msp.add_line((5, 40), (9, 40), dxfattribs={"invisible": 1})
+    drawing = read(save(doc, tmp_path))
+    assert [p.area_mm2 for p in drawing.parts] == pytest.approx([PLATE])
+    assert sorted((s.kind, s.layer) for s in drawing.skipped) == [
+        ("INVISIBLE", "0"),
+        ("INVISIBLE", "A"),
+        ("INVISIBLE", "old"),
+    ]
+    assert [f.kind for f in drawing.faults] == ["layer-role"]
+
+
 def test_texts_and_annotation_are_listed(tmp_path):
     def paint(msp):
         plate(msp)
