@@ -115,8 +115,10 @@ def test_search_finds_a_part_by_name_and_by_material(opened, bundle):
     page.fill("#search", "TRAY")
     assert [page.is_visible(f"#part-{i}") for i in (1, 2)] == [False, True]
     assert [page.is_visible(f"#row-part-{i}") for i in (1, 2)] == [False, True]
-    assert page.inner_text("#say") == "1 of 2 parts"
+    assert page.inner_text("#say") == page.inner_text("#found") == "1 of 2 parts"
     assert page.locator(".placed.lit").count() == 1
+    page.fill("#search", "no such part")
+    assert page.inner_text("#found") == "0 of 2 parts"
     page.fill("#search", "steel 4")
     assert [page.is_visible(f"#part-{i}") for i in (1, 2)] == [True, False]
     page.keyboard.press("Escape")
@@ -149,6 +151,8 @@ def test_the_page_is_never_wider_than_the_screen(opened, bundle, width, scheme):
     full = replace(bundle, estimate=replace(bundle.estimate, stock=many_columns))
     page = opened(report_html(full), width=width)
     page.emulate_media(color_scheme=scheme)
+    assert page.evaluate("document.documentElement.scrollWidth") <= width
+    page.fill("#search", "leaf")
     assert page.evaluate("document.documentElement.scrollWidth") <= width
 
 

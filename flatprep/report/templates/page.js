@@ -79,6 +79,7 @@
   const search = document.getElementById("search");
   if (search) {
     const cards = all(".part");
+    const found = document.getElementById("found");
     const find = () => {
       const words = search.value.toLowerCase().split(/\s+/).filter(Boolean);
       let shown = 0;
@@ -92,7 +93,7 @@
       for (const placed of all(".placed")) {
         placed.classList.toggle("lit", words.length > 0 && words.every((word) => placed.dataset.part.toLowerCase().includes(word)));
       }
-      say.textContent = words.length ? shown + " of " + cards.length + " parts" : "";
+      found.textContent = say.textContent = words.length ? shown + " of " + cards.length + " parts" : "";
     };
     search.addEventListener("input", find);
     search.addEventListener("keydown", (event) => {
