@@ -20,6 +20,8 @@ from flatprep.nest.slide import Bed, best_row, rows_for, settle
 from flatprep.nest.trapezoids import Cuts, cut_up
 
 NO_ROWS = np.zeros(0)
+Variants = tuple[int, ...]
+"""Numbers of variants of one shape."""
 SAME_SHARE = 1e-6
 MOST_TURNS = 8
 """Turns tried for one piece."""
@@ -65,7 +67,7 @@ class _Sheet:
     """A container being filled."""
 
     bed: Bed
-    variants: dict[int, tuple[int, ...]]
+    variants: dict[int, Variants]
     free_mm2: float
     rows: dict[int, Floats] = field(default_factory=dict)
     since: dict[int, Floats] = field(default_factory=dict)
@@ -105,7 +107,13 @@ class Layer:
                 rings.append(wall)
         self._cuts: Cuts = cut_up(rings)
 
-    def lay(self, order: Iterable[int], supply: Sequence[int], stop: Callable[[], bool] = lambda: False) -> Laid:
+    def lay(
+        self,
+        order: Iterable[int],
+        supply: Sequence[int],
+        stop: Callable[[], bool] = lambda: False,
+        first: Callable[[Variants], Variants] | None = None,
+    ) -> Laid:
         """Lay pieces in turn, each on the first sheet that has room.
 
         Parameters
@@ -116,6 +124,8 @@ class Layer:
             Kind of each sheet at hand, preferred ones first.
         stop
             Asked after each piece; pieces not yet laid are then left out.
+        first
+            Of the numbers of a piece's variants, those to be tried before the others; all are equal by default.
 
         Returns
         -------
@@ -128,7 +138,7 @@ class Layer:
         stopped = False
         for shape in order:
             stopped = stopped or stop()
-            place = None if stopped else self._on_some_sheet(shape, supply, sheets)
+            place = None if stopped else self._on_some_sheet(shape, supply, sheets, first)
             if place is None:
                 left_out[shape] += 1
             else:
@@ -137,16 +147,21 @@ class Layer:
 
     def fits_alone(self, shape: int, kind: int) -> bool:
         """Tell whether a piece goes on an empty sheet of that kind."""
-        return self._lay_one(shape, self._empty(kind, 1)) is not None
+        sheet = self._empty(kind, 1)
+        return self._lay_one(sheet.variants.get(shape, ()), sheet) is not None
 
-    def _on_some_sheet(self, shape: int, supply: Sequence[int], sheets: list[_Sheet]) -> Place | None:
+    def _on_some_sheet(
+        self, shape: int, supply: Sequence[int], sheets: list[_Sheet], first: Callable[[Variants], Variants] | None
+    ) -> Place | None:
         for number, kind in enumerate(supply):
             if number == len(sheets):
                 sheets.append(self._empty(kind, sum(s.count for s in self.shapes)))
             sheet = sheets[number]
             if shape in sheet.full_for or self._area[shape] > sheet.free_mm2 * (1.0 + SAME_SHARE):
                 continue
-            found = self._lay_one(shape, sheet)
+            variants = sheet.variants.get(shape, ())
+            found = self._lay_one(first(variants), sheet) if first else None
+            found = found or self._lay_one(variants, sheet)
             if found is not None:
                 variant, x, y = found
                 sheet.free_mm2 -= self._area[shape]
@@ -165,10 +180,10 @@ class Layer:
             who[0], bed.laid[0] = wall, 1
         return _Sheet(bed, self._of_bin[kind], self._room[kind])
 
-    def _lay_one(self, shape: int, sheet: _Sheet) -> tuple[int, float, float] | None:
+    def _lay_one(self, variants: Variants, sheet: _Sheet) -> tuple[int, float, float] | None:
         best: tuple[int, float, float] | None = None
         bed, reach = sheet.bed, inf
-        for v in sheet.variants.get(shape, ()):
+        for v in variants:
             rows, since = self._rows(v, sheet)
             x, row = best_row(self._cuts, bed, v, rows, since, reach)
             if row >= 0:
@@ -191,12 +206,12 @@ class Layer:
         return rows, since
 
 
-def _variants(shapes: Sequence[Shape], bins: Sequence[Bin]) -> tuple[list[Variant], list[dict[int, tuple[int, ...]]]]:
+def _variants(shapes: Sequence[Shape], bins: Sequence[Bin]) -> tuple[list[Variant], list[dict[int, Variants]]]:
     """Every variant that some bin allows, and for each bin those of each shape."""
     index: dict[Variant, int] = {}
-    of_bin: list[dict[int, tuple[int, ...]]] = []
+    of_bin: list[dict[int, Variants]] = []
     for kind in bins:
-        mine: dict[int, tuple[int, ...]] = {}
+        mine: dict[int, Variants] = {}
         for s, shape in enumerate(shapes):
             turns = few_turns(shape, kind.turns[s])
             wanted = [Variant(s, turn, flip) for flip in shape.mirror for turn in turns]

@@ -1,8 +1,9 @@
 """Fewer sheets: empty a few, and fill them anew one by one, each as full as chance allows.
 
 Large neighbourhood search (Shaw 1998) on whole sheets: the pieces of two to four sheets, poorly filled ones first,
-are laid again by the constructive rule in many random orders; of each sheet the fullest try is kept. What costs less,
-or fills its sheets more unevenly (the sum of squared fills), is taken: a sheet that runs empty is saved.
+are laid again by the constructive rule in many random orders, some pieces at a turn of chance; of each sheet the
+fullest try is kept. What costs less, or fills its sheets more unevenly (the sum of squared fills), is taken: a sheet
+that runs empty is saved.
 """
 
 from collections.abc import Callable, Sequence
@@ -14,7 +15,7 @@ import numpy.typing as npt
 from shapely.geometry import Polygon
 
 from flatprep.nest.clock import EVALUATIONS_A_STEP, Clock
-from flatprep.nest.construct import Layer
+from flatprep.nest.construct import Layer, Variants
 from flatprep.nest.firstfit import Answer, answer_of
 from flatprep.nest.group import Group
 from flatprep.nest.objective import SheetUse, cost_of, is_open, price_per_area
@@ -27,6 +28,9 @@ FEWEST_SHEETS, MOST_SHEETS = 2, 4
 FEWEST_TRIES, MOST_TRIES = 4, 25
 LEAST_NOISE = 0.2
 """Sizes are multiplied by chance between this and 1 before they are ranked."""
+HELD_SHARE = 0.6
+"""Of the pieces in a try, laid at a turn of chance where it goes in so: the turn that reaches least far is often not
+the one that lets the others in."""
 FULL = 0.9999
 
 
@@ -147,7 +151,8 @@ class _Refill:
         size = self._area[np.array(rest)]
         for n in range(tries):
             noise = self._rng.uniform(LEAST_NOISE, 1.0, len(rest)) if n else np.ones(len(rest))
-            load = self._load(kind, self._layer.lay(_ranked(rest, size * noise), [kind]).places)
+            laid = self._layer.lay(_ranked(rest, size * noise), [kind], first=self._held if n else None)
+            load = self._load(kind, laid.places)
             self._clock.spend(EVALUATIONS_A_STEP)
             if best is None or load.fill > best.fill + 1e-9:
                 best = load
@@ -155,6 +160,12 @@ class _Refill:
                 break
         assert best is not None  # tries is at least one
         return best
+
+    def _held(self, variants: Variants) -> Variants:
+        """Name one turn of a piece now and then, to be tried before it is laid as it reaches least far."""
+        if len(variants) < 2 or self._rng.random() >= HELD_SHARE:
+            return ()
+        return (variants[int(self._rng.integers(len(variants)))],)
 
     def _load(self, kind: int, places: tuple[Place, ...]) -> Load:
         return Load(kind, places, float(sum(self._area[p.shape] for p in places)) / self._room[kind])

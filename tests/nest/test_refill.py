@@ -5,6 +5,7 @@ from dataclasses import replace
 import pytest
 
 from flatprep.nest.clock import Clock
+from flatprep.nest.construct import Layer
 from flatprep.nest.firstfit import first_answers
 from flatprep.nest.group import prepare_group
 from flatprep.nest.keep import left_to_lay
@@ -69,6 +70,27 @@ def test_dearer_sheets_are_not_taken():
     costs = [start.value.cost, *(a.value.cost for a in found)]
     assert costs == sorted(costs, reverse=True)
     assert costs[-1] == pytest.approx(20.0)
+
+
+def test_a_pinwheel_closes_only_at_turns_that_reach_further():
+    """Four of 30 x 20 round one of 10 x 10 fill 50 x 50: whichever comes first, least reach lays the third upright."""
+    question = ask(
+        [
+            item(rectangle("blade", 30.0, 20.0), quantity=4, turns_deg=(0.0, 90.0)),
+            item(rectangle("hub", 10.0, 10.0), turns_deg=(0.0,)),
+        ],
+        [sheet(50.0, 50.0, count=None)],
+    )
+    group = prepare_group(*left_to_lay(question), question)
+    layer = Layer(group.shapes, group.bins)
+    blade, hub = sorted(range(2), key=lambda s: -group.shapes[s].count)
+    for before in range(5):
+        order = [blade] * before + [hub] + [blade] * (4 - before)
+        assert sum(layer.lay(order, [0]).left_out) > 0
+    for seed in (1, 2, 3):
+        found = []
+        refill(first(question), 0.0, Clock(steps=400), seed, found.append)
+        assert len(found[-1].supply) == 1
 
 
 def test_the_same_steps_give_the_same_answer():
