@@ -84,6 +84,22 @@ def load(path: Path, limits: ReadLimits) -> Loaded:
     return Loaded(document, unit_code(data), *flags, digest, sifted.plain, sifted.places)
 
 
+def load_whole(path: Path, limits: ReadLimits) -> Loaded | None:
+    """Open a drawing so that all its entities are in the document; None where ezdxf does not take it as it is."""
+    data = _bytes_of(path, limits)
+    digest = hashlib.sha256(data).hexdigest()
+    with suppress(Exception):
+        whole = _whole(path, data)
+        return Loaded(whole, unit_code(data), recovered=False, conflicts=False, cut_short=False, digest=digest)
+    return None
+
+
+def _whole(path: Path, data: bytes) -> DxfDocument:
+    with suppress(Exception):
+        return readfile(path)
+    return _mended(data)
+
+
 def unit_code(data: bytes) -> int | None:
     """$INSUNITS of a raw file, ASCII or binary, or None where the header does not say."""
     if data.startswith(_BINARY_HEAD):

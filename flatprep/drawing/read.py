@@ -1,7 +1,7 @@
 """A drawing read: from a file to parts, with everything that was noticed on the way."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 
 from flatprep.base.errors import DrawingError
@@ -13,10 +13,11 @@ from flatprep.drawing.collect import Collected, CollectOptions, collect
 from flatprep.drawing.frame import without_frames
 from flatprep.drawing.leaders import with_leaders
 from flatprep.drawing.limits import LIMITS, ReadLimits
-from flatprep.drawing.load import UNIT_OF_CODE, Loaded, load
+from flatprep.drawing.load import UNIT_OF_CODE, Loaded, load, load_whole
 from flatprep.drawing.outline import Outlines, outlines
 from flatprep.drawing.plausible import doubtful_units
 from flatprep.drawing.tree import parts_of
+from flatprep.drawing.upright import laid_flat
 from flatprep.model.drawing import Contour, Curve, Drawing, Fault, Role, UnitsFrom
 
 
@@ -61,7 +62,16 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
         When the file cannot be read at all or passes a cap; the message begins with the path.
     """
     options = options or ReadOptions()
-    loaded = load(path, options.limits)
+    drawing = _read(path, load(path, options.limits), options, name)
+    whole = None if drawing.parts else load_whole(path, options.limits)
+    flat = laid_flat(whole) if whole else None
+    if flat is None:
+        return drawing
+    turned = _read(path, flat.loaded, options, name)
+    return replace(turned, faults=(*turned.faults, Fault("off-plane", detail=flat.told))) if turned.parts else drawing
+
+
+def _read(path: Path, loaded: Loaded, options: ReadOptions, name: str | None) -> Drawing:
     units, origin, faults = _units(loaded, options.units)
     ask = CollectOptions(MM_PER_UNIT[units], options.roles, options.tol.curve_mm, options.limits)
     try:

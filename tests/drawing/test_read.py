@@ -4,7 +4,7 @@ from math import cos, pi, radians, sin
 
 import ezdxf
 import pytest
-from ezdxf.math import Matrix44
+from ezdxf.math import OCS, Matrix44, Vec3
 
 from flatprep.base.errors import DrawingError
 from flatprep.drawing.limits import ReadLimits
@@ -606,6 +606,28 @@ def test_body_drawn_as_wires_gives_its_outline_once(tmp_path):
     drawing = read(drawn(tmp_path, paint))
     assert drawing.parts[0].area_mm2 == pytest.approx(4000)
     assert kinds(drawing)[0] == "off-plane"
+
+
+@pytest.mark.parametrize("right", [False, True])
+def test_a_part_that_stands_upright_is_laid_flat(tmp_path, right):
+    """Seen from the front x runs to the right, seen from the right y does; z goes up."""
+
+    def at(u, v):
+        return (3, u, v) if right else (u, 3, v)
+
+    def paint(msp):
+        for a, b in (((0, 0), (80, 0)), ((80, 0), (80, 50)), ((80, 50), (0, 50)), ((0, 50), (0, 0))):
+            msp.add_line(at(*a), at(*b))
+        # a hole at (20, 25): the plane of a circle has its own axes (arbitrary axis algorithm)
+        look = (1, 0, 0) if right else (0, -1, 0)
+        msp.add_circle(OCS(look).from_wcs(Vec3(at(20, 25))), 10, dxfattribs={"extrusion": look})
+
+    drawing = read(drawn(tmp_path, paint))
+    (part,) = drawing.parts
+    assert part.area_mm2 == pytest.approx(PLATE)
+    assert part.outer.bounds == pytest.approx((0, 0, 80, 50))
+    assert part.holes[0].circle == pytest.approx((20, 25, 10))
+    assert [f.kind for f in drawing.faults] == ["off-plane", "off-plane"]
 
 
 def test_tilted_circle_is_told(tmp_path):
