@@ -192,11 +192,28 @@ def _bundle(
         estimate=money,
         checklist=steps,
         unreadable=tuple((u.file, u.message) for u in read.report.unreadable),
-        assumed=(*read.report.notes, *((*nested.warnings, *nested.notes) if nested else ())),
+        assumed=(*read.report.notes, *((*nested.warnings, *nested.notes) if nested else ()), *drawn_twice(read.pieces)),
         cautions=steps.cautions,
         search=tuple(points),
         version=__version__,
     )
+
+
+def drawn_twice(pieces: Sequence[Piece]) -> Iterator[str]:
+    """Say which parts of different drawings are alike: a folder may hold each part alone and all of them together.
+
+    Alike, or mirrored, seem parts of one material and thickness whose area, length of cut and number of holes agree.
+    """
+    kinds: dict[tuple[object, ...], list[Piece]] = {}
+    for piece in pieces:
+        part, ask = piece.drawn, piece.ask
+        shape = (round(part.area_mm2, 1), round(part.cut_length_mm, 1), len(part.holes))
+        kinds.setdefault((*shape, ask.material and ask.material.id, ask.thickness_mm), []).append(piece)
+    for alike in kinds.values():
+        first = {str(piece.ask.drawing): piece.name for piece in reversed(alike)}
+        if len(first) > 1:
+            names = " and ".join(reversed(first.values()))
+            yield f"{names} seem alike or mirrored, from different drawings: all of them are cut"
 
 
 def _offcuts(rests: Sequence[Rest | None]) -> tuple[Offcut, ...]:
