@@ -15,6 +15,10 @@ from flatprep.model.drawing import Curve, Fault
 
 OUTLINE_SHARE = 0.9
 """Lines are an outline where so much of their length bounds what they enclose; less of it are hatches and leaders."""
+MOST_TOUCHES = 4
+"""Lines of an outline touch two others, and a few more where they run past; those of a net touch many."""
+MOST_BOXES = 64
+"""Where each line's box meets so many others, it is not asked which lines touch: that takes long, and it is a net."""
 SAME_MM = 0.01
 """Ends that miss each other by so little miss nothing."""
 
@@ -30,8 +34,9 @@ def without_overruns(loose: Sequence[Chain], join_mm: float) -> tuple[list[Chain
     rings: list[Chain] = []
     rest: list[Chain] = []
     faults: list[Fault] = []
-    for group in _touching(loose, join_mm):
-        if len(group) == 1 and is_simple(lines_of([group[0].xyb])[0]):
+    for group, touches in _touching(loose, join_mm):
+        alone = len(group) == 1 and is_simple(lines_of([group[0].xyb])[0])
+        if alone or touches > MOST_TOUCHES * len(group):
             rest += group
             continue
         curves = [piece for chain in group for piece in _curves(chain)]
@@ -46,14 +51,20 @@ def without_overruns(loose: Sequence[Chain], join_mm: float) -> tuple[list[Chain
     return rings, rest, faults
 
 
-def _touching(chains: Sequence[Chain], reach_mm: float) -> list[list[Chain]]:
-    """Chains that hang together by points where they come within `reach_mm` of each other."""
+def _touching(chains: Sequence[Chain], reach_mm: float) -> list[tuple[list[Chain], int]]:
+    """Chains that hang together by points where they come within `reach_mm`, and at how many pairs they do."""
     if len(chains) < 2:
-        return [[c] for c in chains]
+        return [([c], 0) for c in chains]
     lines = lines_of([c.xyb for c in chains])
-    a, b = STRtree(lines).query(lines, predicate="dwithin", distance=reach_mm)
+    tree = STRtree(lines)
+    if tree.query(lines).shape[1] > MOST_BOXES * len(chains):
+        return [([c], 0) for c in chains]
+    a, b = tree.query(lines, predicate="dwithin", distance=reach_mm)
     own = groups(len(chains), a, b)
-    return [[chains[k] for k in np.flatnonzero(own == g).tolist()] for g in range(int(own.max()) + 1)]
+    order = np.argsort(own, kind="stable")
+    members = np.split(order, np.flatnonzero(np.diff(own[order])) + 1)
+    pairs = np.bincount(own[a[a < b]], minlength=len(members))
+    return [([chains[k] for k in m.tolist()], int(n)) for m, n in zip(members, pairs, strict=True)]
 
 
 def _curves(chain: Chain) -> list[Curve]:

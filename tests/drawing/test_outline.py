@@ -110,6 +110,20 @@ def test_lines_that_cross_are_no_outline(tmp_path):
     assert part.holes == ()
 
 
+def test_a_net_of_lines_is_no_outline_and_costs_little(tmp_path):
+    """150 lines across 300: 45 000 crossings, and an outer border that they would give by chance."""
+
+    def paint(msp):
+        for k in range(150):
+            msp.add_line((k, -1), (k, 300))
+        for k in range(300):
+            msp.add_line((-1, k), (150, k))
+
+    drawing = read(drawn(tmp_path, paint))
+    assert drawing.parts == ()
+    assert len(drawing.loose) == 450
+
+
 @pytest.mark.parametrize(("before", "after"), [(-0.1, 0.0), (1.0, 1.0)])
 def test_repaired_twice_is_repaired_once(tmp_path, before, after):
     first = repair(drawn(tmp_path, lambda msp: edges(msp, before, after)), RepairOptions())
