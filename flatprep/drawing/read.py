@@ -1,6 +1,7 @@
 """A drawing read: from a file to parts, with everything that was noticed on the way."""
 
 from collections.abc import Mapping
+from contextlib import suppress
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 
@@ -67,8 +68,11 @@ def read(path: Path, options: ReadOptions | None = None, *, name: str | None = N
     flat = laid_flat(whole) if whole else None
     if flat is None:
         return drawing
-    turned = _read(path, flat.loaded, options, name)
-    return replace(turned, faults=(*turned.faults, Fault("off-plane", detail=flat.told))) if turned.parts else drawing
+    with suppress(DrawingError):
+        turned = _read(path, flat.loaded, options, name)
+        if turned.parts:
+            return replace(turned, faults=(*turned.faults, Fault("off-plane", detail=flat.told)))
+    return drawing
 
 
 def _read(path: Path, loaded: Loaded, options: ReadOptions, name: str | None) -> Drawing:

@@ -1,14 +1,17 @@
 """A part that stands upright in space, as programs for solids export one of its faces: laid flat."""
 
 from contextlib import suppress
+from math import inf
 from typing import NamedTuple
 
 from ezdxf import bbox
 from ezdxf.lldxf.const import DXFError
-from ezdxf.math import Matrix44, Vec3
+from ezdxf.math import BoundingBox, Matrix44, Vec3
 
 from flatprep.drawing.load import Loaded
 
+_DAMAGED = (ArithmeticError, AttributeError, DXFError, LookupError, RecursionError, TypeError, ValueError)
+"""What ezdxf raises when it meets damaged entities, which it does only when they are touched."""
 _THIN = 1e-6
 """A drawing that is thinner than this over its larger side lies in a plane."""
 
@@ -34,8 +37,10 @@ def laid_flat(whole: Loaded) -> LaidFlat | None:
         None where it does not stand in one of these planes.
     """
     space = whole.document.modelspace()
-    box = bbox.extents(space, fast=True)
-    if not box.has_data or max(box.size) == 0.0:
+    box = BoundingBox()
+    with suppress(*_DAMAGED):
+        box = bbox.extents(space, fast=True)
+    if not box.has_data or not 0.0 < max(box.size) < inf:
         return None
     thin = [side <= _THIN * max(box.size) for side in box.size]
     if thin == [False, True, False]:
@@ -47,6 +52,6 @@ def laid_flat(whole: Loaded) -> LaidFlat | None:
     turn = Matrix44.ucs(across, towards.cross(across), towards)
     turn.inverse()
     for entity in list(space):
-        with suppress(NotImplementedError, AttributeError, DXFError):  # what cannot be turned draws no outline
+        with suppress(NotImplementedError, *_DAMAGED):  # what cannot be turned draws no outline
             entity.transform(turn)
     return LaidFlat(whole, f"everything stands upright in the plane {view}")

@@ -701,6 +701,17 @@ def test_a_block_of_no_size_costs_itself(tmp_path):
     assert [s.kind for s in drawing.skipped] == ["INSERT"]
 
 
+def test_nothing_but_a_block_of_no_size(tmp_path):
+    doc = new()
+    plate(doc.blocks.new("NIL"))
+    doc.modelspace().add_blockref("NIL", (0, 0), dxfattribs={"xscale": 0.5, "yscale": 0.5, "zscale": 0.5})
+    file = save(doc, tmp_path)
+    file.write_text(file.read_text().replace("\n0.5\n", "\n0.0\n"))
+    drawing = read(file)
+    assert drawing.parts == ()
+    assert [s.kind for s in drawing.skipped] == ["INSERT"]
+
+
 def test_a_million_copies_are_refused_before_they_are_made(tmp_path):
     doc = new()
     doc.blocks.new("C").add_circle((0, 0), 1)
