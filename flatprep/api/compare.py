@@ -4,6 +4,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
 
+from flatprep.api.given_up import given_up
 from flatprep.base.errors import DrawingError, FlatprepError
 from flatprep.base.workers import Caps, Lost, Pool
 from flatprep.compare.compare import compare
@@ -45,7 +46,7 @@ def compare_files(ask: Revisions) -> Comparison:
     """
     (answer,) = Pool(_compared, Caps(_patience), 1).run([ask])
     if isinstance(answer, Lost):
-        raise DrawingError(f"{ask.new}: given up, {answer.why}", "export plainer drawings of the part")
+        raise given_up(ask.new, answer)
     if isinstance(answer, FlatprepError):
         raise answer
     return answer

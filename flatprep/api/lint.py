@@ -5,6 +5,7 @@ from dataclasses import dataclass, field, replace
 from pathlib import Path
 
 from flatprep.api.find import Found, find_drawings
+from flatprep.api.given_up import given_up
 from flatprep.base.errors import DrawingError, FlatprepError
 from flatprep.base.progress import Progress, Silent
 from flatprep.base.tolerances import DEFAULT, Tolerances
@@ -203,4 +204,5 @@ def _patience(task: LintTask) -> float:
 
 
 def _lost(task: LintTask, answer: Lost) -> Unreadable:
-    return Unreadable(str(task.path), f"{task.path}: given up, {answer.why}", "export a plainer drawing of the part")
+    err = given_up(task.path, answer)
+    return Unreadable(str(task.path), err.message, err.remedy)

@@ -3,7 +3,8 @@
 from dataclasses import dataclass
 from pathlib import Path
 
-from flatprep.base.errors import DrawingError, FlatprepError, UsageError
+from flatprep.api.given_up import given_up
+from flatprep.base.errors import FlatprepError, UsageError
 from flatprep.base.files import write_whole
 from flatprep.base.workers import Caps, Lost, Pool
 from flatprep.repair.clean import repair
@@ -46,7 +47,7 @@ def repair_file(path: Path, out: Path, options: RepairOptions | None = None) -> 
     task = _Task(path, options or RepairOptions())
     (answer,) = Pool(_repaired, Caps(_patience), 1).run([task])
     if isinstance(answer, Lost):
-        raise DrawingError(f"{path}: given up, {answer.why}", "export a plainer drawing of the part")
+        raise given_up(path, answer)
     if isinstance(answer, FlatprepError):
         raise answer
     write_whole(out, answer.text)

@@ -25,9 +25,10 @@ Result = TypeVar("Result")
 
 @dataclass(frozen=True, slots=True)
 class Lost:
-    """An item whose worker did not come back, and why."""
+    """An item without a result, and why: its worker did not come back, or met what nobody had thought of."""
 
     why: str
+    unforeseen: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -203,6 +204,9 @@ def _serve(pipe: Connection, work: Callable[[Any], Any], megabytes: float) -> No
             answer = work(item)
         except MemoryError:
             answer = Lost(f"it takes more than {megabytes:.0f} MB of memory")
+        except Exception as err:  # whatever it is costs this item, not the run
+            first = next(iter(str(err).splitlines()), "")
+            answer = Lost(f"a mistake of this program ({type(err).__name__}: {first})", unforeseen=True)
         with suppress(BrokenPipeError):
             pipe.send(answer)
         del item, answer

@@ -23,6 +23,7 @@ from flatprep.geom.bulge import (
     length,
     points_along,
     segments,
+    signed_area,
     split_arcs,
 )
 from flatprep.geom.polygons import polygon
@@ -31,6 +32,7 @@ from flatprep.model.drawing import Curve
 CHORD_MM = 0.002
 _GRID_MM = 1e-4
 _SNAP_MM = 1e-3
+_LEAST_MM2 = 1e-6
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -115,13 +117,15 @@ def even_odd(ring: Chain) -> tuple[Chain, ...]:
     faces = get_parts(polygonize(get_parts(unary_union(line)).tolist()))
     curve = Curve(ring.xyb, closed=True, layer=ring.layers[0], handle=ring.handles[0] if ring.handles else "")
     source = _Source([curve])
-    return tuple(c for face in faces if face.area > 1e-6 for c in source.rings_of(Polygon(face.exterior), ring.layers))
+    return tuple(
+        c for face in faces if face.area > _LEAST_MM2 for c in source.rings_of(Polygon(face.exterior), ring.layers)
+    )
 
 
 def _regions(whole: BaseGeometry, curves: Sequence[Curve]) -> Regions:
     source = _Source(curves)
     layers = tuple(sorted({c.layer for c in curves}))
-    areas = [p for p in get_parts(whole).tolist() if isinstance(p, Polygon) and p.area > 1e-6]
+    areas = [p for p in get_parts(whole).tolist() if isinstance(p, Polygon) and p.area > _LEAST_MM2]
     rings = tuple(ring for area in areas for ring in source.rings_of(area, layers))
     inner: list[Curve] = []
     rest: list[Curve] = []
@@ -165,6 +169,11 @@ def _onto_neighbours(lines: Sequence[LineString], reach: float) -> list[LineStri
     return [LineString(xy) for xy in chords]
 
 
+def _encloses(chain: Chain) -> bool:
+    """Tell whether a closed chain is more than one stroke there and back."""
+    return abs(signed_area(chain.xyb)) > _LEAST_MM2
+
+
 class _Source:
     """Finds the line or arc that a chord of a result lies on, and cuts it exactly."""
 
@@ -185,12 +194,16 @@ class _Source:
     def rings_of(self, area: Polygon, layers: tuple[str, ...]) -> list[Chain]:
         """Contours of a region, exact unless that would make them cross.
 
-        Where an outline touches itself a thousandth of a millimetre decides: there shapely's own points stay.
+        Where an outline touches itself a thousandth of a millimetre decides: there shapely's own points stay. Slivers
+        of which nothing is left on the curves themselves are none.
         """
-        edges = [np.asarray(edge.coords)[:-1] for edge in (area.exterior, *area.interiors)]
-        exact = [self._exact(xy, layers) for xy in edges]
+        every = [np.asarray(edge.coords)[:-1] for edge in (area.exterior, *area.interiors)]
+        drawn = [(xy, chain) for xy in every if _encloses(chain := self._exact(xy, layers))]
+        if not drawn or drawn[0][0] is not every[0]:
+            return []
+        edges, exact = zip(*drawn, strict=True)
         if polygon(exact[0].xyb, [c.xyb for c in exact[1:]], chord_mm=CHORD_MM).is_valid:
-            return exact
+            return list(exact)
         plain = [np.column_stack([xy, np.zeros(len(xy))]) for xy in edges]
         return [
             Chain(rows, chain.handles[:1] * len(rows), layers, closed=True)
@@ -202,8 +215,8 @@ class _Source:
         near = self._tree.query_nearest(points((xy + nxt) / 2.0), all_matches=False)[1]
         own = self._owner[near]
         breaks = np.flatnonzero(own != np.roll(own, 1))
-        if len(breaks) == 0:
-            breaks = np.array([0])
+        if len(breaks) == 0:  # a sliver along one line or arc
+            breaks = np.array([0, len(xy) // 2])
         xy = self._snapped(xy)
         rows, handles = [], []
         for k, first in enumerate(breaks):
@@ -231,8 +244,6 @@ class _Source:
 
 def _split(rows: Floats, handles: tuple[str, ...]) -> tuple[Floats, tuple[str, ...]]:
     """Halve arcs of more than a half circle, handles with them."""
-    if len(rows) == 1:
-        raise ValueError("a ring of one point")
     out: list[npt.NDArray[np.float64]] = []
     names: list[str] = []
     for k in range(len(rows)):

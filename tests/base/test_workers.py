@@ -18,6 +18,8 @@ def work(item: object) -> object:
         os._exit(9)
     if item == "eat":
         return len(bytearray(3_000_000_000))
+    if item == "err":
+        raise ValueError("no ring\nof three points")
     return ("done", item)
 
 
@@ -35,6 +37,13 @@ def test_hanging_and_dying_items_cost_themselves():
     assert "more than" in hung.why
     assert isinstance(died, Lost)
     assert "worker" in died.why
+
+
+def test_what_nobody_thought_of_costs_itself(capfd):
+    first, odd, last = Pool(work, Caps(lambda item: 20.0), 1).run([1, "err", 2])
+    assert (first, last) == (("done", 1), ("done", 2))
+    assert odd == Lost("a mistake of this program (ValueError: no ring)", unforeseen=True)
+    assert capfd.readouterr().err == ""
 
 
 @pytest.mark.skipif(not os.path.exists("/proc/self/statm"), reason="this system caps no memory")
