@@ -4,6 +4,7 @@ from contextlib import suppress
 from math import inf
 from typing import NamedTuple
 
+import numpy as np
 from ezdxf import bbox
 from ezdxf.lldxf.const import DXFError
 from ezdxf.math import BoundingBox, Matrix44, Vec3
@@ -38,7 +39,7 @@ def laid_flat(whole: Loaded) -> LaidFlat | None:
     """
     space = whole.document.modelspace()
     box = BoundingBox()
-    with suppress(*_DAMAGED):
+    with suppress(*_DAMAGED), np.errstate(all="ignore"):
         box = bbox.extents(space, fast=True)
     if not box.has_data or not 0.0 < max(box.size) < inf:
         return None
@@ -52,6 +53,9 @@ def laid_flat(whole: Loaded) -> LaidFlat | None:
     turn = Matrix44.ucs(across, towards.cross(across), towards)
     turn.inverse()
     for entity in list(space):
-        with suppress(NotImplementedError, *_DAMAGED):  # what cannot be turned draws no outline
+        with (
+            suppress(NotImplementedError, *_DAMAGED),
+            np.errstate(all="ignore"),
+        ):  # what cannot be turned draws no outline
             entity.transform(turn)
     return LaidFlat(whole, f"everything stands upright in the plane {view}")
