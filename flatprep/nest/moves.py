@@ -13,6 +13,7 @@ from flatprep.nest.snap import Contacts, room_for_contacts, snap
 from flatprep.nest.spots import any_edge, any_spot, clamp, corner_spot, fits, near_spot, neighbour
 from flatprep.nest.turning import SCRATCH, turn_into
 
+# Over one container; over several twice as many.
 WIDE_SAMPLES = 20
 NEAR_SAMPLES = 30
 CORNER_SAMPLES = 12
@@ -167,18 +168,19 @@ def sample(ground: Ground, i: int, kept: Floats, rng: np.random.Generator) -> in
     first = outlines.first[shape]
     variants = board.usable[shape]
     tried = 0
-    for trial in range(WIDE_SAMPLES + NEAR_SAMPLES + CORNER_SAMPLES):
+    wide = WIDE_SAMPLES * min(len(board.rect), 2)
+    for trial in range(wide + NEAR_SAMPLES + CORNER_SAMPLES):
         v = first + int(rng.random() * variants)
         k = board.home[i]
-        if trial < WIDE_SAMPLES:
+        if trial < wide:
             k = int(rng.random() * len(board.rect))
         elif rng.random() < 0.5:
             v = board.variant[i]
         if not fits(outlines, board, k, v):
             continue
-        if trial < WIDE_SAMPLES:
+        if trial < wide:
             x, y = any_spot(outlines, board, k, v, rng)
-        elif trial < WIDE_SAMPLES + NEAR_SAMPLES:
+        elif trial < wide + NEAR_SAMPLES:
             x, y = near_spot(outlines, board, i, v, rng)
         else:
             x, y = corner_spot(outlines, board, i, v, rng)

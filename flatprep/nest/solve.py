@@ -32,6 +32,8 @@ FIRST_SHARE = 0.2
 """Share of the time that constructive layouts may take after the first one."""
 REFILL_SHARE = 0.6
 """Share of a group's budget for filling sheets anew, where there are several with few pieces each."""
+FEW_PIECES = 10
+"""With more pieces a sheet than this, that share falls."""
 SEARCH_SHARE = 0.95
 """Share of what is then left for the search, where cheaper sheets are looked at after it."""
 ACROSS_SHARE = 0.05
@@ -234,7 +236,7 @@ class _Job:
         """Spend a clock on one group: refill sheets, search, look for cheaper sheets; tell whether it ran out."""
         take, margin, seed = partial(self._take, number), self._ask.margin_mm, budget.seed + turn
         if worth_refilling(self._answers[number]):
-            first = clock_share(clock, REFILL_SHARE)
+            first = clock_share(clock, refill_share(self._answers[number]))
             refill_with(self._answers[number], margin, first, seed, take, budget.jobs)
             clock.spend(first.evaluations)
         search = clock_share(clock, SEARCH_SHARE if may_downsize(self._answers[number]) else 1.0)
@@ -265,6 +267,11 @@ class _Job:
         if budget.steps is not None:
             return self._stopped
         return lambda: time.monotonic() >= until or self._stopped()
+
+
+def refill_share(answer: Answer) -> float:
+    """Share of the budget for filling sheets anew: which pieces share a sheet matters less where they are many."""
+    return REFILL_SHARE * min(1.0, FEW_PIECES * len(answer.supply) / len(answer.places))
 
 
 def difficulty(answer: Answer) -> float:

@@ -128,13 +128,13 @@ class Squeeze:
         return True
 
     def _shorter(self, step: float) -> tuple[int, float]:
-        """Return the field that is a step (share of a whole length) shorter than the best one's."""
+        """Return the field that is a step (share of the length of all sheets in use) shorter than the best one's."""
         rects, length = self.best.rects, self.best.length_mm
         least = self._bounds.least_mm(rects)
         if rects == 1:
             return 1, max(length * (1.0 - step), least)
         whole = self.engine.field.rect[rects - 1]
-        length -= step * float(whole[2] - whole[0])
+        length -= step * rects * float(whole[2] - whole[0])
         if least > 0.0 or length >= self._bounds.narrowest_mm:
             return rects, max(length, least)
         before = self.engine.field.rect[rects - 2]

@@ -28,6 +28,8 @@ NEAR_MB = 6.0
 MOST_MB = 100.0
 # Separations are stored as float32: they are read short by this much of the grid's cell.
 ROUNDING = 1e-3
+# Offsets look at the nearest node, so none is further from it than half the diagonal of a cell, and that rounding.
+FURTHEST = 0.51
 LEAST_APART = 1e-30  # stands for 0, which means: not yet known
 WHOLE_TURN = 360_000_000  # in millionths of a degree
 
@@ -120,12 +122,16 @@ def node_offset(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> t
 
 @bare
 def fill_separation(outlines: Outlines, tables: Tables, t: int, i: int, j: int) -> None:
-    """Compute the separation at a node."""
+    """Compute the separation at a node, no further than the offsets that look there need it."""
     a, b = tables.pair[t, 0], tables.pair[t, 1]
     dx, dy = node_offset(outlines, tables, t, i, j)
-    apart = gap(outlines.rings, a, b, dx, dy, math.hypot(tables.cell[t, 0], tables.cell[t, 1]))
+    needed = FURTHEST * math.hypot(tables.cell[t, 0], tables.cell[t, 1])
     if overlap(outlines.rings, a, b, dx, dy):
-        apart = -max(apart, depth(outlines, a, b, dx, dy))
+        apart = -depth(outlines, a, b, dx, dy)
+        if apart > -needed:
+            apart = min(apart, -gap(outlines.rings, a, b, dx, dy, needed))
+    else:
+        apart = gap(outlines.rings, a, b, dx, dy, needed)
     tables.node[t, i, j, 0] = apart if abs(apart) > LEAST_APART else LEAST_APART
 
 

@@ -11,7 +11,7 @@ from flatprep.nest.group import prepare_group
 from flatprep.nest.keep import left_to_lay
 from flatprep.nest.problem import Budget
 from flatprep.nest.refill import refill, worth_refilling
-from flatprep.nest.solve import nest
+from flatprep.nest.solve import nest, refill_share
 from flatprep.nest.verify import verify
 from tests.nest.parts import ask, item, rectangle, sheet
 
@@ -54,6 +54,14 @@ def test_nest_as_a_whole_finds_the_two_sheets():
     layout = nest(question, Budget(steps=300, seed=1))
     assert len(layout.sheets) == 2
     assert verify(layout, question) == ()
+
+
+@pytest.mark.parametrize(("pieces", "share"), [(5, 0.6), (10, 0.6), (20, 0.3), (40, 0.15)])
+def test_the_more_pieces_share_a_sheet_the_less_is_spent_on_who_shares_it(pieces, share):
+    tiles = item(rectangle("tile", 10.0, 10.0), quantity=2 * pieces, turns_deg=(0.0,))
+    start = first(ask([tiles], [sheet(10.0 * pieces, 10.0, count=None)]))
+    assert len(start.supply) == 2
+    assert refill_share(start) == pytest.approx(share)
 
 
 def test_open_length_and_single_sheets_are_left_to_the_search():

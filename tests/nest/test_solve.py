@@ -71,7 +71,7 @@ def test_last_sheet_becomes_a_cheaper_one_when_its_parts_fit_there():
         sheet(300.0, 200.0, name="large", price=60.0, count=3),
         sheet(150.0, 100.0, name="small", price=9.0, count=1),
     ]
-    layout = solved(ask([item(rectangle("p", 140.0, 90.0), 5)], stock, 0.0, 3.0))
+    layout = solved(ask([item(rectangle("p", 140.0, 90.0), 5)], stock, 0.0, 3.0), Budget(steps=40, seed=1))
     assert sorted(s.stock for s in layout.sheets) == ["large", "small"]
 
 
