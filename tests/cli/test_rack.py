@@ -27,7 +27,7 @@ def job(tmp_path):
 def test_nest_takes_a_rack_and_says_what_it_left_out(job, tmp_path):
     got = run("nest", job, "--out", tmp_path / "out", "--steps", "3", "--rack", tmp_path / "rack")
     assert got.exit_code == 0, got.output
-    assert "sheet-01: R7, mild-steel 3 mm" in got.stdout
+    assert "sheet-01: R7, mild-steel 3\u00a0mm" in got.stdout
     assert "warning: " in got.stderr
     assert "bare.dxf: does not say its material or thickness; left out" in got.stderr
     assert "1 remnant of materials or thicknesses that no part of this job has" in got.stderr
