@@ -41,3 +41,18 @@ def box(msp: BaseLayout, x: float, y: float, w: float, h: float, **at: object) -
 
 
 CIRCLE_10 = pi * 100.0
+
+
+PLATE = 80 * 50 - CIRCLE_10
+"""Area of `plate`, mm²."""
+
+
+def plate(space):
+    """Draw 80 x 50 with a hole of 20 in its middle."""
+    box(space, 0, 0, 80, 50)
+    space.add_circle((40, 25), 10)
+
+
+def kinds(drawing):
+    """Kinds of what a reading found."""
+    return [f.kind for f in drawing.faults]
