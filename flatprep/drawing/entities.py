@@ -163,7 +163,7 @@ def arc_shape(centre: tuple[float, float, float], r: float, start_deg: float, en
 def _is_full(start: float, end: float) -> bool:
     """Tell whether an arc between two angles (radians) is a full turn, or one that rounding made a hair longer."""
     sweep = (end - start) % (2 * pi)
-    return sweep < 1e-9 or sweep > 2 * pi - FULL_RAD or (sweep < PAST_FULL_RAD and abs(end - start) > pi)
+    return sweep < 1e-9 or sweep > 2 * pi - FULL_RAD or (sweep < PAST_FULL_RAD and end - start > pi)
 
 
 def _ellipse(e: Dxf) -> _Smooth:

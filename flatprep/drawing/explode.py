@@ -87,16 +87,11 @@ class _Layers:
         self._of = {
             layer.dxf.name.lower(): (abs(int(layer.dxf.color)), str(layer.dxf.linetype)) for layer in document.layers
         }
-        self._frozen = {layer.dxf.name.lower() for layer in document.layers if layer.is_frozen()}
 
     def looks(self, own: tuple[str, int, str], above: _Above) -> tuple[str, int, str]:
-        """Layer, colour and linetype of an entity after BYLAYER and BYBLOCK, and layer 0 of a block, are resolved.
-
-        What stands in an insertion on a frozen layer is frozen with it, whatever layer it is drawn on.
-        """
+        """Layer, colour and linetype of an entity after BYLAYER and BYBLOCK, and layer 0 of a block, are resolved."""
         layer, color, linetype = own
-        if above.depth and (layer == "0" or above.layer.lower() in self._frozen):
-            layer = above.layer
+        layer = above.layer if above.depth and layer == "0" else layer
         own_color, own_linetype = self._of.get(layer.lower(), (7, "CONTINUOUS"))
         color = own_color if color == 256 else above.color if color == 0 else color
         linetype = linetype.upper()

@@ -170,7 +170,7 @@ def test_what_is_not_shown_is_not_cut(tmp_path):
     assert sorted((s.kind, s.layer) for s in drawing.skipped) == [
         ("INVISIBLE", "0"),
         ("INVISIBLE", "A"),
-        ("INVISIBLE", "old"),
+        ("INVISIBLE", "A"),
     ]
     assert [f.kind for f in drawing.faults] == ["layer-role"]
 
