@@ -7,7 +7,7 @@ from pathlib import Path
 from flatprep.job.values import BendAsk, Job, JobPart, Pilots, Tabs, Work
 from flatprep.measure.holes import Hole, recognise
 from flatprep.model.drawing import Drawing, Part, Text
-from flatprep.profile.material import METALS, Material
+from flatprep.profile.material import METAL_FAMILIES, Material
 from flatprep.profile.process import Process
 
 
@@ -72,7 +72,7 @@ class BenchPart:
     @property
     def is_metal(self) -> bool:
         """Whether its edges are to be expected like those of metal: also where the material is not known."""
-        return self.family is None or self.family in METALS
+        return self.family is None or self.family in METAL_FAMILIES
 
     @property
     def least_hole_mm(self) -> float:

@@ -11,7 +11,7 @@ from flatprep.geom.bulge import Floats
 from flatprep.job.terms import CostTerms, Discount
 from flatprep.job.values import Stock
 from flatprep.model.layout import SheetLayout
-from flatprep.profile.material import METALS
+from flatprep.profile.material import METAL_FAMILIES
 
 
 @dataclass(frozen=True, slots=True)
@@ -92,7 +92,7 @@ def _credit(sheet: SheetLayout, stock: Stock, net_mm2: float, paid: Decimal, ter
     rest = rest_area_mm2(sheet, stock, terms.offcut_least_mm) if terms.offcut_credit else 0.0
     credit = paid * terms.offcut_credit * decimal(rest / area)
     density = stock.material.density_kg_m3
-    if terms.scrap_per_kg and density and stock.material.family in METALS:
+    if terms.scrap_per_kg and density and stock.material.family in METAL_FAMILIES:
         skeleton = max(area - rest - net_mm2, 0.0)
         credit += terms.scrap_per_kg * decimal(skeleton * stock.thickness_mm * density * 1e-9)
     return min(credit, paid)

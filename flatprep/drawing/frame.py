@@ -16,7 +16,8 @@ PAPER_MM = ((210, 297), (297, 420), (420, 594), (594, 841), (841, 1189))
 MARGIN = 0.8
 """A rectangle within paper that fills so much of it is the frame drawn on it."""
 _SHEET = re.compile(
-    r"\b(sheets?|stock|page|paper|bed|workpiece|blatt|rohling|feuille|foglio|hoja|folha|arkusz)\b", re.IGNORECASE
+    r"\b(sheets?(?![ -]*metal)|stock|page|paper|bed|workpiece|blatt|rohling|feuille|foglio|hoja|folha|arkusz)\b",
+    re.IGNORECASE,
 )
 
 
@@ -46,7 +47,8 @@ def frame_index(contours: Sequence[Contour], nest: Nesting, around: Sequence[Con
     - most of what lies in it directly are pieces, that is outlines of some size with contours of their own, two at
       least: a plate's windows are empty, and what its letters and counterbores hold is small;
     - it is paper, or the frame on it (it fills most of the border around it), and holds a part with holes;
-    - it lies alone on a layer that is called after sheets.
+    - it lies alone on a layer that is called after sheets, with an outline of some size in it: not a plate's own
+      outline, in which there are but holes.
     """
     outermost = np.flatnonzero(nest.depth == 0)
     if len(outermost) != 1 or len(contours) < 2:
@@ -59,7 +61,8 @@ def frame_index(contours: Sequence[Contour], nest: Nesting, around: Sequence[Con
     pieces = [i for i in with_content if _is_piece(contours[i])]
     drawn_around = len(pieces) >= 2 and 2 * len(pieces) > len(inside)
     on_paper = bool(pieces) and (_is_paper(contours[frame]) or _fills(contours[frame], around))
-    return frame if drawn_around or on_paper or _named(contours, frame) else None
+    named = any(_is_piece(contours[i]) for i in inside) and _named(contours, frame)
+    return frame if drawn_around or on_paper or named else None
 
 
 def _is_piece(contour: Contour) -> bool:

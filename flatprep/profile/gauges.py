@@ -14,7 +14,7 @@ _GAUGE = re.compile(r"\s*#?(\d{1,2})\s*-?\s*(?:ga|gauge|gage|swg)\.?\s*", re.IGN
 MOST_MM = 1000.0
 STOCK_GAUGES = (26, 24, 22, 20, 18, 16, 14, 12, 11, 10, 7)
 STOCK_FRACTIONS = (3 / 16, 1 / 4, 5 / 16, 3 / 8, 1 / 2, 5 / 8, 3 / 4, 1.0)
-METALS = ("steel", "stainless", "aluminium", "galvanised")
+GAUGE_METALS = ("steel", "stainless", "aluminium", "galvanised")
 FILE = SHIPPED / "hardware" / "gauges.toml"
 _FAMILY_METAL = {"low-carbon-steel": "steel", "wear-plate": "steel", "stainless": "stainless", "aluminium": "aluminium"}
 
@@ -76,7 +76,7 @@ def metal_of(material: Material | None, asked: str = "gauge") -> str:
 
 
 def gauge_mm(number: int, metal: str) -> float:
-    """Return the thickness of a gauge number in one of `METALS`, mm.
+    """Return the thickness of a gauge number in one of `GAUGE_METALS`, mm.
 
     Raises
     ------
@@ -112,8 +112,8 @@ def _table() -> dict[int, dict[str, float]]:
     top = Table(read_toml(FILE), str(FILE)).only(("source", "units", "row"))
     rows = {}
     for row in top.tables("row"):
-        row.only(("gauge", *METALS))
-        rows[row.integer("gauge")] = {metal: row.number(metal, above=0.0) for metal in METALS if row.has(metal)}
+        row.only(("gauge", *GAUGE_METALS))
+        rows[row.integer("gauge")] = {metal: row.number(metal, above=0.0) for metal in GAUGE_METALS if row.has(metal)}
     if not rows:
         raise ProfileError(f"{FILE}: holds no row", "add a [[row]] with gauge and the inches of each metal")
     return rows

@@ -7,13 +7,14 @@ from decimal import Decimal
 from flatprep.profile.points import Points, clamped
 from flatprep.profile.process import Limit, Process
 
-FAMILIES = (
+METAL_FAMILIES = (
     "low-carbon-steel", "stainless", "aluminium", "wear-plate", "titanium", "magnesium", "copper-brass",
+)  # fmt: skip
+FAMILIES = (
+    *METAL_FAMILIES,
     "acrylic", "plastic", "laminate", "wood", "leather", "cardboard", "rubber",
 )  # fmt: skip
 """The keys that a process's limits may be given for."""
-METALS = FAMILIES[:7]
-"""The families that are metals."""
 
 TECHNOLOGIES = ("fibre-laser", "co2-laser", "router", "plasma", "waterjet")
 LEVELS = ("yes", "care", "unknown", "no", "never")

@@ -8,13 +8,13 @@ from flatprep.base.errors import ProfileError
 from flatprep.base.keys import keys_of
 from flatprep.base.names import did_you_mean, nearest, plain
 from flatprep.profile import reference
+from flatprep.profile.gauges import GAUGE_METALS
 from flatprep.profile.material import FAMILIES, LEVELS, TECHNOLOGIES, BendRule, Material, Verdict
 from flatprep.profile.points import Points
 from flatprep.profile.toml_check import Table, read_toml
 from flatprep.profile.where import candidate, ids
 
 MOST_DENSITY = 30000.0
-METALS = ("steel", "stainless", "aluminium", "galvanised")
 KEYS = keys_of(reference.MATERIAL)
 """Every key that a material profile may have."""
 
@@ -71,7 +71,7 @@ def parse_material(data: Mapping[str, object], file: str, stem: str) -> Material
         strength_kind=kind,
         mechanical_source=top.text("mechanical_source", ""),
         hardness=top.text("hardness", ""),
-        gauge_metal=top.choice("gauge", METALS) if top.has("gauge") else None,
+        gauge_metal=top.choice("gauge", GAUGE_METALS) if top.has("gauge") else None,
         stock_mm=tuple(sorted(top.numbers("stock", least=0.0))),
         tap=top.choice("tap", ("good", "fair", "poor", "no"), ""),
         tap_note=top.text("tap_note", ""),

@@ -41,6 +41,7 @@ def spot_on_material(region: Polygon, letters: int, most: float) -> Spot | None:
     region
         The piece as it lies, holes and all.
     letters
+        How many stand in the line.
     most
         Largest height of a letter, mm.
     """

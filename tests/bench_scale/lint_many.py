@@ -48,9 +48,8 @@ def main() -> None:
                 flush=True,
             )
     times = list(took.values())
-    print(
-        f"{times[0] / times[-1]:.2f} times as fast with --jobs {o.jobs.split(',')[-1]}, {len(said)} different answers"
-    )
+    alike = "the same answer" if len(said) == 1 else f"{len(said)} different answers"
+    print(f"{times[0] / times[-1]:.2f} times as fast with --jobs {o.jobs.split(',')[-1]}, {alike}")
     sys.exit(len(said) != 1)
 
 

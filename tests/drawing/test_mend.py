@@ -8,9 +8,8 @@ from flatprep.drawing.mend import mended
 from flatprep.drawing.read import read
 from flatprep.drawing.records import records_of
 
-from .draw import CIRCLE_10
+from .draw import PLATE
 
-PLATE = 80 * 50 - CIRCLE_10
 CORNERS = ((0, 0), (80, 0), (80, 50), (0, 50))
 HOLE = [(0, "CIRCLE"), (8, "0"), (10, 40.0), (20, 25.0), (40, 10.0)]
 EDGES = [

@@ -111,8 +111,8 @@ def test_same_part_however_written(tmp_path, paint):
 
 def test_an_arc_across_its_own_zero_is_no_circle(tmp_path):
     """A fillet of a thousandth of a degree on either side of 0, as reversed outlines have them."""
-    curves = read(drawn(tmp_path, lambda msp: msp.add_arc((40, 25), 10, 359.999, 0.001))).parts
-    assert curves == ()
+    drawing = read(drawn(tmp_path, lambda msp: msp.add_arc((40, 25), 10, 359.999, 0.001)))
+    assert drawing.parts == ()
 
 
 @pytest.mark.parametrize("version", ["R12", "R2000", "R2004", "R2007", "R2010", "R2013", "R2018"])

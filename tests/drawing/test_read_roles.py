@@ -39,6 +39,20 @@ def test_a_plate_with_counterbores_is_no_border(tmp_path):
     assert whole == pytest.approx(100 * 60 - 4 * pi * 25)
 
 
+@pytest.mark.parametrize("layer", ["Sheet metal", "sheet-metal", "stock"])
+def test_a_plate_on_a_layer_called_after_sheets_is_no_border(tmp_path, layer):
+    def paint(msp):
+        box(msp, 0, 0, 100, 60, layer=layer)
+        for x in (20, 80):
+            msp.add_circle((x, 30), 5, dxfattribs={"layer": "holes"})
+        if layer != "stock":
+            box(msp, 30, 10, 40, 40, layer="windows")
+
+    window = 40 * 40 if layer != "stock" else 0
+    (part,) = read(drawn(tmp_path, paint)).parts
+    assert part.area_mm2 == pytest.approx(100 * 60 - 2 * pi * 25 - window)
+
+
 @pytest.mark.parametrize(
     ("borders", "layer", "hole"),
     [
