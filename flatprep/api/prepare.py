@@ -3,7 +3,7 @@
 import json
 import re
 import time
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from pathlib import Path
 
@@ -56,13 +56,22 @@ _SHEETS = {
 
 @dataclass(frozen=True, slots=True)
 class Prepared:
-    """All results of a job; `rests` are what is left of each sheet, None where nothing worth keeping is."""
+    """All results of a job.
+
+    Attributes
+    ----------
+    papers : mapping of str to str
+        Files that the layout has no part in, by their place in the folder.
+    rests : tuple
+        What is left of each sheet, None where nothing worth keeping is.
+    """
 
     read: ReadJob
     checklist: Checklist
     estimate: Estimate
     nested: Nested | None
     bundle: Bundle
+    papers: Mapping[str, str]
     rests: tuple[Rest | None, ...] = ()
 
     @property
@@ -92,6 +101,7 @@ def prepare_job(
         When the job cannot be used; nothing is written here.
     """
     steps = checklist_job(read)
+    papers = _papers(read, steps)  # before the search: when it is interrupted, less is left to be done
     points: list[SearchPoint] = []
     began = time.monotonic()
 
@@ -112,7 +122,7 @@ def prepare_job(
     money = estimate_job(read, nested.layout if nested else None)
     rests = rests_of(nested) if nested else ()
     bundle = replace(_bundle(read, steps, money, nested, points), offcuts=_offcuts(rests))
-    return Prepared(read, steps, money, nested, bundle, rests)
+    return Prepared(read, steps, money, nested, bundle, papers, rests)
 
 
 def write_prepared(done: Prepared, folder: Path) -> None:
@@ -143,23 +153,33 @@ def _results(done: Prepared, folder: Path) -> Iterator[tuple[Path, str | None]]:
     """Yield all but the page."""
     if done.nested:
         yield from layout_files(done.nested, folder, done.rests)
-    documents = {
-        "lint.json": lint_document(done.read.report),
-        "checklist.json": checklist_document(done.checklist),
-        "estimate.json": estimate_document(done.estimate),
-    }
-    for name, document in documents.items():
-        yield folder / name, json.dumps(document, indent=1) + "\n"
+    yield folder / "estimate.json", _json(estimate_document(done.estimate))
     yield folder / "parts.csv", parts_csv(done.bundle)
-    yield folder / "findings.csv", findings_csv(done.bundle)
     yield folder / "sheets.csv", sheets_csv(done.bundle)
-    yield folder / "steps.csv", checklist_csv(done.checklist)
     yield folder / "estimate.csv", estimate_csv(done.estimate)
-    stems = safe_stems([card.name for card in done.bundle.cards])
-    for stem, card in zip(stems, done.bundle.cards, strict=True):
-        yield folder / "bench" / f"{stem}.html", bench_sheet_html(done.bundle, card)
+    for name, text in done.papers.items():
+        yield folder / name, text
+
+
+def _papers(read: ReadJob, steps: Checklist) -> dict[str, str]:
+    """Return the files of findings and bench work, and a bench sheet a part."""
+    bundle = _bundle(read, steps, estimate_job(read, None), None, ())
+    papers = {
+        "lint.json": _json(lint_document(read.report)),
+        "checklist.json": _json(checklist_document(steps)),
+        "findings.csv": findings_csv(bundle),
+        "steps.csv": checklist_csv(steps),
+    }
+    stems = safe_stems([card.name for card in bundle.cards])
+    for stem, card in zip(stems, bundle.cards, strict=True):
+        papers[f"bench/{stem}.html"] = bench_sheet_html(bundle, card)
         if card.part and card.quantity_opposite:
-            yield folder / "bench" / f"{stem}-opposite.html", bench_sheet_html(done.bundle, _opposite(card, card.part))
+            papers[f"bench/{stem}-opposite.html"] = bench_sheet_html(bundle, _opposite(card, card.part))
+    return papers
+
+
+def _json(document: object) -> str:
+    return json.dumps(document, indent=1) + "\n"
 
 
 def _told(name: str) -> str:

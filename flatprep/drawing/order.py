@@ -15,7 +15,7 @@ from functools import lru_cache
 import numpy as np
 import numpy.typing as npt
 
-from flatprep.geom.bulge import Floats
+from flatprep.geom.bulge import Floats, Similarity
 from flatprep.model.drawing import Contour, Part
 from flatprep.model.layout import Placement, SheetLayout
 
@@ -24,7 +24,6 @@ SAME_SIZE = 2.0
 HOT = 1.0, 0.5
 """Weights of being a neighbour of the last piece and of the one before: so many pieces back, the place is still hot."""
 
-Box = tuple[float, float, float, float]
 Flags = npt.NDArray[np.bool_]
 
 
@@ -120,9 +119,20 @@ def _within(boxes: Floats, window: Floats) -> Flags:
     return np.asarray(inside, dtype=np.bool_)
 
 
-def _box(part: Part, placement: Placement) -> Box:
-    return Contour(placement.motion.polyline(part.outer.xyb)).bounds
+def _box(part: Part, placement: Placement) -> Floats:
+    return np.asarray(_boxes_turned(part, placement.turn_deg, mirrored=placement.mirrored)[0] + _shift(placement))
 
 
-def _window_boxes(part: Part, placement: Placement) -> list[Floats]:
-    return [np.array(Contour(placement.motion.polyline(h.xyb)).bounds) for h in part.holes]
+def _window_boxes(part: Part, placement: Placement) -> Floats:
+    return np.asarray(_boxes_turned(part, placement.turn_deg, mirrored=placement.mirrored)[1:] + _shift(placement))
+
+
+def _shift(placement: Placement) -> Floats:
+    return np.array([placement.dx, placement.dy, placement.dx, placement.dy])
+
+
+@lru_cache(maxsize=1024)
+def _boxes_turned(part: Part, turn_deg: float, *, mirrored: bool) -> Floats:
+    """Boxes (x0, y0, x1, y1) of a part's outline and of its holes, about the origin of its drawing; shape (n, 4)."""
+    motion = Similarity(turn_deg=turn_deg, mirrored=mirrored)
+    return np.array([Contour(motion.polyline(c.xyb)).bounds for c in (part.outer, *part.holes)])

@@ -64,17 +64,7 @@ def _cautions(bundle: Bundle) -> tuple[str, ...]:
 
 def _render(template: str, bundle: Bundle, **values: object) -> str:
     environment = _environment(bundle.units, bundle.estimate.currency if bundle.estimate else None)
-    style = environment.get_template("page.css.j2").render().strip()
-    script = environment.get_template("page.js").render().strip()
-    return environment.get_template(template).render(
-        bundle=bundle,
-        style=Markup(style),
-        script=Markup(script),
-        style_hash=_csp_hash(style),
-        script_hash=_csp_hash(script),
-        job_key=_job_key(bundle),
-        **values,
-    )
+    return environment.get_template(template).render(bundle=bundle, job_key=_job_key(bundle), **values)
 
 
 @cache
@@ -99,6 +89,16 @@ def _environment(units: str, currency: str | None) -> Environment:
         "sign": lambda kind, words: Markup(sign(kind, str(words))),
         "foldable": foldable,
         "relative": lambda file: "./" + quote(file),
+    }
+    for name in environment.list_templates():  # all at once: the last ones are wanted when a run is asked to end
+        environment.get_template(name)
+    style = environment.get_template("page.css.j2").render().strip()
+    script = environment.get_template("page.js").render().strip()
+    environment.globals |= {
+        "style": Markup(style),
+        "script": Markup(script),
+        "style_hash": _csp_hash(style),
+        "script_hash": _csp_hash(script),
     }
     return environment
 

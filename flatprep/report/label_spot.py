@@ -2,11 +2,12 @@
 
 from dataclasses import dataclass
 from functools import lru_cache
+from typing import NamedTuple
 
 import shapely
 from shapely.geometry import LineString, Polygon
 
-from flatprep.geom.bulge import Floats
+from flatprep.geom.bulge import Floats, Similarity
 from flatprep.geom.polygons import ring, valid_polygon
 from flatprep.model.drawing import Part
 
@@ -27,10 +28,34 @@ class Spot:
     size: float
 
 
+class Lying(NamedTuple):
+    """How a piece lies, but for where: pieces that lie alike are labelled alike.
+
+    `upright` looks at it with x and y changed over, for text that is then turned back.
+    """
+
+    part: Part
+    turn_deg: float
+    mirrored: bool
+    upright: bool = False
+
+    @property
+    def region(self) -> Polygon:
+        """Material of the piece, the origin of its drawing at (0, 0), mm."""
+        motion = Similarity(turn_deg=self.turn_deg, mirrored=self.mirrored)
+        outer, *inner = (motion.points(points) for points in _rings_of(self.part))
+        return Polygon(outer[:, ::-1], [h[:, ::-1] for h in inner]) if self.upright else Polygon(outer, inner)
+
+
 @lru_cache(maxsize=1024)
-def rings_of(part: Part) -> tuple[Floats, ...]:
-    """Contours of a part by points; it may lie on many sheets many times."""
+def _rings_of(part: Part) -> tuple[Floats, ...]:
     return tuple(ring(contour.xyb, 0.5) for contour in part.contours)
+
+
+@lru_cache(maxsize=4096)
+def spot_on_piece(lying: Lying, letters: int, most: float) -> Spot | None:
+    """`spot_on_material` of a piece, about the origin of its drawing; found once for all that lie alike."""
+    return spot_on_material(lying.region, letters, most)
 
 
 def spot_on_material(region: Polygon, letters: int, most: float) -> Spot | None:

@@ -4,14 +4,12 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from html import escape
 
-from shapely.geometry import Polygon
-
 from flatprep.geom.bulge import Similarity
 from flatprep.model.drawing import Part
 from flatprep.model.layout import Placement, SheetLayout
 from flatprep.report.bundle import Offcut
 from flatprep.report.figures import bare_length, number
-from flatprep.report.label_spot import rings_of, spot_on_material
+from flatprep.report.label_spot import Lying, spot_on_piece
 from flatprep.report.part_figure import Box, scale_bar
 from flatprep.report.svg_path import joined, part_path, ring_data
 from flatprep.report.svg_tag import picture, tag, text
@@ -91,12 +89,11 @@ def _placed(placement: Placement, shape: Shape, unit: float) -> str:
 
 def _label(placement: Placement, shape: Shape, unit: float) -> str:
     """Return the part's name, or its number, on the piece's material, or nothing: what fits in readable size."""
-    outer, *inner = (placement.motion.points(points) for points in rings_of(shape.part))
-    region = Polygon(outer, inner)
+    lying = Lying(shape.part, placement.turn_deg, placement.mirrored)
     for words in (placement.part, str(shape.number)):
-        spot = spot_on_material(region, len(words), 1.5 * unit)
+        spot = spot_on_piece(lying, len(words), 1.5 * unit)
         if spot and spot.size >= 0.6 * unit:
-            return text(words, spot.x, spot.size / 3 - spot.y, spot.size)
+            return text(words, placement.dx + spot.x, spot.size / 3 - spot.y - placement.dy, spot.size)
     return ""
 
 

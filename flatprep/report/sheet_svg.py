@@ -2,6 +2,7 @@
 
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, field, replace
+from functools import lru_cache
 
 import numpy as np
 import shapely
@@ -15,7 +16,7 @@ from flatprep.model.drawing import Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
 from flatprep.model.tab import Tab, tab_stroke
 from flatprep.report.figures import bare_length, counted, length, percent, size
-from flatprep.report.label_spot import WIDE, Spot, rings_of, spot_anywhere, spot_on_material
+from flatprep.report.label_spot import WIDE, Lying, Spot, spot_anywhere, spot_on_piece
 from flatprep.report.svg_path import joined, part_path, ring_data
 
 OKABE_ITO = ("#E69F00", "#56B4E9", "#009E73", "#F0E442", "#0072B2", "#D55E00", "#CC79A7")
@@ -192,21 +193,22 @@ def _piece(page: svgwrite.Drawing, part: Part, placement: Placement, look: Look)
 def _name(page: svgwrite.Drawing, part: Part, placement: Placement, turn: int, em: float) -> None:
     """Turn of cutting and name on a piece, level or upright, where it is larger; across its holes where it must."""
     words = f"{turn}: {placement.part} {placement.copy}"
-    outer, *inner = (placement.motion.points(points) for points in rings_of(part))
-    level, upright = Polygon(outer, inner), Polygon(outer[:, ::-1], [hole[:, ::-1] for hole in inner])
-    along, up = (_spot(region, len(words), em) for region in (level, upright))
+    lying = Lying(part, placement.turn_deg, placement.mirrored)
+    along, up = (_spot(way, len(words), em) for way in (lying, lying._replace(upright=True)))
     spot = along if along.size >= up.size else Spot(up.y, up.x, up.size)
-    onto = page if along.size >= up.size else page.g(transform=f"rotate(-90 {spot.x:.3f} {-spot.y:.3f})")
-    _text(onto, words, (spot.x, -spot.y + spot.size / 3), spot.size, anchor="middle")
+    x, y = placement.dx + spot.x, placement.dy + spot.y
+    onto = page if along.size >= up.size else page.g(transform=f"rotate(-90 {x:.3f} {-y:.3f})")
+    _text(onto, words, (x, -y + spot.size / 3), spot.size, anchor="middle")
     if onto is not page:
         page.add(onto)
 
 
-def _spot(region: Polygon, letters: int, em: float) -> Spot:
+@lru_cache(maxsize=4096)
+def _spot(lying: Lying, letters: int, em: float) -> Spot:
     """Return a spot on the material where letters can be read there, else across holes."""
-    spot = spot_on_material(region, letters, em)
+    spot = spot_on_piece(lying, letters, em)
     if spot is None or spot.size < READABLE * em:
-        spot = spot_anywhere(Polygon(region.exterior), letters, em)
+        spot = spot_anywhere(Polygon(lying.region.exterior), letters, em)
     return replace(spot, size=max(LEAST_NAME * em, spot.size))
 
 
