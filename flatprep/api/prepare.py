@@ -119,7 +119,7 @@ def prepare_job(
         nested = nest_job(read, budget, progress=progress, on_better=better, stop=stop)
         read = nested.read
         note(nested.layout)
-    money = estimate_job(read, nested.layout if nested else None)
+    money = estimate_job(read, nested.layout if nested else None, steps)
     rests = rests_of(nested) if nested else ()
     bundle = replace(_bundle(read, steps, money, nested, points), offcuts=_offcuts(rests))
     return Prepared(read, steps, money, nested, bundle, papers, rests)
@@ -163,7 +163,7 @@ def _results(done: Prepared, folder: Path) -> Iterator[tuple[Path, str | None]]:
 
 def _papers(read: ReadJob, steps: Checklist) -> dict[str, str]:
     """Return the files of findings and bench work, and a bench sheet a part."""
-    bundle = _bundle(read, steps, estimate_job(read, None), None, ())
+    bundle = _bundle(read, steps, estimate_job(read, None, steps), None, ())
     papers = {
         "lint.json": _json(lint_document(read.report)),
         "checklist.json": _json(checklist_document(steps)),

@@ -23,8 +23,13 @@ def checklist_job(read: ReadJob) -> Checklist:
     return checklist(bench_parts(read), read.job.joints)
 
 
-def estimate_job(read: ReadJob, layout: Layout | None) -> Estimate:
+def estimate_job(read: ReadJob, layout: Layout | None, bench: Checklist | None = None) -> Estimate:
     """Work out mass, cut length and material cost; without a layout the cost stays open.
+
+    Parameters
+    ----------
+    bench
+        Of `checklist_job`, where it is known already.
 
     Raises
     ------
@@ -32,7 +37,7 @@ def estimate_job(read: ReadJob, layout: Layout | None) -> Estimate:
         When work names holes, threads or fits that do not exist, or the layout is another job's.
     """
     job = read.job
-    steps = {done.name: done.steps for done in checklist_job(read).parts}
+    steps = {done.name: done.steps for done in (bench or checklist_job(read)).parts}
     items = [_costed(job, piece, steps.get(piece.name, ())) for piece in read.pieces]
     ask = Ask(job.sets, job.mass_limit_kg, job.currency, job.cost)
     return estimate(items, job.stock, layout, ask)
