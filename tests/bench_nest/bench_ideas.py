@@ -72,8 +72,8 @@ LEAVE_OUT: dict[str, Callable[[], None]] = {
 }
 
 
-def search_once(name: str, seconds: float, seed: int, whole: float | None) -> float:
-    """Search in this process and print the line but for its head; return the density."""
+def search_once(name: str, seconds: float, seed: int, whole: float | None) -> None:
+    """Search in this process and print the line but for its head."""
     instance = load(Path(os.environ["FLATPREP_DATA"]) / "instances", name)
     run(instance, Clock(steps=1), seed, 1)  # compiles
     clock = Clock(seconds)
@@ -83,7 +83,6 @@ def search_once(name: str, seconds: float, seed: int, whole: float | None) -> fl
     early = next((f"{at:.1f} s" for at, density in curve if density >= mark), "never")
     rate = clock.evaluations / clock.elapsed_s / 1e6
     sys.stdout.write(f"{final:.2f} %, 95 % in {early}, {rate:.2f} million positions a second\n")
-    return final
 
 
 def main() -> None:

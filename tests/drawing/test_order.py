@@ -92,6 +92,20 @@ def test_piece_in_a_window_is_cut_first_then_small_before_large():
     assert [layout.placements[k].part for k in cutting_order(layout, parts)] == ["coin", "small", "frame", "large"]
 
 
+@pytest.mark.parametrize(("turn_deg", "mirrored"), [(0.0, True), (90.0, False), (90.0, True), (250.0, True)])
+def test_a_window_is_where_its_piece_has_it_turned_and_mirrored(turn_deg, mirrored):
+    """The window is off the middle; what lies in it goes before a smaller piece that lies outside."""
+    window = Contour(reverse(circle(160.0, 20.0, 18.0), closed=True))
+    frame = Part("frame", rectangle("frame", 200.0, 80.0).outer, (window,))
+    coin, small = disc("coin", 10), disc("small", 4)
+    layout, parts = sheet((frame, 900, 700), (coin, 0, 0), (small, 2000, 1000))
+    turned = replace(layout.placements[0], turn_deg=turn_deg, mirrored=mirrored)
+    ((x, y),) = turned.motion.points(np.array([[160.0, 20.0]]))
+    inside = replace(layout.placements[1], dx=float(x), dy=float(y))
+    layout = replace(layout, placements=(turned, inside, layout.placements[2]))
+    assert [layout.placements[k].part for k in cutting_order(layout, parts)] == ["coin", "small", "frame"]
+
+
 def test_windows_within_windows_from_the_inside_out():
     rings = [disc(f"ring{r}", r, r - 8) for r in (50, 40, 30, 20)]
     layout, parts = sheet(*((ring, 100, 100) for ring in rings))

@@ -4,10 +4,12 @@ from xml.etree import ElementTree
 
 import numpy as np
 import pytest
+from shapely.geometry import Point, Polygon
 
 from flatprep.geom.bulge import circle
 from flatprep.model.drawing import Contour, Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
+from flatprep.report.sheet_figure import Shape, sheet_figure
 from flatprep.report.sheet_svg import OKABE_ITO, Extras, sheet_svg
 
 SVG = "{http://www.w3.org/2000/svg}"
@@ -57,6 +59,48 @@ def test_a_name_lies_along_the_piece_and_within_it(size, upright):
     assert float(name.get("font-size")) == pytest.approx(90.0 / (0.62 * 23 + 0.6), abs=0.01)
     turned = [g for g in root.iter(f"{SVG}g") if "rotate" in (g.get("transform") or "")]
     assert bool(turned) is upright
+
+
+ELL = np.array([[500.0, 300], [700, 300], [700, 330], [530, 330], [530, 480], [500, 480]])
+"""An angle with legs 30 mm wide, drawn far from its origin: most of its box is no material."""
+
+
+def names_in_the_picture(layout, part):
+    """Middles of the names on the picture to print, sheet coordinates; upright ones are turned about theirs."""
+    root = ElementTree.fromstring(sheet_svg(layout, 1, {part.name: part}, margin_mm=0.0))
+    for group in (root, *root.iter(f"{SVG}g")):
+        _, _, about = (group.get("transform") or "").partition("rotate(-90 ")
+        for text in group.findall(f"{SVG}text"):
+            if (text.text or "").partition(": ")[2].startswith("ell "):
+                third = float(text.get("font-size")) / 3.0
+                x, y = map(float, about.rstrip(")").split()) if about else (text.get("x"), float(text.get("y")) - third)
+                yield float(x), -float(y)
+
+
+def names_on_the_page(layout, part):
+    """The same of the picture on the page."""
+    root = ElementTree.fromstring(sheet_figure(layout, {part.name: Shape("shape-1", 1, part)}))
+    for group in root.iter():
+        if group.get("data-part") == "ell":
+            (text,) = [t for t in group if t.tag.endswith("text")]
+            yield float(text.get("x")), float(text.get("font-size")) / 3.0 - float(text.get("y"))
+
+
+@pytest.mark.parametrize("names", [names_in_the_picture, names_on_the_page])
+def test_names_stand_on_their_pieces_however_they_lie(names):
+    part = Part("ell", Contour(np.column_stack([ELL, np.zeros(len(ELL))])))
+    lying = [(0.0, False), (0.0, True), (90.0, False), (90.0, True), (215.0, True), (0.0, True)]
+    places = []
+    for k, (turn, mirrored) in enumerate(lying):
+        there = Placement("ell", k + 1, turn, mirrored, 0.0, 0.0).motion.points(ELL)
+        dx, dy = np.array([20.0 + 300.0 * (k % 3), 20.0 + 300.0 * (k // 3)]) - there.min(axis=0)
+        places.append(Placement("ell", k + 1, turn, mirrored, float(dx), float(dy)))
+    outline = np.array([[0.0, 0], [900, 0], [900, 600], [0, 600]])
+    layout = SheetLayout("al3", "al", 3.0, outline, (), 900.0, 0.1, tuple(places))
+    found = list(names(layout, part))
+    regions = [Polygon(p.motion.points(ELL)) for p in places]
+    on = [[k for k, region in enumerate(regions) if region.covers(Point(at))] for at in found]
+    assert sorted(on) == [[k] for k in range(len(places))]
 
 
 def test_the_picture_is_white_to_its_edges():
