@@ -84,8 +84,23 @@ def edges_cross(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
 
 
 @bare
-def overlap(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
-    """Tell whether variant b, its origin (dx, dy) mm from that of variant a, shares material with it; exact."""
+def a_point_of(outlines: Outlines, v: int) -> tuple[float, float]:
+    """Return a point of a variant's material (mm): within it, or a corner where it is too thin for a circle."""
+    pole = outlines.pole_at[v, 0]
+    if outlines.pole[pole, 2] > 0.0:
+        return outlines.pole[pole, 0], outlines.pole[pole, 1]
+    corner = outlines.rings.at[v, 0]
+    return outlines.rings.edge[corner, 0], outlines.rings.edge[corner, 1]
+
+
+@bare
+def overlap(outlines: Outlines, a: int, b: int, dx: float, dy: float) -> bool:
+    """Tell whether variant b, its origin (dx, dy) mm from that of variant a, shares material with it; exact.
+
+    Where no edges cross, one lies within the other or they are free: a point of each tells, and not one of its
+    border, which may lie on the other's.
+    """
+    rings = outlines.rings
     if (
         rings.box[a, 2] <= rings.box[b, 0] + dx
         or rings.box[b, 2] + dx <= rings.box[a, 0]
@@ -95,11 +110,11 @@ def overlap(rings: Rings, a: int, b: int, dx: float, dy: float) -> bool:
         return False
     if edges_cross(rings, a, b, dx, dy):
         return True
-    at_a = rings.at[a, 0]
-    at_b = rings.at[b, 0]
-    if is_inside(rings, a, rings.edge[at_b, 0] + dx, rings.edge[at_b, 1] + dy):
+    x, y = a_point_of(outlines, b)
+    if is_inside(rings, a, x + dx, y + dy):
         return True
-    return is_inside(rings, b, rings.edge[at_a, 0] - dx, rings.edge[at_a, 1] - dy)
+    x, y = a_point_of(outlines, a)
+    return is_inside(rings, b, x - dx, y - dy)
 
 
 @bare

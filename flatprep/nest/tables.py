@@ -126,7 +126,7 @@ def fill_separation(outlines: Outlines, tables: Tables, t: int, i: int, j: int) 
     a, b = tables.pair[t, 0], tables.pair[t, 1]
     dx, dy = node_offset(outlines, tables, t, i, j)
     needed = FURTHEST * math.hypot(tables.cell[t, 0], tables.cell[t, 1])
-    if overlap(outlines.rings, a, b, dx, dy):
+    if overlap(outlines, a, b, dx, dy):
         apart = -depth(outlines, a, b, dx, dy)
         if apart > -needed:
             apart = min(apart, -gap(outlines.rings, a, b, dx, dy, needed))
@@ -151,7 +151,7 @@ def pair_loss(outlines: Outlines, tables: Tables, a: int, b: int, dx: float, dy:
     """Loss (mm²) of variant b, its origin (dx, dy) mm from that of variant a: 0 just where they do not overlap."""
     t = tables.of[a, b]
     if t == 0:
-        return collision_loss(outlines, a, b, dx, dy) if overlap(outlines.rings, a, b, dx, dy) else 0.0
+        return collision_loss(outlines, a, b, dx, dy) if overlap(outlines, a, b, dx, dy) else 0.0
     if t < 0:
         a, b, dx, dy, t = b, a, -dx, -dy, -t
     t -= 1
@@ -169,7 +169,7 @@ def pair_loss(outlines: Outlines, tables: Tables, a: int, b: int, dx: float, dy:
     off = math.sqrt((u - i) * (u - i) * wide * wide + (w - j) * (w - j) * tall * tall) + ROUNDING * wide
     if apart > off:
         return 0.0
-    if apart >= -off and not overlap(outlines.rings, a, b, dx, dy):
+    if apart >= -off and not overlap(outlines, a, b, dx, dy):
         return 0.0
     i, j = int(u), int(w)
     u, w = u - i, w - j
