@@ -6,6 +6,7 @@ on a further sheet that does not count: the search empties it if it can.
 
 from collections import Counter
 from collections.abc import Callable, Sequence
+from contextlib import suppress
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -18,6 +19,7 @@ from flatprep.nest.firstfit import Answer, answer_of
 from flatprep.nest.group import Group
 from flatprep.nest.search import search, sheets_task
 from flatprep.nest.shapes import Best, Container, Place, Shape
+from flatprep.nest.solo import StartOverlapsError
 
 Turns = tuple[float, ...] | None
 SAME_MM = 1e-6
@@ -68,7 +70,7 @@ def improve(answer: Answer, margin_mm: float, effort: Effort, found: Callable[[A
     Parameters
     ----------
     answer
-        Its places are free of overlap.
+        Its places are free of overlap; it stays as it is where the search, on its slightly larger outlines, sees one.
     effort
         Shared out over the classes of sheets, if there are several.
     found
@@ -84,7 +86,8 @@ def improve(answer: Answer, margin_mm: float, effort: Effort, found: Callable[[A
         task = sheets_task(portion.shapes, portion.containers, portion.start)
         track = _Track(current, portion, margin_mm, found)
         clock = clock_share(effort.clock, 1.0 / (len(classes) - number))
-        search(task, clock, effort.seed, track, effort.jobs)
+        with suppress(StartOverlapsError):  # it may be sound on the true shapes, which are smaller: then it is kept
+            search(task, clock, effort.seed, track, effort.jobs)
         effort.clock.spend(clock.evaluations)
         current = track.best
 

@@ -35,7 +35,7 @@ def search(task: Task, clock: Clock, seed: int, report: Callable[[Best], None], 
 
     Raises
     ------
-    ValueError
+    StartOverlapsError
         The task's layout to begin with overlaps.
     """
     shown = [task.start]

@@ -13,6 +13,10 @@ from flatprep.nest.task import Task
 Exchange = Callable[[Spots], Spots]
 
 
+class StartOverlapsError(ValueError):
+    """The layout to begin with overlaps, as the search sees its outlines."""
+
+
 def alone(best: Spots) -> Spots:
     """Exchange with nobody."""
     return best
@@ -30,11 +34,10 @@ def run(task: Task, clock: Clock, seed: int, found: Callable[[Spots], None], exc
 
     Raises
     ------
-    ValueError
-        The layout to begin with overlaps.
+    StartOverlapsError
     """
     rng = np.random.default_rng(seed)
     engine = Engine(task.outlines, task.free, task.field, task.start, clock, rng)
     if not engine.is_free():
-        raise ValueError("the layout to begin with overlaps")
+        raise StartOverlapsError("the layout to begin with overlaps")
     return Squeeze(engine, task.start, Bounds.of(engine, task.area_mm2), found, exchange).run()

@@ -239,13 +239,20 @@ def past(trap: Floats, a: Span, b: Span, across: float, along: float) -> float:
 
 @kernel
 def back(trap: Floats, a: Span, b: Span, across: float, along: float) -> float:
-    """Least offset that outline b slides back to, free at `along`, before it meets outline a; -inf if it never does."""
+    """Least offset that outline b slides back to, free at `along`, before it meets outline a; -inf if it never does.
+
+    It stays where it is when it seems to be inside: a contact along the other axis that is good to `THIN_MM` may be
+    deeper than that along this one, on a steep edge.
+    """
     stop = -np.inf
     for j in range(b[0], b[1]):
         for i in range(a[0], a[1]):
             if trap[i, 0] >= trap[j, 1] + across:
                 break
-            last = forbidden(trap, i, j, across)[1]
-            if stop < last <= along + 2.0 * THIN_MM:
+            first, last = forbidden(trap, i, j, across)
+            if last > along + 2.0 * THIN_MM:
+                if first < along - 2.0 * THIN_MM:
+                    return along
+            elif last > stop:
                 stop = last
     return stop

@@ -2,10 +2,10 @@
 
 import numpy as np
 import pytest
-from hypothesis import given, settings
+from hypothesis import example, given, settings
 from hypothesis import strategies as st
 from shapely import STRtree
-from shapely.geometry import Polygon
+from shapely.geometry import MultiPoint, Polygon
 
 from flatprep.geom.bulge import Similarity
 from flatprep.nest.construct import MOST_TURNS, Bin, Layer, few_turns, least_box_turn
@@ -114,6 +114,29 @@ def test_random_stars_never_overlap(seed):
     laid = Layer(shapes, [bin_of(shapes, 900.0, 200.0)]).lay(all_of(shapes), [0])
     assert sum(laid.left_out) == 0
     assert_sound(laid, shapes, 900.0, 200.0)
+
+
+def leaning(rng, lean_deg):
+    """A convex piece with a long flat, drawn level, or leaning a little to either side."""
+    corners = int(rng.integers(6, 40))
+    size = rng.uniform(20.0, 60.0)
+    angle, reach = rng.uniform(0.0, 2.0 * np.pi, corners), size * rng.uniform(0.85, 1.15, corners)
+    points = np.column_stack([np.minimum(reach * np.cos(angle), 0.5 * size), reach * np.sin(angle)])
+    ring = np.asarray(MultiPoint(points).convex_hull.exterior.coords)[:-1][::-1]
+    return Similarity(turn_deg=lean_deg * rng.choice([0.0, 1.0, -1.0])).points(ring)
+
+
+@given(st.integers(0, 100_000))
+@example(50)  # these overlapped by up to some square millimetres
+@example(84)
+@example(153)
+def test_pieces_that_lean_a_little_never_slide_through_each_other(seed):
+    """Down a steep edge and then left: a contact good to a hair in height is deep along the level."""
+    rng = np.random.default_rng(seed)
+    lean_deg = rng.uniform(1e-4, 1.0)
+    shapes = [Shape(leaning(rng, lean_deg), turns_deg=None, count=6) for _ in range(3)]
+    laid = Layer(shapes, [bin_of(shapes, 400.0, 400.0)], coarse=False).lay(all_of(shapes), [0])
+    assert_sound(laid, shapes, 400.0, 400.0)
 
 
 def test_least_box_of_a_turned_rectangle_is_found():

@@ -8,6 +8,7 @@ from flatprep.nest.clock import Clock
 from flatprep.nest.construct import Layer
 from flatprep.nest.firstfit import first_answers
 from flatprep.nest.group import prepare_group
+from flatprep.nest.improve import Effort, improve
 from flatprep.nest.keep import left_to_lay
 from flatprep.nest.problem import Budget
 from flatprep.nest.refill import refill, worth_refilling
@@ -47,6 +48,16 @@ def test_piece_that_waits_is_laid_when_sheets_are_filled_better():
     found = []
     refill(start, 0.0, Clock(steps=400), 1, found.append)
     assert found[-1].unplaced == ()
+
+
+def test_an_answer_that_the_search_takes_for_overlapping_is_kept():
+    """Its outlines are a little larger than the parts: what is sound on these must not be lost."""
+    start = first(bars([sheet(200.0, 100.0, count=None)]))
+    second = max((p for p in start.places if p.container == 0), key=lambda p: p.x)
+    places = tuple(replace(p, x=p.x - 1e-5) if p is second else p for p in start.places)
+    found = []
+    improve(replace(start, places=places), 0.0, Effort(Clock(steps=5), 1, 1), found.append)
+    assert found == []
 
 
 def test_nest_as_a_whole_finds_the_two_sheets():

@@ -54,6 +54,15 @@ def test_square_slides_past_a_square_until_they_touch():
     assert past(cuts.row, one, one, 5.0, -9.9) == pytest.approx(10.0)
 
 
+@pytest.mark.parametrize("deep", [1e-7, 3e-5, 0.1])
+def test_what_seems_to_be_inside_stays_where_it_is(deep):
+    """After a slide down a steep edge a piece may seem so deep in it: it must not slide on, out on the other side."""
+    cuts = cut_up([[SQUARE]])
+    one = span(cuts.row_at, 0)
+    assert back(cuts.row, one, one, 5.0, 10.0 - deep) == 10.0 - deep
+    assert back(cuts.row, one, one, 5.0, -10.0) == -np.inf  # it touches on the left: nothing is in the way
+
+
 def test_square_finds_the_window_of_a_frame():
     cuts = cut_up([FRAME, [SQUARE]])
     frame, square = span(cuts.row_at, 0), span(cuts.row_at, 1)
