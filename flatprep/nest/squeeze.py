@@ -2,11 +2,10 @@
 
 from collections.abc import Callable
 
-import numpy as np
-
 from flatprep.nest.board import put
 from flatprep.nest.bounds import Bounds
 from flatprep.nest.engine import Engine, Spots, Turning
+from flatprep.nest.rearrange import rearrange
 from flatprep.nest.spots import any_spot, clamp, fits
 
 ROAM_SHARE = 0.8
@@ -55,27 +54,6 @@ def lack(engine: Engine, k: int, v: int) -> float:
     """By how much variant v is too long or too wide for rectangle k, mm."""
     box, rect = engine.outlines.rings.box[v], engine.board.rect[k]
     return float(max(box[2] - box[0] - (rect[2] - rect[0]), box[3] - box[1] - (rect[3] - rect[1])))
-
-
-def swap_two(engine: Engine) -> None:
-    """Let two large pieces of different shapes change places, each in any of its variants."""
-    board, o, rng = engine.board, engine.outlines, engine.rng
-    n = int(board.movable[0])
-    shape = o.shape[board.variant[:n]]
-    large = np.argsort(-o.size[shape, 0], kind="stable")[: max(2, (n + 1) // 2)]
-    i = int(rng.choice(large))
-    others = large[shape[large] != shape[i]]
-    if len(others) == 0:
-        return
-    j = int(rng.choice(others))
-    middle = [(0.5 * (board.left[k] + board.right[k]), 0.5 * (board.low[k] + board.high[k])) for k in (i, j)]
-    homes = int(board.home[i]), int(board.home[j])
-    for k, (x, y), home in ((i, middle[1], homes[1]), (j, middle[0], homes[0])):
-        v = int(o.first[shape[k]] + rng.integers(board.usable[shape[k]]))
-        if fits(o, board, home, v):
-            board.home[k] = home
-            box = o.rings.box[v]
-            put(o, board, k, v, *clamp(o, board, home, v, x - 0.5 * (box[0] + box[2]), y - 0.5 * (box[1] + box[3])))
 
 
 class Squeeze:
@@ -146,11 +124,11 @@ class Squeeze:
         least = self._bounds.least_mm(self.best.rects)
         return self.engine.time_left and self.best.length_mm > least + NOTHING_MM
 
-    def _swap_from_shelf(self, shelf: list[Spots]) -> None:
-        """Lay a failed layout from near the top of the shelf, with two pieces changed over."""
+    def _rearrange_from_shelf(self, shelf: list[Spots]) -> None:
+        """Lay a failed layout from near the top of the shelf, changed about."""
         pick = int(min(abs(self.engine.rng.normal(0.0, 0.25)), 0.999) * len(shelf))
         self.engine.lay(shelf[pick])
-        swap_two(self.engine)
+        rearrange(self.engine)
 
     def roam(self, step: float) -> None:
         """Shorten by steps that halve with each failure; at the least step, change failed layouts about."""
@@ -161,7 +139,7 @@ class Squeeze:
             if other is not self.best:
                 self.best, shelf = other, []
             if shelf:
-                self._swap_from_shelf(shelf)
+                self._rearrange_from_shelf(shelf)
             else:
                 engine.lay(self.best)
                 shorten(engine, *self._shorter(step))

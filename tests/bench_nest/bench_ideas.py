@@ -19,7 +19,7 @@ from pathlib import Path
 import numpy as np
 
 from flatprep.geom.bulge import Floats
-from flatprep.nest import engine, moves, squeeze
+from flatprep.nest import engine, moves, rearrange, squeeze
 from flatprep.nest._jit import bare
 from flatprep.nest.board import Ground
 from flatprep.nest.clock import Clock
@@ -43,7 +43,7 @@ def no_snap(_ground: Ground, _i: int, _kept: Floats, _row: int, _contacts: Conta
     return 0
 
 
-def no_swap(_engine: Engine) -> None:
+def no_rearranging(_engine: Engine) -> None:
     """Leave the pieces where they are."""
 
 
@@ -59,8 +59,12 @@ def without_corners() -> None:
     moves.CORNER_SAMPLES = 0
 
 
-def without_swaps() -> None:
-    squeeze.swap_two = no_swap
+def without_rearranging() -> None:
+    squeeze.rearrange = no_rearranging
+
+
+def without_neighbourhoods() -> None:
+    rearrange.NEAR_SHARE = 0.0
 
 
 LEAVE_OUT: dict[str, Callable[[], None]] = {
@@ -68,7 +72,8 @@ LEAVE_OUT: dict[str, Callable[[], None]] = {
     "tables": without_tables,
     "contacts": without_contacts,
     "corners": without_corners,
-    "swaps": without_swaps,
+    "neighbourhoods": without_neighbourhoods,
+    "rearranging": without_rearranging,
 }
 
 

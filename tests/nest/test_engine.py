@@ -6,9 +6,10 @@ import pytest
 from flatprep.nest.bounds import Bounds
 from flatprep.nest.clock import Clock
 from flatprep.nest.engine import Engine, Turning
+from flatprep.nest.rearrange import rearrange
 from flatprep.nest.search import sheets_task, strip_task
 from flatprep.nest.shapes import Container, Place, Shape
-from flatprep.nest.squeeze import lack, send_elsewhere, shorten, swap_two
+from flatprep.nest.squeeze import lack, send_elsewhere, shorten
 from tests.nest.outlines import ELBOW, QUARTERS, SQUARE, WEDGE
 
 
@@ -50,7 +51,7 @@ def test_untangling_ends_without_overlap_and_lays_its_best_again():
     assert engine.is_free()
     kept = engine.spots()
     assert kept.length_mm == pytest.approx(engine.reach_mm)
-    swap_two(engine)
+    rearrange(engine)
     engine.lay(kept)
     again = engine.spots()
     assert np.array_equal(again.at, kept.at)
