@@ -132,16 +132,20 @@ def _largest_of_raster(free: npt.NDArray[np.bool_]) -> tuple[int, int, int, int]
     """First row and column, last row and column of the largest all-true rectangle."""
     best, found = 0, None
     heights = np.zeros(free.shape[1], dtype=np.int64)
+    goes_on = np.vstack([~free[:-1] | free[1:], ~free[-1:]]).all(axis=1)  # then each of its rectangles does
     for row in range(free.shape[0]):
         heights = np.where(free[row], heights + 1, 0)
-        height, stack = [*heights.tolist(), 0], list[int]()
-        for column, now in enumerate(height):
-            while stack and height[stack[-1]] >= now:
-                tall = height[stack.pop()]
-                first = stack[-1] + 1 if stack else 0
+        if goes_on[row]:
+            continue
+        runs = np.flatnonzero(np.diff(heights, prepend=-1))
+        stack = list[tuple[int, int]]()
+        for column, now in zip([*runs.tolist(), len(heights)], [*heights[runs].tolist(), 0], strict=True):
+            first = column
+            while stack and stack[-1][1] >= now:
+                first, tall = stack.pop()
                 if tall * (column - first) > best:
                     best, found = tall * (column - first), (row - tall + 1, first, row, column - 1)
-            stack.append(column)
+            stack.append((first, now))
     return found
 
 
@@ -151,11 +155,11 @@ def _widened(
     """Box whose sides are moved out, one after the other, as far as the region lets them, a cell at the most."""
     sides = list(box)
     for side, way in ((2, 1.0), (3, 1.0), (0, -1.0), (1, -1.0)):
-        low, high = 0.0, step
-        for _ in range(16):
-            middle = (low + high) / 2.0
-            tried = sides.copy()
-            tried[side] += way * middle
-            low, high = (middle, high) if region.covers(shapely.box(*tried)) else (low, middle)
+        low, part = 0.0, step
+        for _ in range(4):
+            part /= 16
+            tried = np.tile(sides, (15, 1))
+            tried[:, side] += way * (low + part * np.arange(1, 16))
+            low += part * float(np.logical_and.accumulate(shapely.covers(region, shapely.box(*tried.T))).sum())
         sides[side] += way * low
     return sides[0], sides[1], sides[2], sides[3]

@@ -4,6 +4,7 @@ from dataclasses import dataclass
 from functools import lru_cache
 from typing import NamedTuple
 
+import numpy as np
 import shapely
 from shapely.geometry import LineString, Polygon
 
@@ -74,26 +75,20 @@ def spot_on_material(region: Polygon, letters: int, most: float) -> Spot | None:
     x0, y0, x1, y1 = shape.bounds
     levels = [y0 + share * (y1 - y0) for share in _HEIGHTS]
     across = shapely.linestrings([[(x0 - 1.0, y), (x1 + 1.0, y)] for y in levels])
-    runs = shapely.get_parts(shapely.intersection(shape, across))
-    spots = [_within(run.bounds, letters, most) for run in runs if run.length > 0.0]
+    runs = shapely.bounds(shapely.get_parts(shapely.intersection(shape, across)))
+    left, y, right, _ = runs[runs[:, 2] > runs[:, 0]].T
+    size = np.minimum(most, (right - left) / (WIDE * letters + _ROOM))
+    x, half = (left + right) / 2.0, WIDE * letters * size / 2.0
     shapely.prepare(shape)
-    free = [spot for spot in spots if shape.covers(_box(spot, letters))]
-    return max(free, key=lambda spot: spot.size, default=None)
-
-
-def _within(run: tuple[float, float, float, float], letters: int, most: float) -> Spot:
-    """Return the middle of a level run, with letters as large as it has room for."""
-    x0, y, x1, _ = run
-    return Spot((x0 + x1) / 2.0, y, _letter(x1 - x0, letters, most))
+    free = shapely.covers(shape, shapely.box(x - half, y - size / 2.0, x + half, y + size / 2.0))
+    if not free.any():
+        return None
+    best = int(np.argmax(np.where(free, size, 0.0)))
+    return Spot(float(x[best]), float(y[best]), float(size[best]))
 
 
 def _letter(across: float, letters: int, most: float) -> float:
     return min(most, across / (WIDE * letters + _ROOM))
-
-
-def _box(spot: Spot, letters: int) -> Polygon:
-    half = WIDE * letters * spot.size / 2.0
-    return shapely.box(spot.x - half, spot.y - spot.size / 2.0, spot.x + half, spot.y + spot.size / 2.0)
 
 
 def spot_anywhere(region: Polygon, letters: int, most: float) -> Spot:

@@ -194,7 +194,8 @@ def _name(page: svgwrite.Drawing, part: Part, placement: Placement, turn: int, e
     """Turn of cutting and name on a piece, level or upright, where it is larger; across its holes where it must."""
     words = f"{turn}: {placement.part} {placement.copy}"
     lying = Lying(part, placement.turn_deg, placement.mirrored)
-    along, up = (_spot(way, len(words), em) for way in (lying, lying._replace(upright=True)))
+    along = _spot(lying, len(words), em)
+    up = _spot(lying._replace(upright=True), len(words), em) if along.size < em else along
     spot = along if along.size >= up.size else Spot(up.y, up.x, up.size)
     x, y = placement.dx + spot.x, placement.dy + spot.y
     onto = page if along.size >= up.size else page.g(transform=f"rotate(-90 {x:.3f} {-y:.3f})")

@@ -12,7 +12,7 @@ from shapely.geometry import Point, Polygon
 
 from flatprep.drawing.write import border_drawing
 from flatprep.model.layout import Placement, SheetLayout
-from flatprep.nest.offcut import offcut_of
+from flatprep.nest.offcut import _largest_of_raster, offcut_of
 from tests.nest.parts import disc, polygon, rectangle, ring
 
 OUTLINE = np.array([[0.0, 0], [600, 0], [600, 400], [0, 400]])
@@ -118,3 +118,21 @@ def test_a_screw_leaves_a_hole_in_the_rest_a_clamp_does_not():
     screwed = offcut_of(sheet(), {}, 0.0, keep_out=((500.0, 200.0, 10.0), (0.0, 0.0, 40.0, 40.0)))
     assert screwed.rectangle == pytest.approx((0.0, 0.0, 490.0, 400.0), abs=0.2)
     assert Polygon(screwed.outline, screwed.holes).distance(Point(500.0, 200.0)) >= 10.0 - 1e-9
+
+
+@settings(max_examples=200, deadline=None)
+@given(st.lists(st.lists(st.booleans(), min_size=5, max_size=5), min_size=1, max_size=6))
+def test_the_largest_rectangle_of_a_raster_is_the_largest_of_all(rows):
+    free = np.array(rows)
+    tall, wide = free.shape
+    spans = [
+        (r0, c0, r1, c1) for r0 in range(tall) for r1 in range(r0, tall) for c0 in range(wide) for c1 in range(c0, wide)
+    ]
+    all_free = [(r1 - r0 + 1) * (c1 - c0 + 1) for r0, c0, r1, c1 in spans if free[r0 : r1 + 1, c0 : c1 + 1].all()]
+    found = _largest_of_raster(free)
+    if not all_free:
+        assert found is None
+        return
+    r0, c0, r1, c1 = found
+    assert free[r0 : r1 + 1, c0 : c1 + 1].all()
+    assert (r1 - r0 + 1) * (c1 - c0 + 1) == max(all_free)
