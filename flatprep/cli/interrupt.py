@@ -1,11 +1,15 @@
 """Interruptions (SIGINT, SIGTERM): work ends at once while there is nothing to keep, then with the best it has."""
 
 import signal
+import sys
+import threading
 from collections.abc import Iterator
 from contextlib import contextmanager
 from types import FrameType
 
 _ASKS = (signal.SIGINT, signal.SIGTERM)
+_AGAIN_S = 0.05
+"""How soon to ask again where the exception was lost."""
 
 
 class Stop:
@@ -17,7 +21,7 @@ class Stop:
 
     def __init__(self) -> None:
         self.signal: int | None = None
-        self._keeping = False
+        self._keeping = self._lost = False
 
     def __call__(self) -> bool:
         """Whether to end."""
@@ -29,9 +33,28 @@ class Stop:
 
     def ask(self, number: int, _frame: FrameType | None) -> None:
         """Take a signal; noted first, for an exception may be lost in what runs just then."""
-        again, self.signal = self.signal is not None, number
+        again, self.signal = self.signal is not None and not self._lost, number
+        self._lost = False
         if again or not self._keeping:
             raise KeyboardInterrupt(number)
+
+    def ask_again(self, what: "sys.UnraisableHookArgs") -> None:
+        """Take note that a library has swallowed the exception, in a callback of its own, and ask again in a moment."""
+        if self.signal is None or not isinstance(what.exc_value, KeyboardInterrupt):
+            sys.__unraisablehook__(what)
+            return
+        self._lost = True
+        later = threading.Timer(_AGAIN_S, self._raise_again)
+        later.daemon = True
+        later.start()
+
+    def _raise_again(self) -> None:
+        if self._lost and self.signal is not None:
+            signal.raise_signal(self.signal)
+
+    def end(self) -> None:
+        """Ask no more: the work has ended."""
+        self._lost = False
 
     @property
     def exit_status(self) -> int:
@@ -60,8 +83,11 @@ def stoppable() -> Iterator[Stop]:
     """Turn SIGINT and SIGTERM into `Stop` while the work goes on."""
     stop = Stop()
     before = {number: signal.signal(number, stop.ask) for number in _ASKS}
+    hook, sys.unraisablehook = sys.unraisablehook, stop.ask_again
     try:
         yield stop
     finally:
+        stop.end()
+        sys.unraisablehook = hook
         for number, handler in before.items():
             signal.signal(number, handler)

@@ -132,7 +132,8 @@ def _largest_of_raster(free: npt.NDArray[np.bool_]) -> tuple[int, int, int, int]
     """First row and column, last row and column of the largest all-true rectangle."""
     best, found = 0, None
     heights = np.zeros(free.shape[1], dtype=np.int64)
-    goes_on = np.vstack([~free[:-1] | free[1:], ~free[-1:]]).all(axis=1)  # then each of its rectangles does
+    more = np.vstack([free[1:], np.zeros_like(free[:1])])
+    goes_on: list[bool] = np.all(more | ~free, axis=1).tolist()  # with it each of its rectangles
     for row in range(free.shape[0]):
         heights = np.where(free[row], heights + 1, 0)
         if goes_on[row]:

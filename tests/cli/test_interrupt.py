@@ -1,5 +1,6 @@
 """Runs that are interrupted: what they have is written whole, what they have not leaves the folder as it was."""
 
+import ctypes
 import json
 import signal
 import subprocess
@@ -84,3 +85,52 @@ def test_handlers_come_back():
     with stoppable() as stop:
         assert signal.getsignal(signal.SIGINT) == stop.ask
     assert signal.getsignal(signal.SIGINT) == before
+
+
+def in_a_callback(work):
+    """Do something within a callback of a C library, which swallows exceptions."""
+    many = ctypes.c_int * 2
+    order = ctypes.CFUNCTYPE(ctypes.c_int, ctypes.c_void_p, ctypes.c_void_p)
+
+    def compare(_one, _other):
+        work()
+        return 0
+
+    ctypes.CDLL(None).qsort(many(1, 2), 2, ctypes.sizeof(ctypes.c_int), order(compare))
+
+
+def wait_for_ever():
+    in_a_callback(lambda: signal.raise_signal(signal.SIGTERM))
+    for _ in range(500):
+        time.sleep(0.01)
+
+
+def test_an_interruption_that_a_library_swallows_is_asked_again_and_shows_nothing(capfd):
+    began = time.monotonic()
+    with stoppable() as stop:
+        with pytest.raises(KeyboardInterrupt) as met:
+            wait_for_ever()
+        assert met.value.args == (signal.SIGTERM,)
+        assert stop()
+    assert time.monotonic() < began + 2.0
+    assert capfd.readouterr().err == ""
+
+
+def test_what_there_is_by_then_is_kept(capfd):
+    with stoppable() as stop:
+        in_a_callback(lambda: signal.raise_signal(signal.SIGINT))
+        stop.keep(None)
+        time.sleep(0.3)
+        assert stop()
+        with pytest.raises(KeyboardInterrupt):
+            signal.raise_signal(signal.SIGINT)
+    assert capfd.readouterr().err == ""
+
+
+def test_what_else_a_library_swallows_is_shown(capfd):
+    def fail():
+        raise ValueError("something else")
+
+    with stoppable():
+        in_a_callback(fail)
+    assert "something else" in capfd.readouterr().err
