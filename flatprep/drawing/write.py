@@ -6,6 +6,7 @@ layout gives the same bytes: no times and no random ids are written.
 """
 
 import io
+import re
 from collections.abc import Iterable, Mapping, Sequence
 from functools import lru_cache
 
@@ -14,6 +15,7 @@ from ezdxf._options import options
 from ezdxf.document import Drawing as Document
 from ezdxf.enums import TextEntityAlignment
 from ezdxf.lldxf.const import DXF12
+from ezdxf.lldxf.tagwriter import TagWriter
 from ezdxf.version import __version__ as ezdxf_version
 
 from flatprep.drawing.forms import USUAL, SheetForm
@@ -35,6 +37,9 @@ STYLES: Mapping[str, tuple[float, ...]] = {
 }
 """Line styles as DXF patterns: total length, then dashes and gaps, mm."""
 STYLE_OF = {CUT: "CONTINUOUS", MARK: "FP_DASH", BEND: "FP_DASHDOT", SHEET: "FP_DASHDOT", NOTE: "FP_DOT"}
+_ALWAYS_THERE = ("0", "Defpoints")
+"""Layers that ezdxf adds."""
+_NO_ENTITIES = "  0\nSECTION\n  2\nENTITIES\n  0\nENDSEC\n"
 MM_CODE = 4
 """$INSUNITS of millimetres."""
 LEAST_TEXT_MM, MOST_TEXT_MM, TEXT_SHARE = 1.5, 10.0, 0.12
@@ -182,6 +187,7 @@ def _document(layers: Iterable[str], version: str = USUAL.version) -> Document:
         doc.linetypes.add(name, pattern=list(pattern), description=name)
     for name in layers:
         doc.layers.add(name, color=GREY, linetype=STYLE_OF[name])
+    doc.update_all()  # else handles are given out again when it is written
     return doc
 
 
@@ -235,7 +241,28 @@ def _text(doc: Document, words: str, at: tuple[float, float], height: float, *, 
 
 
 def _written(doc: Document) -> str:
-    """Text of the document with a fixed date, no random ids, and nothing in the order of a set."""
+    """Text of a document of `_document`: what is drawn, between what all documents with these layers have in common.
+
+    The latter, for which ezdxf takes most of its time, holds nothing of the entities but the first free handle.
+    """
+    layers = tuple(str(layer.dxf.name) for layer in doc.layers if layer.dxf.name not in _ALWAYS_THERE)
+    before, between, after = _around(layers, doc.dxfversion)
+    stream = io.StringIO()
+    handles = doc.dxfversion > DXF12 or bool(doc.header.get("$HANDLING", 0))
+    doc.entities.export_dxf(TagWriter(stream, dxfversion=doc.dxfversion, write_handles=handles))
+    return f"{before}{doc.entitydb.handles}{between}{stream.getvalue()}{after}"
+
+
+@lru_cache(maxsize=64)
+def _around(layers: tuple[str, ...], version: str) -> tuple[str, str, str]:
+    """Text of an empty document before its first free handle, from there to the entities, and after these."""
+    head, after = _whole(_document(layers, version)).split(_NO_ENTITIES)
+    before, between = re.split(r"(?<=\$HANDSEED\n  5\n)[0-9A-F]+", head)
+    return before, between, after
+
+
+def _whole(doc: Document) -> str:
+    """Text of a document as ezdxf writes it: with a fixed date, no random ids, and nothing in the order of a set."""
     doc.classes.add_required_classes(doc.dxfversion)
     doc.classes.classes = dict(sorted(doc.classes.classes.items()))
     stream = io.StringIO()

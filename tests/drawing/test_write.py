@@ -8,6 +8,7 @@ import numpy as np
 import pytest
 from ezdxf.math import bulge_to_arc
 
+from flatprep.drawing import write
 from flatprep.drawing.words import Words
 from flatprep.drawing.write import border_drawing, part_drawing, sheet_drawing
 from flatprep.geom.bulge import circle, reverse
@@ -117,3 +118,22 @@ def test_classes_stand_in_an_order_that_no_hash_seed_changes():
     names = re.findall(r"^ *0\nCLASS\n *1\n(.*)$", section, re.MULTILINE)
     assert len(names) > 10
     assert names == sorted(names)
+
+
+@pytest.mark.parametrize(
+    ("layers", "version"), [(("CUT", "MARK", "SHEET", "NOTE"), "R2010"), (("CUT",), "R2010"), (("CUT",), "R12")]
+)
+@pytest.mark.parametrize("many", [0, 1, 300])
+def test_what_all_documents_have_in_common_is_as_ezdxf_writes_it(layers, version, many):
+    def document():
+        doc = write._document(layers, version)
+        for k in range(many):
+            write._polyline(doc, "CUT", PLATE + float(k), closed=True)
+            doc.modelspace().add_text(f"Hacke ü {k}", dxfattribs={"layer": layers[-1]})
+            doc.modelspace().add_circle((k, 0.0), 1.0)
+        return doc
+
+    text = write._written(document())
+    assert text == write._whole(document())
+    handles = re.findall(r"\n  5\n([0-9A-F]+)\n", text.partition("$HANDSEED")[2])
+    assert len(set(handles)) == len(handles)  # the seed, which is free, among them
