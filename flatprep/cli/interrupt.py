@@ -5,11 +5,13 @@ import sys
 import threading
 from collections.abc import Iterator
 from contextlib import contextmanager
-from types import FrameType
+from types import FrameType, TracebackType
 
 _ASKS = (signal.SIGINT, signal.SIGTERM)
 _AGAIN_S = 0.05
 """How soon to ask again where the exception was lost."""
+_raised: list[int] = []
+"""Signals answered by an exception that has not come to an end yet: a library may make another error of it."""
 
 
 class Stop:
@@ -36,7 +38,7 @@ class Stop:
         again, self.signal = self.signal is not None and not self._lost, number
         self._lost = False
         if again or not self._keeping:
-            raise KeyboardInterrupt(number)
+            end_at_once(number)
 
     def ask_again(self, what: "sys.UnraisableHookArgs") -> None:
         """Take note that a library has swallowed the exception, in a callback of its own, and ask again in a moment."""
@@ -67,15 +69,29 @@ def status_of(number: int) -> int:
     return 128 + number
 
 
-def end_at_once(number: int, _frame: FrameType | None) -> None:
+def end_at_once(number: int, _frame: FrameType | None = None) -> None:
     """Answer a signal by `KeyboardInterrupt`, so that workers are stopped and files cleared away on the way out."""
+    _raised.append(number)
     raise KeyboardInterrupt(number)
 
 
+def ended_by() -> int | None:
+    """Return the signal that work has just been ended by, whatever error came of it; None where there was none."""
+    number = _raised[-1] if _raised else None
+    _raised.clear()
+    return number
+
+
 def answer_interruptions() -> None:
-    """Turn SIGINT and SIGTERM into `KeyboardInterrupt`."""
+    """Turn SIGINT and SIGTERM into `KeyboardInterrupt`, and show nothing where a library prints that one."""
     for number in _ASKS:
         signal.signal(number, end_at_once)
+    sys.excepthook = _show
+
+
+def _show(kind: type[BaseException], error: BaseException, trace: TracebackType | None) -> None:
+    if not issubclass(kind, KeyboardInterrupt):
+        sys.__excepthook__(kind, error, trace)
 
 
 @contextmanager

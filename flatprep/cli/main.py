@@ -5,13 +5,14 @@ import logging
 import os
 import signal
 import sys
+from typing import NoReturn
 
 import click
 
 from flatprep import __version__
 from flatprep.base.errors import ExitStatus, FlatprepError
 from flatprep.cli import talk
-from flatprep.cli.interrupt import answer_interruptions, status_of
+from flatprep.cli.interrupt import answer_interruptions, ended_by, status_of
 
 _COMMANDS = {
     "alternatives": "what else parts could be made of: thickness, mass, cost, and whether it can be cut",
@@ -61,17 +62,23 @@ class Root(click.Group):
             if err.remedy:
                 talk.say(f"  try: {err.remedy}", err=True)
             ctx.exit(err.exit_status)
-        except KeyboardInterrupt as interruption:
-            talk.say("stopped", err=True)
-            ctx.exit(status_of(interruption.args[0] if interruption.args else signal.SIGINT))
+        except KeyboardInterrupt:
+            _end_stopped(ctx, ended_by() or signal.SIGINT)
         except (click.ClickException, click.exceptions.Exit, click.Abort, BrokenPipeError):
             raise
         except Exception as err:
+            if number := ended_by():  # a library made another error of the interruption
+                _end_stopped(ctx, number)
             if os.environ.get("FLATPREP_TRACEBACK"):
                 raise
             talk.say(f"error: flatprep itself failed ({type(err).__name__}: {err})", err=True)
             talk.say("  try: set FLATPREP_TRACEBACK=1, run it again, and report what it prints", err=True)
             ctx.exit(ExitStatus.UNUSABLE)
+
+
+def _end_stopped(ctx: click.Context, number: int) -> NoReturn:
+    talk.say("stopped", err=True)
+    ctx.exit(status_of(number))
 
 
 @click.group(cls=Root, context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 100})

@@ -6,12 +6,15 @@ import signal
 import subprocess
 import sys
 import time
+from contextlib import suppress
 
 import pytest
+from click.testing import CliRunner
 
 from flatprep import api
 from flatprep.api.nest import nest_ask
-from flatprep.cli.interrupt import Stop, stoppable
+from flatprep.cli import main
+from flatprep.cli.interrupt import Stop, answer_interruptions, stoppable
 from flatprep.nest.verify import verify
 from tests.cli.test_jobs import JOB, leaf
 from tests.damage import half_written
@@ -134,3 +137,37 @@ def test_what_else_a_library_swallows_is_shown(capfd):
     with stoppable():
         in_a_callback(fail)
     assert "something else" in capfd.readouterr().err
+
+
+def test_an_interruption_of_which_a_library_makes_another_error_is_one(monkeypatch):
+    asked = [signal.SIGTERM]
+
+    def fails(_name):  # as an extension module does that cannot import what it needs
+        with suppress(KeyboardInterrupt):
+            for number in asked:
+                signal.raise_signal(number)
+        raise ImportError("a module failed to import")
+
+    monkeypatch.setattr(main.importlib, "import_module", fails)
+    monkeypatch.delenv("FLATPREP_TRACEBACK", raising=False)
+    before = {number: signal.getsignal(number) for number in (signal.SIGINT, signal.SIGTERM)}
+    monkeypatch.setattr(sys, "excepthook", sys.excepthook)
+    answer_interruptions()
+    try:
+        stopped = CliRunner().invoke(main.root, ["nest"])
+        asked.clear()
+        broken = CliRunner().invoke(main.root, ["nest"])
+    finally:
+        for number, handler in before.items():
+            signal.signal(number, handler)
+    assert (stopped.exit_code, stopped.stderr) == (143, "stopped\n")
+    assert broken.exit_code == 2
+    assert "flatprep itself failed (ImportError: a module failed to import)" in broken.stderr
+
+
+def test_an_interruption_that_a_library_prints_is_not_shown():
+    work = "import sys; from flatprep.cli.interrupt import answer_interruptions; answer_interruptions(); "
+    for error, shown in (("KeyboardInterrupt(15)", False), ("ValueError('else')", True)):
+        code = f"{work}sys.excepthook(type(e := {error}), e, None)"
+        run = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True)
+        assert bool(run.stderr) == shown
