@@ -178,6 +178,22 @@ def border_drawing(outline: Floats, holes: Sequence[Floats] = (), *, notes: Sequ
 
 
 def _document(layers: Iterable[str], version: str = USUAL.version) -> Document:
+    """Return an empty document, to be written before the next one is asked for: it is always the same one of a kind."""
+    doc, handle = _blank(tuple(layers), version)
+    doc.modelspace().delete_all_entities()
+    doc.entitydb.purge()
+    doc.entitydb.handles.reset(handle)
+    return doc
+
+
+@lru_cache(maxsize=64)
+def _blank(layers: tuple[str, ...], version: str) -> tuple[Document, str]:
+    """Make a document that is drawn on again and again, and its first free handle: making one takes long."""
+    doc = _new_document(layers, version)
+    return doc, str(doc.entitydb.handles)
+
+
+def _new_document(layers: Iterable[str], version: str) -> Document:
     doc = Document.new(version)
     if doc.dxfversion > DXF12:  # older files know no unit
         doc.header["$INSUNITS"] = MM_CODE
@@ -256,7 +272,7 @@ def _written(doc: Document) -> str:
 @lru_cache(maxsize=64)
 def _around(layers: tuple[str, ...], version: str) -> tuple[str, str, str]:
     """Text of an empty document before its first free handle, from there to the entities, and after these."""
-    head, after = _whole(_document(layers, version)).split(_NO_ENTITIES)
+    head, after = _whole(_new_document(layers, version)).split(_NO_ENTITIES)
     before, between = re.split(r"(?<=\$HANDSEED\n  5\n)[0-9A-F]+", head)
     return before, between, after
 

@@ -125,8 +125,8 @@ def test_classes_stand_in_an_order_that_no_hash_seed_changes():
 )
 @pytest.mark.parametrize("many", [0, 1, 300])
 def test_what_all_documents_have_in_common_is_as_ezdxf_writes_it(layers, version, many):
-    def document():
-        doc = write._document(layers, version)
+    def document(made=write._document):
+        doc = made(layers, version)
         for k in range(many):
             write._polyline(doc, "CUT", PLATE + float(k), closed=True)
             doc.modelspace().add_text(f"Hacke ü {k}", dxfattribs={"layer": layers[-1]})
@@ -134,6 +134,7 @@ def test_what_all_documents_have_in_common_is_as_ezdxf_writes_it(layers, version
         return doc
 
     text = write._written(document())
-    assert text == write._whole(document())
+    assert text == write._whole(document(write._new_document))
+    assert text == write._written(document())  # drawn again on what the first one was drawn on
     handles = re.findall(r"\n  5\n([0-9A-F]+)\n", text.partition("$HANDSEED")[2])
     assert len(set(handles)) == len(handles)  # the seed, which is free, among them
