@@ -55,6 +55,7 @@ class Root(click.Group):
 
     def invoke(self, ctx: click.Context) -> object:
         """Run a command; an error of ours becomes its message, what to do, and its status."""
+        ended_by()  # an interruption of an earlier run in this process is over
         try:
             return super().invoke(ctx)
         except FlatprepError as err:

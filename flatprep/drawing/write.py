@@ -9,6 +9,7 @@ import io
 import re
 from collections.abc import Iterable, Mapping, Sequence
 from functools import lru_cache
+from threading import get_ident
 
 import numpy as np
 from ezdxf._options import options
@@ -178,17 +179,17 @@ def border_drawing(outline: Floats, holes: Sequence[Floats] = (), *, notes: Sequ
 
 
 def _document(layers: Iterable[str], version: str = USUAL.version) -> Document:
-    """Return an empty document, to be written before the next one is asked for: it is always the same one of a kind."""
-    doc, handle = _blank(tuple(layers), version)
+    """Return an empty document, to be written before the thread asks for the next: it is the same one for each kind."""
+    doc, handle = _blank(tuple(layers), version, get_ident())
     doc.modelspace().delete_all_entities()
     doc.entitydb.purge()
     doc.entitydb.handles.reset(handle)
     return doc
 
 
-@lru_cache(maxsize=64)
-def _blank(layers: tuple[str, ...], version: str) -> tuple[Document, str]:
-    """Make a document that is drawn on again and again, and its first free handle: making one takes long."""
+@lru_cache(maxsize=8)
+def _blank(layers: tuple[str, ...], version: str, _thread: int) -> tuple[Document, str]:
+    """Make a document that one thread draws on again and again, and its first free handle: making one takes long."""
     doc = _new_document(layers, version)
     return doc, str(doc.entitydb.handles)
 

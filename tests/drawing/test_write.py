@@ -2,6 +2,8 @@
 
 import io
 import re
+from concurrent.futures import ThreadPoolExecutor
+from threading import Barrier
 
 import ezdxf
 import numpy as np
@@ -11,7 +13,7 @@ from ezdxf.math import bulge_to_arc
 from flatprep.drawing import write
 from flatprep.drawing.words import Words
 from flatprep.drawing.write import border_drawing, part_drawing, sheet_drawing
-from flatprep.geom.bulge import circle, reverse
+from flatprep.geom.bulge import Similarity, circle, reverse
 from flatprep.model.drawing import Contour, Curve, Part
 from flatprep.model.layout import Placement, SheetLayout
 
@@ -138,3 +140,20 @@ def test_what_all_documents_have_in_common_is_as_ezdxf_writes_it(layers, version
     assert text == write._written(document())  # drawn again on what the first one was drawn on
     handles = re.findall(r"\n  5\n([0-9A-F]+)\n", text.partition("$HANDSEED")[2])
     assert len(set(handles)) == len(handles)  # the seed, which is free, among them
+
+
+def test_threads_draw_on_documents_of_their_own():
+    ring = Contour(PLATE)
+    both = Barrier(2)
+
+    def drawn(_):
+        doc = write._document(("CUT",))
+        both.wait(10)  # each has its document before either draws
+        write._contour(doc, ring, Similarity())
+        both.wait(10)
+        return write._written(doc)
+
+    with ThreadPoolExecutor(2) as pool:
+        one, other = pool.map(drawn, range(2))
+    assert one == other
+    assert one.count("\nLWPOLYLINE\n") == 1
