@@ -1,6 +1,6 @@
 """The search's working state: one board, layouts to go back to, tries to untangle it."""
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from enum import Enum
 from itertools import pairwise
@@ -20,6 +20,11 @@ from flatprep.nest.untangle import new_try, remember, sweeps
 CALL = 20_000
 FEW_CORNERS = 8
 QUARTERS = 4
+
+
+def to_the_end(_tried: int, _loss: float) -> bool:
+    """Go on with every try."""
+    return True
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -175,7 +180,7 @@ class Engine:
         """Tell by the exact geometry, without tables, whether no piece overlaps another."""
         return float(settle_all(self.ground._replace(tables=self._exact))) == 0.0
 
-    def untangle(self, patience: int, tries: int) -> float:
+    def untangle(self, patience: int, tries: int, go_on: Callable[[int, float], bool] = to_the_end) -> float:
         """Try to remove all overlap; leaves the board in the state of least loss and returns that loss, mm².
 
         Parameters
@@ -184,19 +189,25 @@ class Engine:
             Sweeps without a gain after which a try is given up.
         tries
             How often to start again from the state of least loss, weights kept.
+        go_on
+            Asked now and then with the positions tried and the least loss (mm²) so far: False ends it.
         """
         attempt = self._try
         self.board.weight[:] = 1.0
         attempt.loss[:] = float(settle_all(self.ground))
         self.clock.spend(len(attempt.variant))
         remember(self.ground, attempt)
+        tried, going = 0, True
         for _ in range(tries):
             attempt.sweeps[:2] = 0, patience
-            while attempt.loss[0] > 0.0 and attempt.sweeps[0] < patience and self.time_left:
-                self.clock.spend(sweeps(self.ground, attempt, self.rng))
+            while attempt.loss[0] > 0.0 and attempt.sweeps[0] < patience and going and self.time_left:
+                places = sweeps(self.ground, attempt, self.rng)
+                self.clock.spend(places)
+                tried += places
+                going = attempt.loss[0] <= 0.0 or go_on(tried, float(attempt.loss[0]))
             attempt.loss[1] = attempt.loss[0]
             self._lay(attempt.variant, attempt.home, attempt.turn, attempt.at)
             settle_all(self.ground)
-            if attempt.loss[0] <= 0.0 or not self.time_left:
+            if attempt.loss[0] <= 0.0 or not going or not self.time_left:
                 break
         return float(attempt.loss[0])

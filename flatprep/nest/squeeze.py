@@ -6,6 +6,7 @@ from flatprep.nest.board import put
 from flatprep.nest.bounds import Bounds
 from flatprep.nest.engine import Engine, Spots, Turning
 from flatprep.nest.rearrange import rearrange
+from flatprep.nest.shelf import Prospects, Shelf
 from flatprep.nest.spots import any_spot, clamp, fits
 
 ROAM_SHARE = 0.8
@@ -17,7 +18,6 @@ LONGEST_STEP, LATER_STEP, SHORTEST_STEP = 0.05, 0.004, 0.001
 ROAM_PATIENCE, ROAM_TRIES = 200, 3
 TIGHT_LONGEST, TIGHT_SHORTEST = 0.0005, 0.00001
 TIGHT_PATIENCE = 100
-SHELF = 40
 # A layout this near the bound cannot be made shorter.
 NOTHING_MM = 1e-5
 
@@ -124,35 +124,29 @@ class Squeeze:
         least = self._bounds.least_mm(self.best.rects)
         return self.engine.time_left and self.best.length_mm > least + NOTHING_MM
 
-    def _rearrange_from_shelf(self, shelf: list[Spots]) -> None:
-        """Lay a failed layout from near the top of the shelf, changed about."""
-        pick = int(min(abs(self.engine.rng.normal(0.0, 0.25)), 0.999) * len(shelf))
-        self.engine.lay(shelf[pick])
-        rearrange(self.engine)
-
     def roam(self, step: float) -> None:
         """Shorten by steps that halve with each failure; at the least step, change failed layouts about."""
         engine = self.engine
-        shelf: list[Spots] = []
+        shelf, prospects = Shelf(), Prospects()
         while self._going_on:
             other = self._exchange(self.best)
             if other is not self.best:
-                self.best, shelf = other, []
-            if shelf:
-                self._rearrange_from_shelf(shelf)
+                self.best, shelf = other, Shelf()
+            if len(shelf):
+                engine.lay(shelf.pick(engine.rng))
+                rearrange(engine)
             else:
                 engine.lay(self.best)
                 shorten(engine, *self._shorter(step))
-            loss = engine.untangle(ROAM_PATIENCE, ROAM_TRIES)
+            prospects.begin(shelf)
+            loss = engine.untangle(ROAM_PATIENCE, ROAM_TRIES, prospects.go_on)
             if loss <= 0.0:
                 self._take()
-                shelf = []
+                shelf = Shelf()
             elif step > SHORTEST_STEP:
                 step = max(0.5 * step, SHORTEST_STEP)
-            else:
-                shelf.append(engine.spots(loss))
-                shelf.sort(key=lambda s: s.loss)
-                del shelf[SHELF:]
+            elif not prospects.given_up:
+                shelf.add(engine.spots(loss))
 
     def tighten(self) -> None:
         """Shorten the best layout by ever smaller steps."""

@@ -19,7 +19,7 @@ from pathlib import Path
 import numpy as np
 
 from flatprep.geom.bulge import Floats
-from flatprep.nest import engine, moves, rearrange, squeeze
+from flatprep.nest import engine, moves, rearrange, shelf, squeeze
 from flatprep.nest._jit import bare
 from flatprep.nest.board import Ground
 from flatprep.nest.clock import Clock
@@ -67,12 +67,17 @@ def without_neighbourhoods() -> None:
     rearrange.NEAR_SHARE = 0.0
 
 
+def without_judgement() -> None:
+    shelf.FEWEST_KEPT = shelf.MOST_KEPT + 1
+
+
 LEAVE_OUT: dict[str, Callable[[], None]] = {
     WHOLE: lambda: None,
     "tables": without_tables,
     "contacts": without_contacts,
     "corners": without_corners,
     "neighbourhoods": without_neighbourhoods,
+    "judgement": without_judgement,
     "rearranging": without_rearranging,
 }
 

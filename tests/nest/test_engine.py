@@ -105,3 +105,17 @@ def test_a_sheet_is_given_up_though_one_piece_is_just_as_long_as_the_other_sheet
         whole = engine.field.rect[0]
         shorten(engine, 1, float(whole[2] - whole[0]))
         assert set(engine.board.home[:2].tolist()) == {0}
+
+
+def test_a_try_that_is_not_worth_going_on_with_ends_at_once():
+    engine = engine_of(strip_task(kinds(), 40.0, None))
+    shorten(engine, 1, 0.5 * engine.length_mm)  # shorter than the pieces' area allows
+    asked = []
+
+    def go_on(tried: int, loss: float) -> bool:
+        asked.append((tried, loss))
+        return False
+
+    loss = engine.untangle(200, 3, go_on)
+    assert loss > 0.0
+    assert asked == [(engine.clock.evaluations - len(engine.board.variant), loss)]
