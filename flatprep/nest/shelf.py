@@ -11,8 +11,9 @@ from flatprep.nest.engine import Spots
 MOST_KEPT = 40
 # Layouts whose losses differ by no more than this share are one: a try that fell back to where it came from.
 SAME_LOSS = 1e-3
-# How far down the shelf to reach: deviation of the share of it that is passed over.
-REACH = 0.25
+# How far down the shelf to reach: standard deviation of the number of layouts that are passed over. Of 101 tries that
+# won, 70 came from the top of the shelf, 18 from the next one.
+REACH = 1.5
 # After so many positions a try is judged; it goes on while its loss is among the least of so many, of the last ones.
 CHECKS = (20_000, 60_000, 200_000)
 GOOD_SHARE, LAST_TRIES = 0.4, 40
@@ -43,8 +44,8 @@ class Shelf:
             del self._kept[MOST_KEPT:]
 
     def pick(self, rng: np.random.Generator) -> Spots:
-        """Return a layout, mostly from near the top."""
-        return self._kept[int(min(abs(rng.normal(0.0, REACH)), 0.999) * len(self._kept))]
+        """Return a layout, mostly one of the first three."""
+        return self._kept[min(int(abs(rng.normal(0.0, REACH))), len(self._kept) - 1)]
 
 
 class Prospects:

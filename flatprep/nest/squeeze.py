@@ -5,6 +5,7 @@ from collections.abc import Callable
 from flatprep.nest.board import put
 from flatprep.nest.bounds import Bounds
 from flatprep.nest.engine import Engine, Spots, Turning
+from flatprep.nest.line import Line
 from flatprep.nest.rearrange import rearrange
 from flatprep.nest.shelf import Prospects, Shelf
 from flatprep.nest.spots import any_spot, clamp, fits
@@ -18,6 +19,8 @@ LONGEST_STEP, LATER_STEP, SHORTEST_STEP = 0.05, 0.004, 0.001
 ROAM_PATIENCE, ROAM_TRIES = 200, 3
 TIGHT_LONGEST, TIGHT_SHORTEST = 0.0005, 0.00001
 TIGHT_PATIENCE = 100
+# How often a process whose line is stuck goes on from the best layout of all, where it has none as good.
+BEST_SHARE = 0.5
 # A layout this near the bound cannot be made shorter.
 NOTHING_MM = 1e-5
 
@@ -105,9 +108,9 @@ class Squeeze:
         self._found(spots)
         return True
 
-    def _shorter(self, step: float) -> tuple[int, float]:
-        """Return the field that is a step (share of the length of all sheets in use) shorter than the best one's."""
-        rects, length = self.best.rects, self.best.length_mm
+    def _shorter(self, spots: Spots, step: float) -> tuple[int, float]:
+        """Return the field that is a step (share of the length of all sheets in use) shorter than a layout's."""
+        rects, length = spots.rects, spots.length_mm
         least = self._bounds.least_mm(rects)
         if rects == 1:
             return 1, max(length * (1.0 - step), least)
@@ -125,28 +128,44 @@ class Squeeze:
         return self.engine.time_left and self.best.length_mm > least + NOTHING_MM
 
     def roam(self, step: float) -> None:
-        """Shorten by steps that halve with each failure; at the least step, change failed layouts about."""
+        """Shorten by steps that halve with each failure; at the least step, change failed layouts about.
+
+        Where that leads no further, go on from a longer layout that led here, or from the best one of all.
+        """
         engine = self.engine
         shelf, prospects = Shelf(), Prospects()
+        line = Line(self.best, engine.clock.evaluations)
         while self._going_on:
-            other = self._exchange(self.best)
-            if other is not self.best:
-                self.best, shelf = other, Shelf()
-            if len(shelf):
+            self.best = self._exchange(self.best)
+            if line.is_stuck(engine.clock.evaluations):
+                shelf, step = Shelf(), LATER_STEP
+                line = self._line_after(line)
+                engine.lay(line.last)
+                rearrange(engine)
+            elif len(shelf):
                 engine.lay(shelf.pick(engine.rng))
                 rearrange(engine)
             else:
-                engine.lay(self.best)
-                shorten(engine, *self._shorter(step))
+                engine.lay(line.last)
+                shorten(engine, *self._shorter(line.last, step))
             prospects.begin(shelf)
             loss = engine.untangle(ROAM_PATIENCE, ROAM_TRIES, prospects.go_on)
             if loss <= 0.0:
+                line.add(engine.spots(), engine.clock.evaluations)
                 self._take()
                 shelf = Shelf()
             elif step > SHORTEST_STEP:
                 step = max(0.5 * step, SHORTEST_STEP)
             elif not prospects.given_up:
                 shelf.add(engine.spots(loss))
+
+    def _line_after(self, line: Line) -> Line:
+        """Return what to go on from where a line is stuck."""
+        positions = self.engine.clock.evaluations
+        if self.best.cost < line.last.cost and self.engine.rng.random() < BEST_SHARE:
+            return Line(self.best, positions)
+        line.go_back(positions)
+        return line
 
     def tighten(self) -> None:
         """Shorten the best layout by ever smaller steps."""
@@ -155,6 +174,6 @@ class Squeeze:
             self.best = self._exchange(self.best)
             share = (engine.clock.spent - start) / max(engine.stop_at - start, 1e-9)
             engine.lay(self.best)
-            shorten(engine, *self._shorter(TIGHT_LONGEST * (TIGHT_SHORTEST / TIGHT_LONGEST) ** share))
+            shorten(engine, *self._shorter(self.best, TIGHT_LONGEST * (TIGHT_SHORTEST / TIGHT_LONGEST) ** share))
             if engine.untangle(TIGHT_PATIENCE, 1) <= 0.0:
                 self._take()

@@ -19,7 +19,7 @@ from pathlib import Path
 import numpy as np
 
 from flatprep.geom.bulge import Floats
-from flatprep.nest import engine, moves, rearrange, shelf, squeeze
+from flatprep.nest import engine, line, moves, rearrange, shelf, squeeze
 from flatprep.nest._jit import bare
 from flatprep.nest.board import Ground
 from flatprep.nest.clock import Clock
@@ -71,6 +71,10 @@ def without_judgement() -> None:
     shelf.FEWEST_KEPT = shelf.MOST_KEPT + 1
 
 
+def without_going_back() -> None:
+    line.STUCK_POSITIONS = sys.maxsize
+
+
 LEAVE_OUT: dict[str, Callable[[], None]] = {
     WHOLE: lambda: None,
     "tables": without_tables,
@@ -78,6 +82,7 @@ LEAVE_OUT: dict[str, Callable[[], None]] = {
     "corners": without_corners,
     "neighbourhoods": without_neighbourhoods,
     "judgement": without_judgement,
+    "going back": without_going_back,
     "rearranging": without_rearranging,
 }
 

@@ -1,15 +1,18 @@
 """The search's state: how pieces may turn, what is laid again, what no layout can be shorter than."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 
 from flatprep.nest.bounds import Bounds
 from flatprep.nest.clock import Clock
 from flatprep.nest.engine import Engine, Turning
+from flatprep.nest.line import Line
 from flatprep.nest.rearrange import rearrange
 from flatprep.nest.search import sheets_task, strip_task
 from flatprep.nest.shapes import Container, Place, Shape
-from flatprep.nest.squeeze import lack, send_elsewhere, shorten
+from flatprep.nest.squeeze import Squeeze, lack, send_elsewhere, shorten
 from tests.nest.outlines import ELBOW, QUARTERS, SQUARE, WEDGE
 
 
@@ -119,3 +122,23 @@ def test_a_try_that_is_not_worth_going_on_with_ends_at_once():
     loss = engine.untangle(200, 3, go_on)
     assert loss > 0.0
     assert asked == [(engine.clock.evaluations - len(engine.board.variant), loss)]
+
+
+def test_a_line_that_is_stuck_goes_back_or_on_from_a_better_layout():
+    """Both ways are taken; the best layout is kept."""
+    engine = engine_of(strip_task(kinds(), 40.0, None))
+    longer = engine.spots()
+    shorten(engine, 1, 0.8 * engine.length_mm)
+    engine.untangle(200, 3)
+    shorter = engine.spots()
+    squeeze = Squeeze(engine, shorter, Bounds.of(engine, 1.0), lambda _: None, lambda best: best)
+    after = set()
+    for _ in range(40):
+        line = Line(longer, 0)
+        line.add(replace(longer, length_mm=0.999 * longer.length_mm), 0)
+        after.add(squeeze._line_after(line).last.length_mm)
+    assert after == {longer.length_mm, shorter.length_mm}
+    for _ in range(40):  # where the line itself leads to the best one, only back
+        line = Line(longer, 0)
+        line.add(shorter, 0)
+        assert squeeze._line_after(line).last is longer

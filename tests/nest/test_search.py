@@ -87,7 +87,7 @@ def test_a_jigsaw_is_solved():
         [[0, 14], [17, 11], [13, 30], [0, 30]],
     ]
     kinds = [Shape(np.array(c, dtype=float) - np.array(c[0])) for c in cuts]
-    best = search(strip_task(kinds, 30.0, None), Clock(steps=150), 2, quiet)
+    best = search(strip_task(kinds, 30.0, None), Clock(steps=600), 2, quiet)
     assert best.length_mm == pytest.approx(40.0, abs=0.01)
 
 
