@@ -39,7 +39,7 @@ class Line:
             self._layouts[-1] = spots
 
     def is_stuck(self, positions: int) -> bool:
-        """Tell whether nothing has come of so many positions; of several rectangles none ever is."""
+        """Tell whether nothing has come of so many positions; one of several rectangles never is: see `refill`."""
         return self.last.rects == 1 and positions - self._gained_at > STUCK_POSITIONS
 
     def go_back(self, positions: int) -> None:

@@ -6,8 +6,9 @@ from flatprep.nest.board import put
 from flatprep.nest.bounds import Bounds
 from flatprep.nest.engine import Engine, Spots, Turning
 from flatprep.nest.line import Line
+from flatprep.nest.prospects import Prospects
 from flatprep.nest.rearrange import rearrange
-from flatprep.nest.shelf import Prospects, Shelf
+from flatprep.nest.shelf import Shelf
 from flatprep.nest.spots import any_spot, clamp, fits
 
 ROAM_SHARE = 0.8
@@ -99,14 +100,15 @@ class Squeeze:
         self.tighten()
         return self.best
 
-    def _take(self) -> bool:
-        """Note the layout on the board as the best if it is one; tell whether it was."""
+    def _untangled(self) -> Spots | None:
+        """Return the layout on the board, noted where it is the best one; None where some pieces do overlap."""
         spots = self.engine.spots()
-        if spots.cost >= self.best.cost or not self.engine.is_free():
-            return False
-        self.best = spots
-        self._found(spots)
-        return True
+        if not self.engine.is_free():
+            return None
+        if spots.cost < self.best.cost:
+            self.best = spots
+            self._found(spots)
+        return spots
 
     def _shorter(self, spots: Spots, step: float) -> tuple[int, float]:
         """Return the field that is a step (share of the length of all sheets in use) shorter than a layout's."""
@@ -151,8 +153,8 @@ class Squeeze:
             prospects.begin(shelf)
             loss = engine.untangle(ROAM_PATIENCE, ROAM_TRIES, prospects.go_on)
             if loss <= 0.0:
-                line.add(engine.spots(), engine.clock.evaluations)
-                self._take()
+                if (spots := self._untangled()) is not None:
+                    line.add(spots, engine.clock.evaluations)
                 shelf = Shelf()
             elif step > SHORTEST_STEP:
                 step = max(0.5 * step, SHORTEST_STEP)
@@ -176,4 +178,4 @@ class Squeeze:
             engine.lay(self.best)
             shorten(engine, *self._shorter(self.best, TIGHT_LONGEST * (TIGHT_SHORTEST / TIGHT_LONGEST) ** share))
             if engine.untangle(TIGHT_PATIENCE, 1) <= 0.0:
-                self._take()
+                self._untangled()

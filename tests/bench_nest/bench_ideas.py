@@ -19,7 +19,7 @@ from pathlib import Path
 import numpy as np
 
 from flatprep.geom.bulge import Floats
-from flatprep.nest import engine, line, moves, rearrange, shelf, squeeze
+from flatprep.nest import engine, line, moves, prospects, rearrange, shelf, squeeze
 from flatprep.nest._jit import bare
 from flatprep.nest.board import Ground
 from flatprep.nest.clock import Clock
@@ -68,7 +68,7 @@ def without_neighbourhoods() -> None:
 
 
 def without_judgement() -> None:
-    shelf.FEWEST_KEPT = shelf.MOST_KEPT + 1
+    prospects.FEWEST_KEPT = shelf.MOST_KEPT + 1
 
 
 def without_going_back() -> None:

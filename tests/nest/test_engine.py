@@ -1,18 +1,22 @@
 """The search's state: how pieces may turn, what is laid again, what no layout can be shorter than."""
 
+from collections import Counter
 from dataclasses import replace
 
 import numpy as np
 import pytest
 
+import flatprep.nest.line
 from flatprep.nest.bounds import Bounds
 from flatprep.nest.clock import Clock
 from flatprep.nest.engine import Engine, Turning
 from flatprep.nest.line import Line
+from flatprep.nest.prospects import Prospects
 from flatprep.nest.rearrange import rearrange
 from flatprep.nest.search import sheets_task, strip_task
 from flatprep.nest.shapes import Container, Place, Shape
-from flatprep.nest.squeeze import Squeeze, lack, send_elsewhere, shorten
+from flatprep.nest.shelf import Shelf
+from flatprep.nest.squeeze import SHORTEST_STEP, Squeeze, lack, send_elsewhere, shorten
 from tests.nest.outlines import ELBOW, QUARTERS, SQUARE, WEDGE
 
 
@@ -132,13 +136,62 @@ def test_a_line_that_is_stuck_goes_back_or_on_from_a_better_layout():
     engine.untangle(200, 3)
     shorter = engine.spots()
     squeeze = Squeeze(engine, shorter, Bounds.of(engine, 1.0), lambda _: None, lambda best: best)
-    after = set()
-    for _ in range(40):
+    after = Counter()
+    for _ in range(400):
         line = Line(longer, 0)
         line.add(replace(longer, length_mm=0.999 * longer.length_mm), 0)
-        after.add(squeeze._line_after(line).last.length_mm)
-    assert after == {longer.length_mm, shorter.length_mm}
+        after[squeeze._line_after(line).last.length_mm] += 1
+    assert after.keys() == {longer.length_mm, shorter.length_mm}
+    assert after[shorter.length_mm] == pytest.approx(200, abs=40)  # four deviations of 400 throws of a coin
     for _ in range(40):  # where the line itself leads to the best one, only back
         line = Line(longer, 0)
         line.add(shorter, 0)
         assert squeeze._line_after(line).last is longer
+
+
+def squeeze_of(seed: int = 1, steps: int = 30) -> Squeeze:
+    task = strip_task(kinds(), 40.0, None)
+    engine = Engine(task.outlines, task.free, task.field, task.start, Clock(steps=steps), np.random.default_rng(seed))
+    return Squeeze(engine, task.start, Bounds.of(engine, 1.0), lambda _: None, lambda best: best)
+
+
+def test_roaming_goes_back_where_its_line_is_stuck(monkeypatch):
+    back = []
+    go_back = Line.go_back
+    monkeypatch.setattr(Line, "go_back", lambda line, positions: (back.append(positions), go_back(line, positions))[1])
+    squeeze_of().roam(SHORTEST_STEP)
+    assert not back  # 12 million positions are not spent here
+    monkeypatch.setattr(flatprep.nest.line, "STUCK_POSITIONS", 20_000)
+    squeeze = squeeze_of(steps=150)
+    squeeze.roam(SHORTEST_STEP)
+    assert len(back) > 1
+    assert np.all(np.diff(back) > 20_000)
+    squeeze.engine.lay(squeeze.best)
+    assert squeeze.engine.is_free()
+
+
+def test_layouts_of_tries_that_are_given_up_are_not_kept(monkeypatch):
+    def give_up(prospects: Prospects, _tried: int, _loss: float) -> bool:
+        prospects.given_up = True
+        return False
+
+    kept = []
+    monkeypatch.setattr(Shelf, "add", lambda _, spots: kept.append(spots.loss))
+    squeeze_of().roam(SHORTEST_STEP)
+    assert kept
+    kept.clear()
+    monkeypatch.setattr(Prospects, "go_on", give_up)
+    squeeze_of().roam(SHORTEST_STEP)
+    assert not kept
+
+
+def test_a_layout_that_overlaps_after_all_is_no_layout():
+    squeeze = squeeze_of()
+    engine = squeeze.engine
+    best = squeeze._untangled()
+    assert best is not None
+    engine.board.at[:, 0] -= engine.board.left  # all against the left end, over each other
+    engine.lay(engine.spots(loss=1.0))
+    assert engine.reach_mm < best.length_mm
+    assert squeeze._untangled() is None
+    assert squeeze.best.length_mm == best.length_mm
